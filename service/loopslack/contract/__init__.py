@@ -1,0 +1,1 @@
+"""What callers see: questions, answers, quantities, and the way between them and the calculation."""

@@ -1,0 +1,1 @@
+"""Kinds, units, values, equations, citations and errors. Knows nothing of loops."""
