@@ -14,7 +14,7 @@ from msgspec import Struct
 
 from loopslack.kernel.citations import Cite
 from loopslack.kernel.errors import OutOfRange
-from loopslack.kernel.kinds import KIND_OF, Kind
+from loopslack.kernel.kinds import KIND_OF, Coefficients, Kind
 from loopslack.kernel.value import Computed, Value
 
 P = ParamSpec("P")
@@ -44,18 +44,23 @@ class Equation(Struct, frozen=True):
     yields: Range
     kind: Kind
     arguments: Mapping[str, Kind]
+    coefficients: tuple[str, ...]
     function: Callable[..., float]
 
-    def derive(self, name: str = "", /, **inputs: Value) -> Value:
+    def derive(
+        self, name: str = "", coefficients: Mapping[str, Coefficients] | None = None, /, **inputs: Value
+    ) -> Value:
         """Compute a value from values, checking kinds and ranges, and remember how.
 
+        ``coefficients`` are the fitted numbers of a law that takes such; they are no values.
         Raises ``TypeError`` when an input is of another kind, ``OutOfRange`` outside the published range.
         """
         for argument, value in inputs.items():
             if value.kind is not self.arguments[argument]:
                 raise TypeError(f"{self.id}: {argument} is given as a {value.kind.name}")
             self._check(value.name, value.si, self.valid.get(argument, _ANY))
-        number = self.function(**{argument: value.si for argument, value in inputs.items()})
+        numbers = {argument: value.si for argument, value in inputs.items()}
+        number = self.function(**numbers, **(coefficients or {}))
         title = name or self.function.__name__.replace("_", " ")
         self._check(title, number, self.yields)
         return Value(number, self.kind, title, Computed(self.id, inputs))
@@ -87,14 +92,17 @@ def equation(
 ) -> Callable[[Callable[P, R]], Callable[P, R]]:
     """Enter a formula function in the register and return it unchanged.
 
-    Every argument and the result must be annotated with a quantity type of ``kinds``.
+    Every argument and the result must be annotated with a quantity type of ``kinds``; arguments annotated
+    ``Coefficients`` carry the fitted numbers of the law and have no kind.
     """
 
     def enter(function: Callable[P, R]) -> Callable[P, R]:
         if id in EQUATIONS:
             raise ValueError(f"equation {id} is defined twice")
         hints = get_type_hints(function)
-        arguments = {name: _kind_of(id, hints[name]) for name in signature(function).parameters}
+        names = tuple(signature(function).parameters)
+        coefficients = tuple(name for name in names if hints[name] is Coefficients)
+        arguments = {name: _kind_of(id, hints[name]) for name in names if name not in coefficients}
         EQUATIONS[id] = _PAPERS[function] = Equation(
             id=id,
             law=law,
@@ -105,6 +113,7 @@ def equation(
             yields=yields,
             kind=_kind_of(id, hints["return"]),
             arguments=arguments,
+            coefficients=coefficients,
             function=function,
         )
         return function

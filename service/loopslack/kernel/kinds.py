@@ -40,6 +40,9 @@ Duration = NewType("Duration", float)
 ExpansionCoefficient = NewType("ExpansionCoefficient", float)
 MolarMass = NewType("MolarMass", float)
 
+# Not a quantity: the fitted numbers of one law, handed to the function by whoever holds the table.
+Coefficients = NewType("Coefficients", tuple[float, ...])
+
 LengthUnit = Literal["m", "mm", "cm", "in", "ft"]
 AreaUnit = Literal["m2", "ft2"]
 VolumeUnit = Literal["L", "mL", "m3", "gal_us", "gal_uk", "ft3"]
