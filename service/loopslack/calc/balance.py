@@ -1,0 +1,133 @@
+"""The mass balance of the closed loop: what the vessel must hold in each state.
+
+The loop is filled once and mass is conserved until the relief valve opens. ``Balance`` holds the part of the
+balance that a loop and a scenario fix; a vessel enters through its liquid when filled and its pressure.
+"""
+
+from typing import NamedTuple
+
+from loopslack.calc.model import Branch, CollectorGroup, Loop
+from loopslack.calc.scenarios import Scenario
+from loopslack.calc.steam import Steam, SteamSpace
+
+
+class Extent(NamedTuple):
+    """Steam in every space at one vessel pressure, and the mass pushed out of the loop since filling.
+
+    ``expelled`` (kg) is what the vessel takes up on top of its filling; ``unspent`` (W) reaches the station beyond
+    what is said to be taken there.
+    """
+
+    pressure: float
+    spaces: tuple[Steam, ...]
+    expelled: float
+    unspent: float
+
+    @property
+    def steam_volume(self) -> float:
+        """Collectors and pipes filled with steam, m3."""
+        return sum(space.emptied + space.pipe for space in self.spaces)
+
+    @property
+    def boiling(self) -> bool:
+        """Whether any space boils."""
+        return any(space.boiling for space in self.spaces)
+
+
+class Mixing(NamedTuple):
+    """Liquid that arrives in the vessel in order: volume (m3) and temperature (K) of the room, return and hot part."""
+
+    room: float
+    cool: float
+    back: float
+    back_volume: float
+    hot: float
+
+    def temperature(self, filled: float, held: float) -> float:
+        """Volume-weighted temperature (K) of ``held`` m3, of which ``filled`` m3 were there at room temperature.
+
+        No losses: the liquid of the vessel line and the cooling vessel arrives first at room temperature, then the
+        return pipe at the return temperature, then the rest hot. Errs on the hot side.
+        """
+        if held <= filled:
+            return self.room
+        arrived = held - filled
+        cool = arrived if arrived < self.cool else self.cool
+        arrived -= cool
+        back = arrived if arrived < self.back_volume else self.back_volume
+        hot = arrived - back
+        return ((filled + cool) * self.room + back * self.back + hot * self.hot) / held
+
+    def last(self, filled: float, held: float) -> float:
+        """Temperature (K) of the liquid that arrived last."""
+        arrived = held - filled
+        if arrived <= self.cool:
+            return self.room
+        return self.back if arrived <= self.cool + self.back_volume else self.hot
+
+
+def mixing(loop: Loop) -> Mixing:
+    """How the liquid of a loop arrives in its vessel."""
+    temperatures = loop.temperatures
+    return Mixing(
+        temperatures.vessel_room,
+        loop.line_content + loop.cooling_content,
+        temperatures.back,
+        sum(branch.content for branch in loop.branches if branch.role == "return"),
+        temperatures.hot_liquid,
+    )
+
+
+class Balance:
+    """The stagnation balance of a loop under one reading of its steam."""
+
+    def __init__(self, loop: Loop, scenario: Scenario) -> None:
+        fluid = loop.fluid
+        self.loop = loop
+        hot = fluid.density(loop.temperatures.hot_liquid)
+        spaces: dict[int, tuple[list[CollectorGroup], list[Branch]]] = {}
+        for group in loop.groups:
+            spaces.setdefault(group.space, ([], []))[0].append(group)
+        still = loop.station.content + loop.line_content + loop.cooling_content
+        for branch in loop.branches:
+            if is_open(branch, scenario):
+                spaces[branch.space][1].append(branch)
+            else:
+                still += branch.content
+        self.spaces = [SteamSpace(loop, scenario, groups, branches) for groups, branches in spaces.values()]
+        self.filled_mass = fluid.density(loop.temperatures.fill) * loop.content
+        self.still_mass = hot * still
+        self.station_loss = loop.station.steam_loss
+
+    def extent(self, pressure: float, spaces: tuple[Steam, ...]) -> Extent:
+        """Put the spaces together at a vessel pressure (Pa)."""
+        mass, unspent = self.still_mass, -self.station_loss
+        for space in spaces:
+            mass += space.mass
+            unspent += space.unspent
+        return Extent(pressure, spaces, self.filled_mass - mass, unspent if unspent > 0 else 0.0)
+
+    def at_pressure(self, pressure: float, *, below: bool = True) -> Extent:
+        """The extent of steam at a vessel pressure (Pa)."""
+        return self.extent(
+            pressure, tuple(space.at_pressure(pressure, below=below) for space in self.spaces)
+        )
+
+    def liquid(self) -> Extent:
+        """Nothing boils; the pressure is whatever the vessel makes of it."""
+        return self.extent(0.0, tuple(space.liquid() for space in self.spaces))
+
+    def station_pressure(self) -> float | None:
+        """Lowest vessel pressure (Pa) that keeps steam out of the station, infinite if none does, None if any does.
+
+        With a stated loss at the station this is still the pressure at which steam arrives there.
+        """
+        found = [p for p in (space.station_pressure() for space in self.spaces) if p is not None]
+        return max(found) if found else None
+
+
+def is_open(branch: Branch, scenario: Scenario) -> bool:
+    """Whether steam can enter a branch; an unstated access is open unless the scenario doubts it."""
+    if branch.access == "unknown":
+        return not scenario.closed_unknown
+    return branch.access == "open"

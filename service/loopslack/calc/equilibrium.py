@@ -1,0 +1,276 @@
+"""The stagnation equilibrium of a loop with a given vessel: the largest extent of steam.
+
+Vessel pressure decides the steam, steam decides what the vessel must hold, and that decides its pressure. One root
+closes the circle. On a falling path it is unique; the valve is looked at first, since no state is reported for a
+pressure it would not allow.
+"""
+
+from typing import Literal, NamedTuple
+
+from loopslack.calc.balance import Balance, Extent, Mixing
+from loopslack.calc.steam import Steam, SteamSpace
+from loopslack.kernel.roots import bracketed, first_crossing
+
+Regime = Literal["no-boiling", "pinned", "steam", "valve-opens", "membrane-full"]
+
+_RELATIVE = 1e-12
+
+
+class Charge(NamedTuple):
+    """A vessel as it was charged and filled: volumes m3, absolute pressures Pa, temperatures K, mass kg.
+
+    ``filled`` is the liquid it holds when the loop is filled, ``mass`` that liquid's mass.
+    """
+
+    nominal: float
+    precharge: float
+    precharge_temperature: float
+    filled: float
+    mass: float
+    room: float
+    allowance: float
+
+    def room_at(self, pressure: float, gas_temperature: float) -> float:
+        """Liquid (m3) the vessel has room for at a pressure (Pa) and gas temperature (K), by Boyle's law."""
+        squeezed = self.precharge / pressure * gas_temperature / self.precharge_temperature
+        return self.nominal * (1.0 - squeezed)
+
+    def pressure_holding(self, liquid: float, gas_temperature: float) -> float:
+        """Pressure (Pa) of the vessel holding ``liquid`` m3, infinite once it is full."""
+        gas = self.nominal - liquid
+        if gas <= 0:
+            return float("inf")
+        return self.precharge * self.nominal / gas * gas_temperature / self.precharge_temperature
+
+
+class Equilibrium(NamedTuple):
+    """Where loop and vessel come to rest: pressures Pa absolute at the vessel, volumes m3, temperatures K.
+
+    ``bound`` is True where pressure and steam are lower bounds only: the valve opens, the membrane is full, or
+    power is left at the station.
+    """
+
+    regime: Regime
+    pressure: float
+    extent: Extent
+    liquid: float
+    gas_temperature: float
+    mixed_temperature: float
+    last_temperature: float
+    bound: bool
+
+
+class VesselLaw:
+    """What a charged vessel holds and has room for, with the gas at the room's or at the mixed temperature."""
+
+    def __init__(self, balance: Balance, charge: Charge, mix: Mixing, *, gas_follows: bool) -> None:
+        self.charge, self.mix, self.gas_follows = charge, mix, gas_follows
+        self.fluid = balance.loop.fluid
+        self.room_density = self.fluid.density(charge.room)
+
+    def held(self, expelled: float) -> tuple[float, float]:
+        """Liquid (m3) in the vessel after the loop pushed out ``expelled`` kg, and the gas temperature (K)."""
+        charge = self.charge
+        mass = charge.mass + expelled
+        liquid = mass / self.room_density + charge.allowance
+        if not self.gas_follows:
+            return liquid, charge.room
+        temperature = charge.room
+        for _ in range(40):
+            mixed = self.mix.temperature(charge.filled, liquid)
+            if abs(mixed - temperature) < 1e-10:
+                break
+            temperature = mixed
+            liquid = mass / self.fluid.density(mixed) + charge.allowance
+        return liquid, temperature
+
+    def excess(self, pressure: float, expelled: float) -> float:
+        """Room left (m3) in the vessel at a pressure (Pa); negative where it must rise further."""
+        liquid, gas = self.held(expelled)
+        return self.charge.room_at(pressure, gas) - liquid
+
+
+def equilibrium(
+    balance: Balance, charge: Charge, mix: Mixing, *, gas_follows: bool, opening: float
+) -> Equilibrium:
+    """Solve a loop with a charged vessel, up to the vessel pressure ``opening`` (Pa) at which the valve opens.
+
+    Raises ``OutOfRange`` where a fluid property would be needed outside its range.
+    """
+    law = VesselLaw(balance, charge, mix, gas_follows=gas_follows)
+    limit = balance.at_pressure(opening)
+    if law.excess(opening, limit.expelled) < 0:
+        return _state("valve-opens", opening, limit, law)
+    curve: _OneSpace | _SeveralSpaces
+    if len(balance.spaces) == 1:
+        curve = _OneSpace(balance, limit)
+    else:
+        curve = _SeveralSpaces(balance, opening)
+    return _solve(balance, law, curve, limit)
+
+
+class _OneSpace:
+    """One steam space: the steam temperature is the unknown, since everything else follows from it."""
+
+    def __init__(self, balance: Balance, limit: Extent) -> None:
+        self.balance, self.space = balance, balance.spaces[0]
+        steam = limit.spaces[0]
+        self.high = steam.temperature if steam.boiling else self.space.highest_boiling()
+        self.low = self.space.coldest
+        self.jumps = [t for t in self.space.stagnations if self.low < t <= self.high]
+        self.falling = self.space.path.falling
+
+    def start(self, lowest: float) -> None:
+        """Raise the lower end to the steam temperature at the vessel's lowest pressure (Pa)."""
+        self.low = min(self.high, self.space.boiling_below(lowest))
+        self.jumps = [t for t in self.jumps if t >= self.low]
+
+    def at(self, coordinate: float, *, below: bool = True) -> tuple[float, Extent]:
+        """Vessel pressure and extent at a steam temperature."""
+        pressure, steam = self.space.at(coordinate, below=below)
+        return pressure, self.balance.extent(pressure, (steam,))
+
+
+class _SeveralSpaces:
+    """Several steam spaces meet in the vessel pressure only, which is the unknown."""
+
+    def __init__(self, balance: Balance, opening: float) -> None:
+        self.balance = balance
+        self.high = opening
+        self.low = 0.0
+        self.falling = all(space.path.falling for space in balance.spaces)
+        jumps = []
+        for space in balance.spaces:
+            for stagnation in space.stagnations:
+                if stagnation <= space.fluid.boiling_highest:
+                    jumps.append(space.pressure(stagnation))
+        self.jumps = sorted(p for p in jumps if p <= opening)
+
+    def start(self, lowest: float) -> None:
+        """Raise the lower end to the vessel's lowest pressure (Pa)."""
+        self.low = min(lowest, self.high)
+        self.jumps = [p for p in self.jumps if p >= self.low]
+
+    def at(self, coordinate: float, *, below: bool = True) -> tuple[float, Extent]:
+        """Vessel pressure and extent at a vessel pressure."""
+        spaces = tuple(_at_jump(space, coordinate, below=below) for space in self.balance.spaces)
+        return coordinate, self.balance.extent(coordinate, spaces)
+
+
+def _at_jump(space: SteamSpace, pressure: float, *, below: bool) -> Steam:
+    """Steam of a space, with the side of a jump decided by pressure rather than by a rounded temperature."""
+    for stagnation in space.stagnations:
+        if stagnation <= space.fluid.boiling_highest and pressure == space.pressure(stagnation):
+            return space.at(stagnation, below=below)[1]
+    return space.at_pressure(pressure, below=below)
+
+
+def _solve(
+    balance: Balance, law: VesselLaw, curve: _OneSpace | _SeveralSpaces, limit: Extent
+) -> Equilibrium:
+    """Walk from jump to jump upwards; the root lies before the first one, across one, or after the last."""
+    charge = law.charge
+    curve.start(charge.precharge * charge.room / charge.precharge_temperature)
+
+    def excess(coordinate: float, *, below: bool = True) -> float:
+        pressure, extent = curve.at(coordinate, below=below)
+        return law.excess(pressure, extent.expelled)
+
+    low = curve.low
+    at_low = excess(low)
+    if at_low >= 0:
+        pressure, extent = curve.at(low)
+        return _state("steam" if extent.boiling else "no-boiling", pressure, extent, law)
+    for jump in curve.jumps:
+        below = excess(jump)
+        if below >= 0:
+            return _between(curve, law, low, jump, at_low, below)
+        above = excess(jump, below=False)
+        if above >= 0:
+            return _pinned(balance, curve, law, jump, below, above)
+        low, at_low = jump, above
+    if limit.boiling:
+        # The valve stays shut at the limit, so the root lies at or below it, rounding apart.
+        pressure, extent = curve.at(curve.high, below=False)
+        at_high = law.excess(pressure, extent.expelled)
+        if at_high > 0:
+            return _between(curve, law, low, curve.high, at_low, at_high)
+        return _state("steam", pressure, extent, law)
+    return _state("no-boiling", limit.pressure, limit, law)
+
+
+def _between(
+    curve: _OneSpace | _SeveralSpaces,
+    law: VesselLaw,
+    low: float,
+    high: float,
+    at_low: float,
+    at_high: float,
+) -> Equilibrium:
+    """The root inside a stretch without jumps; the lowest one, with most steam, where there are several."""
+
+    def excess(coordinate: float) -> float:
+        pressure, extent = curve.at(coordinate, below=False)
+        return law.excess(pressure, extent.expelled)
+
+    tolerance = _RELATIVE * high
+    found = None
+    if not curve.falling:
+        stops = [low + (high - low) * k / 48 for k in range(48)] + [high]
+        found = first_crossing(lambda x: at_low if x == low else excess(x), stops, tolerance)
+    if found is None:
+        found = bracketed(excess, low, high, at_low, at_high, tolerance)
+    pressure, extent = curve.at(found.at, below=False)
+    return _state("steam", pressure, extent, law)
+
+
+def _pinned(
+    balance: Balance,
+    curve: _OneSpace | _SeveralSpaces,
+    law: VesselLaw,
+    jump: float,
+    below: float,
+    above: float,
+) -> Equilibrium:
+    """Part of one group has evaporated: its steam holds the pressure, its share closes the balance."""
+    pressure, full = curve.at(jump)
+    _, none = curve.at(jump, below=False)
+
+    def at(share: float) -> float:
+        expelled = none.expelled + share * (full.expelled - none.expelled)
+        return law.excess(pressure, expelled)
+
+    share = bracketed(at, 0.0, 1.0, above, below, _RELATIVE).at
+    spaces = tuple(
+        a._replace(
+            boiling=True,
+            emptied=a.emptied + share * (b.emptied - a.emptied),
+            mass=a.mass + share * (b.mass - a.mass),
+            vapour_density=b.vapour_density,
+        )
+        if b.emptied > a.emptied
+        else a
+        for a, b in zip(none.spaces, full.spaces, strict=True)
+    )
+    return _state("pinned", pressure, balance.extent(pressure, spaces), law)
+
+
+def _state(regime: Regime, pressure: float, extent: Extent, law: VesselLaw) -> Equilibrium:
+    """Put an equilibrium together; the pressure follows from what the vessel holds, so that mass closes."""
+    liquid, gas = law.held(extent.expelled)
+    charge = law.charge
+    bound = regime == "valve-opens" or extent.unspent > 0
+    if regime != "valve-opens":
+        pressure = charge.pressure_holding(liquid, gas)
+        if pressure == float("inf"):
+            regime, bound = "membrane-full", True
+    return Equilibrium(
+        regime,
+        pressure,
+        extent._replace(pressure=pressure),
+        liquid,
+        gas,
+        law.mix.temperature(charge.filled, liquid),
+        law.mix.last(charge.filled, liquid),
+        bound,
+    )

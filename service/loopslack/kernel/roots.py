@@ -1,0 +1,73 @@
+"""One root finder for functions that change sign once between two ends.
+
+Bracketing, so that it always ends with an answer; no derivative is needed. Written here because a numerics package
+would cost a second of start-up and 60 MB for these thirty lines.
+"""
+
+from collections.abc import Callable, Iterable
+from typing import NamedTuple
+
+
+class Root(NamedTuple):
+    """Where the function crosses zero, and how many evaluations that took."""
+
+    at: float
+    evaluations: int
+
+
+def bracketed(
+    function: Callable[[float], float],
+    low: float,
+    high: float,
+    at_low: float,
+    at_high: float,
+    tolerance: float,
+    most: int = 80,
+) -> Root:
+    """Root between ``low`` and ``high``, whose values have different signs.
+
+    Regula falsi with the Anderson-Bjorck weighting, and a bisection whenever three steps have not halved the
+    bracket. Ends when the bracket or the last step is within ``tolerance``.
+    """
+    if at_low == 0:
+        return Root(low, 0)
+    if at_high == 0:
+        return Root(high, 0)
+    width, count = high - low, 0
+    guess = low
+    while count < most:
+        previous = guess
+        guess = high - at_high * (high - low) / (at_high - at_low)
+        if count % 3 == 2:
+            if high - low > 0.5 * width:
+                guess = 0.5 * (low + high)
+            width = high - low
+        value = function(guess)
+        count += 1
+        if value == 0 or abs(guess - previous) <= tolerance or high - low <= tolerance:
+            return Root(guess, count)
+        if (value > 0) == (at_high > 0):
+            share = 1 - value / at_high
+            at_low *= share if share > 0 else 0.5
+            high, at_high = guess, value
+        else:
+            share = 1 - value / at_low
+            at_high *= share if share > 0 else 0.5
+            low, at_low = guess, value
+    return Root(guess, count)
+
+
+def first_crossing(
+    function: Callable[[float], float], stops: Iterable[float], tolerance: float
+) -> Root | None:
+    """The lowest root found by walking ``stops`` upwards until the sign changes; None if it never does."""
+    previous: tuple[float, float] | None = None
+    count = 0
+    for stop in stops:
+        value = function(stop)
+        count += 1
+        if previous is not None and (previous[1] < 0) != (value < 0):
+            found = bracketed(function, previous[0], stop, previous[1], value, tolerance)
+            return Root(found.at, found.evaluations + count)
+        previous = (stop, value)
+    return None
