@@ -1,0 +1,227 @@
+"""A caller's own fluid by table: density, a freezing point, and its boiling by table or like a known glycol.
+
+What the caller did not state is refused, not guessed. Tables are interpolated without overshoot, never
+extrapolated.
+"""
+
+from collections.abc import Sequence
+from itertools import pairwise
+from math import exp, isfinite, log
+
+from msgspec import Struct
+
+from loopslack.calc.fluids_base import (
+    BOILING_HIGHEST,
+    BOILING_LOWEST,
+    Fluid,
+    Vapour,
+    celsius,
+    refuse_temperature,
+)
+from loopslack.kernel.errors import Contradiction, Missing, NotApplicable
+from loopslack.kernel.kinds import Temperature
+from loopslack.library.fluids import GlycolKind
+from loopslack.physics import water
+from loopslack.physics.own_fluid import MonotoneCurve
+
+Points = Sequence[tuple[float, float]]
+
+# Own assumptions, to keep typing errors out.
+_DENSITY_CREDIBLE = (500.0, 2000.0)
+_MAY_RISE_BELOW = 283.15  # dilute mixtures are densest near 4 degC
+_LEAST_POINTS = 3
+# The vapour of such a fluid is treated as steam. Bubble pressures far from those of water belie that.
+_LEAST_OF_WATER, _MOST_OF_WATER = 0.5, 1.02
+
+
+class BoilsLike(Struct, frozen=True, kw_only=True):
+    """The own fluid boils like a glycol mixture of this strength by mass."""
+
+    kind: GlycolKind
+    mass_fraction: float
+
+
+class OwnFluid(Fluid):
+    """A fluid known by its tables; see ``Fluid``. ``like`` is the mixture as which it boils, if any."""
+
+    __slots__ = ("_bubble", "_density", "_heat_capacity", "_viscosity", "like")
+
+    def __init__(
+        self,
+        points: Points,
+        freezing_point: float,
+        boiling: Points | Fluid,
+        *,
+        heat_capacity: Points = (),
+        viscosity: Points = (),
+        name: str = "the own fluid",
+    ) -> None:
+        self.kind, self.name = "own", name
+        self._density = _density_curve(points)
+        self.freezing_point, self.freezing_is_bound = freezing_point, False
+        self.lowest = max(self._density.first, freezing_point)
+        self.highest = self._density.last
+        if not self.lowest < self.highest:
+            raise Contradiction(
+                f"The freezing point, {celsius(freezing_point)} degC, lies above every density of {name}.",
+                remedy="State densities of the liquid.",
+            )
+        self.like: Fluid | None = None
+        self._bubble: MonotoneCurve | None = None
+        if isinstance(boiling, Fluid):
+            self._boil_like(boiling)
+        else:
+            self._boil_by_table(boiling)
+        self._heat_capacity = _curve(heat_capacity, f"heat capacity of {name}") if heat_capacity else None
+        self._viscosity = _curve(viscosity, f"viscosity of {name}") if viscosity else None
+
+    def density(self, temperature: float) -> float:
+        """See ``Fluid``."""
+        if not self.lowest <= temperature <= self.highest:
+            self.refuse_liquid(temperature)
+        return self._density.at(temperature)
+
+    def saturated(self, temperature: float) -> tuple[float, float]:
+        """See ``Fluid``."""
+        if not self.boiling_lowest <= temperature <= self.boiling_highest:
+            self.refuse_boiling(temperature)
+        if self._bubble is None:
+            return self._reference().saturated(temperature)
+        pressure = exp(self._bubble.at(-1.0 / temperature))
+        at = Temperature(temperature)
+        k = water.virial_per_pressure(at, water.saturation_pressure(at), water.vapour_density(at))
+        molar = pressure * water.MOLAR_MASS
+        return pressure, molar / ((1.0 + k * pressure) * water.GAS_CONSTANT * temperature)
+
+    def boiling_temperature(self, pressure: float) -> float:
+        """See ``Fluid``."""
+        if not self.lowest_pressure <= pressure <= self.highest_pressure:
+            self.refuse_pressure(pressure)
+        if self._bubble is None:
+            return self._reference().boiling_temperature(pressure)
+        return min(max(-1.0 / self._bubble.inverse(log(pressure)), self.boiling_lowest), self.boiling_highest)
+
+    def vapour(self, temperature: float) -> Vapour:
+        """The vapour; by table it is taken as pure steam at the pressure of the table, for want of better."""
+        pressure, density = self.saturated(temperature)
+        if self._bubble is None:
+            return self._reference().vapour(temperature)
+        return Vapour(
+            pressure=pressure,
+            density=density,
+            latent_heat=water.latent_heat(Temperature(temperature)),
+            glycol_mole_fraction=0.0,
+            glycol_mass_fraction=0.0,
+        )
+
+    def heat_capacity(self, temperature: float) -> float:
+        """See ``Fluid``."""
+        return self._stated(self._heat_capacity, "heat capacity", temperature)
+
+    def viscosity(self, temperature: float) -> float:
+        """See ``Fluid``."""
+        return self._stated(self._viscosity, "viscosity", temperature)
+
+    def ice_fraction(self, temperature: float) -> float:
+        """See ``Fluid``."""
+        if temperature >= self.freezing_point:
+            return 0.0
+        raise Missing(
+            f"How much of {self.name} freezes is not known: a freezing point alone does not tell.",
+            remedy="Keep the fluid above its freezing point.",
+            facts={"number": temperature, "low": self.freezing_point},
+        )
+
+    def _stated(self, curve: MonotoneCurve | None, subject: str, temperature: float) -> float:
+        if curve is None:
+            raise Missing(
+                f"The {subject} of {self.name} was not stated.", remedy=f"State the {subject} by table."
+            )
+        low, high = max(curve.first, self.freezing_point), curve.last
+        if not low <= temperature <= high:
+            rule = f"{subject} of {self.name}"
+            refuse_temperature(rule, temperature, low, high, "State a table that covers it.")
+        return curve.at(temperature)
+
+    def _reference(self) -> Fluid:
+        if self.like is None:
+            raise AssertionError("an own fluid without a bubble table boils like another")
+        return self.like
+
+    def _boil_like(self, reference: Fluid) -> None:
+        self.like = reference
+        self.mass_fraction, self.volume_fraction = reference.mass_fraction, reference.volume_fraction
+        self.water_activity, self.glycol_activity = reference.water_activity, reference.glycol_activity
+        self.boiling_lowest, self.boiling_highest = reference.boiling_lowest, reference.boiling_highest
+        self.lowest_pressure, self.highest_pressure = reference.lowest_pressure, reference.highest_pressure
+
+    def _boil_by_table(self, points: Points) -> None:
+        self.mass_fraction = self.volume_fraction = self.glycol_activity = 0.0
+        self.water_activity = 1.0
+        table = _checked(points, f"bubble pressure of {self.name}")
+        for temperature, pressure in table:
+            _must_be_steam(self.name, temperature, pressure)
+        # In ln p over -1/T every bubble line is nearly straight, and both rise.
+        self._bubble = MonotoneCurve([(-1.0 / temperature, log(pressure)) for temperature, pressure in table])
+        if any(after <= before for before, after in pairwise(self._bubble.ys)):
+            raise Contradiction(
+                f"The bubble pressure of {self.name} must rise with temperature.", remedy="Check the table."
+            )
+        self.boiling_lowest, self.boiling_highest = table[0][0], table[-1][0]
+        self.lowest_pressure, self.highest_pressure = table[0][1], table[-1][1]
+
+
+def _must_be_steam(name: str, temperature: float, pressure: float) -> None:
+    if not BOILING_LOWEST <= temperature <= BOILING_HIGHEST:
+        rule, remedy = "the steam of an own fluid", "Leave this point out of the table."
+        refuse_temperature(rule, temperature, BOILING_LOWEST, BOILING_HIGHEST, remedy)
+    of_water = water.saturation_pressure(Temperature(temperature))
+    if not _LEAST_OF_WATER <= pressure / of_water <= _MOST_OF_WATER:
+        raise NotApplicable(
+            f"At {celsius(temperature)} degC {name} is stated to boil at {pressure / 1e5:.4g} bar absolute, "
+            f"water at {of_water / 1e5:.4g} bar. The method takes the vapour as steam, which asks for "
+            f"{_LEAST_OF_WATER:g} to {_MOST_OF_WATER:g} times the pressure of water.",
+            remedy="Check that the table is in absolute pressure, or use a fluid on a water base.",
+            facts={"temperature": temperature, "number": pressure, "water": of_water},
+        )
+
+
+def _density_curve(points: Points) -> MonotoneCurve:
+    table = _checked(points, "density")
+    low, high = _DENSITY_CREDIBLE
+    for (before, dense), (after, thin) in pairwise(table):
+        if thin >= dense and after > _MAY_RISE_BELOW:
+            raise Contradiction(
+                f"The density rises from {celsius(before)} to {celsius(after)} degC; "
+                "a liquid expands when heated.",
+                remedy="Check the table of densities.",
+            )
+    for temperature, density in table:
+        if not low <= density <= high:
+            raise Contradiction(
+                f"The density {density:.5g} kg/m3 at {celsius(temperature)} degC is not credible.",
+                remedy=f"State densities between {low:g} and {high:g} kg/m3.",
+            )
+    return MonotoneCurve(table)
+
+
+def _curve(points: Points, subject: str) -> MonotoneCurve:
+    return MonotoneCurve(_checked(points, subject))
+
+
+def _checked(points: Points, subject: str) -> list[tuple[float, float]]:
+    table = sorted(points)
+    if len(table) < _LEAST_POINTS:
+        raise Missing(
+            f"The {subject} is stated at {len(table)} temperatures; at least {_LEAST_POINTS} are needed.",
+            remedy="State more points, covering every temperature the loop reaches.",
+        )
+    if any(not isfinite(number) or number <= 0.0 for point in table for number in point):
+        raise Contradiction(f"The {subject} must be a positive number everywhere.", remedy="Check the table.")
+    for (before, _), (after, _) in pairwise(table):
+        if after - before < 0.01:
+            raise Contradiction(
+                f"The {subject} is stated twice at {celsius(after)} degC.",
+                remedy="State each temperature once.",
+            )
+    return table
