@@ -1,0 +1,213 @@
+"""What one connection may do to the server: a slow or surplus one is cut, an honest one is served."""
+
+from __future__ import annotations
+
+import json
+import socket
+import time
+from collections.abc import Iterator
+from contextlib import suppress
+from pathlib import Path
+
+import pytest
+
+from faults.server import Server, serving
+
+REQUEST = b"POST /echo HTTP/1.1\r\nHost: a\r\nContent-Length: 5\r\n\r\nhello"
+LIMITS = {
+    "LOOPSLACK_HEAD_SECONDS": "0.7",
+    "LOOPSLACK_BODY_SECONDS": "1.2",
+    "LOOPSLACK_READER_SECONDS": "0.8",
+    "LOOPSLACK_KEEPALIVE_SECONDS": "3",
+    "LOOPSLACK_CONNECTIONS": "8",
+}
+
+
+@pytest.fixture(scope="module", params=["python", "fast"])
+def server(request: pytest.FixtureRequest, tmp_path_factory: pytest.TempPathFactory) -> Iterator[Server]:
+    environment = dict(LIMITS, GUNICORN_CMD_ARGS=f"--http-parser {request.param}")
+    folder = tmp_path_factory.mktemp("server")
+    with serving(folder, "faults.small_app:app", environment=environment) as started:
+        yield started
+
+
+def read_until_closed(connection: socket.socket) -> tuple[bytes, float]:
+    """Everything the server still sends, and the seconds until it closed the connection."""
+    began = time.monotonic()
+    received = bytearray()
+    while piece := connection.recv(65536):
+        received += piece
+    return bytes(received), time.monotonic() - began
+
+
+def read_answer(connection: socket.socket) -> bytes:
+    """One answer of the small application, whose body is a single character."""
+    received = b""
+    while b"\r\n\r\n" not in received or received.endswith(b"\r\n\r\n"):
+        piece = connection.recv(4096)
+        assert piece, f"closed after {received!r}"
+        received += piece
+    return received
+
+
+def test_a_silent_connection_is_closed_without_a_word(server: Server) -> None:
+    with server.connect() as connection:
+        received, seconds = read_until_closed(connection)
+    assert received == b""
+    assert 0.5 < seconds < 2.0
+
+
+def test_half_a_request_head_is_answered_408_as_a_problem_document(server: Server) -> None:
+    with server.connect() as connection:
+        connection.sendall(REQUEST[:25])
+        received, seconds = read_until_closed(connection)
+    head, _, body = received.partition(b"\r\n\r\n")
+    assert head.startswith(b"HTTP/1.1 408 ")
+    assert b"Content-Type: application/problem+json" in head
+    assert json.loads(body)["status"] == 408
+    assert seconds < 2.0
+
+
+def test_a_head_sent_one_byte_at_a_time_gains_no_time(server: Server) -> None:
+    with server.connect() as connection:
+        connection.settimeout(0.1)
+        began = time.monotonic()
+        received = b""
+        while not received and time.monotonic() - began < 5.0:
+            connection.sendall(b"P")
+            with suppress(TimeoutError):
+                received = connection.recv(4096)
+        assert received.startswith(b"HTTP/1.1 408 ")
+        assert time.monotonic() - began < 2.0
+
+
+def test_half_of_a_later_request_on_a_kept_alive_connection_is_cut_too(server: Server) -> None:
+    with server.connect() as connection:
+        connection.sendall(REQUEST)
+        assert read_answer(connection).endswith(b"5")
+        connection.sendall(REQUEST[:25])
+        received, seconds = read_until_closed(connection)
+    assert received.startswith(b"HTTP/1.1 408 ")
+    assert seconds < 2.0
+
+
+def test_half_of_a_pipelined_request_is_cut_too(server: Server) -> None:
+    with server.connect() as connection:
+        connection.sendall(REQUEST + REQUEST[:25])
+        received, seconds = read_until_closed(connection)
+    assert received.startswith(b"HTTP/1.1 200 ")
+    assert b"HTTP/1.1 408 " in received
+    assert seconds < 2.0
+
+
+def test_an_idle_kept_alive_connection_outlives_the_limit_on_a_head(server: Server) -> None:
+    with server.connect() as connection:
+        connection.sendall(REQUEST)
+        read_answer(connection)
+        time.sleep(1.5)
+        connection.sendall(REQUEST)
+        assert read_answer(connection).startswith(b"HTTP/1.1 200 ")
+
+
+def test_a_body_that_drips_is_given_up_after_the_limit_on_the_whole_body(server: Server) -> None:
+    with server.connect() as connection:
+        connection.sendall(b"POST /echo HTTP/1.1\r\nHost: a\r\nContent-Length: 1000\r\n\r\n")
+        connection.settimeout(0.2)
+        began = time.monotonic()
+        received = b""
+        while not received and time.monotonic() - began < 5.0:
+            connection.sendall(b"x")
+            with suppress(TimeoutError):
+                received = connection.recv(4096)
+    assert received.startswith(b"HTTP/1.1 408 ")
+    assert 1.0 < time.monotonic() - began < 3.0
+
+
+def test_a_client_that_stops_reading_loses_the_connection(server: Server) -> None:
+    with server.connect() as connection:
+        connection.setsockopt(socket.SOL_SOCKET, socket.SO_RCVBUF, 8192)
+        connection.sendall(b"GET /large HTTP/1.1\r\nHost: a\r\n\r\n")
+        time.sleep(3.0)
+        received = 0
+        with suppress(ConnectionResetError):
+            while piece := connection.recv(65536):
+                received += len(piece)
+    assert received < 30_000_000
+
+
+def test_a_client_that_reads_slowly_gets_everything(server: Server) -> None:
+    with server.connect() as connection:
+        connection.sendall(b"GET /large HTTP/1.1\r\nHost: a\r\nConnection: close\r\n\r\n")
+        received = 0
+        while piece := connection.recv(262144):
+            received += len(piece)
+            time.sleep(0.02)
+    assert received > 30_000_000
+
+
+def test_a_half_closed_connection_still_gets_its_answer(server: Server) -> None:
+    with server.connect() as connection:
+        connection.sendall(REQUEST.replace(b"/echo", b"/slow"))
+        connection.shutdown(socket.SHUT_WR)
+        received, seconds = read_until_closed(connection)
+    assert received.startswith(b"HTTP/1.1 200 ")
+    assert received.endswith(b"5")
+    assert seconds < 2.0
+
+
+def test_a_connection_beyond_the_limit_is_refused_with_503_and_room_comes_back(server: Server) -> None:
+    held = [server.connect() for _ in range(8)]
+    try:
+        for connection in held:
+            connection.sendall(REQUEST)
+            read_answer(connection)
+        with server.connect() as surplus:
+            surplus.sendall(REQUEST)
+            received, seconds = read_until_closed(surplus)
+        head, _, body = received.partition(b"\r\n\r\n")
+        assert head.startswith(b"HTTP/1.1 503 ")
+        assert b"Retry-After: 1" in head
+        assert json.loads(body)["status"] == 503
+        assert seconds < 2.0
+    finally:
+        for connection in held:
+            connection.close()
+    time.sleep(0.3)
+    with server.connect() as connection:
+        connection.sendall(REQUEST)
+        assert read_answer(connection).startswith(b"HTTP/1.1 200 ")
+
+
+@pytest.mark.parametrize(
+    ("request_bytes", "status"),
+    [
+        (b"GET /" + b"x" * 5000 + b" HTTP/1.1\r\nHost: a\r\n\r\n", 414),
+        (b"GET / HTTP/1.1\r\nHost: a\r\nX: " + b"x" * 9000 + b"\r\n\r\n", 431),
+        (b"GET / HTTP/1.1\r\n" + b"A: b\r\n" * 60 + b"\r\n", 431),
+        (b"GET / HTTP/1.1\r\nHost: a\r\nBad Name: x\r\n\r\n", 400),
+        (b"POST / HTTP/1.1\r\nHost: a\r\nContent-Length: 5\r\nTransfer-Encoding: chunked\r\n\r\nhello", 400),
+        (b"\x16\x03\x01\x02\x00\x01\x00\x01\xfc\x03\x03\r\n\r\n", 400),
+    ],
+)
+def test_an_error_of_the_connection_itself_is_a_problem_document(
+    server: Server, request_bytes: bytes, status: int
+) -> None:
+    with server.connect() as connection:
+        connection.sendall(request_bytes)
+        received, _ = read_until_closed(connection)
+    head, _, body = received.partition(b"\r\n\r\n")
+    assert head.startswith(b"HTTP/1.1 %d " % status), head
+    assert b"Content-Type: application/problem+json" in head
+    assert json.loads(body)["status"] == status
+
+
+def test_a_graceful_stop_does_not_wait_for_idle_connections(tmp_path: Path) -> None:
+    application = "faults.small_app:app"
+    with serving(tmp_path, application) as started, started.connect() as idle, started.connect() as busy:
+        idle.sendall(REQUEST)
+        read_answer(idle)
+        busy.sendall(REQUEST.replace(b"/echo", b"/slow"))
+        time.sleep(0.1)
+        seconds = started.stop(within=8.0)
+        assert read_answer(busy).startswith(b"HTTP/1.1 200 ")
+    assert seconds < 4.0
