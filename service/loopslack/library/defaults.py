@@ -109,12 +109,12 @@ def choices() -> Mapping[str, Choice]:
 
 
 def default(key: str) -> Default:
-    """Look up a default number. KeyError for a key that the file does not have: a slip of ours, never of a caller."""
+    """Look up a default number. KeyError for a key that is not there, a slip of ours."""
     return defaults()[key]
 
 
 def choice(key: str) -> Choice:
-    """Look up a default word. KeyError for a key that the file does not have: a slip of ours, never of a caller."""
+    """Look up a default word. KeyError for a key that is not there, a slip of ours."""
     return choices()[key]
 
 
