@@ -1,0 +1,129 @@
+"""What a caller may demand of a design, and how the answer is to be given."""
+
+from typing import Annotated, Literal
+
+from msgspec import Meta
+
+from loopslack.contract.fields import quantity
+from loopslack.contract.quantity import (
+    Length,
+    Pressure,
+    PressureDifference,
+    Ratio,
+    Temperature,
+    TemperatureDifference,
+    Volume,
+)
+from loopslack.contract.questions_collectors import QuestionPart
+
+DoubtPolicy = Literal["single", "combined", "none"]
+UnitSystem = Literal["metric", "us"]
+RuleId = Literal[
+    "ashrae-diaphragm",
+    "ashrae-closed",
+    "us-mechanical-code",
+    "en-12828",
+    "collector-boil-off",
+    "en-12977",
+    "idae-asit",
+    "ufc",
+    "steam-range",
+    "mass-balance",
+]
+Extra = Literal["rules", "remedies", "sensitivity", "course", "derivation"]
+Rules = Annotated[list[RuleId], Meta(min_length=1, max_length=10)]
+Include = Annotated[list[Extra], Meta(max_length=5)]
+
+
+class Criteria(QuestionPart, frozen=True, kw_only=True):
+    """What must hold. Each has a default of the trade, listed in the answer when it is used."""
+
+    reserve: Annotated[
+        Volume | None,
+        quantity(
+            "Liquid the vessel must still hold when cold. If absent, by EN 12828: 0.5 % of the content, at "
+            "least 3 L; "
+            "a fifth of the nominal volume for vessels up to 15 L.",
+            3,
+            "L",
+            0,
+            5000,
+        ),
+    ] = None
+    top_pressure: Annotated[
+        Pressure | None,
+        quantity("Least pressure at the highest point when cold. If absent, 0.5 barg.", 0.5, "barg", 0, 6),
+    ] = None
+    window_width: Annotated[
+        PressureDifference | None,
+        quantity("Least width of the fill window. If absent, 0.3 bar.", 0.3, "bar", 0, 5),
+    ] = None
+    fill_above_precharge: Annotated[
+        PressureDifference | None,
+        quantity("Least distance from precharge to fill pressure. If absent, 0.3 bar.", 0.3, "bar", 0, 3),
+    ] = None
+    window_edge_distance: Annotated[
+        PressureDifference | None,
+        quantity(
+            "Least distance of the recommended fill from either edge of the window. If absent, 0.1 bar.",
+            0.1,
+            "bar",
+            0,
+            1,
+        ),
+    ] = None
+    boiling_margin: Annotated[
+        PressureDifference | None,
+        quantity(
+            "Least distance from boiling while the pump runs at its cut-off temperature. If absent, 0.3 bar.",
+            0.3,
+            "bar",
+            0,
+            5,
+        ),
+    ] = None
+    membrane_limit: Annotated[
+        Temperature | None,
+        quantity("Highest lasting membrane temperature. If absent, 70 degC.", 70, "degC", 30, 150),
+    ] = None
+    freeze_margin: Annotated[
+        TemperatureDifference | None,
+        quantity("Least distance from site minimum to freezing point. If absent, 5 K.", 5, "K", 0, 30),
+    ] = None
+    fluid_allowance: Annotated[
+        Ratio | None,
+        quantity(
+            "Doubt in fluid data as a share of the content. If absent, 0.5 percent.", 0.5, "percent", 0, 5
+        ),
+    ] = None
+    degradation_limit: Annotated[
+        Temperature | None,
+        quantity("Temperature above which glycol degrades. If absent, 160 degC.", 160, "degC", 100, 300),
+    ] = None
+    stagnation_doubt: Annotated[
+        TemperatureDifference | None,
+        quantity(
+            "How much hotter than computed the collectors may stagnate. If absent, 15 K.", 15, "K", 5, 60
+        ),
+    ] = None
+
+
+class Tolerances(QuestionPart, frozen=True, kw_only=True):
+    """How far inputs may be off either way. The answer gives the band that follows."""
+
+    pipe_length: Annotated[Ratio | None, quantity("Of all pipe lengths.", 10, "percent", 0, 100)] = None
+    collector_content: Annotated[
+        Ratio | None, quantity("Of the collectors' content.", 10, "percent", 0, 100)
+    ] = None
+    insulation_conductivity: Annotated[
+        Ratio | None, quantity("Of the insulation's conductivity.", 25, "percent", 0, 100)
+    ] = None
+    steam_power: Annotated[Ratio | None, quantity("Of the steam power.", 25, "percent", 0, 100)] = None
+    stagnation_temperature: Annotated[
+        TemperatureDifference | None, quantity("Of the stagnation temperature.", 10, "K", 0, 60)
+    ] = None
+    static_height: Annotated[Length | None, quantity("Of the static height.", 1, "m", 0, 50)] = None
+    fill_pressure: Annotated[
+        PressureDifference | None, quantity("Of the fill pressure.", 0.1, "bar", 0, 2)
+    ] = None
+    precharge: Annotated[PressureDifference | None, quantity("Of the precharge.", 0.1, "bar", 0, 2)] = None
