@@ -1,0 +1,116 @@
+"""Examples: questions that were really asked and the answers they really got.
+
+They are files under `openapi/examples`, one folder per operation, `NAME.question.json` beside
+`NAME.answer.json`, and an `index.json` with a title and a sentence for each. A test sends every question to
+the service and compares the answer. Here they are read, put on their operations, and drawn on for an example
+of every schema, so that a reader sees the same roof everywhere. Must not live here: any number of its own.
+"""
+
+from __future__ import annotations
+
+import json
+from collections.abc import Mapping
+from pathlib import Path
+from typing import Any
+
+import msgspec
+
+Schema = dict[str, Any]
+MOST_CHARACTERS = 2_000
+"""Longest example of a schema, as compact JSON; what is larger is shown at its operation."""
+
+
+class Example(msgspec.Struct, frozen=True, kw_only=True, forbid_unknown_fields=True):
+    """One entry of `index.json`."""
+
+    operation: str
+    name: str
+    title: str
+    sentence: str
+    status: int = 200
+
+
+class ExampleBook:
+    """The examples of a folder. A folder without an index has none."""
+
+    def __init__(self, folder: Path) -> None:
+        index = folder / "index.json"
+        self.entries = (
+            msgspec.json.decode(index.read_bytes(), type=list[Example], strict=True) if index.exists() else []
+        )
+        self._folder = folder
+
+    def of(self, operation: str, status: int | None = None) -> list[Example]:
+        """Examples of one operation, all or those answered with one status."""
+        return [
+            entry
+            for entry in self.entries
+            if entry.operation == operation and (status is None or entry.status == status)
+        ]
+
+    def question(self, entry: Example) -> object:
+        """What is sent; `None` for an operation that takes no body."""
+        return self._read(entry, "question")
+
+    def answer(self, entry: Example) -> object:
+        """What comes back; `None` where the answer is no JSON."""
+        return self._read(entry, "answer")
+
+    def _read(self, entry: Example, part: str) -> object:
+        path = self._folder / entry.operation / f"{entry.name}.{part}.json"
+        return json.loads(path.read_bytes()) if path.exists() else None
+
+
+class Harvest:
+    """Finds an example for every named schema inside the examples of the operations."""
+
+    def __init__(self, schemas: Mapping[str, Schema]) -> None:
+        self._schemas = schemas
+        self.found: dict[str, object] = {}
+
+    def gather(self, schema: Schema, value: object) -> None:
+        """Walk a value along its schema and keep the first value of every named schema on the way."""
+        if "$ref" in schema:
+            name = schema["$ref"].rsplit("/", 1)[-1]
+            self._keep(name, value)
+            schema = self._schemas[name]
+        if "oneOf" in schema and isinstance(value, dict):
+            discriminator = schema["discriminator"]
+            target = discriminator["mapping"].get(value.get(discriminator["propertyName"]))
+            if target:
+                self.gather({"$ref": target}, value)
+        if isinstance(value, dict):
+            members = schema.get("properties", {})
+            for key, member in value.items():
+                if key in members:
+                    self.gather(members[key], member)
+                elif isinstance(schema.get("additionalProperties"), dict):
+                    self.gather(schema["additionalProperties"], member)
+        elif isinstance(value, list) and "items" in schema:
+            for item in value:
+                self.gather(schema["items"], item)
+
+    def _keep(self, name: str, value: object) -> None:
+        if name not in self.found and "enum" not in self._schemas[name]:
+            shortened = _shortened(value)
+            if len(json.dumps(shortened)) <= MOST_CHARACTERS:
+                self.found[name] = shortened
+
+    def place(self) -> list[str]:
+        """Put what was found on its schemas; the names of those without any example come back."""
+        bare = []
+        for name, schema in self._schemas.items():
+            if name in self.found:
+                schema["examples"] = [self.found[name]]
+            elif "examples" not in schema:
+                bare.append(name)
+        return bare
+
+
+def _shortened(value: object) -> object:
+    """The value with lists cut to their first entry, enough to show what an entry looks like."""
+    if isinstance(value, dict):
+        return {key: _shortened(member) for key, member in value.items()}
+    if isinstance(value, list):
+        return [_shortened(item) for item in value[:1]]
+    return value
