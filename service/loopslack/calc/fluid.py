@@ -6,7 +6,7 @@ Fluids are immutable in use and cached by their exact strength, so that a repeat
 from collections.abc import Sequence
 from functools import lru_cache
 
-from loopslack.calc.fluids_base import Fluid, FluidKind, Vapour, celsius
+from loopslack.calc.fluids_base import ROUNDING, ZERO_CELSIUS, Fluid, FluidKind, Vapour, celsius
 from loopslack.calc.fluids_glycol import (
     FREEZING_STRENGTH_HIGHEST,
     STRENGTH_HIGHEST,
@@ -76,15 +76,20 @@ def strength_protecting_to(kind: GlycolKind, temperature: float, margin: float =
     """
     wanted = temperature - margin
     coldest = warmer_freezing_point(kind, FREEZING_STRENGTH_HIGHEST)
-    if not wanted >= coldest:
+    if not wanted >= coldest - ROUNDING:
         raise OutOfRange(
             f"Protection to {celsius(temperature)} degC with a margin of {margin:g} K asks for a freezing "
             f"point of {celsius(wanted)} degC; {kind.replace('-', ' ')} reaches {celsius(coldest)} degC at "
             "60 % by mass, where its freezing curve ends.",
             remedy="Ask for less protection, or choose a glycol that freezes lower.",
-            facts={"number": wanted, "low": coldest, "high": 273.15, "rule": f"freezing point of {kind}"},
+            facts={
+                "number": wanted,
+                "low": coldest,
+                "high": ZERO_CELSIUS,
+                "rule": f"freezing point of {kind}",
+            },
         )
-    return 0.0 if wanted >= 273.15 else strength_freezing_at(kind, wanted)
+    return 0.0 if wanted >= ZERO_CELSIUS else strength_freezing_at(kind, wanted)
 
 
 def glycol_protecting_to(kind: GlycolKind, temperature: float, margin: float = 0.0) -> Fluid:
@@ -103,9 +108,10 @@ def own_fluid(
 ) -> Fluid:
     """A caller's own fluid by table.
 
-    Points of density are (K, kg/m3), of boiling (K, Pa absolute) unless it boils like a known glycol. Heat capacity (J/(kg K)) and viscosity (Pa s) are optional; asking for one that was not stated raises
-    ``Missing``. Raises ``Missing`` for fewer than three points of a table, ``Contradiction`` for a table that
-    cannot be true, ``NotApplicable`` for a fluid whose vapour cannot be steam.
+    Points of density are (K, kg/m3), of boiling (K, Pa absolute) unless it boils like a known glycol. Heat
+    capacity (K, J/(kg K)) and viscosity (K, Pa s) are optional; ``Missing`` when asked for without a table.
+    Raises ``Missing`` for fewer than three points, ``Contradiction`` for a table that cannot be true,
+    ``NotApplicable`` for a fluid whose vapour cannot be steam.
     """
     reference = glycol(boiling.kind, boiling.mass_fraction) if isinstance(boiling, BoilsLike) else boiling
     return OwnFluid(

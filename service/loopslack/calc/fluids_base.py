@@ -17,6 +17,9 @@ BOILING_LOWEST = 278.15
 BOILING_HIGHEST = 485.15
 ZERO_CELSIUS = 273.15
 
+ROUNDING = 1e-9
+"""Kelvin by which a temperature may miss a limit: -40 degC, converted, is 233.14999999999998 K."""
+
 
 class Vapour(Struct, frozen=True, kw_only=True):
     """Vapour in equilibrium with the liquid at its bubble point; Pa, kg/m3, J per kg of vapour formed."""
@@ -41,6 +44,10 @@ class Fluid(ABC):
     """
 
     __slots__ = (
+        "_boiling_high",
+        "_boiling_low",
+        "_liquid_high",
+        "_liquid_low",
         "boiling_highest",
         "boiling_lowest",
         "freezing_is_bound",
@@ -71,6 +78,16 @@ class Fluid(ABC):
     highest_pressure: float
     water_activity: float
     glycol_activity: float
+    _liquid_low: float
+    _liquid_high: float
+    _boiling_low: float
+    _boiling_high: float
+
+    def _bound(self, liquid: tuple[float, float], boiling: tuple[float, float]) -> None:
+        """Set the ranges, as stated and with room for rounding, so that a check is one comparison."""
+        (self.lowest, self.highest), (self.boiling_lowest, self.boiling_highest) = liquid, boiling
+        self._liquid_low, self._liquid_high = self.lowest - ROUNDING, self.highest + ROUNDING
+        self._boiling_low, self._boiling_high = boiling[0] - ROUNDING, boiling[1] + ROUNDING
 
     @abstractmethod
     def density(self, temperature: float) -> float:

@@ -7,6 +7,7 @@ constants.
 from loopslack.calc.fluids_base import (
     BOILING_HIGHEST,
     BOILING_LOWEST,
+    ROUNDING,
     Fluid,
     Vapour,
     refuse_temperature,
@@ -16,6 +17,7 @@ from loopslack.kernel.errors import OutOfRange
 from loopslack.kernel.kinds import Coefficients, Density, MassFraction, MolarMass, Temperature
 from loopslack.library.fluids import GlycolKind, glycol_data, water_data
 from loopslack.physics import mixture, mixture_vapour, water
+from loopslack.physics.mixture import HALF_SPAN, MIDDLE
 
 STRENGTH_HIGHEST = 0.63
 """Mass fraction to which density and boiling were fitted: 60 % by volume of either glycol lies below it."""
@@ -31,7 +33,7 @@ _TWENTY_DEGREES = 293.15
 
 def pure_density_at_20(kind: GlycolKind) -> float:
     """Density in kg/m3 of the pure glycol at 20 degC: the glycol of a strength by volume."""
-    x = (_TWENTY_DEGREES - mixture.MIDDLE) / mixture.HALF_SPAN
+    x = (_TWENTY_DEGREES - MIDDLE) / HALF_SPAN
     return 1000.0 / mixture.polynomial(glycol_data(kind).specific_volume, x)
 
 
@@ -78,22 +80,21 @@ class Glycol(Fluid):
         self.water_activity, self.glycol_activity = self._activity
         a, b, c = data.antoine
         self._antoine = (a, b, c)
-        self.boiling_lowest, self.boiling_highest = BOILING_LOWEST, BOILING_HIGHEST
         self._start = start_of(self._bubble)
         self.lowest_pressure = self._bubble(BOILING_LOWEST)
         self.highest_pressure = self._bubble(BOILING_HIGHEST)
 
     def density(self, temperature: float) -> float:
         """See ``Fluid``."""
-        if not self.lowest <= temperature <= self.highest:
+        if not self._liquid_low <= temperature <= self._liquid_high:
             self.refuse_liquid(temperature)
-        x = (temperature - 363.15) / 110.0
+        x = (temperature - MIDDLE) / HALF_SPAN
         a, b, c, d, e, f, g = self._volume
         return 1.0 / (a + x * (b + x * (c + x * (d + x * (e + x * (f + x * g))))))
 
     def saturated(self, temperature: float) -> tuple[float, float]:
         """See ``Fluid``."""
-        if not self.boiling_lowest <= temperature <= self.boiling_highest:
+        if not self._boiling_low <= temperature <= self._boiling_high:
             self.refuse_boiling(temperature)
         return mixture_vapour.saturated(
             Temperature(temperature), self._activity, self._antoine, self._molar_mass
@@ -125,7 +126,7 @@ class Glycol(Fluid):
 
     def heat_capacity(self, temperature: float) -> float:
         """See ``Fluid``."""
-        if not self.lowest <= temperature <= self.highest:
+        if not self._liquid_low <= temperature <= self._liquid_high:
             self.refuse_liquid(temperature, "heat capacity")
         return mixture.heat_capacity(
             Temperature(temperature),
@@ -136,7 +137,7 @@ class Glycol(Fluid):
 
     def viscosity(self, temperature: float) -> float:
         """See ``Fluid``."""
-        if not self.lowest <= temperature <= _VISCOSITY_HIGHEST:
+        if not self._liquid_low <= temperature <= _VISCOSITY_HIGHEST + ROUNDING:
             refuse_temperature(
                 f"viscosity of {self.name}",
                 temperature,
@@ -153,11 +154,11 @@ class Glycol(Fluid):
 
     def ice_fraction(self, temperature: float) -> float:
         """Mass fraction of ice; refused colder than the freezing point of 60 %, where the curves end."""
-        if temperature >= self.freezing_point:
+        if temperature >= self.freezing_point - ROUNDING:
             return 0.0
         kind = self.glycol_kind
         coldest = warmer_freezing_point(kind, FREEZING_STRENGTH_HIGHEST)
-        if self.freezing_is_bound or not temperature >= coldest:
+        if self.freezing_is_bound or not temperature >= coldest - ROUNDING:
             refuse_temperature(
                 f"the ice fraction of {kind.replace('-', ' ')}",
                 temperature,
@@ -179,8 +180,8 @@ class Glycol(Fluid):
         self.freezing_is_bound = self.mass_fraction > FREEZING_STRENGTH_HIGHEST
         known = min(self.mass_fraction, FREEZING_STRENGTH_HIGHEST)
         self.freezing_point = warmer_freezing_point(kind, known)
-        self.lowest = max(_LIQUID_LOWEST, self.freezing_point)
-        self.highest = _LIQUID_HIGHEST
+        lowest = max(_LIQUID_LOWEST, self.freezing_point)
+        self._bound((lowest, _LIQUID_HIGHEST), (BOILING_LOWEST, BOILING_HIGHEST))
 
 
 def strength_freezing_at(kind: GlycolKind, temperature: float) -> float:

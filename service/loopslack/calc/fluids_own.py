@@ -13,6 +13,7 @@ from msgspec import Struct
 from loopslack.calc.fluids_base import (
     BOILING_HIGHEST,
     BOILING_LOWEST,
+    ROUNDING,
     Fluid,
     Vapour,
     celsius,
@@ -59,31 +60,30 @@ class OwnFluid(Fluid):
         self.kind, self.name = "own", name
         self._density = _density_curve(points)
         self.freezing_point, self.freezing_is_bound = freezing_point, False
-        self.lowest = max(self._density.first, freezing_point)
-        self.highest = self._density.last
-        if not self.lowest < self.highest:
+        lowest = max(self._density.first, freezing_point)
+        if not lowest < self._density.last:
             raise Contradiction(
                 f"The freezing point, {celsius(freezing_point)} degC, lies above every density of {name}.",
                 remedy="State densities of the liquid.",
             )
         self.like: Fluid | None = None
         self._bubble: MonotoneCurve | None = None
-        if isinstance(boiling, Fluid):
-            self._boil_like(boiling)
-        else:
-            self._boil_by_table(boiling)
+        self._bound(
+            (lowest, self._density.last),
+            self._boil_like(boiling) if isinstance(boiling, Fluid) else self._boil_by_table(boiling),
+        )
         self._heat_capacity = _curve(heat_capacity, f"heat capacity of {name}") if heat_capacity else None
         self._viscosity = _curve(viscosity, f"viscosity of {name}") if viscosity else None
 
     def density(self, temperature: float) -> float:
         """See ``Fluid``."""
-        if not self.lowest <= temperature <= self.highest:
+        if not self._liquid_low <= temperature <= self._liquid_high:
             self.refuse_liquid(temperature)
         return self._density.at(temperature)
 
     def saturated(self, temperature: float) -> tuple[float, float]:
         """See ``Fluid``."""
-        if not self.boiling_lowest <= temperature <= self.boiling_highest:
+        if not self._boiling_low <= temperature <= self._boiling_high:
             self.refuse_boiling(temperature)
         if self._bubble is None:
             return self._reference().saturated(temperature)
@@ -124,7 +124,7 @@ class OwnFluid(Fluid):
 
     def ice_fraction(self, temperature: float) -> float:
         """See ``Fluid``."""
-        if temperature >= self.freezing_point:
+        if temperature >= self.freezing_point - ROUNDING:
             return 0.0
         raise Missing(
             f"How much of {self.name} freezes is not known: a freezing point alone does not tell.",
@@ -138,7 +138,7 @@ class OwnFluid(Fluid):
                 f"The {subject} of {self.name} was not stated.", remedy=f"State the {subject} by table."
             )
         low, high = max(curve.first, self.freezing_point), curve.last
-        if not low <= temperature <= high:
+        if not low - ROUNDING <= temperature <= high + ROUNDING:
             rule = f"{subject} of {self.name}"
             refuse_temperature(rule, temperature, low, high, "State a table that covers it.")
         return curve.at(temperature)
@@ -148,14 +148,14 @@ class OwnFluid(Fluid):
             raise AssertionError("an own fluid without a bubble table boils like another")
         return self.like
 
-    def _boil_like(self, reference: Fluid) -> None:
+    def _boil_like(self, reference: Fluid) -> tuple[float, float]:
         self.like = reference
         self.mass_fraction, self.volume_fraction = reference.mass_fraction, reference.volume_fraction
         self.water_activity, self.glycol_activity = reference.water_activity, reference.glycol_activity
-        self.boiling_lowest, self.boiling_highest = reference.boiling_lowest, reference.boiling_highest
         self.lowest_pressure, self.highest_pressure = reference.lowest_pressure, reference.highest_pressure
+        return reference.boiling_lowest, reference.boiling_highest
 
-    def _boil_by_table(self, points: Points) -> None:
+    def _boil_by_table(self, points: Points) -> tuple[float, float]:
         self.mass_fraction = self.volume_fraction = self.glycol_activity = 0.0
         self.water_activity = 1.0
         table = _checked(points, f"bubble pressure of {self.name}")
@@ -167,12 +167,12 @@ class OwnFluid(Fluid):
             raise Contradiction(
                 f"The bubble pressure of {self.name} must rise with temperature.", remedy="Check the table."
             )
-        self.boiling_lowest, self.boiling_highest = table[0][0], table[-1][0]
         self.lowest_pressure, self.highest_pressure = table[0][1], table[-1][1]
+        return table[0][0], table[-1][0]
 
 
 def _must_be_steam(name: str, temperature: float, pressure: float) -> None:
-    if not BOILING_LOWEST <= temperature <= BOILING_HIGHEST:
+    if not BOILING_LOWEST - ROUNDING <= temperature <= BOILING_HIGHEST + ROUNDING:
         rule, remedy = "the steam of an own fluid", "Leave this point out of the table."
         refuse_temperature(rule, temperature, BOILING_LOWEST, BOILING_HIGHEST, remedy)
     of_water = water.saturation_pressure(Temperature(temperature))

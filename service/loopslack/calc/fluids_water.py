@@ -1,8 +1,11 @@
 """Water as a fluid of the calculation."""
 
+from typing import NoReturn
+
 from loopslack.calc.fluids_base import (
     BOILING_HIGHEST,
     BOILING_LOWEST,
+    ROUNDING,
     ZERO_CELSIUS,
     Fluid,
     Vapour,
@@ -14,6 +17,7 @@ from loopslack.library.fluids import glycol_data, water_data
 from loopslack.physics import mixture
 from loopslack.physics import water as law
 
+LIQUID_HIGHEST = 488.15
 HEAT_CAPACITY_HIGHEST = 473.15
 VISCOSITY_HIGHEST = 398.15
 
@@ -27,23 +31,22 @@ class Water(Fluid):
         self.kind, self.name = "water", "water"
         self.mass_fraction = self.volume_fraction = self.glycol_activity = 0.0
         self.water_activity = 1.0
-        self.freezing_point = self.lowest = ZERO_CELSIUS
+        self.freezing_point = ZERO_CELSIUS
         self.freezing_is_bound = False
-        self.highest = 488.15
-        self.boiling_lowest, self.boiling_highest = BOILING_LOWEST, BOILING_HIGHEST
+        self._bound((ZERO_CELSIUS, LIQUID_HIGHEST), (BOILING_LOWEST, BOILING_HIGHEST))
         self._start = start_of(lambda temperature: law.saturation_pressure(Temperature(temperature)))
         self.lowest_pressure = law.saturation_pressure(Temperature(BOILING_LOWEST))
         self.highest_pressure = law.saturation_pressure(Temperature(BOILING_HIGHEST))
 
     def density(self, temperature: float) -> float:
         """See ``Fluid``."""
-        if not self.lowest <= temperature <= self.highest:
+        if not self._liquid_low <= temperature <= self._liquid_high:
             self.refuse_liquid(temperature)
         return law.liquid_density(Temperature(temperature))
 
     def saturated(self, temperature: float) -> tuple[float, float]:
         """See ``Fluid``."""
-        if not self.boiling_lowest <= temperature <= self.boiling_highest:
+        if not self._boiling_low <= temperature <= self._boiling_high:
             self.refuse_boiling(temperature)
         at = Temperature(temperature)
         return law.saturation_pressure(at), law.vapour_density(at)
@@ -69,7 +72,7 @@ class Water(Fluid):
 
     def heat_capacity(self, temperature: float) -> float:
         """See ``Fluid``."""
-        if not self.lowest <= temperature <= HEAT_CAPACITY_HIGHEST:
+        if not self._liquid_low <= temperature <= HEAT_CAPACITY_HIGHEST + ROUNDING:
             self._refuse("heat capacity", temperature, HEAT_CAPACITY_HIGHEST)
         # At a strength of nought the glycol's coefficients drop out of the law, whichever glycol lends them.
         mixing = glycol_data("propylene-glycol").heat_capacity
@@ -79,16 +82,16 @@ class Water(Fluid):
 
     def viscosity(self, temperature: float) -> float:
         """See ``Fluid``."""
-        if not self.lowest <= temperature <= VISCOSITY_HIGHEST:
+        if not self._liquid_low <= temperature <= VISCOSITY_HIGHEST + ROUNDING:
             self._refuse("viscosity", temperature, VISCOSITY_HIGHEST)
         mixing = glycol_data("propylene-glycol").viscosity
         return mixture.viscosity(Temperature(temperature), MassFraction(0.0), water_data().viscosity, mixing)
 
     def ice_fraction(self, temperature: float) -> float:
         """See ``Fluid``."""
-        return 0.0 if temperature >= self.freezing_point else 1.0
+        return 0.0 if temperature >= self.freezing_point - ROUNDING else 1.0
 
-    def _refuse(self, subject: str, temperature: float, highest: float) -> None:
+    def _refuse(self, subject: str, temperature: float, highest: float) -> NoReturn:
         refuse_temperature(
             f"{subject} of water", temperature, self.lowest, highest, "Keep the liquid within that range."
         )

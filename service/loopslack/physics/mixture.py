@@ -162,7 +162,7 @@ def viscosity(
 def mass_fraction_of(
     volume_fraction: VolumeFraction, glycol_density: Density, water_density: Density
 ) -> MassFraction:
-    """Strength by mass of a strength by volume; shrinking on mixing does not enter, the volumes are unmixed."""
+    """Strength by mass of a strength by volume; the volumes are unmixed, so shrinking does not enter."""
     glycol = volume_fraction * glycol_density
     return MassFraction(glycol / (glycol + (1.0 - volume_fraction) * water_density))
 

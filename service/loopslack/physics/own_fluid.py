@@ -32,8 +32,8 @@ class MonotoneCurve:
         ]
 
     def at(self, x: float) -> float:
-        """Value at an ``x`` of the table's range; the ends of the range included."""
-        piece = min(bisect_right(self.xs, x) - 1, len(self._pieces) - 1)
+        """Value at an ``x`` of the table's range; the ends included, a rounding error past them too."""
+        piece = min(max(bisect_right(self.xs, x) - 1, 0), len(self._pieces) - 1)
         a, b, c, d = self._pieces[piece]
         h = x - self.xs[piece]
         return a + h * (b + h * (c + h * d))
@@ -44,7 +44,7 @@ class MonotoneCurve:
         Newton's steps within the piece, each kept inside a bracket that shrinks, so that a flat end cannot
         mislead.
         """
-        piece = min(bisect_right(self.ys, y) - 1, len(self._pieces) - 1)
+        piece = min(max(bisect_right(self.ys, y) - 1, 0), len(self._pieces) - 1)
         a, b, c, d = self._pieces[piece]
         low, high = 0.0, self.xs[piece + 1] - self.xs[piece]
         h = high * (y - a) / (self.ys[piece + 1] - a)
