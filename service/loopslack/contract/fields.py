@@ -13,7 +13,8 @@ from msgspec.structs import fields as fields_of
 from loopslack.contract import quantity as q
 from loopslack.kernel import kinds
 from loopslack.kernel.kinds import Kind
-from loopslack.kernel.units import ABSOLUTE_UNITS, GAUGE_UNITS, scale_of
+from loopslack.kernel.units import ABSOLUTE_UNITS, GAUGE_UNITS, from_si, scale_of
+from loopslack.library.defaults import default
 
 Lines = dict[str, tuple[float, float]]
 
@@ -23,6 +24,13 @@ _KIND_OF_STRUCT: dict[type[q.Quantity], Kind] = {
 _KIND_OF_STRUCT[q.Pressure] = kinds.GAUGE_PRESSURE  # every pressure of a question is read as gauge
 _KIND_OF_STRUCT[q.Volume] = kinds.VOLUME
 _KIND_OF_STRUCT[q.Ratio] = kinds.RATIO
+
+
+def trade(key: str) -> str:
+    """Write a default of the trade as the trade does, so that no description can differ from what is done."""
+    known = default(key)
+    shown = from_si(known.si, known.unit, known.kind)
+    return f"{shown:g}" if known.unit == "1" else f"{shown:.6g} {known.unit}"
 
 
 def text(description: str, *examples: object) -> Meta:

@@ -4,12 +4,13 @@ from typing import Annotated, Literal
 
 from msgspec import Meta, Struct
 
-from loopslack.contract.fields import quantity, text
+from loopslack.contract.fields import quantity, text, trade
 from loopslack.contract.quantity import (
     Area,
     HeatLossCoefficient,
     Irradiance,
     Length,
+    Pressure,
     QuadraticHeatLossCoefficient,
     Temperature,
     Volume,
@@ -105,6 +106,10 @@ class CollectorGroup(QuestionPart, frozen=True, kw_only=True):
         Irradiance | None,
         quantity("Measured steam power per aperture area, instead of `emptyingClass`.", 60, "W/m2", 5, 600),
     ] = None
+    rated_pressure: Annotated[
+        Pressure | None,
+        quantity("Highest permitted pressure of the collectors. Never assumed.", 10, "barg", 0.5, 100),
+    ] = None
     height: Annotated[
         Length | None,
         quantity("Height above the vessel connection. If absent, `staticHeight`.", 11, "m", -150, 150),
@@ -112,7 +117,8 @@ class CollectorGroup(QuestionPart, frozen=True, kw_only=True):
     steam_space: Annotated[
         Label | None,
         text(
-            "Groups and pipe runs of the same name share their steam. If absent everywhere, all do.",
+            "Groups and pipe runs of the same name share their steam. Stated everywhere or nowhere; if "
+            "nowhere, all do.",
             "south roof",
         ),
     ] = None
@@ -123,8 +129,15 @@ class DesignSun(QuestionPart, frozen=True, kw_only=True):
 
     irradiance: Annotated[
         Irradiance | None,
-        quantity("Irradiance on the collector plane. If absent, 1000 W/m2.", 1000, "W/m2", 200, 1500),
+        quantity(
+            f"Irradiance on the collector plane. If absent, {trade('design-irradiance')}.",
+            1000,
+            "W/m2",
+            200,
+            1500,
+        ),
     ] = None
     ambient: Annotated[
-        Temperature | None, quantity("Air temperature. If absent, 30 degC.", 30, "degC", -20, 60)
+        Temperature | None,
+        quantity(f"Air temperature. If absent, {trade('design-ambient')}.", 30, "degC", -20, 60),
     ] = None

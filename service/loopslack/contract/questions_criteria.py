@@ -4,7 +4,7 @@ from typing import Annotated, Literal
 
 from msgspec import Meta
 
-from loopslack.contract.fields import quantity
+from loopslack.contract.fields import quantity, trade
 from loopslack.contract.quantity import (
     Length,
     Pressure,
@@ -52,20 +52,21 @@ class Criteria(QuestionPart, frozen=True, kw_only=True):
     ] = None
     top_pressure: Annotated[
         Pressure | None,
-        quantity("Least pressure at the highest point when cold. If absent, 0.5 barg.", 0.5, "barg", 0, 6),
-    ] = None
+        quantity(f"Least pressure at the highest point when cold. If absent,
+        {trade('minimum-top-pressure')}.", 0.5, "barg", 0, 6), ] = None
     window_width: Annotated[
         PressureDifference | None,
-        quantity("Least width of the fill window. If absent, 0.3 bar.", 0.3, "bar", 0, 5),
-    ] = None
+        quantity(f"Least width of the fill window. If absent, {trade('fill-window-width')}.", 0.3, "bar", 0,
+        5), ] = None
     fill_above_precharge: Annotated[
         PressureDifference | None,
-        quantity("Least distance from precharge to fill pressure. If absent, 0.3 bar.", 0.3, "bar", 0, 3),
-    ] = None
+        quantity(f"Least distance from precharge to fill pressure. If absent,
+        {trade('fill-above-precharge')}.", 0.3, "bar", 0, 3), ] = None
     window_edge_distance: Annotated[
         PressureDifference | None,
         quantity(
-            "Least distance of the recommended fill from either edge of the window. If absent, 0.1 bar.",
+            f"Least distance of the recommended fill from either edge of the window. If absent, "
+            f"{trade('fill-above-lower-bound')}.",
             0.1,
             "bar",
             0,
@@ -75,7 +76,8 @@ class Criteria(QuestionPart, frozen=True, kw_only=True):
     boiling_margin: Annotated[
         PressureDifference | None,
         quantity(
-            "Least distance from boiling while the pump runs at its cut-off temperature. If absent, 0.3 bar.",
+            f"Least distance from boiling while the pump runs at its cut-off temperature. If absent, "
+            f"{trade('boiling-margin')}.",
             0.3,
             "bar",
             0,
@@ -84,26 +86,28 @@ class Criteria(QuestionPart, frozen=True, kw_only=True):
     ] = None
     membrane_limit: Annotated[
         Temperature | None,
-        quantity("Highest lasting membrane temperature. If absent, 70 degC.", 70, "degC", 30, 150),
-    ] = None
+        quantity(f"Highest lasting membrane temperature. If absent, {trade('membrane-limit')}.", 70, "degC",
+        30, 150), ] = None
     freeze_margin: Annotated[
         TemperatureDifference | None,
-        quantity("Least distance from site minimum to freezing point. If absent, 5 K.", 5, "K", 0, 30),
-    ] = None
+        quantity(f"Least distance from site minimum to freezing point. If absent,
+        {trade('freezing-margin')}.", 5, "K", 0, 30), ] = None
     fluid_allowance: Annotated[
         Ratio | None,
         quantity(
-            "Doubt in fluid data as a share of the content. If absent, 0.5 percent.", 0.5, "percent", 0, 5
+            f"Doubt in fluid data as a share of the content. If absent, {trade('fluid-data-allowance')}.", "
+            f"0.5, "percent", 0, 5
         ),
     ] = None
     degradation_limit: Annotated[
         Temperature | None,
-        quantity("Temperature above which glycol degrades. If absent, 160 degC.", 160, "degC", 100, 300),
-    ] = None
+        quantity(f"Temperature above which glycol degrades. If absent, {trade('degradation-temperature')}.",
+        160, "degC", 100, 300), ] = None
     stagnation_doubt: Annotated[
         TemperatureDifference | None,
         quantity(
-            "How much hotter than computed the collectors may stagnate. If absent, 15 K.", 15, "K", 5, 60
+            f"How much hotter than computed the collectors may stagnate. If absent, "
+            f"{trade('doubt-stagnation-shift')}.", 15, "K", 5, 60
         ),
     ] = None
 

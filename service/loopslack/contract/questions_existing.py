@@ -4,7 +4,7 @@ from typing import Annotated, Literal
 
 from msgspec import Meta
 
-from loopslack.contract.fields import quantity, text
+from loopslack.contract.fields import quantity, text, trade
 from loopslack.contract.quantity import Irradiance, Pressure, Ratio, Temperature, TimeSpan
 from loopslack.contract.questions import StagnationCheckQuestion, VesselQuestion
 from loopslack.contract.questions_collectors import QuestionPart
@@ -112,7 +112,13 @@ class MeasuredPrecharge(QuestionPart, frozen=True, kw_only=True):
     pressure: Annotated[Pressure, quantity("Gauge reading on site.", 1.5, "barg", 0, 30)]
     temperature: Annotated[
         Temperature | None,
-        quantity("Temperature of the vessel then. If absent, 20 degC.", 20, "degC", -30, 60),
+        quantity(
+            f"Temperature of the vessel then. If absent, {trade('delivered-precharge-temperature')}.",
+            20,
+            "degC",
+            -30,
+            60,
+        ),
     ] = None
 
 

@@ -4,13 +4,18 @@ from typing import Annotated, Literal
 
 from msgspec import Meta
 
-from loopslack.contract.fields import quantity, text
+from loopslack.contract.fields import quantity, text, trade
 from loopslack.contract.quantity import Conductivity, ContentPerLength, Length, Temperature
 from loopslack.contract.questions_collectors import Label, QuestionPart
 
 Zone = Literal["indoor", "outdoor"]
 RunRole = Literal["flow", "return"]
 SteamAccess = Literal["open", "closed", "unknown"]
+_WALLS = trade("tube-outer-over-bore")
+_DIAMETERS = trade("insulation-thickness-per-diameter")
+_CONDUCTIVITY = trade("insulation-conductivity")
+_INDOOR = trade("pipe-ambient")
+
 ShortText = Annotated[str, Meta(min_length=1, max_length=40)]
 
 
@@ -26,7 +31,7 @@ class BoreTube(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="b
 
     bore: Annotated[Length, quantity("Clear diameter.", 25, "mm", 2, 500)]
     outer_diameter: Annotated[
-        Length | None, quantity("Outer diameter. If absent, bore plus 2 mm.", 28, "mm", 2.2, 600)
+        Length | None, quantity(f"Outer diameter. If absent, bore plus {_WALLS}.", 28, "mm", 2.2, 600)
     ] = None
 
 
@@ -37,7 +42,8 @@ class ContentTube(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag
     outer_diameter: Annotated[
         Length | None,
         quantity(
-            "Outer diameter. If absent, that of a round tube of this content plus 2 mm.", 28, "mm", 2.2, 600
+            f"Outer diameter. If absent, the bore of a round tube of this content plus {_WALLS}.", 28, "
+            f""mm", 2.2, 600
         ),
     ] = None
 
@@ -53,10 +59,10 @@ class Insulated(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="
     """Pipe with sound insulation."""
 
     thickness: Annotated[
-        Length | None, quantity("Thickness. If absent, one outer diameter.", 20, "mm", 0, 300)
-    ] = None
+        Length | None, quantity(f"Thickness. If absent, {_DIAMETERS} times the outer diameter.", 20, "mm", 0,
+        300) ] = None
     conductivity: Annotated[
-        Conductivity | None, quantity("Conductivity. If absent, 0.040 W/mK.", 0.04, "W/mK", 0.01, 1)
+        Conductivity | None, quantity(f"Conductivity. If absent, {_CONDUCTIVITY}.", 0.04, "W/mK", 0.01, 1)
     ] = None
 
 
@@ -64,15 +70,16 @@ class Weathered(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="
     """Pipe whose insulation has suffered from rain, birds or heat and loses more than new."""
 
     thickness: Annotated[
-        Length | None, quantity("Thickness. If absent, one outer diameter.", 20, "mm", 0, 300)
-    ] = None
+        Length | None, quantity(f"Thickness. If absent, {_DIAMETERS} times the outer diameter.", 20, "mm", 0,
+        300) ] = None
     conductivity: Annotated[
-        Conductivity | None, quantity("Conductivity when new. If absent, 0.040 W/mK.", 0.04, "W/mK", 0.01, 1)
-    ] = None
+        Conductivity | None, quantity(f"Conductivity when new. If absent, {_CONDUCTIVITY}.", 0.04, "W/mK",
+        0.01, 1) ] = None
     loss_factor: Annotated[
         Annotated[float, Meta(ge=1, le=10)] | None,
         text(
-            "How many times the loss when new. If absent, 1, since more loss than proven would shorten the "
+            f"How many times the loss when new. If absent, {trade('weathered-loss-factor')}, since more "
+            f"loss than proven would shorten the "
             "steam.",
             1.5,
         ),
@@ -89,7 +96,7 @@ class PipeSegment(QuestionPart, frozen=True, kw_only=True):
     tube: Annotated[Tube, text("The tube.")]
     insulation: Annotated[
         Insulation | None,
-        text("The insulation. If absent, one outer diameter of 0.040 W/mK."),
+        text("The insulation. If absent, `insulated` by the defaults of the trade."),
     ] = None
     zone: Annotated[
         Zone | None,
@@ -98,7 +105,7 @@ class PipeSegment(QuestionPart, frozen=True, kw_only=True):
     ambient: Annotated[
         Temperature | None,
         quantity(
-            "Temperature around the pipe in stagnation. If absent, 20 degC indoors and the air of the "
+            f"Temperature around the pipe in stagnation. If absent, {_INDOOR} indoors and the air of the "
             "design sun "
             "outdoors.",
             20,
@@ -145,5 +152,5 @@ class PipeRun(QuestionPart, frozen=True, kw_only=True):
         ),
     ] = None
     steam_space: Annotated[
-        Label | None, text("The steam space of the groups this run serves. If absent, all.", "south roof")
-    ] = None
+        Label | None, text("The steam space of the groups this run serves. Stated everywhere or nowhere.",
+        "south roof") ] = None

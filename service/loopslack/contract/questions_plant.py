@@ -4,7 +4,7 @@ from typing import Annotated, Literal
 
 from msgspec import Meta
 
-from loopslack.contract.fields import quantity, text
+from loopslack.contract.fields import quantity, text, trade
 from loopslack.contract.quantity import Length, Power, Pressure, PressureDifference, Temperature, Volume
 from loopslack.contract.questions_collectors import QuestionPart
 from loopslack.contract.questions_pipes import Zone
@@ -79,8 +79,8 @@ class Station(QuestionPart, frozen=True, kw_only=True):
     """Pump group and heat exchanger."""
 
     content: Annotated[
-        Volume | None, quantity("Liquid in it. If absent, a figure by collector area.", 6.4, "L", 0, 20_000)
-    ] = None
+        Volume | None, quantity(f"Liquid in it. If absent, {trade('station-content')} and a share for the
+        collector area.", 6.4, "L", 0, 20_000) ] = None
     height: Annotated[
         Length | None, quantity("Height above the vessel connection. If absent, 0.", 0, "m", -150, 150)
     ] = None
@@ -112,7 +112,8 @@ class Station(QuestionPart, frozen=True, kw_only=True):
 class VesselLine(QuestionPart, frozen=True, kw_only=True):
     """The line from the loop to the vessel."""
 
-    content: Annotated[Volume | None, quantity("Liquid in it. If absent, none.", 0.5, "L", 0, 5000)] = None
+    content: Annotated[Volume | None, quantity(f"Liquid in it. If absent, {trade('vessel-line-content')}.",
+    0.5, "L", 0, 5000)] = None
 
 
 class Pump(QuestionPart, frozen=True, kw_only=True):
@@ -162,27 +163,27 @@ class LoopTemperatures(QuestionPart, frozen=True, kw_only=True):
     """Temperatures of the states, all with defaults of the trade."""
 
     fill: Annotated[
-        Temperature | None, quantity("When the loop is filled. If absent, 15 degC.", 15, "degC", -20, 60)
-    ] = None
+        Temperature | None, quantity(f"When the loop is filled. If absent, {trade('fill-temperature')}.", 15,
+        "degC", -20, 60) ] = None
     indoor_cold: Annotated[
         Temperature | None,
-        quantity("Of indoor parts in the cold state. If absent, 5 degC.", 5, "degC", -40, 40),
-    ] = None
+        quantity(f"Of indoor parts in the cold state. If absent, {trade('indoor-cold')}.", 5, "degC", -40,
+        40), ] = None
     vessel_room: Annotated[
         Temperature | None,
-        quantity("Around the vessel while the loop is hot. If absent, 20 degC.", 20, "degC", -40, 60),
-    ] = None
+        quantity(f"Around the vessel while the loop is hot. If absent, {trade('vessel-room')}.", 20, "degC",
+        -40, 60), ] = None
     flow_pipe: Annotated[
-        Temperature | None, quantity("Of the flow while operating. If absent, 70 degC.", 70, "degC", 0, 160)
-    ] = None
+        Temperature | None, quantity(f"Of the flow while operating. If absent,
+        {trade('design-flow-temperature')}.", 70, "degC", 0, 160) ] = None
     return_pipe: Annotated[
-        Temperature | None, quantity("Of the return while operating. If absent, 40 degC.", 40, "degC", 0, 140)
-    ] = None
+        Temperature | None, quantity(f"Of the return while operating. If absent,
+        {trade('design-return-temperature')}.", 40, "degC", 0, 140) ] = None
     cut_off: Annotated[
         Temperature | None,
-        quantity("At which the pump is stopped. If absent, 120 degC.", 120, "degC", 40, 180),
+        quantity(f"At which the pump is stopped. If absent, {trade('pump-cut-off')}.", 120, "degC", 40, 180),
     ] = None
     hot_liquid: Annotated[
         Temperature | None,
-        quantity("Of liquid in pipes and station in stagnation. If absent, 120 degC.", 120, "degC", 20, 180),
-    ] = None
+        quantity(f"Of liquid in pipes and station in stagnation. If absent, {trade('stagnation-liquid')}.",
+        120, "degC", 20, 180), ] = None
