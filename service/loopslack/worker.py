@@ -9,6 +9,7 @@ which the requirement files pin; `tests/faults/test_connections.py` opens every 
 """
 
 # ruff: noqa: ANN401, SLF001 - a wrapper around private, untyped names; see above
+# mypy: allow-subclassing-any
 from __future__ import annotations
 
 import json
@@ -20,8 +21,8 @@ from contextlib import suppress
 from http import HTTPStatus
 from typing import TYPE_CHECKING, Any
 
-from gunicorn.asgi.protocol import ASGIProtocol
-from gunicorn.workers import gasgi
+from gunicorn.asgi.protocol import ASGIProtocol  # type: ignore[import-untyped]  # gunicorn ships no types
+from gunicorn.workers import gasgi  # type: ignore[import-untyped]  # as above
 
 if TYPE_CHECKING:
     from asyncio import TimerHandle
