@@ -59,7 +59,7 @@ def stagnation(case: Case) -> Stagnation:
     fixed = {space: loop.furthest_extent(space) for space in rising}
     found = loop.balance(fixed)
     if not isinstance(found, tuple):
-        regime: Regime = "valve-opens" if found == "membrane-full" and case.opening_pressure else found
+        regime = _heeding_valve(loop, loop.high, found) if found == "membrane-full" else found
         return Stagnation(regime=regime, regime_if_shut=found)
     return _report(loop, *found, fixed)
 

@@ -245,6 +245,13 @@ def test_the_valve_turns_the_regime_and_leaves_the_figures() -> None:
     assert stagnation(open_).vessel_pressure == shut.vessel_pressure
 
 
+def test_a_membrane_at_its_limit_below_the_opening_pressure_is_not_called_an_open_valve() -> None:
+    tiny = reference_loop(2.0, opening_pressure=9.0 * BAR + AIR)
+    assert stagnation(tiny).regime_if_shut == "membrane-full"
+    assert stagnation(tiny).regime == "valve-opens"
+    assert stagnation(tiny.but(acceptance=1.0 * LITRE)).regime == "membrane-full"
+
+
 @pytest.mark.parametrize(
     ("name", "regime"),
     [
