@@ -52,21 +52,34 @@ class Criteria(QuestionPart, frozen=True, kw_only=True):
     ] = None
     top_pressure: Annotated[
         Pressure | None,
-        quantity(f"Least pressure at the highest point when cold. If absent,
-        {trade('minimum-top-pressure')}.", 0.5, "barg", 0, 6), ] = None
+        quantity(
+            f"Least pressure at the highest point when cold. If absent, {trade('minimum-top-pressure')}.",
+            0.5,
+            "barg",
+            0,
+            6,
+        ),
+    ] = None
     window_width: Annotated[
         PressureDifference | None,
-        quantity(f"Least width of the fill window. If absent, {trade('fill-window-width')}.", 0.3, "bar", 0,
-        5), ] = None
+        quantity(
+            f"Least width of the fill window. If absent, {trade('fill-window-width')}.", 0.3, "bar", 0, 5
+        ),
+    ] = None
     fill_above_precharge: Annotated[
         PressureDifference | None,
-        quantity(f"Least distance from precharge to fill pressure. If absent,
-        {trade('fill-above-precharge')}.", 0.3, "bar", 0, 3), ] = None
+        quantity(
+            f"Least distance from precharge to fill pressure. If absent, {trade('fill-above-precharge')}.",
+            0.3,
+            "bar",
+            0,
+            3,
+        ),
+    ] = None
     window_edge_distance: Annotated[
         PressureDifference | None,
         quantity(
-            f"Least distance of the recommended fill from either edge of the window. If absent, "
-            f"{trade('fill-above-lower-bound')}.",
+            f"Least distance of the recommended fill from either edge of the window. If absent, {trade('fill-above-lower-bound')}.",
             0.1,
             "bar",
             0,
@@ -76,8 +89,7 @@ class Criteria(QuestionPart, frozen=True, kw_only=True):
     boiling_margin: Annotated[
         PressureDifference | None,
         quantity(
-            f"Least distance from boiling while the pump runs at its cut-off temperature. If absent, "
-            f"{trade('boiling-margin')}.",
+            f"Least distance from boiling while the pump runs at its cut-off temperature. If absent, {trade('boiling-margin')}.",
             0.3,
             "bar",
             0,
@@ -86,28 +98,52 @@ class Criteria(QuestionPart, frozen=True, kw_only=True):
     ] = None
     membrane_limit: Annotated[
         Temperature | None,
-        quantity(f"Highest lasting membrane temperature. If absent, {trade('membrane-limit')}.", 70, "degC",
-        30, 150), ] = None
+        quantity(
+            f"Highest lasting membrane temperature. If absent, {trade('membrane-limit')}.",
+            70,
+            "degC",
+            30,
+            150,
+        ),
+    ] = None
     freeze_margin: Annotated[
         TemperatureDifference | None,
-        quantity(f"Least distance from site minimum to freezing point. If absent,
-        {trade('freezing-margin')}.", 5, "K", 0, 30), ] = None
+        quantity(
+            f"Least distance from site minimum to freezing point. If absent, {trade('freezing-margin')}.",
+            5,
+            "K",
+            0,
+            30,
+        ),
+    ] = None
     fluid_allowance: Annotated[
         Ratio | None,
         quantity(
-            f"Doubt in fluid data as a share of the content. If absent, {trade('fluid-data-allowance')}.", "
-            f"0.5, "percent", 0, 5
+            f"Doubt in fluid data as a share of the content. If absent, {trade('fluid-data-allowance')}.",
+            0.5,
+            "percent",
+            0,
+            5,
         ),
     ] = None
     degradation_limit: Annotated[
         Temperature | None,
-        quantity(f"Temperature above which glycol degrades. If absent, {trade('degradation-temperature')}.",
-        160, "degC", 100, 300), ] = None
+        quantity(
+            f"Temperature above which glycol degrades. If absent, {trade('degradation-temperature')}.",
+            160,
+            "degC",
+            100,
+            300,
+        ),
+    ] = None
     stagnation_doubt: Annotated[
         TemperatureDifference | None,
         quantity(
-            f"How much hotter than computed the collectors may stagnate. If absent, "
-            f"{trade('doubt-stagnation-shift')}.", 15, "K", 5, 60
+            f"How much hotter than computed the collectors may stagnate. If absent, {trade('doubt-stagnation-shift')}.",
+            15,
+            "K",
+            5,
+            60,
         ),
     ] = None
 

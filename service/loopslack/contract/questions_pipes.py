@@ -14,6 +14,7 @@ SteamAccess = Literal["open", "closed", "unknown"]
 _WALLS = trade("tube-outer-over-bore")
 _DIAMETERS = trade("insulation-thickness-per-diameter")
 _CONDUCTIVITY = trade("insulation-conductivity")
+_FACTOR = trade("weathered-loss-factor")
 _INDOOR = trade("pipe-ambient")
 
 ShortText = Annotated[str, Meta(min_length=1, max_length=40)]
@@ -41,10 +42,7 @@ class ContentTube(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag
     content_per_length: Annotated[ContentPerLength, quantity("Content per length.", 0.49, "L/m", 0.003, 200)]
     outer_diameter: Annotated[
         Length | None,
-        quantity(
-            f"Outer diameter. If absent, the bore of a round tube of this content plus {_WALLS}.", 28, "
-            f""mm", 2.2, 600
-        ),
+        quantity(f"Outer diameter. If absent, bore of equal content plus {_WALLS}.", 28, "mm", 2.2, 600),
     ] = None
 
 
@@ -59,8 +57,9 @@ class Insulated(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="
     """Pipe with sound insulation."""
 
     thickness: Annotated[
-        Length | None, quantity(f"Thickness. If absent, {_DIAMETERS} times the outer diameter.", 20, "mm", 0,
-        300) ] = None
+        Length | None,
+        quantity(f"Thickness. If absent, {_DIAMETERS} times the outer diameter.", 20, "mm", 0, 300),
+    ] = None
     conductivity: Annotated[
         Conductivity | None, quantity(f"Conductivity. If absent, {_CONDUCTIVITY}.", 0.04, "W/mK", 0.01, 1)
     ] = None
@@ -70,16 +69,17 @@ class Weathered(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="
     """Pipe whose insulation has suffered from rain, birds or heat and loses more than new."""
 
     thickness: Annotated[
-        Length | None, quantity(f"Thickness. If absent, {_DIAMETERS} times the outer diameter.", 20, "mm", 0,
-        300) ] = None
+        Length | None,
+        quantity(f"Thickness. If absent, {_DIAMETERS} times the outer diameter.", 20, "mm", 0, 300),
+    ] = None
     conductivity: Annotated[
-        Conductivity | None, quantity(f"Conductivity when new. If absent, {_CONDUCTIVITY}.", 0.04, "W/mK",
-        0.01, 1) ] = None
+        Conductivity | None,
+        quantity(f"Conductivity when new. If absent, {_CONDUCTIVITY}.", 0.04, "W/mK", 0.01, 1),
+    ] = None
     loss_factor: Annotated[
         Annotated[float, Meta(ge=1, le=10)] | None,
         text(
-            f"How many times the loss when new. If absent, {trade('weathered-loss-factor')}, since more "
-            f"loss than proven would shorten the "
+            f"How many times the loss when new. If absent, {_FACTOR}, since more loss than proven would shorten the "
             "steam.",
             1.5,
         ),
@@ -152,5 +152,6 @@ class PipeRun(QuestionPart, frozen=True, kw_only=True):
         ),
     ] = None
     steam_space: Annotated[
-        Label | None, text("The steam space of the groups this run serves. Stated everywhere or nowhere.",
-        "south roof") ] = None
+        Label | None,
+        text("The steam space of the groups this run serves. Stated everywhere or nowhere.", "south roof"),
+    ] = None

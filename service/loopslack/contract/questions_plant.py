@@ -9,6 +9,8 @@ from loopslack.contract.quantity import Length, Power, Pressure, PressureDiffere
 from loopslack.contract.questions_collectors import QuestionPart
 from loopslack.contract.questions_pipes import Zone
 
+_HOT = trade("stagnation-liquid")
+
 AllowanceRule = Literal["en-12828", "ten-percent", "task-26", "five-psi", "iso-4126-1"]
 ReliefSize = Literal["DN15", "DN20", "DN25", "DN32", "DN40", "DN50"]
 PumpSide = Literal["suction", "discharge"]
@@ -79,8 +81,11 @@ class Station(QuestionPart, frozen=True, kw_only=True):
     """Pump group and heat exchanger."""
 
     content: Annotated[
-        Volume | None, quantity(f"Liquid in it. If absent, {trade('station-content')} and a share for the
-        collector area.", 6.4, "L", 0, 20_000) ] = None
+        Volume | None,
+        quantity(
+            "Liquid in it. If absent, a figure that grows with the collector area.", 6.4, "L", 0, 20_000
+        ),
+    ] = None
     height: Annotated[
         Length | None, quantity("Height above the vessel connection. If absent, 0.", 0, "m", -150, 150)
     ] = None
@@ -112,8 +117,10 @@ class Station(QuestionPart, frozen=True, kw_only=True):
 class VesselLine(QuestionPart, frozen=True, kw_only=True):
     """The line from the loop to the vessel."""
 
-    content: Annotated[Volume | None, quantity(f"Liquid in it. If absent, {trade('vessel-line-content')}.",
-    0.5, "L", 0, 5000)] = None
+    content: Annotated[
+        Volume | None,
+        quantity(f"Liquid in it. If absent, {trade('vessel-line-content')}.", 0.5, "L", 0, 5000),
+    ] = None
 
 
 class Pump(QuestionPart, frozen=True, kw_only=True):
@@ -163,27 +170,46 @@ class LoopTemperatures(QuestionPart, frozen=True, kw_only=True):
     """Temperatures of the states, all with defaults of the trade."""
 
     fill: Annotated[
-        Temperature | None, quantity(f"When the loop is filled. If absent, {trade('fill-temperature')}.", 15,
-        "degC", -20, 60) ] = None
+        Temperature | None,
+        quantity(f"When the loop is filled. If absent, {trade('fill-temperature')}.", 15, "degC", -20, 60),
+    ] = None
     indoor_cold: Annotated[
         Temperature | None,
-        quantity(f"Of indoor parts in the cold state. If absent, {trade('indoor-cold')}.", 5, "degC", -40,
-        40), ] = None
+        quantity(
+            f"Of indoor parts in the cold state. If absent, {trade('indoor-cold')}.", 5, "degC", -40, 40
+        ),
+    ] = None
     vessel_room: Annotated[
         Temperature | None,
-        quantity(f"Around the vessel while the loop is hot. If absent, {trade('vessel-room')}.", 20, "degC",
-        -40, 60), ] = None
+        quantity(
+            f"Around the vessel while the loop is hot. If absent, {trade('vessel-room')}.",
+            20,
+            "degC",
+            -40,
+            60,
+        ),
+    ] = None
     flow_pipe: Annotated[
-        Temperature | None, quantity(f"Of the flow while operating. If absent,
-        {trade('design-flow-temperature')}.", 70, "degC", 0, 160) ] = None
+        Temperature | None,
+        quantity(
+            f"Of the flow while operating. If absent, {trade('design-flow-temperature')}.", 70, "degC", 0, 160
+        ),
+    ] = None
     return_pipe: Annotated[
-        Temperature | None, quantity(f"Of the return while operating. If absent,
-        {trade('design-return-temperature')}.", 40, "degC", 0, 140) ] = None
+        Temperature | None,
+        quantity(
+            f"Of the return while operating. If absent, {trade('design-return-temperature')}.",
+            40,
+            "degC",
+            0,
+            140,
+        ),
+    ] = None
     cut_off: Annotated[
         Temperature | None,
         quantity(f"At which the pump is stopped. If absent, {trade('pump-cut-off')}.", 120, "degC", 40, 180),
     ] = None
     hot_liquid: Annotated[
         Temperature | None,
-        quantity(f"Of liquid in pipes and station in stagnation. If absent, {trade('stagnation-liquid')}.",
-        120, "degC", 20, 180), ] = None
+        quantity(f"Of liquid in pipes and station in stagnation. If absent, {_HOT}.", 120, "degC", 20, 180),
+    ] = None
