@@ -79,7 +79,8 @@ class Criteria(QuestionPart, frozen=True, kw_only=True):
     window_edge_distance: Annotated[
         PressureDifference | None,
         quantity(
-            f"Least distance of the recommended fill from either edge of the window. If absent, {trade('fill-above-lower-bound')}.",
+            "Least distance of the recommended fill from either edge of the window. "
+            f"If absent, {trade('fill-above-lower-bound')}.",
             0.1,
             "bar",
             0,
@@ -89,7 +90,8 @@ class Criteria(QuestionPart, frozen=True, kw_only=True):
     boiling_margin: Annotated[
         PressureDifference | None,
         quantity(
-            f"Least distance from boiling while the pump runs at its cut-off temperature. If absent, {trade('boiling-margin')}.",
+            "Least distance from boiling while the pump runs at its cut-off temperature. "
+            f"If absent, {trade('boiling-margin')}.",
             0.3,
             "bar",
             0,
@@ -139,7 +141,8 @@ class Criteria(QuestionPart, frozen=True, kw_only=True):
     stagnation_doubt: Annotated[
         TemperatureDifference | None,
         quantity(
-            f"How much hotter than computed the collectors may stagnate. If absent, {trade('doubt-stagnation-shift')}.",
+            "How much hotter than computed the collectors may stagnate. "
+            f"If absent, {trade('doubt-stagnation-shift')}.",
             15,
             "K",
             5,
