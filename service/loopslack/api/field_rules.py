@@ -1,0 +1,113 @@
+"""The rules of a single value (number, text, word of a list) and what is said when one is broken.
+
+Each function tells the code and message of every broken rule; where the value stands and what lies around it
+is known in `faults`.
+"""
+
+import math
+import re
+from collections.abc import Iterator
+
+from msgspec import inspect
+
+from loopslack.api.hints import expectation, listing, shown, words_near
+
+Broken = Iterator[tuple[str, str]]
+Leaf = (
+    inspect.FloatType
+    | inspect.IntType
+    | inspect.StrType
+    | inspect.EnumType
+    | inspect.LiteralType
+    | inspect.BoolType
+    | inspect.NoneType
+)
+"""Types without members."""
+
+
+def broken_rules(value: object, kind: inspect.Type, hint: bool) -> Broken:  # noqa: FBT001 - said by name
+    """Code and message of every rule a value without members breaks."""
+    match kind:
+        case inspect.FloatType() | inspect.IntType():
+            yield from _number(value, kind)
+        case inspect.StrType():
+            yield from _text(value, kind)
+        case inspect.EnumType():
+            yield from word(value, tuple(member.value for member in kind.cls), hint=hint)
+        case inspect.LiteralType():
+            yield from word(value, kind.values, hint=hint)
+        case inspect.BoolType():
+            if not isinstance(value, bool):
+                yield wrong_type(value, kind)
+        case _:
+            if value is not None:
+                yield wrong_type(value, kind)
+
+
+def wrong_type(value: object, kind: inspect.Type) -> tuple[str, str]:
+    """Code and message of a value of another JSON type than expected."""
+    remedy = ""
+    if isinstance(value, str) and isinstance(kind, inspect.FloatType | inspect.IntType):
+        remedy = " Send the number without quotes."
+    elif value is None:
+        remedy = " Leave the member out if there is nothing to state."
+    elif isinstance(value, int | float) and isinstance(kind, inspect.StructType):
+        remedy = " State the number together with its unit."
+    return "wrong-type", f"{shown(value)} will not do here: {expectation(kind)} is expected.{remedy}"
+
+
+def word(value: object, words: tuple[object, ...], *, hint: bool) -> Broken:
+    """A word of a closed list; near misses are looked for if `hint`."""
+    if value in words and not isinstance(value, bool):
+        return
+    if not isinstance(value, str):
+        yield "wrong-type", f"{shown(value)} will not do here: one of {listing(words)} is expected."
+        return
+    near = words_near(value, words) if hint else ()
+    remedy = f"Did you mean {listing(near, last='or')}?" if near else "State one of them."
+    yield "not-a-member", f"{shown(value)} is none of {listing(words)}. {remedy}"
+
+
+def size(count: int, least: int | None, most: int | None, what: str) -> Broken:
+    """The number of entries, members or characters."""
+    short, long = ("too-short", "too-long") if what == "characters" else ("too-few", "too-many")
+    if least is not None and count < least:
+        yield short, f"There are {count} {what}; at least {least} are needed. Add to them."
+    if most is not None and count > most:
+        yield long, f"There are {count} {what}; at most {most} are taken. Shorten it."
+
+
+def _number(value: object, kind: inspect.FloatType | inspect.IntType) -> Broken:
+    if isinstance(value, bool) or not isinstance(value, int | float):
+        yield wrong_type(value, kind)
+    elif not _finite(value):
+        yield "out-of-range", "The number is larger than any this service can hold. Correct it."
+    elif isinstance(kind, inspect.IntType) and isinstance(value, float):
+        yield "wrong-type", f"{shown(value)} is no whole number. State a whole number."
+    else:
+        rules = (
+            ("at least", kind.ge, kind.ge is None or value >= kind.ge),
+            ("more than", kind.gt, kind.gt is None or value > kind.gt),
+            ("at most", kind.le, kind.le is None or value <= kind.le),
+            ("less than", kind.lt, kind.lt is None or value < kind.lt),
+            ("a multiple of", kind.multiple_of, kind.multiple_of is None or value % kind.multiple_of == 0),
+        )
+        if not all(kept for _, _, kept in rules):
+            rule = " and ".join(f"{words} {limit:g}" for words, limit, _ in rules if limit is not None)
+            yield "out-of-range", f"{shown(value)} is outside the range: it must be {rule}. Correct it."
+
+
+def _finite(value: float) -> bool:
+    try:
+        return math.isfinite(value)
+    except OverflowError:  # a whole number beyond any floating point number
+        return False
+
+
+def _text(value: object, kind: inspect.StrType) -> Broken:
+    if not isinstance(value, str):
+        yield wrong_type(value, kind)
+        return
+    yield from size(len(value), kind.min_length, kind.max_length, "characters")
+    if kind.pattern is not None and not re.search(kind.pattern, value[:10_000]):
+        yield "pattern", f"{shown(value)} does not have the form {kind.pattern}. Rewrite it."

@@ -1,0 +1,98 @@
+"""Ends a request with a problem document, and turns a calculation's own errors into one.
+
+The text of an unforeseen exception is no part of any of this: it never reaches a caller.
+"""
+
+import math
+import uuid
+from collections.abc import Mapping, Sequence
+
+from loopslack.api.problems import MOST_FAULTS, PROBLEM_TYPES, FaultyField, Problem
+from loopslack.kernel.errors import CalculationError, Refusals
+
+_OF_ONE_FIELD = frozenset(
+    {"missing", "wrong-type", "not-a-member", "out-of-range", "unknown-field", "invalid"}
+)
+
+
+class Refused(Exception):  # noqa: N818 - named for what happens to the request
+    """Ends a request with a problem document."""
+
+    def __init__(
+        self,
+        slug: str,
+        detail: str,
+        *,
+        faults: Sequence[FaultyField] = (),
+        further: int = 0,
+        headers: Mapping[str, str] | None = None,
+    ) -> None:
+        super().__init__(detail)
+        self.kind = PROBLEM_TYPES[slug]
+        self.detail = detail
+        self.faults = tuple(faults[:MOST_FAULTS])
+        self.further = further + max(0, len(faults) - MOST_FAULTS)
+        self.headers = dict(headers or {})
+
+    def document(self, request_id: str) -> Problem:
+        """The problem as it is sent, in answer to the request of this id."""
+        return Problem(
+            type=self.kind.uri,
+            title=self.kind.title,
+            status=self.kind.status,
+            detail=self.detail,
+            instance=occurrence(request_id),
+            request_id=request_id,
+            errors=self.faults,
+            further_errors=self.further,
+        )
+
+
+def occurrence(request_id: str) -> str:
+    """The URN of an occurrence: the request id itself if it is a UUID, else one derived from it."""
+    try:
+        return uuid.UUID(request_id).urn
+    except ValueError:
+        return uuid.uuid5(uuid.NAMESPACE_OID, request_id).urn
+
+
+def refusal_of_fields(faults: Sequence[FaultyField], further: int = 0) -> Refused:
+    """The refusal of a question with faulty fields, all of them listed."""
+    count = len(faults) + further
+    detail = (
+        "1 field of the question is faulty." if count == 1 else f"{count} fields of the question are faulty."
+    )
+    if further:
+        detail += f" The first {len(faults)} are listed."
+    return Refused("invalid-field", detail, faults=faults, further=further)
+
+
+def refusal_of(error: CalculationError) -> Refused:
+    """The refusal that a calculation's own error becomes, with every cause the caller should see."""
+    causes = error.errors if isinstance(error, Refusals) else (error,)
+    faults = [fault_of(cause) for cause in causes]
+    if all(cause.pointer and cause.code in _OF_ONE_FIELD for cause in causes):
+        return refusal_of_fields(faults[:MOST_FAULTS], max(0, len(faults) - MOST_FAULTS))
+    detail = (
+        faults[0].message
+        if len(faults) == 1
+        else f"The question cannot be answered, for {len(faults)} reasons."
+    )
+    return Refused("unanswerable-question", detail, faults=faults)
+
+
+def fault_of(cause: CalculationError, within: str = "") -> FaultyField:
+    """One cause as an entry of `errors`; `within` points at the object its own pointer starts from."""
+    remedy = cause.remedy.strip()
+    return FaultyField(
+        pointer=within + cause.pointer,
+        code=cause.code,
+        message=f"{cause.message.rstrip()} {remedy}".rstrip(),
+        parameters={name: _plain(fact) for name, fact in cause.facts.items()},
+    )
+
+
+def _plain(fact: object) -> str | float | int | bool:
+    if isinstance(fact, float) and not math.isfinite(fact):
+        return str(fact)
+    return fact if isinstance(fact, str | int | float) else str(fact)

@@ -1,0 +1,110 @@
+"""Wiring: settings, operations and pages to one ASGI application. No rule of HTTP and no number lives here.
+
+`loopslack.app:app` is what the server serves; it is made when it is first asked for, from the environment.
+"""
+
+import asyncio
+import os
+from collections.abc import AsyncIterator, Iterable
+from contextlib import asynccontextmanager, suppress
+from typing import Any
+
+from litestar import Litestar
+from litestar.exceptions import HTTPException
+from litestar.types import ASGIApp, Receive, Scope, Send
+
+from loopslack.api.costly import Costly
+from loopslack.api.guard import Guard, is_guarding, warn_if_open
+from loopslack.api.operations import Floor, Operation
+from loopslack.api.probes import probe_routes
+from loopslack.api.record import Record
+from loopslack.api.reference import Page
+from loopslack.api.refusals import Refused
+from loopslack.api.routes import on_fault, on_http_exception, on_refused, routes_of
+from loopslack.api.v1 import OPERATIONS
+from loopslack.api.wrappers import CrossOrigin, HeadAsGet, LiteralPaths, Shedding, StandingHeaders
+from loopslack.observability import READINESS, LoopLag, set_up_logging
+from loopslack.settings import Settings, settings_from
+
+
+class Application:
+    """The whole service as one ASGI application, with the parts a test or a server may want to reach."""
+
+    def __init__(
+        self, settings: Settings, operations: Iterable[Operation[Any, Any]], pages: Iterable[Page]
+    ) -> None:
+        self.settings = settings
+        self.lag = LoopLag()
+        self.readiness = READINESS
+        self.costly = Costly(settings.costly_waiting, settings.deadline_seconds)
+        lines = set_up_logging(settings.log_level)
+        routes = routes_of(operations, pages, Floor(settings, self.costly)) + probe_routes(self.readiness)
+        framework = Litestar(
+            routes,
+            debug=False,
+            lifespan=[self._lifespan],
+            openapi_config=None,  # the document is our own
+            logging_config=None,
+            exception_handlers={
+                Refused: on_refused,
+                HTTPException: on_http_exception,
+                Exception: on_fault,
+            },
+        )
+        self._outermost = self._wrapped(framework, Record, lines if settings.access_log else None)
+
+    def _wrapped(self, framework: ASGIApp, record: type[Record], lines: Any) -> ASGIApp:  # noqa: ANN401
+        """The wrappers from the inside out."""
+        app: ASGIApp = framework
+        if is_guarding(self.settings):
+            app = Guard(app, self.settings)
+        app = HeadAsGet(app)
+        app = LiteralPaths(app)
+        app = Shedding(app, self.lag, self.settings.shed_lag_seconds)
+        if self.settings.cors_origins:
+            app = CrossOrigin(app, self.settings.cors_origins)
+        return StandingHeaders(record(app, lines))
+
+    @asynccontextmanager
+    async def _lifespan(self, _: Litestar) -> AsyncIterator[None]:
+        """Between start and stop of a worker: everything that may not be made before the server forks."""
+        warn_if_open(self.settings)
+        watch = asyncio.create_task(self.lag.watch())
+        self.readiness.draining = False
+        self.readiness.loaded = True
+        try:
+            yield
+        finally:
+            self.readiness.draining = True
+            self.costly.close()
+            watch.cancel()
+            with suppress(asyncio.CancelledError):
+                await watch
+
+    async def __call__(self, scope: Scope, receive: Receive, send: Send) -> None:
+        """Answer a request."""
+        await self._outermost(scope, receive, send)
+
+
+def create_app(
+    settings: Settings | None = None,
+    *,
+    operations: Iterable[Operation[Any, Any]] | None = None,
+    pages: Iterable[Page] = (),
+) -> Application:
+    """The application for some settings; without any, for those of the environment.
+
+    Raises:
+        SettingsError: a variable of the environment will not do.
+    """
+    if settings is None:
+        settings = settings_from(os.environ)
+    return Application(settings, OPERATIONS if operations is None else operations, pages)
+
+
+def __getattr__(name: str) -> Application:
+    """Make `app` when the server asks for it, so that a test can import `create_app` without one."""
+    if name != "app":
+        raise AttributeError(name)
+    made = globals()["app"] = create_app()
+    return made
