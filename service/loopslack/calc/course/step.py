@@ -1,0 +1,160 @@
+"""One implicit step: the root in the steam volume, and the relief valve around it.
+
+Nothing is changed here: a step is tried, looked at by the march, and then accepted by ``transport`` or thrown
+away.
+"""
+
+from collections.abc import Callable
+from math import sqrt
+from typing import Literal, NamedTuple
+
+from loopslack.calc.course.balance import Balance
+from loopslack.calc.course.plant import Plant
+from loopslack.calc.course.state import State
+from loopslack.calc.course.weather import Weather
+from loopslack.kernel.roots import bracketed
+
+Ending = Literal["steam", "no-steam", "overfull"]
+
+_FIRST_STRIDE = 1e-5
+_NEGLIGIBLE = 1e-10  # of the filled mass: vapour that may stay unaccounted for when the root is taken
+_LEAST_HEAD = 1e3  # Pa over atmosphere for the flow through the valve
+
+
+class Step(NamedTuple):
+    """A solved step.
+
+    ``ending`` says whether a steam volume balances, no steam is left, or steam fills all the pipes and
+    presses on; ``absorber`` and ``liquid`` are temperatures (K), ``valve_open`` the valve's state at the end,
+    ``surplus`` (kg) the vapour that reached the station.
+    """
+
+    balance: Balance
+    ending: Ending
+    absorber: float
+    liquid: float
+    evaporated: float
+    condensed: float
+    wall: float
+    surplus: float
+    valve_open: bool
+
+    @property
+    def steam_power(self) -> float:
+        """What the collectors send out as steam, W/m2; negative when vapour condenses in them."""
+        balance = self.balance
+        if self.ending == "no-steam":
+            return 0.0
+        heat = self.evaporated * balance.collector.evaporation_heat
+        return heat / (balance.plant.loop.aperture * balance.dt)
+
+
+def step(plant: Plant, state: State, weather: Weather, dt: float) -> Step:
+    """Try a step of ``dt`` seconds."""
+    end = state.time + dt
+    balance = Balance(plant, state, dt, weather.irradiance(end), weather.ambient(end))
+    ending = _solve(balance)
+    valve_open = False
+    if plant.loop.relief is not None:
+        ending, valve_open = _relieve(balance, ending)
+    collector = balance.collector
+    if ending == "no-steam":
+        warm = collector.warm(balance.geometric)
+        return Step(balance, ending, warm, warm, collector.evaporated, 0.0, balance.dry_wall, 0.0, valve_open)
+    surplus = -balance.missing if ending == "overfull" else 0.0
+    return Step(
+        balance,
+        ending,
+        collector.absorber,
+        collector.boiling,
+        collector.evaporated,
+        balance.condensed,
+        balance.wall,
+        surplus,
+        valve_open,
+    )
+
+
+def _relieve(balance: Balance, ending: Ending) -> tuple[Ending, bool]:
+    """Let liquid out if the valve opens or stands open; whether it still stands open at the end of the step.
+
+    If the valve can pass in this step what it takes to fall to the closing pressure, it does so and shuts;
+    else it passes what it can.
+    """
+    valve, state = balance.plant.loop.relief, balance.state
+    if valve is None:
+        return ending, False
+    pressure = balance.vessel_pressure
+    if not (pressure > valve.set_pressure or (state.valve_open and pressure > valve.closing_pressure)):
+        return ending, False
+    over = max(_LEAST_HEAD, pressure - balance.plant.loop.atmosphere)
+    capacity = valve.flow_area * sqrt(2.0 * balance.vessel_density * over) * balance.dt
+    balance.held_pressure = valve.closing_pressure
+    _solve(balance)
+    held = balance.vessel_mass
+    balance.held_pressure = None
+    balance.residual(balance.volume)
+    needed = max(0.0, balance.vessel_mass - held)
+    balance.discharge = min(needed, capacity)
+    return _solve(balance), needed > capacity
+
+
+def _solve(balance: Balance) -> Ending:
+    """Put the balance at the root nearest to the old volume: while liquid returns there may be several."""
+    highest = balance.highest
+    least = balance.least_volume()
+    start = max(least, min(balance.state.volume, highest))
+    negligible = _NEGLIGIBLE * balance.plant.mass
+
+    def residual(volume: float) -> float:
+        missing = balance.residual(volume)
+        return 0.0 if abs(missing) < negligible else missing
+
+    here = residual(start)
+    if here == 0.0 and start > least:
+        return "steam"
+    stride = max(_FIRST_STRIDE * highest, 1e-9)
+    if here < 0.0:
+        found = _upward(residual, start, here, highest, stride)
+        if found is None:
+            return "overfull"
+    else:
+        found = _downward(residual, start, here, least, stride)
+        if found is None:
+            return "no-steam"
+    root = bracketed(residual, *found, tolerance=1e-9 * highest + 1e-12).at
+    if balance.volume != root:
+        balance.residual(root)
+    return "steam"
+
+
+Bracket = tuple[float, float, float, float]
+
+
+def _upward(
+    residual: Callable[[float], float], low: float, at_low: float, highest: float, stride: float
+) -> Bracket | None:
+    """Bracket above a volume where steam is missing room; None if even the highest volume does not do."""
+    while True:
+        high = min(highest, low + stride)
+        at_high = residual(high)
+        if at_high >= 0.0:
+            return low, high, at_low, at_high
+        if high >= highest:
+            return None
+        low, at_low = high, at_high
+        stride *= 4.0
+
+
+def _downward(
+    residual: Callable[[float], float], high: float, at_high: float, least: float, stride: float
+) -> Bracket | None:
+    """Bracket below a volume that the steam does not fill; None if it fills not even the least volume."""
+    while high > least:
+        low = max(least, high - stride)
+        at_low = residual(low)
+        if at_low < 0.0:
+            return low, high, at_low, at_high
+        high, at_high = low, at_low
+        stride *= 4.0
+    return None
