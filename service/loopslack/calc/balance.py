@@ -118,11 +118,13 @@ class Balance:
         return self.extent(0.0, tuple(space.liquid() for space in self.spaces))
 
     def station_pressure(self) -> float | None:
-        """Lowest vessel pressure (Pa) that keeps steam out of the station, infinite if none does, None if any does.
+        """Lowest vessel pressure (Pa) that leaves no steam unspent, infinite if none does, None if any does.
 
-        With a stated loss at the station this is still the pressure at which steam arrives there.
+        What the station takes is counted where one steam space arrives there; with several it would have to be
+        shared, so it is left out, which is safe.
         """
-        found = [p for p in (space.station_pressure() for space in self.spaces) if p is not None]
+        taken = self.station_loss if len(self.spaces) == 1 else 0.0
+        found = [p for p in (space.station_pressure(taken) for space in self.spaces) if p is not None]
         return max(found) if found else None
 
 

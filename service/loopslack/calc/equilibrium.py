@@ -15,6 +15,8 @@ Regime = Literal["no-boiling", "pinned", "steam", "valve-opens", "membrane-full"
 
 _RELATIVE = 1e-12
 
+ROUNDING = 1e-9  # share within which a state at a limit counts as at the limit: the solvers' own rounding
+
 
 class Charge(NamedTuple):
     """A vessel as it was charged and filled: volumes m3, absolute pressures Pa, temperatures K, mass kg.
@@ -99,8 +101,11 @@ def equilibrium(
     """
     law = VesselLaw(balance, charge, mix, gas_follows=gas_follows)
     limit = balance.at_pressure(opening)
-    if law.excess(opening, limit.expelled) < 0:
+    missing = law.excess(opening, limit.expelled)
+    if missing < -ROUNDING * charge.nominal:
         return _state("valve-opens", opening, limit, law)
+    if missing <= 0:
+        return _state("steam" if limit.boiling else "no-boiling", opening, limit, law)
     curve: _OneSpace | _SeveralSpaces
     if len(balance.spaces) == 1:
         curve = _OneSpace(balance, limit)

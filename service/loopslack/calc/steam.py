@@ -165,14 +165,17 @@ class SteamSpace:
             found = crossing
         return self.at(found.at, below=below)[1]
 
-    def station_pressure(self) -> float | None:
-        """Lowest vessel pressure (Pa) at which no steam reaches the end of the branches; None if none can."""
+    def station_pressure(self, taken: float) -> float | None:
+        """Lowest vessel pressure (Pa) at which the branches and ``taken`` W at their end condense all steam.
+
+        None where no pressure lets more arrive, infinite where every pressure does.
+        """
         if not self.path.branches:
             return None
         top, low = self.highest_boiling(), self.coldest
 
         def spare(temperature: float) -> float:
-            return self.path.loss(temperature) - self.power(temperature)
+            return self.path.loss(temperature) + taken - self.power(temperature)
 
         at_top, at_low = spare(top), spare(low)
         if at_top < 0:
@@ -189,9 +192,9 @@ class SteamSpace:
     def _boiling(self, pressure: float) -> float:
         """Boiling temperature kept inside the bracket the bubble line allows."""
         fluid = self.fluid
-        if pressure <= fluid.lowest_bubble_pressure:
+        if pressure <= fluid.lowest_pressure:
             return self.coldest
-        if pressure >= fluid.highest_bubble_pressure:
+        if pressure >= fluid.highest_pressure:
             return fluid.boiling_highest
         return max(self.coldest, fluid.boiling_temperature(pressure))
 

@@ -1,0 +1,174 @@
+"""The checks of a charged vessel, each a few lines: value, limit, margin.
+
+A check compares; it solves nothing. Which checks decide the verdict, and under which doubts, is ``judge``'s.
+"""
+
+from collections.abc import Iterator
+from math import isfinite
+
+from loopslack.calc.analysis import Analysis
+from loopslack.calc.equilibrium import ROUNDING, Equilibrium
+from loopslack.calc.judgement import Check, CheckCode
+from loopslack.calc.model import Part, Relief
+from loopslack.calc.states import LiquidState
+from loopslack.calc.window import Bounds, Window, cut_off_pressure
+from loopslack.kernel import kinds
+from loopslack.kernel.kinds import Kind
+from loopslack.physics.statics import GRAVITY
+
+PRESSURE, DIFFERENCE = kinds.ABSOLUTE_PRESSURE, kinds.PRESSURE_DIFFERENCE
+
+
+def compare(
+    code: CheckCode,
+    state: str,
+    kind: Kind,
+    value: float,
+    limit: float,
+    *,
+    at_most: bool,
+    subject: str = "",
+    at_least: bool = False,
+) -> Check:
+    """A core check of a value against a limit; the solvers' rounding is not a failure."""
+    margin = limit - value if at_most else value - limit
+    holds = margin >= -ROUNDING * max(abs(limit), abs(value))
+    if holds and margin < 0:
+        margin = 0.0
+    verdict = "holds" if holds else "does-not-hold"
+    return Check(code, True, state, verdict, kind, value, limit, margin, subject, "", at_least)
+
+
+def relief_valve(analysis: Analysis, state: str, pressure: float, *, at_least: bool) -> Check:
+    """Vessel pressure in stagnation against the valve's lowest opening pressure, carried to the vessel."""
+    limit = analysis.final_pressure
+    return compare("relief-valve", state, PRESSURE, pressure, limit, at_most=True, at_least=at_least)
+
+
+def acceptance(state: str, found: Equilibrium, accepted: float, nominal: float) -> Check:
+    """Liquid held in stagnation against what the membrane takes."""
+    limit = min(accepted, nominal)
+    return compare("acceptance", state, kinds.VOLUME, found.liquid, limit, at_most=True)
+
+
+def membrane(state: str, found: Equilibrium, limit: float) -> Check:
+    """Mixed temperature in the vessel against the membrane's limit."""
+    return compare(
+        "membrane-temperature", state, kinds.TEMPERATURE, found.mixed_temperature, limit, at_most=True
+    )
+
+
+def steam_at_station(state: str, found: Equilibrium) -> Check:
+    """Steam power left when the branches are full, beyond what the station is said to take."""
+    return compare("steam-at-station", state, kinds.POWER, found.extent.unspent, 0.0, at_most=True)
+
+
+def reserve(bounds: Bounds, cold: LiquidState, mass: float, nominal: float) -> Check:
+    """Liquid left in the vessel when cold against the reserve."""
+    return compare(
+        "reserve", "cold", kinds.VOLUME, cold.held(mass), bounds.reserve(nominal), at_most=False
+    )
+
+
+def top_pressure(analysis: Analysis, pressure: float | None) -> Check:
+    """Pressure at the highest point when cold; an empty vessel has none to show, and fails."""
+    loop = analysis.loop
+    limit = loop.atmosphere + loop.criteria.top_pressure
+    if pressure is None:
+        return Check("top-pressure", True, "cold", "does-not-hold", PRESSURE, None, limit, reason="vessel-empty")
+    return compare("top-pressure", "cold", PRESSURE, pressure, limit, at_most=False)
+
+
+def cut_off(analysis: Analysis, pressure: float | None) -> Check:
+    """Vessel pressure at the pump's cut-off temperature against what keeps the top from boiling."""
+    limit = cut_off_pressure(analysis)
+    if pressure is None:
+        return Check(
+            "boiling-at-cut-off", True, "cut-off", "does-not-hold", PRESSURE, None, limit, reason="vessel-empty"
+        )
+    return compare("boiling-at-cut-off", "cut-off", PRESSURE, pressure, limit, at_most=False)
+
+
+def freezing(analysis: Analysis) -> Check:
+    """Freezing point against the site minimum less the margin."""
+    loop = analysis.loop
+    limit = loop.temperatures.site_minimum - loop.criteria.freeze_margin
+    point = loop.fluid.freezing_point
+    return compare("freezing", "cold", kinds.TEMPERATURE, point, limit, at_most=True)
+
+
+def fill_window(analysis: Analysis, window: Window, filled: float | None, state: str) -> Check:
+    """Width of the window against what an installer can hit; a fill outside it fails whatever the width."""
+    limit = analysis.loop.criteria.window_width
+    width = window.width
+    if not isfinite(width):
+        return Check("fill-window", True, state, "does-not-hold", DIFFERENCE, None, limit, reason="no-window")
+    check = compare("fill-window", state, DIFFERENCE, width, limit, at_most=False)
+    if check.verdict == "does-not-hold":
+        return check
+    if filled is None or not window.lower <= filled * (1 + ROUNDING) <= window.upper * (1 + 2 * ROUNDING):
+        return check._replace(verdict="does-not-hold", reason="fill-outside-window")
+    if not window.wide_enough:
+        return check._replace(verdict="does-not-hold", reason="too-close-to-precharge")
+    return check
+
+
+def protected(analysis: Analysis, part: Part) -> Check:
+    """Rating of a part against the valve's set pressure, carried to the part's height by the heavier liquid."""
+    loop = analysis.loop
+    needed = pressure_to_withstand(analysis, loop.relief, part.height)
+    if part.rated_pressure is None:
+        return Check(
+            "part-rating", False, "fill", "not-assessed", kinds.GAUGE_PRESSURE, None, needed,
+            subject=part.name, reason="rating-not-stated",
+        )  # fmt: skip
+    return compare(
+        "part-protected",
+        "fill",
+        kinds.GAUGE_PRESSURE,
+        needed,
+        part.rated_pressure,
+        at_most=True,
+        subject=part.name,
+    )
+
+
+def pressure_to_withstand(analysis: Analysis, relief: Relief, height: float) -> float:
+    """Gauge pressure (Pa) at a height while the valve stands at its set pressure."""
+    drop = relief.height - height
+    temperatures, fluid = analysis.loop.temperatures, analysis.fluid
+    density = fluid.density(temperatures.fill if drop > 0 else temperatures.hot_liquid)
+    return relief.set_pressure + density * GRAVITY * drop
+
+
+def part_temperatures(analysis: Analysis) -> Iterator[Check]:
+    """Stated highest temperatures against the pump's cut-off temperature, the hottest a running pump brings."""
+    hottest = analysis.loop.temperatures.cut_off
+    for part in analysis.loop.parts:
+        if part.highest_temperature is not None:
+            yield compare(
+                "part-temperature", "cut-off", kinds.TEMPERATURE, hottest, part.highest_temperature,
+                at_most=True, subject=part.name,
+            )  # fmt: skip
+
+
+def suction(analysis: Analysis, pressure: float | None) -> Check:
+    """Pressure at the pump inlet above the bubble pressure against a stated net positive suction head."""
+    loop = analysis.loop
+    needed = loop.criteria.net_positive_suction
+    if needed is None:
+        return Check(
+            "net-positive-suction", False, "cut-off", "not-assessed", DIFFERENCE, reason="head-not-stated"
+        )
+    if pressure is None:
+        return Check(
+            "net-positive-suction", False, "cut-off", "does-not-hold", DIFFERENCE, None, needed,
+            reason="vessel-empty",
+        )  # fmt: skip
+    density = analysis.fluid.density(loop.temperatures.back)
+    inlet = pressure - density * GRAVITY * loop.pump_height
+    if loop.pump_side == "discharge":
+        inlet -= loop.pump_head
+    spare = inlet - analysis.fluid.bubble_pressure(loop.temperatures.back)
+    check = compare("net-positive-suction", "cut-off", DIFFERENCE, spare, needed, at_most=False)
+    return check._replace(core=False)

@@ -1,0 +1,138 @@
+"""The smallest nominal volume whose fill window is wide enough, found without trying sizes.
+
+At the final pressure the loop is known, so the window of any vessel is a few multiplications; its width is the
+function whose root is the answer. A larger vessel is not always safer, so both ends of the feasible interval are
+looked for and a candidate is always checked itself.
+"""
+
+from collections.abc import Sequence
+from math import inf
+from typing import NamedTuple
+
+from loopslack.calc.analysis import Analysis
+from loopslack.calc.cooling import membrane_bound
+from loopslack.calc.precharge import precharge, precharge_temperature
+from loopslack.calc.scenarios import Scenario
+from loopslack.calc.window import Bound, Bounds, Gas, Window
+from loopslack.kernel.roots import bracketed
+
+_LADDER = 1.25  # step of the search for the bracket; the root itself is solved, not stepped
+_RUNGS = 48  # 1.25^48 is 45,000 times the smallest vessel that could work at all
+
+
+class Interval(NamedTuple):
+    """Feasible nominal volumes (m3); ``largest`` is infinite where no upper end was found."""
+
+    smallest: float
+    largest: float
+    window: Window
+    precharge: float
+
+
+def feasible(
+    analysis: Analysis, scenarios: Sequence[Scenario], membrane_limit: float | None = None
+) -> Interval | None:
+    """The interval of nominal volumes with a wide enough window under every scenario; None if there is none.
+
+    With a ``membrane_limit`` (K) the filling must also keep the membrane at or below it.
+    """
+    if any(analysis.case(scenario).at_station for scenario in scenarios):
+        return None
+    slack = _Slack(analysis, scenarios, membrane_limit)
+    low = slack.least()
+    if low is None:
+        return None
+    volume, value = low, slack.at(low)
+    rungs = 0
+    while value < 0:
+        previous, before = volume, value
+        volume *= _LADDER
+        rungs += 1
+        if rungs > _RUNGS:
+            return None
+        value = slack.at(volume)
+    smallest = volume
+    if rungs:
+        smallest = bracketed(slack.at, previous, volume, before, value, 1e-13 * volume).at
+        # The root is met from above, so that the smallest vessel reported has its window.
+        while slack.at(smallest) < 0:
+            smallest *= 1 + 1e-12
+    return Interval(smallest, slack.upper_end(volume), slack.window(smallest), slack.precharge(smallest))
+
+
+class _Slack:
+    """How much wider (Pa) than demanded the window of a nominal volume is; negative where it is too narrow."""
+
+    def __init__(
+        self, analysis: Analysis, scenarios: Sequence[Scenario], membrane_limit: float | None
+    ) -> None:
+        self.analysis, self.scenarios, self.membrane_limit = analysis, scenarios, membrane_limit
+        self.temperature = precharge_temperature(analysis)
+        self.fixed = analysis.loop.precharge.kind != "optimised"
+        self._bounds = self._for(1.0) if self.fixed else None
+
+    def _for(self, nominal: float) -> Bounds:
+        gas = Gas(nominal, precharge(self.analysis, nominal), self.temperature)
+        return Bounds(self.analysis, self.scenarios, gas)
+
+    def precharge(self, nominal: float) -> float:
+        """Precharge (Pa) of a vessel of this size."""
+        return precharge(self.analysis, nominal)
+
+    def window(self, nominal: float) -> Window:
+        """The window of a vessel of this size."""
+        bounds, lower, upper = self._masses(nominal)
+        return bounds.window_between(nominal, lower, upper, self.analysis.loop.temperatures.fill)
+
+    def at(self, nominal: float) -> float:
+        """Slack in Pa."""
+        bounds, lower, upper = self._masses(nominal)
+        return slack_between(bounds, nominal, lower.mass, upper.mass)
+
+    def _masses(self, nominal: float) -> tuple[Bounds, Bound, Bound]:
+        bounds = self._bounds or self._for(nominal)
+        lower, upper = bounds.masses(nominal)
+        if self.membrane_limit is not None and 0 <= lower.mass < upper.mass:
+            gas = Gas(nominal, bounds.precharge, bounds.temperature)
+            limit = self.membrane_limit
+            lower = membrane_bound(self.analysis, self.scenarios, gas, lower, upper, limit)
+        return bounds, lower, upper
+
+    def least(self) -> float | None:
+        """A volume (m3) below every feasible one: what must be pushed out, with no gas left."""
+        bounds = self._bounds or self._for(1.0)
+        pushed = max(self.analysis.case(s).final.expelled for s in self.scenarios)
+        room = 1 - bounds.squeeze / self.analysis.final_pressure
+        if room <= 0:
+            return None
+        return max(1e-6, pushed / self.analysis.states.fill.vessel_density)
+
+    def upper_end(self, volume: float) -> float:
+        """The largest feasible volume (m3) above a feasible one, infinite if the slack never runs out."""
+        for _ in range(20):
+            following = volume * 2
+            value = self.at(following)
+            if value < 0:
+                found = bracketed(
+                    self.at, volume, following, self.at(volume), value, 1e-12 * following
+                ).at
+                while self.at(found) < 0:
+                    found *= 1 - 1e-12
+                return found
+            volume = following
+        return inf
+
+
+def slack_between(bounds: Bounds, nominal: float, lower: float, upper: float) -> float:
+    """Slack (Pa) of a window given by two masses (kg) in a vessel of ``nominal`` m3."""
+    criteria = bounds.analysis.loop.criteria
+    fill = bounds.analysis.loop.temperatures.fill
+    if upper < 0:
+        # No window at all: its shortage in mass, as a pressure, so that a root finder still sees a slope.
+        return bounds.precharge * (upper / (bounds.fill_density * nominal) - 1)
+    low = bounds.pressure(nominal, max(lower, 0.0), fill)
+    high = bounds.pressure(nominal, upper, fill)
+    base = bounds.precharge * fill / bounds.temperature + criteria.fill_above_precharge
+    if low == inf:
+        return -bounds.precharge
+    return min(high - low - criteria.window_width, high - base - criteria.window_step)

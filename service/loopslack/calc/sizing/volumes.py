@@ -1,0 +1,98 @@
+"""The volumes a design reports: what the base case needs, what every single doubt needs, what all at once need.
+
+Each comes with the cooling vessel it needs, if the design may add one.
+"""
+
+from collections.abc import Sequence
+from typing import Literal, NamedTuple
+
+from loopslack.calc.analysis import Analysis
+from loopslack.calc.cooling import Charged, smallest_content
+from loopslack.calc.model import Loop
+from loopslack.calc.precharge import precharge, precharge_temperature, top_requirement
+from loopslack.calc.scenarios import BASE, Scenario
+from loopslack.calc.sizing.mass_balance import Interval, feasible
+from loopslack.calc.window import Gas
+from loopslack.kernel.kinds import AbsolutePressure, NominalVolume, Volume
+from loopslack.physics.vessel import pressure_factor, reserve_en_12828
+
+CoolingMode = Literal["given", "none", "size"]
+
+_COLLECTOR_SHARE = 1.1  # EN 12977-1: collector content and a tenth (from memory, high confidence)
+
+
+class Sized(NamedTuple):
+    """A sizing: the feasible interval, the cooling vessel's content (m3) and the loop that has it.
+
+    ``floor`` (m3) is the least volume accepted although a smaller one would hold, 0 where none applies.
+    """
+
+    interval: Interval
+    cooling: float
+    analysis: Analysis
+    floor: float
+
+    @property
+    def smallest(self) -> float:
+        """The smallest nominal volume (m3) that may be recommended."""
+        return max(self.interval.smallest, self.floor)
+
+
+def size(
+    analysis: Analysis,
+    scenarios: Sequence[Scenario],
+    cooling: CoolingMode,
+    membrane_limit: float,
+    *,
+    accept_without_boiling: bool = False,
+) -> Sized | None:
+    """The smallest vessel that holds under every scenario, with the cooling vessel it needs; None if none does."""
+    floor = without_boiling_floor(analysis, accept_without_boiling=accept_without_boiling)
+    if cooling != "size":
+        interval = feasible(analysis, scenarios, membrane_limit)
+        return interval and Sized(interval, analysis.loop.cooling_content, analysis, floor)
+
+    found: dict[float, Interval] = {}
+
+    def charge(content: float) -> Charged | None:
+        cooled = analysis.with_cooling(content) if content else analysis
+        interval = feasible(cooled, scenarios)
+        if interval is None:
+            return None
+        found[content] = interval
+        volume = max(interval.smallest, floor)
+        gas = Gas(volume, precharge(cooled, volume), precharge_temperature(cooled))
+        return Charged(cooled, gas, interval.window.lower_bound.mass)
+
+    content = smallest_content(charge, scenarios, membrane_limit)
+    if content is None:
+        return None
+    cooled = analysis.with_cooling(content) if content else analysis
+    return Sized(found[content], content, cooled, floor)
+
+
+def without_boiling_floor(analysis: Analysis, *, accept_without_boiling: bool) -> float:
+    """Least volume (m3) for a loop that relies on its collectors not boiling at the final pressure.
+
+    Such a loop stands on a computed stagnation temperature alone, so the volume of EN 12977 is asked for, unless
+    the caller accepts less and states measured stagnation temperatures.
+    """
+    if analysis.case(BASE).final.boiling:
+        return 0.0
+    measured = all(group.measured_stagnation for group in analysis.loop.groups)
+    if accept_without_boiling and measured:
+        return 0.0
+    return en_12977_volume(analysis)
+
+
+def en_12977_volume(analysis: Analysis) -> float:
+    """Nominal volume (m3) by EN 12977: expansion of the loop, collector content and a tenth, reserve."""
+    loop: Loop = analysis.loop
+    temperatures = loop.temperatures
+    expansion = loop.fluid.expansion(temperatures.fill, temperatures.hot_liquid)
+    start = top_requirement(analysis) * precharge_temperature(analysis) / analysis.states.cold.vessel
+    factor = pressure_factor(AbsolutePressure(analysis.final_pressure), AbsolutePressure(start))
+    reserve = loop.criteria.reserve
+    if reserve is None:
+        reserve = reserve_en_12828(NominalVolume(1.0), Volume(loop.content))
+    return (expansion * loop.content + _COLLECTOR_SHARE * loop.collector_content + reserve) * factor

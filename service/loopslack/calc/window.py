@@ -1,0 +1,259 @@
+"""The fill window: between which fill pressures a given vessel keeps every check.
+
+The mass of liquid a vessel is filled with has a lower bound from each check that wants pressure or reserve and an
+upper bound from each that wants room. In that mass most bounds are linear in the nominal volume; a window at any
+fill temperature follows from it.
+"""
+
+from collections.abc import Sequence
+from math import inf
+from typing import NamedTuple
+
+from loopslack.calc.analysis import Analysis
+from loopslack.calc.scenarios import Scenario
+from loopslack.physics.vessel import reserve_en_12828
+from loopslack.kernel.kinds import NominalVolume, Volume
+
+
+class Bound(NamedTuple):
+    """A bound on the filling of the vessel: which check sets it, under which scenario, and the mass (kg)."""
+
+    code: str
+    scenario: str
+    mass: float
+
+
+class Gas(NamedTuple):
+    """The gas side of a vessel (all of it, if there are several): volumes m3, precharge Pa absolute at K."""
+
+    nominal: float
+    precharge: float
+    temperature: float
+    acceptance: float = inf
+
+
+class Window(NamedTuple):
+    """Fill pressures (Pa absolute at the vessel, loop at ``temperature`` K) that keep every check.
+
+    Empty when ``upper`` is below ``lower``; ``wide_enough`` says whether an installer can hit it.
+    """
+
+    temperature: float
+    lower: float
+    upper: float
+    recommended: float
+    wide_enough: bool
+    lower_bound: Bound
+    upper_bound: Bound
+
+    @property
+    def width(self) -> float:
+        """Width, Pa; negative when empty."""
+        return self.upper - self.lower
+
+
+class Bounds:
+    """Bounds on the filling under a set of scenarios, for vessels of one precharge."""
+
+    def __init__(self, analysis: Analysis, scenarios: Sequence[Scenario], gas: Gas) -> None:
+        self.analysis = analysis
+        self.scenarios = scenarios
+        loop = analysis.loop
+        self.precharge, self.temperature = gas.precharge, gas.temperature
+        room = loop.temperatures.vessel_room
+        self.room_density = analysis.fluid.density(room)
+        self.fill_density = analysis.states.fill.vessel_density
+        self.squeeze = gas.precharge * room / gas.temperature
+        # (code, scenario, slope, offset): mass = slope * nominal - offset
+        self.lower: list[tuple[str, str, float, float]] = []
+        self.upper: list[tuple[str, str, float, float]] = []
+        self.warm: list[Scenario] = []
+        self._cold()
+        self._cut_off()
+        for scenario in scenarios:
+            self._stagnation(scenario)
+
+    def _line(self, code: str, id: str, pressure: float, expelled: float) -> tuple[str, str, float, float]:
+        """The mass with which the vessel just stands at a hot pressure."""
+        density = self.room_density
+        return (
+            code,
+            id,
+            density * (1 - self.squeeze / pressure),
+            density * self.analysis.allowance + expelled,
+        )
+
+    def _cold(self) -> None:
+        """The pressure at the top when cold."""
+        loop, cold = self.analysis.loop, self.analysis.states.cold
+        needed = loop.atmosphere + loop.criteria.top_pressure + cold.column
+        squeeze = self.precharge * cold.vessel / self.temperature
+        slope = cold.vessel_density * (1 - squeeze / needed)
+        self.lower.append(
+            ("top-pressure", "cold", slope, cold.vessel_density * cold.allowance + cold.expelled)
+        )
+
+    def _cut_off(self) -> None:
+        """No boiling at the top when the pump cuts off."""
+        needed = cut_off_pressure(self.analysis)
+        state = self.analysis.states.cut_off
+        self.lower.append(self._plain("boiling-at-cut-off", "cut-off", needed, state.expelled))
+
+    def _plain(self, code: str, id: str, pressure: float, expelled: float) -> tuple[str, str, float, float]:
+        density = self.room_density
+        return code, id, density * (1 - self.squeeze / pressure), expelled
+
+    def _stagnation(self, scenario: Scenario) -> None:
+        case = self.analysis.case(scenario)
+        final, pressure = case.final, self.analysis.final_pressure
+        if scenario.gas_follows:
+            self.warm.append(scenario)
+        else:
+            self.upper.append(self._line("relief-valve", scenario.id, pressure, final.expelled))
+        if case.at_station:
+            self.lower.append(("steam-at-station", scenario.id, 0.0, -inf))
+        elif case.station is not None and not scenario.gas_follows:
+            station = case.station
+            self.lower.append(
+                self._line("steam-at-station", scenario.id, station.pressure, station.expelled)
+            )
+
+    def reserve(self, nominal: float) -> float:
+        """Liquid (m3) a vessel must still hold when cold."""
+        loop = self.analysis.loop
+        if loop.criteria.reserve is not None:
+            return loop.criteria.reserve
+        return reserve_en_12828(NominalVolume(nominal), Volume(loop.content))
+
+    def masses(self, nominal: float, acceptance: float = inf) -> tuple[Bound, Bound]:
+        """Lower and upper bound on the mass (kg) a vessel of ``nominal`` m3 is filled with."""
+        cold = self.analysis.states.cold
+        lowest = Bound("reserve", "cold", cold.mass_holding(self.reserve(nominal)))
+        for code, id, slope, offset in self.lower:
+            mass = slope * nominal - offset
+            if mass > lowest.mass:
+                lowest = Bound(code, id, mass)
+        highest = Bound("membrane-full", "fill", self.fill_density * min(nominal, acceptance))
+        for code, id, slope, offset in self.upper:
+            mass = slope * nominal - offset
+            if mass < highest.mass:
+                highest = Bound(code, id, mass)
+        for scenario in self.warm:
+            case = self.analysis.case(scenario)
+            pressure = self.analysis.final_pressure
+            mass = self._warm_mass(nominal, pressure, case.final.expelled)
+            if mass < highest.mass:
+                highest = Bound("relief-valve", scenario.id, mass)
+            if case.station is not None:
+                mass = self._warm_mass(nominal, case.station.pressure, case.station.expelled)
+                if mass > lowest.mass:
+                    lowest = Bound("steam-at-station", scenario.id, mass)
+        if acceptance < nominal:
+            highest = self._accepting(nominal, acceptance, highest)
+        return lowest, highest
+
+    def _warm_mass(self, nominal: float, pressure: float, expelled: float) -> float:
+        """As ``_line`` with gas and liquid of the vessel at the mixed temperature.
+
+        Substitution shrinks the error about tenfold a pass, since warmer gas leaves less room for the liquid that
+        warms it; a secant through two passes does the rest.
+        """
+        analysis, mix = self.analysis, self.analysis.mix
+        density, fill = analysis.fluid.density, self.fill_density
+        squeeze = self.precharge / self.temperature / pressure
+
+        def mass_at(temperature: float) -> tuple[float, float]:
+            held = nominal * (1 - squeeze * temperature)
+            mass = density(temperature) * (held - analysis.allowance) - expelled
+            return mass, mix.temperature(mass / fill if mass > 0 else 0.0, held)
+
+        if nominal * (1 - squeeze * mix.hot) <= 0:
+            return -inf
+        first = mix.room
+        second = mass_at(first)[1]
+        error = second - first
+        for _ in range(30):
+            mass, mixed = mass_at(second)
+            following = mixed - second
+            if abs(following) < 1e-11:
+                break
+            step = following - error
+            first, previous = second, first
+            if step != 0:
+                second -= following * (second - previous) / step
+                # A secant may overshoot where the return pipe's liquid ends; the temperatures bound it.
+                second = min(max(second, mix.room), mix.hot) if mix.hot > mix.room else mix.room
+            else:
+                second = mixed
+            error = following
+        return mass
+
+    def _accepting(self, nominal: float, acceptance: float, highest: Bound) -> Bound:
+        """Tighten the upper bound where the membrane takes less than the gas would allow."""
+        analysis = self.analysis
+        for scenario in self.scenarios:
+            room = nominal * (1 - self.squeeze / analysis.final_pressure)
+            if acceptance >= room:
+                continue
+            # At this pressure the gas leaves exactly the acceptance volume. Gas warmer than the room
+            # would leave less, so the isothermal reading is the one that fills the membrane most.
+            pressure = self.squeeze / (1 - acceptance / nominal)
+            extent = analysis.case(scenario).balance.at_pressure(pressure)
+            mass = self.room_density * (acceptance - analysis.allowance) - extent.expelled
+            if mass < highest.mass:
+                highest = Bound("acceptance", scenario.id, mass)
+        return highest
+
+    def window(self, nominal: float, acceptance: float = inf) -> Window:
+        """The window of a vessel of ``nominal`` m3 at the fill temperature."""
+        lower, upper = self.masses(nominal, acceptance)
+        return self.window_between(nominal, lower, upper, self.analysis.loop.temperatures.fill)
+
+    def window_between(self, nominal: float, lower: Bound, upper: Bound, temperature: float) -> Window:
+        """A pair of mass bounds as fill pressures with the loop and the gas at ``temperature`` K."""
+        criteria = self.analysis.loop.criteria
+        low = self.pressure(nominal, lower.mass, temperature)
+        high = self.pressure(nominal, upper.mass, temperature)
+        base = self.precharge * temperature / self.temperature + criteria.fill_above_precharge
+        recommended = max(low + criteria.window_step, base)
+        enough = (
+            upper.mass > lower.mass
+            and high < inf
+            and high - low >= criteria.window_width
+            and high - base >= criteria.window_step
+        )
+        return Window(temperature, low, high, recommended, enough, lower, upper)
+
+    def pressure(self, nominal: float, mass: float, temperature: float) -> float:
+        """Fill pressure (Pa) with a mass (kg) in the vessel, loop and gas at ``temperature`` K.
+
+        ``mass`` counts at the fill temperature; at another one the loop takes or gives its expansion. Minus
+        infinity below an empty vessel's precharge, where the pressure is not defined.
+        """
+        analysis = self.analysis
+        content = analysis.loop.content
+        if temperature == analysis.loop.temperatures.fill:
+            held = mass / self.fill_density
+        else:
+            total = mass + self.fill_density * content
+            held = total / analysis.fluid.density(temperature) - content
+        if held < 0:
+            return -inf
+        gas = nominal - held
+        if gas <= 0:
+            return inf
+        return self.precharge * nominal / gas * temperature / self.temperature
+
+    def mass(self, nominal: float, pressure: float) -> float:
+        """Mass (kg) in the vessel at a fill pressure (Pa) at the fill temperature; negative below the precharge."""
+        fill = self.analysis.loop.temperatures.fill
+        return self.fill_density * nominal * (1 - self.precharge * fill / self.temperature / pressure)
+
+
+def cut_off_pressure(analysis: Analysis) -> float:
+    """Vessel pressure (Pa) that keeps the highest point from boiling at the pump's cut-off temperature."""
+    loop = analysis.loop
+    state = analysis.states.cut_off
+    bubble = analysis.fluid.bubble_pressure(loop.temperatures.cut_off)
+    against = loop.pump_head if loop.pump_side == "discharge" else 0.0
+    return bubble + loop.criteria.boiling_margin + state.column + against
