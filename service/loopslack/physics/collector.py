@@ -19,7 +19,7 @@ from loopslack.kernel.kinds import (
 
 ISO_9806 = Cite("iso-9806", "from-memory")
 
-_POSITIVE = Range(0.0)
+_FROM_ZERO = Range(0.0)
 
 
 @equation(
@@ -28,7 +28,7 @@ _POSITIVE = Range(0.0)
     symbols={"a_1": "linear loss", "a_2": "quadratic loss", "T": "temperature", "T_a": "ambient"},
     source=ISO_9806,
     note="The square keeps the sign of the difference, so that a collector colder than the air gains heat.",
-    valid={"linear_loss": _POSITIVE, "quadratic_loss": _POSITIVE},
+    valid={"linear_loss": _FROM_ZERO, "quadratic_loss": _FROM_ZERO},
 )
 def collector_loss(
     linear_loss: HeatLossCoefficient,
@@ -58,7 +58,7 @@ def collector_loss(
     },
     source=ISO_9806,
     note="Steady heat of a collector held at one temperature; the most that can leave it as steam.",
-    valid={"optical_efficiency": Range(0.0, 1.0), "irradiance": _POSITIVE},
+    valid={"optical_efficiency": Range(0.0, 1.0), "irradiance": _FROM_ZERO},
 )
 def heat_bound(
     optical_efficiency: Ratio,
@@ -93,7 +93,7 @@ def heat_bound(
     },
     source=DERIVED,
     note="Root of the efficiency curve of ISO 9806, written so that it also holds without a quadratic term.",
-    valid={"optical_efficiency": Range(0.0, 1.0), "irradiance": _POSITIVE},
+    valid={"optical_efficiency": Range(0.0, 1.0), "irradiance": _FROM_ZERO},
 )
 def stagnation_temperature(
     optical_efficiency: Ratio,

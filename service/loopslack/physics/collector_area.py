@@ -7,8 +7,8 @@ from loopslack.kernel.citations import DERIVED
 from loopslack.kernel.equation import Range, equation
 from loopslack.kernel.kinds import Area, HeatLossCoefficient, QuadraticHeatLossCoefficient, Ratio
 
-_POSITIVE = Range(0.0)
-_AREAS = {"stated_area": _POSITIVE, "other_area": _POSITIVE}
+_FROM_ZERO = Range(0.0)
+_AREAS = {"stated_area": _FROM_ZERO, "other_area": _FROM_ZERO}
 
 
 @equation(

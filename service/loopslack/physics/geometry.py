@@ -10,7 +10,7 @@ from loopslack.kernel.citations import DERIVED
 from loopslack.kernel.equation import Range, equation
 from loopslack.kernel.kinds import ContentPerLength, Length, Volume
 
-_POSITIVE = Range(0.0)
+_FROM_ZERO = Range(0.0)
 
 
 @equation(
@@ -19,8 +19,8 @@ _POSITIVE = Range(0.0)
     symbols={"d": "outer diameter", "s": "wall"},
     source=DERIVED,
     note="Definition of the bore of a round tube.",
-    valid={"outer_diameter": _POSITIVE, "wall": _POSITIVE},
-    yields=_POSITIVE,
+    valid={"outer_diameter": _FROM_ZERO, "wall": _FROM_ZERO},
+    yields=_FROM_ZERO,
 )
 def bore_of_tube(outer_diameter: Length, wall: Length) -> Length:
     """Clear diameter of a round tube, m, from its outer diameter and wall, both nominal.
@@ -37,7 +37,7 @@ def bore_of_tube(outer_diameter: Length, wall: Length) -> Length:
     symbols={"d_i": "bore"},
     source=DERIVED,
     note="Area of a circle.",
-    valid={"bore": _POSITIVE},
+    valid={"bore": _FROM_ZERO},
 )
 def content_per_length(bore: Length) -> ContentPerLength:
     """Liquid per length of a round tube, m3/m (that is m2), from its bore.
@@ -53,7 +53,7 @@ def content_per_length(bore: Length) -> ContentPerLength:
     symbols={"a": "content"},
     source=DERIVED,
     note="Inverse of the content per length.",
-    valid={"content": _POSITIVE},
+    valid={"content": _FROM_ZERO},
 )
 def bore_of_content(content: ContentPerLength) -> Length:
     """Bore of the round tube, m, that holds as much liquid per length. ValueError for a negative content."""
@@ -66,7 +66,7 @@ def bore_of_content(content: ContentPerLength) -> Length:
     symbols={"a": "content", "L": "length"},
     source=DERIVED,
     note="Fittings count as the length of pipe they replace.",
-    valid={"content": _POSITIVE, "length": _POSITIVE},
+    valid={"content": _FROM_ZERO, "length": _FROM_ZERO},
 )
 def pipe_content(content: ContentPerLength, length: Length) -> Volume:
     """Liquid in a run of pipe, m3. Negative for a negative length, which a derivation refuses."""

@@ -18,7 +18,7 @@ from loopslack.kernel.kinds import (
     Temperature,
 )
 
-_POSITIVE = Range(0.0)
+_FROM_ZERO = Range(0.0)
 
 
 @equation(
@@ -33,10 +33,10 @@ _POSITIVE = Range(0.0)
     source=Cite("iso-12241", "from-memory"),
     note="Steady conduction through one cylindrical layer and a film at its surface.",
     valid={
-        "outer_diameter": _POSITIVE,
-        "insulation_thickness": _POSITIVE,
-        "conductivity": _POSITIVE,
-        "film_coefficient": _POSITIVE,
+        "outer_diameter": _FROM_ZERO,
+        "insulation_thickness": _FROM_ZERO,
+        "conductivity": _FROM_ZERO,
+        "film_coefficient": _FROM_ZERO,
     },
 )
 def pipe_conductance(
@@ -77,7 +77,7 @@ def pipe_conductance(
     symbols={"U": "conductance", "T": "temperature", "T_a": "ambient"},
     source=DERIVED,
     note="Definition of the conductance.",
-    valid={"conductance": _POSITIVE, "temperature": _POSITIVE, "ambient": _POSITIVE},
+    valid={"conductance": _FROM_ZERO, "temperature": _FROM_ZERO, "ambient": _FROM_ZERO},
 )
 def pipe_heat_loss(
     conductance: LinearConductance, temperature: Temperature, ambient: Temperature

@@ -12,7 +12,7 @@ from loopslack.kernel.equation import Range, equation
 from loopslack.kernel.errors import OutOfRange
 from loopslack.kernel.kinds import Temperature, Volume
 
-_POSITIVE = Range(0.0)
+_FROM_ZERO = Range(0.0)
 
 
 @equation(
@@ -26,7 +26,7 @@ _POSITIVE = Range(0.0)
     },
     source=DERIVED,
     note="By volume; weighing by heat capacity instead would lower the result by a few kelvin at most.",
-    valid={"first_volume": _POSITIVE, "second_volume": _POSITIVE},
+    valid={"first_volume": _FROM_ZERO, "second_volume": _FROM_ZERO},
 )
 def mixing_temperature(
     first_volume: Volume,
@@ -87,7 +87,7 @@ def mixed_after_arrival(
     },
     source=DERIVED,
     note="The mixing temperature solved for the cool volume at the membrane's limit.",
-    valid={"hot_volume": _POSITIVE},
+    valid={"hot_volume": _FROM_ZERO},
 )
 def cooling_content(
     hot_volume: Volume,

@@ -15,13 +15,13 @@ from loopslack.kernel.kinds import (
 )
 from loopslack.physics.statics import GRAVITY
 
-_POSITIVE = Range(0.0)
+_FROM_ZERO = Range(0.0)
 _TOP = {
-    "atmosphere": _POSITIVE,
-    "cold_density": _POSITIVE,
-    "top_height": _POSITIVE,
-    "precharge_temperature": _POSITIVE,
-    "cold_gas_temperature": _POSITIVE,
+    "atmosphere": _FROM_ZERO,
+    "cold_density": _FROM_ZERO,
+    "top_height": _FROM_ZERO,
+    "precharge_temperature": _FROM_ZERO,
+    "cold_gas_temperature": _FROM_ZERO,
 }
 
 
@@ -102,8 +102,8 @@ def precharge_din_4807_2(
     symbols={"p_f": "fill pressure", "dp": "difference"},
     source=Cite("ufc-3-440-01", "read"),
     note="The publication asks for 5 to 10 psi below the fill pressure.",
-    valid={"fill_pressure": _POSITIVE, "difference": _POSITIVE},
-    yields=_POSITIVE,
+    valid={"fill_pressure": _FROM_ZERO, "difference": _FROM_ZERO},
+    yields=_FROM_ZERO,
 )
 def precharge_below_fill(fill_pressure: AbsolutePressure, difference: PressureDifference) -> AbsolutePressure:
     """Precharge, Pa absolute, a stated distance below the fill pressure. Negative is impossible."""

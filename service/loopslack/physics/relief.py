@@ -11,8 +11,8 @@ from loopslack.kernel.equation import Range, equation
 from loopslack.kernel.kinds import Density, GaugePressure, Length, PressureDifference
 from loopslack.physics.statics import GRAVITY
 
-_POSITIVE = Range(0.0)
-_SET = {"set_pressure": _POSITIVE}
+_FROM_ZERO = Range(0.0)
+_SET = {"set_pressure": _FROM_ZERO}
 _SYMBOL = {"p_sv": "set pressure"}
 
 
@@ -97,7 +97,7 @@ ALLOWANCES: Mapping[str, Callable[[GaugePressure], PressureDifference]] = {
     symbols={"p_sv": "set pressure", "a": "allowance"},
     source=DERIVED,
     note="Definition of the allowance.",
-    valid={"set_pressure": _POSITIVE, "allowance": _POSITIVE},
+    valid={"set_pressure": _FROM_ZERO, "allowance": _FROM_ZERO},
 )
 def opening_pressure(set_pressure: GaugePressure, allowance: PressureDifference) -> GaugePressure:
     """Lowest gauge pressure at the valve, Pa, at which it must be expected to open.
@@ -113,7 +113,7 @@ def opening_pressure(set_pressure: GaugePressure, allowance: PressureDifference)
     symbols={"p_rv": "pressure at valve", "rho": "density", "z": "valve height"},
     source=DERIVED,
     note="Column pressure between the valve and the part.",
-    valid={"density": _POSITIVE},
+    valid={"density": _FROM_ZERO},
 )
 def pressure_under_valve(
     pressure_at_valve: GaugePressure, density: Density, valve_height: Length
@@ -164,7 +164,7 @@ def blowdown_gas(set_pressure: GaugePressure) -> PressureDifference:
     symbols={"p_sv": "set pressure", "b": "blowdown"},
     source=DERIVED,
     note="Definition of the blowdown.",
-    valid={"set_pressure": _POSITIVE, "blowdown": _POSITIVE},
+    valid={"set_pressure": _FROM_ZERO, "blowdown": _FROM_ZERO},
 )
 def closing_pressure(set_pressure: GaugePressure, blowdown: PressureDifference) -> GaugePressure:
     """Gauge pressure at the valve, Pa, at which it has shut again.

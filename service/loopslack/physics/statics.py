@@ -10,7 +10,7 @@ from loopslack.kernel.kinds import AbsolutePressure, Density, GaugePressure, Len
 
 GRAVITY = 9.80665
 
-_POSITIVE = Range(0.0)
+_FROM_ZERO = Range(0.0)
 
 
 @equation(
@@ -19,7 +19,7 @@ _POSITIVE = Range(0.0)
     symbols={"rho": "density", "z": "height"},
     source=Cite("si-brochure", "from-memory"),
     note="Hydrostatics with the standard acceleration of free fall; local gravity differs by up to 0.3 %.",
-    valid={"density": _POSITIVE},
+    valid={"density": _FROM_ZERO},
 )
 def column_pressure(density: Density, height: Length) -> PressureDifference:
     """Pressure of a column of liquid, Pa, positive when the height is.
@@ -36,8 +36,8 @@ def column_pressure(density: Density, height: Length) -> PressureDifference:
     symbols={"p": "pressure", "rho": "density", "z": "height"},
     source=DERIVED,
     note="Column pressure, subtracted on the way up.",
-    valid={"pressure": _POSITIVE, "density": _POSITIVE},
-    yields=_POSITIVE,
+    valid={"pressure": _FROM_ZERO, "density": _FROM_ZERO},
+    yields=_FROM_ZERO,
 )
 def pressure_at_height(pressure: AbsolutePressure, density: Density, height: Length) -> AbsolutePressure:
     """Absolute pressure, Pa, at a height above (positive) or below (negative) a point of known pressure.
@@ -54,8 +54,8 @@ def pressure_at_height(pressure: AbsolutePressure, density: Density, height: Len
     symbols={"p_g": "gauge", "p_atm": "atmosphere"},
     source=DERIVED,
     note="Definition of gauge pressure.",
-    valid={"atmosphere": _POSITIVE},
-    yields=_POSITIVE,
+    valid={"atmosphere": _FROM_ZERO},
+    yields=_FROM_ZERO,
 )
 def absolute_from_gauge(gauge: GaugePressure, atmosphere: AbsolutePressure) -> AbsolutePressure:
     """Absolute pressure, Pa, behind a gauge reading at the site. Negative for an impossible vacuum."""
@@ -68,7 +68,7 @@ def absolute_from_gauge(gauge: GaugePressure, atmosphere: AbsolutePressure) -> A
     symbols={"p": "pressure", "p_atm": "atmosphere"},
     source=DERIVED,
     note="Definition of gauge pressure.",
-    valid={"pressure": _POSITIVE, "atmosphere": _POSITIVE},
+    valid={"pressure": _FROM_ZERO, "atmosphere": _FROM_ZERO},
 )
 def gauge_from_absolute(pressure: AbsolutePressure, atmosphere: AbsolutePressure) -> GaugePressure:
     """Gauge pressure, Pa, that is read at the site. Negative below the atmosphere."""

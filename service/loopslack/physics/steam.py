@@ -7,7 +7,7 @@ from loopslack.kernel.citations import DERIVED
 from loopslack.kernel.equation import Range, equation
 from loopslack.kernel.kinds import Area, Density, Duration, Irradiance, Mass, Power, Ratio, SpecificEnthalpy
 
-_POSITIVE = Range(0.0)
+_FROM_ZERO = Range(0.0)
 
 
 @equation(
@@ -16,7 +16,7 @@ _POSITIVE = Range(0.0)
     symbols={"q": "heat", "A": "area"},
     source=DERIVED,
     note="Area on the basis that the heat per area was computed on.",
-    valid={"area": _POSITIVE},
+    valid={"area": _FROM_ZERO},
 )
 def collector_power(heat: Irradiance, area: Area) -> Power:
     """Heat of a field, W, from heat per area and the area on the same basis. Keeps the sign of the heat."""
@@ -29,7 +29,7 @@ def collector_power(heat: Irradiance, area: Area) -> Power:
     symbols={"Q": "power", "t": "duration", "h_fg": "latent heat"},
     source=DERIVED,
     note="Steady boiling; with one hour it is the capacity that a valve must pass in kg/h.",
-    valid={"duration": _POSITIVE, "latent_heat": _POSITIVE},
+    valid={"duration": _FROM_ZERO, "latent_heat": _FROM_ZERO},
 )
 def steam_mass(power: Power, duration: Duration, latent_heat: SpecificEnthalpy) -> Mass:
     """Steam, kg, that a power makes in a time. Heating up to boiling is neglected: more steam.
@@ -45,7 +45,7 @@ def steam_mass(power: Power, duration: Duration, latent_heat: SpecificEnthalpy) 
     symbols={"rho_l": "liquid density", "rho_g": "steam density"},
     source=DERIVED,
     note="The 1700 often quoted holds at atmospheric pressure only.",
-    valid={"liquid_density": _POSITIVE, "steam_density": _POSITIVE},
+    valid={"liquid_density": _FROM_ZERO, "steam_density": _FROM_ZERO},
 )
 def steam_volume_ratio(liquid_density: Density, steam_density: Density) -> Ratio:
     """Litres of steam from one litre of liquid. ZeroDivisionError for a steam density of zero."""

@@ -21,7 +21,7 @@ from loopslack.kernel.kinds import (
 BOYLE = Cite("boyle-mariotte", "from-memory")
 EN_12828 = Cite("en-12828", "from-memory")
 
-_POSITIVE = Range(0.0)
+_FROM_ZERO = Range(0.0)
 
 
 @equation(
@@ -36,8 +36,8 @@ _POSITIVE = Range(0.0)
     },
     source=BOYLE,
     note="Isothermal at the stated gas temperature.",
-    valid={"precharge": _POSITIVE, "pressure": _POSITIVE},
-    yields=_POSITIVE,
+    valid={"precharge": _FROM_ZERO, "pressure": _FROM_ZERO},
+    yields=_FROM_ZERO,
 )
 def liquid_held(
     nominal_volume: NominalVolume,
@@ -68,7 +68,7 @@ def liquid_held(
     },
     source=BOYLE,
     note="The vessel liquid solved for the pressure.",
-    valid={"precharge": _POSITIVE, "liquid": _POSITIVE},
+    valid={"precharge": _FROM_ZERO, "liquid": _FROM_ZERO},
 )
 def gas_pressure(
     nominal_volume: NominalVolume,
@@ -106,7 +106,7 @@ def _gas_volume(nominal_volume: NominalVolume, liquid: Volume) -> float:
     source=EN_12828,
     note="Boyle's law from the precharge to the final pressure, both absolute. Gauge pressures here "
     "are a published error, a vessel of 17 L where 22.6 L are right.",
-    valid={"final_pressure": _POSITIVE, "precharge": _POSITIVE},
+    valid={"final_pressure": _FROM_ZERO, "precharge": _FROM_ZERO},
 )
 def pressure_factor(final_pressure: AbsolutePressure, precharge: AbsolutePressure) -> Ratio:
     """Nominal volume per volume of liquid taken up, above 1.
@@ -130,7 +130,7 @@ def pressure_factor(final_pressure: AbsolutePressure, precharge: AbsolutePressur
     symbols={"V": "displaced", "F": "factor"},
     source=EN_12828,
     note="Every published rule is this product; they differ in what they count as displaced.",
-    valid={"displaced": _POSITIVE, "factor": Range(1.0)},
+    valid={"displaced": _FROM_ZERO, "factor": Range(1.0)},
 )
 def nominal_volume_for(displaced: Volume, factor: Ratio) -> NominalVolume:
     """Smallest vessel, m3, that takes up a displaced volume within the pressures behind the factor."""
@@ -143,7 +143,7 @@ def nominal_volume_for(displaced: Volume, factor: Ratio) -> NominalVolume:
     symbols={"V_e": "expansion", "F": "factor"},
     source=EN_12828,
     note="The reserve of a vessel up to 15 L is a fifth of the vessel itself, solved for the vessel.",
-    valid={"expansion": _POSITIVE, "factor": Range(1.0)},
+    valid={"expansion": _FROM_ZERO, "factor": Range(1.0)},
 )
 def nominal_volume_small_vessel(expansion: Volume, factor: Ratio) -> NominalVolume:
     """Smallest vessel, m3, that takes up an expansion and keeps a fifth of itself as reserve.
@@ -184,7 +184,7 @@ def water_expansion_en_12828(temperature: Temperature) -> ExpansionCoefficient:
     symbols={"V_N": "nominal volume", "V_s": "content"},
     source=EN_12828,
     note="Also DIN 4807-2.",
-    valid={"nominal_volume": _POSITIVE, "content": _POSITIVE},
+    valid={"nominal_volume": _FROM_ZERO, "content": _FROM_ZERO},
 )
 def reserve_en_12828(nominal_volume: NominalVolume, content: Volume) -> Volume:
     """Liquid, m3, that the vessel must still hold when the loop is coldest.
@@ -203,7 +203,7 @@ def reserve_en_12828(nominal_volume: NominalVolume, content: Volume) -> Volume:
     symbols={"V_N": "nominal volume", "p_0": "precharge", "V_wr": "reserve"},
     source=EN_12828,
     note="In absolute pressures; the publication prints it with 1 bar for the atmosphere.",
-    valid={"precharge": _POSITIVE, "reserve": _POSITIVE},
+    valid={"precharge": _FROM_ZERO, "reserve": _FROM_ZERO},
 )
 def lowest_fill_pressure_en_12828(
     nominal_volume: NominalVolume, precharge: AbsolutePressure, reserve: Volume
@@ -222,7 +222,7 @@ def lowest_fill_pressure_en_12828(
     symbols={"V_N": "nominal volume", "p_0": "precharge", "p_e": "final pressure", "V_e": "expansion"},
     source=EN_12828,
     note="In absolute pressures; the publication prints it with 1 bar for the atmosphere.",
-    valid={"precharge": _POSITIVE, "final_pressure": _POSITIVE, "expansion": _POSITIVE},
+    valid={"precharge": _FROM_ZERO, "final_pressure": _FROM_ZERO, "expansion": _FROM_ZERO},
 )
 def highest_fill_pressure_en_12828(
     nominal_volume: NominalVolume,
@@ -244,7 +244,7 @@ def highest_fill_pressure_en_12828(
     symbols={"p_s": "rated pressure", "V_N": "nominal volume"},
     source=Cite("ped-2014-68-eu", "from-memory"),
     note="In bar times litres (one of them is 100 Pa m3), the unit of the directive's limits.",
-    valid={"rated_pressure": _POSITIVE},
+    valid={"rated_pressure": _FROM_ZERO},
 )
 def pressure_volume_product(rated_pressure: GaugePressure, nominal_volume: NominalVolume) -> Ratio:
     """Rated pressure times volume of a vessel, in multiples of 1 bar litre, which decides its category."""
