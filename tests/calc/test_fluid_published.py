@@ -1,6 +1,7 @@
 """Fluids against published values: see ``published/fluids.toml``."""
 
 import pytest
+
 from published.fluid_checks import Check, checks, computed
 
 

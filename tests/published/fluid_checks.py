@@ -1,6 +1,7 @@
-"""Reads the published fluid values and answers each with what the service computes. Holds no number of its own."""
+"""Reads the published fluid values and answers each with what the service computes."""
 
 import tomllib
+from collections.abc import Callable
 from pathlib import Path
 
 from msgspec import Struct, convert
@@ -43,37 +44,30 @@ def fluid_of(check: Check) -> Fluid:
 
 
 def computed(check: Check) -> float:
-    """What the service says, in the unit of the check."""
-    at = ZERO + (check.temperature or 0.0)
-    match check.property:
-        case "bubble-pressure-law":
-            return water_law.saturation_pressure(at)
-        case "vapour-density-law":
-            return water_law.vapour_density(at)
-        case "latent-heat-law":
-            return water_law.latent_heat(at)
-        case "saturation-slope":
-            return water_law.saturation_slope(at)
-        case "density":
-            return fluid_of(check).density(at)
-        case "density-ratio":
-            return fluid_of(check).density(at) / fluid_of(check).density(ZERO + 20.0)
-        case "bubble-pressure":
-            return fluid_of(check).bubble_pressure(at)
-        case "boiling-temperature":
-            return fluid_of(check).boiling_temperature(check.pressure) - ZERO
-        case "vapour-density":
-            return fluid_of(check).saturated(at)[1]
-        case "latent-heat":
-            return fluid_of(check).latent_heat(at)
-        case "heat-capacity":
-            return fluid_of(check).heat_capacity(at)
-        case "freezing-pure":
-            return mixture.freezing_point(check.strength, glycol_data(_kind(check)).freezing_pure) - ZERO
-        case "freezing-inhibited":
-            return mixture.freezing_point(check.strength, glycol_data(_kind(check)).freezing_inhibited) - ZERO
-    raise ValueError(f"no such property: {check.property}")
+    """What the service says, in the unit of the check. KeyError for a property nobody knows."""
+    return _COMPUTED[check.property](check, ZERO + (check.temperature or 0.0))
 
 
 def _kind(check: Check) -> GlycolKind:
     return "propylene-glycol" if check.fluid == "propylene-glycol" else "ethylene-glycol"
+
+
+_COMPUTED: dict[str, Callable[[Check, float], float]] = {
+    "bubble-pressure-law": lambda _, at: water_law.saturation_pressure(at),
+    "vapour-density-law": lambda _, at: water_law.vapour_density(at),
+    "latent-heat-law": lambda _, at: water_law.latent_heat(at),
+    "saturation-slope": lambda _, at: water_law.saturation_slope(at),
+    "density": lambda check, at: fluid_of(check).density(at),
+    "density-ratio": lambda check, at: fluid_of(check).density(at) / fluid_of(check).density(ZERO + 20.0),
+    "bubble-pressure": lambda check, at: fluid_of(check).bubble_pressure(at),
+    "boiling-temperature": lambda check, _: fluid_of(check).boiling_temperature(check.pressure) - ZERO,
+    "vapour-density": lambda check, at: fluid_of(check).saturated(at)[1],
+    "latent-heat": lambda check, at: fluid_of(check).latent_heat(at),
+    "heat-capacity": lambda check, at: fluid_of(check).heat_capacity(at),
+    "freezing-pure": lambda check, _: _freezing(check, glycol_data(_kind(check)).freezing_pure),
+    "freezing-inhibited": lambda check, _: _freezing(check, glycol_data(_kind(check)).freezing_inhibited),
+}
+
+
+def _freezing(check: Check, curve: tuple[float, ...]) -> float:
+    return mixture.freezing_point(check.strength, curve) - ZERO

@@ -168,13 +168,14 @@ def glycol_latent_heat(
 def bubble_slope(
     temperature: Temperature, activity: tuple[float, float], antoine: tuple[float, float, float]
 ) -> tuple[float, float]:
-    """Bubble pressure in Pa and its rise with temperature in Pa/K, for a Newton step.
-
-    The slope takes ``B/(R T)`` as constant, which is within 1 %. Derived from the law of the bubble pressure.
-    """
+    """Bubble pressure in Pa and its rise with temperature in Pa/K. Derived from the law above."""
     pressure, glycol, k = partial_pressures(temperature, activity, antoine)
-    steam = pressure - glycol
-    saturation = water.saturation_pressure(temperature)
-    relative = water.saturation_slope(temperature) * (1.0 / saturation + k)
+    water_part = pressure - glycol
+    steam = water.saturation_pressure(temperature)
+    rise = water.saturation_slope(temperature) / steam
+    # k = M/(rho R T) - 1/p_sat, so its first term is k + 1/p_sat.
+    k_rise = rise / steam - (k + 1.0 / steam) * (water.vapour_growth(temperature) + 1.0 / temperature)
+    relative = rise * (1.0 + k * steam) + k_rise * (steam - pressure)
     hot = temperature + antoine[2]
-    return pressure, (steam * relative + glycol * antoine[1] / (hot * hot)) / (1.0 + k * steam)
+    of_glycol = glycol * antoine[1] / (hot * hot)
+    return pressure, (water_part * relative + of_glycol) / (1.0 + k * water_part)

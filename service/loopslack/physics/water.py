@@ -134,6 +134,23 @@ def vapour_density(temperature: Temperature) -> Density:
     )
 
 
+def vapour_growth(temperature: Temperature) -> float:
+    """Relative rise of the density of saturated steam, 1/K: the derivative of equation 3, derived."""
+    s = 1.0 - temperature / CRITICAL_TEMPERATURE
+    c = s ** (1.0 / 6.0)
+    c2 = c * c
+    c4 = c2 * c2
+    bracket = (
+        -2.0 * 2.03150240 * c2
+        - 4.0 * 2.68302940 * c4
+        - 8.0 * 5.38626492 * c4 * c4
+        - 18.0 * 17.2991605 * c**18.0
+        - 37.0 * 44.7586581 * c**37.0
+        - 71.0 * 63.9201063 * c**71.0
+    )
+    return float(-bracket / (6.0 * CRITICAL_TEMPERATURE * s))
+
+
 @equation(
     "water-latent-heat",
     law="h = T dp/dT (1/rho_v - 1/rho_l)",
