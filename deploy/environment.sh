@@ -1,12 +1,14 @@
 # Sourced by the scripts that need a Python environment: finds an interpreter, makes the environment, installs
 # pinned requirements into it, and knows when all that has been done before. Needs Python 3.11 or later, no more.
 
+# say LINE...
 say() {
-    printf '%s\n' "$*"
+    printf '%s\n' "$@"
 }
 
+# fail LINE...
 fail() {
-    printf '\n%s\n' "$*" >&2
+    printf '%s\n' "" "$@" >&2
     exit 1
 }
 

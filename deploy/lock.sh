@@ -21,5 +21,6 @@ lock() {
 
 lock deploy/requirements.txt pyproject.toml deploy/requirements.in --extra sheet
 lock deploy/speed-requirements.txt deploy/speed-requirements.in
+lock tests/tools-requirements.txt tests/tools-requirements.in
 lock tests/requirements.txt pyproject.toml deploy/requirements.in tests/requirements.in --all-extras \
     --constraint deploy/requirements.txt

@@ -1,8 +1,8 @@
 """The gunicorn worker of the service: gunicorn's own ASGI worker with the limits it does not enforce.
 
-Here live the time limits of one connection (request head, request body, a client that stops reading), the
-number of connections a worker accepts, and the shape of the errors that never reach the application. Nothing
-here knows a route, a design or a setting of the application; limits on the work itself live with the routes.
+Here live the time limits of one connection (request head, a client that stops reading), the number of
+connections a worker accepts, and the shape of the errors that never reach the application. Nothing here knows
+a route, a design or a setting of the application; limits on a body and on the work live with the routes.
 
 The protocol class of gunicorn is not a public interface. The names used here were read in gunicorn 27.0.1,
 which the requirement files pin; `tests/faults/test_connections.py` opens every connection a limit must cut.
@@ -66,11 +66,10 @@ def seconds_allowed(variable: str, default: float) -> float:
 class Limits:
     """The time limits of a connection in seconds, read from the environment once per worker."""
 
-    __slots__ = ("body", "head", "reader")
+    __slots__ = ("head", "reader")
 
     def __init__(self) -> None:
         self.head = seconds_allowed("LOOPSLACK_HEAD_SECONDS", 5.0)
-        self.body = seconds_allowed("LOOPSLACK_BODY_SECONDS", 60.0)
         self.reader = seconds_allowed("LOOPSLACK_READER_SECONDS", 30.0)
 
 
@@ -79,8 +78,6 @@ class GuardedProtocol(ASGIProtocol):
 
     * A request head must be complete a set time after the connection opened, or after its first byte on a
       connection kept alive (which also stays bounded by gunicorn's own idle limit).
-    * A request body must be complete a set time after its head. The application sees a disconnect, as with
-      gunicorn's own limit between two pieces of a body, and answers 408.
     * A client that reads nothing for a set time while an answer waits for it loses the connection.
     * A client that closes its sending side after a request still gets the answer.
     * Beyond `worker_connections` a connection is answered 503 without being read; beyond twice that number
@@ -153,16 +150,9 @@ class GuardedProtocol(ASGIProtocol):
 
     def _feed_callback_parser(self, data: bytes) -> bool:
         going_on: bool = super()._feed_callback_parser(data)
-        receiver = self._body_receiver
-        if not going_on or self._closed:
-            return going_on
-        if receiver is None:
+        if going_on and self._current_request is None and not self._closed:
             self._head_begun = True
             self._start("head", self._limits.head, self._head_overdue)
-        elif receiver._complete:
-            self._stop("body")
-        else:
-            self._start("body", self._limits.body, self._body_overdue)
         return going_on
 
     def _on_headers_complete(self) -> bool:
@@ -186,12 +176,6 @@ class GuardedProtocol(ASGIProtocol):
         if self._head_begun and not self._closed:
             self._send_error_response(HTTPStatus.REQUEST_TIMEOUT, "The request head did not arrive in time.")
         self._close()
-
-    def _body_overdue(self) -> None:
-        receiver = self._body_receiver
-        if receiver is not None and not receiver._complete:
-            receiver._body_wait_expired = True
-            receiver._wake_waiter()
 
     def _start(self, name: str, seconds: float, overdue: Callable[[], None]) -> None:
         """Start a timer unless it runs already: a second piece of the same thing gains no time."""
