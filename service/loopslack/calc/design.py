@@ -1,0 +1,142 @@
+"""The whole job: size the loop, choose a vessel, judge it. What else an answer shows is worked out from this."""
+
+from collections.abc import Sequence
+from typing import NamedTuple
+
+from loopslack.calc.analysis import Analysis
+from loopslack.calc.fit import Fit, fit
+from loopslack.calc.judge import judge, required
+from loopslack.calc.judgement import DoubtPolicy, Judgement
+from loopslack.calc.model import Loop, Vessel
+from loopslack.calc.scenarios import BASE, Scenario
+from loopslack.calc.selection import Selection, Selector
+from loopslack.calc.sizing.volumes import CoolingMode, Sized, size
+from loopslack.kernel.errors import CalculationError
+
+
+class Request(NamedTuple):
+    """What is asked beside the loop itself."""
+
+    candidates: Sequence[Vessel]
+    most_in_parallel: int
+    cooling: CoolingMode
+    policy: DoubtPolicy
+    accept_without_boiling: bool = False
+
+
+class Volumes(NamedTuple):
+    """Nominal volumes with what they need: for the base case, the required doubts singly, and all at once."""
+
+    base: Sized | None
+    recommended: Sized | None
+    robust: Sized | None
+
+
+class Design(NamedTuple):
+    """A designed loop.
+
+    ``shown`` is the vessel the states and checks are of: the chosen one, or the nearest candidate, which is then
+    not chosen. ``chosen`` is None unless the verdict is ``holds`` (or the policy asks for no doubt at all and the
+    base case holds).
+    """
+
+    loop: Loop
+    request: Request
+    analysis: Analysis
+    volumes: Volumes
+    selection: Selection
+    shown: Fit
+    judgement: Judgement
+    chosen: Fit | None
+    refused: dict[str, str]
+
+
+def design(loop: Loop, request: Request) -> Design:
+    """Size a loop, choose a vessel from the candidates and judge it under the doubts the policy asks for.
+
+    Raises ``CalculationError`` where the question itself cannot be answered, such as a state outside the fluid's
+    range. An unsound loop is no error: it is a design with a verdict.
+    """
+    analysis = Analysis(loop)
+    volumes, refused = _volumes(analysis, request)
+    limit = loop.criteria.membrane_limit
+    scenarios = required(analysis, request.policy)
+    selection = _select(analysis, scenarios, volumes.recommended, request)
+    shown = selection.chosen
+    if shown is None:
+        shown = _nearest(analysis, scenarios, selection, volumes, request)
+    membrane = shown.vessel.membrane_limit
+    judgement = judge(
+        shown.analysis,
+        shown.vessel,
+        shown.gas,
+        shown.mass,
+        policy=request.policy,
+        membrane_limit=limit if membrane is None else membrane,
+        window=None if refused else shown.window if selection.chosen else None,
+    )
+    holds = judgement.verdict == "holds" or (request.policy == "none" and judgement.base == "holds")
+    chosen = shown if holds and selection.chosen is not None else None
+    return Design(loop, request, analysis, volumes, selection, shown, judgement, chosen, refused)
+
+
+def _volumes(analysis: Analysis, request: Request) -> tuple[Volumes, dict[str, str]]:
+    """The three volumes; a scenario whose properties are unknown has none, and says why."""
+    refused: dict[str, str] = {}
+
+    def sized(name: str, scenarios: Sequence[Scenario]) -> Sized | None:
+        try:
+            return size(
+                analysis,
+                scenarios,
+                request.cooling,
+                analysis.loop.criteria.membrane_limit,
+                accept_without_boiling=request.accept_without_boiling,
+            )
+        except CalculationError as error:
+            refused[name] = str(error)
+            return None
+
+    base = sized("base", (BASE,))
+    if request.policy == "none":
+        return Volumes(base, base, sized("robust", analysis.every)), refused
+    return (
+        Volumes(
+            base,
+            sized("recommended", required(analysis, request.policy)),
+            sized("robust", analysis.every),
+        ),
+        refused,
+    )
+
+
+def _select(
+    analysis: Analysis, scenarios: Sequence[Scenario], sized: Sized | None, request: Request
+) -> Selection:
+    selector = Selector(
+        analysis, scenarios, sized, request.cooling, analysis.loop.criteria.membrane_limit
+    )
+    return selector.choose(request.candidates, request.most_in_parallel)
+
+
+def _nearest(
+    analysis: Analysis,
+    scenarios: Sequence[Scenario],
+    selection: Selection,
+    volumes: Volumes,
+    request: Request,
+) -> Fit:
+    """The candidate to show where none was chosen: one that holds the base case if there is one.
+
+    Its window is that of the base case, so that its filling is the best it could have.
+    """
+    if volumes.base is not None and scenarios != (BASE,):
+        favourable = _select(analysis, (BASE,), volumes.base, request)
+        if favourable.chosen is not None:
+            return favourable.chosen
+    vessel, count = selection.nearest
+    base_window = fit(
+        analysis, (BASE,), vessel, count, request.cooling, float("inf"), content=0.0
+    )
+    assert base_window is not None
+    return base_window

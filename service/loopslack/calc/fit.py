@@ -1,0 +1,111 @@
+"""One vessel of a stated size in a loop: its charge, its cooling vessel, its window. No choosing here."""
+
+from collections.abc import Sequence
+from typing import NamedTuple
+
+from loopslack.calc.analysis import Analysis
+from loopslack.calc.cooling import Charged, membrane_bound, smallest_content
+from loopslack.calc.judge import stagnation
+from loopslack.calc.model import Vessel
+from loopslack.calc.precharge import gas_of
+from loopslack.calc.scenarios import Scenario
+from loopslack.calc.sizing.volumes import CoolingMode
+from loopslack.calc.window import Bounds, Gas, Window
+
+
+class Fit(NamedTuple):
+    """``count`` equal vessels in the loop: the gas of all together, the loop with its cooling vessel, the window."""
+
+    vessel: Vessel
+    count: int
+    gas: Gas
+    analysis: Analysis
+    window: Window
+
+    @property
+    def cooling(self) -> float:
+        """Content of the cooling vessel, m3."""
+        return self.analysis.loop.cooling_content
+
+    @property
+    def mass(self) -> float:
+        """Mass (kg) in the vessels when filled as recommended."""
+        return self.mass_at(self.window.recommended)
+
+    def mass_at(self, pressure: float) -> float:
+        """Mass (kg) in the vessels filled to a pressure (Pa absolute) at the fill temperature."""
+        return Bounds(self.analysis, (), self.gas).mass(self.gas.nominal, pressure)
+
+
+def fit(
+    analysis: Analysis,
+    scenarios: Sequence[Scenario],
+    vessel: Vessel,
+    count: int,
+    cooling: CoolingMode,
+    membrane_limit: float,
+    content: float | None = None,
+) -> Fit | None:
+    """Put vessels into a loop, with the cooling vessel they need if the design may add one.
+
+    ``content`` is that cooling vessel's content if it is known already. None where no cooling vessel is large
+    enough. The window may still be too narrow: that is the caller's to judge.
+    """
+    limit = vessel.membrane_limit if vessel.membrane_limit is not None else membrane_limit
+    if cooling == "size":
+        if content is None:
+            content = cooling_for(analysis, scenarios, vessel, count, limit)
+        if content is None:
+            return None
+        analysis = analysis.with_cooling(content) if content else analysis
+    gas = gas_of(analysis, vessel, count)
+    bounds = Bounds(analysis, scenarios, gas)
+    lower, upper = bounds.masses(gas.nominal, gas.acceptance)
+    if cooling != "size" and 0 <= lower.mass < upper.mass:
+        lower = membrane_bound(analysis, scenarios, gas, lower, upper, limit)
+    fill = analysis.loop.temperatures.fill
+    return Fit(vessel, count, gas, analysis, bounds.window_between(gas.nominal, lower, upper, fill))
+
+
+def cooling_for(
+    analysis: Analysis, scenarios: Sequence[Scenario], vessel: Vessel, count: int, limit: float
+) -> float | None:
+    """Content (m3) of the cooling vessel that stated vessels need; None if none is large enough."""
+
+    def charge(content: float) -> Charged | None:
+        cooled = analysis.with_cooling(content) if content else analysis
+        gas = gas_of(cooled, vessel, count)
+        lower, upper = Bounds(cooled, scenarios, gas).masses(gas.nominal, gas.acceptance)
+        return Charged(cooled, gas, lower.mass) if 0 <= lower.mass < upper.mass else None
+
+    return smallest_content(charge, scenarios, limit)
+
+
+def acceptance_needed(fitted: Fit, scenarios: Sequence[Scenario]) -> float:
+    """Acceptance volume (m3) with which the window would be just wide enough.
+
+    The liquid held at the least filling that leaves the demanded width below it; with the gas at the room's
+    temperature, which lets most liquid in.
+    """
+    analysis, gas, window = fitted.analysis, fitted.gas._replace(acceptance=float("inf")), fitted.window
+    criteria = analysis.loop.criteria
+    fill = analysis.loop.temperatures.fill
+    base = gas.precharge * fill / gas.temperature + criteria.fill_above_precharge
+    pressure = max(window.lower + criteria.window_width, base + criteria.window_step)
+    mass = Bounds(analysis, (), gas).mass(gas.nominal, pressure)
+    cold = {scenario.steam_key: scenario for scenario in scenarios if not scenario.gas_follows}
+    cold |= {s.steam_key: s for s in scenarios if s.steam_key not in cold}
+    return max(
+        stagnation(analysis, _isothermal(scenario), gas, mass).liquid for scenario in cold.values()
+    ) * (1 + 1e-9)
+
+
+def _isothermal(scenario: Scenario) -> Scenario:
+    if not scenario.gas_follows:
+        return scenario
+    return Scenario(
+        id=scenario.id,
+        stagnation_shift=scenario.stagnation_shift,
+        worse_emptying=scenario.worse_emptying,
+        closed_unknown=scenario.closed_unknown,
+    )

@@ -1,0 +1,316 @@
+"""The choice of a vessel from a list: ranked, each candidate checked itself, each refusal with its number.
+
+Candidates of the same size share everything the loop has to say about that size, so that a list of thousands costs
+little more than a list of fifty.
+"""
+
+from collections.abc import Sequence
+from math import inf
+from typing import Literal, NamedTuple
+
+from loopslack.calc.analysis import Analysis
+from loopslack.calc.checks import pressure_to_withstand
+from loopslack.calc.cooling import Charged, hottest
+from loopslack.calc.delivered import nearest_precharge
+from loopslack.calc.fit import Fit, acceptance_needed, cooling_for, fit
+from loopslack.calc.model import Vessel
+from loopslack.calc.scenarios import Scenario
+from loopslack.calc.sizing.volumes import CoolingMode, Sized
+from loopslack.calc.window import Bounds
+from loopslack.kernel import kinds
+from loopslack.kernel.kinds import Kind
+
+ReasonCode = Literal[
+    "nominal-volume",
+    "nominal-volume-beyond-interval",
+    "acceptance-volume",
+    "rated-pressure",
+    "membrane-temperature",
+    "precharge-as-delivered",
+    "unspent-power",
+    "no-window",
+]
+RankedBy = Literal["price", "volume"]
+
+
+class Reason(NamedTuple):
+    """Why a vessel is refused: the number it has, the number it needs, and by how much it misses it.
+
+    Applied, ``short`` makes this check hold. None where no number of this vessel would.
+    """
+
+    code: ReasonCode
+    kind: Kind
+    value: float | None
+    limit: float | None
+    short: float | None
+
+
+class Refusal(NamedTuple):
+    """A refused candidate with all its reasons."""
+
+    vessel: Vessel
+    count: int
+    reasons: tuple[Reason, ...]
+
+
+class Selection(NamedTuple):
+    """The outcome: the first candidate in rank that fits, the others that would do, and the refused ones."""
+
+    chosen: Fit | None
+    alternatives: tuple[tuple[Vessel, int], ...]
+    refused: tuple[Refusal, ...]
+    ranked_by: RankedBy
+    nearest: tuple[Vessel, int]
+
+
+class Selector:
+    """Compares candidates for one loop under one policy."""
+
+    def __init__(
+        self,
+        analysis: Analysis,
+        scenarios: Sequence[Scenario],
+        sized: Sized | None,
+        cooling: CoolingMode,
+        membrane_limit: float,
+    ) -> None:
+        self.analysis, self.scenarios, self.sized = analysis, scenarios, sized
+        self.cooling: CoolingMode = cooling
+        self.membrane_limit = membrane_limit
+        self._fits: dict[tuple[object, ...], Fit | None] = {}
+        self._acceptances: dict[tuple[object, ...], float] = {}
+        self._needed = pressure_to_withstand(analysis, analysis.loop.relief, 0.0)
+
+    def choose(self, candidates: Sequence[Vessel], most: int) -> Selection:
+        """Rank the candidates, up to ``most`` equal ones in parallel, and take the first that fits."""
+        by_price = _one_currency(candidates)
+        offers = [(vessel, count) for vessel in candidates for count in range(1, most + 1)]
+        if by_price:
+            offers.sort(key=lambda o: (_price(o), o[0].nominal_volume * o[1], o[1], o[0].id))
+        else:
+            offers.sort(key=lambda o: (o[0].nominal_volume * o[1], o[1], o[0].id))
+        chosen: Fit | None = None
+        alternatives, refused = [], []
+        for vessel, count in offers:
+            reasons = self.reasons(vessel, count, full=chosen is None)
+            if reasons:
+                refused.append(Refusal(vessel, count, tuple(reasons)))
+            elif chosen is None:
+                chosen = self._fit(vessel, count)
+            else:
+                alternatives.append((vessel, count))
+        nearest = (chosen.vessel, chosen.count) if chosen else _nearest(refused)
+        ranked: RankedBy = "price" if by_price else "volume"
+        return Selection(chosen, tuple(alternatives), tuple(refused), ranked, nearest)
+
+    def reasons(self, vessel: Vessel, count: int, *, full: bool = True) -> list[Reason]:
+        """Every reason against a candidate.
+
+        Without ``full`` the cooling vessel is not solved for: enough to sort those ranked after the choice.
+        """
+        found = []
+        if vessel.rated_pressure is not None and vessel.rated_pressure < self._needed:
+            found.append(_reason("rated-pressure", kinds.GAUGE_PRESSURE, vessel.rated_pressure, self._needed))
+        if self.sized is None:
+            found.append(self._hopeless())
+            return found
+        nominal = vessel.nominal_volume * count
+        smallest, largest = self.sized.smallest, self.sized.interval.largest
+        if nominal < smallest:
+            found.append(
+                Reason("nominal-volume", kinds.NOMINAL_VOLUME, nominal, smallest, smallest - nominal)
+            )
+            self._acceptance(vessel, count, found, smallest)
+            return found
+        if nominal > largest:
+            found.append(
+                Reason(
+                    "nominal-volume-beyond-interval", kinds.NOMINAL_VOLUME, nominal, largest, nominal - largest
+                )
+            )
+            return found
+        fitted = self._fit(vessel, count) if full or self.cooling != "size" else self._plain(vessel, count)
+        if fitted is None:
+            limit = self._limit(vessel)
+            found.append(Reason("membrane-temperature", kinds.TEMPERATURE, limit, None, None))
+        elif not fitted.window.wide_enough:
+            self._explain(vessel, count, fitted, found)
+        return found
+
+    def _hopeless(self) -> Reason:
+        """No volume holds: the steam power nothing condenses, or no window at any size."""
+        unspent = max(self.analysis.case(s).final.unspent for s in self.scenarios)
+        if unspent > 0:
+            return Reason("unspent-power", kinds.POWER, unspent, 0.0, unspent)
+        return Reason("no-window", kinds.PRESSURE_DIFFERENCE, None, None, None)
+
+    def _explain(self, vessel: Vessel, count: int, fitted: Fit, found: list[Reason]) -> None:
+        """Which property of the vessel narrows its window."""
+        unbounded = fit(
+            self.analysis,
+            self.scenarios,
+            _with(vessel, acceptance=None),
+            count,
+            self.cooling,
+            self._limit(vessel),
+        )
+        if vessel.acceptance_volume is not None and unbounded and unbounded.window.wide_enough:
+            needed = acceptance_needed(unbounded, self.scenarios) / count
+            value = vessel.acceptance_volume
+            found.append(
+                Reason("acceptance-volume", kinds.ACCEPTANCE_VOLUME, value, needed, needed - value)
+            )
+            return
+        if not vessel.precharge_adjustable and vessel.delivered_precharge is not None:
+            adjusted = fit(
+                self.analysis,
+                self.scenarios,
+                _with(vessel, acceptance=vessel.acceptance_volume, adjustable=True),
+                count,
+                self.cooling,
+                self.membrane_limit,
+            )
+            if adjusted is not None and adjusted.window.wide_enough:
+                found.append(self._delivered(vessel, adjusted))
+                return
+        if fitted.window.lower_bound.code == "membrane-temperature":
+            limit = self._limit(vessel)
+            needed_limit = self._membrane_needed(vessel, count)
+            short = None if needed_limit is None else needed_limit - limit
+            found.append(Reason("membrane-temperature", kinds.TEMPERATURE, limit, needed_limit, short))
+            return
+        found.append(
+            Reason(
+                "no-window",
+                kinds.PRESSURE_DIFFERENCE,
+                fitted.window.width if abs(fitted.window.width) < inf else None,
+                self.analysis.loop.criteria.window_width,
+                None,
+            )
+        )
+
+    def _delivered(self, vessel: Vessel, adjusted: Fit) -> Reason:
+        """How far the delivered precharge is from the nearest one that leaves a window."""
+        assert vessel.delivered_precharge is not None
+        needed = nearest_precharge(adjusted, self.scenarios, vessel.delivered_precharge)
+        return Reason(
+            "precharge-as-delivered",
+            kinds.GAUGE_PRESSURE,
+            vessel.delivered_precharge,
+            needed,
+            needed - vessel.delivered_precharge,
+        )
+
+    def _membrane_needed(self, vessel: Vessel, count: int) -> float | None:
+        """Membrane limit (K) with which the vessel's window would be just wide enough."""
+        plain = self._plain(vessel, count)
+        if not plain.window.wide_enough:
+            return None
+        gas = plain.gas
+        lowest = plain.window.upper - self.analysis.loop.criteria.window_width
+        mass = Bounds(plain.analysis, (), gas).mass(gas.nominal, lowest)
+        return hottest(Charged(plain.analysis, gas, mass), self.scenarios)[0] + 1e-6
+
+    def _acceptance(self, vessel: Vessel, count: int, found: list[Reason], nominal: float) -> None:
+        """For a vessel too small anyway: whether its membrane would be too small as well."""
+        if vessel.acceptance_volume is None:
+            return
+        key = ("smallest", nominal)
+        needed = self._acceptances.get(key)
+        if needed is None:
+            article = Vessel(id="", nominal_volume=nominal)
+            assert self.sized is not None
+            fitted = fit(self.sized.analysis, self.scenarios, article, 1, "given", inf)
+            assert fitted is not None
+            needed = self._acceptances[key] = acceptance_needed(fitted, self.scenarios)
+        if vessel.acceptance_volume * count < needed:
+            value = vessel.acceptance_volume
+            found.append(
+                Reason(
+                    "acceptance-volume",
+                    kinds.ACCEPTANCE_VOLUME,
+                    value,
+                    needed / count,
+                    needed / count - value,
+                )
+            )
+
+    def _limit(self, vessel: Vessel) -> float:
+        return self.membrane_limit if vessel.membrane_limit is None else vessel.membrane_limit
+
+    def _key(self, vessel: Vessel, count: int) -> tuple[object, ...]:
+        fixed = None if vessel.precharge_adjustable else vessel.delivered_precharge
+        acceptance = vessel.acceptance_volume
+        return (
+            vessel.nominal_volume * count,
+            None if acceptance is None else acceptance * count,
+            fixed,
+            vessel.membrane_limit,
+        )
+
+    def _plain(self, vessel: Vessel, count: int) -> Fit:
+        """The vessel in the loop as sized, its membrane not looked at."""
+        assert self.sized is not None
+        found = fit(self.sized.analysis, self.scenarios, vessel, count, "size", inf, content=0.0)
+        assert found is not None
+        return found
+
+    def _fit(self, vessel: Vessel, count: int) -> Fit | None:
+        key = self._key(vessel, count)
+        if key not in self._fits:
+            content = None
+            if self.cooling == "size":
+                content = cooling_for(self.analysis, self.scenarios, vessel, count, self._limit(vessel))
+                if content is None:
+                    # Either no cooling vessel helps or the vessel has no window at all: the plain fit tells which.
+                    plain = fit(self.analysis, self.scenarios, vessel, count, "size", inf, content=0.0)
+                    wide = plain is not None and plain.window.wide_enough
+                    self._fits[key] = None if wide else plain
+                    return self._fits[key]
+            self._fits[key] = fit(
+                self.analysis,
+                self.scenarios,
+                vessel,
+                count,
+                self.cooling,
+                self.membrane_limit,
+                content,
+            )
+        found = self._fits[key]
+        return found and found._replace(vessel=vessel, count=count)
+
+
+def _with(vessel: Vessel, *, acceptance: float | None, adjustable: bool | None = None) -> Vessel:
+    return Vessel(
+        id=vessel.id,
+        nominal_volume=vessel.nominal_volume,
+        rated_pressure=vessel.rated_pressure,
+        acceptance_volume=acceptance,
+        delivered_precharge=vessel.delivered_precharge,
+        precharge_adjustable=vessel.precharge_adjustable if adjustable is None else adjustable,
+        membrane_limit=vessel.membrane_limit,
+        price=vessel.price,
+        currency=vessel.currency,
+    )
+
+
+def _reason(code: ReasonCode, kind: Kind, value: float, limit: float) -> Reason:
+    return Reason(code, kind, value, limit, limit - value)
+
+
+def _price(offer: tuple[Vessel, int]) -> float:
+    price = offer[0].price
+    return inf if price is None else price * offer[1]
+
+
+def _one_currency(candidates: Sequence[Vessel]) -> bool:
+    """Whether every candidate has a price in one and the same currency: prices are compared only then."""
+    currencies = {vessel.currency if vessel.price is not None else None for vessel in candidates}
+    return len(currencies) == 1 and None not in currencies
+
+
+def _nearest(refused: Sequence[Refusal]) -> tuple[Vessel, int]:
+    """The refused candidate with the fewest reasons, the largest among equals."""
+    best = min(refused, key=lambda r: (len(r.reasons), -r.vessel.nominal_volume * r.count, r.vessel.id))
+    return best.vessel, best.count
