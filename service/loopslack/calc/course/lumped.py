@@ -38,15 +38,16 @@ class Reservoir(Struct, frozen=True, kw_only=True):
 class MembraneVessel(Struct, frozen=True, kw_only=True):
     """The vessel and its charge.
 
-    ``precharge`` (Pa) at ``precharge_temperature``; filled to ``fill_pressure`` at ``fill_temperature``, gas
-    and liquid alike. The gas then stays at ``gas_temperature``, or follows the liquid if that is None.
-    ``content`` 0 of the reservoir: liquid comes and goes.
+    ``precharge`` (Pa) at ``precharge_temperature``; ``filled`` (m3) is the liquid it held when the loop was
+    filled at ``fill_temperature``. The gas stays at ``gas_temperature``, or follows the liquid if that is
+    None. ``body`` is the shell, of no content of its own. ``acceptance_volume`` (m3) limits the membrane
+    where it is known.
     """
 
     nominal_volume: float
     precharge: float
     precharge_temperature: float
-    fill_pressure: float
+    filled: float
     fill_temperature: float
     gas_temperature: float | None
     body: Reservoir

@@ -44,10 +44,8 @@ class Plant:
         self.grid = Grid(loop.pipe, cells)
         vessel = loop.vessel
         self.tanks = (*loop.reservoirs, vessel.body)
-        gas = vessel.precharge * vessel.fill_temperature / vessel.precharge_temperature
-        held = vessel.nominal_volume * (1.0 - gas / vessel.fill_pressure)
         content = loop.collector_content + loop.pipe.content[-1] + sum(t.content for t in loop.reservoirs)
-        self.mass = tables.density(vessel.fill_temperature) * (content + held)
+        self.mass = tables.density(vessel.fill_temperature) * (content + vessel.filled)
         self.full = loop.collector_content * tables.density(363.15)
         self.bare_capacity = max(
             _LEAST_CAPACITY, loop.collector_capacity - self.full * tables.heat_capacity / loop.aperture
