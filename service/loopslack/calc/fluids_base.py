@@ -152,8 +152,8 @@ class Fluid(ABC):
         """Refuse a pressure under which the boiling temperature is not known."""
         low, high = self.lowest_pressure, self.highest_pressure
         raise OutOfRange(
-            f"The absolute pressure is {pressure / 1e5:.5g} bar; boiling of {self.name} is known from "
-            f"{low / 1e5:.4g} to {high / 1e5:.4g} bar.",
+            f"The absolute pressure is {pressure / 1e5:.6g} bar; boiling of {self.name} is known from "
+            f"{low / 1e5:.6g} to {high / 1e5:.6g} bar.",
             remedy="Bring the pressure into that range.",
             facts={"number": pressure, "low": low, "high": high, "rule": f"boiling of {self.name}"},
         )
