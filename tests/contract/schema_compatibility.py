@@ -17,9 +17,13 @@ from typing import Any, Literal, NamedTuple
 
 Schema = Mapping[str, Any]
 WORDS = {"title", "description", "example", "examples", "deprecated", "externalDocs", "xml", "$comment"}
-JUDGED = set(
-    ["$ref", "type", "enum", "const", "format", "pattern", "multipleOf", "uniqueItems", "minimum", "maximum", "exclusiveMinimum", "exclusiveMaximum", "minLength", "maxLength", "minItems", "maxItems", "minProperties", "maxProperties", "properties", "required", "additionalProperties", "items", "oneOf", "anyOf", "discriminator", "default", "readOnly", "writeOnly", "contentMediaType", "contentEncoding"]
-)
+JUDGED = {
+    *("$ref", "type", "enum", "const", "format", "pattern", "multipleOf", "uniqueItems", "default"),
+    *("minimum", "maximum", "exclusiveMinimum", "exclusiveMaximum", "minLength", "maxLength"),
+    *("minItems", "maxItems", "minProperties", "maxProperties", "items", "oneOf", "anyOf", "discriminator"),
+    *("properties", "required", "additionalProperties", "readOnly", "writeOnly"),
+    *("contentMediaType", "contentEncoding"),
+}
 UPPER = ("maximum", "exclusiveMaximum", "maxLength", "maxItems", "maxProperties")
 LOWER = ("minimum", "exclusiveMinimum", "minLength", "minItems", "minProperties")
 

@@ -15,6 +15,8 @@ from typing import Any
 
 import msgspec
 
+from loopslack.api.document.vocabulary import DocumentError
+
 Schema = dict[str, Any]
 MOST_CHARACTERS = 2_000
 """Longest example of a schema, as compact JSON; what is larger is shown at its operation."""
@@ -96,15 +98,28 @@ class Harvest:
             if len(json.dumps(shortened)) <= MOST_CHARACTERS:
                 self.found[name] = shortened
 
-    def place(self) -> list[str]:
-        """Put what was found on its schemas; the names of those without any example come back."""
-        bare = []
+    def place(self) -> None:
+        """Put what was found on its schemas, and on the others an example made of those of their members."""
         for name, schema in self._schemas.items():
-            if name in self.found:
-                schema["examples"] = [self.found[name]]
-            elif "examples" not in schema:
-                bare.append(name)
-        return bare
+            if "examples" not in schema:
+                schema["examples"] = [self.found[name] if name in self.found else self._composed(schema)]
+
+    def _composed(self, schema: Schema) -> object:
+        if schema.get("examples"):
+            return schema["examples"][0]
+        if "const" in schema:
+            return schema["const"]
+        if "$ref" in schema:
+            name = schema["$ref"].rsplit("/", 1)[-1]
+            return self.found[name] if name in self.found else self._composed(self._schemas[name])
+        if "oneOf" in schema:
+            return self._composed(schema["oneOf"][0])
+        if schema.get("type") == "array":
+            return [self._composed(schema["items"])] * max(1, schema.get("minItems", 0))
+        if schema.get("type") == "object":
+            members = schema.get("properties", {})
+            return {name: self._composed(members[name]) for name in schema.get("required", [])}
+        raise DocumentError(f"no example for {schema}")
 
 
 def _shortened(value: object) -> object:
