@@ -98,7 +98,7 @@ def _plain(size: str) -> str:
     text = size.casefold().replace("\N{MULTIPLICATION SIGN}", "x").replace("*", "x").replace("-", " ")
     for unit in ("inches", "inch", "in", "mm", '"', "\N{DOUBLE PRIME}"):
         text = text.strip().removesuffix(unit)
-    text = " ".join(text.split())
+    text = " ".join(text.split()).replace("dn ", "dn")
     # "22 x 1.0" is 22x1, while "1 1/4" keeps its blank.
     numbers = [part.strip() for part in text.split("x")]
     return "x".join(number.rstrip("0").rstrip(".") if "." in number else number for number in numbers)
