@@ -10,6 +10,7 @@ from loopslack.calc.course.chronicle import Chronicle
 from loopslack.calc.course.curve import Curve, Recorder
 from loopslack.calc.course.lumped import LumpedLoop
 from loopslack.calc.course.plant import Plant
+from loopslack.calc.course.refusal import not_applicable
 from loopslack.calc.course.state import State
 from loopslack.calc.course.step import step
 from loopslack.calc.course.transport import accept
@@ -64,6 +65,7 @@ class March:
                 f"The flow stops at {begin / 3600:g} h, when the weather has ended at {self.end / 3600:g} h.",
                 remedy="Let the flow stop within the stated weather.",
             )
+        _refuse_frozen(loop, weather, begin)
         self.state = State(self.plant, begin, weather.ambient(begin))
         self.books = Books(self.plant, self.state)
         self.chronicle = Chronicle(self.plant, self.state)
@@ -135,12 +137,25 @@ class March:
         )
 
 
+def _refuse_frozen(loop: LumpedLoop, weather: Weather, begin: float) -> None:
+    """Refuse a loop whose liquid is frozen when the flow stops."""
+    coldest = weather.ambient(begin) if loop.start.collectors is None else loop.start.collectors
+    if coldest < loop.fluid.freezing_point:
+        raise not_applicable(
+            f"The collectors start at {coldest - 273.15:.4g} degC; the fluid freezes at "
+            f"{loop.fluid.freezing_point - 273.15:.4g} degC.",
+            remedy="Choose a stronger mixture, or a warmer start of the day.",
+            facts={"start": coldest, "freezing": loop.fluid.freezing_point},
+        )
+
+
 def marching(
     loop: LumpedLoop, weather: Weather, accuracy: Accuracy | None = None, *, interval: float = _MINUTE
 ) -> Work[Curve]:
     """Course of one loop, pausing every few milliseconds.
 
-    Raises ``Contradiction`` for a start after the end of the weather.
+    Raises ``Contradiction`` for a start after the end of the weather, ``NotApplicable`` for frozen
+    collectors.
     """
     march = March(loop, weather, accuracy, interval=interval)
     yield
