@@ -109,9 +109,7 @@ class Balance:
 
     def at_pressure(self, pressure: float, *, below: bool = True) -> Extent:
         """The extent of steam at a vessel pressure (Pa)."""
-        return self.extent(
-            pressure, tuple(space.at_pressure(pressure, below=below) for space in self.spaces)
-        )
+        return self.extent(pressure, tuple(space.at_pressure(pressure, below=below) for space in self.spaces))
 
     def liquid(self) -> Extent:
         """Nothing boils; the pressure is whatever the vessel makes of it."""

@@ -8,7 +8,7 @@ from math import isfinite
 
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.equilibrium import ROUNDING, Equilibrium
-from loopslack.calc.judgement import Check, CheckCode
+from loopslack.calc.judgement import Check, CheckCode, CheckVerdict
 from loopslack.calc.model import Part, Relief
 from loopslack.calc.states import LiquidState
 from loopslack.calc.window import Bounds, Window, cut_off_pressure
@@ -35,7 +35,7 @@ def compare(
     holds = margin >= -ROUNDING * max(abs(limit), abs(value))
     if holds and margin < 0:
         margin = 0.0
-    verdict = "holds" if holds else "does-not-hold"
+    verdict: CheckVerdict = "holds" if holds else "does-not-hold"
     return Check(code, True, state, verdict, kind, value, limit, margin, subject, "", at_least)
 
 
@@ -65,9 +65,7 @@ def steam_at_station(state: str, found: Equilibrium) -> Check:
 
 def reserve(bounds: Bounds, cold: LiquidState, mass: float, nominal: float) -> Check:
     """Liquid left in the vessel when cold against the reserve."""
-    return compare(
-        "reserve", "cold", kinds.VOLUME, cold.held(mass), bounds.reserve(nominal), at_most=False
-    )
+    return compare("reserve", "cold", kinds.VOLUME, cold.held(mass), bounds.reserve(nominal), at_most=False)
 
 
 def top_pressure(analysis: Analysis, pressure: float | None) -> Check:
@@ -75,7 +73,9 @@ def top_pressure(analysis: Analysis, pressure: float | None) -> Check:
     loop = analysis.loop
     limit = loop.atmosphere + loop.criteria.top_pressure
     if pressure is None:
-        return Check("top-pressure", True, "cold", "does-not-hold", PRESSURE, None, limit, reason="vessel-empty")
+        return Check(
+            "top-pressure", True, "cold", "does-not-hold", PRESSURE, None, limit, reason="vessel-empty"
+        )
     return compare("top-pressure", "cold", PRESSURE, pressure, limit, at_most=False)
 
 
@@ -84,7 +84,14 @@ def cut_off(analysis: Analysis, pressure: float | None) -> Check:
     limit = cut_off_pressure(analysis)
     if pressure is None:
         return Check(
-            "boiling-at-cut-off", True, "cut-off", "does-not-hold", PRESSURE, None, limit, reason="vessel-empty"
+            "boiling-at-cut-off",
+            True,
+            "cut-off",
+            "does-not-hold",
+            PRESSURE,
+            None,
+            limit,
+            reason="vessel-empty",
         )
     return compare("boiling-at-cut-off", "cut-off", PRESSURE, pressure, limit, at_most=False)
 

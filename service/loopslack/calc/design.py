@@ -113,9 +113,7 @@ def _volumes(analysis: Analysis, request: Request) -> tuple[Volumes, dict[str, s
 def _select(
     analysis: Analysis, scenarios: Sequence[Scenario], sized: Sized | None, request: Request
 ) -> Selection:
-    selector = Selector(
-        analysis, scenarios, sized, request.cooling, analysis.loop.criteria.membrane_limit
-    )
+    selector = Selector(analysis, scenarios, sized, request.cooling, analysis.loop.criteria.membrane_limit)
     return selector.choose(request.candidates, request.most_in_parallel)
 
 
@@ -135,8 +133,6 @@ def _nearest(
         if favourable.chosen is not None:
             return favourable.chosen
     vessel, count = selection.nearest
-    base_window = fit(
-        analysis, (BASE,), vessel, count, request.cooling, float("inf"), content=0.0
-    )
+    base_window = fit(analysis, (BASE,), vessel, count, request.cooling, float("inf"), content=0.0)
     assert base_window is not None
     return base_window

@@ -170,9 +170,7 @@ def _at_jump(space: SteamSpace, pressure: float, *, below: bool) -> Steam:
     return space.at_pressure(pressure, below=below)
 
 
-def _solve(
-    balance: Balance, law: VesselLaw, curve: _OneSpace | _SeveralSpaces, limit: Extent
-) -> Equilibrium:
+def _solve(balance: Balance, law: VesselLaw, curve: _OneSpace | _SeveralSpaces, limit: Extent) -> Equilibrium:
     """Walk from jump to jump upwards; the root lies before the first one, across one, or after the last."""
     charge = law.charge
     curve.start(charge.precharge * charge.room / charge.precharge_temperature)

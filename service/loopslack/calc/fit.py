@@ -14,10 +14,10 @@ from loopslack.calc.window import Bounds, Gas, Window
 
 
 class Fit(NamedTuple):
-    """``count`` equal vessels in the loop: the gas of all together, the loop with its cooling vessel, the window."""
+    """``pieces`` equal vessels in the loop: the gas of all together, the loop with its cooling vessel, the window."""
 
     vessel: Vessel
-    count: int
+    pieces: int
     gas: Gas
     analysis: Analysis
     window: Window

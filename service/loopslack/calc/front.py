@@ -44,7 +44,9 @@ class SteamPath:
             self._advance(dict(enumerate(_stretches(b.segments, 0.0) for b in self.branches)))
         else:
             _Descent(self).run()
-        self.falling = all(b <= a + _SAME_HEIGHT for a, b in zip(self.heights, self.heights[1:], strict=False))
+        self.falling = all(
+            b <= a + _SAME_HEIGHT for a, b in zip(self.heights, self.heights[1:], strict=False)
+        )
 
     @property
     def total_volume(self) -> float:

@@ -213,9 +213,7 @@ def _hot(
 
 
 def _unknown(scenario: Scenario, reason: str) -> Check:
-    return Check(
-        "relief-valve", True, scenario.id, "not-assessed", checks.PRESSURE, reason=reason
-    )
+    return Check("relief-valve", True, scenario.id, "not-assessed", checks.PRESSURE, reason=reason)
 
 
 def _state(analysis: Analysis, state: LiquidState, gas: Gas, mass: float) -> StateResult:
@@ -228,9 +226,7 @@ def _state(analysis: Analysis, state: LiquidState, gas: Gas, mass: float) -> Sta
         return StateResult(state.id, liquid, None, None, None, state.vessel, state.frozen)
     pressure = gas.precharge * gas.nominal / squeezed * state.vessel / gas.temperature
     gauge = pressure - state.vessel_density * GRAVITY * analysis.loop.gauge_height
-    return StateResult(
-        state.id, liquid, pressure, pressure - state.column, gauge, state.vessel, state.frozen
-    )
+    return StateResult(state.id, liquid, pressure, pressure - state.column, gauge, state.vessel, state.frozen)
 
 
 _ORDER: dict[CheckVerdict, int] = {"holds": 0, "not-assessed": 1, "does-not-hold": 2}

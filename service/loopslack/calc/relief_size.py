@@ -1,6 +1,6 @@
 """Nominal size of the relief valve by collector area, and the check of a stated size."""
 
-from loopslack.calc.judgement import Check
+from loopslack.calc.judgement import Check, CheckVerdict
 from loopslack.kernel import kinds
 from loopslack.library.defaults import default
 
@@ -22,6 +22,8 @@ def relief_size_check(aperture: float, stated: int | None) -> Check:
         return Check("relief-size", False, "fill", "not-assessed", kinds.AREA, aperture, reason=reason)
     allowed = dict(TABLE).get(stated)
     if allowed is None:
-        return Check("relief-size", False, "fill", "not-assessed", kinds.AREA, aperture, reason="outside-table")
-    verdict = "holds" if aperture <= allowed else "does-not-hold"
+        return Check(
+            "relief-size", False, "fill", "not-assessed", kinds.AREA, aperture, reason="outside-table"
+        )
+    verdict: CheckVerdict = "holds" if aperture <= allowed else "does-not-hold"
     return Check("relief-size", False, "fill", verdict, kinds.AREA, aperture, allowed, allowed - aperture)

@@ -50,7 +50,7 @@ class Refusal(NamedTuple):
     """A refused candidate with all its reasons."""
 
     vessel: Vessel
-    count: int
+    pieces: int
     reasons: tuple[Reason, ...]
 
 
@@ -100,7 +100,7 @@ class Selector:
                 chosen = self._fit(vessel, count)
             else:
                 alternatives.append((vessel, count))
-        nearest = (chosen.vessel, chosen.count) if chosen else _nearest(refused)
+        nearest = (chosen.vessel, chosen.pieces) if chosen else _nearest(refused)
         ranked: RankedBy = "price" if by_price else "volume"
         return Selection(chosen, tuple(alternatives), tuple(refused), ranked, nearest)
 
@@ -126,7 +126,11 @@ class Selector:
         if nominal > largest:
             found.append(
                 Reason(
-                    "nominal-volume-beyond-interval", kinds.NOMINAL_VOLUME, nominal, largest, nominal - largest
+                    "nominal-volume-beyond-interval",
+                    kinds.NOMINAL_VOLUME,
+                    nominal,
+                    largest,
+                    nominal - largest,
                 )
             )
             return found
@@ -158,9 +162,7 @@ class Selector:
         if vessel.acceptance_volume is not None and unbounded and unbounded.window.wide_enough:
             needed = acceptance_needed(unbounded, self.scenarios) / count
             value = vessel.acceptance_volume
-            found.append(
-                Reason("acceptance-volume", kinds.ACCEPTANCE_VOLUME, value, needed, needed - value)
-            )
+            found.append(Reason("acceptance-volume", kinds.ACCEPTANCE_VOLUME, value, needed, needed - value))
             return
         if not vessel.precharge_adjustable and vessel.delivered_precharge is not None:
             adjusted = fit(
@@ -278,7 +280,7 @@ class Selector:
                 content,
             )
         found = self._fits[key]
-        return found and found._replace(vessel=vessel, count=count)
+        return found and found._replace(vessel=vessel, pieces=count)
 
 
 def _with(vessel: Vessel, *, acceptance: float | None, adjustable: bool | None = None) -> Vessel:
@@ -312,5 +314,5 @@ def _one_currency(candidates: Sequence[Vessel]) -> bool:
 
 def _nearest(refused: Sequence[Refusal]) -> tuple[Vessel, int]:
     """The refused candidate with the fewest reasons, the largest among equals."""
-    best = min(refused, key=lambda r: (len(r.reasons), -r.vessel.nominal_volume * r.count, r.vessel.id))
+    best = min(refused, key=lambda r: (len(r.reasons), -r.vessel.nominal_volume * r.pieces, r.vessel.id))
     return best.vessel, best.count

@@ -120,5 +120,3 @@ def _running(loop: Loop, id: StateId, collectors: float, flow: float) -> LiquidS
 
 def _filled(loop: Loop) -> float:
     return loop.fluid.density(loop.temperatures.fill) * loop.content
-
-

@@ -114,9 +114,7 @@ class Bounds:
             self.lower.append(("steam-at-station", scenario.id, 0.0, -inf))
         elif case.station is not None and not scenario.gas_follows:
             station = case.station
-            self.lower.append(
-                self._line("steam-at-station", scenario.id, station.pressure, station.expelled)
-            )
+            self.lower.append(self._line("steam-at-station", scenario.id, station.pressure, station.expelled))
 
     def reserve(self, nominal: float) -> float:
         """Liquid (m3) a vessel must still hold when cold."""

@@ -4,7 +4,9 @@ from typing import Literal
 
 from msgspec import Struct
 
-HowSeen = Literal["read", "read-in-part", "read-second-hand", "from-memory", "derived", "own-assumption", "common-practice"]
+HowSeen = Literal[
+    "read", "read-in-part", "read-second-hand", "from-memory", "derived", "own-assumption", "common-practice"
+]
 
 
 class Cite(Struct, frozen=True):

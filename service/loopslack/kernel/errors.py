@@ -65,9 +65,7 @@ class Refusals(CalculationError):
 
     def __init__(self, errors: Iterable[CalculationError]) -> None:
         self.errors = tuple(errors)
-        super().__init__(
-            "; ".join(error.message for error in self.errors), remedy="Mend every point listed."
-        )
+        super().__init__("; ".join(error.message for error in self.errors), remedy="Mend every point listed.")
 
     def __reduce__(self) -> tuple[object, ...]:
         return Refusals, (self.errors,)

@@ -113,9 +113,7 @@ class _Slack:
             following = volume * 2
             value = self.at(following)
             if value < 0:
-                found = bracketed(
-                    self.at, volume, following, self.at(volume), value, 1e-12 * following
-                ).at
+                found = bracketed(self.at, volume, following, self.at(volume), value, 1e-12 * following).at
                 while self.at(found) < 0:
                     found *= 1 - 1e-12
                 return found
