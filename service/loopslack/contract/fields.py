@@ -13,7 +13,7 @@ from msgspec.structs import fields as fields_of
 from loopslack.contract import quantity as q
 from loopslack.kernel import kinds
 from loopslack.kernel.kinds import Kind
-from loopslack.kernel.units import ABSOLUTE_UNITS, GAUGE_UNITS, from_si, scale_of
+from loopslack.kernel.units import from_si, scale_of
 from loopslack.library.defaults import default
 
 Lines = dict[str, tuple[float, float]]
@@ -59,11 +59,7 @@ def _range(low: float, high: float, unit: str) -> str:
 
 
 class Field(Struct, frozen=True):
-    """A quantity of a question as the reading needs it: its JSON name, its lines to SI and its range in SI.
-
-    For pressures ``datum`` tells, per unit, what to subtract of the atmosphere to get a gauge pressure: 0 or
-    1.
-    """
+    """A quantity of a question as the reading needs it: JSON name, lines to SI and range in SI."""
 
     name: str
     title: str
@@ -71,7 +67,6 @@ class Field(Struct, frozen=True):
     lines: Lines
     low: float
     high: float
-    datum: dict[str, float]
 
 
 def field_of(struct: type[Struct], attribute: str) -> Field:
@@ -83,14 +78,16 @@ def field_of(struct: type[Struct], attribute: str) -> Field:
     encoded = next(field.encode_name for field in fields_of(struct) if field.name == attribute)
     extra: dict[str, Any] = meta.extra or {}
     scale, offset = scale_of(kind, extra["unit"])
+    low, high = scale * extra["low"] + offset, scale * extra["high"] + offset
+    # The end of a range stated in another unit may come out a few last digits beyond it.
+    slack = 1e-12 * max(abs(low), abs(high))
     return Field(
         name=encoded,
         title=attribute.replace("_", " "),
         kind=kind,
         lines={unit: scale_of(kind, unit) for unit in kind.units},
-        low=scale * extra["low"] + offset,
-        high=scale * extra["high"] + offset,
-        datum={unit: 1.0 if unit in ABSOLUTE_UNITS else 0.0 for unit in GAUGE_UNITS | ABSOLUTE_UNITS},
+        low=low - slack,
+        high=high + slack,
     )
 
 

@@ -79,7 +79,7 @@ class Weathered(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="
     loss_factor: Annotated[
         Annotated[float, Meta(ge=1, le=10)] | None,
         text(
-            f"How many times the loss when new. If absent, {_FACTOR}: more than proven would shorten the steam.",
+            f"How many times the loss when new. If absent, {_FACTOR}: the safe side for steam.",
             1.5,
         ),
     ] = None

@@ -1,0 +1,173 @@
+"""Reads single members of a question into SI and keeps the books of what was assumed and refused.
+
+A refusal does not stop the reading, so that a caller sees every fault at once; ``finish`` raises them together. A
+number that was refused is replaced by the nearest permitted one only to read on, never to be computed with.
+"""
+
+from collections.abc import Mapping
+from typing import NamedTuple, NoReturn, Protocol
+
+from loopslack.contract.fields import Field
+from loopslack.contract.quantity import Pressure
+from loopslack.kernel.citations import DERIVED, Cite
+from loopslack.kernel.errors import CalculationError, Contradiction, Missing, OutOfRange, Refusals
+from loopslack.kernel.kinds import Kind
+from loopslack.kernel.units import GAUGE_UNITS
+from loopslack.library.defaults import choices, defaults
+
+
+class Stated(Protocol):
+    """Any quantity of a question."""
+
+    @property
+    def value(self) -> float:
+        """The number."""
+
+    @property
+    def unit(self) -> str:
+        """Its unit."""
+
+
+class Assumed(NamedTuple):
+    """Something the caller did not state: a number of a kind in SI, or a word, and why it stands in."""
+
+    pointer: str
+    si: float | None
+    kind: Kind | None
+    low: float
+    high: float
+    word: str
+    why: str
+    source: Cite
+
+
+class Provisional(NamedTuple):
+    """Why an answer rests on more than was stated: a stable code and the member that would settle it."""
+
+    code: str
+    pointer: str
+
+
+class Reader:
+    """One reading of one question.
+
+    ``atmosphere`` is the site's, Pa absolute; it must be set before pressures are read.
+    """
+
+    __slots__ = ("assumed", "atmosphere", "provisional", "refused")
+
+    def __init__(self, atmosphere: float = 101325.0) -> None:
+        self.atmosphere = atmosphere
+        self.assumed: list[Assumed] = []
+        self.provisional: list[Provisional] = []
+        self.refused: list[CalculationError] = []
+
+    def si(self, stated: Stated, field: Field, place: str) -> float:
+        """Read a quantity that is no pressure; ``place`` is the pointer of the object it is a member of."""
+        scale, offset = field.lines[stated.unit]
+        number = scale * stated.value + offset
+        if field.low <= number <= field.high:
+            return number
+        return self._out_of_range(stated, field, place, number, 0.0)
+
+    def gauge(self, stated: Pressure, field: Field, place: str) -> float:
+        """Read a pressure as gauge at the site, Pa, whichever way it was stated."""
+        unit = stated.unit
+        scale, _ = field.lines[unit]
+        datum = 0.0 if unit in GAUGE_UNITS else self.atmosphere
+        number = scale * stated.value - datum
+        if field.low <= number <= field.high:
+            return number
+        return self._out_of_range(stated, field, place, number, datum)
+
+    def optional(self, stated: Stated | None, field: Field, place: str) -> float | None:
+        """Read a quantity that may be absent and has no default."""
+        return None if stated is None else self.si(stated, field, place)
+
+    def optional_gauge(self, stated: Pressure | None, field: Field, place: str) -> float | None:
+        """Read a pressure that may be absent and has no default."""
+        return None if stated is None else self.gauge(stated, field, place)
+
+    def or_default(self, stated: Stated | None, field: Field, place: str, key: str) -> float:
+        """Read a quantity or take the default of the trade."""
+        if stated is not None:
+            return self.si(stated, field, place)
+        return self.default(key, f"{place}/{field.name}")
+
+    def or_default_gauge(self, stated: Pressure | None, field: Field, place: str, key: str) -> float:
+        """Read a pressure as gauge or take the default of the trade."""
+        if stated is not None:
+            return self.gauge(stated, field, place)
+        return self.default(key, f"{place}/{field.name}")
+
+    def default(self, key: str, pointer: str) -> float:
+        """Take a default number and note it."""
+        row = _NUMBERS[key]
+        self.assumed.append(Assumed(pointer, row.si, row.kind, row.low, row.high, "", row.why, row.source))
+        return row.si
+
+    def word(self, key: str, pointer: str) -> str:
+        """Take a default word and note it."""
+        row = _WORDS[key]
+        self.assumed.append(Assumed(pointer, None, None, 0.0, 0.0, row.word, row.why, row.source))
+        return row.word
+
+    def derived(self, pointer: str, si: float, kind: Kind, why: str, *, low: float, high: float) -> float:
+        """Note a number that follows from others by a rule that nobody stated."""
+        self.assumed.append(Assumed(pointer, si, kind, low, high, "", why, DERIVED))
+        return si
+
+    def doubtful(self, code: str, pointer: str) -> None:
+        """Note that the answer is provisional."""
+        self.provisional.append(Provisional(code, pointer))
+
+    def refuse(self, error: CalculationError, pointer: str = "") -> None:
+        """Note a refusal; a pointer replaces the error's own."""
+        if pointer:
+            error.pointer = pointer
+        self.refused.append(error)
+
+    def contradiction(
+        self, pointer: str, message: str, remedy: str, facts: Mapping[str, object] | None = None
+    ) -> None:
+        """Note that stated numbers cannot be true together."""
+        self.refused.append(Contradiction(message, remedy=remedy, pointer=pointer, facts=facts))
+
+    def missing(self, pointer: str, message: str, remedy: str) -> None:
+        """Note that a number is needed that was not stated and has no default."""
+        self.refused.append(Missing(message, remedy=remedy, pointer=pointer))
+
+    def finish(self) -> None:
+        """Raise what was refused, if anything: one refusal as it is, several together."""
+        if self.refused:
+            self._raise()
+
+    def _raise(self) -> NoReturn:
+        if len(self.refused) == 1:
+            raise self.refused[0]
+        raise Refusals(self.refused)
+
+    def _out_of_range(self, stated: Stated, field: Field, place: str, number: float, datum: float) -> float:
+        unit = stated.unit
+        value = stated.value
+        scale, offset = field.lines[unit]
+        low = (field.low + datum - offset) / scale
+        high = (field.high + datum - offset) / scale
+        self.refused.append(
+            OutOfRange(
+                f"The {field.title} is {value:g} {unit}; it must lie from {low:.4g} to {high:.4g} {unit}.",
+                remedy=_remedy(field, unit),
+                pointer=f"{place}/{field.name}",
+                facts={"value": value, "low": low, "high": high, "unit": unit},
+            )
+        )
+        return field.low if not number > field.low else field.high
+
+
+def _remedy(field: Field, unit: str) -> str:
+    others = ", ".join(other for other in field.kind.units if other != unit)
+    return f"Check the number and its unit; {others} would do as well." if others else "Check the number."
+
+
+_NUMBERS = defaults()
+_WORDS = choices()

@@ -1,0 +1,91 @@
+"""Reads the fluid of a question into a fluid that can be asked for its properties."""
+
+from itertools import pairwise
+
+from loopslack.calc.fluid import (
+    BoilsLike,
+    glycol,
+    glycol_by_volume,
+    glycol_protecting_to,
+    own_fluid,
+    water,
+)
+from loopslack.calc.fluids_base import Fluid
+from loopslack.contract import questions_fluid as asked
+from loopslack.contract.fields import field_of
+from loopslack.contract.reader import Reader
+from loopslack.kernel.errors import CalculationError
+from loopslack.library.fluids import GlycolKind
+
+_MASS_SHARE = field_of(asked.ByMass, "share")
+_VOLUME_SHARE = field_of(asked.ByVolume, "share")
+_PROTECT = field_of(asked.ProtectTo, "temperature")
+_POINT_TEMPERATURE = field_of(asked.DensityPoint, "temperature")
+_POINT_DENSITY = field_of(asked.DensityPoint, "density")
+_BOILING_TEMPERATURE = field_of(asked.BoilingPoint, "temperature")
+_BOILING_PRESSURE = field_of(asked.BoilingPoint, "pressure")
+_FREEZING = field_of(asked.OwnFluid, "freezing_point")
+_LIKE_SHARE = field_of(asked.BoilingLike, "share")
+
+
+def read_fluid(reader: Reader, fluid: asked.Fluid, place: str) -> Fluid:
+    """Make the fluid. Water stands in while reading on after a refusal."""
+    try:
+        if isinstance(fluid, asked.PropyleneGlycol):
+            return _glycol(reader, "propylene-glycol", fluid.concentration, f"{place}/concentration")
+        if isinstance(fluid, asked.EthyleneGlycol):
+            return _glycol(reader, "ethylene-glycol", fluid.concentration, f"{place}/concentration")
+        if isinstance(fluid, asked.OwnFluid):
+            return _own(reader, fluid, place)
+    except CalculationError as error:
+        reader.refuse(error, place)
+    return water()
+
+
+def _glycol(reader: Reader, kind: GlycolKind, strength: asked.Concentration, place: str) -> Fluid:
+    if isinstance(strength, asked.ByMass):
+        return glycol(kind, reader.si(strength.share, _MASS_SHARE, place))
+    if isinstance(strength, asked.ByVolume):
+        return glycol_by_volume(kind, reader.si(strength.share, _VOLUME_SHARE, place))
+    return glycol_protecting_to(kind, reader.si(strength.temperature, _PROTECT, place))
+
+
+def _own(reader: Reader, fluid: asked.OwnFluid, place: str) -> Fluid:
+    before = len(reader.refused)
+    points = [
+        (
+            reader.si(point.temperature, _POINT_TEMPERATURE, f"{place}/points/{k}"),
+            reader.si(point.density, _POINT_DENSITY, f"{place}/points/{k}"),
+        )
+        for k, point in enumerate(fluid.points)
+    ]
+    _rising(reader, [temperature for temperature, _ in points], f"{place}/points")
+    freezing = reader.si(fluid.freezing_point, _FREEZING, place)
+    boils = f"{place}/boiling"
+    boiling: list[tuple[float, float]] | BoilsLike
+    if isinstance(fluid.boiling, asked.BoilingLike):
+        share = reader.si(fluid.boiling.share, _LIKE_SHARE, boils)
+        boiling = BoilsLike(kind=fluid.boiling.glycol, mass_fraction=share)
+    else:
+        boiling = [
+            (
+                reader.si(point.temperature, _BOILING_TEMPERATURE, f"{boils}/points/{k}"),
+                reader.gauge(point.pressure, _BOILING_PRESSURE, f"{boils}/points/{k}") + reader.atmosphere,
+            )
+            for k, point in enumerate(fluid.boiling.points)
+        ]
+        _rising(reader, [temperature for temperature, _ in boiling], f"{boils}/points")
+    if len(reader.refused) > before:
+        return water()
+    return own_fluid(points, freezing, boiling, name=fluid.name)
+
+
+def _rising(reader: Reader, temperatures: list[float], pointer: str) -> None:
+    for k, (below, above) in enumerate(pairwise(temperatures), start=1):
+        if above <= below:
+            reader.contradiction(
+                f"{pointer}/{k}/temperature",
+                f"Point {k + 1} is not warmer than the one before it.",
+                "List the points in rising order of temperature, each temperature once.",
+            )
+            return
