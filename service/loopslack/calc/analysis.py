@@ -32,7 +32,7 @@ class SteamCase(NamedTuple):
 class Analysis:
     """A loop seen at its final pressure, under the base case, each doubt, and all doubts at once."""
 
-    def __init__(self, loop: Loop) -> None:
+    def __init__(self, loop: Loop, cases: dict[tuple[float, bool, bool], SteamCase] | None = None) -> None:
         self.loop = loop
         self.fluid = loop.fluid
         self.states: LiquidStates = liquid_states(loop)
@@ -43,7 +43,7 @@ class Analysis:
         self.not_applicable = tuple(id for id in DOUBT_IDS if doubts[id] is None)
         self.doubts: tuple[Scenario, ...] = tuple(d for d in doubts.values() if d is not None)
         self.combined = all_doubts(loop)
-        self._cases: dict[tuple[float, bool, bool], SteamCase] = {}
+        self._cases = {} if cases is None else cases
 
     @property
     def singles(self) -> tuple[Scenario, ...]:
@@ -66,18 +66,11 @@ class Analysis:
     def with_cooling(self, content: float) -> "Analysis":
         """The same loop with a cooling vessel of ``content`` m3: the steam stays, the liquid shifts."""
         loop = replace(self.loop, cooling_content=content)
-        other = copy(self)
-        other.loop = loop
-        other.states = liquid_states(loop)
-        other.mix = mixing(loop)
-        other.allowance = loop.criteria.fluid_allowance * loop.content
         change = content - self.loop.cooling_content
-        fill = self.states.fill.vessel_density
-        hot = self.fluid.density(loop.temperatures.hot_liquid)
-        other._cases = {
-            key: _shifted(case, loop, change * fill, change * hot) for key, case in self._cases.items()
-        }
-        return other
+        filled = change * self.states.fill.vessel_density
+        still = change * self.fluid.density(loop.temperatures.hot_liquid)
+        cases = {key: _shifted(case, loop, filled, still) for key, case in self._cases.items()}
+        return Analysis(loop, cases)
 
 
 def final_pressure(loop: Loop) -> float:

@@ -13,7 +13,7 @@ from loopslack.calc.scenarios import Scenario
 from loopslack.calc.window import Bound, Gas
 from loopslack.kernel.roots import bracketed
 
-_MOST = 64.0  # times the content of the loop: no cooling vessel is sought beyond
+_MOST = 1e3  # m3: no cooling vessel is sought beyond
 _TOLERANCE = 1e-9
 
 
@@ -45,54 +45,45 @@ def smallest_content(
     ``charge`` gives the loop with a cooling vessel of a content, with the vessel that then belongs to it, or None
     where no vessel fits.
     """
-    plain = charge(0.0)
-    if plain is None:
-        return None
-    temperature, worst = hottest(plain, scenarios)
-    if temperature <= limit:
-        return 0.0
-    if limit <= plain.analysis.mix.room:
-        return None
-    excess: dict[float, float] = {0.0: temperature - limit}
+    content: float | None = 0.0
+    while content is not None:
+        charged = charge(content)
+        if charged is None:
+            return None
+        temperature, worst = hottest(charged, scenarios)
+        if temperature <= limit:
+            return content
+        if limit <= charged.analysis.mix.room:
+            return None
+        content = _content_for(charge, worst, limit, content, _first_guess(charged, temperature, limit))
+    return None
 
-    def at(content: float) -> float:
+
+def _content_for(
+    charge: Callable[[float], Charged | None], scenario: Scenario, limit: float, low: float, step: float
+) -> float | None:
+    """Content (m3) above ``low`` with which one scenario just keeps the limit."""
+
+    def excess(content: float) -> float:
         charged = charge(content)
         if charged is None:
             raise _NoVessel
-        excess[content] = hottest(charged, (worst,))[0] - limit
-        return excess[content]
+        return hottest(charged, (scenario,))[0] - limit
 
     try:
-        high = _first_guess(plain, temperature, limit)
-        while at(high) > 0:
+        at_low = excess(low)
+        high = low + step
+        at_high = excess(high)
+        while at_high > 0:
+            low, at_low = high, at_high
             high *= 1.5
-            if high > _MOST * plain.analysis.loop.content:
+            if high > _MOST:
                 return None
-        low = max(content for content, value in excess.items() if value > 0)
-        content = bracketed(at, low, high, excess[low], excess[high], _TOLERANCE * high).at
-        while True:
-            charged = charge(content)
-            if charged is None:
-                return None
-            temperature, worst_now = hottest(charged, scenarios)
-            if temperature <= limit:
-                return content
-            if worst_now is worst:
-                content *= 1 + _TOLERANCE
-                continue
-            # Another scenario takes over: find its content instead.
-            worst, low, at_low = worst_now, content, temperature - limit
-            while at(high) > 0:
-                high *= 1.5
-                if high > _MOST * plain.analysis.loop.content:
-                    return None
-            content = bracketed(at, low, high, at_low, excess[high], _TOLERANCE * high).at
+            at_high = excess(high)
+        found = bracketed(excess, low, high, at_low, at_high, _TOLERANCE * high).at
     except _NoVessel:
         return None
-
-
-class _NoVessel(Exception):
-    """No vessel fits a loop with this cooling content."""
+    return found * (1 + _TOLERANCE)
 
 
 def membrane_bound(

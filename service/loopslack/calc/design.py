@@ -4,13 +4,15 @@ from collections.abc import Sequence
 from typing import NamedTuple
 
 from loopslack.calc.analysis import Analysis
-from loopslack.calc.fit import Fit, fit
+from loopslack.calc.fit import Fit
 from loopslack.calc.judge import judge, required
 from loopslack.calc.judgement import DoubtPolicy, Judgement
 from loopslack.calc.model import Loop, Vessel
+from loopslack.calc.precharge import gas_of
 from loopslack.calc.scenarios import BASE, Scenario
 from loopslack.calc.selection import Selection, Selector
 from loopslack.calc.sizing.volumes import CoolingMode, Sized, size
+from loopslack.calc.window import Bounds
 from loopslack.kernel.errors import CalculationError
 
 
@@ -133,6 +135,7 @@ def _nearest(
         if favourable.chosen is not None:
             return favourable.chosen
     vessel, count = selection.nearest
-    base_window = fit(analysis, (BASE,), vessel, count, request.cooling, float("inf"), content=0.0)
-    assert base_window is not None
-    return base_window
+    gas = gas_of(analysis, vessel, count)
+    return Fit(
+        vessel, count, gas, analysis, Bounds(analysis, (BASE,), gas).window(gas.nominal, gas.acceptance)
+    )

@@ -106,12 +106,10 @@ def equilibrium(
         return _state("valve-opens", opening, limit, law)
     if missing <= 0:
         return _state("steam" if limit.boiling else "no-boiling", opening, limit, law)
-    curve: _OneSpace | _SeveralSpaces
-    if len(balance.spaces) == 1:
-        curve = _OneSpace(balance, limit)
-    else:
-        curve = _SeveralSpaces(balance, opening)
-    return _solve(balance, law, curve, limit)
+    single = len(balance.spaces) == 1
+    return _solve(
+        balance, law, _OneSpace(balance, limit) if single else _SeveralSpaces(balance, opening), limit
+    )
 
 
 class _OneSpace:
@@ -144,12 +142,13 @@ class _SeveralSpaces:
         self.high = opening
         self.low = 0.0
         self.falling = all(space.path.falling for space in balance.spaces)
-        jumps = []
-        for space in balance.spaces:
-            for stagnation in space.stagnations:
-                if stagnation <= space.fluid.boiling_highest:
-                    jumps.append(space.pressure(stagnation))
-        self.jumps = sorted(p for p in jumps if p <= opening)
+        self.jumps = sorted(
+            pressure
+            for space in balance.spaces
+            for stagnation in space.stagnations
+            if stagnation <= space.fluid.boiling_highest
+            and (pressure := space.pressure(stagnation)) <= opening
+        )
 
     def start(self, lowest: float) -> None:
         """Raise the lower end to the vessel's lowest pressure (Pa)."""

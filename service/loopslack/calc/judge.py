@@ -19,11 +19,11 @@ from loopslack.calc.judgement import (
     Verdict,
 )
 from loopslack.calc.model import Part, Vessel
+from loopslack.calc.relief_size import relief_size_check
 from loopslack.calc.scenarios import BASE, Scenario
 from loopslack.calc.states import LiquidState
 from loopslack.calc.window import Bounds, Gas, Window
 from loopslack.kernel.errors import CalculationError
-from loopslack.calc.relief_size import relief_size_check
 from loopslack.physics.statics import GRAVITY
 
 JOINT = "required-doubts"  # the state under which checks of all required scenarios together stand
@@ -108,7 +108,7 @@ def judge(
         found.extend(own)
     static = _worst(check for check in found if check.state not in outcome or check.code == "fill-window")
     base = _worse(static, outcome[BASE.id])
-    doubts: dict[str, DoubtVerdict] = {id: "not-applicable" for id in analysis.not_applicable}
+    doubts: dict[str, DoubtVerdict] = dict.fromkeys(analysis.not_applicable, "not-applicable")
     for scenario in analysis.doubts:
         doubts[scenario.id] = outcome[scenario.id]
     combined = outcome[analysis.combined.id]

@@ -3,8 +3,7 @@
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.model import Vessel
 from loopslack.calc.window import Gas
-from loopslack.kernel.kinds import NominalVolume, Volume
-from loopslack.kernel.kinds import Length
+from loopslack.kernel.kinds import Length, NominalVolume, Volume
 from loopslack.physics.atmosphere import atmospheric_pressure
 from loopslack.physics.vessel import reserve_en_12828
 

@@ -16,7 +16,6 @@ from loopslack.calc.fit import Fit, acceptance_needed, cooling_for, fit
 from loopslack.calc.model import Vessel
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.sizing.volumes import CoolingMode, Sized
-from loopslack.calc.window import Bounds
 from loopslack.kernel import kinds
 from loopslack.kernel.kinds import Kind
 
@@ -79,7 +78,7 @@ class Selector:
         self.cooling: CoolingMode = cooling
         self.membrane_limit = membrane_limit
         self._fits: dict[tuple[object, ...], Fit | None] = {}
-        self._acceptances: dict[tuple[object, ...], float] = {}
+        self._smallest_acceptance: float | None = None
         self._needed = pressure_to_withstand(analysis, analysis.loop.relief, 0.0)
 
     def choose(self, candidates: Sequence[Vessel], most: int) -> Selection:
@@ -112,16 +111,17 @@ class Selector:
         found = []
         if vessel.rated_pressure is not None and vessel.rated_pressure < self._needed:
             found.append(_reason("rated-pressure", kinds.GAUGE_PRESSURE, vessel.rated_pressure, self._needed))
-        if self.sized is None:
+        sized = self.sized
+        if sized is None:
             found.append(self._hopeless())
             return found
         nominal = vessel.nominal_volume * count
-        smallest, largest = self.sized.smallest, self.sized.interval.largest
+        smallest, largest = sized.smallest, sized.interval.largest
         if nominal < smallest:
             found.append(
                 Reason("nominal-volume", kinds.NOMINAL_VOLUME, nominal, smallest, smallest - nominal)
             )
-            self._acceptance(vessel, count, found, smallest)
+            self._acceptance(vessel, count, found, sized)
             return found
         if nominal > largest:
             found.append(
@@ -134,7 +134,11 @@ class Selector:
                 )
             )
             return found
-        fitted = self._fit(vessel, count) if full or self.cooling != "size" else self._plain(vessel, count)
+        if full or self.cooling != "size":
+            fitted = self._fit(vessel, count)
+        else:
+            # Ranked after the choice: the loop as sized tells whether it would do.
+            fitted = fit(sized.analysis, self.scenarios, vessel, count, "size", inf, content=0.0)
         if fitted is None:
             limit = self._limit(vessel)
             found.append(Reason("membrane-temperature", kinds.TEMPERATURE, limit, None, None))
@@ -174,11 +178,11 @@ class Selector:
                 self.membrane_limit,
             )
             if adjusted is not None and adjusted.window.wide_enough:
-                found.append(self._delivered(vessel, adjusted))
+                found.append(self._delivered(vessel.delivered_precharge, adjusted))
                 return
         if fitted.window.lower_bound.code == "membrane-temperature":
             limit = self._limit(vessel)
-            needed_limit = self._membrane_needed(vessel, count)
+            needed_limit = self._membrane_needed(fitted)
             short = None if needed_limit is None else needed_limit - limit
             found.append(Reason("membrane-temperature", kinds.TEMPERATURE, limit, needed_limit, short))
             return
@@ -192,51 +196,37 @@ class Selector:
             )
         )
 
-    def _delivered(self, vessel: Vessel, adjusted: Fit) -> Reason:
+    def _delivered(self, delivered: float, adjusted: Fit) -> Reason:
         """How far the delivered precharge is from the nearest one that leaves a window."""
-        assert vessel.delivered_precharge is not None
-        needed = nearest_precharge(adjusted, self.scenarios, vessel.delivered_precharge)
-        return Reason(
-            "precharge-as-delivered",
-            kinds.GAUGE_PRESSURE,
-            vessel.delivered_precharge,
-            needed,
-            needed - vessel.delivered_precharge,
-        )
+        needed = nearest_precharge(adjusted, self.scenarios, delivered)
+        return _reason("precharge-as-delivered", kinds.GAUGE_PRESSURE, delivered, needed)
 
-    def _membrane_needed(self, vessel: Vessel, count: int) -> float | None:
-        """Membrane limit (K) with which the vessel's window would be just wide enough."""
-        plain = self._plain(vessel, count)
-        if not plain.window.wide_enough:
+    def _membrane_needed(self, fitted: Fit) -> float | None:
+        """Membrane limit (K) with which a vessel's window would be just wide enough."""
+        plain = fit(fitted.analysis, self.scenarios, fitted.vessel, fitted.pieces, "size", inf, content=0.0)
+        if plain is None or not plain.window.wide_enough:
             return None
-        gas = plain.gas
         lowest = plain.window.upper - self.analysis.loop.criteria.window_width
-        mass = Bounds(plain.analysis, (), gas).mass(gas.nominal, lowest)
-        return hottest(Charged(plain.analysis, gas, mass), self.scenarios)[0] + 1e-6
+        charged = Charged(plain.analysis, plain.gas, plain.mass_at(lowest))
+        return hottest(charged, self.scenarios)[0] + 1e-6
 
-    def _acceptance(self, vessel: Vessel, count: int, found: list[Reason], nominal: float) -> None:
+    def _acceptance(self, vessel: Vessel, count: int, found: list[Reason], sized: Sized) -> None:
         """For a vessel too small anyway: whether its membrane would be too small as well."""
         if vessel.acceptance_volume is None:
             return
-        key = ("smallest", nominal)
-        needed = self._acceptances.get(key)
-        if needed is None:
-            article = Vessel(id="", nominal_volume=nominal)
-            assert self.sized is not None
-            fitted = fit(self.sized.analysis, self.scenarios, article, 1, "given", inf)
-            assert fitted is not None
-            needed = self._acceptances[key] = acceptance_needed(fitted, self.scenarios)
-        if vessel.acceptance_volume * count < needed:
-            value = vessel.acceptance_volume
+        needed = self._least_acceptance(sized) / count
+        if vessel.acceptance_volume < needed:
             found.append(
-                Reason(
-                    "acceptance-volume",
-                    kinds.ACCEPTANCE_VOLUME,
-                    value,
-                    needed / count,
-                    needed / count - value,
-                )
+                _reason("acceptance-volume", kinds.ACCEPTANCE_VOLUME, vessel.acceptance_volume, needed)
             )
+
+    def _least_acceptance(self, sized: Sized) -> float:
+        """Acceptance volume (m3) that the smallest vessel that holds would need."""
+        if self._smallest_acceptance is None:
+            article = Vessel(id="smallest", nominal_volume=sized.smallest)
+            fitted = fit(sized.analysis, self.scenarios, article, 1, "size", inf, content=0.0)
+            self._smallest_acceptance = 0.0 if fitted is None else acceptance_needed(fitted, self.scenarios)
+        return self._smallest_acceptance
 
     def _limit(self, vessel: Vessel) -> float:
         return self.membrane_limit if vessel.membrane_limit is None else vessel.membrane_limit
@@ -250,13 +240,6 @@ class Selector:
             fixed,
             vessel.membrane_limit,
         )
-
-    def _plain(self, vessel: Vessel, count: int) -> Fit:
-        """The vessel in the loop as sized, its membrane not looked at."""
-        assert self.sized is not None
-        found = fit(self.sized.analysis, self.scenarios, vessel, count, "size", inf, content=0.0)
-        assert found is not None
-        return found
 
     def _fit(self, vessel: Vessel, count: int) -> Fit | None:
         key = self._key(vessel, count)
@@ -315,4 +298,4 @@ def _one_currency(candidates: Sequence[Vessel]) -> bool:
 def _nearest(refused: Sequence[Refusal]) -> tuple[Vessel, int]:
     """The refused candidate with the fewest reasons, the largest among equals."""
     best = min(refused, key=lambda r: (len(r.reasons), -r.vessel.nominal_volume * r.pieces, r.vessel.id))
-    return best.vessel, best.count
+    return best.vessel, best.pieces

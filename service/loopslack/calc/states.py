@@ -98,8 +98,10 @@ def _operating(loop: Loop) -> LiquidState:
 
 
 def _cut_off(loop: Loop) -> LiquidState:
-    """Collectors and flow at the cut-off temperature, the rest as in operation: the least pressure at which the
-    collectors can be that hot, so the safe side for boiling."""
+    """Collectors and flow at the cut-off temperature, the rest as in operation.
+
+    The least pressure at which the collectors can be that hot, so the safe side for boiling.
+    """
     return _running(loop, "cut-off", loop.temperatures.cut_off, loop.temperatures.cut_off)
 
 

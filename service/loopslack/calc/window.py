@@ -11,8 +11,8 @@ from typing import NamedTuple
 
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.scenarios import Scenario
-from loopslack.physics.vessel import reserve_en_12828
 from loopslack.kernel.kinds import NominalVolume, Volume
+from loopslack.physics.vessel import reserve_en_12828
 
 
 class Bound(NamedTuple):

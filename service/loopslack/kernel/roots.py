@@ -62,10 +62,8 @@ def first_crossing(
 ) -> Root | None:
     """The lowest root found by walking ``stops`` upwards until the sign changes; None if it never does."""
     previous: tuple[float, float] | None = None
-    count = 0
-    for stop in stops:
+    for count, stop in enumerate(stops, start=1):
         value = function(stop)
-        count += 1
         if previous is not None and (previous[1] < 0) != (value < 0):
             found = bracketed(function, previous[0], stop, previous[1], value, tolerance)
             return Root(found.at, found.evaluations + count)
