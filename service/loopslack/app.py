@@ -96,6 +96,7 @@ def create_app(
 
     Raises:
         SettingsError: a variable of the environment will not do.
+
     """
     if settings is None:
         settings = settings_from(os.environ)

@@ -102,6 +102,7 @@ def settings_from(environment: Mapping[str, str]) -> Settings:
 
     Raises:
         SettingsError: a variable is unknown, or its value is outside its range.
+
     """
     for name in environment:
         if (

@@ -34,6 +34,7 @@ class Costly:
 
         Raises:
             Refused: 503, because too much waits already or the deadline has passed.
+
         """
         if self._taken >= self._places:
             count_refusal("costly")

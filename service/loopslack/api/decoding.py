@@ -7,7 +7,9 @@ search for all faulty fields in `faults`.
 
 import asyncio
 import json
+import math
 import re
+import sys
 from collections.abc import Iterator
 from time import perf_counter
 from typing import Any, TypeVar, cast
@@ -16,6 +18,7 @@ import msgspec
 from msgspec import inspect
 
 from loopslack.api.faults import escaped, faults_of
+from loopslack.api.field_rules import Leaf
 from loopslack.api.problems import MOST_FAULTS, FaultyField
 from loopslack.api.refusals import Refused, refusal_of_fields
 from loopslack.kernel.errors import CalculationError
@@ -33,6 +36,7 @@ _members = msgspec.json.Decoder(dict[str, msgspec.Raw])
 _entries = msgspec.json.Decoder(list[msgspec.Raw])
 _encode = msgspec.json.Encoder().encode
 _decoders: dict[type, msgspec.json.Decoder[Any]] = {}
+_HUGE = int(sys.float_info.max)
 _BYTE = re.compile(r"\(byte (\d+)\)")
 
 
@@ -41,6 +45,7 @@ def decoder_of(question: type[Question]) -> msgspec.json.Decoder[Question]:
 
     Raises:
         TypeError: the type has a part of any shape, so that it would not bound the depth of a body.
+
     """
     known = _decoders.get(question)
     if known is None:
@@ -58,10 +63,11 @@ def decode(body: bytes, question: type[Question], nesting: int = 32) -> Question
 
     Raises:
         Refused: with every fault found, as the problem document to answer.
+
     """
     try:
         asked: Question = decoder_of(question).decode(body)
-        if body.count(b'"') == _encode(_untyped.decode(body)).count(b'"') and b"\\u0022" not in body:
+        if _keeps_its_marks(body):
             return asked
     except (msgspec.DecodeError, RecursionError, CalculationError):
         pass
@@ -73,6 +79,7 @@ async def decode_in_steps(body: bytes, question: type[Question], nesting: int = 
 
     Raises:
         Refused: as `decode`.
+
     """
     if len(body) <= LARGE_BODY:
         return decode(body, question, nesting)
@@ -127,9 +134,12 @@ def _decode_with_care(body: bytes, question: type[Question], nesting: int) -> Qu
         raise _refusal_of_duplicates(twice)
     value = _whole_numbers(value)
     try:
-        return msgspec.convert(value, question, strict=True)
+        asked = msgspec.convert(value, question, strict=True)
+        if not _holds_infinity(value):  # which the conversion, unlike the decoder, lets pass
+            return asked
     except (msgspec.ValidationError, CalculationError):
-        faults = faults_of(value, question)
+        pass
+    faults = faults_of(value, question)
     if not faults.found:
         raise AssertionError("a body was refused in which no fault can be found")
     raise refusal_of_fields(faults.found, faults.further)
@@ -163,11 +173,16 @@ def _value_with_huge_numbers(body: bytes) -> object:
         raise _malformed("not-finite", f"{name} is no number of JSON. State a finite number or leave it out.")
 
     try:
-        return cast(object, json.loads(body, parse_constant=not_a_number))
+        return cast(object, json.loads(body, parse_constant=not_a_number, parse_int=_whole))
     except RecursionError:
         raise _nested(0) from None
     except ValueError:
         raise _malformed("not-json", "The body is not JSON.") from None
+
+
+def _whole(digits: str) -> float:
+    """A whole number, or infinity for one with more digits than a floating point number can have."""
+    return int(digits) if len(digits) < 400 else math.inf
 
 
 def _not_json(body: bytes, told: str) -> Refused:
@@ -213,13 +228,26 @@ def _deeper_than(value: object, nesting: int) -> bool:
     return True
 
 
+def _keeps_its_marks(body: bytes) -> bool:
+    """Whether decoding and encoding a body loses no quotation mark, and with it no member.
+
+    A mark written as an escape could make up for a lost one; such a body is always looked at more closely.
+    """
+    if b"\\u0022" in body:
+        return False
+    try:
+        return body.count(b'"') == _encode(_untyped.decode(body)).count(b'"')
+    except msgspec.ValidationError:  # a number too large to hold
+        return False
+
+
 class _Members(list[tuple[str, object]]):
     """An object as the pairs that were written, nothing dropped."""
 
 
 def _stated_twice(piece: bytes, pointer: str) -> list[FaultyField]:
     """Members of an object that an earlier member of the same name precedes."""
-    if piece.count(b'"') == _encode(_untyped.decode(piece)).count(b'"') and b"\\u0022" not in piece:
+    if _keeps_its_marks(piece):
         return []
     twice: list[FaultyField] = []
     waiting: list[tuple[str, object]] = [
@@ -252,6 +280,8 @@ def _whole_numbers(value: object) -> object:
     """The same value with 9.0 written as 9: JSON knows one kind of number, the decoder two."""
     if isinstance(value, float):
         return int(value) if value.is_integer() and abs(value) < 2**53 else value
+    if isinstance(value, int):
+        return value if abs(value) < _HUGE else math.inf
     if isinstance(value, list):
         return [_whole_numbers(inner) for inner in value]
     if isinstance(value, dict):
@@ -259,12 +289,16 @@ def _whole_numbers(value: object) -> object:
     return value
 
 
+def _holds_infinity(value: object) -> bool:
+    if isinstance(value, dict | list):
+        return any(map(_holds_infinity, value.values() if isinstance(value, dict) else value))
+    return isinstance(value, float) and math.isinf(value)
+
+
 def _assure_closed(kind: inspect.Type, inside: tuple[Any, ...]) -> None:
     """Refuse a type of question through which a body of any depth could pass."""
     while isinstance(kind, inspect.Metadata):
         kind = kind.type
-    if isinstance(kind, inspect.AnyType | inspect.RawType):
-        raise TypeError("a question may not have a part of any shape")
     if isinstance(kind, inspect.StructType):
         if kind.cls in inside or not kind.forbid_unknown_fields:
             raise TypeError(f"{kind.cls.__name__} must refuse unknown fields and not contain itself")
@@ -277,3 +311,5 @@ def _assure_closed(kind: inspect.Type, inside: tuple[Any, ...]) -> None:
         _assure_closed(kind.item_type, inside)
     elif isinstance(kind, inspect.DictType):
         _assure_closed(kind.value_type, inside)
+    elif not isinstance(kind, Leaf):
+        raise TypeError(f"a question may not have a part of {type(kind).__name__}")

@@ -66,6 +66,7 @@ def read_keys(path: Path) -> tuple[Key, ...]:
 
     Raises:
         KeysError: the file is absent, not TOML, or names a key twice.
+
     """
     try:
         keys = msgspec.convert(tomllib.loads(path.read_text(encoding="utf-8")), _KeysFile).key

@@ -31,6 +31,7 @@ def refuse_query(scope: Scope) -> None:
 
     Raises:
         Refused: 400.
+
     """
     if scope["query_string"]:
         names = [part.partition(b"=")[0][:32] for part in scope["query_string"].split(b"&")[:5]]
@@ -45,9 +46,10 @@ def check_acceptable(scope: Scope, media_type: str) -> None:
 
     Raises:
         Refused: 406.
+
     """
     accept = header(scope, b"accept")
-    if accept is not None and not accepts(accept, media_type):
+    if accept is not None and not accepts(accept, media_type.partition(";")[0]):
         raise Refused("not-acceptable", f"The operation answers {media_type}, which Accept excludes.")
 
 
@@ -73,6 +75,7 @@ def check_body_head(scope: Scope, accepted: Iterable[str] = (JSON,)) -> None:
 
     Raises:
         Refused: 415.
+
     """
     encoding = header(scope, b"content-encoding")
     if encoding is not None and encoding.strip().lower() not in ("", "identity"):
@@ -116,6 +119,7 @@ async def read_body(scope: Scope, receive: Receive, limit: int, seconds: float) 
 
     Raises:
         Refused: 413 or 408, either of which ends the connection where the protocol lets an answer say so.
+
     """
     announced = header(scope, b"content-length")
     if announced is not None and announced.isdigit() and int(announced[:20]) > limit:

@@ -15,7 +15,7 @@ _OF_ONE_FIELD = frozenset(
 )
 
 
-class Refused(Exception):  # noqa: N818 - named for what happens to the request
+class Refused(Exception):
     """Ends a request with a problem document."""
 
     def __init__(

@@ -57,6 +57,7 @@ def encoded(answer: object) -> bytes:
 
     Raises:
         NotFiniteError: the answer holds a number that is none.
+
     """
     body = encode(answer)
     if b"null" in body:

@@ -1,0 +1,9 @@
+import pytest
+
+from api.small_service import serving
+
+
+@pytest.fixture(scope="module")
+def client():
+    with serving() as made:
+        yield made
