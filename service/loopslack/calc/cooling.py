@@ -119,3 +119,7 @@ def _first_guess(charged: Charged, temperature: float, limit: float) -> float:
     room, hot = charged.analysis.mix.room, charged.analysis.mix.hot
     held = charged.gas.nominal
     return max(1e-5, held * (temperature - limit) / max(hot - room, 1.0))
+
+
+class _NoVessel(Exception):
+    """No vessel fits a loop with this cooling content."""
