@@ -38,7 +38,8 @@ class Analysis:
         self.states: LiquidStates = liquid_states(loop)
         self.mix: Mixing = mixing(loop)
         self.final_pressure = final_pressure(loop)
-        self.allowance = loop.criteria.fluid_allowance * loop.content
+        self.content = loop.content
+        self.allowance = loop.criteria.fluid_allowance * self.content
         doubts = single_doubts(loop)
         self.not_applicable = tuple(id for id in DOUBT_IDS if doubts[id] is None)
         self.doubts: tuple[Scenario, ...] = tuple(d for d in doubts.values() if d is not None)

@@ -14,7 +14,7 @@ from loopslack.calc.window import Bound, Gas
 from loopslack.kernel.roots import bracketed
 
 _MOST = 1e3  # m3: no cooling vessel is sought beyond
-_TOLERANCE = 1e-9
+_TOLERANCE = 1e-7  # of a content or a mass; the answer is then moved to the safe side by as much
 
 
 class Charged(NamedTuple):

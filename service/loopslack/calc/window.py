@@ -68,6 +68,7 @@ class Bounds:
         self.lower: list[tuple[str, str, float, float]] = []
         self.upper: list[tuple[str, str, float, float]] = []
         self.warm: list[Scenario] = []
+        self._started: dict[tuple[str, str], float] = {}
         self._cold()
         self._cut_off()
         for scenario in scenarios:
@@ -118,10 +119,10 @@ class Bounds:
 
     def reserve(self, nominal: float) -> float:
         """Liquid (m3) a vessel must still hold when cold."""
-        loop = self.analysis.loop
-        if loop.criteria.reserve is not None:
-            return loop.criteria.reserve
-        return reserve_en_12828(NominalVolume(nominal), Volume(loop.content))
+        stated = self.analysis.loop.criteria.reserve
+        if stated is not None:
+            return stated
+        return reserve_en_12828(NominalVolume(nominal), Volume(self.analysis.content))
 
     def masses(self, nominal: float, acceptance: float = inf) -> tuple[Bound, Bound]:
         """Lower and upper bound on the mass (kg) a vessel of ``nominal`` m3 is filled with."""
@@ -139,22 +140,24 @@ class Bounds:
         for scenario in self.warm:
             case = self.analysis.case(scenario)
             pressure = self.analysis.final_pressure
-            mass = self._warm_mass(nominal, pressure, case.final.expelled)
+            mass = self._warm_mass(nominal, pressure, case.final.expelled, (scenario.id, "final"))
             if mass < highest.mass:
                 highest = Bound("relief-valve", scenario.id, mass)
             if case.station is not None:
-                mass = self._warm_mass(nominal, case.station.pressure, case.station.expelled)
+                station = case.station
+                mass = self._warm_mass(nominal, station.pressure, station.expelled, (scenario.id, "station"))
                 if mass > lowest.mass:
                     lowest = Bound("steam-at-station", scenario.id, mass)
         if acceptance < nominal:
             highest = self._accepting(nominal, acceptance, highest)
         return lowest, highest
 
-    def _warm_mass(self, nominal: float, pressure: float, expelled: float) -> float:
+    def _warm_mass(self, nominal: float, pressure: float, expelled: float, start: tuple[str, str]) -> float:
         """As ``_line`` with gas and liquid of the vessel at the mixed temperature.
 
         Substitution shrinks the error about tenfold a pass, since warmer gas leaves less room for the liquid that
-        warms it; a secant through two passes does the rest.
+        warms it; a secant through two passes does the rest. ``start`` names where the temperature of the last
+        vessel asked for is kept, since a search asks for similar ones.
         """
         analysis, mix = self.analysis, self.analysis.mix
         density, fill = analysis.fluid.density, self.fill_density
@@ -167,13 +170,14 @@ class Bounds:
 
         if nominal * (1 - squeeze * mix.hot) <= 0:
             return -inf
-        first = mix.room
+        first = self._started.get(start, mix.room)
         second = mass_at(first)[1]
         error = second - first
         for _ in range(30):
             mass, mixed = mass_at(second)
             following = mixed - second
             if abs(following) < 1e-11:
+                self._started[start] = second
                 break
             step = following - error
             first, previous = second, first
@@ -213,7 +217,7 @@ class Bounds:
         low = self.pressure(nominal, lower.mass, temperature)
         high = self.pressure(nominal, upper.mass, temperature)
         base = self.precharge * temperature / self.temperature + criteria.fill_above_precharge
-        recommended = max(low + criteria.window_step, base)
+        recommended = max(low + criteria.window_step, base) if low < inf else base
         enough = (
             upper.mass > lower.mass
             and high < inf
@@ -229,12 +233,11 @@ class Bounds:
         infinity below an empty vessel's precharge, where the pressure is not defined.
         """
         analysis = self.analysis
-        content = analysis.loop.content
         if temperature == analysis.loop.temperatures.fill:
             held = mass / self.fill_density
         else:
-            total = mass + self.fill_density * content
-            held = total / analysis.fluid.density(temperature) - content
+            total = mass + self.fill_density * analysis.content
+            held = total / analysis.fluid.density(temperature) - analysis.content
         if held < 0:
             return -inf
         gas = nominal - held

@@ -16,8 +16,8 @@ from loopslack.calc.scenarios import Scenario
 from loopslack.calc.window import Bound, Bounds, Gas, Window
 from loopslack.kernel.roots import bracketed
 
-_LADDER = 1.25  # step of the search for the bracket; the root itself is solved, not stepped
-_RUNGS = 48  # 1.25^48 is 45,000 times the smallest vessel that could work at all
+_LADDER = 1.2  # step of the search for the bracket; the root itself is solved, not stepped
+_RUNGS = 55  # 1.2^55 is 22,000 times the smallest vessel that could work at all
 
 
 class Interval(NamedTuple):
@@ -30,11 +30,16 @@ class Interval(NamedTuple):
 
 
 def feasible(
-    analysis: Analysis, scenarios: Sequence[Scenario], membrane_limit: float | None = None
+    analysis: Analysis,
+    scenarios: Sequence[Scenario],
+    membrane_limit: float | None = None,
+    *,
+    upper_end: bool = True,
 ) -> Interval | None:
     """The interval of nominal volumes with a wide enough window under every scenario; None if there is none.
 
-    With a ``membrane_limit`` (K) the filling must also keep the membrane at or below it.
+    With a ``membrane_limit`` (K) the filling must also keep the membrane at or below it. Without ``upper_end`` the
+    largest volume is not looked for and left infinite.
     """
     if any(analysis.case(scenario).at_station for scenario in scenarios):
         return None
@@ -57,7 +62,8 @@ def feasible(
         # The root is met from above, so that the smallest vessel reported has its window.
         while slack.at(smallest) < 0:
             smallest *= 1 + 1e-12
-    return Interval(smallest, slack.upper_end(volume), slack.window(smallest), slack.precharge(smallest))
+    largest = slack.upper_end(volume) if upper_end else inf
+    return Interval(smallest, largest, slack.window(smallest), slack.precharge(smallest))
 
 
 class _Slack:
@@ -99,18 +105,26 @@ class _Slack:
         return bounds, lower, upper
 
     def least(self) -> float | None:
-        """A volume (m3) below every feasible one: what must be pushed out, with no gas left."""
+        """A volume (m3) no feasible one lies below: where the bounds that are linear in it first leave a window.
+
+        None where a vessel has no room at the final pressure, however large.
+        """
         bounds = self._bounds or self._for(1.0)
-        pushed = max(self.analysis.case(s).final.expelled for s in self.scenarios)
-        room = 1 - bounds.squeeze / self.analysis.final_pressure
-        if room <= 0:
+        if bounds.squeeze >= self.analysis.final_pressure:
             return None
-        return max(1e-6, pushed / self.analysis.states.fill.vessel_density)
+        least = 1e-6
+        for _, _, upper_slope, upper_offset in bounds.upper:
+            least = max(least, upper_offset / upper_slope)
+            for _, _, slope, offset in bounds.lower:
+                if upper_slope > slope:
+                    least = max(least, (upper_offset - offset) / (upper_slope - slope))
+        # An optimised precharge lies below that of the bounds, which are then no more than a guide.
+        return least if self.fixed else 0.25 * least
 
     def upper_end(self, volume: float) -> float:
         """The largest feasible volume (m3) above a feasible one, infinite if the slack never runs out."""
-        for _ in range(20):
-            following = volume * 2
+        for _ in range(6):
+            following = volume * 5
             value = self.at(following)
             if value < 0:
                 found = bracketed(self.at, volume, following, self.at(volume), value, 1e-12 * following).at

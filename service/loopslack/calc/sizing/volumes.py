@@ -52,14 +52,11 @@ def size(
         interval = feasible(analysis, scenarios, membrane_limit)
         return interval and Sized(interval, analysis.loop.cooling_content, analysis, floor)
 
-    found: dict[float, Interval] = {}
-
     def charge(content: float) -> Charged | None:
         cooled = analysis.with_cooling(content) if content else analysis
-        interval = feasible(cooled, scenarios)
+        interval = feasible(cooled, scenarios, upper_end=False)
         if interval is None:
             return None
-        found[content] = interval
         volume = max(interval.smallest, floor)
         gas = Gas(volume, precharge(cooled, volume), precharge_temperature(cooled))
         return Charged(cooled, gas, interval.window.lower_bound.mass)
@@ -68,7 +65,8 @@ def size(
     if content is None:
         return None
     cooled = analysis.with_cooling(content) if content else analysis
-    return Sized(found[content], content, cooled, floor)
+    interval = feasible(cooled, scenarios)
+    return interval and Sized(interval, content, cooled, floor)
 
 
 def without_boiling_floor(analysis: Analysis, *, accept_without_boiling: bool) -> float:
