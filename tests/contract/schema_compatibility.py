@@ -11,7 +11,6 @@ Must not live here: paths, operations, anything of HTTP. A keyword this module c
 
 from __future__ import annotations
 
-import json
 from collections.abc import Mapping
 from typing import Any, Literal, NamedTuple
 
@@ -77,7 +76,7 @@ class SchemaComparison:
     def __init__(self, old: Document, new: Document) -> None:
         self._old, self._new = old, new
         self.findings: list[Finding] = []
-        self._judged: set[tuple[str, str, bool]] = set()
+        self._judged: set[tuple[str | int, str | int, bool]] = set()
 
     def request(self, where: str, old: Schema, new: Schema) -> None:
         """A schema of something callers send."""
@@ -91,7 +90,7 @@ class SchemaComparison:
         self.findings.append(Finding(grade, where, what))
 
     def _compare(self, where: str, old: Schema, new: Schema, *, sent: bool) -> None:
-        key = (json.dumps(old, sort_keys=True), json.dumps(new, sort_keys=True), sent)
+        key = (_identity(old), _identity(new), sent)
         if key in self._judged:
             return
         self._judged.add(key)
@@ -220,7 +219,7 @@ def _code_changed(old: Schema, new: Schema) -> list[str]:
     changed = []
     if old.get("format") != new.get("format"):
         changed.append(f"format {old.get('format')} became {new.get('format')}")
-    if _types(old) != _types(new) and {"integer"} & ((_types(old) or set()) ^ (_types(new) or set())):
+    if ("number" in (_types(old) or ())) != ("number" in (_types(new) or ())):
         changed.append("an integer became a number or the reverse")
     before = dict(zip(old.get("enum", []), old.get("x-enum-varnames", []), strict=False))
     after = dict(zip(new.get("enum", []), new.get("x-enum-varnames", []), strict=False))
@@ -246,6 +245,11 @@ def _implied(keyword: str, edge: float, narrow: Schema) -> bool:
     if keyword.startswith("exclusive"):
         return bool(inside < edge if keyword in UPPER else inside > edge)
     return bool(inside <= edge if keyword in UPPER else inside >= edge)
+
+
+def _identity(schema: Schema) -> str | int:
+    """A reference is what it refers to; any other schema is itself, and its document outlives the comparison."""
+    return schema["$ref"] if set(schema) <= {"$ref", *WORDS} and "$ref" in schema else id(schema)
 
 
 def _types(schema: Schema) -> set[str] | None:

@@ -30,6 +30,8 @@ class Example(msgspec.Struct, frozen=True, kw_only=True, forbid_unknown_fields=T
     title: str
     sentence: str
     status: int = 200
+    shortened: bool = False
+    """The answer is shown with the first two entries of each list."""
 
 
 class ExampleBook:
