@@ -1,5 +1,9 @@
 """What is assumed when nothing is stated."""
 
+import ast
+from pathlib import Path
+
+import loopslack
 import pytest
 
 from loopslack.kernel.value import Assumed
@@ -135,3 +139,23 @@ def test_a_key_that_does_not_exist_is_a_slip_of_ours() -> None:
         default("weather")
     with pytest.raises(KeyError):
         choice("weather")
+
+
+def test_every_default_that_the_service_names_exists() -> None:
+    named = []
+    for path in Path(loopslack.__file__).parent.rglob("*.py"):
+        tree = ast.parse(path.read_text(encoding="utf-8"))
+        imported = any(
+            isinstance(node, ast.ImportFrom) and node.module == "loopslack.library.defaults"
+            for node in ast.walk(tree)
+        )
+        for node in ast.walk(tree):
+            if not (
+                imported and isinstance(node, ast.Call) and isinstance(node.func, ast.Name) and node.args
+            ):
+                continue
+            key = node.args[0]
+            if node.func.id in {"default", "choice"} and isinstance(key, ast.Constant):
+                named.append((node.func.id, key.value))
+    assert len(named) > 10
+    assert [key for word, key in named if key not in (defaults() if word == "default" else choices())] == []
