@@ -13,7 +13,7 @@ from msgspec.structs import fields as fields_of
 from loopslack.contract import quantity as q
 from loopslack.kernel import kinds
 from loopslack.kernel.kinds import Kind
-from loopslack.kernel.units import from_si, scale_of
+from loopslack.kernel.units import ABSOLUTE_UNITS, from_si, scale_of
 from loopslack.library.defaults import default
 
 Lines = dict[str, tuple[float, float]]
@@ -21,7 +21,7 @@ Lines = dict[str, tuple[float, float]]
 _KIND_OF_STRUCT: dict[type[q.Quantity], Kind] = {
     q.STRUCT_OF[kind.name]: kind for kind in reversed(kinds.KINDS) if kind.units
 }
-_KIND_OF_STRUCT[q.Pressure] = kinds.GAUGE_PRESSURE  # every pressure of a question is read as gauge
+_KIND_OF_STRUCT[q.Pressure] = kinds.GAUGE_PRESSURE  # a pressure is read as gauge unless its range is absolute
 _KIND_OF_STRUCT[q.Volume] = kinds.VOLUME
 _KIND_OF_STRUCT[q.Ratio] = kinds.RATIO
 
@@ -77,17 +77,18 @@ def field_of(struct: type[Struct], attribute: str) -> Field:
         raise TypeError(f"{struct.__name__}.{attribute} is no described quantity")
     encoded = next(field.encode_name for field in fields_of(struct) if field.name == attribute)
     extra: dict[str, Any] = meta.extra or {}
+    if extra["unit"] in ABSOLUTE_UNITS:
+        kind = kinds.ABSOLUTE_PRESSURE
     scale, offset = scale_of(kind, extra["unit"])
     low, high = scale * extra["low"] + offset, scale * extra["high"] + offset
     # The end of a range stated in another unit may come out a few last digits beyond it.
-    slack = 1e-12 * max(abs(low), abs(high))
     return Field(
         name=encoded,
         title=attribute.replace("_", " "),
         kind=kind,
         lines={unit: scale_of(kind, unit) for unit in kind.units},
-        low=low - slack,
-        high=high + slack,
+        low=low - 1e-12 * abs(low),
+        high=high + 1e-12 * abs(high),
     )
 
 

@@ -27,7 +27,7 @@ class ProtectTo(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="
     """As much glycol as keeps the mixture free of ice down to a temperature."""
 
     temperature: Annotated[
-        Temperature, quantity("Temperature at which the first ice may form.", -25, "degC", -50, -1)
+        Temperature, quantity("Temperature at which the first ice may form.", -25, "degC", -60, -1)
     ]
 
 

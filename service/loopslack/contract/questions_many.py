@@ -4,7 +4,7 @@ A design of a batch states only what differs from the defaults. Its struct is ma
 design, so that no member can exist in one and not in the other.
 """
 
-from typing import TYPE_CHECKING, Annotated, Any, Literal
+from typing import TYPE_CHECKING, Annotated, Any, Literal, get_args
 
 from msgspec import Meta, Struct, defstruct
 from msgspec.structs import fields as fields_of
@@ -33,8 +33,21 @@ MOST_DESIGNS = 1000
 _MEMBERS = fields_of(LoopDesignQuestion)
 
 
+def _or_none(annotation: object) -> object:
+    """Permit null and keep the description outside, where a schema shows it for every type."""
+    base, *metas = get_args(annotation)
+    meta: Meta = metas[-1]
+    if meta.min_length is not None or meta.max_length is not None:
+        base = Annotated[base, Meta(min_length=meta.min_length, max_length=meta.max_length)]
+    return Annotated[
+        base | None, Meta(description=meta.description, examples=meta.examples, extra=meta.extra)
+    ]
+
+
 def _all_optional(name: str, described: str, first: list[tuple[str, Any]]) -> type[Struct]:
-    optional = [(field.name, field.type | None if field.required else field.type, None) for field in _MEMBERS]
+    optional = [
+        (field.name, _or_none(field.type) if field.required else field.type, None) for field in _MEMBERS
+    ]
     return defstruct(
         name,
         [*first, *optional],

@@ -80,6 +80,16 @@ class Reader:
             return number
         return self._out_of_range(stated, field, place, number, datum)
 
+    def absolute(self, stated: Pressure, field: Field, place: str) -> float:
+        """Read a pressure as absolute, Pa, whichever way it was stated; its range is absolute as well."""
+        unit = stated.unit
+        scale, _ = field.lines[unit]
+        datum = -self.atmosphere if unit in GAUGE_UNITS else 0.0
+        number = scale * stated.value - datum
+        if field.low <= number <= field.high:
+            return number
+        return self._out_of_range(stated, field, place, number, datum)
+
     def optional(self, stated: Stated | None, field: Field, place: str) -> float | None:
         """Read a quantity that may be absent and has no default."""
         return None if stated is None else self.si(stated, field, place)

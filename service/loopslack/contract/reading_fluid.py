@@ -70,7 +70,7 @@ def _own(reader: Reader, fluid: asked.OwnFluid, place: str) -> Fluid:
         boiling = [
             (
                 reader.si(point.temperature, _BOILING_TEMPERATURE, f"{boils}/points/{k}"),
-                reader.gauge(point.pressure, _BOILING_PRESSURE, f"{boils}/points/{k}") + reader.atmosphere,
+                reader.absolute(point.pressure, _BOILING_PRESSURE, f"{boils}/points/{k}"),
             )
             for k, point in enumerate(fluid.boiling.points)
         ]
