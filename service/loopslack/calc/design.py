@@ -24,6 +24,7 @@ class Request(NamedTuple):
     cooling: CoolingMode
     policy: DoubtPolicy
     accept_without_boiling: bool = False
+    fill_pressure: float | None = None  # Pa absolute, where the filling of a given vessel is stated
 
 
 class Volumes(NamedTuple):
@@ -67,6 +68,8 @@ def design(loop: Loop, request: Request) -> Design:
     shown = selection.chosen
     if shown is None:
         shown = _nearest(analysis, scenarios, selection, volumes, request)
+    if request.fill_pressure is not None:
+        shown = shown._replace(window=shown.window._replace(recommended=request.fill_pressure))
     membrane = shown.vessel.membrane_limit
     judgement = judge(
         shown.analysis,

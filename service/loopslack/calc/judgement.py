@@ -3,6 +3,7 @@
 from typing import Literal, NamedTuple
 
 from loopslack.calc.equilibrium import Equilibrium
+from loopslack.calc.states import StateId
 from loopslack.kernel.kinds import Kind
 
 Verdict = Literal["holds", "favourable-only", "does-not-hold", "not-assessed"]
@@ -54,7 +55,7 @@ class StateResult(NamedTuple):
     Pressures are None when the vessel is empty: they are then not defined.
     """
 
-    id: str
+    id: StateId
     liquid: float
     pressure: float | None
     top_pressure: float | None

@@ -1,0 +1,300 @@
+"""Advisories: what a caller must know about this loop, each with its numbers, in a sentence, and what to do.
+
+Codes are stable; a translation builds its own sentence from code and parameters. A failing core check that counts
+towards the verdict is always a ``stop``: no failed check may read like a pass.
+"""
+
+from collections.abc import Iterator
+
+from loopslack.calc.analysis import Analysis
+from loopslack.calc.fit import Fit
+from loopslack.calc.judge import JOINT, required
+from loopslack.calc.judgement import Check, DoubtPolicy, Judgement
+from loopslack.calc.model import Branch
+from loopslack.calc.scenarios import BASE
+from loopslack.contract.answers_common import Advisory, AnyQuantity, Severity
+from loopslack.contract.units_out import System
+from loopslack.contract.writing_common import any_quantity
+from loopslack.kernel import kinds
+from loopslack.kernel.kinds import Kind
+
+_HIGH_SITE = 1000.0  # m, from where the design sun should be the site's own hottest hour (own assumption)
+_HIGH_SUN = 1100.0  # W/m2 asked for there (own assumption)
+
+# What each failing check means and what to do about it.
+_FAILING: dict[str, tuple[str, str]] = {
+    "relief-valve": (
+        "the vessel would reach {value}, above the {limit} at which the relief valve may open",
+        "Take a larger vessel, a lower precharge or filling, or a relief valve with a higher set pressure.",
+    ),
+    "acceptance": (
+        "the vessel would have to take {value} of liquid, more than the {limit} its membrane accepts",
+        "Take a vessel with a larger acceptance volume.",
+    ),
+    "reserve": (
+        "only {value} of liquid is left in the vessel when cold; the reserve is {limit}",
+        "Fill to a higher pressure or take a larger vessel.",
+    ),
+    "top-pressure": (
+        "the highest point would be at {value} when cold, below the {limit} that keeps air out",
+        "Fill to a higher pressure or raise the precharge.",
+    ),
+    "boiling-at-cut-off": (
+        "the vessel stands at {value} when the pump cuts off, below the {limit} that keeps the top from boiling",
+        "Fill to a higher pressure or lower the pump's cut-off temperature.",
+    ),
+    "steam-at-station": (
+        "{value} of steam power is left when all open pipes are full of steam, and reaches the station",
+        "Add a stagnation cooler of that power, more or less insulated pipe, or collectors that empty better.",
+    ),
+    "membrane-temperature": (
+        "liquid mixed to {value} would reach the membrane, whose limit is {limit}",
+        "Put a cooling vessel before the expansion vessel.",
+    ),
+    "freezing": (
+        "the fluid freezes at {value}; {limit} is asked for at this site",
+        "Use more glycol.",
+    ),
+    "fill-window": (
+        "the fill window is too narrow for an installer: {value} where {limit} is asked for",
+        "Take a larger vessel.",
+    ),
+    "part-protected": (
+        "{subject} would see {value} while the relief valve stands at its set pressure, above its rating of {limit}",
+        "Take a part rated higher or a relief valve with a lower set pressure.",
+    ),
+    "part-temperature": (
+        "{subject} would see {value} before the pump cuts off, above its limit of {limit}",
+        "Take a part for higher temperatures or a lower cut-off temperature.",
+    ),
+    "net-positive-suction": (
+        "the pump inlet has {value} above boiling, less than the {limit} the pump asks for",
+        "Fill to a higher pressure or place the pump lower.",
+    ),
+    "relief-size": (
+        "the relief valve's nominal size is too small: {value} of collectors where the table allows {limit}",
+        "Take the size of the order list.",
+    ),
+}
+_WITHOUT_NUMBER = {
+    "vessel-empty": "the vessel would be empty, so the pressure is not defined and the loop may draw air",
+    "no-window": "no fill pressure keeps every check",
+    "fill-outside-window": "the filling lies outside the fill window",
+    "too-close-to-precharge": "the fill window lies too close to the precharge",
+}
+_STATES = {
+    "base": "In stagnation",
+    "warm-gas": "In stagnation with warm gas in the vessel",
+    "hotter-stagnation": "In stagnation with collectors hotter than computed",
+    "worse-emptying": "In stagnation with collectors that empty worse",
+    "closed-branch": "In stagnation with the runs of unknown check valves closed to steam",
+    "all-doubts": "In stagnation with every doubt at once",
+    "cold": "In the cold",
+    "cut-off": "At the pump's cut-off",
+    "fill": "When filled",
+    JOINT: "Over all doubts asked for",
+}
+
+
+class Advisor:
+    """Collects the advisories of one judged vessel."""
+
+    def __init__(self, fitted: Fit, judgement: Judgement, policy: DoubtPolicy, system: System) -> None:
+        self.analysis: Analysis = fitted.analysis
+        self.fitted, self.judgement, self.policy, self.system = fitted, judgement, policy, system
+        self.atmosphere = self.analysis.loop.atmosphere
+
+    def all(self) -> list[Advisory]:
+        """Every advisory, gravest first."""
+        order: dict[Severity, int] = {"stop": 0, "warning": 1, "note": 2}
+        return sorted(
+            [*self._failing(), *self._unknown(), *self._loop(), *self._steam()],
+            key=lambda advisory: order[advisory.severity],
+        )
+
+    def _failing(self) -> Iterator[Advisory]:
+        counted = {scenario.id for scenario in required(self.analysis, self.policy)} | {JOINT}
+        told: set[tuple[str, str]] = set()
+        for check in self.judgement.failing:
+            stagnation = check.state in self.judgement.stagnation
+            counts = not stagnation or check.state in counted
+            severity: Severity = "note"
+            if check.core and counts:
+                severity = "stop"
+            elif not check.core:
+                severity = "warning"
+            # One doubt that fails like the base case says nothing new.
+            if stagnation and check.state != BASE.id and (check.code, BASE.id) in told:
+                continue
+            told.add((check.code, check.state))
+            yield self._of(check, severity)
+
+    def _of(self, check: Check, severity: Severity) -> Advisory:
+        sentence, remedy = _FAILING[check.code]
+        parameters = {}
+        if check.value is not None:
+            parameters["value"] = self._quantity(check.value, check.kind)
+        if check.limit is not None:
+            parameters["limit"] = self._quantity(check.limit, check.kind)
+        if check.margin is not None:
+            parameters["margin"] = self._margin(check.margin, check.kind)
+        if "value" not in parameters or check.reason in ("fill-outside-window", "too-close-to-precharge"):
+            text = _WITHOUT_NUMBER.get(check.reason, "the check does not hold")
+        else:
+            shown = {name: _say(quantity) for name, quantity in parameters.items()}
+            text = sentence.format(subject=check.subject, **shown)
+        return Advisory(
+            severity=severity,
+            code=check.code,
+            message=f"{_STATES.get(check.state, check.state)}: {text}.",
+            remedy=remedy,
+            parameters=parameters,
+            subject=check.subject or None,
+        )
+
+    def _unknown(self) -> Iterator[Advisory]:
+        for scenario, reason in self.judgement.refused.items():
+            yield Advisory(
+                severity="stop",
+                code="not-assessed",
+                message=f"{_STATES[scenario]}: not computed. {reason}",
+                remedy="Bring the loop into the range of the fluid's properties.",
+                parameters={},
+                subject=scenario,
+            )
+
+    def _loop(self) -> Iterator[Advisory]:
+        loop = self.analysis.loop
+        if self.analysis.states.cold.frozen:
+            yield self._say(
+                "stop",
+                "freezes",
+                "The fluid freezes at {freezing}, above the coldest outdoor temperature of {minimum}.",
+                "Use more glycol. Nothing about the cold state is a pass.",
+                freezing=(loop.fluid.freezing_point, kinds.TEMPERATURE),
+                minimum=(loop.temperatures.site_minimum, kinds.TEMPERATURE),
+            )
+        if self.policy == "none":
+            yield self._say(
+                "warning",
+                "doubts-left-out",
+                "The doubts were left out, so this design is favourable only.",
+                "Ask with `doubtPolicy` `single`.",
+            )
+        elif not self.judgement.robust and self.judgement.verdict == "holds":
+            yield self._say(
+                "note",
+                "not-robust",
+                "The design survives each doubt alone but not all of them at once.",
+                "See `volumes.robust`, or ask with `doubtPolicy` `combined`.",
+            )
+        if loop.altitude > _HIGH_SITE and loop.sun.irradiance < _HIGH_SUN:
+            yield self._say(
+                "note",
+                "high-site-sun",
+                "At {altitude} the sun can be stronger than the {irradiance} designed for.",
+                "State the design sun as 1100 W/m2 with the air of the site's hottest hour.",
+                altitude=(loop.altitude, kinds.LENGTH),
+                irradiance=(loop.sun.irradiance, kinds.IRRADIANCE),
+            )
+
+    def _steam(self) -> Iterator[Advisory]:
+        """What the steam does to glycol, solder, membrane and crests."""
+        loop = self.analysis.loop
+        result = self.judgement.stagnation.get(BASE.id)
+        if result is None:
+            return
+        extent = result.extent
+        hottest = max(steam.temperature for steam in extent.spaces)
+        limit = loop.criteria.degradation_limit
+        if loop.fluid.mass_fraction > 0 and hottest > limit:
+            yield self._say(
+                "warning",
+                "glycol-degrades",
+                "Liquid stands at {temperature} in stagnation; glycol degrades above about {limit}.",
+                "Test the fluid after every stagnation and keep stagnation rare.",
+                temperature=(hottest, kinds.TEMPERATURE),
+                limit=(limit, kinds.TEMPERATURE),
+            )
+        membrane = self.fitted.vessel.membrane_limit or loop.criteria.membrane_limit
+        if result.last_temperature > membrane >= result.mixed_temperature:
+            yield self._say(
+                "warning",
+                "hot-liquid-arrives",
+                "The liquid that arrives last in the vessel has {temperature}, mixed it has {mixed}.",
+                "Enter the vessel so that liquid mixes, and place the cooling vessel before it.",
+                temperature=(result.last_temperature, kinds.TEMPERATURE),
+                mixed=(result.mixed_temperature, kinds.TEMPERATURE),
+            )
+        spaces = self.analysis.case(BASE).balance.spaces
+        lowest = min(
+            (steam.height for steam in extent.spaces if steam.boiling and steam.pipe > 0), default=0.0
+        )
+        if lowest < 0:
+            yield self._say(
+                "warning",
+                "front-below-vessel",
+                "Steam reaches down to {height}, below the vessel connection, and may rise to the membrane.",
+                "Connect the vessel below the lowest steam front.",
+                height=(lowest, kinds.LENGTH),
+            )
+        if any(not space.path.falling for space in spaces):
+            yield self._say(
+                "note",
+                "rising-pipe",
+                "A pipe run rises away from the collectors; of several equilibria the one with most steam is shown.",
+                "Let the runs fall from the collectors to the station.",
+            )
+        soldered = [
+            branch.name
+            for space, steam in zip(spaces, extent.spaces, strict=True)
+            for branch, reach in zip(space.path.branches, space.path.reach(steam.place), strict=True)
+            if _soldered(branch, reach)
+        ]
+        if soldered:
+            yield self._say(
+                "warning",
+                "soft-solder",
+                f"Steam reaches soft-soldered joints in {', '.join(soldered)}.",
+                "Braze, press or weld every joint within the reach of steam.",
+            )
+
+    def _quantity(self, si: float, kind: Kind) -> AnyQuantity:
+        if kind is kinds.ABSOLUTE_PRESSURE:
+            return any_quantity(si - self.atmosphere, kinds.GAUGE_PRESSURE, self.system)
+        return any_quantity(si, kind, self.system)
+
+    def _margin(self, si: float, kind: Kind) -> AnyQuantity:
+        if kind in (kinds.ABSOLUTE_PRESSURE, kinds.GAUGE_PRESSURE):
+            kind = kinds.PRESSURE_DIFFERENCE
+        elif kind is kinds.TEMPERATURE:
+            kind = kinds.TEMPERATURE_DIFFERENCE
+        return any_quantity(si, kind, self.system)
+
+    def _say(
+        self, severity: Severity, code: str, message: str, remedy: str, **numbers: tuple[float, Kind]
+    ) -> Advisory:
+        parameters = {name: any_quantity(si, kind, self.system) for name, (si, kind) in numbers.items()}
+        shown = {name: _say(quantity) for name, quantity in parameters.items()}
+        return Advisory(
+            severity=severity,
+            code=code,
+            message=message.format(**shown),
+            remedy=remedy,
+            parameters=parameters,
+        )
+
+
+def _soldered(branch: Branch, reach: float) -> bool:
+    """Whether steam over a reach touches a soft-soldered segment."""
+    done = 0.0
+    for segment in branch.segments:
+        if segment.soft_solder and reach > done:
+            return True
+        done += segment.length
+    return False
+
+
+def _say(quantity: AnyQuantity) -> str:
+    """A quantity as a sentence says it: four digits at most."""
+    return f"{quantity.value:.4g} {quantity.unit}"
