@@ -3,9 +3,9 @@
 import ast
 from pathlib import Path
 
-import loopslack
 import pytest
 
+import loopslack
 from loopslack.kernel.value import Assumed
 from loopslack.library.defaults import (
     PRESSURE_EQUIPMENT_CATEGORIES,
