@@ -5,9 +5,13 @@ import time
 
 import msgspec
 import pytest
+from hypothesis import given, settings
+from hypothesis import strategies as st
 
-from api.small_service import GOOD, GOOD_BODY, JSON, SmallQuestion, pointers, serving
-from loopslack.api.decoding import LARGE_BODY, decode, decoder_of
+from api.small_service import GOOD, GOOD_BODY, JSON, OpenHandedQuestion, SmallQuestion, pointers, serving
+from loopslack.api.decoding import decode
+from loopslack.api.duplicates import LARGE_BODY
+from loopslack.api.reader import reader_of
 from loopslack.api.refusals import Refused
 
 
@@ -125,6 +129,50 @@ def test_quotation_marks_inside_a_text_are_no_member_stated_twice(client, note):
     assert post(client, body).status_code == 200
 
 
+def twice_by_the_standard_library(body):
+    """Whether a member is stated twice, as the slow reader of the standard library sees it."""
+    found = []
+
+    def look(pairs):
+        found.append(len(dict(pairs)) < len(pairs))
+        return dict(pairs)
+
+    json.loads(body, object_pairs_hook=look)
+    return any(found)
+
+
+TEXTS = st.sampled_from(['"a"', '"\\""', '"\\u0022"', '"\\\\"', '"\\\\\\""', '":"', '"\\u0041,"', "null"])
+SPACES = st.sampled_from(["", " ", "\n\t"])
+NAMES = {
+    "count": st.sampled_from(["1", "7", "null"]),
+    "note": TEXTS,
+    "exact": st.sampled_from(["true", "false"]),
+    "stock": st.sampled_from(["[]", "null", '[{"id":"a","litres":1}]', '[{"id":"a","litres":1,"id":"b"}]']),
+    "fluid": st.sampled_from(["null", '{"kind":"water"}', '{"kind":"water","kind":"water"}']),
+}
+
+
+@st.composite
+def bodies(draw):
+    """A question written in some way, with members stated once or more often."""
+    names = draw(st.lists(st.sampled_from(sorted(NAMES)), max_size=6))
+    space = draw(SPACES)
+    members = ['"reliefPressure":{"value":6,"unit":"barg"}']
+    members += [f'"{name}"{space}:{space}{draw(NAMES[name])}' for name in names]
+    return ("{" + f"{space},".join(draw(st.permutations(members))) + "}").encode()
+
+
+@settings(max_examples=400, derandomize=True, deadline=None)
+@given(body=bodies(), question=st.sampled_from([SmallQuestion, OpenHandedQuestion]))
+def test_members_stated_twice_are_seen_as_the_standard_library_sees_them(body, question):
+    try:
+        decode(body, question)
+        kind = ""
+    except Refused as refused:
+        kind = refused.kind.slug
+    assert (kind == "duplicate-keys") == twice_by_the_standard_library(body)
+
+
 def large_body(entries, **more):
     stock = [{"id": f"v-{number}", "litres": 80} for number in range(entries)]
     return json.dumps(GOOD | more | {"stock": stock}).encode()
@@ -151,14 +199,47 @@ def test_in_a_large_body_a_member_stated_twice_is_found_at_the_top(client):
 
 
 def test_all_faults_of_a_large_body_are_counted_and_fifty_listed(client):
-    body = large_body(9_000).replace(b'"litres": 80', b'"litres": -1')
+    body = large_body(9_000).replace(b'"litres": 80', b'"litres": -1', 900)
     refused = post(client, body)
     assert refused.status_code == 422
     problem = refused.json()
     assert len(problem["errors"]) == 50
-    assert problem["furtherErrors"] == 8_950
-    assert "9000 fields" in problem["detail"]
+    assert problem["furtherErrors"] == 850
+    assert "900 fields" in problem["detail"]
     assert problem["errors"][0]["pointer"] == "/stock/0/litres"
+
+
+def test_faults_are_counted_up_to_a_thousand(client):
+    problem = post(client, large_body(9_000).replace(b'"litres": 80', b'"litres": -1')).json()
+    assert problem["furtherErrors"] == 950
+    assert problem["detail"].startswith("1000 fields of the question are faulty, and there may be more.")
+
+
+def test_one_fault_at_the_end_of_a_large_body_is_found(client):
+    body = large_body(9_000).replace(b'{"id": "v-8999", "litres": 80}', b'{"id": "v-8999", "liters": 80}')
+    assert pointers(post(client, body)) == {
+        "/stock/8999/litres": "missing",
+        "/stock/8999/liters": "unknown-field",
+    }
+
+
+@pytest.mark.parametrize(
+    ("filling", "slug", "place"),
+    [
+        (b'"note":[' + b"[]," * 400_000 + b"[]]", "invalid-field", "/note"),
+        (b'"note":[' + b"0," * 600_000 + b"0]", "invalid-field", "/note"),
+        (b"".join(b'"k%d":1,' % number for number in range(160_000)) + b'"k":1', "invalid-field", ""),
+        (b'"stock":[' + b"0," * 200_000 + b"NaN]", "invalid-field", "/stock/0"),
+        (b'"note":null,' * 160_000 + b'"note":NaN', "malformed-body", ""),
+    ],
+    ids=["lists", "numbers", "members", "stock", "repeated"],
+)
+def test_a_body_of_very_many_values_is_refused_at_its_first_fault(client, filling, slug, place):
+    begun = time.perf_counter()
+    refused = post(client, b"{" + filling + b"}")
+    assert refused.json()["type"] == f"/docs/problems/{slug}"
+    assert list(pointers(refused)) == [place]
+    assert time.perf_counter() - begun < 0.5
 
 
 def test_a_body_may_be_as_long_as_the_limit_and_no_longer():
@@ -190,4 +271,4 @@ def test_a_unit_expression_is_never_evaluated(client):
 def test_a_question_of_any_shape_is_refused_when_the_service_is_made():
     for kind in (Anything, Endless, Open):
         with pytest.raises(TypeError):
-            decoder_of(kind)
+            reader_of(kind)

@@ -131,5 +131,5 @@ def test_a_long_value_of_the_caller_is_not_repeated_in_full(client):
 
 def test_many_unknown_members_do_not_cost_a_search_each(client):
     refused = client.post("/v1/double", json=GOOD | {f"count{number}": 1 for number in range(2_000)})
-    assert refused.json()["furtherErrors"] == 1_950
+    assert refused.json()["furtherErrors"] == 950
     assert float(refused.headers.get("content-length")) < 20_000

@@ -5,8 +5,10 @@ runs only after a refusal, so that a good question pays nothing, and it accepts 
 fault with is put to the decoder again, whose verdict counts. The rules of single values are in `field_rules`.
 """
 
+import math
 import re
 from collections.abc import Iterable, Mapping
+from contextlib import suppress
 from functools import cache
 
 import msgspec
@@ -14,12 +16,16 @@ from msgspec import inspect
 
 from loopslack.api.field_rules import Leaf, broken_rules, size, word, wrong_type
 from loopslack.api.hints import expectation, listing, members_near, shown
-from loopslack.api.problems import MOST_FAULTS, FaultyField
+from loopslack.api.problems import MOST_COUNTED, MOST_FAULTS, FaultyField
 from loopslack.api.refusals import fault_of
 from loopslack.kernel.errors import CalculationError, Refusals
 
 MOST_HINTS = 20
 """Near misses looked for in one question; a search costs up to a millisecond."""
+
+
+class _EnoughError(Exception):
+    """Ends the walk."""
 
 
 class Faults:
@@ -52,9 +58,14 @@ class Faults:
             raise TypeError(f"questions hold no {type(kind).__name__}")
 
     def _add(self, pointer: str, code: str, message: str) -> None:
-        self.count += 1
+        self._count_one()
         if len(self.found) < MOST_FAULTS:
             self.found.append(FaultyField(pointer=pointer, code=code, message=message))
+
+    def _count_one(self) -> None:
+        if self.count == MOST_COUNTED:
+            raise _EnoughError
+        self.count += 1
 
     def _add_all(self, pointer: str, broken: Iterable[tuple[str, str]]) -> None:
         for code, message in broken:
@@ -63,7 +74,7 @@ class Faults:
     def _add_cause(self, cause: CalculationError, pointer: str) -> None:
         """Take over a fault that the question's own rules found at this place."""
         for one in cause.errors if isinstance(cause, Refusals) else (cause,):
-            self.count += 1
+            self._count_one()
             if len(self.found) < MOST_FAULTS:
                 self.found.append(fault_of(one, pointer))
 
@@ -109,6 +120,8 @@ class Faults:
     def _object(self, value: object, kind: inspect.StructType, pointer: str) -> None:
         if not isinstance(value, dict):
             self._add(pointer, *wrong_type(value, kind))
+            return
+        if _is_sound(value, kind):
             return
         before = self.count
         known = {field.encode_name for field in kind.fields}
@@ -173,14 +186,22 @@ def faults_of(value: object, question: type) -> Faults:
     Falls back on the decoder's own words where the walk finds nothing: a refused body always has a fault.
     """
     faults = Faults()
-    faults.walk(value, shape_of(question), "")
+    with suppress(_EnoughError):
+        faults.walk(value, shape_of(question), "")
     if not faults.count:
         try:
             msgspec.convert(value, question, strict=True)
         except msgspec.ValidationError as error:
             faults.count = 1
-            faults.found = [FaultyField(pointer=_place(error), code="invalid", message=_sentence(error))]
+            faults.found = [first_fault(error)]
     return faults
+
+
+def first_fault(error: msgspec.ValidationError) -> FaultyField:
+    """The one fault the decoder itself reports, in its words."""
+    path = re.search(r"`\$((?:\.[A-Za-z0-9_-]+|\[\d+\])*)", str(error))
+    place = "" if path is None else path[1].replace(".", "/").replace("[", "/").replace("]", "")
+    return FaultyField(pointer=place, code="invalid", message=_sentence(error))
 
 
 @cache
@@ -226,6 +247,17 @@ def _sentence(error: msgspec.ValidationError) -> str:
     return str(error).partition(" - at ")[0].rstrip(".") + "."
 
 
-def _place(error: msgspec.ValidationError) -> str:
-    path = re.search(r"`\$((?:\.[A-Za-z0-9_-]+|\[\d+\])*)", str(error))
-    return "" if path is None else path[1].replace(".", "/").replace("[", "/").replace("]", "")
+def _is_sound(value: Mapping[str, object], kind: inspect.StructType) -> bool:
+    """Whether an object is sound with all that is in it, asked of the decoder at a fiftieth of a walk."""
+    try:
+        msgspec.convert(value, kind.cls, strict=True)
+    except (msgspec.ValidationError, CalculationError):
+        return False
+    return not holds_infinity(value)
+
+
+def holds_infinity(value: object) -> bool:
+    """Whether a value holds a number too large to be one, which the conversion lets pass."""
+    if isinstance(value, dict | list):
+        return any(map(holds_infinity, value.values() if isinstance(value, dict) else value))
+    return isinstance(value, float) and math.isinf(value)

@@ -12,6 +12,9 @@ PROBLEM_MEDIA_TYPE = "application/problem+json"
 MOST_FAULTS = 50
 """Faulty fields listed in one document; beyond it they are only counted."""
 
+MOST_COUNTED = 1_000
+"""Faults after which a question is looked at no further: so many are one mistake made everywhere."""
+
 
 class ProblemType(Struct, frozen=True, kw_only=True):
     """One kind of problem: what it means and what a caller can do about it."""
@@ -276,5 +279,10 @@ class Problem(Struct, frozen=True, kw_only=True, rename="camel", omit_defaults=T
         ),
     ] = ()
     further_errors: Annotated[
-        int, Meta(ge=0, description="Faults beyond those listed; absent when all are.", examples=[3])
+        int,
+        Meta(
+            ge=0,
+            description=f"Faults beyond those listed; absent when all are. Counted up to {MOST_COUNTED} in all.",
+            examples=[3],
+        ),
     ] = 0

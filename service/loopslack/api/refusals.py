@@ -7,7 +7,7 @@ import math
 import uuid
 from collections.abc import Mapping, Sequence
 
-from loopslack.api.problems import MOST_FAULTS, PROBLEM_TYPES, FaultyField, Problem
+from loopslack.api.problems import MOST_COUNTED, MOST_FAULTS, PROBLEM_TYPES, FaultyField, Problem
 from loopslack.kernel.errors import CalculationError, Refusals
 
 _OF_ONE_FIELD = frozenset(
@@ -62,6 +62,8 @@ def refusal_of_fields(faults: Sequence[FaultyField], further: int = 0) -> Refuse
     detail = (
         "1 field of the question is faulty." if count == 1 else f"{count} fields of the question are faulty."
     )
+    if count >= MOST_COUNTED:
+        detail = f"{count} fields of the question are faulty, and there may be more."
     if further:
         detail += f" The first {len(faults)} are listed."
     return Refused("invalid-field", detail, faults=faults, further=further)

@@ -15,8 +15,9 @@ from litestar.exceptions import HTTPException
 from litestar.handlers import HTTPRouteHandler
 from litestar.types import ASGIApp
 
-from loopslack.api.decoding import decode_in_steps, decoder_of
+from loopslack.api.decoding import decode_in_steps
 from loopslack.api.operations import Floor, Operation
+from loopslack.api.reader import reader_of
 from loopslack.api.reading import check_acceptable, check_body_head, read_body, refuse_query
 from loopslack.api.record import internal_fault, log_fault, note_of
 from loopslack.api.reference import Page, page_route, reference_page
@@ -59,7 +60,7 @@ def _answering(operation: Operation[Any, Any], floor: Floor) -> Handler:
     question, ask, settings = operation.question, operation.ask, floor.settings
     if question is None or ask is None:
         raise TypeError(f"{operation.operation_id} needs a question and a function that answers it")
-    decoder_of(question)  # fails at start, not at the first request
+    reader_of(question)  # fails at start, not at the first request
     limit = operation.body_size.limit(settings)
     media_type = operation.media_type.encode()
     standing = [(b"cache-control", b"no-store"), *farewell(operation)]
