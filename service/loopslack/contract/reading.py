@@ -64,8 +64,17 @@ class Reading(Struct, frozen=True, kw_only=True):
     accept_without_boiling: bool
     include: frozenset[Extra] | None
     system: System
-    assumed: tuple[Assumed, ...]
-    provisional: tuple[Provisional, ...]
+    books: Reader
+
+    @property
+    def assumed(self) -> tuple[Assumed, ...]:
+        """Everything that was assumed so far, also by what was read after the loop."""
+        return tuple(self.books.assumed)
+
+    @property
+    def provisional(self) -> tuple[Provisional, ...]:
+        """Everything the answer rests on that was not stated and matters."""
+        return tuple(self.books.provisional)
 
     @property
     def write(self) -> Writer:
@@ -98,8 +107,7 @@ def read_loop(question: asked.LoopQuestion, reader: Reader | None = None) -> Rea
         accept_without_boiling=accept,
         include=None if question.include is None else frozenset(question.include),
         system=question.units or "metric",
-        assumed=tuple(reader.assumed),
-        provisional=tuple(reader.provisional),
+        books=reader,
     )
 
 
