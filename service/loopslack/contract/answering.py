@@ -3,6 +3,7 @@
 from typing import TypedDict
 
 from loopslack.calc.design import Request, design
+from loopslack.calc.existing import check
 from loopslack.calc.fit import Fit
 from loopslack.calc.judgement import Judgement
 from loopslack.calc.model import Vessel
@@ -19,11 +20,14 @@ from loopslack.contract.answers_loop import (
     Provisional,
     StagnationState,
 )
+from loopslack.contract.fields import field_of
 from loopslack.contract.reader import Reader
 from loopslack.contract.reading import Reading, read_loop
-from loopslack.contract.reading_vessels import Choice, read_choice
+from loopslack.contract.reading_vessels import Choice, read_choice, read_fill, read_vessel
 from loopslack.contract.writing_common import CAUTIONS, assumptions, provenance
 from loopslack.library.vessels import preferred_vessels
+
+_FILL = field_of(questions.StagnationCheckQuestion, "fill_pressure")
 
 
 def design_loop(question: questions.LoopDesignQuestion) -> answers.LoopDesignAnswer:
@@ -61,6 +65,32 @@ def design_loop(question: questions.LoopDesignQuestion) -> answers.LoopDesignAns
         result=result,
         assumptions=assumptions(reading.assumed, reading.system),
         advisories=Advisor(shown, judgement, reading.policy, reading.system).all(),
+        cautions=CAUTIONS,
+        provenance=provenance(),
+    )
+
+
+def check_stagnation(question: questions.StagnationCheckQuestion) -> answers.StagnationCheckAnswer:
+    """Answer a stagnation check of a given vessel."""
+    reader = Reader()
+    reading = read_loop(question, reader)
+    stated = question.vessel
+    vessel = read_vessel(reader, stated, "/vessel", stated.id or "given")
+    fill = read_fill(reader, question.fill_pressure, _FILL, "")
+    reader.finish()
+    found = check(reading.loop, vessel, question.vessels_in_parallel or 1, reading.policy, fill_pressure=fill)
+    write = reading.write
+    pressure = write_loop.Pressures(write, reading.loop.atmosphere)
+    result = answers.StagnationCheckResult(
+        **_judged(reading, found.fitted, found.judgement),
+        vessel=write_loop.vessel(found.fitted, write),
+        precharge=pressure(found.fitted.gas.precharge),
+        fill_pressure=pressure.optional(found.fill_pressure),
+    )
+    return answers.StagnationCheckAnswer(
+        result=result,
+        assumptions=assumptions(reading.assumed, reading.system),
+        advisories=Advisor(found.fitted, found.judgement, reading.policy, reading.system).all(),
         cautions=CAUTIONS,
         provenance=provenance(),
     )

@@ -185,6 +185,9 @@ class VesselQuestion(LoopQuestion, frozen=True, kw_only=True):
     """A loop with its vessel."""
 
     vessel: Annotated[ExpansionVessel, text("The vessel.")]
+    vessels_in_parallel: Annotated[
+        Annotated[int, Meta(ge=1, le=10)] | None, text("How many equal ones there are. If absent, one.", 1)
+    ] = None
     cooling_vessel: Annotated[
         FixedCoolingVessel | None, text("A cooling vessel before the expansion vessel. If absent, none.")
     ] = None
