@@ -27,14 +27,15 @@ def bracketed(
     """Root between ``low`` and ``high``, whose values have different signs.
 
     Regula falsi with the Anderson-Bjorck weighting, and a bisection whenever three steps have not halved the
-    bracket. Ends when the bracket or the last step is within ``tolerance``.
+    bracket. Ends when the bracket is within ``tolerance``, or when the last step is and the sign changes that close
+    to it: a step that hugs an end of a lopsided bracket is small too, and no root.
     """
     if at_low == 0:
         return Root(low, 0)
     if at_high == 0:
         return Root(high, 0)
-    width, count = high - low, 0
-    guess = low
+    rising = at_high > 0
+    width, count, guess = high - low, 0, low
     while count < most:
         previous = guess
         guess = high - at_high * (high - low) / (at_high - at_low)
@@ -44,16 +45,29 @@ def bracketed(
             width = high - low
         value = function(guess)
         count += 1
-        if value == 0 or abs(guess - previous) <= tolerance or high - low <= tolerance:
+        if value == 0 or high - low <= tolerance:
             return Root(guess, count)
-        if (value > 0) == (at_high > 0):
-            share = 1 - value / at_high
-            at_low *= share if share > 0 else 0.5
-            high, at_high = guess, value
-        else:
+        below = (value > 0) != rising
+        if below:
             share = 1 - value / at_low
             at_high *= share if share > 0 else 0.5
             low, at_low = guess, value
+        else:
+            share = 1 - value / at_high
+            at_low *= share if share > 0 else 0.5
+            high, at_high = guess, value
+        if abs(guess - previous) <= tolerance:
+            beside = guess + tolerance if below else guess - tolerance
+            if not low < beside < high:
+                return Root(guess, count)
+            value = function(beside)
+            count += 1
+            if ((value > 0) != rising) != below:
+                return Root(guess, count)
+            if below:
+                low, at_low = beside, value
+            else:
+                high, at_high = beside, value
     return Root(guess, count)
 
 
