@@ -7,6 +7,7 @@ import asyncio
 import os
 from collections.abc import AsyncIterator, Iterable
 from contextlib import asynccontextmanager, suppress
+from importlib import import_module
 from typing import Any
 
 from litestar import Litestar
@@ -15,6 +16,7 @@ from litestar.types import ASGIApp, Receive, Scope, Send
 
 from loopslack.api.costly import Costly
 from loopslack.api.guard import Guard, is_guarding, warn_if_open
+from loopslack.api.openapi import document_pages
 from loopslack.api.operations import Floor, Operation
 from loopslack.api.probes import probe_routes
 from loopslack.api.record import Record
@@ -23,8 +25,8 @@ from loopslack.api.refusals import Refused
 from loopslack.api.routes import on_fault, on_http_exception, on_refused, routes_of
 from loopslack.api.v1 import OPERATIONS
 from loopslack.api.wrappers import CrossOrigin, HeadAsGet, LiteralPaths, Shedding, StandingHeaders
-from loopslack.observability import READINESS, LoopLag, set_up_logging
-from loopslack.settings import Settings, settings_from
+from loopslack.observability import READINESS, Lines, LoopLag, set_up_logging
+from loopslack.settings import Settings, SettingsError, settings_from
 
 
 class Application:
@@ -51,9 +53,10 @@ class Application:
                 Exception: on_fault,
             },
         )
-        self._outermost = self._wrapped(framework, Record, lines if settings.access_log else None)
+        self.tracing: Any = None
+        self._outermost = self._wrapped(framework, lines if settings.access_log else None)
 
-    def _wrapped(self, framework: ASGIApp, record: type[Record], lines: Any) -> ASGIApp:  # noqa: ANN401
+    def _wrapped(self, framework: ASGIApp, lines: Lines | None) -> ASGIApp:
         """The wrappers from the inside out."""
         app: ASGIApp = framework
         if is_guarding(self.settings):
@@ -63,13 +66,17 @@ class Application:
         app = Shedding(app, self.lag, self.settings.shed_lag_seconds)
         if self.settings.cors_origins:
             app = CrossOrigin(app, self.settings.cors_origins)
-        return StandingHeaders(record(app, lines))
+        if self.settings.tracing:
+            app = self.tracing = _tracing_class()(app)
+        return StandingHeaders(Record(app, lines))
 
     @asynccontextmanager
     async def _lifespan(self, _: Litestar) -> AsyncIterator[None]:
         """Between start and stop of a worker: everything that may not be made before the server forks."""
         warn_if_open(self.settings)
         watch = asyncio.create_task(self.lag.watch())
+        if self.tracing is not None:
+            self.tracing.start()
         self.readiness.draining = False
         self.readiness.loaded = True
         try:
@@ -77,6 +84,8 @@ class Application:
         finally:
             self.readiness.draining = True
             self.costly.close()
+            if self.tracing is not None:
+                self.tracing.stop()
             watch.cancel()
             with suppress(asyncio.CancelledError):
                 await watch
@@ -90,9 +99,9 @@ def create_app(
     settings: Settings | None = None,
     *,
     operations: Iterable[Operation[Any, Any]] | None = None,
-    pages: Iterable[Page] = (),
+    pages: Iterable[Page] | None = None,
 ) -> Application:
-    """The application for some settings; without any, for those of the environment.
+    """The application for some settings, by default those of the environment, with the register and the document.
 
     Raises:
         SettingsError: a variable of the environment will not do.
@@ -100,7 +109,16 @@ def create_app(
     """
     if settings is None:
         settings = settings_from(os.environ)
-    return Application(settings, OPERATIONS if operations is None else operations, pages)
+    if operations is None:
+        operations = OPERATIONS
+    return Application(settings, operations, document_pages() if pages is None else pages)
+
+
+def _tracing_class() -> Any:  # noqa: ANN401 - of a module that may be absent
+    try:
+        return import_module("loopslack.api.tracing").Tracing
+    except ImportError as error:
+        raise SettingsError(f"LOOPSLACK_TRACING needs the extra `tracing` of the package: {error}") from None
 
 
 def __getattr__(name: str) -> Application:

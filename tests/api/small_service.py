@@ -158,7 +158,7 @@ JSON = {"content-type": "application/json"}
 
 
 def small_app(**settings: Any) -> Application:
-    return create_app(Settings(**settings), operations=OPERATIONS)
+    return create_app(Settings(**settings), operations=OPERATIONS, pages=())
 
 
 @contextmanager
