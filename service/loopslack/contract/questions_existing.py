@@ -55,19 +55,11 @@ class ColdDawn(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="c
 class PumpStop(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="pump-stop"):
     """The pump stops while the loop is hot."""
 
-    time: Annotated[TimeSpan | None, quantity("When. If absent, noon.", 12, "h", 0, 24)] = None
-    collectors: Annotated[
-        Temperature | None, quantity("Collectors then. If absent, 90 degC.", 90, "degC", -20, 160)
-    ] = None
-    pipes: Annotated[
-        Temperature | None, quantity("Pipes then. If absent, 80 degC.", 80, "degC", -20, 140)
-    ] = None
-    station: Annotated[
-        Temperature | None, quantity("Station then. If absent, 75 degC.", 75, "degC", -20, 140)
-    ] = None
-    vessel: Annotated[
-        Temperature | None, quantity("Vessel then. If absent, 30 degC.", 30, "degC", -20, 100)
-    ] = None
+    time: Annotated[TimeSpan, quantity("When, since midnight.", 12, "h", 0, 24)]
+    collectors: Annotated[Temperature, quantity("Collectors then.", 90, "degC", -20, 160)]
+    pipes: Annotated[Temperature, quantity("Pipes then.", 80, "degC", -20, 140)]
+    station: Annotated[Temperature, quantity("Station then.", 75, "degC", -20, 140)]
+    vessel: Annotated[Temperature, quantity("Vessel then.", 30, "degC", -20, 100)]
 
 
 CourseStart = ColdDawn | PumpStop
@@ -78,9 +70,6 @@ class StagnationCourseQuestion(StagnationCheckQuestion, frozen=True, kw_only=Tru
 
     weather: Annotated[Weather | None, text("The day. If absent, a clear one.")] = None
     start: Annotated[CourseStart | None, text("How the day begins. If absent, `cold-dawn`.")] = None
-    span: Annotated[
-        TimeSpan | None, quantity("How long to follow it from midnight. If absent, 24 h.", 24, "h", 1, 48)
-    ] = None
     interval: Annotated[
         TimeSpan | None, quantity("Distance of the points answered. If absent, 1 min.", 1, "min", 1, 60)
     ] = None

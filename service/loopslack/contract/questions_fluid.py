@@ -5,7 +5,14 @@ from typing import Annotated, Literal
 from msgspec import Meta
 
 from loopslack.contract.fields import quantity, text
-from loopslack.contract.quantity import Density, MassPercent, Pressure, Temperature, VolumePercent
+from loopslack.contract.quantity import (
+    Density,
+    MassPercent,
+    Pressure,
+    SpecificHeat,
+    Temperature,
+    VolumePercent,
+)
 from loopslack.contract.questions_collectors import Label, QuestionPart
 
 Glycol = Literal["propylene-glycol", "ethylene-glycol"]
@@ -57,6 +64,13 @@ class DensityPoint(QuestionPart, frozen=True, kw_only=True):
     density: Annotated[Density, quantity("Density of the liquid.", 1036, "kg/m3", 500, 2000)]
 
 
+class HeatCapacityPoint(QuestionPart, frozen=True, kw_only=True):
+    """Heat capacity of the liquid at a temperature."""
+
+    temperature: Annotated[Temperature, quantity("Temperature.", 90, "degC", -60, 250)]
+    heat_capacity: Annotated[SpecificHeat, quantity("Specific heat of the liquid.", 3.8, "kJ/kgK", 1, 6)]
+
+
 class BoilingPoint(QuestionPart, frozen=True, kw_only=True):
     """Pressure at which the liquid begins to boil at a temperature."""
 
@@ -102,6 +116,10 @@ class OwnFluid(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="o
     ]
     freezing_point: Annotated[Temperature, quantity("Temperature of the first ice.", -25, "degC", -60, 5)]
     boiling: Annotated[Boiling, text("How the fluid boils.")]
+    heat_capacity: Annotated[
+        Annotated[list[HeatCapacityPoint], Meta(min_length=3, max_length=100)] | None,
+        text("Heat capacity, in rising order of temperature; only the course of a day needs it."),
+    ] = None
 
 
 Fluid = Water | PropyleneGlycol | EthyleneGlycol | OwnFluid

@@ -24,6 +24,8 @@ _POINT_TEMPERATURE = field_of(asked.DensityPoint, "temperature")
 _POINT_DENSITY = field_of(asked.DensityPoint, "density")
 _BOILING_TEMPERATURE = field_of(asked.BoilingPoint, "temperature")
 _BOILING_PRESSURE = field_of(asked.BoilingPoint, "pressure")
+_HEAT_TEMPERATURE = field_of(asked.HeatCapacityPoint, "temperature")
+_HEAT_CAPACITY = field_of(asked.HeatCapacityPoint, "heat_capacity")
 _FREEZING = field_of(asked.OwnFluid, "freezing_point")
 _LIKE_SHARE = field_of(asked.BoilingLike, "share")
 
@@ -75,9 +77,22 @@ def _own(reader: Reader, fluid: asked.OwnFluid, place: str) -> Fluid:
             for k, point in enumerate(fluid.boiling.points)
         ]
         _rising(reader, [temperature for temperature, _ in boiling], f"{boils}/points")
+    heat = _heat_capacity(reader, fluid, f"{place}/heatCapacity")
     if len(reader.refused) > before:
         return water()
-    return own_fluid(points, freezing, boiling, name=fluid.name)
+    return own_fluid(points, freezing, boiling, heat_capacity=heat, name=fluid.name)
+
+
+def _heat_capacity(reader: Reader, fluid: asked.OwnFluid, place: str) -> list[tuple[float, float]]:
+    points = [
+        (
+            reader.si(point.temperature, _HEAT_TEMPERATURE, f"{place}/{k}"),
+            reader.si(point.heat_capacity, _HEAT_CAPACITY, f"{place}/{k}"),
+        )
+        for k, point in enumerate(fluid.heat_capacity or ())
+    ]
+    _rising(reader, [temperature for temperature, _ in points], place)
+    return points
 
 
 def _rising(reader: Reader, temperatures: list[float], pointer: str) -> None:

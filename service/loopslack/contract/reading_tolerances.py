@@ -1,0 +1,39 @@
+"""Reads how far inputs may be off either way, in SI; None where the caller says nothing."""
+
+from typing import NamedTuple
+
+from loopslack.contract.fields import field_of
+from loopslack.contract.questions_criteria import Tolerances as Asked
+from loopslack.contract.reader import Reader
+
+_FIELDS = {name: field_of(Asked, name) for name in Asked.__struct_fields__}
+
+
+class Tolerances(NamedTuple):
+    """Shares of one, K, m and Pa, each either way."""
+
+    pipe_length: float | None = None
+    collector_content: float | None = None
+    insulation_conductivity: float | None = None
+    steam_power: float | None = None
+    stagnation_temperature: float | None = None
+    static_height: float | None = None
+    fill_pressure: float | None = None
+    precharge: float | None = None
+
+
+def read_tolerances(reader: Reader, stated: Asked | None) -> Tolerances:
+    """Read the tolerances of a question."""
+    if stated is None:
+        return Tolerances()
+    place = "/tolerances"
+    return Tolerances(
+        reader.optional(stated.pipe_length, _FIELDS["pipe_length"], place),
+        reader.optional(stated.collector_content, _FIELDS["collector_content"], place),
+        reader.optional(stated.insulation_conductivity, _FIELDS["insulation_conductivity"], place),
+        reader.optional(stated.steam_power, _FIELDS["steam_power"], place),
+        reader.optional(stated.stagnation_temperature, _FIELDS["stagnation_temperature"], place),
+        reader.optional(stated.static_height, _FIELDS["static_height"], place),
+        reader.optional(stated.fill_pressure, _FIELDS["fill_pressure"], place),
+        reader.optional(stated.precharge, _FIELDS["precharge"], place),
+    )
