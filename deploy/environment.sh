@@ -51,9 +51,9 @@ print(digest.hexdigest())' "$2" pyproject.toml)
     [ "$(cat "$1/stamp" 2>/dev/null)" = "$stamp" ] && return
     say "Installing $(grep -c '==' "$2") pinned packages into $1; the first time takes about a minute."
     make_environment "$1"
-    PIP_DISABLE_PIP_VERSION_CHECK=1 "$1/bin/python" -m pip install --quiet --no-input --require-hashes \
+    PIP_DISABLE_PIP_VERSION_CHECK=1 "$1/bin/python" -m pip install -qq --no-input --require-hashes \
         --only-binary :all: --requirement "$2" || fail "The packages pinned in $2 could not be installed."
-    PIP_DISABLE_PIP_VERSION_CHECK=1 "$1/bin/python" -m pip install --quiet --no-input --no-deps --no-index \
+    PIP_DISABLE_PIP_VERSION_CHECK=1 "$1/bin/python" -m pip install -qq --no-input --no-deps --no-index \
         --no-build-isolation --editable . || fail "The package itself could not be installed."
     printf '%s\n' "$stamp" >"$1/stamp"
 }

@@ -8,7 +8,7 @@ find_python
 lock_environment=.cache/lock
 [ -x "$lock_environment/bin/uv" ] || {
     make_environment "$lock_environment"
-    "$lock_environment/bin/pip" install --quiet uv
+    "$lock_environment/bin/pip" install -qq uv
 }
 
 lock() {
@@ -22,5 +22,6 @@ lock() {
 lock deploy/requirements.txt pyproject.toml deploy/requirements.in --extra sheet
 lock deploy/speed-requirements.txt deploy/speed-requirements.in
 lock tests/tools-requirements.txt tests/tools-requirements.in
+lock tests/node-requirements.txt tests/node-requirements.in
 lock tests/requirements.txt pyproject.toml deploy/requirements.in tests/requirements.in --all-extras \
     --constraint deploy/requirements.txt

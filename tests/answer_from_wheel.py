@@ -1,10 +1,11 @@
-"""Asks the installed wheel, in process, for its probes and its document: everything it needs must be in it."""
+"""Asks the installed wheel, in process, for its probes and document: all they need must be in it."""
 
 import sys
 from pathlib import Path
 
-import loopslack
 from litestar.testing import TestClient
+
+import loopslack
 from loopslack.app import app
 
 folder = Path(loopslack.__file__).parent

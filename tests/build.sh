@@ -7,6 +7,6 @@ python -m build --no-isolation --outdir .cache/dist . >.cache/reports/build.log 
     cat .cache/reports/build.log
     exit 1
 }
-python -m pip install --quiet --no-deps --no-index --no-compile --target .cache/wheel .cache/dist/*.whl
+python -m pip install -qq --no-deps --no-index --no-compile --target .cache/wheel .cache/dist/*.whl
 cd .cache/wheel
 PYTHONPATH=$PWD python ../../tests/answer_from_wheel.py

@@ -2,9 +2,9 @@
 
 import sys
 from pathlib import Path
-from xml.etree import ElementTree
+from xml.etree import ElementTree as ET
 
-report = ElementTree.fromstring(Path(sys.argv[1]).read_text())  # noqa: S314 - written by pytest a moment ago
+report = ET.fromstring(Path(sys.argv[1]).read_text())  # noqa: S314 - written by pytest a moment ago
 total = failed = skipped = 0
 for suite in report.iter("testsuite"):
     total += int(suite.get("tests", 0))

@@ -1,7 +1,7 @@
-"""Holds the branch coverage of the core floors above a floor of its own, and names what is not covered.
+"""Holds the branch coverage of the core floors above a least value, and names what is not covered.
 
-Reads the JSON report of coverage.py. The core is everything below the contract: a line of it that no test runs
-may hold any number.
+Reads the JSON report of coverage.py. The core is everything below the contract: a line of it that no test
+runs could hold any number.
 """
 
 import json

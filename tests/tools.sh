@@ -1,7 +1,9 @@
 # Sourced by the stages that need more than Python: gets a tool where this user may, and names it where not.
 . deploy/environment.sh
 
-tools_environment=.cache/tools
+# The interpreter of the tests' own environment, which run.sh has made; the tools' environments have another.
+# shellcheck disable=SC2034
+tests_python=$PWD/.cache/tests/bin/python
 
 # debian_tool COMMAND PACKAGE...: the command, installed by the system's package manager if it is missing.
 debian_tool() {
@@ -19,17 +21,29 @@ debian_tool() {
         fail "Missing tool: $command. It could not be installed; on Debian it comes with: $*"
 }
 
-# python_tools: the pinned tools that come as Python packages, in an environment of their own on the path.
-python_tools() {
+# pinned_tools FOLDER FILE: the pinned packages of FILE in an environment of their own, first on the path.
+pinned_tools() {
     find_python
-    stamp=$(cksum <tests/tools-requirements.txt)
-    if [ "$(cat "$tools_environment/stamp" 2>/dev/null)" != "$stamp" ]; then
-        make_environment "$tools_environment"
-        PIP_DISABLE_PIP_VERSION_CHECK=1 "$tools_environment/bin/python" -m pip install --quiet --no-input \
-            --require-hashes --requirement tests/tools-requirements.txt ||
-            fail "Missing tools: the packages pinned in tests/tools-requirements.txt could not be installed."
-        printf '%s\n' "$stamp" >"$tools_environment/stamp"
+    stamp=$(cksum <"$2")
+    if [ "$(cat "$1/stamp" 2>/dev/null)" != "$stamp" ]; then
+        make_environment "$1"
+        PIP_DISABLE_PIP_VERSION_CHECK=1 "$1/bin/python" -m pip install -qq --no-input --require-hashes \
+            --requirement "$2" || fail "Missing tools: the packages pinned in $2 could not be installed."
+        printf '%s\n' "$stamp" >"$1/stamp"
     fi
-    PATH="$PWD/$tools_environment/bin:$PATH"
+    PATH="$PWD/$1/bin:$PATH"
     export PATH
+}
+
+# python_tools: the tools that come as Python packages.
+python_tools() {
+    pinned_tools .cache/tools tests/tools-requirements.txt
+}
+
+# node_tool: Node.js 20 or later with npm; where the system has none, the one that comes as a Python package.
+node_tool() {
+    if command -v npm >/dev/null 2>&1 && node -e 'process.exit(parseInt(process.versions.node) < 20)' 2>/dev/null; then
+        return
+    fi
+    pinned_tools .cache/node tests/node-requirements.txt
 }

@@ -1,0 +1,35 @@
+#!/bin/sh
+# Builds the image, runs it the way it is meant to be run (no root, nothing to write to, no privileges), and calls it.
+set -eu
+cd "$(dirname "$0")/../.."
+. tests/tools.sh
+debian_tool mmdebstrap mmdebstrap
+debian_tool buildah buildah
+debian_tool podman podman
+debian_tool runc runc
+python_tools
+CONTAINERS_CONF=$PWD/tests/container/containers.conf
+export CONTAINERS_CONF
+
+image=localhost/loopslack:tested
+name=loopslack-tested-$$
+sh deploy/image.sh "$image"
+
+port=$(python -c 'import socket; s = socket.socket(); s.bind(("127.0.0.1", 0)); print(s.getsockname()[1])')
+podman run --detach --name "$name" --network host --env LOOPSLACK_BIND="127.0.0.1:$port" \
+    --user 10001:10001 --read-only --read-only-tmpfs=false --tmpfs /dev/shm:rw,size=16m --tmpfs /tmp:rw,size=16m \
+    --cap-drop all --security-opt no-new-privileges --memory 384m --pids-limit 64 "$image" >/dev/null
+trap 'podman rm --force --time 1 "$name" >/dev/null 2>&1' EXIT INT TERM
+
+# The tools' interpreter is first on the path: it has the schema of the bill of materials.
+if ! python tests/container/smoke.py "$name" "$port"; then
+    say "The container's log:"
+    podman logs "$name" 2>&1 | tail -n 40
+    exit 1
+fi
+
+began=$(date +%s)
+podman stop --time 20 "$name" >/dev/null
+stopped=$(podman inspect --format '{{.State.ExitCode}}' "$name")
+say "Stopped with exit code $stopped in $(($(date +%s) - began)) s."
+[ "$stopped" = 0 ]

@@ -1,0 +1,141 @@
+"""Looks at a running container from outside and inside: how it is locked down, and what it answers.
+
+Called by `run.sh` with the container's name and port. Every fact is one that a deployment relies on.
+"""
+
+from __future__ import annotations
+
+import json
+import subprocess
+import sys
+import time
+import urllib.error
+import urllib.request
+from pathlib import Path
+from typing import Any
+
+from cyclonedx.schema import SchemaVersion
+from cyclonedx.validation.json import JsonStrictValidator
+
+INSIDE = """
+import json, os
+from importlib.util import find_spec
+
+status = dict(line.split(":", 1) for line in open("/proc/self/status"))
+def writable(folder):
+    try:
+        open(folder + "/probe", "w").close()
+    except OSError:
+        return False
+    os.unlink(folder + "/probe")
+    return True
+shells = [f"{folder}/{name}" for folder in ("/bin", "/usr/bin", "/usr/sbin") for name in ("sh", "bash", "dash")]
+print(json.dumps({
+    "user": os.getuid(),
+    "group": os.getgid(),
+    "effective capabilities": int(status["CapEff"], 16),
+    "no new privileges": int(status["NoNewPrivs"]),
+    "writable": [folder for folder in ("/", "/etc", "/opt/loopslack", "/usr", "/var", "/home") if writable(folder)],
+    "shells": [shell for shell in shells if os.path.exists(shell)],
+    "compiled parser": find_spec("gunicorn_h1c") is not None,
+    "installer": find_spec("pip") is not None,
+}))
+"""
+EXPECTED = {
+    "user": 10001,
+    "group": 10001,
+    "effective capabilities": 0,
+    "no new privileges": 1,
+    "writable": [],
+    "shells": [],
+    "compiled parser": True,
+    "installer": False,
+}
+
+
+def podman(*arguments: str) -> str:
+    """What a podman command prints; its error is an error here."""
+    return subprocess.run(["podman", *arguments], check=True, capture_output=True, text=True).stdout
+
+
+def fetched(url: str, body: bytes | None = None) -> tuple[int, bytes]:
+    """Status and body of one request."""
+    request = urllib.request.Request(url, data=body, headers={"Content-Type": "application/json"})
+    try:
+        with urllib.request.urlopen(request, timeout=10) as answer:
+            return answer.status, answer.read()
+    except urllib.error.HTTPError as error:
+        return error.code, error.read()
+
+
+def wait_until_ready(address: str, seconds: float = 30.0) -> float:
+    """Seconds until the service is ready."""
+    began = time.monotonic()
+    while True:
+        try:
+            if fetched(f"{address}/readyz")[0] == 200:
+                return time.monotonic() - began
+        except OSError:
+            pass
+        if time.monotonic() - began > seconds:
+            sys.exit(f"not ready within {seconds} s")
+        time.sleep(0.05)
+
+
+def expect(what: str, found: Any, wanted: Any) -> None:
+    """Print a fact; end the run if it is not the wanted one."""
+    sys.stdout.write(f"{what}: {found}\n")
+    if found != wanted:
+        sys.exit(f"{what} should be {wanted}")
+
+
+def main(name: str, port: str) -> None:
+    """Everything in order of cost."""
+    address = f"http://127.0.0.1:{port}"
+    sys.stdout.write(f"ready after {wait_until_ready(address):.1f} s\n")
+    for what, found in json.loads(podman("exec", name, "python", "-c", INSIDE)).items():
+        expect(what, found, EXPECTED[what])
+    podman("healthcheck", "run", name)
+    bill = podman(
+        "exec", name, "python", "-c", "print(open('/usr/share/loopslack/bill-of-materials.cdx.json').read())"
+    )
+    expect(
+        "faults in the bill of materials", JsonStrictValidator(SchemaVersion.V1_6).validate_str(bill), None
+    )
+    parts = [part["purl"] for part in json.loads(bill)["components"]]
+    sys.stdout.write(f"the bill of materials lists {len(parts)} parts\n")
+    for wanted in ("pkg:pypi/litestar@", "pkg:deb/debian/libc6@"):
+        expect(f"lists {wanted}", any(part.startswith(wanted) for part in parts), True)
+    labels = json.loads(podman("inspect", "--format", "{{json .Config.Labels}}", name))
+    expect("licence label", labels["org.opencontainers.image.licenses"], "MIT")
+
+    for path in ("/livez", "/docs", "/v1/openapi.json", "/v1/tubes", "/metrics"):
+        expect(path, fetched(address + path)[0], 200)
+    status, document = fetched(f"{address}/v1/openapi.json")
+    expect("serves the committed document", document == Path("openapi/v1.json").read_bytes(), True)
+    for question, answer in examples("designLoop"):
+        status, body = fetched(f"{address}/v1/loop-design", question.read_bytes())
+        expect(question.name, status, 200)
+        told, committed = json.loads(body)["result"], json.loads(answer.read_bytes())["result"]
+        expect(f"{question.name} as on the developer's machine", told == committed, True)
+    status, body = fetched(f"{address}/v1/loop-design", b'{"fluid": NaN}')
+    expect("a body that is no JSON", status, 400)
+    memory = podman("stats", "--no-stream", "--format", "{{.MemUsage}}", name).strip()
+    sys.stdout.write(f"memory in use: {memory}\n")
+
+
+def examples(operation: str) -> list[tuple[Path, Path]]:
+    """The committed questions of an operation with their answers."""
+    folder = Path("openapi/examples")
+    return [
+        (
+            folder / operation / f"{entry['name']}.question.json",
+            folder / operation / f"{entry['name']}.answer.json",
+        )
+        for entry in json.loads((folder / "index.json").read_text())
+        if entry["operation"] == operation and entry.get("status", 200) == 200
+    ]
+
+
+if __name__ == "__main__":
+    main(sys.argv[1], sys.argv[2])
