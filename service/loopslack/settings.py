@@ -40,52 +40,109 @@ class SettingsError(Exception):
 class Settings(Struct, frozen=True, kw_only=True, forbid_unknown_fields=True):
     """The service's settings; the variable of a field is its name in capitals behind `LOOPSLACK_`."""
 
-    bind: Annotated[str, Meta(min_length=1, max_length=255)] = "127.0.0.1:8000"
-    """Address the server listens on; read here only to warn when a public address is served unguarded."""
-    workers: Annotated[int, Meta(ge=1, le=1024)] = 1
-    """Worker processes (read from `WEB_CONCURRENCY`); a key's rate is shared out among them."""
+    bind: Annotated[
+        str,
+        Meta(
+            min_length=1,
+            max_length=255,
+            description="Address the server listens on; read here only to warn when a public address is served unguarded.",
+        ),
+    ] = "127.0.0.1:8000"
+    workers: Annotated[
+        int,
+        Meta(
+            ge=1,
+            le=1024,
+            description="Worker processes (read from `WEB_CONCURRENCY`); a key's rate is shared out among them.",
+        ),
+    ] = 1
 
-    single_body_bytes: Annotated[int, Meta(ge=1_000, le=64_000_000)] = 2_000_000
-    """Longest body of a single question."""
-    batch_body_bytes: Annotated[int, Meta(ge=1_000, le=256_000_000)] = 8_000_000
-    """Longest body of a batch."""
-    stream_body_bytes: Annotated[int, Meta(ge=1_000, le=1_000_000_000)] = 32_000_000
-    """Longest body of a stream of lines."""
-    line_bytes: Annotated[int, Meta(ge=1_000, le=2_000_000)] = 256_000
-    """Longest line of a stream."""
-    batch_designs: Annotated[int, Meta(ge=1, le=100_000)] = 1_000
-    """Most designs in one batch."""
-    stock_items: Annotated[int, Meta(ge=1, le=100_000)] = 10_000
-    """Most vessels in a caller's stock list."""
-    nesting: Annotated[int, Meta(ge=8, le=100)] = 32
-    """Deepest nesting of objects and lists in a body."""
-    body_seconds: Annotated[float, Meta(ge=0.1, le=3600)] = 60.0
-    """Time a body may take to arrive."""
+    single_body_bytes: Annotated[
+        int, Meta(ge=1_000, le=64_000_000, description="Longest body of a single question.")
+    ] = 2_000_000
+    batch_body_bytes: Annotated[
+        int, Meta(ge=1_000, le=256_000_000, description="Longest body of a batch.")
+    ] = 8_000_000
+    stream_body_bytes: Annotated[
+        int, Meta(ge=1_000, le=1_000_000_000, description="Longest body of a stream of lines.")
+    ] = 32_000_000
+    line_bytes: Annotated[int, Meta(ge=1_000, le=2_000_000, description="Longest line of a stream.")] = (
+        256_000
+    )
+    batch_designs: Annotated[int, Meta(ge=1, le=100_000, description="Most designs in one batch.")] = 1_000
+    stock_items: Annotated[
+        int, Meta(ge=1, le=100_000, description="Most vessels in a caller's stock list.")
+    ] = 10_000
+    nesting: Annotated[
+        int, Meta(ge=8, le=100, description="Deepest nesting of objects and lists in a body.")
+    ] = 32
+    body_seconds: Annotated[float, Meta(ge=0.1, le=3600, description="Time a body may take to arrive.")] = (
+        60.0
+    )
 
-    deadline_seconds: Annotated[float, Meta(ge=0.1, le=600)] = 20.0
-    """Time a costly question (course, sheet, batch) may take, waiting included."""
-    costly_waiting: Annotated[int, Meta(ge=0, le=1_000)] = 4
-    """Costly questions that may wait in a worker while one is computed; further ones are refused with 503."""
-    batches_waiting: Annotated[int, Meta(ge=0, le=100)] = 2
-    """Batches and streams that may wait in a worker while one runs; further ones are refused with 503."""
-    shed_lag_seconds: Annotated[float, Meta(ge=0.02, le=10)] = 0.1
-    """Lateness of the event loop from which requests are refused with 503."""
+    deadline_seconds: Annotated[
+        float,
+        Meta(
+            ge=0.1,
+            le=600,
+            description="Time a costly question (course, sheet, batch) may take, waiting included.",
+        ),
+    ] = 20.0
+    costly_waiting: Annotated[
+        int,
+        Meta(
+            ge=0,
+            le=1_000,
+            description="Costly questions that may wait in a worker while one is computed; further ones are refused with 503.",
+        ),
+    ] = 4
+    batches_waiting: Annotated[
+        int,
+        Meta(
+            ge=0,
+            le=100,
+            description="Batches and streams that may wait in a worker while one runs; further ones are refused with 503.",
+        ),
+    ] = 2
+    shed_lag_seconds: Annotated[
+        float,
+        Meta(
+            ge=0.02, le=10, description="Lateness of the event loop from which requests are refused with 503."
+        ),
+    ] = 0.1
 
-    cors_origins: Annotated[tuple[Annotated[str, Meta(max_length=255)], ...], Meta(max_length=100)] = ()
-    """Origins a browser may call from, separated by commas; none by default."""
-    keys_file: Annotated[str, Meta(max_length=4096)] = ""
-    """File of API keys; without one every caller is served."""
-    rate_per_second: Annotated[float, Meta(ge=0, le=1_000_000)] = 0.0
-    """Requests a second for each key (or client address, where there are no keys); 0 for no limit."""
-    rate_burst: Annotated[int, Meta(ge=1, le=1_000_000)] = 20
-    """Requests a caller who was silent may send at once."""
+    cors_origins: Annotated[
+        tuple[Annotated[str, Meta(max_length=255)], ...],
+        Meta(
+            max_length=100,
+            description="Origins a browser may call from, separated by commas; none by default.",
+        ),
+    ] = ()
+    keys_file: Annotated[
+        str, Meta(max_length=4096, description="File of API keys; without one every caller is served.")
+    ] = ""
+    rate_per_second: Annotated[
+        float,
+        Meta(
+            ge=0,
+            le=1_000_000,
+            description="Requests a second for each key (or client address, where there are no keys); 0 for no limit.",
+        ),
+    ] = 0.0
+    rate_burst: Annotated[
+        int, Meta(ge=1, le=1_000_000, description="Requests a caller who was silent may send at once.")
+    ] = 20
 
-    log_level: Literal["debug", "info", "warning", "error"] = "info"
-    """Least serious message that is logged."""
-    access_log: bool = True
-    """Whether each request is logged (one line, never its body)."""
-    tracing: bool = False
-    """Whether OpenTelemetry spans are made; needs the `tracing` extra."""
+    log_level: Annotated[
+        Literal["debug", "info", "warning", "error"],
+        Meta(description="Least serious message that is logged."),
+    ] = "info"
+    access_log: Annotated[
+        bool, Meta(description="Whether each request is logged (one line, never its body).")
+    ] = True
+    tracing: Annotated[
+        bool, Meta(description="Whether OpenTelemetry spans are made; needs the `tracing` extra.")
+    ] = False
 
 
 _VARIABLES = {
@@ -140,3 +197,18 @@ def _value(variable: str, field: str, text: str) -> object:
 
 
 _TYPES = {field.name: field.type for field in msgspec.structs.fields(Settings)}
+
+
+def settings_table() -> str:
+    """Every setting as a row of a table in Markdown, for the documentation."""
+    rows = ["| variable | default | bounds | meaning |", "| --- | --- | --- | --- |"]
+    names = {field: variable for variable, field in _VARIABLES.items()}
+    for field in msgspec.structs.fields(Settings):
+        schema = msgspec.json.schema(field.type)
+        default = ", ".join(field.default) if isinstance(field.default, tuple) else field.default
+        if isinstance(default, bool):
+            default = str(default).lower()
+        bounds = " to ".join(f"{schema[limit]:.10g}" for limit in ("minimum", "maximum") if limit in schema)
+        bounds = bounds or ", ".join(schema.get("enum", ()))
+        rows.append(f"| `{names[field.name]}` | {default} | {bounds} | {schema['description']} |")
+    return "\n".join(rows)

@@ -9,7 +9,7 @@ import re
 import pytest
 
 import loopslack.app as wiring
-from api.small_service import GOOD_BODY, JSON, serving
+from api.small_service import GOOD_BODY, JSON, ask_raw, serving
 from loopslack.observability import LineHandler, Lines, trace_of
 
 TRACE = "00-4bf92f3577b34da6a3ce929d0e0e4736-00f067aa0ba902b7-01"
@@ -65,6 +65,13 @@ def test_a_line_of_a_refused_request_names_the_problem(logged):
     assert (line["status"], line["problem"], line["route"]) == (404, "not-found", "unmatched")
     assert line["path"] == "/nothing/here"
     assert line["instance"] == refused.json()["instance"]
+
+
+def test_a_path_that_is_no_text_is_logged_all_the_same(logged):
+    client, lines = logged
+    status, *_ = ask_raw(client.service, [], path="/v1/\udcff\u00e4", method="GET")
+    assert status == 404
+    assert lines()[-1]["path"] == r"/v1/\udcff\xe4"
 
 
 def test_a_fault_is_a_line_with_its_traceback(logged):

@@ -3,7 +3,7 @@
 import msgspec
 import pytest
 
-from loopslack.settings import Settings, SettingsError, settings_from
+from loopslack.settings import Settings, SettingsError, settings_from, settings_table
 
 
 def test_an_empty_environment_gives_the_defaults():
@@ -72,7 +72,13 @@ def test_variables_of_the_server_and_of_an_orchestrator_are_let_be():
 
 def test_every_number_among_the_settings_has_both_bounds():
     for field in msgspec.structs.fields(Settings):
-        kind = msgspec.inspect.type_info(field.type)
-        if isinstance(kind, msgspec.inspect.IntType | msgspec.inspect.FloatType):
-            assert kind.ge is not None, field.name
-            assert kind.le is not None, field.name
+        schema = msgspec.json.schema(field.type)
+        if schema["type"] in ("integer", "number"):
+            assert {"minimum", "maximum"} <= set(schema), field.name
+
+
+def test_the_table_of_settings_has_a_row_for_each_with_its_meaning():
+    rows = settings_table().splitlines()
+    assert len(rows) == 2 + len(Settings.__struct_fields__)
+    assert all(row.count("|") == 5 and row.endswith(". |") for row in rows[2:])
+    assert "| `LOOPSLACK_NESTING` | 32 | 8 to 100 | Deepest nesting of objects and lists in a body. |" in rows

@@ -133,7 +133,7 @@ def _line(note: Note, path: str, outcome: Outcome) -> dict[str, object]:
         "requestId": note.request_id,
     }
     if outcome.route == "unmatched":
-        line["path"] = path[:200]
+        line["path"] = path[:200].encode("ascii", "backslashreplace").decode()
     if note.trace is not None:
         line["traceId"], line["parentId"] = note.trace
     if note.caller:
