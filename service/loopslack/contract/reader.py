@@ -5,6 +5,7 @@ number that was refused is replaced by the nearest permitted one only to read on
 """
 
 from collections.abc import Mapping
+from functools import lru_cache
 from typing import NamedTuple, NoReturn, Protocol
 
 from loopslack.contract.fields import Field
@@ -13,7 +14,7 @@ from loopslack.kernel.citations import DERIVED, Cite
 from loopslack.kernel.errors import CalculationError, Contradiction, Missing, OutOfRange, Refusals
 from loopslack.kernel.kinds import Kind
 from loopslack.kernel.units import GAUGE_UNITS
-from loopslack.library.defaults import choices, defaults
+from loopslack.library.defaults import choice, default
 
 
 class Stated(Protocol):
@@ -112,15 +113,15 @@ class Reader:
 
     def default(self, key: str, pointer: str) -> float:
         """Take a default number and note it."""
-        row = _NUMBERS[key]
-        self.assumed.append(Assumed(pointer, row.si, row.kind, row.low, row.high, "", row.why, row.source))
-        return row.si
+        noted = _noted(key, pointer)
+        self.assumed.append(noted)
+        return noted.si  # type: ignore[return-value] # a default number is one
 
     def word(self, key: str, pointer: str) -> str:
         """Take a default word and note it."""
-        row = _WORDS[key]
-        self.assumed.append(Assumed(pointer, None, None, 0.0, 0.0, row.word, row.why, row.source))
-        return row.word
+        noted = _noted_word(key, pointer)
+        self.assumed.append(noted)
+        return noted.word
 
     def derived(self, pointer: str, si: float, kind: Kind, why: str, *, low: float, high: float) -> float:
         """Note a number that follows from others by a rule that nobody stated."""
@@ -179,5 +180,13 @@ def _remedy(field: Field, unit: str) -> str:
     return f"Check the number and its unit; {others} would do as well." if others else "Check the number."
 
 
-_NUMBERS = defaults()
-_WORDS = choices()
+@lru_cache(maxsize=8192)
+def _noted(key: str, pointer: str) -> Assumed:
+    row = default(key)
+    return Assumed(pointer, row.si, row.kind, row.low, row.high, "", row.why, row.source)
+
+
+@lru_cache(maxsize=8192)
+def _noted_word(key: str, pointer: str) -> Assumed:
+    row = choice(key)
+    return Assumed(pointer, None, None, 0.0, 0.0, row.word, row.why, row.source)
