@@ -45,7 +45,7 @@ class Settings(Struct, frozen=True, kw_only=True, forbid_unknown_fields=True):
         Meta(
             min_length=1,
             max_length=255,
-            description="Address the server listens on; read here only to warn when a public address is served unguarded.",
+            description="Address the server listens on; one that is public and unguarded is warned of.",
         ),
     ] = "127.0.0.1:8000"
     workers: Annotated[
@@ -93,7 +93,7 @@ class Settings(Struct, frozen=True, kw_only=True, forbid_unknown_fields=True):
         Meta(
             ge=0,
             le=1_000,
-            description="Costly questions that may wait in a worker while one is computed; further ones are refused with 503.",
+            description="Costly questions that may wait in a worker beside the one computed.",
         ),
     ] = 4
     batches_waiting: Annotated[
@@ -101,7 +101,7 @@ class Settings(Struct, frozen=True, kw_only=True, forbid_unknown_fields=True):
         Meta(
             ge=0,
             le=100,
-            description="Batches and streams that may wait in a worker while one runs; further ones are refused with 503.",
+            description="Batches and streams that may wait in a worker beside the one that runs.",
         ),
     ] = 2
     shed_lag_seconds: Annotated[
@@ -126,7 +126,7 @@ class Settings(Struct, frozen=True, kw_only=True, forbid_unknown_fields=True):
         Meta(
             ge=0,
             le=1_000_000,
-            description="Requests a second for each key (or client address, where there are no keys); 0 for no limit.",
+            description="Requests a second for each key, or client address where there are no keys; 0 for any.",
         ),
     ] = 0.0
     rate_burst: Annotated[
