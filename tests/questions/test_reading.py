@@ -7,6 +7,7 @@ import pytest
 
 from loopslack.contract import quantity as q
 from loopslack.contract.fields import _KIND_OF_STRUCT  # the one table of kinds by struct
+from loopslack.contract.reader import Reader
 from loopslack.contract.reading import read_loop
 from loopslack.kernel.units import from_si, to_si
 from loopslack.physics.atmosphere import atmospheric_pressure
@@ -334,3 +335,99 @@ def test_an_own_fluid_is_read_from_its_tables():
     fluid = read_loop(question(changed(wash_house(), "/fluid", {**stated, "boiling": like}))).loop.fluid
     # 40 % by mass boils at 138.1 degC under 3 bar absolute.
     assert fluid.bubble_pressure(273.15 + 138.1) == pytest.approx(3e5, rel=5e-3)
+
+
+def places_of_quantities(value, place=""):
+    """Pointers of all quantities of a question."""
+    if isinstance(value, list):
+        for k, item in enumerate(value):
+            yield from places_of_quantities(item, f"{place}/{k}")
+    elif isinstance(value, dict):
+        if value.keys() == {"value", "unit"}:
+            yield place
+        else:
+            for name, member in value.items():
+                yield from places_of_quantities(member, f"{place}/{name}")
+
+
+WITHOUT_EFFECT = {
+    "/collectors/0/grossArea": "counts only where coefficients refer to the gross area",
+    "/staticHeight": "counts only for groups that state no height of their own",
+    "/vessel/ratedPressure": "belongs to the vessels, which are read apart",
+}
+
+
+@pytest.mark.parametrize("pointer", list(places_of_quantities(full())))
+def test_every_stated_quantity_reaches_the_loop(pointer):
+    data = full()
+    place = data
+    *path, last = pointer.strip("/").split("/")
+    for step in path:
+        place = place[int(step)] if isinstance(place, list) else place[step]
+    stated = place[int(last)] if isinstance(place, list) else place[last]
+    # A hundredth more, or a little where nothing is stated.
+    moved = {**stated, "value": stated["value"] * 1.01 or 0.01}
+    before, reader = read_loop(question(data)), Reader()
+    after = read_loop(question(changed(data, pointer, moved)), reader)
+    assert not [error for error in reader.refused if error.code == "out-of-range"]
+    same = list(numbers(before.loop)) == list(numbers(after.loop))
+    same = same and before.loop.fluid.mass_fraction == after.loop.fluid.mass_fraction
+    assert same == (pointer in WITHOUT_EFFECT)
+
+
+WORDS = {
+    "/collectors/0/type": ("evacuated-tube-direct", lambda loop: loop.groups[0].steam_power),
+    "/collectors/0/count": (9, lambda loop: loop.aperture),
+    "/collectors/0/emptyingClass": ("poor", lambda loop: loop.groups[0].emptying),
+    "/collectors/0/coefficients/eta0": (0.8, lambda loop: loop.groups[0].peak_efficiency),
+    "/collectors/0/id": ("shed roof", lambda loop: loop.groups[0].name),
+    "/pipeRuns/0/id": ("hot line", lambda loop: loop.branches[0].name),
+    "/pipeRuns/0/role": ("return", lambda loop: loop.branches[0].role),
+    "/pipeRuns/0/steamAccess": ("closed", lambda loop: loop.branches[0].access),
+    "/pipeRuns/0/segments/0/zone": ("outdoor", lambda loop: loop.branches[0].segments[0].outdoor),
+    "/pipeRuns/0/segments/0/softSolder": (True, lambda loop: loop.branches[0].segments[0].soft_solder),
+    "/pipeRuns/0/segments/0/tube/size": ("22x1", lambda loop: loop.branches[0].segments[0].area),
+    "/reliefValve/openingAllowance": (
+        {"kind": "rule", "rule": "five-psi"},
+        lambda loop: loop.relief.opening_pressure,
+    ),
+    "/reliefValve/nominalSize": ("DN20", lambda loop: loop.relief.nominal_size),
+    "/station/zone": ("outdoor", lambda loop: loop.station.outdoor),
+    "/pump/side": ("discharge", lambda loop: loop.pump_side),
+    "/vesselZone": ("outdoor", lambda loop: loop.temperatures.vessel_cold),
+    "/precharge": ({"kind": "optimised"}, lambda loop: loop.precharge.kind),
+    "/fluid": ({"kind": "water"}, lambda loop: loop.fluid.kind),
+}
+
+
+@pytest.mark.parametrize("pointer", WORDS)
+def test_every_word_reaches_the_loop(pointer):
+    value, seen = WORDS[pointer]
+    before = read_loop(question(full())).loop
+    reader = Reader()
+    after = read_loop(question(changed(full(), pointer, value)), reader).loop
+    assert seen(before) != seen(after)
+
+
+def test_policy_acceptance_extras_and_units_are_read():
+    data = full() | {
+        "doubtPolicy": "combined",
+        "acceptWithoutBoiling": True,
+        "include": ["rules"],
+        "units": "us",
+    }
+    found = read_loop(question(data))
+    assert (found.policy, found.accept_without_boiling, found.include, found.system) == (
+        "combined",
+        True,
+        frozenset({"rules"}),
+        "us",
+    )
+    plain = read_loop(question(full()))
+    assert (plain.policy, plain.accept_without_boiling, plain.include) == ("single", False, None)
+
+
+def test_the_static_height_is_that_of_groups_without_their_own():
+    data = changed(wash_house(), "/staticHeight", {"value": 12.5, "unit": "m"})
+    loop = read_loop(question(data)).loop
+    assert loop.groups[0].height == loop.branches[1].segments[0].start_height == loop.top == 12.5
