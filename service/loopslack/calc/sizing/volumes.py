@@ -8,17 +8,13 @@ from typing import Literal, NamedTuple
 
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.cooling import Charged, smallest_content
-from loopslack.calc.model import Loop
-from loopslack.calc.precharge import precharge, precharge_temperature, top_requirement
+from loopslack.calc.precharge import precharge, precharge_temperature
 from loopslack.calc.scenarios import BASE, Scenario
 from loopslack.calc.sizing.mass_balance import Interval, feasible
+from loopslack.calc.sizing.rules.en_12977 import en_12977_volume
 from loopslack.calc.window import Gas
-from loopslack.kernel.kinds import AbsolutePressure, NominalVolume, Volume
-from loopslack.physics.vessel import pressure_factor, reserve_en_12828
 
 CoolingMode = Literal["given", "none", "size"]
-
-_COLLECTOR_SHARE = 1.1  # EN 12977-1: collector content and a tenth (from memory, high confidence)
 
 
 class Sized(NamedTuple):
@@ -81,16 +77,3 @@ def without_boiling_floor(analysis: Analysis, *, accept_without_boiling: bool) -
     if accept_without_boiling and measured:
         return 0.0
     return en_12977_volume(analysis)
-
-
-def en_12977_volume(analysis: Analysis) -> float:
-    """Nominal volume (m3) by EN 12977: expansion of the loop, collector content and a tenth, reserve."""
-    loop: Loop = analysis.loop
-    temperatures = loop.temperatures
-    expansion = loop.fluid.expansion(temperatures.fill, temperatures.hot_liquid)
-    start = top_requirement(analysis) * precharge_temperature(analysis) / analysis.states.cold.vessel
-    factor = pressure_factor(AbsolutePressure(analysis.final_pressure), AbsolutePressure(start))
-    reserve = loop.criteria.reserve
-    if reserve is None:
-        reserve = reserve_en_12828(NominalVolume(1.0), Volume(loop.content))
-    return (expansion * loop.content + _COLLECTOR_SHARE * loop.collector_content + reserve) * factor
