@@ -48,35 +48,28 @@ def test_a_costly_question_leaves_the_others_their_turn():
         )
         costly.start()
         time.sleep(0.05)
-        begun = time.perf_counter()
         assert client.post("/v1/double", content=GOOD_BODY, headers=JSON).status_code == 200
-        assert time.perf_counter() - begun < 0.2
+        assert costly.is_alive()
         costly.join()
 
 
 def test_of_many_costly_questions_those_beyond_the_places_are_refused_at_once():
     async def crowd():
         costly = Costly(waiting=2, deadline_seconds=5)
-        begun = time.perf_counter()
-        refused = []
+        order = []
 
         async def one():
             try:
-                return await costly.run(lambda: time.sleep(0.05) or "done")
+                order.append(await costly.run(lambda: time.sleep(0.05) or "done"))
             except Refused as error:
-                refused.append((error.kind.slug, time.perf_counter() - begun))
-                return "refused"
+                order.append(error.kind.slug)
 
-        first = await asyncio.gather(*(one() for _ in range(8)))
-        second = await one()
+        await asyncio.gather(*(one() for _ in range(8)))
+        await one()
         costly.close()
-        return first, second, refused
+        return order
 
-    first, second, refused = asyncio.run(crowd())
-    assert sorted(first) == ["done"] * 3 + ["refused"] * 5
-    assert second == "done"
-    assert {slug for slug, _ in refused} == {"overloaded"}
-    assert max(seconds for _, seconds in refused) < 0.05
+    assert asyncio.run(crowd()) == ["overloaded"] * 5 + ["done"] * 4
 
 
 def test_past_the_deadline_the_caller_is_told_and_the_place_stays_taken_until_the_work_ends():
