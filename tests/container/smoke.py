@@ -5,12 +5,11 @@ Called by `run.sh` with the container's name and port. Every fact is one that a 
 
 from __future__ import annotations
 
+import http.client
 import json
 import subprocess
 import sys
 import time
-import urllib.error
-import urllib.request
 from pathlib import Path
 from typing import Any
 
@@ -58,22 +57,20 @@ def podman(*arguments: str) -> str:
     return subprocess.run(["podman", *arguments], check=True, capture_output=True, text=True).stdout
 
 
-def fetched(url: str, body: bytes | None = None) -> tuple[int, bytes]:
+def fetched(port: int, path: str, body: bytes | None = None) -> tuple[int, bytes]:
     """Status and body of one request."""
-    request = urllib.request.Request(url, data=body, headers={"Content-Type": "application/json"})
-    try:
-        with urllib.request.urlopen(request, timeout=10) as answer:
-            return answer.status, answer.read()
-    except urllib.error.HTTPError as error:
-        return error.code, error.read()
+    connection = http.client.HTTPConnection("127.0.0.1", port, timeout=10)
+    connection.request("GET" if body is None else "POST", path, body, {"Content-Type": "application/json"})
+    answer = connection.getresponse()
+    return answer.status, answer.read()
 
 
-def wait_until_ready(address: str, seconds: float = 30.0) -> float:
+def wait_until_ready(port: int, seconds: float = 30.0) -> float:
     """Seconds until the service is ready."""
     began = time.monotonic()
     while True:
         try:
-            if fetched(f"{address}/readyz")[0] == 200:
+            if fetched(port, "/readyz")[0] == 200:
                 return time.monotonic() - began
         except OSError:
             pass
@@ -89,10 +86,9 @@ def expect(what: str, found: Any, wanted: Any) -> None:
         sys.exit(f"{what} should be {wanted}")
 
 
-def main(name: str, port: str) -> None:
+def main(name: str, port: int) -> None:
     """Everything in order of cost."""
-    address = f"http://127.0.0.1:{port}"
-    sys.stdout.write(f"ready after {wait_until_ready(address):.1f} s\n")
+    sys.stdout.write(f"ready after {wait_until_ready(port):.1f} s\n")
     for what, found in json.loads(podman("exec", name, "python", "-c", INSIDE)).items():
         expect(what, found, EXPECTED[what])
     podman("healthcheck", "run", name)
@@ -110,15 +106,15 @@ def main(name: str, port: str) -> None:
     expect("licence label", labels["org.opencontainers.image.licenses"], "MIT")
 
     for path in ("/livez", "/docs", "/v1/openapi.json", "/v1/tubes", "/metrics"):
-        expect(path, fetched(address + path)[0], 200)
-    status, document = fetched(f"{address}/v1/openapi.json")
+        expect(path, fetched(port, path)[0], 200)
+    status, document = fetched(port, "/v1/openapi.json")
     expect("serves the committed document", document == Path("openapi/v1.json").read_bytes(), True)
     for question, answer in examples("designLoop"):
-        status, body = fetched(f"{address}/v1/loop-design", question.read_bytes())
+        status, body = fetched(port, "/v1/loop-design", question.read_bytes())
         expect(question.name, status, 200)
         told, committed = json.loads(body)["result"], json.loads(answer.read_bytes())["result"]
         expect(f"{question.name} as on the developer's machine", told == committed, True)
-    status, body = fetched(f"{address}/v1/loop-design", b'{"fluid": NaN}')
+    status, body = fetched(port, "/v1/loop-design", b'{"fluid": NaN}')
     expect("a body that is no JSON", status, 400)
     memory = podman("stats", "--no-stream", "--format", "{{.MemUsage}}", name).strip()
     sys.stdout.write(f"memory in use: {memory}\n")
@@ -138,4 +134,4 @@ def examples(operation: str) -> list[tuple[Path, Path]]:
 
 
 if __name__ == "__main__":
-    main(sys.argv[1], sys.argv[2])
+    main(sys.argv[1], int(sys.argv[2]))
