@@ -22,7 +22,7 @@ ROOT = Path(__file__).resolve().parents[1]
 EXAMPLE = ROOT / "openapi" / "examples" / "loop-design.json"
 SECONDS_TO_START = 60.0
 WIDTH = 100
-LABEL = 18
+LABEL = 20
 
 VERDICTS = {
     "holds": "HOLDS in the base case and under every doubt that was asked for",
@@ -33,6 +33,14 @@ VERDICTS = {
 BASES = {
     "firm": "firm: everything that decides was stated",
     "provisional": "provisional: something is still to be confirmed, see below",
+}
+SCENARIOS = {
+    "base": "base case",
+    "warm-gas": "warm gas",
+    "hotter-stagnation": "hotter at rest",
+    "worse-emptying": "worse emptying",
+    "closed-branch": "closed branch",
+    "all-doubts": "all doubts at once",
 }
 UNITS = {"degC": "°C", "degF": "°F", "m2": "m²", "m3": "m³", "K": "K"}
 
@@ -59,8 +67,8 @@ def main() -> int:
     print(f"Sent {EXAMPLE.relative_to(ROOT)} to POST /v1/loop-design; answered in {milliseconds:.0f} ms.\n")
     for line in sheet(json.loads(body)):
         print(line)
-    print(f"\nDocs              http://127.0.0.1:{asked.port}/docs")
-    print(f"Contract          http://127.0.0.1:{asked.port}/v1/openapi.json")
+    print(f"\n{'Docs':<{LABEL}}http://127.0.0.1:{asked.port}/docs")
+    print(f"{'Contract':<{LABEL}}http://127.0.0.1:{asked.port}/v1/openapi.json")
     return 0
 
 
@@ -123,7 +131,8 @@ def sheet(answer: Answer) -> Iterator[str]:
     result = answer["result"]
     yield from entry("Verdict", VERDICTS.get(result["verdict"], result["verdict"]))
     yield from entry("Basis", BASES.get(result["basis"], result["basis"]))
-    yield from entry("", "survives all doubts at once" if result["robust"] else "not all doubts at once")
+    robust = "does" if result["robust"] else "does not"
+    yield from entry("Robust", f"it {robust} survive all doubts at once")
     yield ""
     yield from vessel(result)
     yield from settings(result)
@@ -179,7 +188,7 @@ def stagnation(states: list[Answer]) -> Iterator[str]:
     worst = max(states, key=lambda state: float(state["steamVolume"]["value"]))
     yield from scenario("In stagnation", base)
     if worst is not base:
-        yield from scenario(f"Under {worst['scenario']}", worst)
+        yield from scenario(SCENARIOS.get(worst["scenario"], worst["scenario"]).capitalize(), worst)
 
 
 def scenario(label: str, state: Answer) -> Iterator[str]:
@@ -208,7 +217,7 @@ def checks(result: Answer) -> Iterator[str]:
     """How many checks hold; those that do not, one by one."""
     listed = result["checks"]
     holding = sum(check["verdict"] == "holds" for check in listed)
-    doubts = [f"{doubt['id']} {doubt['verdict']}" for doubt in result["doubts"]]
+    doubts = [f"{SCENARIOS.get(doubt['id'], doubt['id'])}: {doubt['verdict']}" for doubt in result["doubts"]]
     yield from entry("Checks", f"{holding} of {len(listed)} hold")
     yield from entry("Doubts", "; ".join(doubts) or "none were asked for")
     for check in listed:
@@ -221,7 +230,7 @@ def check_in_words(check: Answer) -> str:
     words = [check["code"]]
     if "subject" in check:
         words.append(f"of {check['subject']}")
-    words.append(f"({check['scenario']})")
+    words.append(f"({SCENARIOS.get(check['scenario'], check['scenario'])})")
     if "value" in check and "limit" in check:
         words.append(f"is {told(check['value'])} against {told(check['limit'])}")
     if "reason" in check:
@@ -251,7 +260,7 @@ def notes(answer: Answer) -> Iterator[str]:
 
 def entry(label: str, words: str) -> Iterable[str]:
     """A label and its words, wrapped beside it."""
-    lines = textwrap.wrap(words, WIDTH - LABEL) or [""]
+    lines = textwrap.wrap(words, WIDTH - LABEL, break_on_hyphens=False) or [""]
     return [f"{label if number == 0 else '':<{LABEL}}{line}".rstrip() for number, line in enumerate(lines)]
 
 
