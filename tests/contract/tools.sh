@@ -1,48 +1,68 @@
-# Tools the contract checks need beside Python, sourced by their scripts. A missing one ends the script by its name.
+# Sourced at the top of the repository by the scripts of this folder: tools of Node.js and Java, Python packages that
+# only clients need, and a service to work against. Versions are pinned; a tool that cannot be had is named.
+. tests/tools.sh
 
-tools_folder=${LOOPSLACK_TOOLS:-${XDG_CACHE_HOME:-$HOME/.cache}/loopslack}
+contract_tools=${CONTRACT_TOOLS:-$PWD/.cache/contract}
+export JAVA_TOOL_OPTIONS="-Xmx1g -XX:+UseSerialGC"
 
-missing() {
-    echo "$(basename -- "$0"): missing tool: $1" >&2
-    exit 1
+# document_at FILE: ends the script if the document has not been written.
+document_at() {
+    [ -s "$1" ] || fail "$1 is not there; write it with: python -m loopslack.api.document"
 }
 
-need() { # need COMMAND HINT
-    command -v "$1" >/dev/null 2>&1 || missing "$1 ($2)"
-}
-
-need_file() { # need_file FILE HINT
-    [ -s "$1" ] || { echo "$(basename -- "$0"): $1 is not there; $2" >&2; exit 1; }
-}
-
-need_python() { # need_python MODULE PACKAGE
-    "$python" -c "import $1" 2>/dev/null || missing "the Python package $2 for $python"
-}
-
-# Installs the pinned packages of a folder once and prints the folder of their commands.
-node_tools() { # node_tools FOLDER_WITH_PACKAGE_LOCK
-    need node "Node.js 20 or later"
-    need npm "comes with Node.js"
-    stamp=$(cat "$1/package.json" "$1/package-lock.json" | cksum | tr ' ' -)
-    place=$tools_folder/$(basename -- "$1")-$stamp
+# node_tools FOLDER: installs the packages pinned in the folder once; prints the folder of their commands.
+node_tools() {
+    debian_tool node nodejs >&2
+    debian_tool npm npm >&2
+    node -e 'process.exit(Number(process.versions.node.split(".")[0]) < 20 ? 1 : 0)' ||
+        fail "Missing tool: Node.js 20 or later; this is $(node --version)."
+    place=$contract_tools/$(basename "$1")-$(cat "$1/package.json" "$1/package-lock.json" | cksum | tr ' ' -)
     if [ ! -e "$place/installed" ]; then
+        rm -rf "$place"
         mkdir -p "$place"
         cp "$1/package.json" "$1/package-lock.json" "$place/"
         (cd "$place" && npm ci --ignore-scripts --no-audit --no-fund --loglevel error >&2) ||
-            missing "the packages of $1 (npm could not install them)"
+            fail "Missing tools: the packages pinned in $1/package-lock.json could not be installed."
         : >"$place/installed"
     fi
-    echo "$place/node_modules/.bin"
+    printf '%s\n' "$place/node_modules/.bin"
 }
 
-# Makes a Python environment with the hash-pinned packages of a requirements file once and prints its interpreter.
-python_tools() { # python_tools REQUIREMENTS_FILE NAME
-    place=$tools_folder/$2-$(cksum <"$1" | tr ' ' -)
+# client_python FILE: an environment with exactly the packages pinned in the file; prints its interpreter.
+client_python() {
+    find_python
+    place=$contract_tools/python-$(cksum <"$1" | tr ' ' -)
     if [ ! -e "$place/installed" ]; then
-        "$python" -m venv "$place" >&2 || missing "venv for $python"
-        "$place/bin/python" -m pip install --quiet --disable-pip-version-check --require-hashes -r "$1" >&2 ||
-            missing "the packages of $1 (pip could not install them)"
+        make_environment "$place"
+        "$place/bin/python" -m pip install --quiet --no-input --disable-pip-version-check --require-hashes --no-deps \
+            --requirement "$1" >&2 || fail "Missing tools: the packages pinned in $1 could not be installed."
         : >"$place/installed"
     fi
-    echo "$place/bin/python"
+    printf '%s\n' "$place/bin/python"
+}
+
+# start_service: serves the checked-out code on a free loopback port until the script ends; sets `url`.
+start_service() {
+    port=$(python3 -c 'import socket; s = socket.socket(); s.bind(("127.0.0.1", 0)); print(s.getsockname()[1])')
+    url=http://127.0.0.1:$port
+    service_log=$(mktemp)
+    LOOPSLACK_BIND=127.0.0.1:$port WEB_CONCURRENCY=${WEB_CONCURRENCY:-1} \
+        python3 -m gunicorn --config deploy/gunicorn.conf.py >"$service_log" 2>&1 &
+    service_process=$!
+    python3 - "$url/livez" <<'END' || { cat "$service_log" >&2; fail "The service did not start."; }
+import sys, time, urllib.request
+for _ in range(100):
+    try:
+        urllib.request.urlopen(sys.argv[1], timeout=5).read()
+        sys.exit(0)
+    except OSError:
+        time.sleep(0.2)
+sys.exit(1)
+END
+}
+
+# stop_service: ends what `start_service` began, if it did.
+stop_service() {
+    [ -z "${service_process:-}" ] || kill "$service_process" 2>/dev/null || true
+    rm -f "${service_log:-}"
 }

@@ -11,7 +11,7 @@ from collections.abc import Iterable
 from pathlib import Path
 from typing import Any
 
-from loopslack.api.document.answer_names import ANSWER_LISTS, ANSWER_UNIONS
+from loopslack.api.document.answer_names import ANSWER_LISTS, ANSWER_UNIONS, LEFT_OUT, SCHEMA_NAMES
 from loopslack.api.document.examples import ExampleBook, Harvest
 from loopslack.api.document.headers import HEADERS, PARAMETERS
 from loopslack.api.document.overview import DESCRIPTION, SUMMARY, TAGS, TITLE
@@ -25,8 +25,10 @@ from loopslack.api.document.vocabulary import DocumentError, Vocabulary
 from loopslack.api.document.yaml_text import yaml_text
 from loopslack.api.operations import Operation
 from loopslack.api.problems import Problem
+from loopslack.contract.writing_common import CONTRACT_VERSION
 
-CONTRACT_VERSION = "1.0.0"
+VALUES = (*UNIT_LISTS, *QUESTION_LISTS, *ANSWER_LISTS, *HEALTH_LISTS)
+UNIONS = (*QUESTION_UNIONS, *ANSWER_UNIONS)
 Schema = dict[str, Any]
 
 
@@ -38,17 +40,12 @@ def assembled(operations: Iterable[Operation[Any, Any]], examples: Path) -> Sche
 
     """
     operations = list(operations)
-    vocabulary = Vocabulary(
-        (*UNIT_LISTS, *QUESTION_LISTS, *ANSWER_LISTS, *HEALTH_LISTS), (*QUESTION_UNIONS, *ANSWER_UNIONS)
-    )
-    schemas, book = SchemaBook(vocabulary), ExampleBook(examples)
+    schemas, book = SchemaBook(Vocabulary(VALUES, UNIONS), SCHEMA_NAMES, LEFT_OUT), ExampleBook(examples)
     responses = ProblemResponses(schemas.read([Problem])[0], _faults(book))
     paths = PathBook(schemas, responses, book)
     paths.add(operations)
     paths.paths |= upkeep_paths(schemas, responses)
     _illustrate(schemas, paths.paths)
-    if vocabulary.unused:
-        raise DocumentError(f"named but never used: {sorted(vocabulary.unused)}")
     return {
         "openapi": "3.1.0",
         "info": {

@@ -117,7 +117,8 @@ class Harvest:
         if "oneOf" in schema:
             return self._composed(schema["oneOf"][0])
         if schema.get("type") == "array":
-            return [self._composed(schema["items"])] * max(1, schema.get("minItems", 0))
+            items, least = schema["items"], schema.get("minItems", 0)
+            return [self._composed(items)] * max(1, least) if least or "$ref" in items else []
         if schema.get("type") == "object":
             members = schema.get("properties", {})
             return {name: self._composed(members[name]) for name in schema.get("required", [])}

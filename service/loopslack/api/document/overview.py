@@ -61,9 +61,9 @@ Swift.
 """.strip()
 
 TAGS: dict[str, str] = {
-    "design": "The whole job in one call, for one loop.",
+    "Design": "The whole job in one call, for one loop.",
     "bulk": "Many designs at once, in one body or as a stream.",
-    "parts": "Single steps of a design: content, expansion, size, stagnation.",
+    "Check": "Single steps of a design: content, expansion, size, stagnation.",
     "existing": "Loops that are already there.",
     "sheets": "A design as a page to print and sign.",
     "reference": "Tables the service works with. They change only with its version, so keep them.",

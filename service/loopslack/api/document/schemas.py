@@ -10,7 +10,7 @@ from __future__ import annotations
 
 import inspect
 import re
-from collections.abc import Iterable
+from collections.abc import Collection, Iterable, Mapping
 from typing import Any, cast
 
 import msgspec
@@ -24,10 +24,21 @@ TAG_MEANING = "Says which kind this is."
 
 
 class SchemaBook:
-    """All component schemas of a document; `read` adds the structs reachable from the given types."""
+    """All component schemas of a document; `read` adds the structs reachable from the given types.
 
-    def __init__(self, vocabulary: Vocabulary) -> None:
+    A struct's name is the schema's, unless `names` has another. Members `left_out` are told apart by struct and
+    attribute; only an open struct may have one.
+    """
+
+    def __init__(
+        self,
+        vocabulary: Vocabulary,
+        names: Mapping[type, str] | None = None,
+        left_out: Collection[tuple[type, str]] = (),
+    ) -> None:
         self.vocabulary = vocabulary
+        self._names = names or {}
+        self._left_out = left_out
         self.schemas: dict[str, Schema] = {}
         self._owners: dict[str, object] = {}
 
@@ -62,7 +73,7 @@ class SchemaBook:
         return {"$ref": f"#/components/schemas/{name}"}
 
     def _struct(self, info: types.StructType) -> Schema:
-        name = info.cls.__name__
+        name = self._names.get(info.cls, info.cls.__name__)
         if name in self.schemas:
             return self._component(name, info.cls, {})
         schema: Schema = {"type": "object", "description": _prose(info.cls)}
@@ -73,6 +84,8 @@ class SchemaBook:
             members[info.tag_field] = {"type": "string", "const": info.tag, "description": TAG_MEANING}
             required.append(info.tag_field)
         for field in info.fields:
+            if (info.cls, field.name) in self._left_out:
+                continue
             members[field.encode_name] = self._member(info, field)
             if field.required:
                 required.append(field.encode_name)

@@ -97,6 +97,12 @@ def _units(name: str, alias: object, of: str) -> NamedValues:
     )
 
 
+ALL_UNITS = NamedValues(
+    name="AnyUnit",
+    meaning="Units of a quantity whose kind is told by its place.",
+    words=tuple(Word(unit, *named) for unit, named in _UNITS.items()),
+)
+
 UNIT_LISTS: tuple[NamedValues, ...] = (
     _units("LengthUnit", kinds.LengthUnit, "a length"),
     _units("AreaUnit", kinds.AreaUnit, "an area"),
@@ -126,4 +132,5 @@ UNIT_LISTS: tuple[NamedValues, ...] = (
     _units("VolumePercentUnit", kinds.VolumePercentUnit, "a share by volume"),
     _units("DurationUnit", kinds.DurationUnit, "a span of time"),
     _units("RatioUnit", kinds.RatioUnit, "a number without dimension"),
+    ALL_UNITS,
 )

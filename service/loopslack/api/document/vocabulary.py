@@ -101,14 +101,12 @@ class Vocabulary:
         for name in names:
             if names.count(name) > 1 or name in CLASHING_NAMES:
                 raise DocumentError(f"the name {name} is taken, twice used or clashes with generated code")
-        self.unused: set[str] = set(names)
 
     def values(self, listed: Iterable[object], place: str) -> NamedValues:
         """The name of a closed list of values."""
         entry = self._values.get(frozenset(listed))
         if entry is None:
             raise DocumentError(f"{place}: no name in the vocabulary for {sorted(map(str, listed))}")
-        self.unused.discard(entry.name)
         return entry
 
     def union(self, members: Iterable[type[msgspec.Struct]], place: str) -> NamedUnion:
@@ -118,5 +116,4 @@ class Vocabulary:
         if entry is None:
             classes = sorted(member.__name__ for member in joined)
             raise DocumentError(f"{place}: no name in the vocabulary for the union of {classes}")
-        self.unused.discard(entry.name)
         return entry

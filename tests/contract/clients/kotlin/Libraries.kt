@@ -33,7 +33,7 @@ class Response<T>(private val status: Int, private val answer: T?, private val r
 
 class Sent(var body: String = "")
 
-inline fun <reified T> connect(url: String, json: Json, sent: Sent): T =
+inline fun <reified T> connect(url: String, json: Json, sent: Sent = Sent()): T =
     T::class.java.cast(Proxy.newProxyInstance(T::class.java.classLoader, arrayOf(T::class.java), Caller(url, json, sent)))
 
 @OptIn(ExperimentalSerializationApi::class)
