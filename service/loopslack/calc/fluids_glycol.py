@@ -190,7 +190,7 @@ def strength_freezing_at(kind: GlycolKind, temperature: float) -> float:
     By halving, since the warmer of two falling curves has a kink; the result is on the safe side of the root.
     """
     weak, strong = 0.0, FREEZING_STRENGTH_HIGHEST
-    while strong - weak > 1e-12:
+    for _ in range(40):
         middle = 0.5 * (weak + strong)
         if warmer_freezing_point(kind, middle) > temperature:
             weak = middle

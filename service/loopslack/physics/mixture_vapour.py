@@ -70,7 +70,8 @@ def partial_pressures(
     k = water.virial_per_pressure(temperature, steam, water.vapour_density(temperature))
     ideal = activity[0] * steam
     glycol = activity[1] * exp(antoine[0] - antoine[1] / (temperature + antoine[2]))
-    pressure = (ideal * (1.0 + k * steam) + glycol) / (1.0 + k * ideal)
+    expanded = ideal * (1.0 + k * steam) + glycol
+    pressure = expanded / (1.0 + k * ideal)
     corrected = ideal * exp(k * (steam - pressure))
     pressure -= (pressure - corrected - glycol) / (1.0 + k * corrected)
     return pressure, glycol, k
