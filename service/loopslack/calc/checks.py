@@ -29,10 +29,14 @@ def compare(
     at_most: bool,
     subject: str = "",
     at_least: bool = False,
+    scale: float = 0.0,
 ) -> Check:
-    """A core check of a value against a limit; the solvers' rounding is not a failure."""
+    """A core check of a value against a limit; the solvers' rounding is not a failure.
+
+    ``scale`` is a size the value's rounding goes with, where value and limit are both small.
+    """
     margin = limit - value if at_most else value - limit
-    holds = margin >= -ROUNDING * max(abs(limit), abs(value))
+    holds = margin >= -ROUNDING * max(abs(limit), abs(value), scale)
     if holds and margin < 0:
         margin = 0.0
     verdict: CheckVerdict = "holds" if holds else "does-not-hold"
@@ -60,7 +64,9 @@ def membrane(state: str, found: Equilibrium, limit: float) -> Check:
 
 def steam_at_station(state: str, found: Equilibrium) -> Check:
     """Steam power left when the branches are full, beyond what the station is said to take."""
-    return compare("steam-at-station", state, kinds.POWER, found.extent.unspent, 0.0, at_most=True)
+    extent = found.extent
+    power = sum(space.power for space in extent.spaces)
+    return compare("steam-at-station", state, kinds.POWER, extent.unspent, 0.0, at_most=True, scale=power)
 
 
 def reserve(bounds: Bounds, cold: LiquidState, mass: float, nominal: float) -> Check:

@@ -141,7 +141,9 @@ class _SeveralSpaces:
         self.balance = balance
         self.high = opening
         self.low = 0.0
-        self.falling = all(space.path.falling for space in balance.spaces)
+        # Each space takes its largest extent at a pressure, which shrinks as pressure rises: one root, rising
+        # pipes or not.
+        self.falling = True
         self.jumps = sorted(
             pressure
             for space in balance.spaces

@@ -170,8 +170,6 @@ class SteamSpace:
 
         None where no pressure lets more arrive, infinite where every pressure does.
         """
-        if not self.path.branches:
-            return None
         top, low = self.highest_boiling(), self.coldest
 
         def spare(temperature: float) -> float:

@@ -121,7 +121,7 @@ class Chronicle:
         if taken.ending == "overfull":
             power = taken.surplus * taken.balance.latent / taken.balance.dt
             flags.add("steam-at-station" if power > plant.loop.station_loss else "steam-at-cooler")
-        if taken.balance.discharge > 0.0:
+        if state.discharged > 0.0:
             flags.add("discharge")
         lowest = relief.lowest_opening if relief is not None else None
         if lowest is not None and state.vessel_pressure > lowest:

@@ -5,11 +5,11 @@ away.
 """
 
 from collections.abc import Callable
-from math import sqrt
 from typing import Literal, NamedTuple
 
 from loopslack.calc.course.balance import Balance
 from loopslack.calc.course.plant import Plant
+from loopslack.calc.course.relief import passed
 from loopslack.calc.course.state import State
 from loopslack.calc.course.weather import Weather
 from loopslack.kernel.roots import bracketed
@@ -18,7 +18,6 @@ Ending = Literal["steam", "no-steam", "overfull"]
 
 _FIRST_STRIDE = 1e-5
 _NEGLIGIBLE = 1e-10  # of the filled mass: vapour that may stay unaccounted for when the root is taken
-_LEAST_HEAD = 1e3  # Pa over atmosphere for the flow through the valve
 
 
 class Step(NamedTuple):
@@ -62,12 +61,14 @@ def step(plant: Plant, state: State, weather: Weather, dt: float) -> Step:
         warm = collector.warm(balance.geometric)
         return Step(balance, ending, warm, warm, collector.evaporated, 0.0, balance.dry_wall, 0.0, valve_open)
     surplus = -balance.missing if ending == "overfull" else 0.0
+    # No more can condense in the collectors than there is; the root leaves some millionths of a kilogram open.
+    held = state.vapour - balance.condensed - surplus
     return Step(
         balance,
         ending,
         collector.absorber,
         collector.boiling,
-        collector.evaporated,
+        max(collector.evaporated, -held),
         balance.condensed,
         balance.wall,
         surplus,
@@ -87,8 +88,8 @@ def _relieve(balance: Balance, ending: Ending) -> tuple[Ending, bool]:
     pressure = balance.vessel_pressure
     if not (pressure > valve.set_pressure or (state.valve_open and pressure > valve.closing_pressure)):
         return ending, False
-    over = max(_LEAST_HEAD, pressure - balance.plant.loop.atmosphere)
-    capacity = valve.flow_area * sqrt(2.0 * balance.vessel_density * over) * balance.dt
+    atmosphere = balance.plant.loop.atmosphere
+    capacity = passed(valve, atmosphere, balance.vessel_density, pressure, balance.dt)
     balance.held_pressure = valve.closing_pressure
     _solve(balance)
     held = balance.vessel_mass
@@ -122,7 +123,7 @@ def _solve(balance: Balance) -> Ending:
         found = _downward(residual, start, here, least, stride)
         if found is None:
             return "no-steam"
-    root = bracketed(residual, *found, tolerance=1e-9 * highest + 1e-12).at
+    root = bracketed(residual, *found, tolerance=1e-13 * highest).at
     if balance.volume != root:
         balance.residual(root)
     return "steam"

@@ -7,6 +7,7 @@ outside the collectors is the difference. Nothing decides here whether the step 
 
 from loopslack.calc.course.books import Books
 from loopslack.calc.course.plant import Plant
+from loopslack.calc.course.relief import spilled
 from loopslack.calc.course.state import State
 from loopslack.calc.course.step import Step
 
@@ -26,7 +27,10 @@ def accept(plant: Plant, state: State, taken: Step, books: Books) -> None:
     masses, flows = _flows(plant, state, taken, poured + pushed)
     masses.append(state.masses[-1] + flows[-1] - balance.discharge)
     warmed = _temperatures(plant, state, taken, masses, flows, poured=poured, pushed=pushed)
-    books.liquid(plant, warmed, place, dt, balance.discharge)
+    spill = spilled(plant, masses[-1], warmed[-1], gone=balance.discharge, dt=dt)
+    masses[-1] -= spill
+    discharged = balance.discharge + spill
+    books.liquid(plant, warmed, place, dt, discharged)
     books.step(plant, taken)
     for j in range(min(int(place), cells)):
         warmed[j] = taken.wall
@@ -38,16 +42,17 @@ def accept(plant: Plant, state: State, taken: Step, books: Books) -> None:
         if pushed < 0.0:
             liquid -= pushed * (warmed[0] - state.temperatures[0]) / left
     state.glycol = _glycol(plant, state, taken, pushed, left)
-    state.vapour = state.vapour + taken.evaporated - taken.condensed - taken.surplus if steaming else 0.0
+    vapour = state.vapour + taken.evaporated - taken.condensed - taken.surplus
+    state.vapour = max(0.0, vapour) if steaming else 0.0
     state.left, state.volume, state.place = left, balance.volume, place
     state.masses, state.temperatures = masses, warmed
-    state.discharged += balance.discharge
+    state.discharged += discharged
     state.absorber, state.liquid = taken.absorber, liquid
     state.wall = taken.wall if place > 0.0 else warmed[0]
     state.steam, state.latent, state.vapour_density = balance.steam, balance.latent, balance.vapour_density
     state.collector_pressure, state.boiling = balance.collector_pressure, balance.collector.boiling
     state.vessel_pressure = plant.vessel_pressure(state.vessel_liquid(plant), warmed[-1])
-    state.valve_open, state.steam_power = taken.valve_open, taken.steam_power
+    state.valve_open, state.steam_power = taken.valve_open or spill > 0.0, taken.steam_power
     state.time += dt
 
 
