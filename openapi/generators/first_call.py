@@ -21,7 +21,9 @@ question = loopslack.LoopDesignQuestion(
             emptyingClass="good",
         )
     ],
-    pipeRuns=[loopslack.PipeRun(role=role, segments=[pipe], steamAccess="open") for role in ("flow", "return")],
+    pipeRuns=[
+        loopslack.PipeRun(role=role, segments=[pipe], steamAccess="open") for role in ("flow", "return")
+    ],
     fluid=loopslack.Fluid(
         loopslack.PropyleneGlycol(kind="propylene-glycol", concentration=loopslack.Concentration(protection))
     ),

@@ -24,7 +24,7 @@ from loopslack.api.document.upkeep import HEALTH_LISTS, upkeep_paths
 from loopslack.api.document.vocabulary import DocumentError, Vocabulary
 from loopslack.api.document.yaml_text import yaml_text
 from loopslack.api.operations import Operation
-from loopslack.api.problems import Problem
+from loopslack.api.problems import FaultyField, Problem
 from loopslack.contract.writing_common import CONTRACT_VERSION
 
 VALUES = (*UNIT_LISTS, *QUESTION_LISTS, *ANSWER_LISTS, *HEALTH_LISTS)
@@ -85,8 +85,14 @@ def _faults(book: ExampleBook) -> dict[str, list[Schema]]:
     for entry in book.entries:
         answer = book.answer(entry)
         if entry.status >= 400 and isinstance(answer, dict):
-            found.setdefault(answer["type"].rsplit("/", 1)[-1], answer.get("errors", []))
+            faults = [_documented(fault) for fault in answer.get("errors", [])]
+            found.setdefault(answer["type"].rsplit("/", 1)[-1], faults)
     return found
+
+
+def _documented(fault: Schema) -> Schema:
+    left_out = {member for struct, member in LEFT_OUT if struct is FaultyField}
+    return {key: value for key, value in fault.items() if key not in left_out}
 
 
 def _illustrate(schemas: SchemaBook, paths: Schema) -> None:

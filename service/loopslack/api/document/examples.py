@@ -96,7 +96,7 @@ class Harvest:
 
     def _keep(self, name: str, value: object) -> None:
         if name not in self.found and "enum" not in self._schemas[name]:
-            shortened = _shortened(value)
+            shortened = cut(value, 1)
             if len(json.dumps(shortened)) <= MOST_CHARACTERS:
                 self.found[name] = shortened
 
@@ -125,10 +125,10 @@ class Harvest:
         raise DocumentError(f"no example for {schema}")
 
 
-def _shortened(value: object) -> object:
-    """The value with lists cut to their first entry, enough to show what an entry looks like."""
+def cut(value: object, most: int = 2) -> object:
+    """The value with every list cut to its first entries, enough to show what they look like."""
     if isinstance(value, dict):
-        return {key: _shortened(member) for key, member in value.items()}
+        return {key: cut(member, most) for key, member in value.items()}
     if isinstance(value, list):
-        return [_shortened(item) for item in value[:1]]
+        return [cut(item, most) for item in value[:most]]
     return value

@@ -37,7 +37,9 @@ with loopslack.ApiClient(loopslack.Configuration(host=where)) as connection:
 
     # A question only the service can refuse: all faults at once.
     content = {"Content-Type": "application/json", "Accept": "application/json"}
-    reply = connection.call_api("POST", f"{where}/v1/loop-design", content, json.loads(text("designLoop/misspelt")))
+    reply = connection.call_api(
+        "POST", f"{where}/v1/loop-design", content, json.loads(text("designLoop/misspelt"))
+    )
     reply.read()
     assert reply.status == 422
     problem = loopslack.Problem.from_json(reply.data.decode())
