@@ -47,6 +47,9 @@ class OwnFluid(Fluid):
 
     __slots__ = ("_bubble", "_density", "_heat_capacity", "_viscosity", "like")
 
+    like: Fluid | None
+    _bubble: MonotoneCurve  # unless it boils like another
+
     def __init__(
         self,
         points: Points,
@@ -66,8 +69,7 @@ class OwnFluid(Fluid):
                 f"The freezing point, {celsius(freezing_point)} degC, lies above every density of {name}.",
                 remedy="State densities of the liquid.",
             )
-        self.like: Fluid | None = None
-        self._bubble: MonotoneCurve | None = None
+        self.like = None
         self._bound(
             (lowest, self._density.last),
             self._boil_like(boiling) if isinstance(boiling, Fluid) else self._boil_by_table(boiling),
@@ -85,8 +87,8 @@ class OwnFluid(Fluid):
         """See ``Fluid``."""
         if not self._boiling_low <= temperature <= self._boiling_high:
             self.refuse_boiling(temperature)
-        if self._bubble is None:
-            return self._reference().saturated(temperature)
+        if self.like is not None:
+            return self.like.saturated(temperature)
         pressure = exp(self._bubble.at(-1.0 / temperature))
         at = Temperature(temperature)
         k = water.virial_per_pressure(at, water.saturation_pressure(at), water.vapour_density(at))
@@ -97,15 +99,15 @@ class OwnFluid(Fluid):
         """See ``Fluid``."""
         if not self.lowest_pressure <= pressure <= self.highest_pressure:
             self.refuse_pressure(pressure)
-        if self._bubble is None:
-            return self._reference().boiling_temperature(pressure)
+        if self.like is not None:
+            return self.like.boiling_temperature(pressure)
         return min(max(-1.0 / self._bubble.inverse(log(pressure)), self.boiling_lowest), self.boiling_highest)
 
     def vapour(self, temperature: float) -> Vapour:
         """The vapour; by table it is taken as pure steam at the pressure of the table, for want of better."""
+        if self.like is not None:
+            return self.like.vapour(temperature)
         pressure, density = self.saturated(temperature)
-        if self._bubble is None:
-            return self._reference().vapour(temperature)
         return Vapour(
             pressure=pressure,
             density=density,
@@ -142,11 +144,6 @@ class OwnFluid(Fluid):
             rule = f"{subject} of {self.name}"
             refuse_temperature(rule, temperature, low, high, "State a table that covers it.")
         return curve.at(temperature)
-
-    def _reference(self) -> Fluid:
-        if self.like is None:
-            raise AssertionError("an own fluid without a bubble table boils like another")
-        return self.like
 
     def _boil_like(self, reference: Fluid) -> tuple[float, float]:
         self.like = reference

@@ -49,7 +49,7 @@ class MonotoneCurve:
         low, high = 0.0, self.xs[piece + 1] - self.xs[piece]
         h = high * (y - a) / (self.ys[piece + 1] - a)
         close = 1e-12 * (self.ys[-1] - self.ys[0])
-        for _ in range(60):
+        for _ in range(60):  # pragma: no branch - a bracket halved so often has met the value
             excess = a + h * (b + h * (c + h * d)) - y
             if abs(excess) <= close:
                 break

@@ -32,7 +32,7 @@ _IAPWS = "iapws-sr1-86"
     "water-saturation-pressure",
     law="p = p_c exp[T_c/T (a1 s + a2 s^1.5 + a3 s^3 + a4 s^3.5 + a5 s^4 + a6 s^7.5)],  s = 1 - T/T_c",
     symbols={"p": "saturation pressure", "T": "temperature", "p_c": "22.064 MPa", "T_c": "647.096 K"},
-    source=Cite(_IAPWS, "read-second-hand", "equation 1"),
+    source=Cite(_IAPWS, "read-second-hand"),
     valid=_SATURATION,
 )
 def saturation_pressure(temperature: Temperature) -> AbsolutePressure:
@@ -85,7 +85,7 @@ def saturation_slope(temperature: Temperature) -> float:
     "water-liquid-density",
     law="rho = rho_c (1 + b1 s^(1/3) + b2 s^(2/3) + b3 s^(5/3) + b4 s^(16/3) + b5 s^(43/3) + b6 s^(110/3))",
     symbols={"rho": "density of the liquid", "rho_c": "322 kg/m3", "s": "1 - T/T_c"},
-    source=Cite(_IAPWS, "read-second-hand", "equation 2"),
+    source=Cite(_IAPWS, "read-second-hand"),
     valid=_SATURATION,
 )
 def liquid_density(temperature: Temperature) -> Density:
@@ -113,7 +113,7 @@ def liquid_density(temperature: Temperature) -> Density:
     "water-vapour-density",
     law="rho = rho_c exp(c1 s^(2/6) + c2 s^(4/6) + c3 s^(8/6) + c4 s^(18/6) + c5 s^(37/6) + c6 s^(71/6))",
     symbols={"rho": "density of the saturated steam", "rho_c": "322 kg/m3", "s": "1 - T/T_c"},
-    source=Cite(_IAPWS, "read-second-hand", "equation 3"),
+    source=Cite(_IAPWS, "read-second-hand"),
     valid=_SATURATION,
 )
 def vapour_density(temperature: Temperature) -> Density:
