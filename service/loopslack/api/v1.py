@@ -4,10 +4,19 @@ from collections.abc import Iterable
 from typing import Any
 
 from loopslack.api.operations import Operation
-from loopslack.contract import answering, answers, questions
+from loopslack.contract import (
+    answering,
+    answering_reference,
+    answering_small,
+    answers,
+    answers_reference,
+    questions,
+)
 
+_PARTS = "Parts"
 _DESIGN = "Design"
 _CHECK = "Check"
+_REFERENCE = "Reference"
 
 
 def _judged(
@@ -18,6 +27,32 @@ def _judged(
 
 
 OPERATIONS: tuple[Operation[Any, Any], ...] = (
+    Operation(
+        operation_id="computeLoopVolume",
+        path="/v1/loop-volume",
+        tag=_PARTS,
+        summary="Compute the content of a loop",
+        description=(
+            "Content by part and in total, with the range of every part whose content was assumed. "
+            "Nothing is stored; retry freely."
+        ),
+        question=questions.LoopVolumeQuestion,
+        answer=answers.LoopVolumeAnswer,
+        ask=answering_small.compute_loop_volume,
+    ),
+    Operation(
+        operation_id="computeExpansion",
+        path="/v1/expansion",
+        tag=_PARTS,
+        summary="Compute the expansion of a fluid",
+        description=(
+            "Expansion between two temperatures, density, freezing point and boiling point of a fluid. A temperature "
+            "at which the fluid is no liquid is refused. Nothing is stored; retry freely."
+        ),
+        question=questions.ExpansionQuestion,
+        answer=answers.ExpansionAnswer,
+        ask=answering_small.compute_expansion,
+    ),
     Operation(
         operation_id="checkStagnation",
         path="/v1/stagnation-check",
@@ -45,5 +80,55 @@ OPERATIONS: tuple[Operation[Any, Any], ...] = (
         answer=answers.LoopDesignAnswer,
         ask=answering.design_loop,
         outcomes=_judged,
+    ),
+    Operation(
+        operation_id="listFluids",
+        method="GET",
+        path="/v1/fluids",
+        tag=_REFERENCE,
+        summary="List the fluids",
+        description="Fluids a question may name, with what is known of them, how well, and from where.",
+        answer=answers_reference.FluidList,
+        ask=answering_reference.list_fluids,
+    ),
+    Operation(
+        operation_id="listTubes",
+        method="GET",
+        path="/v1/tubes",
+        tag=_REFERENCE,
+        summary="List the tubes",
+        description="Tube standards and sizes a question may name.",
+        answer=answers_reference.TubeList,
+        ask=answering_reference.list_tubes,
+    ),
+    Operation(
+        operation_id="listRules",
+        method="GET",
+        path="/v1/rules",
+        tag=_REFERENCE,
+        summary="List the sizing rules",
+        description="Every sizing rule: what it counts, its law, where it holds and where it was published.",
+        answer=answers_reference.RuleList,
+        ask=answering_reference.list_rules,
+    ),
+    Operation(
+        operation_id="listVesselSeries",
+        method="GET",
+        path="/v1/vessel-series",
+        tag=_REFERENCE,
+        summary="List the generic vessel sizes",
+        description="The preferred numbers a design chooses from when it is given no stock. Generic, not an offer.",
+        answer=answers_reference.VesselSeries,
+        ask=answering_reference.list_vessel_series,
+    ),
+    Operation(
+        operation_id="listSources",
+        method="GET",
+        path="/v1/sources",
+        tag=_REFERENCE,
+        summary="List the sources",
+        description="Every publication the service cites, and how far its authors saw it.",
+        answer=answers_reference.SourceList,
+        ask=answering_reference.list_sources,
     ),
 )

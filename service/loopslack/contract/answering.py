@@ -133,7 +133,7 @@ def _judged(reading: Reading, shown: Fit, judgement: Judgement) -> _Judged:
         doubts=write_loop.doubts(loop, judgement),
         checks=write_design.checks(judgement, write, loop.atmosphere),
         to_confirm=confirm,
-        content=write_loop.content(loop, write, reading.assumed),
+        content=write_loop.content(write_loop.held_by(loop), write, reading.assumed),
         window=write_loop.window(shown.window, write, pressure),
         states=[write_loop.liquid_state(state, write, pressure) for state in judgement.states],
         stagnation=write_loop.stagnation(shown.analysis, judgement, write, pressure),

@@ -22,7 +22,9 @@ EmptyingClass = Literal["good", "fair", "poor"]
 Label = Annotated[str, Meta(min_length=1, max_length=64)]
 
 
-class QuestionPart(Struct, frozen=True, kw_only=True, forbid_unknown_fields=True, rename="camel"):
+class QuestionPart(
+    Struct, frozen=True, kw_only=True, forbid_unknown_fields=True, rename="camel", omit_defaults=True
+):
     """A part of a question. Members that are not known are refused."""
 
 

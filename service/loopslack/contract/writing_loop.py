@@ -4,6 +4,7 @@ Rounding happens here and nowhere else; every verdict has been taken before.
 """
 
 from math import isfinite
+from typing import NamedTuple
 
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.equilibrium import Equilibrium
@@ -20,6 +21,8 @@ from loopslack.contract.reader import Assumed
 from loopslack.contract.units_out import Writer
 from loopslack.contract.writing_common import optional_quantity
 from loopslack.kernel import kinds
+
+_NO_RANGE = 1e-12  # m3
 
 COOLING_PLACE = (
     "In the line before the expansion vessel, uninsulated, entered from the top, "
@@ -43,45 +46,59 @@ class Pressures:
         return None if absolute is None or not isfinite(absolute) else self(absolute)
 
 
-def content(loop: Loop, write: Writer, assumed: tuple[Assumed, ...]) -> out.LoopContent:
-    """Contents by part, with the range of every part whose content was assumed."""
+class Held(NamedTuple):
+    """What one part holds (m3), where that was stated or assumed, and of how many pieces it is."""
+
+    kind: out.PartKind
+    name: str
+    content: float
+    pointer: str = ""
+    pieces: int = 1
+
+
+def held_by(loop: Loop) -> list[Held]:
+    """The parts of a loop."""
+    found = [
+        Held("collectors", group.name, group.content, f"/collectors/{index}/content", group.count)
+        for index, group in enumerate(loop.groups)
+    ]
+    found += [Held("pipe-run", branch.name, branch.content) for branch in loop.branches]
+    found.append(Held("station", "station", loop.station.content, "/station/content"))
+    found.append(Held("vessel-line", "vessel line", loop.line_content, "/vesselLine/content"))
+    if loop.cooling_content > 0:
+        found.append(Held("cooling-vessel", "cooling vessel", loop.cooling_content))
+    return found
+
+
+def content(parts: list[Held], write: Writer, assumed: tuple[Assumed, ...]) -> out.LoopContent:
+    """Contents by part, with the range of every part whose content was assumed for one piece of it."""
     volume = write.volume
     ranges = {entry.pointer: (entry.low, entry.high) for entry in assumed if entry.si is not None}
-    parts: list[out.PartContent] = []
+    rows: list[out.PartContent] = []
     low = high = 0.0
-
-    def add(kind: out.PartKind, name: str, held: float, pointer: str = "", times: float = 1.0) -> None:
-        nonlocal low, high
-        found = ranges.get(pointer)
-        least, most = (held, held) if found is None else (found[0] * times, found[1] * times)
-        low, high = low + min(least, held), high + max(most, held)
-        parts.append(
+    for part in parts:
+        found = ranges.get(part.pointer)
+        least = part.content if found is None else found[0] * part.pieces
+        most = part.content if found is None else found[1] * part.pieces
+        low, high = low + min(least, part.content), high + max(most, part.content)
+        rows.append(
             out.PartContent(
-                kind=kind,
-                name=name,
-                content=volume(held),
+                kind=part.kind,
+                name=part.name,
+                content=volume(part.content),
                 low=None if found is None else volume(least),
                 high=None if found is None else volume(most),
             )
         )
-
-    for index, group in enumerate(loop.groups):
-        add("collectors", group.name, group.content, f"/collectors/{index}/content", group.count)
-    for branch in loop.branches:
-        add("pipe-run", branch.name, branch.content)
-    add("station", "station", loop.station.content, "/station/content")
-    add("vessel-line", "vessel line", loop.line_content, "/vesselLine/content")
-    if loop.cooling_content > 0:
-        add("cooling-vessel", "cooling vessel", loop.cooling_content)
-    total = loop.content
-    ranged = abs(high - low) > 1e-12
+    total = sum(part.content for part in parts)
+    ranged = abs(high - low) > _NO_RANGE
     return out.LoopContent(
         total=volume(total),
         low=volume(low) if ranged else None,
         high=volume(high) if ranged else None,
-        collectors=volume(loop.collector_content),
-        pipes=volume(loop.pipe_content),
-        parts=parts,
+        collectors=volume(sum(part.content for part in parts if part.kind == "collectors")),
+        pipes=volume(sum(part.content for part in parts if part.kind == "pipe-run")),
+        parts=rows,
     )
 
 
