@@ -15,7 +15,7 @@ class Choices(NamedTuple):
     ``vaporised``: collector liquid that steam pushes out; ``pipe_steam``: pipe liquid that steam pushes out;
     ``expansion``: growth of the liquid; ``reserve`` and ``reserve_share``: liquid kept in the vessel, as a volume and
     as a share of the vessel; ``fill``: the fill pressure where the liquid at filling follows from it by Boyle's law,
-    None where it does not count; ``least_factor``: a floor under the pressure factor, 0 for none. ``gas_ratio``,
+    None where it does not count; ``least_factor``: a floor under the pressure factor, 1 where there is none. ``gas_ratio``,
     ``fill_ratio`` and ``density_ratio`` carry the temperatures: gas hot and when filled over the precharge's, liquid
     density when filled over that in the vessel room; all 1 where a rule knows one temperature only.
     """
@@ -28,7 +28,7 @@ class Choices(NamedTuple):
     reserve: float = 0.0
     reserve_share: float = 0.0
     fill: float | None = None
-    least_factor: float = 0.0
+    least_factor: float = 1.0
     gas_ratio: float = 1.0
     fill_ratio: float = 1.0
     density_ratio: float = 1.0
@@ -48,9 +48,7 @@ class Choices(NamedTuple):
     @property
     def free_share(self) -> float:
         """Share of the vessel that takes up what is displaced; no vessel does where it is not above 0."""
-        taken = 1 - self.gas_ratio * self.precharge / self.final_pressure
-        if self.least_factor > 0:
-            taken = min(taken, 1 / self.least_factor)
+        taken = min(1 - self.gas_ratio * self.precharge / self.final_pressure, 1 / self.least_factor)
         return taken - self.reserve_share - self.filled_share
 
     @property

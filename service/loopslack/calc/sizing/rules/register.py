@@ -142,7 +142,7 @@ def _answers(rule: Rule, basis: Basis) -> tuple[Answer, ...]:
 def _result(rule: Rule, basis: Basis, answer: Answer, *, check: bool, policy: DoubtPolicy) -> RuleResult:
     volume, choices = answer.nominal_volume, answer.choices
     if volume is not None and not volume > 0:
-        answer = answer._replace(refusal=_nothing_left(rule, volume))
+        answer = answer._replace(refusal=_nothing_left(rule, volume), choices=None)
         volume = None
     if volume is None or choices is None:
         return _without(rule, answer)
