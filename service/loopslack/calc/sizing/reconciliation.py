@@ -206,7 +206,8 @@ def _filled_to_the_least(
 ) -> tuple[float, str]:
     """The volume (m3) that just holds under every scenario when filled to the least, and which asks for it.
 
-    Filled to the least means to what the trade fills to above the precharge. No smaller than ``least``, which holds under fewer of them, and no larger than ``plain``, which does more.
+    Filled to the least means to what the trade fills to above the precharge. No smaller than ``least``, which holds
+    under fewer of them, and no larger than ``plain``, which does more.
     """
     loop = analysis.loop
     gas = Gas(1.0, plain.precharge, precharge_temperature(analysis))

@@ -13,11 +13,13 @@ class Choices(NamedTuple):
     """Choices of a rule: volumes m3, pressures Pa absolute, the rest shares of one.
 
     ``vaporised``: collector liquid that steam pushes out; ``pipe_steam``: pipe liquid that steam pushes out;
-    ``expansion``: growth of the liquid; ``reserve`` and ``reserve_share``: liquid kept in the vessel, as a volume and
-    as a share of the vessel; ``fill``: the fill pressure where the liquid at filling follows from it by Boyle's law,
-    None where it does not count; ``least_factor``: a floor under the pressure factor, 1 where there is none. ``gas_ratio``,
-    ``fill_ratio`` and ``density_ratio`` carry the temperatures: gas hot and when filled over the precharge's, liquid
-    density when filled over that in the vessel room; all 1 where a rule knows one temperature only.
+    ``expansion``: growth of the liquid; ``reserve`` and ``reserve_share``: liquid kept in the vessel, as a volume
+    and as a share of the vessel; ``fill``: the fill pressure where the liquid at filling follows from it by
+    Boyle's law, None where it does not count; ``least_factor``: a floor under the pressure factor, 1 for none.
+
+    ``gas_ratio``, ``fill_ratio`` and ``density_ratio`` carry the temperatures: gas when hot and when filled over
+    the precharge's, liquid density when filled over that in the vessel room; all 1 where a rule knows one
+    temperature only.
     """
 
     vaporised: float
