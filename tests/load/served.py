@@ -1,0 +1,219 @@
+"""What the served service does: throughput beside a bare route, scaling, latency under mixed load and overload,
+start and memory. Clients run in this process, on the second core where there is one.
+"""
+
+from __future__ import annotations
+
+import asyncio
+import json
+import statistics
+import time
+from collections.abc import Iterator
+from contextlib import contextmanager
+from pathlib import Path
+
+import msgspec
+
+from faults.server import Server, serving
+from load.client import Report, Target, closed_loop, open_loop
+from load.outcome import Figure, Run, at_least, at_most
+from load.server_facts import descriptors, pin, proportional_memory
+
+QUIET = {"LOOPSLACK_ACCESS_LOG": "false"}
+PATIENT = QUIET | {"LOOPSLACK_SHED_LAG_SECONDS": "10"}
+"""For measuring capacity: a server that is kept busy on purpose must not refuse."""
+
+
+@contextmanager
+def service(run: Run, workers: int = 1, *, patient: bool = False) -> Iterator[Server]:
+    """The service itself, without access log."""
+    with serving(run.folder, workers=workers, environment=PATIENT if patient else QUIET) as server:
+        wait_until_ready(server)
+        yield server
+
+
+def wait_until_ready(server: Server) -> None:
+    """Ask until it answers."""
+    deadline = time.monotonic() + 30
+    while True:
+        report = asyncio.run(open_loop(Target(server.port, "/readyz", reuse=False), 100, 0.01))
+        if report.statuses[200]:
+            return
+        if time.monotonic() > deadline:
+            raise RuntimeError(f"not ready:\n{server.log.read_text()}")
+
+
+def throughput(run: Run) -> list[Figure]:
+    """Requests per second of holding designs beside a bare route, one worker each, in turns on one core."""
+    corpus = run.corpus
+    bodies = corpus.holding or corpus.bodies[:1]
+    files = {"LOAD_BODIES": run.folder / "bodies.json", "LOAD_ANSWERS": run.folder / "answers.json"}
+    files["LOAD_BODIES"].write_bytes(msgspec.json.encode([body.decode() for body in bodies]))
+    files["LOAD_ANSWERS"].write_bytes(b"[" + b",".join(corpus.answers[body] for body in bodies) + b"]")
+    environment = {name: str(path) for name, path in files.items()} | QUIET
+    ratios, rates = [], []
+    with (
+        service(run, patient=True) as real,
+        serving(run.folder, "load.bare:app", environment=environment) as bare,
+    ):
+        for server in (real, bare):
+            for worker in server.workers():
+                pin(worker, {0})
+        for number in range(3 if run.short else 8):
+            rate = {}
+            for server in (real, bare):
+                right = corpus.right if number == 0 else None
+                target = Target(server.port, bodies=bodies, right=right)
+                report = asyncio.run(closed_loop(target, 8, run.seconds(3.0)))
+                run.expect_answers("throughput", report)
+                rate[server.port] = report.rate
+            rates.append(rate[real.port])
+            ratios.append(rate[real.port] / rate[bare.port])
+    spread = f"{min(ratios):.3f}-{max(ratios):.3f}"
+    return [
+        at_least("requests/s beside a bare route", statistics.median(ratios), 0.5),
+        Figure("  least and largest of the rounds", spread),
+        Figure("holding designs served, one core", f"{statistics.median(rates):.0f} /s"),
+    ]
+
+
+def two_workers(run: Run) -> list[Figure]:
+    """Requests per second of two workers over those of one."""
+    ratios = []
+    with service(run, patient=True) as one, service(run, workers=2, patient=True) as two:
+        for _ in range(2 if run.short else 5):
+            rate = []
+            for server in (one, two):
+                target = Target(server.port, bodies=run.corpus.bodies)
+                report = asyncio.run(closed_loop(target, 16, run.seconds(4.0)))
+                run.expect_answers("two workers", report)
+                rate.append(report.rate)
+            ratios.append(rate[1] / rate[0])
+    return [at_least("two workers over one", statistics.median(ratios), 1.8)]
+
+
+def mixed_load(run: Run) -> list[Figure]:
+    """The p99 of small requests while batches, courses and sheets run, over that of quiet times."""
+    with service(run, workers=2) as server:
+        example = json.loads(Path("openapi/examples/loop-design.json").read_bytes())
+        small = {"fluid": example["fluid"], "startTemperature": {"value": 15, "unit": "degC"}}
+        small["endTemperature"] = {"value": 120, "unit": "degC"}
+        asked = Target(server.port, "/v1/expansion", [msgspec.json.encode(small)])
+        heavy = heavy_targets(server, example, run)
+        rate, seconds = 50.0, run.seconds(15.0)
+        quiet = asyncio.run(open_loop(asked, rate, seconds))
+        run.expect_answers("small requests, quiet", quiet)
+        busy, others = asyncio.run(beside(asked, heavy, rate, seconds))
+        run.expect_answers("small requests, busy", busy, refusals=True)
+    table = [
+        Figure("p99 of small requests, quiet", f"{quiet.latency(0.99):.1f} ms"),
+        Figure("p99 of small requests, busy", f"{busy.latency(0.99):.1f} ms"),
+        at_most("p99 busy over quiet", busy.latency(0.99) / quiet.latency(0.99), 3.0),
+        Figure("small requests refused meanwhile", f"{len(busy.refused)}"),
+    ]
+    for target, report in zip(heavy, others, strict=True):
+        run.expect_answers(target.path, report, refusals=True)
+        table.append(Figure(f"  meanwhile {target.path}", f"{len(report.served)} served"))
+    return table
+
+
+def heavy_targets(server: Server, example: dict[str, object], run: Run) -> list[Target]:
+    """A batch, a course and a sheet."""
+    designs = [json.loads(body) | {"id": str(number)} for number, body in enumerate(run.corpus.bodies)]
+    return [
+        Target(server.port, "/v1/loop-design/batch", [msgspec.json.encode({"designs": designs})]),
+        Target(server.port, "/v1/stagnation-course", [course_question()]),
+        Target(server.port, "/v1/calculation-sheet/pdf", [msgspec.json.encode({"design": example})]),
+    ]
+
+
+def course_question() -> bytes:
+    """The question of the published example."""
+    (question,) = sorted(Path("openapi/examples/computeStagnationCourse").glob("clear-day.question.json"))
+    return question.read_bytes()
+
+
+async def beside(
+    small: Target, heavy: list[Target], rate: float, seconds: float
+) -> tuple[Report, list[Report]]:
+    """Small requests in an open loop while one busy caller works on each of the heavy ones."""
+    others = [asyncio.create_task(closed_loop(target, 1, seconds)) for target in heavy]
+    report = await open_loop(small, rate, seconds)
+    return report, list(await asyncio.gather(*others))
+
+
+def overload(run: Run) -> list[Figure]:
+    """Twice what two workers can serve, and what comes of the requests."""
+    corpus = run.corpus
+    with service(run, workers=2, patient=True) as server:
+        target = Target(server.port, bodies=corpus.bodies)
+        capacity = asyncio.run(closed_loop(target, 16, run.seconds(4.0))).rate
+    with service(run, workers=2) as server:
+        target = Target(server.port, bodies=corpus.bodies)
+        target.right = corpus.right
+        report = asyncio.run(open_loop(target, 2.0 * capacity, run.seconds(10.0)))
+        run.expect_answers("overload", report, refusals=True)
+        after = asyncio.run(open_loop(target, 0.3 * capacity, run.seconds(4.0)))
+        run.expect_answers("after the overload", after)
+    return [
+        at_most("p99 of the served, 2x overload", report.latency(0.99), 400.0, "ms"),
+        Figure("served under 2x overload", f"{report.rate / capacity:.2f} of capacity"),
+        Figure("refused with 503", f"{len(report.refused)} of {sum(report.statuses.values())}"),
+        Figure("p99 after the overload", f"{after.latency(0.99):.0f} ms"),
+    ]
+
+
+def cold_start(run: Run) -> list[Figure]:
+    """Seconds from the command to ready."""
+    times = []
+    for _ in range(3 if run.short else 5):
+        began = time.monotonic()
+        with service(run, workers=2):
+            times.append(time.monotonic() - began)
+    return [
+        at_most("cold start to ready", statistics.median(times), 2.0, "s"),
+        Figure("  the quickest", f"{min(times):.2f} s"),
+    ]
+
+
+def memory(run: Run) -> list[Figure]:
+    """Proportional memory of a worker after designs and after sheets, and whether it grows."""
+    requests = 300 if run.short else 1000
+    example = json.loads(Path("openapi/examples/loop-design.json").read_bytes())
+    sheet = msgspec.json.encode({"design": example})
+    with service(run, workers=2) as server:
+        designs = asyncio.run(many(Target(server.port, bodies=run.corpus.bodies), requests))
+        run.expect_answers("memory, designs", designs)
+        before = max(map(proportional_memory, server.workers()))
+        target = Target(server.port, "/v1/calculation-sheet/pdf", [sheet], timeout=60)
+        half = asyncio.run(many(target, requests // 2))
+        run.expect_answers("memory, sheets", half, refusals=True)
+        middle = max(map(proportional_memory, server.workers()))
+        run.expect_answers("memory, sheets", asyncio.run(many(target, requests // 2)), refusals=True)
+        after = max(map(proportional_memory, server.workers()))
+        held = max(map(descriptors, server.workers()))
+    return [
+        at_most("memory of a worker, no sheets", before, 80.0, "MB"),
+        at_most(f"memory of a worker, {requests} sheets", after, 160.0, "MB"),
+        at_most("growth over the second half", after - middle, 3.0, "MB"),
+        Figure("descriptors held by a worker", f"{held}"),
+    ]
+
+
+async def many(target: Target, requests: int) -> Report:
+    """A number of requests, two at a time."""
+    return await open_loop_of(target, requests)
+
+
+async def open_loop_of(target: Target, requests: int) -> Report:
+    """Busy callers until a number of requests has been answered."""
+    total = Report()
+    while sum(total.statuses.values()) + total.failed < requests:
+        part = await closed_loop(target, 2, 1.0)
+        total.served += part.served
+        total.refused += part.refused
+        total.statuses += part.statuses
+        total.failures += part.failures
+        total.wrong += part.wrong
+        total.seconds += part.seconds
+    return total
