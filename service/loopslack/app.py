@@ -21,10 +21,10 @@ from loopslack.api.operations import Floor, Operation
 from loopslack.api.probes import probe_routes
 from loopslack.api.record import Record
 from loopslack.api.reference import Page
-from loopslack.api.refusals import Refused
 from loopslack.api.routes import on_fault, on_http_exception, on_refused, routes_of
 from loopslack.api.v1 import OPERATIONS
 from loopslack.api.wrappers import CrossOrigin, HeadAsGet, LiteralPaths, Shedding, StandingHeaders
+from loopslack.contract.refusals import Refused
 from loopslack.observability import READINESS, Lines, LoopLag, set_up_logging
 from loopslack.settings import Settings, SettingsError, settings_from
 

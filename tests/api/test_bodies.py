@@ -9,10 +9,10 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from api.small_service import GOOD, GOOD_BODY, JSON, OpenHandedQuestion, SmallQuestion, pointers, serving
-from loopslack.api.decoding import decode
-from loopslack.api.duplicates import LARGE_BODY
-from loopslack.api.reader import reader_of
-from loopslack.api.refusals import Refused
+from loopslack.contract.refusals import Refused
+from loopslack.contract.strict.decoding import decode
+from loopslack.contract.strict.duplicates import LARGE_BODY
+from loopslack.contract.strict.reader import reader_of
 
 
 class Anything(msgspec.Struct, forbid_unknown_fields=True):

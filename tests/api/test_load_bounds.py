@@ -8,7 +8,7 @@ import pytest
 
 from api.small_service import GOOD_BODY, JSON, serving
 from loopslack.api.costly import Costly
-from loopslack.api.refusals import Refused
+from loopslack.contract.refusals import Refused
 from loopslack.observability import LoopLag
 
 

@@ -8,8 +8,8 @@ import pytest
 
 from api.small_service import GOOD_BODY, JSON, OPERATIONS, SmallAnswer, pointers
 from loopslack.api.operations import problems_of
-from loopslack.api.problems import FIELD_CODES, PROBLEM_TYPES
-from loopslack.api.reply import NotFiniteError, encoded, place_of_non_finite
+from loopslack.contract.encoding import NotFiniteError, encoded, place_of_non_finite
+from loopslack.contract.problems import FIELD_CODES, PROBLEM_TYPES
 
 
 def post(client, path, **headers):

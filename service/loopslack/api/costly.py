@@ -11,7 +11,7 @@ from collections.abc import Callable
 from concurrent.futures import ThreadPoolExecutor
 from typing import TypeVar
 
-from loopslack.api.refusals import Refused
+from loopslack.contract.refusals import Refused
 from loopslack.observability import count_refusal
 
 Answer = TypeVar("Answer")

@@ -22,8 +22,8 @@ from msgspec import Meta, Struct
 from loopslack.api.asgi import ASGIApp, Receive, Scope, Send
 from loopslack.api.reading import header
 from loopslack.api.record import note_of
-from loopslack.api.refusals import Refused
 from loopslack.api.wrappers import refuse
+from loopslack.contract.refusals import Refused
 from loopslack.observability import count_refusal
 from loopslack.settings import Settings
 

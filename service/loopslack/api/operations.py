@@ -13,7 +13,7 @@ from litestar.types import ASGIApp
 from msgspec import Struct
 
 from loopslack.api.costly import Costly
-from loopslack.api.problems import PROBLEM_TYPES, ProblemType
+from loopslack.contract.problems import PROBLEM_TYPES, ProblemType
 from loopslack.settings import Settings
 
 Question = TypeVar("Question")

@@ -10,7 +10,7 @@ from collections.abc import Iterable
 from functools import lru_cache
 
 from loopslack.api.asgi import Receive, Scope
-from loopslack.api.refusals import Refused
+from loopslack.contract.refusals import Refused
 
 JSON = "application/json"
 _JSON_TYPE = re.compile(r"application/(?:[A-Za-z0-9!#$&^_.+-]+\+)?json", re.IGNORECASE)

@@ -12,8 +12,8 @@ from typing import cast
 from msgspec import Struct
 
 from loopslack.api.asgi import ASGIApp, Message, Receive, Scope, Send
-from loopslack.api.refusals import Refused, occurrence
 from loopslack.api.reply import NOTE, problem_reply
+from loopslack.contract.refusals import Refused, occurrence
 from loopslack.observability import Lines, RequestCounts, moment, trace_of
 
 _logger = logging.getLogger("loopslack.request")

@@ -13,7 +13,8 @@ from msgspec import Struct
 
 from loopslack.api.operations import Operation
 from loopslack.api.reading import check_acceptable, header, refuse_query
-from loopslack.api.reply import Reply, encoded
+from loopslack.api.reply import Reply
+from loopslack.contract.encoding import encoded
 
 CACHEABLE = "public, max-age=3600, stale-while-revalidate=86400"
 

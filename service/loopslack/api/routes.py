@@ -15,15 +15,16 @@ from litestar.exceptions import HTTPException
 from litestar.handlers import HTTPRouteHandler
 from litestar.types import ASGIApp
 
-from loopslack.api.decoding import decode_in_steps
 from loopslack.api.operations import Floor, Operation
-from loopslack.api.reader import reader_of
 from loopslack.api.reading import check_acceptable, check_body_head, read_body, refuse_query
 from loopslack.api.record import internal_fault, log_fault, note_of
 from loopslack.api.reference import Page, page_route, reference_page
-from loopslack.api.refusals import Refused, refusal_of
-from loopslack.api.reply import Reply, encoded, problem_reply
+from loopslack.api.reply import Reply, problem_reply
 from loopslack.api.wrappers import nothing_here
+from loopslack.contract.encoding import encoded
+from loopslack.contract.refusals import Refused, refusal_of
+from loopslack.contract.strict.decoding import decode_in_steps
+from loopslack.contract.strict.reader import reader_of
 from loopslack.kernel.errors import CalculationError
 from loopslack.observability import count_design
 

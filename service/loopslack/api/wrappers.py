@@ -8,8 +8,8 @@ from collections.abc import Iterable
 
 from loopslack.api.asgi import ASGIApp, Message, Receive, Scope, Send
 from loopslack.api.record import note_of
-from loopslack.api.refusals import Refused
 from loopslack.api.reply import problem_reply
+from loopslack.contract.refusals import Refused
 from loopslack.observability import LoopLag, count_refusal
 
 UNSHED = frozenset({"/livez", "/readyz", "/metrics"})

@@ -5,11 +5,11 @@ A value that `loopslack.contract` has and this table has not is refused when the
 
 from __future__ import annotations
 
-from loopslack.api import problems
 from loopslack.api.document.vocabulary import NamedUnion, NamedValues, named
 from loopslack.calc import equilibrium, judgement, order_list, selection, states
 from loopslack.contract import answers_common as common
 from loopslack.contract import answers_loop as loop
+from loopslack.contract import problems
 from loopslack.kernel import citations
 
 SCHEMA_NAMES: dict[type, str] = {

@@ -24,7 +24,7 @@ from loopslack.api.document.upkeep import HEALTH_LISTS, upkeep_paths
 from loopslack.api.document.vocabulary import DocumentError, Vocabulary
 from loopslack.api.document.yaml_text import yaml_text
 from loopslack.api.operations import Operation
-from loopslack.api.problems import FaultyField, Problem
+from loopslack.contract.problems import FaultyField, Problem
 from loopslack.contract.writing_common import CONTRACT_VERSION
 
 VALUES = (*UNIT_LISTS, *QUESTION_LISTS, *ANSWER_LISTS, *HEALTH_LISTS)

@@ -1,6 +1,6 @@
 """Refusals as component responses: per status, the problem types that can be behind it, each with an example.
 
-What the problem types mean is said in `loopslack.api.problems`; here is only their place in the document.
+What the problem types mean is said in `loopslack.contract.problems`; here is only their place in the document.
 """
 
 from __future__ import annotations
@@ -10,7 +10,7 @@ from typing import Any
 
 from loopslack.api.document.headers import header_references
 from loopslack.api.document.vocabulary import DocumentError
-from loopslack.api.problems import PROBLEM_MEDIA_TYPE, PROBLEM_TYPES, ProblemType
+from loopslack.contract.problems import PROBLEM_MEDIA_TYPE, PROBLEM_TYPES, ProblemType
 
 Schema = dict[str, Any]
 

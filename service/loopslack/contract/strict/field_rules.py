@@ -10,7 +10,7 @@ from collections.abc import Iterator
 
 from msgspec import inspect
 
-from loopslack.api.hints import expectation, listing, shown, words_near
+from loopslack.contract.strict.hints import expectation, listing, shown, words_near
 
 Broken = Iterator[tuple[str, str]]
 Leaf = (

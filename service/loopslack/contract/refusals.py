@@ -7,7 +7,7 @@ import math
 import uuid
 from collections.abc import Mapping, Sequence
 
-from loopslack.api.problems import MOST_COUNTED, MOST_FAULTS, PROBLEM_TYPES, FaultyField, Problem
+from loopslack.contract.problems import MOST_COUNTED, MOST_FAULTS, PROBLEM_TYPES, FaultyField, Problem
 from loopslack.kernel.errors import CalculationError, Refusals
 
 _OF_ONE_FIELD = frozenset(

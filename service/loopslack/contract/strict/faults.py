@@ -14,10 +14,10 @@ from functools import cache
 import msgspec
 from msgspec import inspect
 
-from loopslack.api.field_rules import Leaf, broken_rules, size, word, wrong_type
-from loopslack.api.hints import expectation, listing, members_near, shown
-from loopslack.api.problems import MOST_COUNTED, MOST_FAULTS, FaultyField
-from loopslack.api.refusals import fault_of
+from loopslack.contract.problems import MOST_COUNTED, MOST_FAULTS, FaultyField
+from loopslack.contract.refusals import fault_of
+from loopslack.contract.strict.field_rules import Leaf, broken_rules, size, word, wrong_type
+from loopslack.contract.strict.hints import expectation, listing, members_near, shown
 from loopslack.kernel.errors import CalculationError, Refusals
 
 MOST_HINTS = 20

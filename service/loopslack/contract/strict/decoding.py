@@ -15,11 +15,17 @@ from typing import TypeVar, cast
 
 import msgspec
 
-from loopslack.api.duplicates import LARGE_BODY, keeps_its_marks, pieces, refusal_of_duplicates, stated_twice
-from loopslack.api.faults import faults_of, first_fault, holds_infinity
-from loopslack.api.problems import FaultyField
-from loopslack.api.reader import reader_of
-from loopslack.api.refusals import Refused, refusal_of, refusal_of_fields
+from loopslack.contract.problems import FaultyField
+from loopslack.contract.refusals import Refused, refusal_of, refusal_of_fields
+from loopslack.contract.strict.duplicates import (
+    LARGE_BODY,
+    keeps_its_marks,
+    pieces,
+    refusal_of_duplicates,
+    stated_twice,
+)
+from loopslack.contract.strict.faults import faults_of, first_fault, holds_infinity
+from loopslack.contract.strict.reader import reader_of
 from loopslack.kernel.errors import CalculationError
 
 Question = TypeVar("Question")

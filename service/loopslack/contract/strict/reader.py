@@ -10,7 +10,7 @@ from typing import Any
 import msgspec
 from msgspec import inspect
 
-from loopslack.api.field_rules import Leaf
+from loopslack.contract.strict.field_rules import Leaf
 
 _encode = msgspec.json.Encoder().encode
 _readers: dict[type, "Reader"] = {}

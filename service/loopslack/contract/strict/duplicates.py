@@ -10,9 +10,9 @@ from collections.abc import Iterator
 
 import msgspec
 
-from loopslack.api.faults import escaped
-from loopslack.api.problems import MOST_FAULTS, FaultyField
-from loopslack.api.refusals import Refused
+from loopslack.contract.problems import MOST_FAULTS, FaultyField
+from loopslack.contract.refusals import Refused
+from loopslack.contract.strict.faults import escaped
 
 LARGE_BODY = 64_000
 """Bytes beyond which a body is read in steps, so that no step holds the event loop for long."""
