@@ -11,7 +11,7 @@ fun pipe(role: PipeRole) = PipeRun(
     segments = listOf(
         PipeSegment(
             length = Length(14.0, LengthUnit.METRE),
-            tube = Tube.StandardWrapper(StandardTube(StandardTube.Kind.standard, "en-1057", "18x1")),
+            tube = Tube.StandardWrapper(StandardTube(StandardTube.Kind.STANDARD, "en-1057", "18x1")),
         ),
     ),
     steamAccess = SteamAccess.OPEN,
@@ -20,7 +20,7 @@ fun pipe(role: PipeRole) = PipeRun(
 fun main(arguments: Array<String>) = runBlocking {
     val where = arguments.firstOrNull() ?: "http://127.0.0.1:8000"
     val api = connect<DesignApi>(where, Serializer.kotlinxSerializationJson)
-    val protection = ProtectTo(ProtectTo.Kind.protect_to, Temperature(-20.0, TemperatureUnit.DEGREE_CELSIUS))
+    val protection = ProtectTo(ProtectTo.Kind.PROTECT_TO, Temperature(-20.0, TemperatureUnit.DEGREE_CELSIUS))
     val question = LoopDesignQuestion(
         site = Site(coldestOutdoorTemperature = Temperature(-12.0, TemperatureUnit.DEGREE_CELSIUS)),
         collectors = listOf(
@@ -34,7 +34,7 @@ fun main(arguments: Array<String>) = runBlocking {
         ),
         pipeRuns = listOf(pipe(PipeRole.FLOW), pipe(PipeRole.RETURN)),
         fluid = Fluid.PropyleneGlycolWrapper(
-            PropyleneGlycol(PropyleneGlycol.Kind.propylene_glycol, Concentration.ProtectToWrapper(protection)),
+            PropyleneGlycol(PropyleneGlycol.Kind.PROPYLENE_GLYCOL, Concentration.ProtectToWrapper(protection)),
         ),
         staticHeight = Length(8.0, LengthUnit.METRE),
         reliefValve = ReliefValve(setPressure = Pressure(6.0, PressureUnit.BAR_GAUGE)),

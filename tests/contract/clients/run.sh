@@ -66,7 +66,7 @@ JAVA_TOOL_OPTIONS="-Xmx2g -XX:+UseSerialGC" java -cp "$kotlin/lib/*" org.jetbrai
     { cat "$work/kotlinc.log" >&2; exit 1; }
 say "kotlin: compiled"
 for main in FirstCallKt ClientKt; do
-    JAVA_TOOL_OPTIONS= java -cp "$work/kotlin-classes:$path:$kotlin/lib/kotlin-stdlib.jar" "$main" "$url" "$PWD/openapi/examples"
+    env -u JAVA_TOOL_OPTIONS java -cp "$work/kotlin-classes:$path:$kotlin/lib/kotlin-stdlib.jar" "$main" "$url" "$PWD/openapi/examples"
 done
 
 generate swift

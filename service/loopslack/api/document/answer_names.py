@@ -9,6 +9,7 @@ from loopslack.api.document.vocabulary import NamedUnion, NamedValues, named
 from loopslack.calc import equilibrium, judgement, order_list, selection, states
 from loopslack.contract import answers_common as common
 from loopslack.contract import answers_loop as loop
+from loopslack.contract import answers_reference as reference
 from loopslack.contract import problems
 from loopslack.kernel import citations
 
@@ -99,6 +100,16 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
             "derived": "Derived here from laws that have their own sources",
             "own-assumption": "An assumption of this service",
             "common-practice": "Common in the trade, without a source",
+        },
+    ),
+    named(
+        "KnownFluid",
+        reference.FluidId,
+        "Fluids whose properties the service knows.",
+        {
+            "water": "Water",
+            "propylene-glycol": "Propylene glycol and water",
+            "ethylene-glycol": "Ethylene glycol and water, poisonous",
         },
     ),
     named(

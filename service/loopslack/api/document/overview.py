@@ -61,11 +61,11 @@ Swift.
 """.strip()
 
 TAGS: dict[str, str] = {
-    "Design": "The whole job in one call, for one loop.",
-    "bulk": "Many designs at once, in one body or as a stream.",
-    "Check": "Single steps of a design: content, expansion, size, stagnation.",
-    "existing": "Loops that are already there.",
-    "sheets": "A design as a page to print and sign.",
-    "reference": "Tables the service works with. They change only with its version, so keep them.",
-    "upkeep": "The service about itself, for those who run it.",
+    "Design": "The whole job, for one loop or for many.",
+    "Parts": "Content and expansion by themselves.",
+    "Check": "A given vessel: in stagnation, over a day without flow, years after it was filled.",
+    "Bulk": "Designs as a stream of lines, for programs that read and write lines.",
+    "Sheet": "A design as a page to print and sign.",
+    "Reference": "Tables the service works with. They change only with its version, so keep them.",
+    "Service": "The service about itself, for those who run it.",
 }

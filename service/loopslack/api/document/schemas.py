@@ -16,7 +16,7 @@ from typing import Any, cast
 import msgspec
 from msgspec import inspect as types
 
-from loopslack.api.document.vocabulary import CLASHING_NAMES, DocumentError, Vocabulary
+from loopslack.api.document.vocabulary import CLASHING_NAMES, DocumentError, Vocabulary, constant_of
 
 Schema = dict[str, Any]
 NULL_IN_QUESTION = "Null counts as absent."
@@ -81,7 +81,12 @@ class SchemaBook:
         members: dict[str, Schema] = {}
         required = []
         if info.tag_field is not None:
-            members[info.tag_field] = {"type": "string", "const": info.tag, "description": TAG_MEANING}
+            members[info.tag_field] = {
+                "type": "string",
+                "const": info.tag,
+                "description": TAG_MEANING,
+                "x-enum-varnames": [constant_of(str(info.tag))],
+            }
             required.append(info.tag_field)
         for field in info.fields:
             if (info.cls, field.name) in self._left_out:

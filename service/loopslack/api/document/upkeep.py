@@ -15,7 +15,7 @@ from loopslack.api.document.schemas import SchemaBook
 from loopslack.api.document.vocabulary import NamedValues, named
 
 Schema = dict[str, Any]
-TAG = "upkeep"
+TAG = "Service"
 HealthStatus = Literal["pass", "fail"]
 HEALTH_LISTS: tuple[NamedValues, ...] = (
     named(

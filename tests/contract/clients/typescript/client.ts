@@ -40,7 +40,7 @@ const wrong: Schemas["Length"] = { value: 1, unit: "barg" };
 assert.equal(wrong.unit, "barg");
 
 // A refused question: all faults at once, as a problem document with its own type.
-const refused = await client.POST("/v1/loop-design", { body: read("designLoop/misspelt") });
+const refused = await client.POST("/v1/loop-design", { body: read<Schemas["LoopDesignQuestion"]>("designLoop/misspelt") });
 assert.equal(refused.response.status, 422);
 assert(refused.error && "errors" in refused.error && refused.error.errors);
 const pointers = refused.error.errors.map((fault) => fault.pointer);
