@@ -61,11 +61,6 @@ STANDING = (
         "No condensate runs back into the collectors in the one curve, as where pipes fall away from them; "
         "the envelope also takes all of it. This is an assumption without a source.",
     ),
-    derived(
-        "residue-strength",
-        "The liquid left loses water only and boils at its own strength; beyond 63 % glycol by mass the "
-        "boiling point is extrapolated.",
-    ),
     own(
         "collector-capacity",
         "Collectors hold 8 kJ/m2K with their liquid; 6 to 12 moves the largest steam volume by 0.1 %.",
@@ -104,3 +99,13 @@ STANDING = (
     ),
 )
 """Said with every answer."""
+
+RESIDUE_STRENGTH = derived(
+    "residue-strength",
+    "The liquid left loses water only and boils at its own strength; beyond 63 % glycol by mass the boiling point "
+    "is extrapolated.",
+)
+RESIDUE_AS_FILLED = derived(
+    "residue-strength",
+    "The liquid left boils like the filling however much of it has boiled off: nothing is known of another strength.",
+)

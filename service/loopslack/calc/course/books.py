@@ -73,5 +73,5 @@ def stored(plant: Plant, state: State) -> float:
         wet = min(1.0, max(0.0, j + 1 - state.place))
         heat += (state.masses[j] * cp + capacity * wet) * state.temperatures[j]
     for j, tank in enumerate(plant.tanks, grid.cells):
-        heat += (max(0.0, state.masses[j]) * cp + tank.capacity) * state.temperatures[j]
+        heat += (state.masses[j] * cp + tank.capacity) * state.temperatures[j]
     return heat

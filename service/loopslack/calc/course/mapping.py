@@ -10,6 +10,8 @@ from typing import NamedTuple
 from loopslack.calc.course.assumptions import (
     COLLECTOR_CAPACITY,
     RESIDUAL_SHARE,
+    RESIDUE_AS_FILLED,
+    RESIDUE_STRENGTH,
     STANDING,
     STATION_HEAT,
     STATION_LOSS,
@@ -29,6 +31,7 @@ from loopslack.calc.course.lumped import (
 )
 from loopslack.calc.course.mapping_pipe import dead_content, lumped_pipe
 from loopslack.calc.course.mapping_valve import lumped_valve
+from loopslack.calc.course.properties import residue_of
 from loopslack.calc.course.refusal import not_applicable
 from loopslack.calc.equilibrium import Charge
 from loopslack.calc.model import CollectorGroup, Loop
@@ -61,7 +64,7 @@ def mapped(
     ``course-not-applicable``.
     """
     notes: list[Assumption] = []
-    _check_fluid(loop)
+    _check_fluid(loop, notes)
     groups = _one_height(loop, notes)
     area = loop.aperture
     gain = sum(group.aperture * group.peak_efficiency for group in groups) / area
@@ -96,7 +99,11 @@ def mapped(
     return Mapped(lumped, (*STANDING, *notes))
 
 
-def _check_fluid(loop: Loop) -> None:
+def _check_fluid(loop: Loop, notes: list[Assumption]) -> None:
+    if residue_of(loop.fluid) is not None:
+        notes.append(RESIDUE_STRENGTH)
+    elif loop.fluid.kind != "water":
+        notes.append(RESIDUE_AS_FILLED)
     try:
         loop.fluid.heat_capacity(363.15)
     except CalculationError as error:

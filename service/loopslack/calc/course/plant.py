@@ -72,14 +72,15 @@ class Plant:
         return stop + (liquid - highest) / volume * _STOP_STIFFNESS
 
     def vessel_liquid(self, pressure: float, temperature: float) -> float:
-        """Liquid (m3) the vessel holds at a pressure (Pa), 0 below the precharge."""
-        precharge = self._precharge(temperature)
-        return self.loop.vessel.nominal_volume * (1.0 - precharge / pressure) if pressure > precharge else 0.0
+        """Liquid (m3) in the vessel at a pressure (Pa): the inverse, a little below 0 for an empty vessel."""
+        precharge, volume = self._precharge(temperature), self.loop.vessel.nominal_volume
+        if pressure <= precharge:
+            return _EMPTY_SHARE * volume * log(pressure / precharge)
+        return volume * (1.0 - precharge / pressure)
 
     def least_vessel_liquid(self, temperature: float) -> float:
         """Liquid (m3, negative) at which the continued pressure law has reached its floor."""
-        precharge = self._precharge(temperature)
-        return -_EMPTY_SHARE * self.loop.vessel.nominal_volume * log(precharge / _LEAST_PRESSURE)
+        return self.vessel_liquid(_LEAST_PRESSURE, temperature)
 
     def column(self, temperatures: list[float], place: float = 0.0) -> float:
         """Pressure (Pa) of the liquid between a front and the vessel, of the pipe's mean density."""

@@ -59,7 +59,7 @@ class FluidTables:
 
     def __init__(self, fluid: Fluid) -> None:
         self.strength = fluid.mass_fraction
-        self.residue = _residue_of(fluid)
+        self.residue = residue_of(fluid)
         self.heat_capacity = fluid.heat_capacity(363.15)
         self.coldest, self.hottest = fluid.lowest, min(fluid.highest, fluid.boiling_highest)
         self._density = _density_grid(fluid)
@@ -157,7 +157,8 @@ def tables_of(fluid: Fluid) -> FluidTables:
     return found
 
 
-def _residue_of(fluid: Fluid) -> Residue | None:
+def residue_of(fluid: Fluid) -> Residue | None:
+    """Return what is known of the fluid's boiling at other strengths; None for water and for a mere table."""
     known = fluid.like if isinstance(fluid, OwnFluid) else fluid
     if not isinstance(known, Glycol):
         return None

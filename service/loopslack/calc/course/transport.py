@@ -133,7 +133,7 @@ def _held(plant: Plant, state: State, taken: Step, masses: list[float]) -> tuple
         heat = (state.masses[j] * cp + capacity * stayed) * state.temperatures[j]
         held.append(heat + capacity * (wet - stayed) * state.wall + loss * grid.warmth[j])
     for j, tank in enumerate(plant.tanks, grid.cells):
-        inert.append(max(0.0, masses[j]) * cp + tank.capacity + dt * tank.conductance)
-        heat = (max(0.0, state.masses[j]) * cp + tank.capacity) * state.temperatures[j]
+        inert.append(masses[j] * cp + tank.capacity + dt * tank.conductance)
+        heat = (state.masses[j] * cp + tank.capacity) * state.temperatures[j]
         held.append(heat + dt * tank.conductance * tank.ambient)
     return inert, held
