@@ -1,6 +1,6 @@
 """A vessel whose precharge cannot be changed: the nearest precharge with which it would do."""
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 
 from loopslack.calc.fit import Fit
 from loopslack.calc.precharge import DELIVERY_TEMPERATURE, SEA_LEVEL
@@ -9,11 +9,16 @@ from loopslack.calc.sizing.mass_balance import slack_between
 from loopslack.calc.window import Bounds, Gas
 from loopslack.kernel.roots import bracketed
 
+_HALVINGS = 20
 
-def nearest_precharge(adjusted: Fit, scenarios: Sequence[Scenario], delivered: float) -> float:
+
+def nearest_precharge(
+    adjusted: Fit, scenarios: Sequence[Scenario], delivered: float, holds: Callable[[float], bool]
+) -> float:
     """Delivered precharge (gauge Pa at sea level) nearest to ``delivered`` that leaves a wide enough window.
 
-    ``adjusted`` is the same vessel with a precharge that does.
+    ``adjusted`` is the same vessel with a precharge that does; ``holds`` says whether the vessel would do with a
+    delivered precharge, its cooling vessel found anew.
     """
     gas = adjusted.gas
 
@@ -31,4 +36,14 @@ def nearest_precharge(adjusted: Fit, scenarios: Sequence[Scenario], delivered: f
     ends = (at_works, at_delivered) if low == works else (at_delivered, at_works)
     found = bracketed(slack, low, high, *ends, 1e-6).at
     # A pascal towards the one that works, so that the answer itself works.
-    return found + (1.0 if works > found else -1.0)
+    found += 1.0 if works > found else -1.0
+    if holds(found):
+        return found
+    # Another precharge may ask for another cooling vessel, which narrows the window: halve the way to what works.
+    for _ in range(_HALVINGS):
+        middle = 0.5 * (found + works)
+        if holds(middle):
+            works = middle
+        else:
+            found = middle
+    return works

@@ -8,41 +8,24 @@ from collections.abc import Sequence
 from math import inf
 from typing import Literal, NamedTuple
 
+from msgspec.structs import replace
+
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.checks import pressure_to_withstand
 from loopslack.calc.cooling import Charged, hottest
 from loopslack.calc.delivered import nearest_precharge
 from loopslack.calc.fit import Fit, acceptance_needed, cooling_for, fit
 from loopslack.calc.model import Vessel
+from loopslack.calc.reasons import Reason, shortage
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.sizing.volumes import CoolingMode, Sized
 from loopslack.kernel import kinds
-from loopslack.kernel.kinds import Kind
 
-ReasonCode = Literal[
-    "nominal-volume",
-    "nominal-volume-beyond-interval",
-    "acceptance-volume",
-    "rated-pressure",
-    "membrane-temperature",
-    "precharge-as-delivered",
-    "unspent-power",
-    "no-window",
-]
 RankedBy = Literal["price", "volume"]
 
-
-class Reason(NamedTuple):
-    """Why a vessel is refused: the number it has, the number it needs, and by how much it misses it.
-
-    Applied, ``short`` makes this check hold. None where no number of this vessel would.
-    """
-
-    code: ReasonCode
-    kind: Kind
-    value: float | None
-    limit: float | None
-    short: float | None
+# Delivered precharges solved with a cooling vessel found anew; further ones keep that of the adjusted vessel, so
+# that a list of thousands of fixed precharges stays affordable.
+_MOST_SOLVED = 100
 
 
 class Refusal(NamedTuple):
@@ -79,6 +62,7 @@ class Selector:
         self.membrane_limit = membrane_limit
         self._fits: dict[tuple[object, ...], Fit | None] = {}
         self._smallest_acceptance: float | None = None
+        self._solved = 0
         self._needed = pressure_to_withstand(analysis, analysis.loop.relief, 0.0)
 
     def choose(self, candidates: Sequence[Vessel], most: int) -> Selection:
@@ -110,7 +94,9 @@ class Selector:
         """
         found = []
         if vessel.rated_pressure is not None and vessel.rated_pressure < self._needed:
-            found.append(_reason("rated-pressure", kinds.GAUGE_PRESSURE, vessel.rated_pressure, self._needed))
+            found.append(
+                shortage("rated-pressure", kinds.GAUGE_PRESSURE, vessel.rated_pressure, self._needed)
+            )
         sized = self.sized
         if sized is None:
             found.append(self._hopeless())
@@ -158,7 +144,7 @@ class Selector:
         unbounded = fit(
             self.analysis,
             self.scenarios,
-            _with(vessel, acceptance=None),
+            replace(vessel, acceptance_volume=None),
             count,
             self.cooling,
             self._limit(vessel),
@@ -172,13 +158,13 @@ class Selector:
             adjusted = fit(
                 self.analysis,
                 self.scenarios,
-                _with(vessel, acceptance=vessel.acceptance_volume, adjustable=True),
+                replace(vessel, precharge_adjustable=True),
                 count,
                 self.cooling,
                 self.membrane_limit,
             )
             if adjusted is not None and adjusted.window.wide_enough:
-                found.append(self._delivered(vessel.delivered_precharge, adjusted))
+                found.append(self._delivered(vessel, vessel.delivered_precharge, adjusted))
                 return
         if fitted.window.lower_bound.code == "membrane-temperature":
             limit = self._limit(vessel)
@@ -196,17 +182,28 @@ class Selector:
             )
         )
 
-    def _delivered(self, delivered: float, adjusted: Fit) -> Reason:
+    def _delivered(self, vessel: Vessel, delivered: float, adjusted: Fit) -> Reason:
         """How far the delivered precharge is from the nearest one that leaves a window."""
-        needed = nearest_precharge(adjusted, self.scenarios, delivered)
-        return _reason("precharge-as-delivered", kinds.GAUGE_PRESSURE, delivered, needed)
+        self._solved += 1
+        exact = self._solved <= _MOST_SOLVED
+
+        def holds(precharge: float) -> bool:
+            other = replace(vessel, delivered_precharge=precharge)
+            found = fit(
+                self.analysis, self.scenarios, other, adjusted.pieces, self.cooling, self.membrane_limit
+            )
+            return found is not None and found.window.wide_enough
+
+        needed = nearest_precharge(adjusted, self.scenarios, delivered, holds if exact else lambda _: True)
+        return shortage("precharge-as-delivered", kinds.GAUGE_PRESSURE, delivered, needed)
 
     def _membrane_needed(self, fitted: Fit) -> float | None:
         """Membrane limit (K) with which a vessel's window would be just wide enough."""
         plain = fit(fitted.analysis, self.scenarios, fitted.vessel, fitted.pieces, "size", inf, content=0.0)
         if plain is None or not plain.window.wide_enough:
             return None
-        lowest = plain.window.upper - self.analysis.loop.criteria.window_width
+        # Ten pascals lower, so that a window found with this limit is wide enough in spite of rounding.
+        lowest = plain.window.upper - self.analysis.loop.criteria.window_width - 10.0
         charged = Charged(plain.analysis, plain.gas, plain.mass_at(lowest))
         return hottest(charged, self.scenarios)[0] + 1e-6
 
@@ -217,7 +214,7 @@ class Selector:
         needed = self._least_acceptance(sized) / count
         if vessel.acceptance_volume < needed:
             found.append(
-                _reason("acceptance-volume", kinds.ACCEPTANCE_VOLUME, vessel.acceptance_volume, needed)
+                shortage("acceptance-volume", kinds.ACCEPTANCE_VOLUME, vessel.acceptance_volume, needed)
             )
 
     def _least_acceptance(self, sized: Sized) -> float:
@@ -264,24 +261,6 @@ class Selector:
             )
         found = self._fits[key]
         return found and found._replace(vessel=vessel, pieces=count)
-
-
-def _with(vessel: Vessel, *, acceptance: float | None, adjustable: bool | None = None) -> Vessel:
-    return Vessel(
-        id=vessel.id,
-        nominal_volume=vessel.nominal_volume,
-        rated_pressure=vessel.rated_pressure,
-        acceptance_volume=acceptance,
-        delivered_precharge=vessel.delivered_precharge,
-        precharge_adjustable=vessel.precharge_adjustable if adjustable is None else adjustable,
-        membrane_limit=vessel.membrane_limit,
-        price=vessel.price,
-        currency=vessel.currency,
-    )
-
-
-def _reason(code: ReasonCode, kind: Kind, value: float, limit: float) -> Reason:
-    return Reason(code, kind, value, limit, limit - value)
 
 
 def _price(offer: tuple[Vessel, int]) -> float:

@@ -10,6 +10,7 @@ from math import inf
 from typing import NamedTuple
 
 from loopslack.calc.analysis import Analysis
+from loopslack.calc.equilibrium import ROUNDING
 from loopslack.calc.scenarios import Scenario
 from loopslack.kernel.kinds import NominalVolume, Volume
 from loopslack.physics.vessel import reserve_en_12828
@@ -168,8 +169,9 @@ class Bounds:
             mass = density(temperature) * (held - analysis.allowance) - expelled
             return mass, mix.temperature(mass / fill if mass > 0 else 0.0, held)
 
-        if nominal * (1 - squeeze * mix.hot) <= 0:
-            return -inf
+        if squeeze * mix.hot >= 1:
+            # Hot gas alone fills the vessel at this pressure: a shortage that grows with the vessel.
+            return -expelled - self.room_density * nominal * squeeze * mix.hot
         first = self._started.get(start, mix.room)
         second = mass_at(first)[1]
         error = second - first
@@ -221,8 +223,8 @@ class Bounds:
         enough = (
             upper.mass > lower.mass
             and high < inf
-            and high - low >= criteria.window_width
-            and high - base >= criteria.window_step
+            and high - low >= criteria.window_width - ROUNDING * high
+            and high - base >= criteria.window_step - ROUNDING * high
         )
         return Window(temperature, low, high, recommended, enough, lower, upper)
 

@@ -9,7 +9,8 @@ from typing import Annotated, Literal
 from loopslack.calc.equilibrium import Regime
 from loopslack.calc.judgement import DoubtVerdict
 from loopslack.calc.order_list import Category
-from loopslack.calc.selection import RankedBy, ReasonCode
+from loopslack.calc.reasons import ReasonCode
+from loopslack.calc.selection import RankedBy
 from loopslack.calc.states import StateId
 from loopslack.contract import quantity as q
 from loopslack.contract.answers_common import AnswerPart, AnyQuantity, CheckVerdict, Verdict

@@ -7,7 +7,7 @@ from loopslack.calc.fit import Fit
 from loopslack.calc.judgement import Judgement
 from loopslack.calc.order_list import OrderList as Ordered
 from loopslack.calc.order_list import order_list
-from loopslack.calc.selection import Reason
+from loopslack.calc.reasons import Reason
 from loopslack.calc.selection import Selection as Selected
 from loopslack.calc.settings_card import settings_card
 from loopslack.calc.sizing.volumes import Sized
