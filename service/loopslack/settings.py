@@ -70,6 +70,9 @@ class Settings(Struct, frozen=True, kw_only=True, forbid_unknown_fields=True):
         256_000
     )
     batch_designs: Annotated[int, Meta(ge=1, le=100_000, description="Most designs in one batch.")] = 1_000
+    stream_designs: Annotated[int, Meta(ge=1, le=10_000_000, description="Most designs in one stream.")] = (
+        100_000
+    )
     stock_items: Annotated[
         int, Meta(ge=1, le=100_000, description="Most vessels in a caller's stock list.")
     ] = 10_000
@@ -85,7 +88,7 @@ class Settings(Struct, frozen=True, kw_only=True, forbid_unknown_fields=True):
         Meta(
             ge=0.1,
             le=600,
-            description="Time a costly question (course, sheet, batch) may take, waiting included.",
+            description="Time a costly question (course, sheet) may take, waiting included.",
         ),
     ] = 20.0
     costly_waiting: Annotated[
@@ -104,6 +107,14 @@ class Settings(Struct, frozen=True, kw_only=True, forbid_unknown_fields=True):
             description="Batches and streams that may wait in a worker beside the one that runs.",
         ),
     ] = 2
+    batch_seconds: Annotated[
+        float,
+        Meta(
+            ge=0.1,
+            le=86_400,
+            description="Time a batch or stream may take, waiting included; the designs left then are refused.",
+        ),
+    ] = 300.0
     shed_lag_seconds: Annotated[
         float,
         Meta(
