@@ -1,0 +1,145 @@
+"""Levers of the collectors and of the sun they stand in, all groups of one type moved together."""
+
+from collections.abc import Callable
+from typing import Literal
+
+from msgspec.structs import replace
+
+from loopslack.calc.levers.lever import Lever, lever, ranged
+from loopslack.calc.model import CollectorGroup, Loop
+from loopslack.kernel import kinds
+from loopslack.kernel.kinds import (
+    HeatLossCoefficient,
+    Irradiance,
+    Kind,
+    QuadraticHeatLossCoefficient,
+    Ratio,
+    Temperature,
+)
+from loopslack.library.defaults import default
+from loopslack.physics.collector import stagnation_temperature, stagnation_temperature_at_other_sun
+
+Family = Literal["flat-plate", "evacuated-tube-direct", "evacuated-tube-heat-pipe"]
+
+_FLAT_LOSS = 2.5  # W/m2K, between the ranges of flat plates and of evacuated tubes
+_DIRECT_CONTENT = 1e-3  # m, between the ranges of heat pipes and of direct-flow tubes
+_COEFFICIENTS = (
+    ("optical-efficiency", "peak_efficiency", kinds.RATIO),
+    ("linear-loss", "linear_loss", kinds.HEAT_LOSS_COEFFICIENT),
+    ("quadratic-loss", "quadratic_loss", kinds.QUADRATIC_HEAT_LOSS_COEFFICIENT),
+)
+
+Change = Callable[[Loop, CollectorGroup, float], CollectorGroup]
+
+
+def collector_levers(loop: Loop) -> list[Lever]:
+    """Sun and air, then content, coefficients and steam power by type of collector."""
+    found = [
+        _sun(loop, "design-irradiance", kinds.IRRADIANCE, "irradiance"),
+        _sun(loop, "design-ambient", kinds.TEMPERATURE, "ambient"),
+    ]
+    for family in sorted({family_of(group) for group in loop.groups}):
+        groups = [group for group in loop.groups if family_of(group) == family]
+        found.append(
+            lever(
+                f"collector-content-{family}",
+                kinds.LENGTH,
+                _mean(groups, lambda group: group.content / group.aperture),
+                _mover(family, lambda _, group, number: replace(group, content=number * group.aperture)),
+            )
+        )
+        found.extend(_coefficient(groups, family, *names) for names in _COEFFICIENTS)
+        found.append(_steam_power(groups, family))
+    return found
+
+
+def family_of(group: CollectorGroup) -> Family:
+    """The type of collector whose ranges suit a group, told from its losses and its content."""
+    if group.linear_loss >= _FLAT_LOSS:
+        return "flat-plate"
+    direct = group.content / group.aperture >= _DIRECT_CONTENT
+    return "evacuated-tube-direct" if direct else "evacuated-tube-heat-pipe"
+
+
+def _mean(groups: list[CollectorGroup], number: Callable[[CollectorGroup], float]) -> float:
+    return sum(number(g) * g.aperture for g in groups) / sum(g.aperture for g in groups)
+
+
+def _mover(family: Family, change: Change) -> Callable[[Loop, float], Loop]:
+    def moved(loop: Loop, number: float) -> Loop:
+        return replace(
+            loop,
+            groups=tuple(
+                change(loop, group, number) if family_of(group) == family else group for group in loop.groups
+            ),
+        )
+
+    return moved
+
+
+def _coefficient(groups: list[CollectorGroup], family: Family, word: str, name: str, kind: Kind) -> Lever:
+    def change(loop: Loop, group: CollectorGroup, number: float) -> CollectorGroup:
+        return _stagnating(loop, replace(group, **{name: number}))
+
+    value = _mean(groups, lambda group: float(getattr(group, name)))
+    return lever(f"{word}-{family}", kind, value, _mover(family, change))
+
+
+def _stagnating(loop: Loop, group: CollectorGroup) -> CollectorGroup:
+    """A group whose coefficients changed, with the stagnation temperature they give; a measured one is a floor."""
+    computed = stagnation_temperature(
+        Ratio(group.peak_efficiency),
+        Irradiance(loop.sun.irradiance),
+        HeatLossCoefficient(group.linear_loss),
+        QuadraticHeatLossCoefficient(group.quadratic_loss),
+        Temperature(loop.sun.ambient),
+    )
+    if group.measured_stagnation:
+        return replace(group, stagnation_temperature=max(group.stagnation_temperature, computed))
+    return replace(group, stagnation_temperature=computed)
+
+
+def _steam_power(groups: list[CollectorGroup], family: Family) -> Lever:
+    """Steam power over the range of the groups' emptying classes, or over the doubt about a measured one."""
+    measured = default("doubt-measured-steam-power")
+    low, high = float("inf"), 0.0
+    for group in groups:
+        if group.emptying == "measured":
+            within = (group.steam_power * measured.low, group.steam_power * measured.high)
+        else:
+            row = default(f"steam-power-{family}-{group.emptying}")
+            within = (row.low, row.high)
+        low, high = min(low, within[0]), max(high, within[1])
+
+    def change(_: Loop, group: CollectorGroup, number: float) -> CollectorGroup:
+        # The doubt stays what it was, but is never better than the number itself.
+        worse = group.worse_steam_power
+        return replace(
+            group, steam_power=number, worse_steam_power=None if worse is None else max(worse, number)
+        )
+
+    value = _mean(groups, lambda group: group.steam_power)
+    return ranged(f"steam-power-{family}", kinds.IRRADIANCE, value, (low, high), _mover(family, change))
+
+
+def _sun(loop: Loop, id: str, kind: Kind, name: str) -> Lever:
+    def moved(loop: Loop, number: float) -> Loop:
+        sun = replace(loop.sun, **{name: number})
+        groups = tuple(
+            replace(
+                group,
+                stagnation_temperature=stagnation_temperature_at_other_sun(
+                    Temperature(group.stagnation_temperature),
+                    Irradiance(loop.sun.irradiance),
+                    Temperature(loop.sun.ambient),
+                    HeatLossCoefficient(group.linear_loss),
+                    QuadraticHeatLossCoefficient(group.quadratic_loss),
+                    Irradiance(sun.irradiance),
+                    Temperature(sun.ambient),
+                ),
+            )
+            for group in loop.groups
+        )
+        return replace(loop, sun=sun, groups=groups)
+
+    return lever(id, kind, getattr(loop.sun, name), moved)
