@@ -98,6 +98,8 @@ class Balance:
         self.filled_mass = fluid.density(loop.temperatures.fill) * loop.content
         self.still_mass = hot * still
         self.station_loss = loop.station.steam_loss
+        # Steam temperature (K) of the last equilibrium: a search asks for similar ones, and starts there.
+        self.near: float | None = None
 
     def extent(self, pressure: float, spaces: tuple[Steam, ...]) -> Extent:
         """Put the spaces together at a vessel pressure (Pa)."""

@@ -8,6 +8,7 @@ from collections.abc import Callable, Sequence
 from typing import NamedTuple
 
 from loopslack.calc.analysis import Analysis
+from loopslack.calc.equilibrium import Equilibrium
 from loopslack.calc.judge import stagnation
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.window import Bound, Gas
@@ -30,11 +31,16 @@ def hottest(charged: Charged, scenarios: Sequence[Scenario]) -> tuple[float, Sce
 
     The least filling is the worst: less cool liquid, less pressure, more steam.
     """
+    found, worst = _hottest(charged, scenarios)
+    return found.mixed_temperature, worst
+
+
+def _hottest(charged: Charged, scenarios: Sequence[Scenario]) -> tuple[Equilibrium, Scenario]:
     found = [
-        (stagnation(charged.analysis, scenario, charged.gas, charged.least).mixed_temperature, scenario)
+        (stagnation(charged.analysis, scenario, charged.gas, charged.least), scenario)
         for scenario in scenarios
     ]
-    return max(found, key=lambda pair: pair[0])
+    return max(found, key=lambda pair: pair[0].mixed_temperature)
 
 
 def smallest_content(
@@ -50,33 +56,41 @@ def smallest_content(
         charged = charge(content)
         if charged is None:
             return None
-        temperature, worst = hottest(charged, scenarios)
-        if temperature <= limit:
+        found, worst = _hottest(charged, scenarios)
+        excess = found.mixed_temperature - limit
+        if excess <= 0:
             return content
-        if limit <= charged.analysis.mix.room:
+        mix = charged.analysis.mix
+        if limit <= mix.room:
             return None
-        content = _content_for(charge, worst, limit, content, _first_guess(charged, temperature, limit))
+        # Cool liquid in place of as much hot: right but for what the content itself changes in the balance.
+        step = max(1e-6, 1.1 * found.liquid * excess / max(mix.hot - mix.room, 1.0))
+        content = _content_for(charge, worst, limit, (content, excess), step)
     return None
 
 
 def _content_for(
-    charge: Callable[[float], Charged | None], scenario: Scenario, limit: float, low: float, step: float
+    charge: Callable[[float], Charged | None],
+    scenario: Scenario,
+    limit: float,
+    start: tuple[float, float],
+    step: float,
 ) -> float | None:
-    """Content (m3) above ``low`` with which one scenario just keeps the limit."""
+    """Content (m3) with which one scenario just keeps the limit; ``start`` is a content and its excess (K)."""
 
     def excess(content: float) -> float:
         charged = charge(content)
         if charged is None:
             raise _NoVessel
-        return hottest(charged, (scenario,))[0] - limit
+        return _hottest(charged, (scenario,))[0].mixed_temperature - limit
 
+    low, at_low = start
+    high = low + step
     try:
-        at_low = excess(low)
-        high = low + step
         at_high = excess(high)
         while at_high > 0:
             low, at_low = high, at_high
-            high *= 1.5
+            high += 0.5 * step + 0.5 * high
             if high > _MOST:
                 return None
             at_high = excess(high)
@@ -112,13 +126,6 @@ def membrane_bound(
         if worst is scenario and temperature > limit:
             lower = lower._replace(mass=lower.mass + _TOLERANCE * upper.mass)
     return lower
-
-
-def _first_guess(charged: Charged, temperature: float, limit: float) -> float:
-    """Cool content that mixes the vessel's liquid down to the limit, were nothing else to change."""
-    room, hot = charged.analysis.mix.room, charged.analysis.mix.hot
-    held = charged.gas.nominal
-    return max(1e-5, held * (temperature - limit) / max(hot - room, 1.0))
 
 
 class _NoVessel(Exception):

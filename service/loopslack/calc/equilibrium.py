@@ -5,15 +5,17 @@ closes the circle. On a falling path it is unique; the valve is looked at first,
 pressure it would not allow.
 """
 
+from collections.abc import Callable
 from typing import Literal, NamedTuple
 
 from loopslack.calc.balance import Balance, Extent, Mixing
-from loopslack.calc.steam import Steam, SteamSpace
 from loopslack.kernel.roots import bracketed, first_crossing
 
 Regime = Literal["no-boiling", "pinned", "steam", "valve-opens", "membrane-full"]
 
-_RELATIVE = 1e-12
+_RELATIVE = 2e-11  # of a steam temperature, 1e-8 K: a hundredth of what rounding may do to a verdict
+
+_NEAR = 1.0  # K around the last steam temperature in which the next one is looked for first
 
 ROUNDING = 1e-9  # share within which a state at a limit counts as at the limit: the solvers' own rounding
 
@@ -93,14 +95,22 @@ class VesselLaw:
 
 
 def equilibrium(
-    balance: Balance, charge: Charge, mix: Mixing, *, gas_follows: bool, opening: float
+    balance: Balance,
+    charge: Charge,
+    mix: Mixing,
+    *,
+    gas_follows: bool,
+    opening: float,
+    limit: Extent | None = None,
 ) -> Equilibrium:
     """Solve a loop with a charged vessel, up to the vessel pressure ``opening`` (Pa) at which the valve opens.
 
-    Raises ``OutOfRange`` where a fluid property would be needed outside its range.
+    ``limit`` is the extent at that pressure, if it is known already. Raises ``OutOfRange`` where a fluid property
+    would be needed outside its range.
     """
     law = VesselLaw(balance, charge, mix, gas_follows=gas_follows)
-    limit = balance.at_pressure(opening)
+    if limit is None:
+        limit = balance.at_pressure(opening)
     missing = law.excess(opening, limit.expelled)
     if missing < -ROUNDING * charge.nominal:
         return _state("valve-opens", opening, limit, law)
@@ -122,6 +132,16 @@ class _OneSpace:
         self.low = self.space.coldest
         self.jumps = [t for t in self.space.stagnations if self.low < t <= self.high]
         self.falling = self.space.path.falling
+        self._seen: dict[tuple[float, bool], tuple[float, Extent]] = {}
+
+    @property
+    def near(self) -> float | None:
+        """Where the last root was."""
+        return self.balance.near
+
+    @near.setter
+    def near(self, at: float) -> None:
+        self.balance.near = at
 
     def start(self, lowest: float) -> None:
         """Raise the lower end to the steam temperature at the vessel's lowest pressure (Pa)."""
@@ -130,8 +150,11 @@ class _OneSpace:
 
     def at(self, coordinate: float, *, below: bool = True) -> tuple[float, Extent]:
         """Vessel pressure and extent at a steam temperature."""
-        pressure, steam = self.space.at(coordinate, below=below)
-        return pressure, self.balance.extent(pressure, (steam,))
+        found = self._seen.get((coordinate, below))
+        if found is None:
+            pressure, steam = self.space.at(coordinate, below=below)
+            found = self._seen[coordinate, below] = pressure, self.balance.extent(pressure, (steam,))
+        return found
 
 
 class _SeveralSpaces:
@@ -141,16 +164,15 @@ class _SeveralSpaces:
         self.balance = balance
         self.high = opening
         self.low = 0.0
+        self.near: float | None = None
+        self._jumps_of = [
+            [(space.pressure(t), t) for t in space.stagnations if t <= space.fluid.boiling_highest]
+            for space in balance.spaces
+        ]
         # Each space takes its largest extent at a pressure, which shrinks as pressure rises: one root, rising
         # pipes or not.
         self.falling = True
-        self.jumps = sorted(
-            pressure
-            for space in balance.spaces
-            for stagnation in space.stagnations
-            if stagnation <= space.fluid.boiling_highest
-            and (pressure := space.pressure(stagnation)) <= opening
-        )
+        self.jumps = sorted(p for own in self._jumps_of for p, _ in own if p <= opening)
 
     def start(self, lowest: float) -> None:
         """Raise the lower end to the vessel's lowest pressure (Pa)."""
@@ -158,17 +180,18 @@ class _SeveralSpaces:
         self.jumps = [p for p in self.jumps if p >= self.low]
 
     def at(self, coordinate: float, *, below: bool = True) -> tuple[float, Extent]:
-        """Vessel pressure and extent at a vessel pressure."""
-        spaces = tuple(_at_jump(space, coordinate, below=below) for space in self.balance.spaces)
-        return coordinate, self.balance.extent(coordinate, spaces)
+        """Vessel pressure and extent at a vessel pressure.
 
-
-def _at_jump(space: SteamSpace, pressure: float, *, below: bool) -> Steam:
-    """Steam of a space, with the side of a jump decided by pressure rather than by a rounded temperature."""
-    for stagnation in space.stagnations:
-        if stagnation <= space.fluid.boiling_highest and pressure == space.pressure(stagnation):
-            return space.at(stagnation, below=below)[1]
-    return space.at_pressure(pressure, below=below)
+        The side of a jump is decided by pressure, not by a temperature that rounding has moved.
+        """
+        spaces = []
+        for space, jumps in zip(self.balance.spaces, self._jumps_of, strict=True):
+            stagnation = next((t for p, t in jumps if p == coordinate), None)
+            if stagnation is None:
+                spaces.append(space.at_pressure(coordinate, below=below))
+            else:
+                spaces.append(space.at(stagnation, below=below)[1])
+        return coordinate, self.balance.extent(coordinate, tuple(spaces))
 
 
 def _solve(balance: Balance, law: VesselLaw, curve: _OneSpace | _SeveralSpaces, limit: Extent) -> Equilibrium:
@@ -180,6 +203,9 @@ def _solve(balance: Balance, law: VesselLaw, curve: _OneSpace | _SeveralSpaces, 
         pressure, extent = curve.at(coordinate, below=below)
         return law.excess(pressure, extent.expelled)
 
+    around = _around(curve, excess)
+    if around is not None:
+        return _between(curve, law, *around)
     low = curve.low
     at_low = excess(low)
     if at_low >= 0:
@@ -224,8 +250,27 @@ def _between(
         found = first_crossing(lambda x: at_low if x == low else excess(x), stops, tolerance)
     if found is None:
         found = bracketed(excess, low, high, at_low, at_high, tolerance)
+    curve.near = found.at
     pressure, extent = curve.at(found.at, below=False)
     return _state("steam", pressure, extent, law)
+
+
+def _around(
+    curve: _OneSpace | _SeveralSpaces, excess: Callable[[float], float]
+) -> tuple[float, float, float, float] | None:
+    """Ends and values of a narrow bracket around where the last root was; None unless it is there again."""
+    near = curve.near
+    if near is None or not curve.falling:
+        return None
+    least, most = near - _NEAR, near + _NEAR
+    if least <= curve.low or most >= curve.high or any(least <= jump <= most for jump in curve.jumps):
+        return None
+    here = excess(near)
+    if here < 0:
+        beyond = excess(most)
+        return (near, most, here, beyond) if beyond >= 0 else None
+    beyond = excess(least)
+    return (least, near, beyond, here) if beyond < 0 else None
 
 
 def _pinned(

@@ -45,12 +45,14 @@ def charge_of(analysis: Analysis, gas: Gas, mass: float) -> Charge:
 
 def stagnation(analysis: Analysis, scenario: Scenario, gas: Gas, mass: float) -> Equilibrium:
     """The stagnation equilibrium of a filled vessel under one scenario, with the relief valve in place."""
+    case = analysis.case(scenario)
     return equilibrium(
-        analysis.case(scenario).balance,
+        case.balance,
         charge_of(analysis, gas, mass),
         analysis.mix,
         gas_follows=scenario.gas_follows,
         opening=analysis.final_pressure,
+        limit=case.final,
     )
 
 

@@ -17,6 +17,8 @@ from loopslack.calc.window import Bound, Bounds, Gas, Window
 from loopslack.kernel.roots import bracketed
 
 _LADDER = 1.2  # step of the search for the bracket; the root itself is solved, not stepped
+_NEAR = 0.01  # share around an expected volume in which it is looked for first
+_VOLUME = 1e-11  # relative tolerance of a volume
 _RUNGS = 55  # 1.2^55 is 22,000 times the smallest vessel that could work at all
 
 
@@ -35,11 +37,12 @@ def feasible(
     membrane_limit: float | None = None,
     *,
     upper_end: bool = True,
+    near: float | None = None,
 ) -> Interval | None:
     """The interval of nominal volumes with a wide enough window under every scenario; None if there is none.
 
     With a ``membrane_limit`` (K) the filling must also keep the membrane at or below it. Without ``upper_end`` the
-    largest volume is not looked for and left infinite.
+    largest volume is not looked for and left infinite; ``near`` (m3) is where the smallest is expected.
     """
     if any(analysis.case(scenario).at_station for scenario in scenarios):
         return None
@@ -47,21 +50,26 @@ def feasible(
     low = slack.least()
     if low is None:
         return None
-    volume, value = low, slack.at(low)
+    volume, value, ladder = low, slack.at(low), _LADDER
+    if near is not None and value < 0 and low < near * (1 - _NEAR):
+        expected = slack.at(near * (1 - _NEAR))
+        if expected < 0:
+            volume, value, ladder = near * (1 - _NEAR), expected, 1 + 2 * _NEAR
     rungs = 0
     while value < 0:
         previous, before = volume, value
-        volume *= _LADDER
+        volume *= ladder
+        ladder = _LADDER
         rungs += 1
         if rungs > _RUNGS:
             return None
         value = slack.at(volume)
     smallest = volume
     if rungs:
-        smallest = bracketed(slack.at, previous, volume, before, value, 1e-13 * volume).at
+        smallest = bracketed(slack.at, previous, volume, before, value, _VOLUME * volume).at
         # The root is met from above, so that the smallest vessel reported has its window.
         while slack.at(smallest) < 0:
-            smallest *= 1 + 1e-12
+            smallest *= 1 + 2 * _VOLUME
     largest = slack.upper_end(volume) if upper_end else inf
     return Interval(smallest, largest, slack.window(smallest), slack.precharge(smallest))
 

@@ -48,11 +48,15 @@ def size(
         interval = feasible(analysis, scenarios, membrane_limit)
         return interval and Sized(interval, analysis.loop.cooling_content, analysis, floor)
 
+    near: float | None = None
+
     def charge(content: float) -> Charged | None:
+        nonlocal near
         cooled = analysis.with_cooling(content) if content else analysis
-        interval = feasible(cooled, scenarios, upper_end=False)
+        interval = feasible(cooled, scenarios, upper_end=False, near=near)
         if interval is None:
             return None
+        near = interval.smallest
         volume = max(interval.smallest, floor)
         gas = Gas(volume, precharge(cooled, volume), precharge_temperature(cooled))
         return Charged(cooled, gas, interval.window.lower_bound.mass)
@@ -61,7 +65,7 @@ def size(
     if content is None:
         return None
     cooled = analysis.with_cooling(content) if content else analysis
-    interval = feasible(cooled, scenarios)
+    interval = feasible(cooled, scenarios, near=near)
     return interval and Sized(interval, content, cooled, floor)
 
 
