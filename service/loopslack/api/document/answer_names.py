@@ -6,12 +6,8 @@ A value that `loopslack.contract` has and this table has not is refused when the
 from __future__ import annotations
 
 from loopslack.api.document.vocabulary import NamedUnion, NamedValues, named
-from loopslack.calc import equilibrium, judgement, order_list, selection, states
-from loopslack.contract import answers_common as common
 from loopslack.contract import answers_loop as loop
-from loopslack.contract import answers_reference as reference
 from loopslack.contract import problems
-from loopslack.kernel import citations
 
 SCHEMA_NAMES: dict[type, str] = {
     loop.GaugeReading: "ExpectedReading",
@@ -33,7 +29,6 @@ _SCENARIOS = {
 ANSWER_LISTS: tuple[NamedValues, ...] = (
     named(
         "Verdict",
-        common.Verdict,
         "Whether a design holds: the worst of all core checks, under the doubts asked for.",
         {
             "holds": "Every core check holds, under every doubt asked for",
@@ -44,7 +39,6 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "CheckVerdict",
-        common.CheckVerdict,
         "What came of one check.",
         {
             "holds": "The value is on the safe side of its limit",
@@ -54,7 +48,6 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "DoubtVerdict",
-        judgement.DoubtVerdict,
         "What came of one doubt.",
         {
             "holds": "The design survives it",
@@ -65,7 +58,6 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "Severity",
-        common.Severity,
         "How grave an advisory is.",
         {
             "stop": "The design must not be built like this",
@@ -75,7 +67,6 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "Basis",
-        common.Basis,
         "How firm the ground of a verdict is.",
         {
             "firm": "Everything it rests on was stated",
@@ -84,13 +75,11 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "CheckGroup",
-        common.CheckGroup,
         "What a check counts for.",
         {"core": "It decides the verdict", "confirm": "Somebody must confirm it"},
     ),
     named(
         "SourceSeen",
-        citations.HowSeen,
         "How far the authors of this service saw a source.",
         {
             "read": "Read at the place given",
@@ -104,7 +93,6 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "KnownFluid",
-        reference.FluidId,
         "Fluids whose properties the service knows.",
         {
             "water": "Water",
@@ -114,7 +102,6 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "PartKind",
-        loop.PartKind,
         "Parts of a loop that hold liquid.",
         {
             "collectors": "Collectors",
@@ -126,7 +113,6 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "LiquidStateName",
-        states.StateId,
         "States of the loop without steam.",
         {
             "fill": "When it is filled",
@@ -137,7 +123,6 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "ReadingState",
-        loop.ReadingState,
         "States in which the gauge is read.",
         {
             "fill": "When it is filled",
@@ -147,12 +132,9 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
             "stagnation-worst-doubt": "At rest in full sun, under the doubt with the highest pressure",
         },
     ),
-    named(
-        "ScenarioName", loop.ScenarioId, "The base case of stagnation and the doubts about it.", _SCENARIOS
-    ),
+    named("ScenarioName", "The base case of stagnation and the doubts about it.", _SCENARIOS),
     named(
         "DoubtName",
-        loop.DoubtId,
         "Doubts about the base case of stagnation.",
         {
             name: _SCENARIOS[name]
@@ -161,7 +143,6 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "StagnationRegime",
-        equilibrium.Regime,
         "What the loop does in stagnation.",
         {
             "no-boiling": "Nothing boils",
@@ -173,7 +154,6 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "RowOmission",
-        loop.OmittedReason,
         "Why a row of the fill table has no numbers.",
         {
             "fluid-frozen": "The fluid freezes at this temperature",
@@ -183,7 +163,6 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "VesselRefusal",
-        selection.ReasonCode,
         "Reasons why a vessel is refused.",
         {
             "nominal-volume": "Its nominal volume is too small",
@@ -198,13 +177,11 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "RankedBy",
-        selection.RankedBy,
         "What the candidates were ranked by.",
         {"price": "Price, lowest first", "volume": "Total nominal volume, smallest first"},
     ),
     named(
         "PressureEquipmentCategory",
-        order_list.Category,
         "Category of a vessel by directive 2014/68/EU.",
         {
             "sound-engineering-practice": "Article 4(3), sound engineering practice",

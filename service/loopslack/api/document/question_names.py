@@ -6,11 +6,8 @@ A value that `loopslack.contract` has and this table has not is refused when the
 from __future__ import annotations
 
 from loopslack.api.document.vocabulary import NamedUnion, NamedValues, named
-from loopslack.contract import questions_collectors as collectors
-from loopslack.contract import questions_criteria as criteria
 from loopslack.contract import questions_existing as existing
 from loopslack.contract import questions_fluid as fluid
-from loopslack.contract import questions_many as many
 from loopslack.contract import questions_pipes as pipes
 from loopslack.contract import questions_plant as plant
 from loopslack.contract import questions_vessels as vessels
@@ -18,7 +15,6 @@ from loopslack.contract import questions_vessels as vessels
 QUESTION_LISTS: tuple[NamedValues, ...] = (
     named(
         "UnitSystem",
-        criteria.UnitSystem,
         "Systems of units an answer can be given in.",
         {
             "metric": "Metre, litre, bar, degree Celsius, watt",
@@ -27,7 +23,6 @@ QUESTION_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "AreaBasis",
-        collectors.AreaBasis,
         "Which of a collector's areas is meant.",
         {
             "gross": "Outer area of the collector with its frame",
@@ -37,7 +32,6 @@ QUESTION_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "CollectorType",
-        collectors.CollectorType,
         "Builds of collectors.",
         {
             "flat-plate": "Flat plate behind glass",
@@ -47,7 +41,6 @@ QUESTION_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "EmptyingClass",
-        collectors.EmptyingClass,
         "How well a collector field lets its steam push the liquid out; the rest boils off.",
         {
             "good": "Both connections at the bottom, nothing can be trapped",
@@ -57,7 +50,6 @@ QUESTION_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "DoubtPolicy",
-        criteria.DoubtPolicy,
         "Which doubts about the inputs a design must survive to be said to hold.",
         {
             "single": "Each doubt by itself",
@@ -67,7 +59,6 @@ QUESTION_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "SizingRule",
-        criteria.RuleId,
         "Rules for the size of an expansion vessel. `GET /v1/rules` gives their sources.",
         {
             "ashrae-diaphragm": "Diaphragm vessel after the ASHRAE handbook: expansion only",
@@ -84,7 +75,6 @@ QUESTION_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "DesignExtra",
-        criteria.Extra,
         "Costly parts of an answer that are computed when asked for.",
         {
             "rules": "Published rules side by side and the walk between them",
@@ -96,7 +86,6 @@ QUESTION_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "Glycol",
-        fluid.Glycol,
         "Glycols whose mixtures with water are known.",
         {
             "propylene-glycol": "Propylene glycol (propane-1,2-diol)",
@@ -105,18 +94,16 @@ QUESTION_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "GasBehaviour",
-        existing.GasBehaviour,
         "How the gas of the vessel behaves over a day.",
         {
             "isothermal": "It keeps the temperature of the room",
             "follows-liquid": "It takes on the temperature of the liquid in the vessel",
         },
     ),
-    named("SheetLanguage", many.Language, "Languages of a sheet.", {"en": "English", "de": "German"}),
-    named("PaperSize", many.Paper, "Paper of a sheet.", {"a4": "ISO A4", "letter": "US Letter"}),
+    named("SheetLanguage", "Languages of a sheet.", {"en": "English", "de": "German"}),
+    named("PaperSize", "Paper of a sheet.", {"a4": "ISO A4", "letter": "US Letter"}),
     named(
         "FigureName",
-        many.FigureName,
         "Figures of a sheet.",
         {
             "loop-schematic": "The loop to scale of heights, with the content of its parts",
@@ -132,19 +119,16 @@ QUESTION_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "Zone",
-        pipes.Zone,
         "Surroundings of a part.",
         {"indoor": "Inside a building", "outdoor": "In the open"},
     ),
     named(
         "PipeRole",
-        pipes.RunRole,
         "What a pipe run carries.",
         {"flow": "Hot liquid from the collectors", "return": "Liquid back to the collectors"},
     ),
     named(
         "SteamAccess",
-        pipes.SteamAccess,
         "Whether steam can push liquid down a pipe run.",
         {
             "open": "Nothing stands in its way",
@@ -154,7 +138,6 @@ QUESTION_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "AllowanceRule",
-        plant.AllowanceRule,
         "Published rules for how far below its set pressure a relief valve must be expected to open.",
         {
             "en-12828": "EN 12828: 0.5 bar up to 5 bar, 10 % above",
@@ -166,13 +149,11 @@ QUESTION_LISTS: tuple[NamedValues, ...] = (
     ),
     named(
         "ReliefSize",
-        plant.ReliefSize,
         "Nominal sizes of a relief valve's inlet.",
         {size: f"Nominal diameter {size[2:]}" for size in ("DN15", "DN20", "DN25", "DN32", "DN40", "DN50")},
     ),
     named(
         "PumpSide",
-        plant.PumpSide,
         "Side of the pump on which the vessel is connected.",
         {"suction": "Before the pump", "discharge": "Behind the pump"},
     ),

@@ -20,7 +20,6 @@ HealthStatus = Literal["pass", "fail"]
 HEALTH_LISTS: tuple[NamedValues, ...] = (
     named(
         "HealthStatus",
-        HealthStatus,
         "What a probe found.",
         {"pass": "The service is as it should be", "fail": "The service should get no requests"},
     ),

@@ -10,7 +10,6 @@ from __future__ import annotations
 import re
 from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
-from typing import get_args
 
 import msgspec
 
@@ -63,24 +62,10 @@ class NamedUnion:
     members: tuple[type[msgspec.Struct], ...]
 
 
-def named(
-    name: str, alias: object, meaning: str, words: Mapping[str, str], *, extensible: bool = False
-) -> NamedValues:
-    """A named list of a `Literal`, its constants spelled after its values.
-
-    Raises:
-        DocumentError: the meanings are not exactly those of the values.
-
-    """
-    values = get_args(alias)
-    if set(values) != set(words):
-        raise DocumentError(f"{name}: meanings for {sorted(words)}, values {sorted(values)}")
-    return NamedValues(
-        name=name,
-        meaning=meaning,
-        words=tuple(Word(value, constant_of(value), words[value]) for value in values),
-        extensible=extensible,
-    )
+def named(name: str, meaning: str, words: Mapping[str, str], *, extensible: bool = False) -> NamedValues:
+    """A named list of values, its constants spelled after them."""
+    spelled = tuple(Word(value, constant_of(value), words[value]) for value in words)
+    return NamedValues(name=name, meaning=meaning, words=spelled, extensible=extensible)
 
 
 def constant_of(value: str) -> str:
