@@ -156,13 +156,14 @@ def filled_content(branches: list[Branch], length: float) -> float:
     """Content (m3) of a length of steam shared by branches: equal fronts, a full branch passes on its rest."""
     left, reach, content = length, 0.0, 0.0
     waiting = sorted(branches, key=lambda branch: branch.length)
-    while waiting and left > 0:
-        step = min(waiting[0].length - reach, left / len(waiting))
-        left -= step * len(waiting)
-        reach += step
-        while waiting and waiting[0].length <= reach * (1 + 1e-12):
-            content += waiting.pop(0).content
-    return content + sum(_content_up_to(branch, reach) for branch in waiting)
+    while waiting:
+        rest, share = waiting[0].length - reach, left / len(waiting)
+        if share < rest:
+            return content + sum(_content_up_to(branch, reach + share) for branch in waiting)
+        left -= rest * len(waiting)
+        reach += rest
+        content += waiting.pop(0).content
+    return content
 
 
 def _content_up_to(branch: Branch, reach: float) -> float:
@@ -171,8 +172,6 @@ def _content_up_to(branch: Branch, reach: float) -> float:
         filled = min(segment.length, reach)
         content += filled * segment.area
         reach -= filled
-        if reach <= 0:
-            break
     return content
 
 
