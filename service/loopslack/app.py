@@ -16,6 +16,7 @@ from litestar.types import ASGIApp, Receive, Scope, Send
 
 from loopslack.api.costly import Costly
 from loopslack.api.guard import Guard, is_guarding, warn_if_open
+from loopslack.api.many_places import ManyPlaces
 from loopslack.api.openapi import document_pages
 from loopslack.api.operations import Floor, Operation
 from loopslack.api.probes import probe_routes
@@ -39,8 +40,10 @@ class Application:
         self.lag = LoopLag()
         self.readiness = READINESS
         self.costly = Costly(settings.costly_waiting, settings.deadline_seconds)
+        self.many = ManyPlaces(settings.batches_waiting, self.readiness)
         lines = set_up_logging(settings.log_level)
-        routes = routes_of(operations, pages, Floor(settings, self.costly)) + probe_routes(self.readiness)
+        floor = Floor(settings, self.costly, self.many)
+        routes = routes_of(operations, pages, floor) + probe_routes(self.readiness)
         framework = Litestar(
             routes,
             debug=False,
@@ -84,6 +87,7 @@ class Application:
         finally:
             self.readiness.draining = True
             self.costly.close()
+            self.many.close()
             if self.tracing is not None:
                 self.tracing.stop()
             watch.cancel()

@@ -13,6 +13,7 @@ from litestar.types import ASGIApp
 from msgspec import Struct
 
 from loopslack.api.costly import Costly
+from loopslack.api.many_places import ManyPlaces
 from loopslack.contract.problems import PROBLEM_TYPES, ProblemType
 from loopslack.settings import Settings
 
@@ -38,6 +39,7 @@ class Floor(Struct, frozen=True):
 
     settings: Settings
     costly: Costly
+    many: ManyPlaces
 
 
 class Operation(Struct, Generic[Question, Answer], frozen=True, kw_only=True):

@@ -6,7 +6,7 @@ matter of `decoding`. Nothing here knows an operation.
 
 import asyncio
 import re
-from collections.abc import Iterable
+from collections.abc import Callable, Iterable
 from functools import lru_cache
 
 from loopslack.api.asgi import Receive, Scope
@@ -121,26 +121,35 @@ async def read_body(scope: Scope, receive: Receive, limit: int, seconds: float) 
         Refused: 413 or 408, either of which ends the connection where the protocol lets an answer say so.
 
     """
+    parts: list[bytes] = []
+    await take_body(scope, receive, limit, seconds, parts.append)
+    return parts[0] if len(parts) == 1 else b"".join(parts)
+
+
+async def take_body(
+    scope: Scope, receive: Receive, limit: int, seconds: float, take: Callable[[bytes], object]
+) -> None:
+    """Hand over the body of a request part by part, as it arrives.
+
+    Raises:
+        Refused: as `read_body`.
+
+    """
     announced = header(scope, b"content-length")
     if announced is not None and announced.isdigit() and int(announced[:20]) > limit:
         raise _too_large(scope, limit)
+    length = 0
     try:
         async with asyncio.timeout(seconds):
             message = await receive()
-            if message["type"] == "http.request" and not message.get("more_body", False):
-                body: bytes = message.get("body", b"")
-                if len(body) > limit:
-                    raise _too_large(scope, limit)
-                return body
-            parts: list[bytes] = []
-            length = 0
             while message["type"] == "http.request":
-                parts.append(message.get("body", b""))
-                length += len(parts[-1])
+                part = message.get("body", b"")
+                length += len(part)
                 if length > limit:
                     raise _too_large(scope, limit)
+                take(part)
                 if not message.get("more_body", False):
-                    return b"".join(parts)
+                    return
                 message = await receive()
     except TimeoutError:
         pass
