@@ -48,7 +48,7 @@ install_pinned "$environment" deploy/requirements.txt
 
 log=.cache/service.log
 LOOPSLACK_BIND="127.0.0.1:$port" WEB_CONCURRENCY="${WEB_CONCURRENCY:-2}" \
-    "$environment/bin/python" -m gunicorn --config deploy/gunicorn.conf.py >"$log" 2>&1 &
+    "$environment/bin/gunicorn" --config deploy/gunicorn.conf.py >"$log" 2>&1 &
 server=$!
 
 stop_server() {

@@ -13,8 +13,8 @@ from typing import Any
 import msgspec
 
 from load.bodies import design_question, encoded
-from loopslack.api.reply import encoded as encoded_answer
 from loopslack.contract import answering, questions
+from loopslack.contract.encoding import encoded as encoded_answer
 from loopslack.kernel.errors import CalculationError
 
 DECODER = msgspec.json.Decoder(questions.LoopDesignQuestion)

@@ -28,19 +28,7 @@ PATIENT = QUIET | {"LOOPSLACK_SHED_LAG_SECONDS": "10"}
 def service(run: Run, workers: int = 1, *, patient: bool = False) -> Iterator[Server]:
     """The service itself, without access log."""
     with serving(run.folder, workers=workers, environment=PATIENT if patient else QUIET) as server:
-        wait_until_ready(server)
         yield server
-
-
-def wait_until_ready(server: Server) -> None:
-    """Ask until it answers."""
-    deadline = time.monotonic() + 30
-    while True:
-        report = asyncio.run(open_loop(Target(server.port, "/readyz", reuse=False), 100, 0.01))
-        if report.statuses[200]:
-            return
-        if time.monotonic() > deadline:
-            raise RuntimeError(f"not ready:\n{server.log.read_text()}")
 
 
 def throughput(run: Run) -> list[Figure]:

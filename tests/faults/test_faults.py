@@ -1,0 +1,267 @@
+"""Faults of a live service under load: what goes wrong stays with whom it hits, and nothing is lost or wrong.
+
+Each test starts the service as deployed, sends real designs and compares every answer with the one computed here.
+The figures it prints are those of the table in DEVELOPERS.md (`sh tests/faults/run.sh` shows them).
+"""
+
+from __future__ import annotations
+
+import asyncio
+import os
+import shutil
+import signal
+import socket
+import struct
+import time
+from collections.abc import Callable, Iterator
+from datetime import UTC, datetime
+from email.utils import parsedate_to_datetime
+from pathlib import Path
+
+import pytest
+
+from faults.server import ROOT, Server, serving
+from load.client import Report, Target, open_loop
+from load.questions import Corpus, drawn
+from load.server_facts import descriptors, proportional_memory
+
+QUIET = {"LOOPSLACK_ACCESS_LOG": "false"}
+
+
+@pytest.fixture(scope="module")
+def corpus() -> Corpus:
+    return drawn(20, 4)
+
+
+@pytest.fixture
+def server(tmp_path: Path) -> Iterator[Server]:
+    with serving(tmp_path, workers=2, environment=QUIET) as started:
+        yield started
+
+
+def designs(server: Server, corpus: Corpus, **settings: bool | int) -> Target:
+    """Designs of the corpus, whose answers are compared."""
+    return Target(server.port, bodies=corpus.bodies, right=corpus.right, **settings)  # type: ignore[arg-type]
+
+
+def under_load(
+    target: Target, rate: float, seconds: float, *events: tuple[float, Callable[[], object]]
+) -> Report:
+    """Send at a rate, and at set times do something to the server."""
+
+    async def run() -> Report:
+        loop = asyncio.get_running_loop()
+        for moment, action in events:
+            loop.call_later(moment, action)
+        return await open_loop(target, rate, seconds)
+
+    return asyncio.run(run())
+
+
+def tell(capsys: pytest.CaptureFixture[str], what: str, report: Report) -> None:
+    """Print one line of the table."""
+    with capsys.disabled():
+        print(
+            f"\n{what}: {len(report.served)} served (p99 {report.latency(0.99):.0f} ms), "
+            f"{len(report.refused)} refused, {report.retried} retried, {report.failed} failed, {report.wrong} wrong"
+        )
+
+
+def test_a_killed_worker_takes_only_its_own_requests_with_it(
+    server: Server, corpus: Corpus, capsys: pytest.CaptureFixture[str]
+) -> None:
+    victim = server.workers()[0]
+    report = under_load(designs(server, corpus), 40, 4, (1.5, lambda: os.kill(victim, signal.SIGKILL)))
+    tell(capsys, "worker killed, no retry", report)
+    assert victim not in server.workers()
+    assert len(server.workers()) == 2
+    assert report.failed <= 10
+    assert report.wrong == 0
+    assert len(report.served) + len(report.refused) + report.failed == 160
+    assert len(report.served) >= 120
+
+
+def test_a_client_that_retries_once_does_not_notice_a_killed_worker(
+    server: Server, corpus: Corpus, capsys: pytest.CaptureFixture[str]
+) -> None:
+    target = designs(server, corpus, retries=2)
+    report = under_load(target, 20, 5, (1.5, lambda: os.kill(server.workers()[0], signal.SIGKILL)))
+    tell(capsys, "worker killed, retry", report)
+    assert (report.failed, report.wrong) == (0, 0)
+
+
+def test_a_reload_under_load_fails_no_request_that_has_its_own_connection(
+    server: Server, corpus: Corpus, capsys: pytest.CaptureFixture[str]
+) -> None:
+    before = set(server.workers())
+    target = designs(server, corpus, reuse=False)
+    report = under_load(target, 20, 6, (1.5, lambda: server.process.send_signal(signal.SIGHUP)))
+    tell(capsys, "reload, one connection per request", report)
+    assert (report.failed, report.wrong) == (0, 0)
+    assert not before & set(server.workers())
+
+
+def test_a_reload_under_load_fails_no_client_that_retries_once_on_a_reset(
+    server: Server, corpus: Corpus, capsys: pytest.CaptureFixture[str]
+) -> None:
+    target = designs(server, corpus, retries=1)
+    report = under_load(
+        target, 20, 8, *((at, lambda: server.process.send_signal(signal.SIGHUP)) for at in (1.5, 4.0))
+    )
+    tell(capsys, "two reloads, kept connections, one retry", report)
+    assert (report.failed, report.wrong) == (0, 0)
+
+
+def test_a_new_master_takes_over_without_losing_a_request(
+    tmp_path: Path, corpus: Corpus, capsys: pytest.CaptureFixture[str]
+) -> None:
+    record = tmp_path / "master.pid"
+    environment = QUIET | {"GUNICORN_CMD_ARGS": f"--pid {record}"}
+    with serving(tmp_path, workers=2, environment=environment) as server:
+        new_record = Path(f"{record}.2")
+        target = designs(server, corpus, reuse=False)
+        report = under_load(
+            target,
+            20,
+            9,
+            (1.0, lambda: server.process.send_signal(signal.SIGUSR2)),
+            (5.0, lambda: server.process.send_signal(signal.SIGTERM)),
+        )
+        successor = int((new_record if new_record.exists() else record).read_text())
+        try:
+            tell(capsys, "new master takes over", report)
+            assert (report.failed, report.wrong) == (0, 0)
+            assert server.process.wait(timeout=25) == 0
+            assert successor != server.process.pid
+        finally:
+            os.kill(successor, signal.SIGTERM)
+
+
+def test_a_full_disk_for_the_log_does_not_stop_the_service(
+    tmp_path: Path, corpus: Corpus, capsys: pytest.CaptureFixture[str]
+) -> None:
+    with serving(tmp_path, workers=2, log=Path("/dev/full")) as server:
+        report = under_load(designs(server, corpus), 20, 3)
+        tell(capsys, "disk full for the log", report)
+        assert (report.failed, report.wrong) == (0, 0)
+        assert len(report.served) + len(report.refused) == 60
+        assert server.process.poll() is None
+
+
+def test_a_jump_of_the_clock_changes_nothing_but_the_date(
+    tmp_path: Path, corpus: Corpus, capsys: pytest.CaptureFixture[str]
+) -> None:
+    clock = tmp_path / "clock"
+    clock.write_bytes(struct.pack("q", 0))
+
+    def jump(days: int) -> None:
+        with clock.open("r+b") as file:
+            file.write(struct.pack("q", days * 86400))
+
+    environment = QUIET | {"LD_PRELOAD": str(ROOT / ".cache/faults/clock.so"), "SHIFTED_CLOCK": str(clock)}
+    with serving(tmp_path, workers=2, environment=environment) as server:
+        before = set(server.workers())
+        target = designs(server, corpus)
+        report = under_load(target, 20, 6, (1.5, lambda: jump(40)), (3.5, lambda: jump(-400)))
+        tell(capsys, "clock 40 days on, then 400 back", report)
+        assert (report.failed, report.wrong, len(report.served)) == (0, 0, 120)
+        assert set(server.workers()) == before
+        with server.connect() as connection:
+            connection.sendall(b"GET /livez HTTP/1.1\r\nHost: a\r\n\r\n")
+            head = connection.recv(4096).decode().lower()
+        told = parsedate_to_datetime(head.partition("\r\ndate: ")[2].partition("\r\n")[0].upper())
+        assert 399 < (datetime.now(UTC) - told).days < 401
+
+
+def test_silent_and_slow_connections_do_not_keep_honest_ones_out(
+    tmp_path: Path, corpus: Corpus, capsys: pytest.CaptureFixture[str]
+) -> None:
+    environment = QUIET | {"LOOPSLACK_HEAD_SECONDS": "1"}
+    with serving(tmp_path, workers=2, environment=environment) as server:
+        slow = [server.connect() for _ in range(150)]
+        for number, connection in enumerate(slow):
+            if number % 2:
+                connection.sendall(b"POST /v1/loop-design HTTP/1.1\r\nHost:")
+        report = under_load(designs(server, corpus, retries=1), 20, 4)
+        tell(capsys, "150 silent or slow connections", report)
+        assert (report.failed, report.wrong) == (0, 0)
+        assert len(report.served) >= 70
+        for connection in slow:
+            connection.settimeout(5)
+            while connection.recv(4096):
+                pass
+            connection.close()
+
+
+def test_uploads_broken_off_leave_nothing_behind(
+    server: Server, corpus: Corpus, capsys: pytest.CaptureFixture[str]
+) -> None:
+    under_load(designs(server, corpus), 20, 2)
+    before = [descriptors(worker) for worker in server.workers()]
+
+    def broken_off() -> None:
+        connection = server.connect()
+        connection.sendall(
+            b"POST /v1/loop-design HTTP/1.1\r\nHost: a\r\nContent-Length: 1000000\r\n\r\n" + b"{" * 50000
+        )
+        connection.setsockopt(socket.SOL_SOCKET, socket.SO_LINGER, struct.pack("ii", 1, 0))
+        connection.close()
+
+    report = under_load(
+        designs(server, corpus), 20, 5, *((0.05 * number, broken_off) for number in range(80))
+    )
+    tell(capsys, "80 uploads broken off", report)
+    assert (report.failed, report.wrong) == (0, 0)
+    time.sleep(2.0)
+    after = [descriptors(worker) for worker in server.workers()]
+    assert max(after) <= max(before) + 2
+    assert "Traceback" not in server.log.read_text()
+
+
+def test_ten_times_too_much_is_refused_early_and_soon_forgotten(
+    server: Server, corpus: Corpus, capsys: pytest.CaptureFixture[str]
+) -> None:
+    quiet = under_load(designs(server, corpus), 10, 3)
+    capacity = 2.0 / (sum(quiet.served) / len(quiet.served))
+    flood = under_load(designs(server, corpus, retries=1), min(10 * capacity, 1500.0), 4)
+    tell(capsys, f"flood of {min(10 * capacity, 1500.0):.0f}/s for 4 s", flood)
+    assert flood.wrong == 0
+    assert set(flood.statuses) <= {200, 503}
+    assert len(flood.refused) > 0
+    time.sleep(1.0)
+    after = under_load(designs(server, corpus), 10, 3)
+    tell(capsys, "after the flood", after)
+    assert (after.failed, after.wrong, len(after.refused)) == (0, 0, 0)
+
+
+def test_a_long_run_in_short_form_grows_neither_memory_nor_descriptors(
+    server: Server, corpus: Corpus, capsys: pytest.CaptureFixture[str]
+) -> None:
+    target = designs(server, corpus)
+    readings = []
+    for _ in range(5):
+        report = under_load(target, 30, 8)
+        assert (report.failed, report.wrong) == (0, 0)
+        readings.append(
+            (
+                max(proportional_memory(worker) for worker in server.workers()),
+                max(descriptors(worker) for worker in server.workers()),
+            )
+        )
+    with capsys.disabled():
+        print("\nsoak, MB and descriptors every 8 s: " + ", ".join(f"{m:.1f}/{d}" for m, d in readings))
+    assert readings[-1][0] <= readings[1][0] + 2.0
+    assert readings[-1][1] <= readings[1][1] + 2
+
+
+def test_a_filesystem_without_a_writable_place_but_memory_is_enough(
+    tmp_path: Path, corpus: Corpus, capsys: pytest.CaptureFixture[str]
+) -> None:
+    unshare = shutil.which("unshare")
+    assert unshare is not None, (
+        "the program that gives a process its own view of the filesystem is not installed"
+    )
+    with serving(tmp_path, workers=2, environment=QUIET, read_only=True) as server:
+        report = under_load(designs(server, corpus), 20, 3)
+        tell(capsys, "read-only filesystem", report)
+        assert (report.failed, report.wrong) == (0, 0)
