@@ -3,6 +3,7 @@
 import pytest
 from msgspec.structs import replace
 
+from calc.loops import random_loop
 from calc.reference import ATMOSPHERE, BAR, CRITERIA, ZERO, group, loop, run
 from calc.sizing.printed import printed_analysis, printed_loop
 from loopslack.calc.analysis import Analysis
@@ -240,3 +241,19 @@ def test_the_sites_own_air_counts_and_not_one_bar() -> None:
     assert result.start_pressure == pytest.approx(
         80_000.0 + 0.5 * BAR + high.fluid.density(ZERO + 15) * 9.80665 * 11, rel=1e-12
     )
+
+
+def test_the_recommended_vessel_holds_in_the_check_that_the_rules_go_through() -> None:
+    held = 0
+    for seed in range(300):
+        analysis = Analysis(random_loop(seed))
+        sized = size(analysis, analysis.singles, "size", analysis.loop.criteria.membrane_limit)
+        if sized is None:
+            continue
+        (result,) = run_all(analysis, sized, analysis.singles, ids=("mass-balance",))
+        assert result.nominal_volume == sized.smallest
+        assert result.seen is not None
+        assert result.seen.verdict == "holds", seed
+        assert all(seen.verdict == "holds" for seen in result.seen.scenarios[:-1]), seed
+        held += 1
+    assert held > 40
