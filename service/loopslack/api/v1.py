@@ -12,18 +12,28 @@ from loopslack.contract import (
     answers_reference,
     questions,
 )
+from loopslack.contract.questions_vessels import FromStock
 
 _PARTS = "Parts"
 _DESIGN = "Design"
 _CHECK = "Check"
 _REFERENCE = "Reference"
 
+_LONG_LIST = 200
+
 
 def _judged(
-    answer: answers.LoopDesignAnswer | answers.StagnationCheckAnswer,
+    answer: answers.LoopDesignAnswer | answers.VesselSizingAnswer | answers.StagnationCheckAnswer,
 ) -> Iterable[tuple[str, Iterable[str]]]:
     """Verdict and advisory codes, for the metrics."""
     yield answer.result.verdict, [advisory.code for advisory in answer.advisories]
+
+
+def _takes_long(question: questions.LoopDesignQuestion) -> bool:
+    """Whether a design takes more than a few milliseconds: costly parts asked for, or a long stock list."""
+    vessel = question.vessel
+    long_list = isinstance(vessel, FromStock) and len(vessel.items) > _LONG_LIST
+    return long_list or bool(question.include)
 
 
 OPERATIONS: tuple[Operation[Any, Any], ...] = (
@@ -54,6 +64,21 @@ OPERATIONS: tuple[Operation[Any, Any], ...] = (
         ask=answering_small.compute_expansion,
     ),
     Operation(
+        operation_id="sizeVessel",
+        path="/v1/vessel-sizing",
+        tag=_DESIGN,
+        summary="Size the expansion vessel",
+        description=(
+            "Nominal volume by every published rule side by side, what each rule's vessel would see in stagnation, "
+            "why the rules differ, and the vessel that holds. Nothing is stored; retry freely."
+        ),
+        question=questions.VesselSizingQuestion,
+        answer=answers.VesselSizingAnswer,
+        ask=answering.size_vessel,
+        costly=True,
+        outcomes=_judged,
+    ),
+    Operation(
         operation_id="checkStagnation",
         path="/v1/stagnation-check",
         tag=_CHECK,
@@ -79,6 +104,7 @@ OPERATIONS: tuple[Operation[Any, Any], ...] = (
         question=questions.LoopDesignQuestion,
         answer=answers.LoopDesignAnswer,
         ask=answering.design_loop,
+        costly=_takes_long,
         outcomes=_judged,
     ),
     Operation(

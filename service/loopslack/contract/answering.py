@@ -2,7 +2,7 @@
 
 from typing import TypedDict
 
-from loopslack.calc.design import Request, design
+from loopslack.calc.design import Design, Request, design
 from loopslack.calc.existing import check
 from loopslack.calc.fit import Fit
 from loopslack.calc.judgement import Judgement
@@ -10,6 +10,7 @@ from loopslack.calc.model import Vessel
 from loopslack.contract import answers, questions
 from loopslack.contract import writing_design as write_design
 from loopslack.contract import writing_loop as write_loop
+from loopslack.contract import writing_sizing as write_sizing
 from loopslack.contract.advice import Advisor
 from loopslack.contract.answers_common import Basis, Check, Verdict
 from loopslack.contract.answers_loop import (
@@ -30,30 +31,31 @@ from loopslack.library.vessels import preferred_vessels
 _FILL = field_of(questions.StagnationCheckQuestion, "fill_pressure")
 
 
-def design_loop(question: questions.LoopDesignQuestion) -> answers.LoopDesignAnswer:
-    """Answer a loop design question."""
+def designed(question: questions.SizingQuestion) -> tuple[Reading, Design]:
+    """Read a question about sizing or design and design the loop."""
     reader = Reader()
     reading = read_loop(question, reader)
     choice = read_choice(reader, question.vessel)
     reader.finish()
-    most = question.vessels_in_parallel or 1
-    found = design(
-        reading.loop,
-        Request(
-            candidates(choice),
-            most,
-            reading.cooling,
-            reading.policy,
-            reading.accept_without_boiling,
-            choice.fill_pressure,
-        ),
+    request = Request(
+        candidates(choice),
+        question.vessels_in_parallel or 1,
+        reading.cooling,
+        reading.policy,
+        reading.accept_without_boiling,
+        choice.fill_pressure,
     )
+    return reading, design(reading.loop, request)
+
+
+def design_loop(question: questions.LoopDesignQuestion) -> answers.LoopDesignAnswer:
+    """Answer a loop design question."""
+    reading, found = designed(question)
     write = reading.write
     pressure = write_loop.Pressures(write, reading.loop.atmosphere)
     shown, judgement = found.shown, found.judgement
-    judged = _judged(reading, shown, judgement)
     result = answers.LoopDesignResult(
-        **judged,
+        **_judged(reading, shown, judgement),
         chosen_vessel=None if found.chosen is None else write_loop.vessel(found.chosen, write),
         nearest_vessel=None if found.chosen is not None else write_loop.vessel(shown, write),
         volumes=write_design.volumes(found, write, pressure),
@@ -61,13 +63,55 @@ def design_loop(question: questions.LoopDesignQuestion) -> answers.LoopDesignAns
         settings=write_design.settings(shown, judgement, write, pressure),
         order=write_design.order(shown, write),
     )
+    include = reading.include or frozenset()
+    rules = write_sizing.compared(found) if "rules" in include else None
     return answers.LoopDesignAnswer(
         result=result,
         assumptions=assumptions(reading.assumed, reading.system),
         advisories=Advisor(shown, judgement, reading.policy, reading.system).all(),
         cautions=CAUTIONS,
         provenance=provenance(),
+        rules=None if rules is None else write_sizing.rules(rules, write, pressure, wanted_rules(question)),
+        walk=None if rules is None else write_sizing.walk(found, rules, write, reading.loop.atmosphere),
+        sensitivity=write_sizing.sensitivities(found, write) if "sensitivity" in include else None,
     )
+
+
+def size_vessel(question: questions.VesselSizingQuestion) -> answers.VesselSizingAnswer:
+    """Answer a vessel sizing question: every rule side by side, and the vessel to take."""
+    reading, found = designed(question)
+    write, loop = reading.write, reading.loop
+    pressure = write_loop.Pressures(write, loop.atmosphere)
+    shown, judgement = found.shown, found.judgement
+    confirm = write_design.to_confirm(reading, judgement)
+    rules = write_sizing.compared(found)
+    result = answers.VesselSizingResult(
+        verdict=judgement.verdict,
+        basis=write_design.basis(confirm),
+        chosen_vessel=None if found.chosen is None else write_loop.vessel(found.chosen, write),
+        nearest_vessel=None if found.chosen is not None else write_loop.vessel(shown, write),
+        volumes=write_design.volumes(found, write, pressure),
+        rules=write_sizing.rules(rules, write, pressure, wanted_rules(question)),
+        walk=write_sizing.walk(found, rules, write, loop.atmosphere),
+        window=write_loop.window(shown.window, write, pressure),
+        precharge=pressure(shown.gas.precharge),
+        selection=write_design.selection(found.selection, write),
+        checks=write_design.checks(judgement, write, loop.atmosphere),
+        doubts=write_loop.doubts(loop, judgement),
+        to_confirm=confirm,
+    )
+    return answers.VesselSizingAnswer(
+        result=result,
+        assumptions=assumptions(reading.assumed, reading.system),
+        advisories=Advisor(shown, judgement, reading.policy, reading.system).all(),
+        cautions=CAUTIONS,
+        provenance=provenance(),
+    )
+
+
+def wanted_rules(question: questions.SizingQuestion) -> frozenset[str] | None:
+    """The rules a question names, None for all of them."""
+    return None if question.rules is None else frozenset(question.rules)
 
 
 def check_stagnation(question: questions.StagnationCheckQuestion) -> answers.StagnationCheckAnswer:

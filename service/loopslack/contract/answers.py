@@ -29,6 +29,7 @@ from loopslack.contract.answers_loop import (
     VesselResult,
     Volumes,
 )
+from loopslack.contract.answers_sizing import RuleComparison, Sensitivity, Walk
 from loopslack.contract.fields import text
 
 
@@ -115,12 +116,18 @@ class VesselSizingResult(AnswerPart, frozen=True, kw_only=True):
         VesselResult | None, text("The candidate that comes nearest where none is chosen. Do not build it.")
     ] = None
     volumes: Annotated[Volumes, text("Nominal volumes by how much they survive.")]
+    rules: Annotated[list[RuleComparison], text("Every rule side by side.")]
+    walk: Annotated[
+        Walk | None,
+        text("From the smallest rule to the recommended volume. Absent where no volume holds."),
+    ] = None
     window: Annotated[
         FillWindow | None, text("The fill window of that vessel. Absent where it is empty.")
     ] = None
     precharge: Annotated[q.Pressure, text("Precharge, read on site.")]
     selection: Annotated[Selection, text("How the vessel was chosen.")]
     checks: Annotated[list[Check], text("Every check of that vessel.")]
+    to_confirm: Annotated[list[Provisional], text("What makes the basis provisional.")]
     doubts: Annotated[list[Doubt], text("Every doubt and what came of it.")]
 
 
@@ -166,3 +173,8 @@ class LoopDesignAnswer(Answer, frozen=True, kw_only=True):
     """The answer to a loop design question."""
 
     result: Annotated[LoopDesignResult, text("The design.")]
+    rules: Annotated[list[RuleComparison] | None, text("Every rule side by side, if asked for.")] = None
+    walk: Annotated[Walk | None, text("From the smallest rule to the recommended volume, with `rules`.")] = (
+        None
+    )
+    sensitivity: Annotated[Sensitivity | None, text("What moves the volume, if asked for.")] = None
