@@ -20,11 +20,15 @@ from loopslack.kernel.value import Given, Value
 
 MODULES = (
     "atmosphere",
+    "balance",
+    "balance_pressure",
+    "balance_steam",
     "collector",
     "collector_area",
     "geometry",
     "heat_loss",
     "mixing",
+    "order",
     "precharge",
     "relief",
     "statics",
