@@ -2,9 +2,13 @@
 
 import pytest
 
-from calc.course.cases import BAR, HOUR, NOON, lumped, march
+from calc import reference
+from calc.course.cases import BAR, HOUR, NOON, charge, course, lumped, march
 from calc.course.quasi_static import at_rest, liquid_of
+from loopslack.calc.balance import Balance, mixing
 from loopslack.calc.course.weather import ClearSky, StatedWeather
+from loopslack.calc.equilibrium import equilibrium
+from loopslack.calc.scenarios import BASE
 
 CONSTANT = StatedWeather(
     times=tuple(HOUR * h for h in range(31)), irradiances=(1000.0,) * 31, ambients=(303.15,) * 31
@@ -78,3 +82,16 @@ def test_no_day_without_discharge_exceeds_the_coupled_balance(nominal, reflux, w
     loop = lumped(nominal, reflux=reflux, wets_all=wets_all, relief=None, **changes)
     largest, bound = largest_and_bound(loop, ClearSky())
     assert 0 < largest <= 1.02 * bound
+
+
+@pytest.mark.parametrize("nominal", [0.025, 0.05, 0.08, 0.15])
+@pytest.mark.parametrize("emptying", ["good", "fair", "poor"])
+def test_the_pressure_of_the_day_stays_below_that_of_the_stagnation_check(nominal, emptying):
+    # Not so its steam volume: the check takes all liquid at 120 degC, the colder liquid of the day leaves more room.
+    loop = reference.loop()
+    at_worst = equilibrium(
+        Balance(loop, BASE), charge(nominal, loop), mixing(loop), gas_follows=False, opening=12 * BAR
+    )
+    day = course(lumped(nominal, emptying=emptying, relief=None))
+    assert day.largest["steam_volume"].value > 0
+    assert day.largest["vessel_pressure"].value < at_worst.pressure

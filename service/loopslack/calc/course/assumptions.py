@@ -93,9 +93,9 @@ STANDING = (
     ),
     derived(
         "design-case",
-        "The coupled balance of the stagnation check stays the design case: it is the bound over this "
-        "course, which is milder because the collectors run out of water. The fluid-data allowance of a "
-        "sizing is not counted here.",
+        "The coupled balance of the stagnation check stays the design case: with the same liquid temperatures it "
+        "bounds this course, which is milder because the collectors run out of water. The fluid-data allowance of "
+        "a sizing is not counted here.",
     ),
 )
 """Said with every answer."""

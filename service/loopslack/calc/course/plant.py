@@ -6,6 +6,8 @@ balance and no stepping.
 
 from math import exp, log
 
+from msgspec.structs import replace
+
 from loopslack.calc.course.grid import Grid
 from loopslack.calc.course.lumped import LumpedLoop
 from loopslack.calc.course.properties import tables_of
@@ -43,7 +45,6 @@ class Plant:
         self.loop = loop
         self.grid = Grid(loop.pipe, cells)
         vessel = loop.vessel
-        self.tanks = (*loop.reservoirs, vessel.body)
         content = loop.collector_content + loop.pipe.content[-1] + sum(t.content for t in loop.reservoirs)
         self.mass = tables.density(vessel.fill_temperature) * (content + vessel.filled)
         self.full = loop.collector_content * tables.density(363.15)
@@ -53,6 +54,11 @@ class Plant:
         self.residue = loop.emptying.residual_share * self.full
         constant = vessel.gas_temperature
         self.gas_precharge = vessel.precharge / vessel.precharge_temperature * (constant or 1.0)
+        # The law of an empty vessel runs a little below nothing; the shell is made heavier by as much liquid, some
+        # thousandths of a full vessel, so that its heat stays positive.
+        least = self.vessel_liquid(_LEAST_PRESSURE, vessel.fill_temperature)
+        spare = -1.5 * least * tables.density(vessel.fill_temperature) * tables.heat_capacity
+        self.tanks = (*loop.reservoirs, replace(vessel.body, capacity=vessel.body.capacity + spare))
 
     def vessel_pressure(self, liquid: float, temperature: float) -> float:
         """Pressure (Pa) of the vessel with so much liquid (m3), its liquid at a temperature (K).
