@@ -6,11 +6,13 @@ from typing import Any
 from loopslack.api.operations import Operation
 from loopslack.contract import (
     answering,
+    answering_course,
     answering_reference,
     answering_small,
     answers,
     answers_reference,
     questions,
+    questions_existing,
 )
 from loopslack.contract.questions_vessels import FromStock
 
@@ -106,6 +108,20 @@ OPERATIONS: tuple[Operation[Any, Any], ...] = (
         ask=answering.design_loop,
         costly=_takes_long,
         outcomes=_judged,
+    ),
+    Operation(
+        operation_id="computeStagnationCourse",
+        path="/v1/stagnation-course",
+        tag=_CHECK,
+        summary="Follow a day without flow",
+        description=(
+            "A sunny day without flow, minute by minute, its phases dated, with the range that the assumptions about "
+            "residue and reflux leave. The coupled balance stays the design case. Nothing is stored; retry freely."
+        ),
+        question=questions_existing.StagnationCourseQuestion,
+        answer=answers.StagnationCourseAnswer,
+        ask=answering_course.compute_stagnation_course,
+        costly=True,
     ),
     Operation(
         operation_id="listFluids",

@@ -8,11 +8,14 @@ from loopslack.calc.fit import Fit
 from loopslack.calc.judgement import Judgement
 from loopslack.calc.model import Vessel
 from loopslack.contract import answers, questions
+from loopslack.contract import writing_course as write_course
 from loopslack.contract import writing_design as write_design
 from loopslack.contract import writing_loop as write_loop
 from loopslack.contract import writing_sizing as write_sizing
 from loopslack.contract.advice import Advisor
+from loopslack.contract.answering_course import emptying_stated
 from loopslack.contract.answers_common import Basis, Check, Verdict
+from loopslack.contract.answers_course import CourseSummary
 from loopslack.contract.answers_loop import (
     Doubt,
     FillWindow,
@@ -74,6 +77,7 @@ def design_loop(question: questions.LoopDesignQuestion) -> answers.LoopDesignAns
         rules=None if rules is None else write_sizing.rules(rules, write, pressure, wanted_rules(question)),
         walk=None if rules is None else write_sizing.walk(found, rules, write, reading.loop.atmosphere),
         sensitivity=write_sizing.sensitivities(found, write) if "sensitivity" in include else None,
+        course=_course(reading, shown, shown.mass) if "course" in include else None,
     )
 
 
@@ -131,8 +135,10 @@ def check_stagnation(question: questions.StagnationCheckQuestion) -> answers.Sta
         precharge=pressure(found.fitted.gas.precharge),
         fill_pressure=pressure.optional(found.fill_pressure),
     )
+    include = reading.include or frozenset()
     return answers.StagnationCheckAnswer(
         result=result,
+        course=_course(reading, found.fitted, found.mass) if "course" in include else None,
         assumptions=assumptions(reading.assumed, reading.system),
         advisories=Advisor(found.fitted, found.judgement, reading.policy, reading.system).all(),
         cautions=CAUTIONS,
@@ -148,6 +154,13 @@ def candidates(choice: Choice) -> tuple[Vessel, ...]:
         Vessel(id=size.id, nominal_volume=size.nominal_volume, rated_pressure=choice.rated_pressure)
         for size in preferred_vessels()
     )
+
+
+def _course(reading: Reading, fitted: Fit, mass: float) -> CourseSummary:
+    """A clear day without flow, under the design sun."""
+    case = write_course.lumped(fitted, mass, emptying_stated=emptying_stated(reading))
+    pressure = write_loop.Pressures(reading.write, reading.loop.atmosphere)
+    return write_course.summary(write_course.course(case), reading.write, pressure)
 
 
 class _Judged(TypedDict):

@@ -16,6 +16,7 @@ from loopslack.contract.answers_common import (
     Provenance,
     Verdict,
 )
+from loopslack.contract.answers_course import CourseSummary, StagnationCourseResult
 from loopslack.contract.answers_loop import (
     Doubt,
     FillWindow,
@@ -149,6 +150,13 @@ class StagnationCheckAnswer(Answer, frozen=True, kw_only=True):
     """The answer to a stagnation check."""
 
     result: Annotated[StagnationCheckResult, text("The check.")]
+    course: Annotated[CourseSummary | None, text("A day without flow, if asked for.")] = None
+
+
+class StagnationCourseAnswer(Answer, frozen=True, kw_only=True):
+    """The answer to a question about a day without flow."""
+
+    result: Annotated[StagnationCourseResult, text("The day.")]
 
 
 class LoopDesignResult(JudgedResult, frozen=True, kw_only=True):
@@ -178,3 +186,4 @@ class LoopDesignAnswer(Answer, frozen=True, kw_only=True):
         None
     )
     sensitivity: Annotated[Sensitivity | None, text("What moves the volume, if asked for.")] = None
+    course: Annotated[CourseSummary | None, text("A day without flow, if asked for.")] = None
