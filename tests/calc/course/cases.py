@@ -4,7 +4,7 @@ from msgspec.structs import replace
 
 from calc import reference
 from loopslack.calc.course.assumptions import RESIDUAL_SHARE
-from loopslack.calc.course.lumped import Emptying, LumpedLoop, Start
+from loopslack.calc.course.lumped import HOT_START, Emptying, LumpedLoop
 from loopslack.calc.course.mapping import Mapped, mapped
 from loopslack.calc.course.march import Accuracy, March, finished, marching
 from loopslack.calc.course.weather import ClearSky
@@ -17,7 +17,7 @@ ATMOSPHERE = reference.ATMOSPHERE
 FILL = 288.15
 
 FINE = Accuracy(cells=40, longest=20.0, most_steps=20_000)
-NOON = Start(time=12 * HOUR, collectors=363.15, pipes=353.15, station=348.15, vessel=303.15)
+NOON = HOT_START
 
 
 def charge(nominal: float = 0.080, loop=None, room: float = FILL) -> Charge:

@@ -6,7 +6,7 @@ from msgspec.structs import replace
 from calc import reference
 from calc.course.cases import ATMOSPHERE, BAR, case, charge, course
 from loopslack.calc.course.assumptions import RESIDUAL_SHARE
-from loopslack.calc.course.lumped import Start
+from loopslack.calc.course.lumped import HOT_START, Start
 from loopslack.calc.course.mapping import mapped
 from loopslack.calc.fluid import BoilsLike, glycol, own_fluid, water
 from loopslack.calc.model import Relief, Station
@@ -314,3 +314,10 @@ def test_an_own_fluid_that_boils_like_a_glycol_gets_its_residue_stronger():
 def test_an_own_fluid_without_heat_capacity_is_refused():
     fluid = own_fluid(WATERLIKE, 253.15, BoilsLike(kind="propylene-glycol", mass_fraction=0.43))
     assert "heat capacity" in refused(fluid=fluid).message
+
+
+def test_the_start_is_said_in_words():
+    assert "temperature of its surroundings" in text_of(case(), "start")
+    hot = text_of(case(start=HOT_START), "start")
+    assert "collectors at 90 degC" in hot
+    assert "vessel at 30 degC" in hot

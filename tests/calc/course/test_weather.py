@@ -4,6 +4,7 @@ import pytest
 
 from calc.course.cases import HOUR, course, lumped
 from loopslack.calc.course.lumped import Start
+from loopslack.calc.course.march import Accuracy
 from loopslack.calc.course.weather import ClearSky, StatedWeather
 from loopslack.kernel.errors import Contradiction, NotApplicable, OutOfRange
 
@@ -105,3 +106,23 @@ def test_liquid_that_freezes_during_the_course_is_flagged():
     curve = course(lumped(), stated(times, None, falling))
     assert "liquid-freezes" in curve.flags
     assert "liquid-freezes" not in course(lumped()).flags
+
+
+def test_no_step_passes_over_a_burst_of_sun_in_the_dark():
+    times = [300.0 * k for k in range(100)]
+    burst = [1000.0 if k == 61 else 0.0 for k in range(100)]
+    curve = course(lumped(), stated(times, burst))
+    assert curve.energy["sun"] == pytest.approx(18.4 * 0.79 * 1000 * 300, rel=0.35)
+    assert curve.largest["collector_temperature"].value > 293.15 + 15
+
+
+def test_a_liquid_hotter_than_its_data_is_flagged_with_and_without_steam():
+    hot = lumped(linear_loss=1.0, quadratic_loss=0.002, relief=None)
+    assert "beyond-property-range" in course(hot).flags
+    assert "beyond-property-range" not in course(lumped()).flags
+
+
+def test_a_loop_has_returned_when_it_is_full_again_and_nothing_was_lost():
+    assert course(lumped()).returned
+    assert not course(lumped(0.018)).returned
+    assert not course(lumped(), accuracy=Accuracy(most_steps=150)).returned

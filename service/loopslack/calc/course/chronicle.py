@@ -128,7 +128,7 @@ class Chronicle:
             flags.add("above-lowest-opening")
         if taken.ending == "no-steam" and state.volume > 0.0:
             flags.add("void")
-        if state.volume > 0.0 and state.boiling > plant.tables.hottest:
+        if max(state.liquid, state.boiling if state.volume > 0.0 else 0.0) > plant.tables.hottest:
             flags.add("beyond-property-range")
         if (
             state.volume > 0.0

@@ -10,7 +10,6 @@ from loopslack.calc.course.state import State
 
 _FILM = 1e4  # W/m2K absorber to liquid: merely large, the collector's own coefficients already hold its film
 _WATER_SHARE = 0.6  # of the water left may boil off within one step
-_STRONGEST = 0.98  # mass fraction of glycol that still counts as a liquid with water
 
 
 class Collector:
@@ -144,7 +143,7 @@ class Collector:
         inertia = capacity / (area * self.dt)
         self.drawn, self.evaporated = drawn, -state.vapour
         pull = self.sun + inertia * (held / capacity - self.ambient)
-        self.absorber = self.boiling = self.ambient + self._rise(pull, inertia)
+        self.absorber = self.ambient + self._rise(pull, inertia)
         return self.absorber
 
     def _rise(self, pull: float, linear: float) -> float:
@@ -153,8 +152,3 @@ class Collector:
         b = linear + loop.linear_loss
         size = 2.0 * abs(pull) / (b + sqrt(b * b + 4.0 * loop.quadratic_loss * abs(pull)))
         return size if pull >= 0.0 else -size
-
-    @property
-    def strongest(self) -> float:
-        """Mass fraction of glycol that the residue cannot pass."""
-        return _STRONGEST

@@ -58,6 +58,11 @@ class Curve(Struct, frozen=True, kw_only=True):
     energy_residual: float
     mass_residual: float
 
+    @property
+    def returned(self) -> bool:
+        """Whether the loop is full of liquid again at the end, with nothing lost."""
+        return self.complete and self.steam_volume[-1] == 0.0 and self.discharged[-1] == 0.0
+
 
 class Recorder:
     """Collects rows at even intervals (s)."""

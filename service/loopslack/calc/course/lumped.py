@@ -91,6 +91,10 @@ class Start(Struct, frozen=True, kw_only=True):
     vessel: float | None = None
 
 
+HOT_START = Start(time=43200.0, collectors=363.15, pipes=353.15, station=348.15, vessel=303.15)
+"""The pump stops at noon in a loop that runs: 90, 80, 75 and 30 degC. Own assumption."""
+
+
 class LumpedLoop(Struct, frozen=True, kw_only=True):
     """Everything the march needs. Area and coefficients share one area basis.
 

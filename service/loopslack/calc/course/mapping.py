@@ -96,7 +96,22 @@ def mapped(
         start=start or Start(),
         station_loss=loop.station.steam_loss,
     )
+    notes.append(_start_note(lumped.start))
     return Mapped(lumped, (*STANDING, *notes))
+
+
+def _start_note(start: Start) -> Assumption:
+    """What the loop is like when the flow stops."""
+    named = {
+        "collectors": start.collectors,
+        "pipes": start.pipes,
+        "station": start.station,
+        "vessel": start.vessel,
+    }
+    stated = ", ".join(f"{name} at {at - 273.15:.4g} degC" for name, at in named.items() if at is not None)
+    if not stated:
+        return own("start", "When the flow stops, every part has the temperature of its surroundings.")
+    return own("start", f"When the flow stops: {stated}; any other part as its surroundings.")
 
 
 def _check_fluid(loop: Loop, notes: list[Assumption]) -> None:

@@ -72,6 +72,8 @@ class March:
         self.recorder = Recorder(self.plant, self.state, weather, interval)
         self.tries = self.steps = 0
         self._dt = _MINUTE
+        # No step passes over a stated irradiance, as far as these are not finer than a minute.
+        self._spacing = max(_MINUTE, weather.spacing)
 
     @property
     def done(self) -> bool:
@@ -100,7 +102,7 @@ class March:
         self.chronicle.saw(plant, state, taken, before)
         self.recorder.note(plant, state)
         quiet = state.volume == 0.0 and taken.balance.collector.irradiance == 0.0
-        longest = accuracy.longest_at_night if quiet else accuracy.longest
+        longest = min(accuracy.longest_at_night if quiet else accuracy.longest, self._spacing)
         growth = 1.6 if change < 0.25 else 1.25 if change < 0.5 else 1.0
         self._dt = max(accuracy.shortest, min(dt * growth, longest))
         return True

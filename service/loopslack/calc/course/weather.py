@@ -60,6 +60,11 @@ class ClearSky(Struct, frozen=True, kw_only=True):
         """The next dawn."""
         return self.dawn + DAY
 
+    @property
+    def spacing(self) -> float:
+        """Time within which the weather is smooth, s."""
+        return DAY
+
     def irradiance(self, time: float) -> float:
         """Irradiance on the collector plane, W/m2."""
         day, clock = divmod(time, DAY)
@@ -116,6 +121,11 @@ class StatedWeather(Struct, frozen=True, kw_only=True):
     def end(self) -> float:
         """The last stated time."""
         return self.times[-1]
+
+    @property
+    def spacing(self) -> float:
+        """Shortest time between two stated ones, s."""
+        return min(after - before for before, after in pairwise(self.times))
 
     def irradiance(self, time: float) -> float:
         """Irradiance on the collector plane, W/m2."""
