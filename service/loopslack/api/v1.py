@@ -4,6 +4,7 @@ from collections.abc import Iterable
 from typing import Any
 
 from loopslack.api.operations import Operation
+from loopslack.api.v1_many import MANY_OPERATIONS
 from loopslack.contract import (
     answering,
     answering_course,
@@ -31,14 +32,15 @@ def _judged(
     yield answer.result.verdict, [advisory.code for advisory in answer.advisories]
 
 
-def _takes_long(question: questions.LoopDesignQuestion) -> bool:
-    """Whether a design takes more than a few milliseconds: costly parts asked for, or a long stock list."""
-    vessel = question.vessel
+def _takes_long(question: questions.LoopQuestion) -> bool:
+    """Whether an answer takes more than a few milliseconds: costly parts asked for, or a long stock list."""
+    vessel = question.vessel if isinstance(question, questions.SizingQuestion) else None
     long_list = isinstance(vessel, FromStock) and len(vessel.items) > _LONG_LIST
-    return long_list or bool(question.include)
+    stated = isinstance(question, questions.SizingQuestion | questions.StagnationCheckQuestion)
+    return long_list or bool(question.include) or (stated and question.tolerances is not None)
 
 
-OPERATIONS: tuple[Operation[Any, Any], ...] = (
+_SINGLE: tuple[Operation[Any, Any], ...] = (
     Operation(
         operation_id="computeLoopVolume",
         path="/v1/loop-volume",
@@ -92,6 +94,7 @@ OPERATIONS: tuple[Operation[Any, Any], ...] = (
         question=questions.StagnationCheckQuestion,
         answer=answers.StagnationCheckAnswer,
         ask=answering.check_stagnation,
+        costly=_takes_long,
         outcomes=_judged,
     ),
     Operation(
@@ -174,3 +177,5 @@ OPERATIONS: tuple[Operation[Any, Any], ...] = (
         ask=answering_reference.list_sources,
     ),
 )
+
+OPERATIONS: tuple[Operation[Any, Any], ...] = (*_SINGLE, *MANY_OPERATIONS)

@@ -1,19 +1,22 @@
 """From a question to its answer: reads, asks the calculation, writes. One function per operation, nothing more."""
 
-from typing import TypedDict
+from typing import NamedTuple, TypedDict
 
+from loopslack.calc.band import band
 from loopslack.calc.design import Design, Request, design
 from loopslack.calc.existing import check
 from loopslack.calc.fit import Fit
 from loopslack.calc.judgement import Judgement
 from loopslack.calc.model import Vessel
 from loopslack.contract import answers, questions
+from loopslack.contract import writing_band as write_band
 from loopslack.contract import writing_course as write_course
 from loopslack.contract import writing_design as write_design
 from loopslack.contract import writing_loop as write_loop
 from loopslack.contract import writing_sizing as write_sizing
 from loopslack.contract.advice import Advisor
 from loopslack.contract.answering_course import emptying_stated
+from loopslack.contract.answers_band import ToleranceBand
 from loopslack.contract.answers_common import Basis, Check, Verdict
 from loopslack.contract.answers_course import CourseSummary
 from loopslack.contract.answers_loop import (
@@ -27,6 +30,7 @@ from loopslack.contract.answers_loop import (
 from loopslack.contract.fields import field_of
 from loopslack.contract.reader import Reader
 from loopslack.contract.reading import Reading, read_loop
+from loopslack.contract.reading_tolerances import Tolerances, read_tolerances
 from loopslack.contract.reading_vessels import Choice, read_choice, read_fill, read_vessel
 from loopslack.contract.writing_common import CAUTIONS, assumptions, provenance
 from loopslack.library.vessels import preferred_vessels
@@ -34,11 +38,20 @@ from loopslack.library.vessels import preferred_vessels
 _FILL = field_of(questions.StagnationCheckQuestion, "fill_pressure")
 
 
-def designed(question: questions.SizingQuestion) -> tuple[Reading, Design]:
+class Designed(NamedTuple):
+    """A designed loop with how it was asked for."""
+
+    reading: Reading
+    design: Design
+    tolerances: Tolerances
+
+
+def designed(question: questions.SizingQuestion) -> Designed:
     """Read a question about sizing or design and design the loop."""
     reader = Reader()
     reading = read_loop(question, reader)
     choice = read_choice(reader, question.vessel)
+    tolerances = read_tolerances(reader, question.tolerances)
     reader.finish()
     request = Request(
         candidates(choice),
@@ -48,17 +61,18 @@ def designed(question: questions.SizingQuestion) -> tuple[Reading, Design]:
         reading.accept_without_boiling,
         choice.fill_pressure,
     )
-    return reading, design(reading.loop, request)
+    return Designed(reading, design(reading.loop, request), tolerances)
 
 
 def design_loop(question: questions.LoopDesignQuestion) -> answers.LoopDesignAnswer:
     """Answer a loop design question."""
-    reading, found = designed(question)
+    reading, found, tolerances = designed(question)
     write = reading.write
     pressure = write_loop.Pressures(write, reading.loop.atmosphere)
     shown, judgement = found.shown, found.judgement
     result = answers.LoopDesignResult(
         **_judged(reading, shown, judgement),
+        band=_band(reading, shown, shown.window.recommended, tolerances),
         chosen_vessel=None if found.chosen is None else write_loop.vessel(found.chosen, write),
         nearest_vessel=None if found.chosen is not None else write_loop.vessel(shown, write),
         volumes=write_design.volumes(found, write, pressure),
@@ -83,7 +97,7 @@ def design_loop(question: questions.LoopDesignQuestion) -> answers.LoopDesignAns
 
 def size_vessel(question: questions.VesselSizingQuestion) -> answers.VesselSizingAnswer:
     """Answer a vessel sizing question: every rule side by side, and the vessel to take."""
-    reading, found = designed(question)
+    reading, found, tolerances = designed(question)
     write, loop = reading.write, reading.loop
     pressure = write_loop.Pressures(write, loop.atmosphere)
     shown, judgement = found.shown, found.judgement
@@ -103,6 +117,7 @@ def size_vessel(question: questions.VesselSizingQuestion) -> answers.VesselSizin
         checks=write_design.checks(judgement, write, loop.atmosphere),
         doubts=write_loop.doubts(loop, judgement),
         to_confirm=confirm,
+        band=_band(reading, shown, shown.window.recommended, tolerances),
     )
     return answers.VesselSizingAnswer(
         result=result,
@@ -125,12 +140,14 @@ def check_stagnation(question: questions.StagnationCheckQuestion) -> answers.Sta
     stated = question.vessel
     vessel = read_vessel(reader, stated, "/vessel", stated.id or "given")
     fill = read_fill(reader, question.fill_pressure, _FILL, "")
+    tolerances = read_tolerances(reader, question.tolerances)
     reader.finish()
     found = check(reading.loop, vessel, question.vessels_in_parallel or 1, reading.policy, fill_pressure=fill)
     write = reading.write
     pressure = write_loop.Pressures(write, reading.loop.atmosphere)
     result = answers.StagnationCheckResult(
         **_judged(reading, found.fitted, found.judgement),
+        band=_band(reading, found.fitted, found.fill_pressure, tolerances),
         vessel=write_loop.vessel(found.fitted, write),
         precharge=pressure(found.fitted.gas.precharge),
         fill_pressure=pressure.optional(found.fill_pressure),
@@ -154,6 +171,13 @@ def candidates(choice: Choice) -> tuple[Vessel, ...]:
         Vessel(id=size.id, nominal_volume=size.nominal_volume, rated_pressure=choice.rated_pressure)
         for size in preferred_vessels()
     )
+
+
+def _band(reading: Reading, fitted: Fit, fill: float, tolerances: Tolerances) -> ToleranceBand | None:
+    """What the stated tolerances do to a filled vessel."""
+    found = band(fitted, fill, write_band.by_id(tolerances), reading.policy)
+    pressure = write_loop.Pressures(reading.write, reading.loop.atmosphere)
+    return write_band.tolerance_band(found, reading.write, pressure)
 
 
 def _course(reading: Reading, fitted: Fit, mass: float) -> CourseSummary:

@@ -183,18 +183,23 @@ def end_line(tally: Tally, refused: Refused | None = None) -> bytes:
 
 
 def answer_lines(
-    designs: Iterable[bytes], first_index: int, head: bytes, repeated: frozenset[int] = frozenset()
+    designs: Iterable[bytes | None], first_index: int, head: bytes, repeated: frozenset[int] = frozenset()
 ) -> tuple[bytes, dict[str, int]]:
     """Answer a run of lines in one go: their answers as lines, and how many came out how.
 
-    What a process or a machine of a fleet is sent; both arguments and results are plain and small. ``repeated``
-    holds the places, counted within the run, of designs whose name was used before.
+    What a process or a machine of a fleet is sent; both arguments and results are plain and small. None stands
+    for a line that is longer than allowed; ``repeated`` holds the places, counted within the run, of designs
+    whose name was used before.
     """
     shared = _remembered(head)
     lines = []
     tally: Counter[str] = Counter()
     for place, design in enumerate(designs):
-        outcome = answer_design(design, first_index + place, shared, repeated=place in repeated)
+        index = first_index + place
+        if design is None:
+            outcome = refuse_design(b"", index, Refused("body-too-large", "The line is longer than allowed."))
+        else:
+            outcome = answer_design(design, index, shared, repeated=place in repeated)
         lines.append(outcome.line)
         tally[outcome.verdict] += 1
     return b"".join(line + b"\n" for line in lines), dict(tally)

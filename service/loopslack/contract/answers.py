@@ -6,6 +6,7 @@ Parts that cost time to compute are members of their own, present only when aske
 from typing import Annotated
 
 from loopslack.contract import quantity as q
+from loopslack.contract.answers_band import ToleranceBand
 from loopslack.contract.answers_common import (
     Advisory,
     AnswerPart,
@@ -103,6 +104,7 @@ class JudgedResult(AnswerPart, frozen=True, kw_only=True):
     stagnation: Annotated[
         list[StagnationState], text("Stagnation in the base case, under each doubt and under all at once.")
     ]
+    band: Annotated[ToleranceBand | None, text("What the stated tolerances do. Absent without any.")] = None
 
 
 class VesselSizingResult(AnswerPart, frozen=True, kw_only=True):
@@ -130,6 +132,7 @@ class VesselSizingResult(AnswerPart, frozen=True, kw_only=True):
     checks: Annotated[list[Check], text("Every check of that vessel.")]
     to_confirm: Annotated[list[Provisional], text("What makes the basis provisional.")]
     doubts: Annotated[list[Doubt], text("Every doubt and what came of it.")]
+    band: Annotated[ToleranceBand | None, text("What the stated tolerances do. Absent without any.")] = None
 
 
 class VesselSizingAnswer(Answer, frozen=True, kw_only=True):
