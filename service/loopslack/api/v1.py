@@ -34,10 +34,13 @@ def _judged(
 
 def _takes_long(question: questions.LoopQuestion) -> bool:
     """Whether an answer takes more than a few milliseconds: costly parts asked for, or a long stock list."""
-    vessel = question.vessel if isinstance(question, questions.SizingQuestion) else None
-    long_list = isinstance(vessel, FromStock) and len(vessel.items) > _LONG_LIST
-    stated = isinstance(question, questions.SizingQuestion | questions.StagnationCheckQuestion)
-    return long_list or bool(question.include) or (stated and question.tolerances is not None)
+    costly = bool(question.include)
+    if isinstance(question, questions.SizingQuestion):
+        vessel = question.vessel
+        costly = costly or (isinstance(vessel, FromStock) and len(vessel.items) > _LONG_LIST)
+    if isinstance(question, questions.SizingQuestion | questions.StagnationCheckQuestion):
+        costly = costly or question.tolerances is not None
+    return costly
 
 
 _SINGLE: tuple[Operation[Any, Any], ...] = (
