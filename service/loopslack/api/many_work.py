@@ -20,6 +20,7 @@ from loopslack.contract.answering_many import (
     id_of,
     refuse_design,
 )
+from loopslack.contract.names import Names
 from loopslack.contract.refusals import Refused
 
 PIECE_BYTES = 65_536
@@ -80,7 +81,7 @@ class Work:
         self._form = form
         self._nesting = nesting
         self._over = over
-        self._seen: set[str] = set()
+        self._names = Names()
         self._tally = Tally()
         self.left = False
         """Set once nobody waits for the answers any more."""
@@ -115,7 +116,5 @@ class Work:
         if over is not None:
             return refuse_design(design, index, over)
         name = id_of(design)
-        repeated = name in self._seen
-        if name is not None:
-            self._seen.add(name)
+        repeated = name is not None and not self._names.is_new(name)
         return answer_design(design, index, self._shared, repeated=repeated, nesting=self._nesting)

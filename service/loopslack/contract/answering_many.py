@@ -5,7 +5,7 @@ time it is; a design is answered in the same way, to the byte, wherever that is 
 """
 
 from collections import Counter
-from collections.abc import Iterable
+from collections.abc import Iterable, Mapping
 from functools import lru_cache
 from typing import NamedTuple
 
@@ -51,8 +51,8 @@ class Outcome(NamedTuple):
 class Tally:
     """Counts outcomes."""
 
-    def __init__(self) -> None:
-        self._counts: Counter[str] = Counter()
+    def __init__(self, counts: Mapping[str, int] | None = None) -> None:
+        self._counts = Counter(counts or {})
 
     def add(self, verdict: str) -> None:
         """Count one design."""
