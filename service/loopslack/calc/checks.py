@@ -6,7 +6,7 @@ A check compares; it solves nothing. Which checks decide the verdict, and under 
 from collections.abc import Iterator
 from math import isfinite
 
-from loopslack.calc.analysis import Analysis
+from loopslack.calc.analysis import Analysis, SteamCase
 from loopslack.calc.equilibrium import ROUNDING, Equilibrium
 from loopslack.calc.judgement import Check, CheckCode, CheckVerdict
 from loopslack.calc.model import Part, Relief
@@ -67,6 +67,36 @@ def steam_at_station(state: str, found: Equilibrium) -> Check:
     extent = found.extent
     power = sum(space.power for space in extent.spaces)
     return compare("steam-at-station", state, kinds.POWER, extent.unspent, 0.0, at_most=True, scale=power)
+
+
+def steam_reach(state: str, case: SteamCase, found: Equilibrium) -> Check | None:
+    """The pipe run with least liquid left before the steam: its reach against its length. Told, not decisive.
+
+    What decides is the steam power left over, since a front may well stand at the end of a run.
+    """
+    spare = [
+        (branch.length - reach, reach, branch)
+        for space, steam in zip(case.balance.spaces, found.extent.spaces, strict=True)
+        for branch, reach in zip(space.path.branches, space.path.reach(steam.place), strict=True)
+    ]
+    if not spare:
+        return None
+    _, reach, branch = min(spare, key=lambda row: row[0])
+    check = compare(
+        "steam-reach", state, kinds.LENGTH, reach, branch.length, at_most=True, subject=branch.name
+    )
+    return check._replace(core=False)
+
+
+def degradation(analysis: Analysis, state: str, found: Equilibrium) -> Check | None:
+    """Hottest liquid beside the steam against the temperature above which glycol degrades; none for water."""
+    loop = analysis.loop
+    if loop.fluid.kind == "water":
+        return None
+    hottest = max(space.temperature for space in found.extent.spaces)
+    limit = loop.criteria.degradation_limit
+    check = compare("glycol-degradation", state, kinds.TEMPERATURE, hottest, limit, at_most=True)
+    return check._replace(core=False)
 
 
 def reserve(bounds: Bounds, cold: LiquidState, mass: float, nominal: float) -> Check:

@@ -212,6 +212,11 @@ def _hot(
     yield checks.acceptance(id, found, gas.acceptance, gas.nominal)
     yield checks.membrane(id, found, membrane_limit)
     yield checks.steam_at_station(id, found)
+    told = (
+        checks.steam_reach(id, analysis.case(scenario), found),
+        checks.degradation(analysis, id, found),
+    )
+    yield from (check for check in told if check is not None)
 
 
 def _unknown(scenario: Scenario, reason: str) -> Check:

@@ -12,6 +12,7 @@ from loopslack.calc.judge import JOINT, required
 from loopslack.calc.judgement import Check, DoubtPolicy, Judgement
 from loopslack.calc.model import Branch
 from loopslack.calc.scenarios import BASE
+from loopslack.contract.advice_words import FAILING, STATES, WITHOUT_NUMBER
 from loopslack.contract.answers_common import Advisory, AnyQuantity, Severity
 from loopslack.contract.units_out import System
 from loopslack.contract.writing_common import any_quantity
@@ -20,80 +21,6 @@ from loopslack.kernel.kinds import Kind
 
 _HIGH_SITE = 1000.0  # m, from where the design sun should be the site's own hottest hour (own assumption)
 _HIGH_SUN = 1100.0  # W/m2 asked for there (own assumption)
-
-# What each failing check means and what to do about it.
-_FAILING: dict[str, tuple[str, str]] = {
-    "relief-valve": (
-        "the vessel would reach {value}, above the {limit} at which the relief valve may open",
-        "Take a larger vessel, a lower precharge or filling, or a relief valve with a higher set pressure.",
-    ),
-    "acceptance": (
-        "the vessel would have to take {value} of liquid, more than the {limit} its membrane accepts",
-        "Take a vessel with a larger acceptance volume.",
-    ),
-    "reserve": (
-        "only {value} of liquid is left in the vessel when cold; the reserve is {limit}",
-        "Fill to a higher pressure or take a larger vessel.",
-    ),
-    "top-pressure": (
-        "the highest point would be at {value} when cold, below the {limit} that keeps air out",
-        "Fill to a higher pressure or raise the precharge.",
-    ),
-    "boiling-at-cut-off": (
-        "the vessel stands at {value} when the pump cuts off, below the {limit} that keeps the top from boiling",
-        "Fill to a higher pressure or lower the pump's cut-off temperature.",
-    ),
-    "steam-at-station": (
-        "{value} of steam power is left when all open pipes are full of steam, and reaches the station",
-        "Add a stagnation cooler of that power, more or less insulated pipe, or collectors that empty better.",
-    ),
-    "membrane-temperature": (
-        "liquid mixed to {value} would reach the membrane, whose limit is {limit}",
-        "Put a cooling vessel before the expansion vessel.",
-    ),
-    "freezing": (
-        "the fluid freezes at {value}; {limit} is asked for at this site",
-        "Use more glycol.",
-    ),
-    "fill-window": (
-        "the fill window is too narrow for an installer: {value} where {limit} is asked for",
-        "Take a larger vessel.",
-    ),
-    "part-protected": (
-        "{subject} would see {value} while the relief valve stands at its set pressure, above its rating of {limit}",
-        "Take a part rated higher or a relief valve with a lower set pressure.",
-    ),
-    "part-temperature": (
-        "{subject} would see {value} before the pump cuts off, above its limit of {limit}",
-        "Take a part for higher temperatures or a lower cut-off temperature.",
-    ),
-    "net-positive-suction": (
-        "the pump inlet has {value} above boiling, less than the {limit} the pump asks for",
-        "Fill to a higher pressure or place the pump lower.",
-    ),
-    "relief-size": (
-        "the relief valve's nominal size is too small: {value} of collectors where the table allows {limit}",
-        "Take the size of the order list.",
-    ),
-}
-_WITHOUT_NUMBER = {
-    "vessel-empty": "the vessel would be empty, so the pressure is not defined and the loop may draw air",
-    "no-window": "no fill pressure keeps every check",
-    "fill-outside-window": "the filling lies outside the fill window",
-    "too-close-to-precharge": "the fill window lies too close to the precharge",
-}
-_STATES = {
-    "base": "In stagnation",
-    "warm-gas": "In stagnation with warm gas in the vessel",
-    "hotter-stagnation": "In stagnation with collectors hotter than computed",
-    "worse-emptying": "In stagnation with collectors that empty worse",
-    "closed-branch": "In stagnation with the runs of unknown check valves closed to steam",
-    "all-doubts": "In stagnation with every doubt at once",
-    "cold": "In the cold",
-    "cut-off": "At the pump's cut-off",
-    "fill": "When filled",
-    JOINT: "Over all doubts asked for",
-}
 
 
 class Advisor:
@@ -121,7 +48,7 @@ class Advisor:
             severity: Severity = "note"
             if check.core and counts:
                 severity = "stop"
-            elif not check.core:
+            elif not check.core and counts:
                 severity = "warning"
             # One doubt that fails like the base case says nothing new.
             if stagnation and check.state != BASE.id and (check.code, BASE.id) in told:
@@ -130,7 +57,7 @@ class Advisor:
             yield self._of(check, severity)
 
     def _of(self, check: Check, severity: Severity) -> Advisory:
-        sentence, remedy = _FAILING[check.code]
+        sentence, remedy = FAILING[check.code]
         parameters = {}
         if check.value is not None:
             parameters["value"] = self._quantity(check.value, check.kind)
@@ -139,14 +66,14 @@ class Advisor:
         if check.margin is not None:
             parameters["margin"] = self._margin(check.margin, check.kind)
         if "value" not in parameters or check.reason in ("fill-outside-window", "too-close-to-precharge"):
-            text = _WITHOUT_NUMBER.get(check.reason, "the check does not hold")
+            text = WITHOUT_NUMBER.get(check.reason, "the check does not hold")
         else:
             shown = {name: _say(quantity) for name, quantity in parameters.items()}
             text = sentence.format(subject=check.subject, **shown)
         return Advisory(
             severity=severity,
             code=check.code,
-            message=f"{_STATES.get(check.state, check.state)}: {text}.",
+            message=f"{STATES.get(check.state, check.state)}: {text}.",
             remedy=remedy,
             parameters=parameters,
             subject=check.subject or None,
@@ -157,7 +84,7 @@ class Advisor:
             yield Advisory(
                 severity="stop",
                 code="not-assessed",
-                message=f"{_STATES[scenario]}: not computed. {reason}",
+                message=f"{STATES[scenario]}: not computed. {reason}",
                 remedy="Bring the loop into the range of the fluid's properties.",
                 parameters={},
                 subject=scenario,
@@ -205,17 +132,6 @@ class Advisor:
         if result is None:
             return
         extent = result.extent
-        hottest = max(steam.temperature for steam in extent.spaces)
-        limit = loop.criteria.degradation_limit
-        if loop.fluid.mass_fraction > 0 and hottest > limit:
-            yield self._say(
-                "warning",
-                "glycol-degrades",
-                "Liquid stands at {temperature} in stagnation; glycol degrades above about {limit}.",
-                "Test the fluid after every stagnation and keep stagnation rare.",
-                temperature=(hottest, kinds.TEMPERATURE),
-                limit=(limit, kinds.TEMPERATURE),
-            )
         membrane = self.fitted.vessel.membrane_limit or loop.criteria.membrane_limit
         if result.last_temperature > membrane >= result.mixed_temperature:
             yield self._say(
