@@ -13,6 +13,7 @@ from loopslack.calc.model import Part, Relief
 from loopslack.calc.states import LiquidState
 from loopslack.calc.window import Bounds, Window, cut_off_pressure
 from loopslack.kernel import kinds
+from loopslack.kernel.errors import CalculationError
 from loopslack.kernel.kinds import Kind
 from loopslack.physics.statics import GRAVITY
 
@@ -212,6 +213,18 @@ def suction(analysis: Analysis, pressure: float | None) -> Check:
     inlet = pressure - density * GRAVITY * loop.pump_height
     if loop.pump_side == "discharge":
         inlet -= loop.pump_head
-    spare = inlet - analysis.fluid.bubble_pressure(loop.temperatures.back)
+    try:
+        spare = inlet - analysis.fluid.bubble_pressure(loop.temperatures.back)
+    except CalculationError as error:
+        return Check(
+            "net-positive-suction",
+            False,
+            "cut-off",
+            "not-assessed",
+            DIFFERENCE,
+            None,
+            needed,
+            reason=str(error),
+        )
     check = compare("net-positive-suction", "cut-off", DIFFERENCE, spare, needed, at_most=False)
     return check._replace(core=False)
