@@ -22,6 +22,7 @@ from loopslack.settings import settings_from
 EXAMPLES = Path(__file__).parents[2] / "openapi" / "examples"
 # One caller after another on a busy machine is no overload.
 SETTINGS = settings_from({"LOOPSLACK_SHED_LAG_SECONDS": "10", "LOOPSLACK_ACCESS_LOG": "false"})
+NDJSON = "application/x-ndjson"
 REQUEST_ID = "6b1f0c3e-2d8b-4f1a-9a53-0f6c2f0d7a11"
 
 
@@ -34,17 +35,22 @@ def asked() -> Iterator[tuple[Example, int, Any]]:
             operation = operations.get(entry.operation)
             if operation is None:
                 continue
+            question = book.question(entry)
+            headers = {"X-Request-Id": REQUEST_ID}
+            if question is not None:
+                headers["Content-Type"] = NDJSON if isinstance(question, str) else "application/json"
+            content = question.encode() if isinstance(question, str) else json.dumps(question).encode()
             reply = client.request(
-                operation.method,
-                operation.path,
-                json=book.question(entry),
-                headers={"X-Request-Id": REQUEST_ID},
+                operation.method, operation.path, content=content if question else None, headers=headers
             )
-            if not reply.headers["content-type"].partition(";")[0].endswith("json"):
+            media_type = reply.headers["content-type"].partition(";")[0]
+            if media_type == NDJSON:
+                yield entry, reply.status_code, reply.text
+            elif media_type.endswith("json"):
+                answer = reply.json()
+                yield entry, reply.status_code, cut(answer) if entry.shortened else answer
+            else:
                 yield entry, reply.status_code, reply.content
-                continue
-            answer = reply.json()
-            yield entry, reply.status_code, cut(answer) if entry.shortened else answer
 
 
 def main() -> int:
@@ -57,9 +63,11 @@ def main() -> int:
                 f"{entry.operation} {entry.name}: {status} instead of {entry.status}: {answer}\n"
             )
         elif not isinstance(answer, bytes):
-            path = EXAMPLES / entry.operation / f"{entry.name}.answer.json"
+            lines = isinstance(answer, str)
+            path = EXAMPLES / entry.operation / f"{entry.name}.answer.{'ndjson' if lines else 'json'}"
+            text = answer if lines else json.dumps(answer, indent=2, ensure_ascii=False) + "\n"
             path.parent.mkdir(exist_ok=True)
-            path.write_text(json.dumps(answer, indent=2, ensure_ascii=False) + "\n", encoding="utf-8")
+            path.write_text(text, encoding="utf-8")
     return int(surprises > 0)
 
 

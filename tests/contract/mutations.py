@@ -126,7 +126,7 @@ def a_required_parameter_is_added(document: Document) -> None:
 
 
 @change("wire")
-def a_parameter_becomes_shorter(document: Document) -> None:
+def a_parameter_may_be_less_long(document: Document) -> None:
     document["components"]["parameters"]["RequestId"]["schema"]["maxLength"] = 64
 
 

@@ -7,6 +7,7 @@ from collections.abc import Iterator
 from pathlib import Path
 
 import pytest
+
 from faults.server import serving
 
 EXAMPLES = Path(__file__).parents[2] / "openapi" / "examples"
@@ -42,13 +43,17 @@ def test_a_nights_quotes_are_designed_one_row_each(url: str, tmp_path: Path) -> 
 
 
 def test_the_shelf_is_checked_and_every_vessel_passed_over_says_why(url: str) -> None:
-    done = run("stock_check.py", url, EXAMPLES / "designLoop" / "wash-house.question.json", EXAMPLES / "stock.csv")
+    done = run(
+        "stock_check.py", url, EXAMPLES / "designLoop" / "wash-house.question.json", EXAMPLES / "stock.csv"
+    )
     assert done.returncode == 0, done.stdout + done.stderr
     lines = done.stdout.splitlines()
     assert lines[0].startswith("verdict: holds")
     assert "take: EV-100, 100 L" in lines
     short = [line for line in lines if line.startswith("passed over: EV-100-S")]
-    assert "acceptance-volume short by" in short[0], "large enough by nominal volume, but not by what it takes"
+    assert "acceptance-volume short by" in short[0], (
+        "large enough by nominal volume, but not by what it takes"
+    )
     assert "EV-140" not in done.stdout, "none of it is on the shelf"
 
 
@@ -63,7 +68,9 @@ def test_a_shelf_without_a_fitting_vessel_ends_with_an_error(url: str, tmp_path:
 
 
 def test_a_refused_loop_is_told_with_all_its_faults(url: str) -> None:
-    done = run("stock_check.py", url, EXAMPLES / "designLoop" / "misspelt.question.json", EXAMPLES / "stock.csv")
+    done = run(
+        "stock_check.py", url, EXAMPLES / "designLoop" / "misspelt.question.json", EXAMPLES / "stock.csv"
+    )
     assert done.returncode == 1
     for pointer in ("/reliefValve/setPresure", "/staticHeight/unit", "/collectors/0/count"):
         assert pointer in done.stderr

@@ -31,11 +31,12 @@ def test_every_example_belongs_to_an_operation_and_every_file_to_an_example() ->
     operations = {operation.operation_id for operation in OPERATIONS}
     assert [entry for entry in BOOK.entries if entry.operation not in operations] == []
     known = {
-        f"{entry.operation}/{entry.name}.{part}.json"
+        f"{entry.operation}/{entry.name}.{part}.{form}"
         for entry in BOOK.entries
         for part in ("question", "answer")
+        for form in ("json", "ndjson")
     }
-    files = {str(path.relative_to(EXAMPLES)) for path in EXAMPLES.glob("*/*.json")}
+    files = {str(path.relative_to(EXAMPLES)) for path in EXAMPLES.glob("*/*json")}
     assert files <= known
 
 

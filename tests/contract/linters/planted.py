@@ -51,7 +51,7 @@ def planted(document: dict[str, Any]) -> dict[str, Any]:
     check["operationId"] = design["operationId"]
     check["tags"] = ["Nowhere"]
     del check["responses"]["422"]
-    example = next(iter(design["requestBody"]["content"]["application/json"]["examples"].values()))
+    example = wrong["components"]["examples"]["designLoop.wash-house.question"]
     example["value"]["staticHeight"] = {"value": 11, "unit": "fathom"}
     schemas["Orphan"] = {"type": "object", "description": "Used by nothing."}
     schemas["Length"]["properties"]["value"] = {"type": "number", "description": "A number."}
@@ -59,7 +59,11 @@ def planted(document: dict[str, Any]) -> dict[str, Any]:
     schemas["Area"]["examples"] = [{"value": "two", "unit": "m2"}]
     schemas["Site"]["required"].append("street")
     schemas["Site"]["properties"]["owner"] = {"type": "object", "properties": {"name": {"type": "string"}}}
-    schemas["Site"]["properties"]["notes"] = {"type": "array", "items": {"type": "string"}, "description": "Notes."}
+    schemas["Site"]["properties"]["notes"] = {
+        "type": "array",
+        "items": {"type": "string"},
+        "description": "Notes.",
+    }
     schemas["Site"]["properties"]["remark"] = {"type": "string", "description": "A remark."}
     schemas["Site"]["properties"]["slope"] = {"type": "boolean", "default": False, "description": "A slope."}
     del schemas["Volume"]["description"]

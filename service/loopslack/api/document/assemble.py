@@ -11,6 +11,7 @@ from collections.abc import Iterable
 from pathlib import Path
 from typing import Any
 
+from loopslack.api.document.analysis_names import ANALYSIS_LISTS, ANALYSIS_UNIONS
 from loopslack.api.document.answer_names import ANSWER_LISTS, ANSWER_UNIONS, LEFT_OUT, SCHEMA_NAMES
 from loopslack.api.document.examples import ExampleBook, Harvest
 from loopslack.api.document.headers import HEADERS, PARAMETERS
@@ -27,8 +28,8 @@ from loopslack.api.operations import Operation
 from loopslack.contract.problems import FaultyField, Problem
 from loopslack.contract.writing_common import CONTRACT_VERSION
 
-VALUES = (*UNIT_LISTS, *QUESTION_LISTS, *ANSWER_LISTS, *HEALTH_LISTS)
-UNIONS = (*QUESTION_UNIONS, *ANSWER_UNIONS)
+VALUES = (*UNIT_LISTS, *QUESTION_LISTS, *ANSWER_LISTS, *ANALYSIS_LISTS, *HEALTH_LISTS)
+UNIONS = (*QUESTION_UNIONS, *ANSWER_UNIONS, *ANALYSIS_UNIONS)
 Schema = dict[str, Any]
 
 
@@ -45,7 +46,7 @@ def assembled(operations: Iterable[Operation[Any, Any]], examples: Path) -> Sche
     paths = PathBook(schemas, responses, book)
     paths.add(operations)
     paths.paths |= upkeep_paths(schemas, responses)
-    _illustrate(schemas, paths.paths)
+    _illustrate(schemas, paths)
     return {
         "openapi": "3.1.0",
         "info": {
@@ -65,6 +66,7 @@ def assembled(operations: Iterable[Operation[Any, Any]], examples: Path) -> Sche
             "responses": dict(sorted(responses.responses.items())),
             "parameters": PARAMETERS,
             "headers": {name: header for name, (_, header) in HEADERS.items()},
+            "examples": paths.examples,
         },
     }
 
@@ -95,16 +97,21 @@ def _documented(fault: Schema) -> Schema:
     return {key: value for key, value in fault.items() if key not in left_out}
 
 
-def _illustrate(schemas: SchemaBook, paths: Schema) -> None:
+def _illustrate(schemas: SchemaBook, paths: PathBook) -> None:
     """Give every schema an example, out of the examples of the operations where they have one."""
     harvest = Harvest(schemas.schemas)
-    for item in paths.values():
+    for item in paths.paths.values():
         for operation in item.values():
             bodies = [operation.get("requestBody", {}), *operation["responses"].values()]
             for body in bodies:
                 for content in body.get("content", {}).values():
                     for example in content.get("examples", {}).values():
-                        harvest.gather(content["schema"], example["value"])
+                        value = (
+                            paths.examples[example["$ref"].rsplit("/", 1)[-1]]["value"]
+                            if "$ref" in example
+                            else None
+                        )
+                        harvest.gather(content["schema"], value)
     harvest.place()
 
 

@@ -57,12 +57,16 @@ class ExampleBook:
         return self._read(entry, "question")
 
     def answer(self, entry: Example) -> object:
-        """What comes back; `None` where the answer is no JSON."""
+        """What comes back; `None` where the answer is a page or a drawing."""
         return self._read(entry, "answer")
 
     def _read(self, entry: Example, part: str) -> object:
-        path = self._folder / entry.operation / f"{entry.name}.{part}.json"
-        return json.loads(path.read_bytes()) if path.exists() else None
+        path = self._folder / entry.operation / f"{entry.name}.{part}"
+        if (lines := path.with_name(f"{path.name}.ndjson")).exists():
+            return lines.read_text(encoding="utf-8")
+        if (value := path.with_name(f"{path.name}.json")).exists():
+            return json.loads(value.read_bytes())
+        return None
 
 
 class Harvest:

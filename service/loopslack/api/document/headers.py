@@ -86,9 +86,9 @@ PARAMETERS: dict[str, Schema] = {
         "name": "X-Request-Id",
         "in": "header",
         "required": False,
-        "description": "An id of your own for this request; it comes back and stands in the logs. "
-        "One in another form is replaced.",
-        "schema": {"type": "string", "maxLength": 128},
+        "description": "An id of your own for this request, up to 128 letters, digits, points, underscores and "
+        "hyphens; it comes back and stands in the logs. One in another form is replaced.",
+        "schema": {"type": "string"},
         "example": "quote-2024-0117.roof-2",
     },
     "TraceParent": {
@@ -97,7 +97,7 @@ PARAMETERS: dict[str, Schema] = {
         "required": False,
         "description": "W3C Trace Context of the calling span; it is written to the logs. "
         "One in another form is ignored.",
-        "schema": {"type": "string", "maxLength": 128},
+        "schema": {"type": "string"},
         "example": "00-4bf92f3577b34da6a3ce929d0e0e4736-00f067aa0ba902b7-01",
     },
     "IfNoneMatch": {
@@ -105,7 +105,7 @@ PARAMETERS: dict[str, Schema] = {
         "in": "header",
         "required": False,
         "description": "ETag of an answer you still have; if it is current the answer is 304 without a body.",
-        "schema": {"type": "string", "maxLength": 1024},
+        "schema": {"type": "string"},
         "example": '"9c1185a5c5e9fc54"',
     },
 }

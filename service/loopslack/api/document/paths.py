@@ -44,6 +44,7 @@ class PathBook:
         self._responses = responses
         self._examples = examples
         self.paths: dict[str, Schema] = {}
+        self.examples: dict[str, Schema] = {}
 
     def add(self, operations: Iterable[Operation[Any, Any]]) -> None:
         """Add the operations; two for one path and method are refused."""
@@ -86,7 +87,8 @@ class PathBook:
         examples = self._examples.of(operation.operation_id, 200)
         if examples:
             body["examples"] = {
-                entry.name: _shown(entry, self._examples.question(entry)) for entry in examples
+                entry.name: self._shown(entry, "question", self._examples.question(entry))
+                for entry in examples
             }
         return {"description": "The question.", "required": True, "content": {media_type: body}}
 
@@ -99,7 +101,7 @@ class PathBook:
             raise DocumentError(f"{operation.operation_id}: nothing is known of {operation.media_type}")
         body: Schema = {"schema": schema}
         shown = {
-            entry.name: _shown(entry, value)
+            entry.name: self._shown(entry, "answer", value)
             for entry in self._examples.of(operation.operation_id, 200)
             if (value := self._examples.answer(entry)) is not None
         }
@@ -112,6 +114,8 @@ class PathBook:
             "content": {operation.media_type: body},
         }
 
-
-def _shown(entry: Example, value: object) -> Schema:
-    return {"summary": entry.title, "description": entry.sentence, "value": value}
+    def _shown(self, entry: Example, part: str, value: object) -> Schema:
+        """A reference to the example, which stands with the components so that operations stay short to read."""
+        name = f"{entry.operation}.{entry.name}.{part}"
+        self.examples[name] = {"summary": entry.title, "description": entry.sentence, "value": value}
+        return {"$ref": f"#/components/examples/{name}"}
