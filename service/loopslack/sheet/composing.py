@@ -1,0 +1,83 @@
+"""Puts a sheet together: head, verdict, and every section in its order. To add a section, add its function here."""
+
+import hashlib
+from collections.abc import Callable
+
+import msgspec
+
+from loopslack.contract.answers import LoopDesignAnswer
+from loopslack.contract.questions_many import SheetQuestion
+from loopslack.sheet.case import Case
+from loopslack.sheet.lines import Fact, Section, Sheet, Text
+from loopslack.sheet.sections import closing
+from loopslack.sheet.sections.assumptions import assumptions
+from loopslack.sheet.sections.checks import checks
+from loopslack.sheet.sections.inputs import inputs
+from loopslack.sheet.sections.notices import notices
+from loopslack.sheet.sections.order import order
+from loopslack.sheet.sections.pressures import pressures
+from loopslack.sheet.sections.result import banner, result
+from loopslack.sheet.sections.settings import settings
+from loopslack.sheet.sections.sizing import sizing
+from loopslack.sheet.sections.steam import steam
+from loopslack.sheet.words import paragraphs, plain
+
+SECTIONS: tuple[Callable[[Case], Section | None], ...] = (
+    result,
+    notices,
+    pressures,
+    settings,
+    steam,
+    checks,
+    sizing,
+    order,
+    inputs,
+    assumptions,
+    closing.cautions,
+)
+
+
+def fingerprint(question: SheetQuestion) -> str:
+    """What the sheet was asked for, as sixteen letters: the same question has the same fingerprint."""
+    return hashlib.sha256(msgspec.json.encode(question)).hexdigest()[:16]
+
+
+def paper_of(question: SheetQuestion) -> str:
+    """The paper asked for; Letter where US units are and nothing else is said."""
+    return question.paper or ("letter" if question.design.units == "us" else "a4")
+
+
+def compose(answer: LoopDesignAnswer, question: SheetQuestion) -> Sheet:
+    """Everything that stands on the sheet of an answer."""
+    case = Case(answer, question.design, question.language or "en")
+    words = case.words
+    mark = fingerprint(question)
+    sections = [section for make in SECTIONS if (section := make(case)) is not None]
+    if question.remark:
+        remark = tuple(Text(line) for line in paragraphs(question.remark))
+        sections.insert(1, Section("remark", words("section.remark"), remark))
+    sections.append(closing.signing(case, mark))
+    texts = {name: plain(getattr(question, name) or "").strip() for name in ("project", "customer", "author")}
+    head = [Fact(words(f"head.{name}"), text) for name, text in texts.items() if text]
+    if question.date:
+        head.append(Fact(words("head.date"), question.date))
+    foot = words(
+        "foot",
+        project=texts["project"] or words("title"),
+        version=plain(answer.provenance.service_version),
+        mark=mark,
+    )
+    return Sheet(
+        language=words.language,
+        paper=paper_of(question),
+        title=words("title"),
+        subject=texts["project"],
+        author=texts["author"],
+        date=question.date or "",
+        head=tuple(head),
+        banner=banner(case),
+        sections=tuple(sections),
+        foot=foot,
+        page_word=words("page"),
+        contents_word=words("contents"),
+    )

@@ -1,0 +1,151 @@
+"""Sets a sheet as one HTML file: complete in itself, without scripts, forbidden to load or run anything.
+
+Every text is escaped here; the only markup passed through is that of our own figures. The style sheet is an asset of
+its own, allowed by its fingerprint.
+"""
+
+import base64
+import hashlib
+from functools import cache
+from html import escape
+from importlib.resources import files
+
+from loopslack.sheet.drawing import STYLE
+from loopslack.sheet.lines import (
+    Banner,
+    Beside,
+    Blanks,
+    Block,
+    Bullets,
+    Card,
+    Drawing,
+    Fact,
+    Facts,
+    Notice,
+    Section,
+    Sheet,
+    Table,
+    Text,
+)
+
+
+@cache
+def _style() -> tuple[str, str]:
+    """The style sheet, and the policy that allows it and the figures' own style and nothing else."""
+    style = files("loopslack.sheet").joinpath("assets", "sheet.css").read_text(encoding="utf-8")
+    marks = " ".join(
+        f"'sha256-{base64.b64encode(hashlib.sha256(text.encode()).digest()).decode()}'"
+        for text in (style, STYLE)
+    )
+    return style, f"default-src 'none'; style-src {marks}; base-uri 'none'; form-action 'none'"
+
+
+def page(sheet: Sheet) -> str:
+    """The whole page."""
+    style, policy = _style()
+    title = f"{sheet.title} – {sheet.subject}" if sheet.subject else sheet.title
+    head = "".join(_fact(fact) for fact in sheet.head)
+    contents = "".join(
+        f'<li><a href="#{section.id}">{escape(section.title)}</a></li>' for section in sheet.sections
+    )
+    sections = "".join(_section(number, section) for number, section in enumerate(sheet.sections, 1))
+    return (
+        f'<!DOCTYPE html>\n<html lang="{sheet.language}"><head><meta charset="utf-8">'
+        f'<meta http-equiv="Content-Security-Policy" content="{policy}">'
+        '<meta name="viewport" content="width=device-width, initial-scale=1"><meta name="color-scheme" content="light dark">'
+        '<meta name="referrer" content="no-referrer"><meta name="robots" content="noindex">'
+        f"<title>{escape(title)}</title><style>{style}</style></head>"
+        f'<body class="paper-{sheet.paper}"><header class="head"><h1>{escape(sheet.title)}</h1>'
+        f"{f'<dl>{head}</dl>' if head else ''}</header><main>{_banner(sheet.banner)}"
+        f'<nav aria-label="{escape(sheet.contents_word)}"><ol>{contents}</ol></nav>'
+        f"{sections}</main><footer>{escape(sheet.foot)}</footer></body></html>\n"
+    )
+
+
+def _banner(banner: Banner) -> str:
+    return (
+        f'<section class="verdict {banner.verdict}" aria-labelledby="verdict">{banner.sign}<div>'
+        f'<h2 id="verdict">{escape(banner.word)}</h2><p>{escape(banner.sentence)}</p>'
+        f'<p class="basis">{escape(banner.basis)}</p></div></section>'
+    )
+
+
+def _section(number: int, section: Section) -> str:
+    fresh = " fresh" if section.on_new_page else ""
+    blocks = "".join(_block(block) for block in section.blocks)
+    return (
+        f'<section class="part{fresh}" id="{section.id}" aria-labelledby="{section.id}-title">'
+        f'<h2 id="{section.id}-title"><span class="number">{number}</span> {escape(section.title)}</h2>{blocks}</section>'
+    )
+
+
+def _block(block: Block) -> str:
+    if isinstance(block, Beside):
+        left, right = ("".join(_block(one) for one in side) for side in (block.left, block.right))
+        return f'<div class="beside"><div>{left}</div><div>{right}</div></div>'
+    if isinstance(block, Card):
+        blocks = "".join(_block(one) for one in block.blocks)
+        return f'<div class="card"><h3>{escape(block.title)}</h3>{blocks}</div>'
+    if isinstance(block, Table):
+        return _table(block)
+    if isinstance(block, Facts):
+        return f'<dl class="facts">{"".join(_fact(fact) for fact in block.facts)}</dl>'
+    if isinstance(block, Text):
+        return f'<p class="{block.tone}">{_guarded(block.text)}</p>'
+    if isinstance(block, Bullets):
+        kind = "ol" if block.numbered else "ul"
+        items = "".join(f"<li>{_guarded(item)}</li>" for item in block.items)
+        return f"<{kind}>{items}</{kind}>"
+    if isinstance(block, Notice):
+        return (
+            f'<div class="notice {block.tone}"><p><strong>{escape(block.grade)}</strong> {_guarded(block.message)}</p>'
+            f"<p>{_guarded(block.remedy)}</p></div>"
+        )
+    if isinstance(block, Drawing):
+        return f"<figure>{block.svg}<figcaption>{escape(block.title)}</figcaption></figure>"
+    return _blanks(block)
+
+
+def _fact(fact: Fact) -> str:
+    more = f" <small>{_guarded(fact.more)}</small>" if fact.more else ""
+    large = ' class="large"' if fact.large else ""
+    return f"<div{large}><dt>{escape(fact.name)}</dt><dd><span>{_guarded(fact.value)}</span>{more}</dd></div>"
+
+
+def _table(table: Table) -> str:
+    """A table that keeps its roles when a narrow screen sets its rows one under the other."""
+    align = ["num" if column.align == "number" else "txt" for column in table.columns]
+    head = "".join(
+        f'<th role="columnheader" scope="col" class="{kind}">{escape(column.title)}</th>'
+        for kind, column in zip(align, table.columns, strict=True)
+    )
+    rows = []
+    for row in table.rows:
+        first, *others = row.cells
+        cells = [f'<th role="rowheader" scope="row" class="{align[0]}">{_guarded(first)}</th>']
+        cells += [
+            f'<td role="cell" class="{kind}" data-name="{escape(column.title)}">{_guarded(cell)}</td>'
+            for kind, column, cell in zip(align[1:], table.columns[1:], others, strict=True)
+        ]
+        mark = f' class="{row.mark}"' if row.mark else ""
+        rows.append(f'<tr role="row"{mark}>{"".join(cells)}</tr>')
+    note = f'<p class="small">{escape(table.note)}</p>' if table.note else ""
+    kind = "compact" if table.compact else "open"
+    wide = " wide" if len(table.columns) > 3 else ""
+    return (
+        f'<table role="table" class="{kind}{wide}"><caption>{_guarded(table.caption)}</caption>'
+        f'<thead role="rowgroup"><tr role="row">{head}</tr></thead>'
+        f'<tbody role="rowgroup">{"".join(rows)}</tbody></table>{note}'
+    )
+
+
+def _blanks(blanks: Blanks) -> str:
+    return (
+        f'<div class="blanks">{"".join(f"<p><span></span>{escape(name)}</p>" for name in blanks.names)}</div>'
+    )
+
+
+def _guarded(text: str) -> str:
+    """A text whose direction, whatever it is, ends where the text ends."""
+    safe = escape(text)
+    return safe if text.isascii() else f"<bdi>{safe}</bdi>"

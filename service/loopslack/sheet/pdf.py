@@ -1,0 +1,115 @@
+"""Sets a sheet as PDF, tagged for screen readers (PDF/UA-1) and fit for an archive (PDF/A-2a).
+
+The typesetter is an extra of the installation. It gets the sheet as data in one input, has no folder to read from
+but that of our own template and no packages to fetch, and takes neither the time nor the machine's fonts: the same
+sheet gives the same bytes.
+"""
+
+import re
+from datetime import date
+from functools import cache
+from importlib.resources import as_file, files
+from pathlib import Path
+from threading import Lock
+from typing import TYPE_CHECKING, Any
+
+import msgspec
+
+from loopslack.kernel.errors import CalculationError
+from loopslack.sheet.lines import Sheet
+from loopslack.sheet.words import REPLACEMENT
+
+if TYPE_CHECKING:
+    import typst
+
+_NO_DATE = date(2000, 1, 1)  # a file for the archive must bear a date; it is printed nowhere
+_STANDARDS = ["ua-1", "a-2a"]
+_LONG = re.compile(r"[^\s\u00a0\u200b]{28}")
+_SOFT_BREAK = "\u200b"
+_PANIC = "PanicException"
+_LOCK = Lock()  # the typesetter works on one sheet at a time anyway
+
+
+class NotInstalled(CalculationError):
+    """The typesetter is not part of this installation."""
+
+    code = "not-installed"
+
+
+def pdf(sheet: Sheet) -> bytes:
+    """The whole sheet as PDF. Raises ``NotInstalled`` where the typesetter is missing."""
+    engine, failure = _typesetter()
+    data = msgspec.to_builtins(sheet)
+    stated = date.fromisoformat(sheet.date) if sheet.date else _NO_DATE
+    data |= {"year": stated.year, "month": stated.month, "day": stated.day}
+    with _LOCK:
+        try:
+            return _set(engine, _printable(data, strict=False))
+        except BaseException as error:  # noqa: BLE001 - a panic of the typesetter is no Exception
+            if not isinstance(error, failure) and type(error).__name__ != _PANIC:
+                raise
+        # A text the typesetter cannot set, whatever letters it has: set with the plainest letters only, by an
+        # engine that has not seen it.
+        _typesetter.cache_clear()
+        return _set(_typesetter()[0], _printable(data, strict=True))
+
+
+def _set(engine: "typst.Compiler", data: object) -> bytes:
+    text = msgspec.json.encode(data).decode()
+    made = engine.compile(format="pdf", sys_inputs={"data": text}, pdf_standards=_STANDARDS, timestamp=0)  # type: ignore[arg-type]
+    if not isinstance(made, bytes):
+        raise TypeError("the typesetter gave no single file")
+    return made
+
+
+@cache
+def _typesetter() -> tuple["typst.Compiler", type[Exception]]:
+    """The typesetter with our template in it, made once."""
+    try:
+        import typst  # noqa: PLC0415 - an extra of the installation
+    except ImportError:
+        raise NotInstalled(
+            "Sheets as PDF are not available in this installation.",
+            remedy="Install the service with its extra `sheet`, or ask for the sheet as HTML.",
+        ) from None
+    with as_file(files("loopslack.sheet").joinpath("assets")) as folder:
+        root = str(Path(folder))
+        template = Path(folder, "sheet.typ").read_bytes()
+        nowhere = str(Path(folder, "no-packages"))
+        engine = typst.Compiler(
+            input=template,
+            root=root,
+            ignore_system_fonts=True,
+            package_path=nowhere,
+            package_cache_path=nowhere,
+        )
+    return engine, typst.TypstError
+
+
+@cache
+def _letters() -> "re.Pattern[str]":
+    """Everything the fonts of the typesetter have no letter for."""
+    text = files("loopslack.sheet").joinpath("assets", "letters.txt").read_text(encoding="ascii")
+    spans = [line.split("-") for line in text.split() if line]
+    inside = "".join(f"\\U{int(span[0], 16):08x}-\\U{int(span[-1], 16):08x}" for span in spans)
+    return re.compile(f"[^{inside}]")
+
+
+_PLAIN = re.compile(
+    "[^\n -~\u00a0-\u017f\u2013\u2014\u2212\u202f\u2026\u2265\u2713\u2717\u00d7\u2080-\u2089]"
+)
+
+
+def _printable(value: Any, *, strict: bool, drawn: bool = False) -> Any:  # noqa: ANN401 - any JSON value
+    """The data with letters nobody can print replaced, and long words allowed to break."""
+    if isinstance(value, str):
+        pattern = _PLAIN if strict else _letters()
+        text = value if value.isascii() else pattern.sub("?" if strict else REPLACEMENT, value)
+        return text if drawn else _LONG.sub(lambda found: found[0] + _SOFT_BREAK, text)
+    if isinstance(value, dict):
+        return {
+            name: _printable(one, strict=strict, drawn=name in {"svg", "sign"}) for name, one in value.items()
+        }
+    if isinstance(value, list):
+        return [_printable(one, strict=strict) for one in value]
+    return value

@@ -1,0 +1,67 @@
+"""The doors of the sheet: from a question to its file, and from an answer that is already there.
+
+``design_loop`` is asked with everything the sheet shows; the day without flow only where the question includes it,
+since it costs more than all the rest.
+"""
+
+from msgspec.structs import replace
+
+from loopslack.contract.answering import design_loop
+from loopslack.contract.answers import LoopDesignAnswer
+from loopslack.contract.questions import LoopDesignQuestion
+from loopslack.contract.questions_criteria import Extra
+from loopslack.contract.questions_many import FigureQuestion, SheetQuestion
+from loopslack.sheet.case import Case
+from loopslack.sheet.composing import compose
+from loopslack.sheet.figures.register import FIGURES
+from loopslack.sheet.page import page
+from loopslack.sheet.pdf import pdf
+
+SHOWN: tuple[Extra, ...] = ("rules", "remedies", "sensitivity", "derivation")
+_NEEDED: dict[str, tuple[Extra, ...]] = {
+    "rules": ("rules",),
+    "walk": ("rules",),
+    "sensitivity": ("sensitivity",),
+    "day-course": ("course",),
+}
+
+
+def sheet_html(question: SheetQuestion) -> bytes:
+    """Design the loop and set the sheet as HTML."""
+    return render_html(design_loop(_with(question.design, SHOWN)), question)
+
+
+def sheet_pdf(question: SheetQuestion) -> bytes:
+    """Design the loop and set the sheet as PDF. Raises ``NotInstalled`` where the typesetter is missing."""
+    return render_pdf(design_loop(_with(question.design, SHOWN)), question)
+
+
+def figure_svg(question: FigureQuestion) -> bytes:
+    """Design the loop and draw one figure. Raises ``NothingToDraw`` where the answer has no numbers for it."""
+    needed = _NEEDED.get(question.figure, ())
+    return render_figure(design_loop(replace(question.design, include=list(needed))), question)
+
+
+def render_html(answer: LoopDesignAnswer, question: SheetQuestion) -> bytes:
+    """The sheet of an answer as one HTML file."""
+    return page(compose(answer, question)).encode()
+
+
+def render_pdf(answer: LoopDesignAnswer, question: SheetQuestion) -> bytes:
+    """The sheet of an answer as PDF. Raises ``NotInstalled`` where the typesetter is missing."""
+    return pdf(compose(answer, question))
+
+
+def render_figure(answer: LoopDesignAnswer, question: FigureQuestion) -> bytes:
+    """One figure of an answer as SVG. Raises ``NothingToDraw`` where the answer has no numbers for it."""
+    case = Case(answer, question.design, question.language or "en")
+    make = FIGURES.get(question.figure)
+    drawing = None if make is None else make(case)
+    if drawing is None:
+        raise case.nothing(question.figure)
+    return drawing.svg.encode()
+
+
+def _with(design: LoopDesignQuestion, extras: tuple[Extra, ...]) -> LoopDesignQuestion:
+    stated = design.include or []
+    return replace(design, include=list(dict.fromkeys((*stated, *extras))))

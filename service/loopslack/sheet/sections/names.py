@@ -1,0 +1,111 @@
+"""Names of states, parts and members of the question, and the words of verdicts, as every section uses them."""
+
+import re
+
+from loopslack.contract.answers_common import Assumption, Check, SourceNote
+from loopslack.sheet.case import JOINT, Case
+from loopslack.sheet.lines import Mark
+from loopslack.sheet.words import plain
+
+_PART_SUBJECTS = {
+    "expansion vessel": "part.vessel",
+    "collectors": "part.collectors",
+    "station": "part.station",
+    "cooling vessel": "part.cooling-vessel",
+}
+_NUMBERED = re.compile(r"collectors (\d+)\Z")
+
+
+def state_name(case: Case, scenario: str) -> str:
+    """A state of the loop or a doubt, in full."""
+    if scenario == JOINT:
+        return case.words("state.required-doubts")
+    return case.words.or_else(f"state.{scenario}", plain(scenario))
+
+
+def subject_name(case: Case, subject: str) -> str:
+    """A part that a check or an advisory is about."""
+    if subject in _PART_SUBJECTS:
+        return case.words(_PART_SUBJECTS[subject])
+    numbered = _NUMBERED.match(subject)
+    if numbered:
+        return f"{case.words('part.collectors')} {numbered[1]}"
+    if subject.startswith("/"):
+        return member_name(case, subject)
+    return plain(subject)
+
+
+def check_name(case: Case, check: Check) -> str:
+    """What is checked, with the part where there are several."""
+    name = case.words.or_else(f"check.{check.code}", plain(check.code))
+    return name if check.subject is None else f"{name}: {subject_name(case, check.subject)}"
+
+
+def mark_of(case: Case, check: Check) -> Mark:
+    """How much weight a check's row carries."""
+    if check.verdict == "holds":
+        return "holds"
+    if check.verdict == "not-assessed":
+        return "open"
+    return "fails" if case.counts(check) or check.group == "confirm" else "aside"
+
+
+def verdict_word(case: Case, mark: Mark) -> str:
+    """The verdict of a row in a word."""
+    return case.words(f"mark.{mark}")
+
+
+def member_name(case: Case, pointer: str) -> str:
+    """A member of the question by what people call it, with the part it belongs to."""
+    steps = pointer.strip("/").split("/")
+    place = ""
+    if len(steps) > 1 and steps[1].isdigit():
+        index = int(steps[1])
+        if steps[0] == "collectors" and index < len(case.design.collectors):
+            place = case.group_name(index)
+        elif steps[0] == "pipeRuns" and index < len(case.design.pipe_runs):
+            place = case.run_name(index)
+    if len(steps) > 3 and steps[2] == "segments" and len(case.design.pipe_runs[int(steps[1])].segments) > 1:
+        place = case.words("inputs.stretch", run=place, number=int(steps[3]) + 1)
+    field = field_name(case, steps)
+    return f"{place}: {field}" if place else field
+
+
+def field_name(case: Case, steps: list[str]) -> str:
+    """A member by the most particular name the catalogue has for it."""
+    named = [step for step in steps if not step.isdigit()]
+    for length in (2, 1):
+        key = f"field.{'-'.join(named[-length:])}"
+        if len(named) >= length and key in case.words:
+            return case.words(key)
+    return plain("/".join(named))
+
+
+def word_name(case: Case, word: str) -> str:
+    """A word of the contract (a rule, a policy, a build) as people say it."""
+    return case.words.or_else(f"word.{word}", plain(word))
+
+
+def source_name(case: Case, source: SourceNote) -> str:
+    """Where something comes from and how far it was seen, briefly."""
+    seen = case.words(f"seen.{source.seen}")
+    if source.key == source.seen:
+        return seen
+    place = f", {plain(source.place)}" if source.place else ""
+    return f"{source_title(source.key)}{place} ({seen})"
+
+
+def source_title(key: str) -> str:
+    """The key of a source as a designation: norms in capitals, papers as they are."""
+    return (
+        key.upper().replace("-", " ", 1)
+        if key.startswith(("en-", "iso-", "din-", "ufc-", "vdi-", "ped-"))
+        else key
+    )
+
+
+def assumption_value(case: Case, assumption: Assumption) -> str:
+    """What stood in."""
+    if assumption.value is not None:
+        return case.say(assumption.value)
+    return word_name(case, assumption.word or "")

@@ -1,0 +1,91 @@
+"""What to know about this loop, gravest first, and what is still to be confirmed."""
+
+from loopslack.contract.answers_common import Advisory, AnyQuantity, Check
+from loopslack.contract.answers_loop import Provisional
+from loopslack.sheet.case import Case
+from loopslack.sheet.lines import Bullets, Notice, Section, Text
+from loopslack.sheet.sections.names import member_name, state_name, subject_name
+from loopslack.sheet.words import plain
+
+MOST_CONFIRM = 40
+
+
+def notices(case: Case) -> Section | None:
+    """Advisories as the sheet words them, from their code and their numbers."""
+    words = case.words
+    told = tuple(
+        Notice(advisory.severity, words(f"severity.{advisory.severity}"), *_worded(case, advisory))
+        for advisory in case.answer.advisories
+    )
+    blocks: list[Notice | Text | Bullets] = list(told)
+    confirm = case.result.to_confirm
+    if confirm:
+        blocks.append(Text(words("notices.confirm"), "lead"))
+        items = [_confirm(case, one) for one in confirm[:MOST_CONFIRM]]
+        if len(confirm) > MOST_CONFIRM:
+            items.append(words("notices.more", number=len(confirm) - MOST_CONFIRM))
+        blocks.append(Bullets(tuple(items)))
+    if not blocks:
+        return None
+    return Section("notices", words("section.notices"), tuple(blocks))
+
+
+def _worded(case: Case, advisory: Advisory) -> tuple[str, str]:
+    """Message and remedy: our own sentence where there is one, that of the answer where not."""
+    words = case.words
+    numbers = {name: case.say(quantity) for name, quantity in advisory.parameters.items()}
+    numbers["subject"] = "" if advisory.subject is None else subject_name(case, advisory.subject)
+    check = _check_of(case, advisory)
+    remedy = words.or_else(f"advisory.{advisory.code}.remedy", plain(advisory.remedy))
+    if check is None:
+        return _plain_worded(case, advisory, numbers), remedy
+    key = f"advisory.{advisory.code}.message"
+    if check.value is None or check.reason in {"fill-outside-window", "too-close-to-precharge"}:
+        key = f"failing.{check.reason}"
+    if key not in words:
+        return plain(advisory.message), plain(advisory.remedy)
+    return f"{state_name(case, check.scenario)}: {words(key, **numbers)}", remedy
+
+
+def _plain_worded(case: Case, advisory: Advisory, numbers: dict[str, str]) -> str:
+    key = f"advisory.{advisory.code}.message"
+    if key not in case.words:
+        return plain(advisory.message)
+    if advisory.code == "not-assessed":
+        numbers["state"] = state_name(case, advisory.subject or "")
+        numbers["reason"] = plain(advisory.message.partition(": not computed. ")[2])
+    if advisory.code == "soft-solder":
+        numbers["runs"] = plain(advisory.message.partition(" joints in ")[2].rstrip("."))
+    return case.words(key, **numbers)
+
+
+def _check_of(case: Case, advisory: Advisory) -> Check | None:
+    """The failing check an advisory speaks of: same code, part and numbers."""
+    for check in case.result.checks:
+        if (
+            check.code != advisory.code
+            or check.verdict != "does-not-hold"
+            or check.subject != advisory.subject
+        ):
+            continue
+        if _same(check.value, advisory.parameters.get("value")) and _same(
+            check.margin, advisory.parameters.get("margin")
+        ):
+            return check
+    return None
+
+
+def _same(one: AnyQuantity | None, other: AnyQuantity | None) -> bool:
+    return one == other
+
+
+def _confirm(case: Case, one: Provisional) -> str:
+    """One open point: what is open, and which number would settle it."""
+    words = case.words
+    what = words.or_else(f"confirm.{one.code}", words.or_else(f"check.{one.code}", plain(one.code)))
+    if one.field:
+        return f"{what}: {member_name(case, one.field)}"
+    if one.subject is None:
+        return what
+    reason = words.or_else(f"reason.{one.subject}", "")
+    return f"{what}: {reason or subject_name(case, one.subject)}"

@@ -1,0 +1,80 @@
+"""What to order, and what every part of the loop holds."""
+
+from loopslack.sheet.case import Case
+from loopslack.sheet.lines import Beside, Column, Row, Section, Table
+from loopslack.sheet.sections.fluids import fluid_name
+from loopslack.sheet.sections.result import article
+
+MOST_PARTS = 60
+
+
+def order(case: Case) -> Section:
+    """The order list beside the contents."""
+    return Section("order", case.words("section.order"), (Beside((_items(case),), (_contents(case),)),))
+
+
+def _items(case: Case) -> Table:
+    words, say, found, vessel = case.words, case.say, case.result.order, case.vessel
+    rows = []
+    if vessel is not None:
+        name = words("part.vessel" if case.chosen else "part.vessel-nearest")
+        rows.append(
+            (f"{name}, {article(case, vessel.id)}", f"{vessel.pieces} × {say(vessel.nominal_volume)}")
+        )
+        if vessel.price is not None:
+            amount = say.plain(f"{vessel.price.amount:.2f}")
+            rows.append((words("order.price"), f"{amount} {vessel.price.currency}"))
+        if vessel.cooling_vessel is not None:
+            rows.append(
+                (
+                    words("part.cooling-vessel"),
+                    words("order.at-least", content=say(vessel.cooling_vessel.content)),
+                )
+            )
+    if found.glycol is not None and found.glycol.value > 0:
+        rows.append((words("order.glycol"), say(found.glycol)))
+    if found.water is not None:
+        rows.append((words("order.water"), say(found.water)))
+    rows.append((words("order.ready-mix", fluid=fluid_name(case)), say(found.ready_mix)))
+    size = (
+        words("order.beyond-table")
+        if found.relief_nominal_size is None
+        else f"DN {found.relief_nominal_size}"
+    )
+    stamped = say(case.write.gauge(case.loop.relief.set_pressure))
+    rows.append((words("order.relief", set=stamped), size))
+    rows.append((words("order.container"), words("order.at-least", content=say(found.discharge_container))))
+    category = found.pressure_equipment_category
+    if category is not None:
+        rows.append((words("order.category"), words(f"category.{category}")))
+    rows.append((words("order.freezing"), say(found.freezing_point)))
+    rows.append((words("order.freezing-margin"), say.signed(found.freezing_margin)))
+    if found.ice_fraction is not None:
+        rows.append((words("order.ice"), say(found.ice_fraction)))
+    columns = (Column(words("column.item")), Column(words("column.quantity"), "number"))
+    note = words(
+        "table.order-note",
+        loop=say(found.content),
+        vessel=say(found.vessel_content),
+        loss=say(found.filling_loss),
+    )
+    return Table(words("table.order"), columns, tuple(Row(row) for row in rows), note)
+
+
+def _contents(case: Case) -> Table:
+    words, say, content = case.words, case.say, case.result.content
+    named = list(zip(case.part_names(), content.parts, strict=True))
+    rows = []
+    for name, part in named[:MOST_PARTS]:
+        ranged = "" if part.low is None or part.high is None else say.between(part.low, part.high)
+        rows.append(Row((name, say(part.content), ranged)))
+    if len(named) > MOST_PARTS:
+        rows.append(Row((words("notices.more", number=len(named) - MOST_PARTS), "", "")))
+    ranged = "" if content.low is None or content.high is None else say.between(content.low, content.high)
+    rows.append(Row((words("order.total"), say(content.total), ranged)))
+    columns = (
+        Column(words("column.part")),
+        Column(words("column.content"), "number"),
+        Column(words("column.range"), "number"),
+    )
+    return Table(words("table.content"), columns, tuple(rows), words("table.content-note"))

@@ -1,0 +1,97 @@
+"""How large the vessel must be, and how it was chosen from the candidates."""
+
+from loopslack.contract.answers_loop import RefusalReason, SizedVolume
+from loopslack.sheet.case import Case
+from loopslack.sheet.lines import Block, Column, Row, Section, Table, Text
+from loopslack.sheet.sections.result import article
+
+MOST_REFUSED = 12
+
+
+def sizing(case: Case) -> Section:
+    """The volumes by how much they survive, then the choice."""
+    words = case.words
+    blocks: list[Block] = [_volumes(case), Text(_choice(case))]
+    refused = _refused(case)
+    if refused is not None:
+        blocks.append(refused)
+    return Section("sizing", words("section.sizing"), tuple(blocks))
+
+
+def _volumes(case: Case) -> Table:
+    words, say, found = case.words, case.say, case.result.volumes
+    rows = []
+    named: tuple[tuple[str, SizedVolume | None], ...] = (
+        ("base", found.base),
+        ("recommended", found.recommended),
+        ("robust", found.robust),
+    )
+    for name, sized in named:
+        if sized is None:
+            rows.append(Row((words(f"volume.{name}"), words("volume.none"), "–", "–", "–"), "aside"))
+            continue
+        least = say(sized.smallest)
+        if sized.floor is not None:
+            least = f"{least} ({words('volume.floor', floor=say(sized.floor))})"
+        largest = words("volume.unbounded") if sized.largest is None else say(sized.largest)
+        rows.append(
+            Row((words(f"volume.{name}"), least, largest, say(sized.cooling_content), say(sized.precharge)))
+        )
+    columns = (
+        Column(words("column.survives")),
+        Column(words("column.smallest"), "number"),
+        Column(words("column.largest"), "number"),
+        Column(words("column.cooling"), "number"),
+        Column(words("column.precharge"), "number"),
+    )
+    return Table(words("table.volumes"), columns, tuple(rows), words("table.volumes-note"))
+
+
+def _choice(case: Case) -> str:
+    words, selection = case.words, case.result.selection
+    told = words(
+        "selection.sentence",
+        considered=selection.considered,
+        ranked=words(f"selection.by-{selection.ranked_by}"),
+    )
+    others = len(selection.alternatives) + selection.alternatives_omitted
+    if others:
+        names = ", ".join(
+            f"{one.pieces} × {_short(case, one.id)}" if one.pieces > 1 else _short(case, one.id)
+            for one in selection.alternatives[:6]
+        )
+        told = f"{told} {words('selection.alternatives', number=others, names=names)}"
+    return told
+
+
+def _short(case: Case, id: str) -> str:
+    """A candidate's name; a generic size by its litres."""
+    if id.startswith("preferred-"):
+        return f"{case.say.plain(id.removeprefix('preferred-').replace('-', '.'))} L"
+    return article(case, id)
+
+
+def _refused(case: Case) -> Table | None:
+    """The refused candidates, those nearest to fitting: the last before the choice in rank."""
+    words, refused = case.words, case.result.selection.refused
+    if not refused:
+        return None
+    shown = refused[-MOST_REFUSED:]
+    rows = []
+    for one in shown:
+        name = _short(case, one.id)
+        name = f"{one.pieces} × {name}" if one.pieces > 1 else name
+        rows.append(Row((name, "; ".join(_reason(case, reason) for reason in one.reasons))))
+    columns = (Column(words("column.candidate")), Column(words("column.refused")))
+    note = words("selection.more", number=len(refused) - len(shown)) if len(refused) > len(shown) else ""
+    return Table(words("table.refused"), columns, tuple(rows), note, compact=True)
+
+
+def _reason(case: Case, reason: RefusalReason) -> str:
+    words, say = case.words, case.say
+    told = words(f"refusal.{reason.code}")
+    if reason.value is not None and reason.limit is not None:
+        told = words("refusal.numbers", reason=told, value=say(reason.value), limit=say(reason.limit))
+        if reason.short_by is not None:
+            told = words("refusal.short", told=told, short=say(reason.short_by))
+    return told

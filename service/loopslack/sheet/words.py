@@ -1,0 +1,91 @@
+"""The words of the sheet in one language, from one catalogue per language, and texts of callers made safe to set.
+
+English is the first catalogue and complete; another has the same keys. Sentences that an answer brings in English
+(why something was assumed, what to do on site) stand in the other catalogue under the English sentence itself, so
+that a sentence nobody has translated yet is printed in English rather than not at all.
+"""
+
+import tomllib
+import unicodedata
+from collections.abc import Iterator, Mapping
+from functools import cache
+from importlib.resources import files
+from typing import Any
+
+from loopslack.sheet.numerals import Language
+
+_FOLDER = "words"
+REPLACEMENT = "\N{REPLACEMENT CHARACTER}"
+# Marks that turn the direction of everything behind them: no part of a name, and able to reorder a sheet.
+_DIRECTIONS = frozenset("\u061c\u200e\u200f\u202a\u202b\u202c\u202d\u202e\u2066\u2067\u2068\u2069")
+_BREAKS = frozenset("\n\r\x0b\x0c\x85\u2028\u2029")
+_UNPRINTABLE = frozenset({"Cc", "Cs", "Co", "Cn"})
+
+
+class Words:
+    """What the sheet says, by key."""
+
+    def __init__(self, language: Language, entries: Mapping[str, str], phrases: Mapping[str, str]) -> None:
+        self.language = language
+        self._entries, self._phrases = entries, phrases
+
+    def __call__(self, key: str, **parts: object) -> str:
+        """The text of a key, its places filled. Raises ``KeyError`` for a key the catalogue has not."""
+        text = self._entries[key]
+        return text.format(**parts) if parts else text
+
+    def or_else(self, key: str, other: str, **parts: object) -> str:
+        """The text of a key, or another text where the catalogue has not got it."""
+        text = self._entries.get(key)
+        return other if text is None else text.format(**parts)
+
+    def phrase(self, english: str) -> str:
+        """An English sentence of an answer in this language."""
+        return self._phrases.get(english, english)
+
+    def __contains__(self, key: str) -> bool:
+        return key in self._entries
+
+    @property
+    def keys(self) -> frozenset[str]:
+        """Every key."""
+        return frozenset(self._entries)
+
+
+@cache
+def words(language: Language) -> Words:
+    """The catalogue of a language, read once."""
+    text = files("loopslack.sheet").joinpath(_FOLDER, f"{language}.toml").read_text(encoding="utf-8")
+    tables = tomllib.loads(text)
+    phrases = tables.pop("phrases", {})
+    return Words(language, dict(_flat(tables)), phrases)
+
+
+def _flat(tables: Mapping[str, Any], prefix: str = "") -> Iterator[tuple[str, str]]:
+    for key, value in tables.items():
+        if isinstance(value, str):
+            yield prefix + key, value
+        else:
+            yield from _flat(value, f"{prefix}{key}.")
+
+
+def plain(text: str) -> str:
+    """A caller's text on one line: nothing in it can break a line, turn a direction or be no character at all."""
+    if text.isascii() and text.isprintable():
+        return text
+    return "".join(_safe(letter) for letter in text)
+
+
+def paragraphs(text: str) -> list[str]:
+    """A caller's longer text, line by line, each of them plain; empty lines are left out."""
+    return [line for part in text.splitlines() if (line := plain(part).strip())]
+
+
+def _safe(letter: str) -> str:
+    if letter in _BREAKS or letter == "\t":
+        return " "
+    if letter in _DIRECTIONS:
+        return ""
+    if unicodedata.category(letter) in _UNPRINTABLE or ord(letter) & 0xFFFE == 0xFFFE:
+        return REPLACEMENT
+    return letter
