@@ -38,7 +38,7 @@ class NotInstalled(CalculationError):
 
 def pdf(sheet: Sheet) -> bytes:
     """The whole sheet as PDF. Raises ``NotInstalled`` where the typesetter is missing."""
-    engine, failure = _typesetter()
+    engine, failure = typesetter()
     data = msgspec.to_builtins(sheet)
     stated = date.fromisoformat(sheet.date) if sheet.date else _NO_DATE
     data |= {"year": stated.year, "month": stated.month, "day": stated.day}
@@ -50,8 +50,8 @@ def pdf(sheet: Sheet) -> bytes:
                 raise
         # A text the typesetter cannot set, whatever letters it has: set with the plainest letters only, by an
         # engine that has not seen it.
-        _typesetter.cache_clear()
-        return _set(_typesetter()[0], _printable(data, strict=True))
+        typesetter.cache_clear()
+        return _set(typesetter()[0], _printable(data, strict=True))
 
 
 def _set(engine: "typst.Compiler", data: object) -> bytes:
@@ -63,7 +63,7 @@ def _set(engine: "typst.Compiler", data: object) -> bytes:
 
 
 @cache
-def _typesetter() -> tuple["typst.Compiler", type[Exception]]:
+def typesetter() -> tuple["typst.Compiler", type[Exception]]:
     """The typesetter with our template in it, made once."""
     try:
         import typst  # noqa: PLC0415 - an extra of the installation

@@ -15,7 +15,7 @@ from loopslack.sheet.case import Case
 from loopslack.sheet.composing import compose
 from loopslack.sheet.figures.register import FIGURES
 from loopslack.sheet.page import page
-from loopslack.sheet.pdf import pdf
+from loopslack.sheet.pdf import pdf, typesetter
 
 SHOWN: tuple[Extra, ...] = ("rules", "remedies", "sensitivity", "derivation")
 _NEEDED: dict[str, tuple[Extra, ...]] = {
@@ -33,13 +33,19 @@ def sheet_html(question: SheetQuestion) -> bytes:
 
 def sheet_pdf(question: SheetQuestion) -> bytes:
     """Design the loop and set the sheet as PDF. Raises ``NotInstalled`` where the typesetter is missing."""
+    typesetter()
     return render_pdf(design_loop(_with(question.design, SHOWN)), question)
 
 
 def figure_svg(question: FigureQuestion) -> bytes:
     """Design the loop and draw one figure. Raises ``NothingToDraw`` where the answer has no numbers for it."""
-    needed = _NEEDED.get(question.figure, ())
-    return render_figure(design_loop(replace(question.design, include=list(needed))), question)
+    needed = list(needed_for(question.figure))
+    return render_figure(design_loop(replace(question.design, include=needed)), question)
+
+
+def needed_for(figure: str) -> tuple[Extra, ...]:
+    """The costly parts of an answer that a figure shows."""
+    return _NEEDED.get(figure, ())
 
 
 def render_html(answer: LoopDesignAnswer, question: SheetQuestion) -> bytes:
