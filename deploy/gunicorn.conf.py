@@ -5,6 +5,7 @@ them. Measured figures behind a choice are own measurements on two cores, repeat
 """
 
 # ruff: noqa: ANN401, ARG001 - gunicorn calls its hooks with these arguments, whose classes have no types
+import atexit
 import gc
 import os
 import shutil
@@ -56,6 +57,15 @@ if os.environ.get(_MAKER, _this_master) != _this_master or not os.environ.get("P
 _metrics_directory = Path(os.environ["PROMETHEUS_MULTIPROC_DIR"])
 
 
+def _remove_metrics_directory() -> None:
+    """Remove a metrics directory that this very process made, also where the service failed to load."""
+    if os.environ.get(_MAKER) == str(os.getpid()):
+        shutil.rmtree(_metrics_directory, ignore_errors=True)
+
+
+atexit.register(_remove_metrics_directory)
+
+
 def on_starting(server: Any) -> None:
     """Forget the counts of an earlier run, but not those of a master that this one replaces."""
     _metrics_directory.mkdir(parents=True, exist_ok=True)
@@ -80,9 +90,3 @@ def child_exit(server: Any, worker: Any) -> None:
     from prometheus_client import multiprocess  # noqa: PLC0415 - reads the variable set above
 
     multiprocess.mark_process_dead(worker.pid)
-
-
-def on_exit(server: Any) -> None:
-    """Remove a metrics directory that this master made."""
-    if os.environ.get(_MAKER) == _this_master:
-        shutil.rmtree(_metrics_directory, ignore_errors=True)
