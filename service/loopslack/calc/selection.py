@@ -5,6 +5,7 @@ little more than a list of fifty.
 """
 
 from collections.abc import Sequence
+from functools import cached_property
 from math import inf
 from typing import Literal, NamedTuple
 
@@ -16,16 +17,16 @@ from loopslack.calc.cooling import Charged, hottest
 from loopslack.calc.delivered import nearest_precharge
 from loopslack.calc.fit import Fit, acceptance_needed, cooling_for, fit
 from loopslack.calc.model import Vessel
-from loopslack.calc.reasons import Reason, shortage
+from loopslack.calc.reasons import Reason, ReasonCode, shortage
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.sizing.volumes import CoolingMode, Sized
 from loopslack.kernel import kinds
 
 RankedBy = Literal["price", "volume"]
 
-# Delivered precharges solved with a cooling vessel found anew; further ones keep that of the adjusted vessel, so
-# that a list of thousands of fixed precharges stays affordable.
-_MOST_SOLVED = 100
+# Refusals solved with the candidate's own cooling vessel; further ones are told by the loop as sized, so that a list
+# of thousands stays affordable.
+_MOST_SOLVED = 50
 
 
 class Refusal(NamedTuple):
@@ -61,7 +62,8 @@ class Selector:
         self.cooling: CoolingMode = cooling
         self.membrane_limit = membrane_limit
         self._fits: dict[tuple[object, ...], Fit | None] = {}
-        self._smallest_acceptance: float | None = None
+        self._reasons: dict[tuple[object, ...], tuple[Reason, ...]] = {}
+        self._acceptances: dict[tuple[float, float | None], float] = {}
         self._solved = 0
         self._needed = pressure_to_withstand(analysis, analysis.loop.relief, 0.0)
 
@@ -76,9 +78,9 @@ class Selector:
         chosen: Fit | None = None
         alternatives, refused = [], []
         for vessel, count in offers:
-            reasons = self.reasons(vessel, count, full=chosen is None)
+            reasons = self.reasons(vessel, count, exact=chosen is None)
             if reasons:
-                refused.append(Refusal(vessel, count, tuple(reasons)))
+                refused.append(Refusal(vessel, count, reasons))
             elif chosen is None:
                 chosen = self._fit(vessel, count)
             else:
@@ -87,52 +89,72 @@ class Selector:
         ranked: RankedBy = "price" if by_price else "volume"
         return Selection(chosen, tuple(alternatives), tuple(refused), ranked, nearest)
 
-    def reasons(self, vessel: Vessel, count: int, *, full: bool = True) -> list[Reason]:
+    def reasons(self, vessel: Vessel, count: int, *, exact: bool = True) -> tuple[Reason, ...]:
         """Every reason against a candidate.
 
-        Without ``full`` the cooling vessel is not solved for: enough to sort those ranked after the choice.
+        ``exact`` solves for the candidate's own cooling vessel; without it, and after ``_MOST_SOLVED`` refusals, the
+        loop as sized tells, which is enough to sort those ranked after the choice.
         """
+        key = (exact, vessel.rated_pressure, count, *self._key(vessel, count))
+        found = self._reasons.get(key)
+        if found is None:
+            found = self._reasons[key] = tuple(self._found(vessel, count, exact=exact))
+        return found
+
+    def _found(self, vessel: Vessel, count: int, *, exact: bool) -> list[Reason]:
         found = []
-        if vessel.rated_pressure is not None and vessel.rated_pressure < self._needed:
-            found.append(
-                shortage("rated-pressure", kinds.GAUGE_PRESSURE, vessel.rated_pressure, self._needed)
-            )
-        sized = self.sized
+        rated, sized = vessel.rated_pressure, self.sized
+        if rated is not None and rated < self._needed:
+            found.append(shortage("rated-pressure", kinds.GAUGE_PRESSURE, rated, self._needed))
         if sized is None:
-            found.append(self._hopeless())
+            found.append(self._no_volume)
             return found
         nominal = vessel.nominal_volume * count
         smallest, largest = sized.smallest, sized.interval.largest
         if nominal < smallest:
-            found.append(
-                Reason("nominal-volume", kinds.NOMINAL_VOLUME, nominal, smallest, smallest - nominal)
-            )
-            self._acceptance(vessel, count, found, sized)
-            return found
-        if nominal > largest:
-            found.append(
-                Reason(
-                    "nominal-volume-beyond-interval",
-                    kinds.NOMINAL_VOLUME,
-                    nominal,
-                    largest,
-                    nominal - largest,
-                )
-            )
-            return found
-        if full or self.cooling != "size":
-            fitted = self._fit(vessel, count)
+            found.append(shortage("nominal-volume", kinds.NOMINAL_VOLUME, nominal, smallest))
+            found += self._acceptance(vessel, count, sized, smallest, None)
+        elif nominal > largest:
+            code: ReasonCode = "nominal-volume-beyond-interval"
+            found.append(Reason(code, kinds.NOMINAL_VOLUME, nominal, largest, nominal - largest))
         else:
-            # Ranked after the choice: the loop as sized tells whether it would do.
-            fitted = fit(sized.analysis, self.scenarios, vessel, count, "size", inf, content=0.0)
-        if fitted is None:
-            limit = self._limit(vessel)
-            found.append(Reason("membrane-temperature", kinds.TEMPERATURE, limit, None, None))
-        elif not fitted.window.wide_enough:
-            self._explain(vessel, count, fitted, found)
+            brief = [] if exact and self._solved < _MOST_SOLVED else self._brief(vessel, count, sized)
+            if brief or not exact:
+                return found + brief
+            fitted = self._fit(vessel, count)
+            if fitted is None:
+                limit = self._limit(vessel)
+                found.append(Reason("membrane-temperature", kinds.TEMPERATURE, limit, None, None))
+            elif not fitted.window.wide_enough:
+                self._solved += 1
+                self._explain(vessel, count, fitted, found)
         return found
 
-    def _hopeless(self) -> Reason:
+    def _brief(self, vessel: Vessel, count: int, sized: Sized) -> list[Reason]:
+        """Reasons against a vessel in the loop as it was sized, with the cooling vessel of the smallest one."""
+        nominal = vessel.nominal_volume * count
+        fixed = None if vessel.precharge_adjustable else vessel.delivered_precharge
+        if fixed is not None:
+            bare = replace(vessel, acceptance_volume=None)
+            plain = fit(sized.analysis, self.scenarios, bare, count, "size", inf, content=0.0)
+            adjusted = fit(
+                sized.analysis,
+                self.scenarios,
+                replace(bare, precharge_adjustable=True),
+                count,
+                "size",
+                inf,
+                content=0.0,
+            )
+            if plain is not None and adjusted is not None and not plain.window.wide_enough:
+                if not adjusted.window.wide_enough:
+                    return [self._too_narrow(plain)]
+                needed = nearest_precharge(adjusted, self.scenarios, fixed, lambda _: True)
+                return [shortage("precharge-as-delivered", kinds.GAUGE_PRESSURE, fixed, needed)]
+        return self._acceptance(vessel, count, sized, nominal, fixed)
+
+    @cached_property
+    def _no_volume(self) -> Reason:
         """No volume holds: the steam power nothing condenses, or no window at any size."""
         unspent = max(self.analysis.case(s).final.unspent for s in self.scenarios)
         if unspent > 0:
@@ -172,20 +194,16 @@ class Selector:
             short = None if needed_limit is None else needed_limit - limit
             found.append(Reason("membrane-temperature", kinds.TEMPERATURE, limit, needed_limit, short))
             return
-        found.append(
-            Reason(
-                "no-window",
-                kinds.PRESSURE_DIFFERENCE,
-                fitted.window.width if abs(fitted.window.width) < inf else None,
-                self.analysis.loop.criteria.window_width,
-                None,
-            )
-        )
+        found.append(self._too_narrow(fitted))
+
+    def _too_narrow(self, fitted: Fit) -> Reason:
+        width = fitted.window.width
+        limit = self.analysis.loop.criteria.window_width
+        value = width if abs(width) < inf else None
+        return Reason("no-window", kinds.PRESSURE_DIFFERENCE, value, limit, None)
 
     def _delivered(self, vessel: Vessel, delivered: float, adjusted: Fit) -> Reason:
         """How far the delivered precharge is from the nearest one that leaves a window."""
-        self._solved += 1
-        exact = self._solved <= _MOST_SOLVED
 
         def holds(precharge: float) -> bool:
             other = replace(vessel, delivered_precharge=precharge)
@@ -194,7 +212,7 @@ class Selector:
             )
             return found is not None and found.window.wide_enough
 
-        needed = nearest_precharge(adjusted, self.scenarios, delivered, holds if exact else lambda _: True)
+        needed = nearest_precharge(adjusted, self.scenarios, delivered, holds)
         return shortage("precharge-as-delivered", kinds.GAUGE_PRESSURE, delivered, needed)
 
     def _membrane_needed(self, fitted: Fit) -> float | None:
@@ -207,23 +225,27 @@ class Selector:
         charged = Charged(plain.analysis, plain.gas, plain.mass_at(lowest))
         return hottest(charged, self.scenarios)[0] + 1e-6
 
-    def _acceptance(self, vessel: Vessel, count: int, found: list[Reason], sized: Sized) -> None:
-        """For a vessel too small anyway: whether its membrane would be too small as well."""
-        if vessel.acceptance_volume is None:
-            return
-        needed = self._least_acceptance(sized) / count
-        if vessel.acceptance_volume < needed:
-            found.append(
-                shortage("acceptance-volume", kinds.ACCEPTANCE_VOLUME, vessel.acceptance_volume, needed)
+    def _acceptance(
+        self, vessel: Vessel, count: int, sized: Sized, nominal: float, fixed: float | None
+    ) -> list[Reason]:
+        """Whether the membrane takes what a vessel of ``nominal`` m3 would have to hold in the loop as sized."""
+        accepted = vessel.acceptance_volume
+        if accepted is None:
+            return []
+        needed = self._acceptances.get((nominal, fixed))
+        if needed is None:
+            article = Vessel(
+                id="",
+                nominal_volume=nominal,
+                delivered_precharge=fixed,
+                precharge_adjustable=fixed is None,
             )
-
-    def _least_acceptance(self, sized: Sized) -> float:
-        """Acceptance volume (m3) that the smallest vessel that holds would need."""
-        if self._smallest_acceptance is None:
-            article = Vessel(id="smallest", nominal_volume=sized.smallest)
             fitted = fit(sized.analysis, self.scenarios, article, 1, "size", inf, content=0.0)
-            self._smallest_acceptance = 0.0 if fitted is None else acceptance_needed(fitted, self.scenarios)
-        return self._smallest_acceptance
+            needed = 0.0 if fitted is None else acceptance_needed(fitted, self.scenarios)
+            self._acceptances[nominal, fixed] = needed
+        if accepted * count >= needed:
+            return []
+        return [shortage("acceptance-volume", kinds.ACCEPTANCE_VOLUME, accepted, needed / count)]
 
     def _limit(self, vessel: Vessel) -> float:
         return self.membrane_limit if vessel.membrane_limit is None else vessel.membrane_limit
