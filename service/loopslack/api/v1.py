@@ -5,6 +5,7 @@ from typing import Any
 
 from loopslack.api.operations import Operation
 from loopslack.api.v1_many import MANY_OPERATIONS
+from loopslack.api.v1_sheet import SHEET_OPERATIONS
 from loopslack.contract import (
     answering,
     answering_course,
@@ -181,4 +182,4 @@ _SINGLE: tuple[Operation[Any, Any], ...] = (
     ),
 )
 
-OPERATIONS: tuple[Operation[Any, Any], ...] = (*_SINGLE, *MANY_OPERATIONS)
+OPERATIONS: tuple[Operation[Any, Any], ...] = (*_SINGLE, *MANY_OPERATIONS, *SHEET_OPERATIONS)
