@@ -26,6 +26,7 @@ from loopslack.api.routes import on_fault, on_http_exception, on_refused, routes
 from loopslack.api.v1 import OPERATIONS
 from loopslack.api.wrappers import CrossOrigin, HeadAsGet, LiteralPaths, Shedding, StandingHeaders
 from loopslack.contract.refusals import Refused
+from loopslack.contract.writing_common import provenance
 from loopslack.observability import READINESS, Lines, LoopLag, set_up_logging
 from loopslack.settings import Settings, SettingsError, settings_from
 
@@ -115,6 +116,7 @@ def create_app(
         settings = settings_from(os.environ)
     if operations is None:
         operations = OPERATIONS
+    provenance()  # read every equation before the server forks, not at the first question
     return Application(settings, operations, document_pages() if pages is None else pages)
 
 
