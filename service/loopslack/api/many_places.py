@@ -9,10 +9,10 @@ what a batch is made of.
 
 import asyncio
 import sys
-import time
 from collections.abc import Callable, Iterator
 from concurrent.futures import ThreadPoolExecutor
 from contextlib import contextmanager
+from time import monotonic
 from typing import TypeVar
 
 from loopslack.api.costly import SWITCH_SECONDS
@@ -74,8 +74,8 @@ class ManyPlaces:
             self._stop_at = None
             return False
         if self._stop_at is None:
-            self._stop_at = time.monotonic() + LAST_SECONDS
-        return time.monotonic() > self._stop_at
+            self._stop_at = monotonic() + LAST_SECONDS
+        return monotonic() > self._stop_at
 
     def close(self) -> None:
         """Take no more work; what waits is dropped."""

@@ -1,0 +1,193 @@
+"""Streams and batches on the server they are served by, with clients that keep to no rule."""
+
+import http.client
+import json
+import os
+import socket
+import time
+from pathlib import Path
+
+import pytest
+
+from faults.server import serving
+from many.designs import BATCH_PATH, NDJSON, STREAM_PATH, batch, design, faulty, lines, read
+
+TESTS = Path(__file__).parents[1]
+ENVIRONMENT = {
+    "PYTHONPATH": f"{TESTS.parent / 'service'}{os.pathsep}{TESTS}",
+    "LOOPSLACK_SHED_LAG_SECONDS": "10",
+    "LOOPSLACK_READER_SECONDS": "1",
+    "LOOPSLACK_BATCHES_WAITING": "1",
+}
+STREAMS_ON_ONE_CONNECTION = 40
+MEGABYTES_FOR_NINETEEN_THOUSAND_LINES = 6
+
+
+@pytest.fixture(scope="module")
+def server(tmp_path_factory):
+    with serving(tmp_path_factory.mktemp("many"), "many.live_app:app", environment=ENVIRONMENT) as made:
+        yield made
+
+
+def connection(server):
+    return http.client.HTTPConnection("127.0.0.1", server.port, timeout=60)
+
+
+def stream(client, body):
+    client.request("POST", STREAM_PATH, body, NDJSON)
+    answer = client.getresponse()
+    return answer.status, answer.read()
+
+
+def raw(server, body):
+    """A connection on which a stream was asked for, and of which nothing was read."""
+    client = server.connect()
+    head = (
+        f"POST {STREAM_PATH} HTTP/1.1\r\nHost: x\r\nContent-Type: application/x-ndjson\r\n"
+        f"Content-Length: {len(body)}\r\n\r\n"
+    )
+    client.sendall(head.encode() + body)
+    return client
+
+
+def read_all(client):
+    text = bytearray()
+    while part := client.recv(65_536):
+        text += part
+    return bytes(text)
+
+
+def memory(server, field="VmRSS"):
+    """Memory of the only worker, in MB."""
+    [worker] = server.workers()
+    text = Path(f"/proc/{worker}/status").read_text()
+    return next(int(line.split()[1]) for line in text.splitlines() if line.startswith(field)) / 1024
+
+
+def ticks(server):
+    """Processor time of the only worker, in hundredths of a second."""
+    [worker] = server.workers()
+    fields = Path(f"/proc/{worker}/stat").read_text().rpartition(")")[2].split()
+    return int(fields[11]) + int(fields[12])
+
+
+def becomes_idle(server, within=5.0):
+    """Whether the worker stops working within a time."""
+    deadline = time.monotonic() + within
+    while time.monotonic() < deadline:
+        before = ticks(server)
+        time.sleep(0.4)
+        if ticks(server) - before <= 4:
+            return True
+    return False
+
+
+def test_many_streams_on_one_connection_are_all_answered(server):
+    client = connection(server)
+    for number in range(STREAMS_ON_ONE_CONNECTION):
+        status, body = stream(client, lines(faulty(f"q-{number}"), faulty("b")))
+        items, end = read(body)
+        assert status == 200
+        assert items[0]["id"] == f"q-{number}"
+        assert end["complete"]
+    client.request("POST", BATCH_PATH, batch(design("a")), {"content-type": "application/json"})
+    assert json.loads(client.getresponse().read())["summary"]["designs"] == 1
+
+
+def test_memory_does_not_grow_with_the_number_of_lines(server, capsys):
+    client = connection(server)
+    short = lines(*(faulty(f"q-{number}") for number in range(1000)))
+    long = lines(*(faulty(f"q-{number}") for number in range(20_000)))
+    stream(client, short)
+    before = memory(server, "VmHWM")
+    status, body = stream(client, long)
+    grown = memory(server, "VmHWM") - before
+    with capsys.disabled():
+        print(
+            f"\n1,000 to 20,000 lines ({len(long) / 1e6:.1f} MB): {before:.0f} MB, then {grown:.1f} MB more"
+        )
+    assert status == 200
+    assert read(body)[1]["summary"]["designs"] == 20_000
+    assert grown < MEGABYTES_FOR_NINETEEN_THOUSAND_LINES
+
+
+def test_a_client_that_leaves_ends_the_work(server):
+    client = raw(server, lines(*(design(f"q-{number}") for number in range(2000))))
+    assert client.recv(1000).startswith(b"HTTP/1.1 200")
+    client.close()
+    assert becomes_idle(server)
+
+
+def test_a_client_that_stops_reading_stops_the_work_and_is_cut(server):
+    client = raw(server, lines(*(design(f"q-{number}") for number in range(2000))))
+    client.recv(1000)
+    assert becomes_idle(server)
+    time.sleep(1.5)  # longer than a reader may pause
+    client.settimeout(5)
+    with pytest.raises(OSError, match=r"reset|Broken"):
+        read_all(client)
+    status, _ = stream(connection(server), lines(faulty("a")))
+    assert status == 200
+
+
+def test_a_client_that_closes_its_sending_side_still_gets_every_line(server):
+    client = raw(server, lines(*(design(f"q-{number}") for number in range(20))))
+    client.shutdown(socket.SHUT_WR)
+    client.settimeout(30)
+    text = read_all(client)
+    assert b'"complete":true' in text
+    assert text.endswith(b"0\r\n\r\n")
+
+
+def test_beyond_the_places_there_are_a_stream_is_told_when_to_come_again(server):
+    busy = [raw(server, lines(*(design(f"q-{number}") for number in range(1000)))) for _ in range(2)]
+    for client in busy:
+        client.recv(100)
+    third = connection(server)
+    third.request("POST", STREAM_PATH, lines(design("a")) + b"\n" * 3_000_000, NDJSON)
+    answer = third.getresponse()
+    assert (answer.status, answer.headers["retry-after"]) == (503, "5")
+    assert json.loads(answer.read())["type"] == "/docs/problems/overloaded"
+    for client in busy:
+        client.close()
+    assert becomes_idle(server)
+    assert stream(connection(server), lines(faulty("a")))[0] == 200
+
+
+def test_a_body_of_fifty_megabytes_is_refused_before_it_is_read(server):
+    before = memory(server)
+    client = server.connect()
+    client.sendall(
+        f"POST {STREAM_PATH} HTTP/1.1\r\nHost: x\r\nContent-Type: application/x-ndjson\r\n"
+        f"Content-Length: 50000000\r\nExpect: 100-continue\r\n\r\n".encode()
+    )
+    assert client.recv(4096).startswith(b"HTTP/1.1 413")
+    assert memory(server) - before < 2
+
+
+def test_a_body_of_fifty_megabytes_that_was_not_announced_is_cut_at_the_limit(server):
+    before = memory(server, "VmHWM")
+    client = server.connect(timeout=30)
+    client.sendall(
+        f"POST {STREAM_PATH} HTTP/1.1\r\nHost: x\r\nContent-Type: application/x-ndjson\r\n"
+        f"Transfer-Encoding: chunked\r\n\r\n".encode()
+    )
+    piece = b"10000\r\n" + b"x" * 65_536 + b"\r\n"
+    with pytest.raises(OSError, match=r"reset|Broken"):
+        client.sendall(piece * (50_000_000 // 65_536))
+    assert memory(server, "VmHWM") - before < 8
+    assert stream(connection(server), lines(faulty("a")))[0] == 200
+    assert server.log.read_text().count('"status":413') >= 2
+
+
+def test_an_upload_that_breaks_off_frees_its_place(server):
+    for _ in range(6):
+        client = server.connect()
+        client.sendall(
+            f"POST {STREAM_PATH} HTTP/1.1\r\nHost: x\r\nContent-Type: application/x-ndjson\r\n"
+            f"Content-Length: 1000000\r\n\r\n".encode()
+            + b'{"stock":'
+        )
+        client.close()
+    time.sleep(0.5)
+    assert stream(connection(server), lines(faulty("a")))[0] == 200
