@@ -25,6 +25,7 @@ MODULES = (
     "balance_steam",
     "collector",
     "collector_area",
+    "expansion",
     "geometry",
     "heat_loss",
     "mixing",

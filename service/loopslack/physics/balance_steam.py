@@ -52,6 +52,19 @@ def higher_temperature(first: Temperature, second: Temperature) -> Temperature:
 
 
 @equation(
+    "mean-temperature",
+    law="T = (T_1 + T_2) / 2",
+    symbols={"T_1": "first", "T_2": "second"},
+    source=DERIVED,
+    note="Half way between the two.",
+    valid={"first": _FROM_ZERO, "second": _FROM_ZERO},
+)
+def mean_temperature(first: Temperature, second: Temperature) -> Temperature:
+    """Mean of two temperatures, K."""
+    return Temperature((first + second) / 2)
+
+
+@equation(
     "doubted-stagnation-temperature",
     law="T = T_stg + dT",
     symbols={"T_stg": "stagnation", "dT": "doubt"},

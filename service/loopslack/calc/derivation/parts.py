@@ -1,0 +1,300 @@
+"""Steps of the parts: what each holds, what each pipe loses, when each collector stagnates.
+
+Everything that does not depend on the vessel, its cooling vessel or a doubt; written once per derivation.
+"""
+
+from functools import cached_property
+from typing import NamedTuple
+
+from loopslack.calc.derivation.book import Book
+from loopslack.calc.derivation.fluid import FluidSteps
+from loopslack.calc.derivation.ground import CollectorGround, Ground, TubeGround
+from loopslack.calc.derivation.leaves import Leaves
+from loopslack.calc.model import Branch, CollectorGroup, Loop, Segment
+from loopslack.kernel import kinds
+from loopslack.kernel.value import Value
+from loopslack.physics import balance, balance_steam, collector, collector_area, geometry, heat_loss
+
+_PLAIN = TubeGround()
+_NEW = 1e-12
+
+
+class SegmentValues(NamedTuple):
+    """A stretch of pipe in the book."""
+
+    segment: Segment
+    length: Value
+    area: Value
+    content: Value
+    place: str
+    name: str
+
+
+class GroupValues(NamedTuple):
+    """A collector group in the book, coefficients on the aperture."""
+
+    group: CollectorGroup
+    number: int
+    place: str
+    name: str
+    pieces: Value
+    aperture: Value
+    content: Value
+    efficiency: Value
+    linear: Value
+    quadratic: Value
+    stagnation: Value
+
+
+class Parts:
+    """Writes the parts of a loop."""
+
+    def __init__(self, book: Book, loop: Loop, ground: Ground) -> None:
+        self.book, self.loop, self.ground = book, loop, ground
+        self.leaves = Leaves(book, loop)
+        self.fluid = FluidSteps(book, loop.fluid, ground.fluid)
+        self._conductances: dict[str, Value] = {}
+
+    @cached_property
+    def groups(self) -> list[GroupValues]:
+        """The collector groups."""
+        self.book.chapter = "collectors"
+        return [self._group(k, group) for k, group in enumerate(self.loop.groups)]
+
+    @cached_property
+    def runs(self) -> list[list[SegmentValues]]:
+        """The pipe runs, stretch by stretch."""
+        self.book.chapter = "content"
+        return [
+            [self._segment(branch, index, k, segment) for k, segment in enumerate(branch.segments)]
+            for index, branch in enumerate(self.loop.branches)
+        ]
+
+    @cached_property
+    def run_contents(self) -> list[Value]:
+        """The content of each pipe run."""
+        runs = self.runs
+        self.book.chapter = "content"
+        return [
+            self.book.sum(
+                balance.content_sum, f"content of {run_name(branch, k)}", [s.content for s in runs[k]]
+            )
+            for k, branch in enumerate(self.loop.branches)
+        ]
+
+    @cached_property
+    def collectors(self) -> Value:
+        """The content of all collectors."""
+        groups = self.groups
+        self.book.chapter = "content"
+        return self.book.sum(
+            balance.content_sum, "content of the collectors", [group.content for group in groups]
+        )
+
+    @cached_property
+    def pipes(self) -> Value:
+        """The content of all pipe runs."""
+        return self.total(self.run_contents, "content of the pipes")
+
+    def total(self, contents: list[Value], name: str) -> Value:
+        """The sum of contents; of none it is nought, as the list of runs says."""
+        if not contents:
+            return self.leaves.none(kinds.VOLUME, name)
+        return self.book.sum(balance.content_sum, name, contents)
+
+    def conductance(self, stretch: SegmentValues) -> Value:
+        """What a stretch loses per metre and kelvin."""
+        found = self._conductances.get(stretch.place)
+        if found is None:
+            found = self._conductances[stretch.place] = self._conductance(stretch)
+        return found
+
+    def _conductance(self, stretch: SegmentValues) -> Value:
+        book, segment, place = self.book, stretch.segment, stretch.place
+        book.chapter = "pipes"
+        insulation = f"{place}/insulation"
+        if segment.insulation > 0:
+            pointer = f"{insulation}/thickness"
+            conductivity = book.leaf(
+                segment.conductivity, kinds.CONDUCTIVITY, "conductivity", f"{insulation}/conductivity"
+            )
+        else:
+            pointer = insulation
+            conductivity = self.leaves.default("insulation-conductivity")
+        new = book.step(
+            heat_loss.pipe_conductance,
+            f"heat loss per metre and kelvin of {stretch.name}",
+            outer_diameter=self._outer(segment, place),
+            insulation_thickness=book.leaf(segment.insulation, kinds.LENGTH, "insulation thickness", pointer),
+            conductivity=conductivity,
+            film_coefficient=self.leaves.default("film-coefficient"),
+        )
+        factor = segment.conductance / new.si
+        if abs(factor - 1.0) < _NEW:
+            return new
+        return book.step(
+            balance.weathered_conductance,
+            f"weathered heat loss per metre and kelvin of {stretch.name}",
+            loss_factor=book.leaf(factor, kinds.RATIO, "loss factor", f"{insulation}/lossFactor"),
+            conductance=new,
+        )
+
+    def _outer(self, segment: Segment, place: str) -> Value:
+        row = self.ground.tubes.get(place, _PLAIN).row
+        if row is None:
+            pointer = f"{place}/tube/outerDiameter"
+            return self.book.leaf(segment.outer_diameter, kinds.LENGTH, "outer diameter", pointer)
+        return self.book.tabulated(
+            row.outer_diameter, kinds.LENGTH, "outer diameter", row.standard, row.size, row.source
+        )
+
+    def _segment(self, branch: Branch, index: int, k: int, segment: Segment) -> SegmentValues:
+        book = self.book
+        place = f"/pipeRuns/{index}/segments/{k}"
+        name = run_name(branch, index)
+        if len(branch.segments) > 1:
+            name = f"stretch {k + 1} of {name}"
+        length = book.leaf(segment.length, kinds.LENGTH, f"length of {name}", f"{place}/length")
+        area = self._area(segment, place)
+        content = book.step(geometry.pipe_content, f"content of {name}", content=area, length=length)
+        return SegmentValues(segment, length, area, content, place, name)
+
+    def _area(self, segment: Segment, place: str) -> Value:
+        """Content per length, from the tube as it was named."""
+        book, tube = self.book, self.ground.tubes.get(place, _PLAIN)
+        if tube.row is not None:
+            row = tube.row
+            if (
+                abs(row.outer_diameter - 2 * row.wall - row.bore) > 1e-12
+            ):  # listed by its content, not by its wall
+                return book.tabulated(
+                    row.content,
+                    kinds.CONTENT_PER_LENGTH,
+                    "content per length",
+                    row.standard,
+                    row.size,
+                    row.source,
+                )
+            bore = book.step(
+                geometry.bore_of_tube,
+                f"bore of {row.size}",
+                outer_diameter=self._outer(segment, place),
+                wall=book.tabulated(row.wall, kinds.LENGTH, "wall", row.standard, row.size, row.source),
+            )
+        elif tube.bore is not None:
+            bore = book.leaf(tube.bore, kinds.LENGTH, "bore", f"{place}/tube/bore")
+        else:
+            pointer = f"{place}/tube/contentPerLength"
+            return book.leaf(segment.area, kinds.CONTENT_PER_LENGTH, "content per length", pointer)
+        return book.step(geometry.content_per_length, "content per length", bore=bore)
+
+    def _group(self, k: int, group: CollectorGroup) -> GroupValues:
+        book = self.book
+        place = f"/collectors/{k}"
+        ground = self.ground.collectors.get(k) or CollectorGround(aperture=f"{place}/area")
+        name = group.name or ("the collectors" if len(self.loop.groups) == 1 else f"collectors {k + 1}")
+        count = book.leaf(float(group.count), kinds.RATIO, "how many collectors", f"{place}/count")
+        one = book.leaf(group.aperture / group.count, kinds.AREA, "aperture of one", ground.aperture)
+        aperture = book.step(balance_steam.area_of_equal, f"aperture of {name}", pieces=count, area=one)
+        held = book.leaf(group.content / group.count, kinds.VOLUME, "content of one", f"{place}/content")
+        content = book.step(balance.content_of_equal, f"content of {name}", pieces=count, content=held)
+        efficiency, linear, quadratic = self._coefficients(group, place, ground)
+        stagnation = book.step(
+            collector.stagnation_temperature,
+            f"stagnation temperature of {name}",
+            optical_efficiency=efficiency,
+            irradiance=self.leaves.irradiance,
+            linear_loss=linear,
+            quadratic_loss=quadratic,
+            ambient=self.leaves.ambient,
+        )
+        if group.measured_stagnation:
+            stagnation = self._measured(group, place, ground, (linear, quadratic), stagnation)
+        return GroupValues(
+            group, k, place, name, count, aperture, content, efficiency, linear, quadratic, stagnation
+        )
+
+    def _coefficients(
+        self, group: CollectorGroup, place: str, ground: CollectorGround
+    ) -> tuple[Value, Value, Value]:
+        book, here = self.book, f"{place}/coefficients"
+        stated = ground.coefficients or (group.peak_efficiency, group.linear_loss, group.quadratic_loss)
+        efficiency = book.leaf(stated[0], kinds.RATIO, "peak efficiency", f"{here}/eta0")
+        linear = book.leaf(stated[1], kinds.HEAT_LOSS_COEFFICIENT, "linear loss", f"{here}/a1")
+        quadratic = book.leaf(
+            stated[2], kinds.QUADRATIC_HEAT_LOSS_COEFFICIENT, "quadratic loss", f"{here}/a2"
+        )
+        if ground.areas is None:
+            return efficiency, linear, quadratic
+        test, aperture = (
+            book.leaf(area, kinds.AREA, name, pointer)
+            for (area, pointer), name in zip(
+                ground.areas, ("area of the test", "aperture of one"), strict=True
+            )
+        )
+        areas = {"stated_area": test, "other_area": aperture}
+        return (
+            book.step(
+                collector_area.optical_efficiency_on_area,
+                "peak efficiency on the aperture",
+                optical_efficiency=efficiency,
+                **areas,
+            ),
+            book.step(
+                collector_area.linear_loss_on_area, "linear loss on the aperture", linear_loss=linear, **areas
+            ),
+            book.step(
+                collector_area.quadratic_loss_on_area,
+                "quadratic loss on the aperture",
+                quadratic_loss=quadratic,
+                **areas,
+            ),
+        )
+
+    def _measured(
+        self,
+        group: CollectorGroup,
+        place: str,
+        ground: CollectorGround,
+        losses: tuple[Value, Value],
+        computed: Value,
+    ) -> Value:
+        """The higher of the computed and the measured stagnation temperature, carried to the design sun."""
+        book, here, sun = self.book, f"{place}/measuredStagnation", self.loop.sun
+        if ground.measured is None:
+            measured = book.leaf(
+                group.stagnation_temperature, kinds.TEMPERATURE, "measured stagnation", f"{here}/temperature"
+            )
+        else:
+            temperature, irradiance, ambient = ground.measured
+            # The question's own member, although what it is carried to counts as assumed there.
+            measured = book.stated(
+                temperature, kinds.TEMPERATURE, "measured stagnation", f"{here}/temperature"
+            )
+            if (irradiance, ambient) != (sun.irradiance, sun.ambient):
+                measured = book.step(
+                    collector.stagnation_temperature_at_other_sun,
+                    "measured stagnation carried to the design sun",
+                    measured=measured,
+                    measured_irradiance=book.leaf(
+                        irradiance, kinds.IRRADIANCE, "sun measured in", f"{here}/irradiance"
+                    ),
+                    measured_ambient=book.leaf(
+                        ambient, kinds.TEMPERATURE, "air measured in", f"{here}/ambient"
+                    ),
+                    linear_loss=losses[0],
+                    quadratic_loss=losses[1],
+                    irradiance=self.leaves.irradiance,
+                    ambient=self.leaves.ambient,
+                )
+        return book.step(
+            balance_steam.higher_temperature,
+            "stagnation temperature that counts",
+            first=computed,
+            second=measured,
+        )
+
+
+def run_name(branch: Branch, index: int) -> str:
+    """What to call a pipe run."""
+    return branch.name or f"{branch.role} run {index + 1}"
