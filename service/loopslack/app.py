@@ -15,6 +15,7 @@ from litestar.exceptions import HTTPException
 from litestar.types import ASGIApp, Receive, Scope, Send
 
 from loopslack.api.costly import Costly
+from loopslack.api.docs import DOCS_PAGES
 from loopslack.api.guard import Guard, is_guarding, warn_if_open
 from loopslack.api.many_places import ManyPlaces
 from loopslack.api.openapi import document_pages
@@ -106,7 +107,7 @@ def create_app(
     operations: Iterable[Operation[Any, Any]] | None = None,
     pages: Iterable[Page] | None = None,
 ) -> Application:
-    """The application for some settings, by default those of the environment, with the register and the document.
+    """The application for some settings, by default those of the environment, with all that the service offers.
 
     Raises:
         SettingsError: a variable of the environment will not do.
@@ -117,7 +118,9 @@ def create_app(
     if operations is None:
         operations = OPERATIONS
     provenance()  # read every equation before the server forks, not at the first question
-    return Application(settings, operations, document_pages() if pages is None else pages)
+    if pages is None:
+        pages = (*document_pages(), *DOCS_PAGES)
+    return Application(settings, operations, pages)
 
 
 def _tracing_class() -> Any:  # noqa: ANN401 - of a module that may be absent
