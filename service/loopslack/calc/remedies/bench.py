@@ -23,7 +23,7 @@ from loopslack.calc.sizing.volumes import Sized, size, without_boiling_floor
 from loopslack.calc.window import Bounds
 from loopslack.kernel.errors import CalculationError
 
-MOST_QUICK, MOST_FULL = 300, 18
+MOST_QUICK, MOST_FULL = 300, 24
 _LARGEST_SENSIBLE = 10.0  # contents of the loop (own assumption): no remedy that asks for a larger vessel
 
 

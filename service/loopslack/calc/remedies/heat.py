@@ -31,6 +31,7 @@ class StagnationCooler(Measure):
     code = "stagnation-cooler"
     rank = 9
     any_value = True
+    finest = 1.0
     kind = kinds.POWER
 
     def options(self, case: Case) -> list[Option]:

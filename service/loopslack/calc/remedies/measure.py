@@ -32,14 +32,15 @@ RemedyCode = Literal[
 ]
 
 SPARE_VESSEL = 1.25
-"""How much larger a vessel may be than with a boundless amount: one preferred size (own assumption).
+"""How much larger a vessel may be than if the station took all steam: one preferred size (own assumption).
 
 The least amount of anything that only just keeps steam from the station goes with a vessel without bounds, and
-nobody wants it; a little more of the amount brings the vessel down to nearly what it would be anyway.
+nobody wants it; a little more of the amount brings the vessel down to nearly what the rest of the loop needs.
 """
 
 _MARGIN = 1e-4  # share by which an amount is moved to the safe side before it is rounded there
 _FULL_TRIES = 4
+_BOUNDLESS = 1e9  # W
 _WITHIN = 0.004  # share of the amount within which the smallest is found
 
 
@@ -75,6 +76,10 @@ class Measure(ABC):
     any_value = False  # whether amounts may take any value between two options
     rising = False  # whether a larger step never holds less
     refills = True  # whether the work opens the loop, which is then filled anew, as recommended
+    finest = 0.0  # the smallest difference of an amount that means anything, SI
+
+    def __init__(self, *, keep_filling: bool = False) -> None:
+        self.keep_filling = keep_filling
 
     @abstractmethod
     def options(self, case: Case) -> Sequence[Option]:
@@ -90,7 +95,9 @@ class Measure(ABC):
 
     def with_filling(self, case: Case, changes: tuple[Change, ...]) -> tuple[Change, ...]:
         """Changes, and a filling as recommended where one was stated and the loop is opened."""
-        return (*changes, Change("fill-pressure")) if self.refills and case.filled else changes
+        if case.filled and self.refills and not self.keep_filling:
+            return (*changes, Change("fill-pressure"))
+        return changes
 
     def apply(self, case: Case, amount: float) -> Case:
         """The changed case."""
@@ -111,8 +118,8 @@ class Measure(ABC):
         return [self.changes(case, option.amount) for option in picked]
 
     def step(self, amount: float) -> float:
-        """The practical step of an amount: three digits."""
-        return float(10.0 ** (floor(log10(abs(amount))) - 2)) if amount else 1.0
+        """The practical step of an amount: three digits, or the finest that means anything."""
+        return max(float(10.0 ** (floor(log10(abs(amount))) - 2)), self.finest) if amount else self.finest
 
     def search(self, case: Case, bench: Bench) -> Work["Found | None"]:
         """Find the smallest amount, pausing after every trial."""
@@ -180,6 +187,9 @@ class Measure(ABC):
 
     def _scale(self, case: Case, options: Sequence[Option], bench: Bench) -> Work[Found | None]:
         """The smallest amount between a promising one and one that fails."""
+        # What the vessel would be if the station took all steam; where that is unknown, the best of the options.
+        spare = bench.volume(with_boundless_cooler(case))
+        yield
         volumes = []
         for option in options:
             volumes.append(bench.volume(self.apply(case, option.amount)))
@@ -189,10 +199,10 @@ class Measure(ABC):
         least = min(volumes)
         if least == inf:
             return None
-        largest = SPARE_VESSEL * least
+        largest = SPARE_VESSEL * (least if spare == inf else max(least, spare))
         first = next(k for k, volume in enumerate(volumes) if volume <= largest)
         good, bad = options[first].amount, options[first].towards
-        while abs(good - bad) > max(_WITHIN * abs(good), 0.5 * self.step(good)) and not bench.spent:
+        while abs(good - bad) > max(_WITHIN * abs(good), 0.5 * self.finest) and not bench.spent:
             middle = 0.5 * (good + bad)
             if bench.volume(self.apply(case, middle)) <= largest:
                 good = middle
@@ -235,3 +245,8 @@ class Measure(ABC):
         if amount >= away_from:
             return ceil((amount + share) / step) * step
         return floor((amount - share) / step) * step
+
+
+def with_boundless_cooler(case: Case) -> Case:
+    """The case if the station took any steam that arrives."""
+    return changed(case, (Change("steam-cooler", _BOUNDLESS),))

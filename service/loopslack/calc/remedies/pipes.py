@@ -54,6 +54,7 @@ class BarePipe(Measure):
     code = "bare-pipe"
     rank = 11
     any_value = True
+    finest = 0.1
     kind = kinds.LENGTH
 
     def options(self, case: Case) -> list[Option]:
@@ -104,6 +105,7 @@ class ExtraPipe(Measure):
     code = "extra-pipe"
     rank = 13
     any_value = True
+    finest = 0.1
     kind = kinds.LENGTH
 
     def options(self, case: Case) -> list[Option]:

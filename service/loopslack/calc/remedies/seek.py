@@ -34,28 +34,28 @@ class Remedies(NamedTuple):
     full_evaluations: int
 
 
-def measures(stock: Sequence[Vessel] = ()) -> tuple[Measure, ...]:
-    """Every measure, by how small the intervention is.
+def measures(stock: Sequence[Vessel] = (), *, keep_filling: bool = False) -> tuple[Measure, ...]:
+    """Every measure but the filling, by how small the intervention is.
 
     The order is the rank: settings an installer changes (filling, precharge, cut-off) before the fluid, then vessels,
     valve and parts that are exchanged, then a cooler that is added, then work on the pipes (own assumption, from what
-    each takes in hours and in new parts).
+    each takes in hours and in new parts). With ``keep_filling`` work that opens the loop ends with the stated filling,
+    else with the recommended one.
     """
     return (
-        FillPressure(),
-        PrechargePressure(),
-        CutOff(),
-        StrongerGlycol(),
-        OtherVessel(stock),
-        CoolingVessel(),
-        HigherValve(),
-        LowerValve(),
-        PartRatings(),
-        StagnationCooler(),
-        OpenRun(),
-        BarePipe(),
-        BareRun(),
-        ExtraPipe(),
+        PrechargePressure(keep_filling=keep_filling),
+        CutOff(keep_filling=keep_filling),
+        StrongerGlycol(keep_filling=keep_filling),
+        OtherVessel(stock, keep_filling=keep_filling),
+        CoolingVessel(keep_filling=keep_filling),
+        HigherValve(keep_filling=keep_filling),
+        LowerValve(keep_filling=keep_filling),
+        PartRatings(keep_filling=keep_filling),
+        StagnationCooler(keep_filling=keep_filling),
+        OpenRun(keep_filling=keep_filling),
+        BarePipe(keep_filling=keep_filling),
+        BareRun(keep_filling=keep_filling),
+        ExtraPipe(keep_filling=keep_filling),
     )
 
 
@@ -65,8 +65,10 @@ def remedies(case: Case, bench: Bench, stock: Sequence[Vessel] = ()) -> Work[Rem
     yield
     if present.holds:
         return _result((), None, None, bench, needed=False)
-    single: list[Found] = []
-    every = measures(stock)
+    filling = yield from FillPressure().search(case, bench)
+    single: list[Found] = [] if filling is None else [filling]
+    # Where another filling is enough, nothing may be offered that helps only because it ends with a new one.
+    every = measures(stock, keep_filling=filling is not None)
     for measure in every:
         found = yield from measure.search(case, bench)
         if found is not None:
@@ -74,7 +76,7 @@ def remedies(case: Case, bench: Bench, stock: Sequence[Vessel] = ()) -> Work[Rem
     emptying = yield from better_emptying(case, bench)
     pair = None
     if not single:
-        pair = yield from smallest_pair(case, every, bench)
+        pair = yield from smallest_pair(case, (FillPressure(), *every), bench)
     single.sort(key=lambda found: found.rank)
     return _result(tuple(single), pair, emptying, bench, needed=True)
 

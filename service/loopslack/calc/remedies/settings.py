@@ -80,6 +80,7 @@ class PrechargePressure(Measure):
     code = "precharge"
     rank = 2
     any_value = True
+    finest = _PRESSURE_STEP
     kind = kinds.ABSOLUTE_PRESSURE
 
     def options(self, case: Case) -> list[Option]:
@@ -110,10 +111,6 @@ class PrechargePressure(Measure):
         vessel = min(case.candidates, key=lambda v: v.nominal_volume)
         return gas_of(analysed(case), replace(vessel, precharge_adjustable=True), case.pieces).precharge
 
-    def step(self, amount: float) -> float:  # noqa: ARG002 - one signature for all measures
-        """A hundredth of a bar."""
-        return _PRESSURE_STEP
-
     def rounded(self, case: Case, amount: float, away_from: float) -> float:
         """Away from the present to a hundredth of a bar of what a gauge on site shows."""
         gauge = (amount - case.loop.atmosphere) / _PRESSURE_STEP
@@ -127,6 +124,7 @@ class CutOff(Measure):
     code = "cut-off"
     rank = 3
     any_value = True
+    finest = 1.0
     refills = False
     kind = kinds.TEMPERATURE
 
@@ -143,10 +141,6 @@ class CutOff(Measure):
     def present(self, case: Case) -> float:
         """The present cut-off, K."""
         return case.loop.temperatures.cut_off
-
-    def step(self, amount: float) -> float:  # noqa: ARG002 - one signature for all measures
-        """A whole kelvin."""
-        return 1.0
 
     def rounded(self, case: Case, amount: float, away_from: float) -> float:  # noqa: ARG002 - one signature for all measures
         """Down to whole degrees Celsius, as controllers have it."""

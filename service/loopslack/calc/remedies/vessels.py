@@ -30,16 +30,18 @@ class OtherVessel(Measure):
     code = "vessel"
     rank = 5
     any_value = True
+    finest = 1e-4
     kind = kinds.NOMINAL_VOLUME
 
-    def __init__(self, stock: Sequence[Vessel] = ()) -> None:
+    def __init__(self, stock: Sequence[Vessel] = (), *, keep_filling: bool = False) -> None:
+        super().__init__(keep_filling=keep_filling)
         self.stock = tuple(stock)
 
     def options(self, case: Case) -> list[Option]:
         """Sizes on both sides of a vessel that is there, nearest first; none where candidates were all refused."""
         if not case.existing:
             return []
-        present = self.present(case)
+        present = _nominal(case)
         found, above, below = [], present, present
         for k in range(1, _UP + 1):
             found.append(Option(present * _LADDER**k, above))
@@ -49,9 +51,9 @@ class OtherVessel(Measure):
                 below = present / _LADDER**k
         return found
 
-    def present(self, case: Case) -> float:
-        """Nominal volume of all vessels that are there, or of the largest candidates, m3."""
-        return max(v.nominal_volume for v in case.candidates) * case.pieces
+    def present(self, case: Case) -> float | None:
+        """Nominal volume of all vessels that are there, or given, m3; none where there are several to choose from."""
+        return _nominal(case) if len(case.candidates) == 1 else None
 
     def own_changes(self, case: Case, amount: float) -> tuple[Change, ...]:
         """Vessels of ``amount`` m3 together, whose membrane and rating do not limit them."""
@@ -68,8 +70,7 @@ class OtherVessel(Measure):
     def probes(self, case: Case) -> list[tuple[Change, ...]]:
         """A few sizes: of the present vessel, or of the loop's content."""
         if case.existing:
-            present = self.present(case)
-            return [self.changes(case, present * factor) for factor in _PROBES]
+            return [self.changes(case, _nominal(case) * factor) for factor in _PROBES]
         return [self.changes(case, case.loop.content * factor) for factor in _PROBES_OF_CONTENT]
 
     def search(self, case: Case, bench: Bench) -> Work[Found | None]:
@@ -95,7 +96,7 @@ class OtherVessel(Measure):
 
     def _article(self, case: Case, solved: Found, bench: Bench) -> Work[Found]:
         """The nearest article of the stock, or else of the preferred sizes, that holds; else the volume itself."""
-        larger = solved.amount >= self.present(case) or not case.existing
+        larger = not case.existing or solved.amount >= _nominal(case)
         pieces = solved.case.pieces
         articles = self.stock or tuple(
             replace(solved.case.candidates[0], id=size.id, nominal_volume=size.nominal_volume)
@@ -119,6 +120,7 @@ class CoolingVessel(Measure):
     code = "cooling-vessel"
     rank = 6
     any_value = True
+    finest = 1e-4
     kind = kinds.VOLUME
 
     def options(self, case: Case) -> list[Option]:
@@ -126,7 +128,7 @@ class CoolingVessel(Measure):
         if case.cooling == "size":
             return []
         present = case.loop.cooling_content
-        nominal = max(v.nominal_volume for v in case.candidates) * case.pieces
+        nominal = _nominal(case)
         if not case.existing:
             nominal = min(nominal, case.loop.content)
         found, towards = [], present
@@ -142,6 +144,11 @@ class CoolingVessel(Measure):
     def present(self, case: Case) -> float:
         """Content of the present one, m3."""
         return case.loop.cooling_content
+
+
+def _nominal(case: Case) -> float:
+    """Nominal volume of the vessels that are there, or the most that may be chosen, m3."""
+    return max(vessel.nominal_volume for vessel in case.candidates) * case.pieces
 
 
 def _vessels(article: Vessel, pieces: int) -> tuple[Change, ...]:
