@@ -76,10 +76,6 @@ class Case:
             }
         return frozenset(present if policy == "combined" else present - {"all-doubts"})
 
-    def counts(self, check: Check) -> bool:
-        """Whether a check decides the verdict."""
-        return check.group == "core" and check.scenario in self.counted
-
     def state(self, id: str) -> LiquidState | None:
         """A state without steam."""
         return next((state for state in self.result.states if state.id == id), None)

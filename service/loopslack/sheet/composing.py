@@ -12,11 +12,14 @@ from loopslack.sheet.lines import Fact, Section, Sheet, Text
 from loopslack.sheet.sections import closing
 from loopslack.sheet.sections.assumptions import assumptions
 from loopslack.sheet.sections.checks import checks
+from loopslack.sheet.sections.day import day
 from loopslack.sheet.sections.inputs import inputs
 from loopslack.sheet.sections.notices import notices
 from loopslack.sheet.sections.order import order
 from loopslack.sheet.sections.pressures import pressures
 from loopslack.sheet.sections.result import banner, result
+from loopslack.sheet.sections.rules import rules
+from loopslack.sheet.sections.sensitivity import sensitivity
 from loopslack.sheet.sections.settings import settings
 from loopslack.sheet.sections.sizing import sizing
 from loopslack.sheet.sections.steam import steam
@@ -26,10 +29,13 @@ SECTIONS: tuple[Callable[[Case], Section | None], ...] = (
     result,
     notices,
     pressures,
-    settings,
     steam,
-    checks,
+    settings,
     sizing,
+    rules,
+    sensitivity,
+    day,
+    checks,
     order,
     inputs,
     assumptions,

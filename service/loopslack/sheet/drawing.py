@@ -84,6 +84,12 @@ def round_ticks(low: float, high: float, most: int) -> list[float]:
     return [0.0 if k == 0 else float(f"{k * step:.12g}") for k in range(first, last + 1)]
 
 
+def tick_labels(ticks: Sequence[float]) -> list[tuple[float, str]]:
+    """Ticks with their digits, all with as many decimals as the finest of them needs."""
+    places = max((len(f"{tick:.10g}".partition(".")[2]) for tick in ticks), default=0)
+    return [(tick, f"{tick:.{places}f}") for tick in ticks]
+
+
 class Scale:
     """A straight scale from numbers to places on paper."""
 

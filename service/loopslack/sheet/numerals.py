@@ -15,6 +15,7 @@ Language = Literal["en", "de"]
 
 NO_BREAK = "\N{NO-BREAK SPACE}"
 MINUS = "\N{MINUS SIGN}"
+NOTHING = "\N{EN DASH}"
 _GROUP = "\N{NARROW NO-BREAK SPACE}"
 
 # Decimals that are always shown, also as noughts: what is read off a gauge has a fixed number of places.
@@ -140,7 +141,7 @@ class Numerals:
     def __call__(self, quantity: Quantity | None) -> str:
         """A quantity of an answer, rounded, with its unit; a dash where there is none."""
         if quantity is None:
-            return "–"
+            return NOTHING
         return self.joined(self.digits(quantity), quantity.unit)
 
     def digits(self, quantity: Quantity) -> str:
@@ -152,18 +153,22 @@ class Numerals:
     def signed(self, quantity: Quantity | None) -> str:
         """A margin: with its sign, also where it is positive."""
         if quantity is None:
-            return "–"
+            return NOTHING
         text = self(quantity)
         return f"+{text}" if quantity.value > 0 else text
 
+    def size(self, quantity: Quantity) -> str:
+        """A change without its sign, where the words around it say which way."""
+        return self(quantity).lstrip(MINUS)
+
     def between(self, low: Quantity, high: Quantity) -> str:
         """A range."""
-        return f"{self.digits(low)} – {self(high)}"
+        return f"{self.digits(low)} {NOTHING} {self(high)}"
 
     def stated(self, quantity: Quantity | None) -> str:
         """A quantity of a question, with every digit it was stated with."""
         if quantity is None:
-            return "–"
+            return NOTHING
         return self.joined(self.every_digit(quantity.value), quantity.unit)
 
     def every_digit(self, value: float) -> str:

@@ -43,7 +43,7 @@ def _style() -> tuple[str, str]:
 def page(sheet: Sheet) -> str:
     """The whole page."""
     style, policy = _style()
-    title = f"{sheet.title} – {sheet.subject}" if sheet.subject else sheet.title
+    title = f"{sheet.title} \N{EN DASH} {sheet.subject}" if sheet.subject else sheet.title
     head = "".join(_fact(fact) for fact in sheet.head)
     contents = "".join(
         f'<li><a href="#{section.id}">{escape(section.title)}</a></li>' for section in sheet.sections

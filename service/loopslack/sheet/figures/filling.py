@@ -2,7 +2,7 @@
 
 from loopslack.contract.answers_loop import FillRow
 from loopslack.sheet.case import Case
-from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Point, Scale
+from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Point, Scale, tick_labels
 from loopslack.sheet.lines import Drawing
 
 NAME = "fill-pressure-over-temperature"
@@ -54,9 +54,9 @@ def _told(case: Case, row: FillRow) -> str:
 def _grid(canvas: Canvas, case: Case, across: Scale, up: Scale, days: list[float], bottom: float) -> None:
     say, words = case.say, case.words
     right = WIDTH - 10.0
-    for tick in up.ticks(12):
+    for tick, label in tick_labels(up.ticks(12)):
         canvas.line((_LEFT, up(tick)), (right, up(tick)), "grid")
-        canvas.text((_LEFT - 5.0, up(tick) + 3.5), say.every_digit(tick), "end", size=SMALL)
+        canvas.text((_LEFT - 5.0, up(tick) + 3.5), say.plain(label), "end", size=SMALL)
     for day in days:
         canvas.line((across(day), _TOP), (across(day), bottom), "grid")
         canvas.text((across(day), bottom + 13.0), say.plain(f"{day:g}"), "middle", size=SMALL)

@@ -3,7 +3,7 @@
 from loopslack.contract.answers_loop import StagnationState
 from loopslack.physics.statics import GRAVITY
 from loopslack.sheet.case import Case
-from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Point, Scale
+from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Point, Scale, tick_labels
 from loopslack.sheet.figures.fronts import front_height
 from loopslack.sheet.figures.marks import SIGNS, Entry, key, key_height
 from loopslack.sheet.lines import Drawing
@@ -116,12 +116,12 @@ def _limit(canvas: Canvas, x: float, y: float, name: str, *, down: bool) -> None
 def _grid(canvas: Canvas, case: Case, across: Scale, up: Scale, bottom: float) -> None:
     say, words = case.say, case.words
     right = WIDTH - 10.0
-    for tick in across.ticks(8):
+    for tick, label in tick_labels(across.ticks(8)):
         canvas.line((across(tick), _TOP), (across(tick), bottom), "grid")
-        canvas.text((across(tick), bottom + 14.0), say.every_digit(tick), "middle", size=SMALL)
-    for tick in up.ticks(6):
+        canvas.text((across(tick), bottom + 14.0), say.plain(label), "middle", size=SMALL)
+    for tick, label in tick_labels(up.ticks(6)):
         canvas.line((_LEFT - 4.0, up(tick)), (_LEFT, up(tick)))
-        canvas.text((_LEFT - 6.0, up(tick) + 3.5), say.every_digit(tick), "end", size=SMALL)
+        canvas.text((_LEFT - 6.0, up(tick) + 3.5), say.plain(label), "end", size=SMALL)
     canvas.line((_LEFT, bottom), (right, bottom), weight=1.2)
     canvas.line((_LEFT, _TOP), (_LEFT, bottom), weight=1.2)
     pressure, length = case.write.gauge(0.0).unit, case.write.length(0.0).unit

@@ -4,7 +4,7 @@ from itertools import pairwise
 
 from loopslack.contract.answers_loop import StagnationState
 from loopslack.sheet.case import Case
-from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Scale, fitted, width_of
+from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Scale, fitted, width_of, tick_labels
 from loopslack.sheet.figures.marks import SIGNS, Entry, key, key_height
 from loopslack.sheet.lines import Drawing
 
@@ -93,7 +93,7 @@ def _stagnation(case: Case, sign: str, state: StagnationState) -> Entry:
         name = f"{name}: {words(f'short.{state.scenario}')}"
     opens = state.regime in ("valve-opens", "membrane-full")
     if opens:
-        name = f"{name} – {words('figure.opens')}"
+        name = f"{name} \N{EN DASH} {words('figure.opens')}"
     pressure = say(state.vessel_pressure)
     return Entry(
         sign, name, (say(state.vessel_liquid), f"≥ {pressure}" if state.lower_bound else pressure), opens
@@ -105,12 +105,12 @@ def _grid(canvas: Canvas, case: Case, across: Scale, up: Scale, bottom: float) -
     right = WIDTH - 10.0
     vessel = case.vessel
     unit = vessel.total_nominal_volume.unit if vessel is not None else ""
-    for tick in up.ticks(8):
+    for tick, label in tick_labels(up.ticks(8)):
         canvas.line((_LEFT, up(tick)), (right, up(tick)), "grid")
-        canvas.text((_LEFT - 5.0, up(tick) + 3.5), say.every_digit(tick), "end", size=SMALL)
-    for tick in across.ticks(8):
+        canvas.text((_LEFT - 5.0, up(tick) + 3.5), say.plain(label), "end", size=SMALL)
+    for tick, label in tick_labels(across.ticks(8)):
         canvas.line((across(tick), bottom), (across(tick), bottom + 4.0), "ink")
-        canvas.text((across(tick), bottom + 14.0), say.every_digit(tick), "middle", size=SMALL)
+        canvas.text((across(tick), bottom + 14.0), say.plain(label), "middle", size=SMALL)
     canvas.line((_LEFT, bottom), (right, bottom), weight=1.2)
     canvas.line((_LEFT, _TOP), (_LEFT, bottom), weight=1.2)
     canvas.text(

@@ -5,7 +5,7 @@ from collections.abc import Iterator
 from msgspec import Struct
 
 from loopslack.sheet.case import Case
-from loopslack.sheet.drawing import LETTER, SMALL, WIDTH, Canvas, Point, Scale, fitted, spread
+from loopslack.sheet.drawing import LETTER, SMALL, WIDTH, Canvas, Point, Scale, fitted, spread, tick_labels
 from loopslack.sheet.figures.symbols import collector, cooling_vessel, relief_valve, station, vessel
 from loopslack.sheet.lines import Drawing
 
@@ -56,9 +56,9 @@ def _heights(canvas: Canvas, case: Case, low: float, high: float, up: Scale) -> 
     write, say = case.write, case.say
     scale = Scale(write.length(low).value, write.length(high).value, up(low), up(high))
     canvas.line((_AXIS, up(low)), (_AXIS, up(high)), "soft")
-    for tick in scale.ticks(7):
+    for tick, label in tick_labels(scale.ticks(7)):
         canvas.line((_AXIS - 4.0, scale(tick)), (_AXIS, scale(tick)), "soft")
-        canvas.text((_AXIS - 7.0, scale(tick) + 3.5), say.every_digit(tick), "end", size=SMALL, kind="q")
+        canvas.text((_AXIS - 7.0, scale(tick) + 3.5), say.plain(label), "end", size=SMALL, kind="q")
     unit = say.unit(write.length(0.0).unit)
     canvas.text((2.0, 12.0), f"{case.words('axis.height')}, {unit}", size=SMALL, kind="q")
     canvas.line((_AXIS, up(0.0)), (_VESSEL + 18.0, up(0.0)), "grid", dash="4 3")
@@ -75,7 +75,7 @@ def _field(canvas: Canvas, case: Case, up: Scale) -> Iterator[_Label]:
         middle = left + (place + 0.5) * width
         y = up(group.height)
         collector(canvas, (middle, y), min(width - 6.0, 64.0))
-        name = f"{case.group_name(index)} × {group.count}"
+        name = f"{case.group_name(index)} \N{MULTIPLICATION SIGN} {group.count}"
         if place == len(shown) - 1 and len(loop.groups) > len(shown):
             name = f"{name} {words('figure.and-more', number=len(loop.groups) - len(shown))}"
         more = f"{say(parts[index].content)} · {say(case.write.length(group.height))}"
@@ -135,7 +135,7 @@ def _plant(canvas: Canvas, case: Case, up: Scale) -> Iterator[_Label]:
     vessel(canvas, (_VESSEL, top))
     size = say(chosen.nominal_volume)
     line = held.get("vessel-line")
-    more = f"{chosen.pieces} × {size}" if chosen.pieces > 1 else size
+    more = f"{chosen.pieces} \N{MULTIPLICATION SIGN} {size}" if chosen.pieces > 1 else size
     if line is not None:
         more = f"{more} · {words('figure.line', content=say(line))}"
     yield _Label(

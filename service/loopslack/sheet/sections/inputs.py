@@ -174,11 +174,11 @@ def _collector(case: Case, index: int, group: CollectorGroup) -> Iterator[str]:
                 air=say.stated(measured.ambient),
             )
         )
-    yield "; ".join(curve) or "–"
+    yield "; ".join(curve) or "\N{EN DASH}"
     if group.measured_steam_power is not None:
         yield words("inputs.steam-power", power=say.stated(group.measured_steam_power))
     else:
-        yield "–" if group.emptying_class is None else word_name(case, group.emptying_class)
+        yield "\N{EN DASH}" if group.emptying_class is None else word_name(case, group.emptying_class)
     yield say.stated(group.height)
     yield say.stated(group.rated_pressure)
 

@@ -42,7 +42,7 @@ def pipes(case: Case, most: int) -> Table:
 
 def _stretch(case: Case, segment: PipeSegment) -> tuple[str, ...]:
     words, say = case.words, case.say
-    where = ["–" if segment.zone is None else word_name(case, segment.zone)]
+    where = ["\N{EN DASH}" if segment.zone is None else word_name(case, segment.zone)]
     if segment.ambient is not None:
         where.append(say.stated(segment.ambient))
     if segment.end_height is not None:
@@ -75,12 +75,12 @@ def _tube(case: Case, tube: Tube) -> str:
 def _insulation(case: Case, insulation: Insulation | None) -> str:
     words, say = case.words, case.say
     if insulation is None:
-        return "–"
+        return "\N{EN DASH}"
     if isinstance(insulation, NoInsulation):
         return words("word.bare")
     told = [words("word.weathered")] if isinstance(insulation, Weathered) else []
     assert isinstance(insulation, Insulated | Weathered)
     told += [say.stated(one) for one in (insulation.thickness, insulation.conductivity) if one is not None]
     if isinstance(insulation, Weathered) and insulation.loss_factor is not None:
-        told.append(f"× {say.every_digit(insulation.loss_factor)}")
+        told.append(f"\N{MULTIPLICATION SIGN} {say.every_digit(insulation.loss_factor)}")
     return ", ".join(told) or words("word.insulated")

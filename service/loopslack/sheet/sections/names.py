@@ -47,7 +47,7 @@ def mark_of(case: Case, check: Check) -> Mark:
         return "holds"
     if check.verdict == "not-assessed":
         return "open"
-    return "fails" if case.counts(check) or check.group == "confirm" else "aside"
+    return "fails" if check.scenario in case.counted else "aside"
 
 
 def verdict_word(case: Case, mark: Mark) -> str:

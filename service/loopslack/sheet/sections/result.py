@@ -87,8 +87,8 @@ def _facts(case: Case) -> list[Fact]:
 def _vessel(case: Case) -> list[Fact]:
     words, say, vessel = case.words, case.say, case.vessel
     if vessel is None:
-        return [Fact(words("part.vessel"), "–")]
-    size = f"{vessel.pieces} × {say(vessel.nominal_volume)}"
+        return [Fact(words("part.vessel"), "\N{EN DASH}")]
+    size = f"{vessel.pieces} \N{MULTIPLICATION SIGN} {say(vessel.nominal_volume)}"
     rating = words("fact.unrated") if vessel.rated_pressure is None else words(
         "fact.rated", pressure=say(vessel.rated_pressure)
     )  # fmt: skip

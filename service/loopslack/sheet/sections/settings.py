@@ -47,7 +47,7 @@ def _facts(case: Case, card: SettingsCard) -> list[Fact]:
     vessel = case.vessel
     found = []
     if vessel is not None:
-        found.append(Fact(words("part.vessel"), f"{vessel.pieces} × {say(vessel.nominal_volume)}"))
+        found.append(Fact(words("part.vessel"), f"{vessel.pieces} \N{MULTIPLICATION SIGN} {say(vessel.nominal_volume)}"))
         if vessel.cooling_vessel is not None:
             found.append(Fact(words("part.cooling-vessel"), say(vessel.cooling_vessel.content)))
     found += [
@@ -89,7 +89,7 @@ def _by_temperature(case: Case, card: SettingsCard) -> Table:
     rows = []
     for row in card.by_temperature:
         if row.recommended is None:
-            rows.append(Row((say(row.temperature), "–", words(f"omitted.{row.omitted}"), "–")))
+            rows.append(Row((say(row.temperature), "\N{EN DASH}", words(f"omitted.{row.omitted}"), "\N{EN DASH}")))
         else:
             rows.append(Row((say(row.temperature), say(row.lower), say(row.recommended), say(row.upper))))
     columns = (

@@ -28,7 +28,7 @@ def _volumes(case: Case) -> Table:
     )
     for name, sized in named:
         if sized is None:
-            rows.append(Row((words(f"volume.{name}"), words("volume.none"), "–", "–", "–"), "aside"))
+            rows.append(Row((words(f"volume.{name}"), words("volume.none"), "\N{EN DASH}", "\N{EN DASH}", "\N{EN DASH}"), "aside"))
             continue
         least = say(sized.smallest)
         if sized.floor is not None:
@@ -57,7 +57,7 @@ def _choice(case: Case) -> str:
     others = len(selection.alternatives) + selection.alternatives_omitted
     if others:
         names = ", ".join(
-            f"{one.pieces} × {_short(case, one.id)}" if one.pieces > 1 else _short(case, one.id)
+            f"{one.pieces} \N{MULTIPLICATION SIGN} {_short(case, one.id)}" if one.pieces > 1 else _short(case, one.id)
             for one in selection.alternatives[:6]
         )
         told = f"{told} {words('selection.alternatives', number=others, names=names)}"
@@ -80,7 +80,7 @@ def _refused(case: Case) -> Table | None:
     rows = []
     for one in shown:
         name = _short(case, one.id)
-        name = f"{one.pieces} × {name}" if one.pieces > 1 else name
+        name = f"{one.pieces} \N{MULTIPLICATION SIGN} {name}" if one.pieces > 1 else name
         rows.append(Row((name, "; ".join(_reason(case, reason) for reason in one.reasons))))
     columns = (Column(words("column.candidate")), Column(words("column.refused")))
     note = words("selection.more", number=len(refused) - len(shown)) if len(refused) > len(shown) else ""

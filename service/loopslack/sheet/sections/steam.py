@@ -1,58 +1,53 @@
-"""Stagnation: how far steam reaches, and what the vessel sees in the base case and under every doubt."""
+"""Stagnation: how far steam reaches, the doubts, and what the loop does in the base case and under each of them."""
+
+from collections.abc import Callable
 
 from loopslack.contract.answers_loop import StagnationState
 from loopslack.sheet.case import Case
 from loopslack.sheet.figures.reach import steam_reach
-from loopslack.sheet.lines import Block, Column, Mark, Row, Section, Table
+from loopslack.sheet.lines import Beside, Block, Column, Mark, Row, Section, Table
+from loopslack.sheet.sections.doubts import doubts
 from loopslack.sheet.sections.names import state_name, verdict_word
 
+_Cell = Callable[[Case, StagnationState], str]
 
-def steam(case: Case) -> Section | None:
-    """The figure and the table of all cases."""
-    states = case.result.stagnation
-    if not states:
-        return None
-    words, say = case.words, case.say
-    rows = []
-    for state in states:
-        bound = "≥ " if state.lower_bound else ""
-        mark = _mark(case, state)
-        cells = (
-            state_name(case, state.scenario),
-            words(f"regime.{state.regime}"),
-            f"{bound}{say(state.vessel_pressure)}",
-            say(state.steam_temperature),
-            say(state.stagnation_temperature),
-            f"{bound}{say(state.steam_volume)}",
-            say(state.steam_power),
-            say(state.unspent_power),
-            f"{bound}{say(state.vessel_liquid)}",
-            say(state.mixed_temperature),
-            verdict_word(case, mark),
-        )
-        rows.append(Row(cells, mark))
-    numbers = (
-        "pressure",
-        "steam-temperature",
-        "stagnation-temperature",
-        "steam-volume",
-        "steam-power",
-        "unspent",
-        "vessel-liquid",
-        "mixed",
-    )
-    columns = (
-        Column(words("column.case")),
-        Column(words("column.regime")),
-        *(Column(words(f"column.{name}"), "number") for name in numbers),
-        Column(words("column.verdict")),
-    )
+
+def steam(case: Case) -> Section:
+    """The figure beside the doubts, then a column for every case."""
     figure = steam_reach(case)
-    blocks: list[Block] = [] if figure is None else [figure]
-    blocks.append(
-        Table(words("table.stagnation"), columns, tuple(rows), words("table.stagnation-note"), compact=True)
-    )
-    return Section("steam", words("section.steam"), tuple(blocks))
+    blocks: list[Block] = [doubts(case)] if figure is None else [Beside((figure,), (doubts(case),))]
+    if case.result.stagnation:
+        blocks.append(_table(case))
+    return Section("steam", case.words("section.steam"), tuple(blocks))
+
+
+def _bounded(case: Case, state: StagnationState, shown: str) -> str:
+    return f"≥ {shown}" if state.lower_bound else shown
+
+
+_ROWS: tuple[tuple[str, _Cell], ...] = (
+    ("regime", lambda case, state: case.words(f"regime.{state.regime}")),
+    ("pressure", lambda case, state: _bounded(case, state, case.say(state.vessel_pressure))),
+    ("steam-temperature", lambda case, state: case.say(state.steam_temperature)),
+    ("stagnation-temperature", lambda case, state: case.say(state.stagnation_temperature)),
+    ("steam-power", lambda case, state: case.say(state.steam_power)),
+    ("unspent", lambda case, state: case.say(state.unspent_power)),
+    ("steam-volume", lambda case, state: _bounded(case, state, case.say(state.steam_volume))),
+    ("vessel-liquid", lambda case, state: _bounded(case, state, case.say(state.vessel_liquid))),
+    ("gas", lambda case, state: case.say(state.gas_temperature)),
+    ("mixed", lambda case, state: case.say(state.mixed_temperature)),
+    ("last", lambda case, state: case.say(state.last_arriving_temperature)),
+)
+
+
+def _table(case: Case) -> Table:
+    words, states = case.words, case.result.stagnation
+    rows = [Row((words(f"column.{name}"), *(cell(case, state) for state in states))) for name, cell in _ROWS]
+    marks = [_mark(case, state) for state in states]
+    worst: Mark = "fails" if "fails" in marks else "open" if "open" in marks else ""
+    rows.append(Row((words("column.verdict"), *(verdict_word(case, mark) for mark in marks)), worst))
+    columns = (Column(words("column.case")), *(Column(state_name(case, state.scenario), "number") for state in states))
+    return Table(words("table.stagnation"), columns, tuple(rows), words("table.stagnation-note"), compact=True)
 
 
 def _mark(case: Case, state: StagnationState) -> Mark:

@@ -1,0 +1,63 @@
+"""Which inputs move the volume, and how much worse than stated the vessel still takes."""
+
+from loopslack.contract.answers_sizing import HeadRoomRow, SensitivityRow
+from loopslack.sheet.case import Case
+from loopslack.sheet.figures.bars import sensitivity as figure
+from loopslack.sheet.lines import Beside, Block, Column, Row, Section, Table
+from loopslack.sheet.sections.names import state_name
+from loopslack.sheet.sections.sizing_names import input_name, input_number
+from loopslack.sheet.words import plain
+
+
+def sensitivity(case: Case) -> Section | None:
+    """The figure beside what the vessel still takes, then every input."""
+    found = case.answer.sensitivity
+    if found is None:
+        return None
+    words = case.words
+    room = Table(
+        words("table.head-room"),
+        (Column(words("column.worse")), Column(words("column.by-up-to"), "number"), Column(words("column.ended-by"))),
+        tuple(_room(case, row) for row in found.head_room),
+        compact=True,
+    )
+    drawn = figure(case)
+    blocks: list[Block] = [room] if drawn is None else [Beside((drawn,), (room,))]
+    columns = (
+        Column(words("column.input")),
+        Column(words("column.present"), "number"),
+        Column(words("column.range"), "number"),
+        Column(words("column.volume-low"), "number"),
+        Column(words("column.volume-high"), "number"),
+        Column(words("column.largest-change"), "number"),
+    )
+    rows = tuple(Row(_cells(case, row)) for row in found.inputs)
+    blocks.append(Table(words("table.sensitivity"), columns, rows, words("table.sensitivity-note"), compact=True))
+    return Section("sensitivity", words("section.sensitivity"), tuple(blocks))
+
+
+def _cells(case: Case, row: SensitivityRow) -> tuple[str, ...]:
+    words, say = case.words, case.say
+    none = words("volume.none")
+    low, high = (input_number(case, row.input, end.value) for end in (row.low, row.high))
+    return (
+        input_name(case, row.input),
+        input_number(case, row.input, row.present),
+        words("figure.from-to", low=low, high=high),
+        none if row.low.nominal_volume is None else say(row.low.nominal_volume),
+        none if row.high.nominal_volume is None else say(row.high.nominal_volume),
+        words("sensitivity.decides") if row.decides else say(row.largest_change),
+    )
+
+
+def _room(case: Case, row: HeadRoomRow) -> Row:
+    words, say = case.words, case.say
+    name = words.or_else(f"head-room.{row.id}", plain(row.id))
+    ended = "" if row.ended_by is None else words.or_else(f"check.{row.ended_by}", plain(row.ended_by))
+    if ended and row.scenario:
+        ended = f"{ended} ({state_name(case, row.scenario)})"
+    if row.outcome == "none":
+        return Row((name, words("head-room.none"), ended), "fails")
+    if row.outcome == "beyond-search":
+        return Row((name, words("head-room.beyond", value=say(row.value)), ended))
+    return Row((name, say(row.value), ended))

@@ -1,0 +1,44 @@
+"""Names of sizing rules, of the steps between them and of the inputs that move the volume."""
+
+from loopslack.contract.answers_common import AnyQuantity
+from loopslack.contract.answers_sizing import RuleComparison, WalkStep
+from loopslack.sheet.case import Case
+from loopslack.sheet.numerals import NO_BREAK, rounded
+from loopslack.sheet.words import plain
+
+# A collector's content per area is a length in the answer. The trade says litres per square metre, which is the
+# millimetre, or gallons per square foot: a foot of it is 1728/231 gallons, since a gallon has 231 cubic inches.
+_PER_AREA = {"m": (1000.0, "L/m²"), "ft": (1728.0 / 231.0, "gal/ft²")}
+
+
+def rule_title(case: Case, rule: RuleComparison) -> str:
+    """A rule's name, with the variant where there are two."""
+    title = case.words.or_else(f"rule.{rule.rule}.title", plain(rule.title))
+    if rule.variant is None:
+        return title
+    return f"{title}, {case.words.or_else(f'variant.{rule.variant}', plain(rule.variant))}"
+
+
+def step_name(case: Case, step: WalkStep) -> str:
+    """A step in a few words."""
+    return " + ".join(case.words.or_else(f"walk.{code}", plain(code)) for code in step.codes)
+
+
+def input_name(case: Case, input: str) -> str:
+    """An input that was moved."""
+    words = case.words
+    if f"input.{input}" in words:
+        return words(f"input.{input}")
+    for build in ("flat-plate", "evacuated-tube-direct", "evacuated-tube-heat-pipe"):
+        if input.endswith(f"-{build}"):
+            return words.or_else(f"input.{input.removesuffix(f'-{build}')}", plain(input))
+    return plain(input)
+
+
+def input_number(case: Case, input: str, quantity: AnyQuantity) -> str:
+    """The number of an input as the trade writes it."""
+    say = case.say
+    if quantity.unit in _PER_AREA and input.startswith(("collector-content", "station-content-per-area")):
+        factor, unit = _PER_AREA[quantity.unit]
+        return f"{say.plain(rounded(quantity.value * factor, unit))}{NO_BREAK}{unit}"
+    return say(quantity)
