@@ -19,7 +19,8 @@ stage_lint() { ruff check --quiet .; }
 stage_types() { mypy; }
 stage_floors() { lint-imports; }
 stage_tests() {
-    run_pytest tests --cov --cov-report=term:skip-covered --cov-report=json:.cache/coverage.json &&
+    run_pytest tests --numprocesses auto --dist worksteal --durations 12 \
+        --cov --cov-report= --cov-report=json:.cache/coverage.json &&
         python tests/coverage_of_core.py .cache/coverage.json
 }
 stage_connections() { run_pytest tests/faults/test_connections.py; }
@@ -47,7 +48,7 @@ run_pytest() {
     read -r more_passed more_failed more_skipped <.cache/reports/counts
     passed=$((passed + more_passed))
     failed=$((failed + more_failed))
-    [ "$more_skipped" -eq 0 ] || say "$more_skipped tests were skipped, which counts as a failure here."
+    [ "$more_skipped" -eq 0 ] || say "" "$more_skipped tests were skipped, which counts as a failure here."
     [ "$pytest_status" -eq 0 ] && [ "$more_skipped" -eq 0 ]
 }
 

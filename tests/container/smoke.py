@@ -17,7 +17,7 @@ from cyclonedx.schema import SchemaVersion
 from cyclonedx.validation.json import JsonStrictValidator
 
 INSIDE = """
-import json, os
+import json, os, sys
 from importlib.util import find_spec
 
 status = dict(line.split(":", 1) for line in open("/proc/self/status"))
@@ -34,7 +34,7 @@ print(json.dumps({
     "group": os.getgid(),
     "effective capabilities": int(status["CapEff"], 16),
     "no new privileges": int(status["NoNewPrivs"]),
-    "writable": [folder for folder in ("/", "/etc", "/opt/loopslack", "/usr", "/var", "/home") if writable(folder)],
+    "writable": [folder for folder in ("/", "/etc", sys.prefix, "/usr", "/var", "/home") if writable(folder)],
     "shells": [shell for shell in shells if os.path.exists(shell)],
     "compiled parser": find_spec("gunicorn_h1c") is not None,
     "installer": find_spec("pip") is not None,
