@@ -200,6 +200,9 @@ def changes() -> list[Change]:
         (base, "/pump/netPositiveSuction", q(3, "mH2O")),
         (base, "/gauge/height", q(1.5, "m")),
         (base, "/vesselZone", "outdoor"),
+        (base, "/construction", {"automaticMakeUp": True}),
+        (_with(construction={"automaticMakeUp": False}), "/construction/automaticMakeUp", True),
+        (_with(construction={"galvanisedParts": False}), "/construction/galvanisedParts", True),
         (base, "/vessel/ratedPressure", q(8, "barg")),
         (base, "/coolingVessel", {"kind": "none"}),
         (base, "/coolingVessel", {"kind": "given", "content": q(6, "L")}),
@@ -439,6 +442,7 @@ def changes() -> list[Change]:
 
 
 WITHOUT_EFFECT = {
+    "Construction.openOrDrainBack": "Refuses the question; tested with the refusals.",
     "CollectorGroup.areaBasis": "Says which of the areas `area` is; alone it contradicts them.",
     "CollectorGroup.steamSpace": "A label: which groups share steam, not what it is called.",
     "PipeRun.steamSpace": "A label: which runs belong to which groups, not what it is called.",

@@ -7,7 +7,7 @@ from loopslack.contract.questions_vessels import FromStock, GivenVessel
 from loopslack.contract.reader import Reader
 from loopslack.contract.reading import read_loop
 from loopslack.contract.reading_vessels import read_choice
-from loopslack.kernel.errors import CalculationError, Refusals
+from loopslack.kernel.errors import CalculationError, NotApplicable, Refusals
 from questions.wash_house import changed, question, wash_house
 
 
@@ -232,3 +232,10 @@ def test_a_given_vessel_without_rating_is_provisional():
     choice = read_choice(reader, given)
     assert choice.fill_pressure == pytest.approx(1.9e5 + 101325)
     assert [one.pointer for one in reader.provisional] == ["/vessel/ratedPressure"]
+
+
+def test_an_open_or_drain_back_loop_is_refused_as_other_physics() -> None:
+    with pytest.raises(NotApplicable) as refusal:
+        read_loop(question(changed(wash_house(), "/construction", {"openOrDrainBack": True})))
+    assert refusal.value.code == "other-physics"
+    assert refusal.value.pointer == "/construction/openOrDrainBack"

@@ -185,6 +185,12 @@ def pressure_to_withstand(analysis: Analysis, relief: Relief, height: float) -> 
     return relief.set_pressure + density * GRAVITY * drop
 
 
+def construction(analysis: Analysis) -> Iterator[Check]:
+    """What is built so that no vessel makes it sound; each fault is a check that fails."""
+    for fault in analysis.loop.faults:
+        yield Check("construction", True, "fill", "does-not-hold", kinds.RATIO, subject=fault, reason=fault)
+
+
 def part_temperatures(analysis: Analysis) -> Iterator[Check]:
     """Stated highest temperatures against the pump's cut-off temperature, the hottest a running pump brings."""
     hottest = analysis.loop.temperatures.cut_off

@@ -165,6 +165,7 @@ def _static(
     for part in loop.parts:
         yield checks.protected(analysis, part)
     yield from checks.part_temperatures(analysis)
+    yield from checks.construction(analysis)
     yield checks.suction(analysis, states["cut-off"].pressure)
     yield relief_size_check(loop.aperture, loop.relief.nominal_size)
 

@@ -24,6 +24,7 @@ CheckCode = Literal[
     "freezing",
     "fill-window",
     "part-protected",
+    "construction",
     "part-temperature",
     "part-rating",
     "net-positive-suction",

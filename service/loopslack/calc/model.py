@@ -14,6 +14,7 @@ SteamAccess = Literal["open", "closed", "unknown"]
 Role = Literal["flow", "return"]
 PumpSide = Literal["suction", "discharge"]
 Emptying = Literal["good", "fair", "poor", "measured"]
+ConstructionFault = Literal["automatic-make-up", "galvanised-parts"]
 
 
 class CollectorGroup(Struct, frozen=True, kw_only=True):
@@ -186,7 +187,8 @@ class Loop(Struct, frozen=True, kw_only=True):
     """One loop with everything that decides its pressures.
 
     ``top`` is the height of the highest point of any part including the vessel (never below 0);
-    ``atmosphere`` the site's absolute pressure, Pa; ``cooling_content`` the cooling vessel's content, m3.
+    ``atmosphere`` the site's absolute pressure, Pa; ``cooling_content`` the cooling vessel's content, m3; ``faults``
+    what is built so that no vessel makes it sound.
     """
 
     fluid: Fluid
@@ -209,6 +211,7 @@ class Loop(Struct, frozen=True, kw_only=True):
     sun: Sun
     criteria: Criteria
     precharge: Precharge
+    faults: tuple[ConstructionFault, ...] = ()
 
     @property
     def collector_content(self) -> float:

@@ -40,6 +40,10 @@ FAILING: dict[str, tuple[str, str]] = {
         "liquid stands at {value}; glycol degrades above about {limit}",
         "Test the fluid after every stagnation and keep stagnation rare.",
     ),
+    "construction": (
+        "the loop has {subject}",
+        "Remove it: dilution by fresh water costs the frost protection, and glycol attacks zinc.",
+    ),
     "freezing": (
         "the fluid freezes at {value}; {limit} is asked for at this site",
         "Use more glycol.",
@@ -67,6 +71,8 @@ FAILING: dict[str, tuple[str, str]] = {
 }
 WITHOUT_NUMBER = {
     "vessel-empty": "the vessel would be empty, so the pressure is not defined and the loop may draw air",
+    "automatic-make-up": "the loop has an automatic make-up, which dilutes the glycol unseen and hides a leak",
+    "galvanised-parts": "the loop has galvanised parts, whose zinc glycol dissolves",
     "no-window": "no fill pressure keeps every check",
     "fill-outside-window": "the filling lies outside the fill window",
     "too-close-to-precharge": "the fill window lies too close to the precharge",

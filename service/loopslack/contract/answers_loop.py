@@ -118,6 +118,7 @@ class CoolingVesselResult(AnswerPart, frozen=True, kw_only=True, gc=False):
     """The cooling vessel that belongs to the expansion vessel. Without it the membrane would get too hot."""
 
     content: Annotated[q.Volume, text("Its content; the smallest that keeps the membrane within its limit.")]
+    least_rated_pressure: Annotated[q.Pressure, text("Rated pressure it must have at least.")]
     place: Annotated[str, text("Where it goes.", "In the line before the expansion vessel, uninsulated.")]
 
 

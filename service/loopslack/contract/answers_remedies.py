@@ -7,14 +7,13 @@ they make a new question, whose answer holds.
 from typing import Annotated, Literal
 
 from loopslack.calc.remedies.measure import RemedyCode
+from loopslack.calc.states import StateId
 from loopslack.contract import quantity as q
 from loopslack.contract.answers_common import AnswerPart, AnyQuantity, Caution
 from loopslack.contract.answers_loop import ScenarioId, VesselResult
 from loopslack.contract.fields import text
 
 ChangeAction = Literal["set", "remove", "repeat"]
-LeftStateId = Literal["fill", "cold"]
-ToBeProvedCode = Literal["better-emptying"]
 
 
 class QuestionChange(AnswerPart, frozen=True, kw_only=True, gc=False):
@@ -71,7 +70,7 @@ class RemedyPair(AnswerPart, frozen=True, kw_only=True):
 class ToBeProved(AnswerPart, frozen=True, kw_only=True):
     """Something that would help if it could be shown. No verdict rests on it before it is measured."""
 
-    code: Annotated[ToBeProvedCode, text("What it is.", "better-emptying")]
+    code: Annotated[str, text("What it is.", "better-emptying")]
     sentence: Annotated[str, text("What would have to be shown, and how.")]
     amount: Annotated[q.Irradiance, text("Steam power per aperture that a measurement must not exceed.")]
     present: Annotated[q.Irradiance, text("What is counted now.")]
@@ -105,7 +104,7 @@ class RobustCooler(AnswerPart, frozen=True, kw_only=True):
 class LeftState(AnswerPart, frozen=True, kw_only=True):
     """A state without steam after the discharge. Pressures are absent where the vessel is empty."""
 
-    id: Annotated[LeftStateId, text("The state.", "cold")]
+    id: Annotated[StateId, text("The state.", "cold")]
     vessel_liquid: Annotated[q.Volume, text("Liquid in the vessel; negative is what the loop lacks.")]
     vessel_pressure: Annotated[q.Pressure | None, text("Pressure at the vessel connection.")] = None
     top_pressure: Annotated[q.Pressure | None, text("Pressure at the highest point.")] = None

@@ -22,6 +22,7 @@ from loopslack.contract.questions_criteria import (
 from loopslack.contract.questions_fluid import Fluid
 from loopslack.contract.questions_pipes import PipeRun, Zone
 from loopslack.contract.questions_plant import (
+    Construction,
     LoopTemperatures,
     PressureGauge,
     Pump,
@@ -121,6 +122,7 @@ class LoopQuestion(Question, frozen=True, kw_only=True):
         Parts | None,
         text("Parts with ratings: collectors, exchanger, fittings. Without ratings no full verdict."),
     ] = None
+    construction: Annotated[Construction | None, text("How the loop is built, where that matters.")] = None
     temperatures: Annotated[LoopTemperatures | None, text("Temperatures of the states.")] = None
     vessel_zone: Annotated[
         Zone | None, text("Whether the vessel stands indoors. If absent, `indoor`.", "indoor")

@@ -166,6 +166,23 @@ class RatedPart(QuestionPart, frozen=True, kw_only=True):
     ] = None
 
 
+class Construction(QuestionPart, frozen=True, kw_only=True):
+    """How a loop is built, where no vessel can make up for it."""
+
+    open_or_drain_back: Annotated[
+        bool | None,
+        text(
+            "Whether the loop is open or drains back. If absent, false. Such a loop is refused: other physics."
+        ),
+    ] = None
+    automatic_make_up: Annotated[
+        bool | None, text("Whether water is made up automatically. If absent, false. A stop with glycol.")
+    ] = None
+    galvanised_parts: Annotated[
+        bool | None, text("Whether any part is galvanised. If absent, false. A stop with glycol.")
+    ] = None
+
+
 class LoopTemperatures(QuestionPart, frozen=True, kw_only=True):
     """Temperatures of the states, all with defaults of the trade."""
 

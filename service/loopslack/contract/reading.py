@@ -21,6 +21,7 @@ from loopslack.contract.reading_fluid import read_fluid
 from loopslack.contract.reading_heat import read_sun
 from loopslack.contract.reading_layout import Ends, read_branches, read_groups, read_top
 from loopslack.contract.reading_plant import (
+    read_construction,
     read_gauge,
     read_line,
     read_parts,
@@ -150,6 +151,7 @@ def _loop(reader: Reader, question: asked.LoopQuestion) -> tuple[Loop, Cooling]:
         sun=climate.sun,
         criteria=read_criteria(reader, question.criteria, suction),
         precharge=_precharge(reader, question),
+        faults=read_construction(reader, question.construction, climate.fluid),
     )
     return loop, cooling
 

@@ -124,9 +124,16 @@ def _vessels(question: questions.LoopQuestion) -> dict[str, str]:
 
 
 def _heights(question: questions.LoopQuestion) -> frozenset[str]:
-    return frozenset(
+    collectors_stated = {
         f"/collectors/{k}/height" for k, group in enumerate(question.collectors) if group.height is not None
-    )
+    }
+    ends_stated = {
+        f"/pipeRuns/{index}/segments/{k}/endHeight"
+        for index, run in enumerate(question.pipe_runs)
+        for k, segment in enumerate(run.segments)
+        if segment.end_height is not None
+    }
+    return frozenset(collectors_stated | ends_stated)
 
 
 def _fill(question: questions.LoopQuestion) -> str:

@@ -3,13 +3,15 @@
 from collections.abc import Sequence
 from typing import cast
 
-from loopslack.calc.model import Part, PumpSide, Relief, Station
+from loopslack.calc.fluids_base import Fluid
+from loopslack.calc.model import ConstructionFault, Part, PumpSide, Relief, Station
 from loopslack.contract import questions_plant as asked
 from loopslack.contract.fields import field_of
 from loopslack.contract.questions import LoopQuestion
 from loopslack.contract.questions_collectors import CollectorGroup
 from loopslack.contract.reader import Reader
 from loopslack.kernel import kinds
+from loopslack.kernel.errors import NotApplicable
 from loopslack.kernel.kinds import GaugePressure, PressureDifference
 from loopslack.library.defaults import default
 from loopslack.physics.relief import (
@@ -199,3 +201,27 @@ def read_parts(
         if part.rated_pressure is None:
             reader.doubtful("rating-unstated", part.pointer)
     return tuple(found)
+
+
+def read_construction(
+    reader: Reader, built: asked.Construction | None, fluid: Fluid
+) -> tuple[ConstructionFault, ...]:
+    """Read how the loop is built; an open or drain-back loop is refused."""
+    if built is None:
+        return ()
+    if built.open_or_drain_back:
+        reader.refuse(
+            NotApplicable(
+                "The loop is stated to be open or to drain back.",
+                remedy="This service computes closed, pressurised loops only: their physics is another.",
+                pointer="/construction/openOrDrainBack",
+                code="other-physics",
+            )
+        )
+    faults: list[ConstructionFault] = []
+    if fluid.kind != "water":
+        if built.automatic_make_up:
+            faults.append("automatic-make-up")
+        if built.galvanised_parts:
+            faults.append("galvanised-parts")
+    return tuple(faults)

@@ -57,7 +57,7 @@ def _discharge(found: Discharge, write: Writer, pressure: Pressures) -> out.Disc
 
 def _left(found: Left, write: Writer, pressure: Pressures) -> out.LeftState:
     return out.LeftState(
-        id="cold" if found.id == "cold" else "fill",
+        id=found.id,
         vessel_liquid=write.volume(found.liquid),
         vessel_pressure=pressure.optional(found.pressure),
         top_pressure=pressure.optional(found.top_pressure),

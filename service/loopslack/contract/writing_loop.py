@@ -7,6 +7,7 @@ from math import isfinite
 from typing import NamedTuple
 
 from loopslack.calc.analysis import Analysis
+from loopslack.calc.checks import pressure_to_withstand
 from loopslack.calc.equilibrium import Equilibrium
 from loopslack.calc.fit import Fit
 from loopslack.calc.judgement import Check as CheckResult
@@ -230,7 +231,12 @@ def vessel(found: Fit, write: Writer, *, own_cooling: bool = True) -> out.Vessel
     pieces = found.pieces
     cooling = None
     if own_cooling and found.cooling > 0:
-        cooling = out.CoolingVesselResult(content=write.volume(found.cooling), place=COOLING_PLACE)
+        needed = pressure_to_withstand(found.analysis, found.analysis.loop.relief, 0.0)
+        cooling = out.CoolingVesselResult(
+            content=write.volume(found.cooling),
+            least_rated_pressure=write.gauge(needed),
+            place=COOLING_PLACE,
+        )
     return out.VesselResult(
         id=article.id,
         pieces=pieces,
