@@ -13,5 +13,8 @@ def check_step(going) -> None:
     assert state.vapour >= 0
     assert state.masses[-1] >= -0.015 * plant.tables.density(293.15) * loop.vessel.nominal_volume
     assert all(mass >= 0 for mass in state.masses[:-1])
-    if loop.relief is not None and "start-above-set" not in going.chronicle.flags:
-        assert state.vessel_pressure <= 1.1 * loop.relief.set_pressure
+    guarded = loop.relief is not None and "start-above-set" not in going.chronicle.flags
+    if guarded and state.vessel_pressure > 1.1 * loop.relief.set_pressure:
+        # Only a valve that stands open and passes all it can may see more than a tenth above its set pressure.
+        assert state.valve_open
+        assert "valve-overloaded" in going.chronicle.flags

@@ -1,7 +1,7 @@
-"""Loops and days at random, from one collector to a field of 800, all that the model allows.
+"""Loops and days at random, from one collector to a field of 800, all that the model allows. Nothing is real.
 
-``python -m calc.course.random_loops`` in ``tests`` (with ``service`` on the path) checks 400 of them and prints what
-it met; a sample runs with the other tests. Nothing here is real.
+A sample runs with the other tests, 400 in ``all_random_loops``; ``python -m calc.course.random_loops SEED COUNT``
+with ``tests`` and ``service`` on the path prints what it met.
 """
 
 import sys

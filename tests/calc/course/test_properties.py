@@ -83,3 +83,9 @@ def test_tables_of_two_own_fluids_are_never_mixed_up():
     thin = own_fluid(points, 253.15, boiling, heat_capacity=heat)
     thick = own_fluid([(t, 1.05 * d) for t, d in points], 253.15, boiling, heat_capacity=heat)
     assert tables_of(thick).density(300.0) == pytest.approx(1.05 * tables_of(thin).density(300.0))
+
+
+def test_density_is_held_beyond_the_ends_of_the_grid():
+    tables = tables_of(glycol("propylene-glycol", 0.43))
+    assert tables.density(150.0) == tables.density(233.15)
+    assert tables.density(900.0) == tables.density(573.15)

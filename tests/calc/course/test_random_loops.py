@@ -1,4 +1,4 @@
-"""A sample of random loops and days; ``python -m calc.course.random_loops`` checks 400 of them."""
+"""A sample of random loops and days; ``all_random_loops`` checks 400 of them."""
 
 from random import Random
 

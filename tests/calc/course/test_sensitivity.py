@@ -145,3 +145,11 @@ def test_a_start_above_the_set_pressure_is_flagged():
     curve = course(lumped(relief=valve(1.8)))
     assert "start-above-set" in curve.flags
     assert "start-above-set" not in course(lumped(relief=valve(2.2))).flags
+
+
+def test_a_valve_too_small_for_the_collectors_is_flagged_as_overloaded():
+    small = replace(valve(3), flow_area=2e-8)
+    curve = course(lumped(relief=small, emptying="good", wets_all=True, reflux=1.0))
+    assert "valve-overloaded" in curve.flags
+    assert curve.largest["vessel_pressure"].value > 1.1 * small.set_pressure
+    assert "valve-overloaded" not in course(lumped(relief=valve(3))).flags

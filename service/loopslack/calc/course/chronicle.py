@@ -18,11 +18,15 @@ Flag = Literal[
     "start-above-set",
     "steam-at-cooler",
     "steam-at-station",
+    "valve-overloaded",
     "vessel-empty",
     "void",
 ]
 
 _STRENGTH_KNOWN = 0.63  # mass fraction to which boiling and density were measured
+_OVERPRESSURE = (
+    1.1  # of the set pressure: above, the valve passes all it can and it is not enough; own assumption
+)
 _NEAR_STOP = 0.95  # of the nominal volume, where no acceptance volume is stated; own assumption
 
 
@@ -126,6 +130,12 @@ class Chronicle:
         lowest = relief.lowest_opening if relief is not None else None
         if lowest is not None and state.vessel_pressure > lowest:
             flags.add("above-lowest-opening")
+        if (
+            relief is not None
+            and state.valve_open
+            and state.vessel_pressure > _OVERPRESSURE * relief.set_pressure
+        ):
+            flags.add("valve-overloaded")
         if taken.ending == "no-steam" and state.volume > 0.0:
             flags.add("void")
         if max(state.liquid, state.boiling if state.volume > 0.0 else 0.0) > plant.tables.hottest:

@@ -8,6 +8,7 @@ from collections.abc import Callable
 from typing import Literal, NamedTuple
 
 from loopslack.calc.course.balance import Balance
+from loopslack.calc.course.lumped import ReliefValve
 from loopslack.calc.course.plant import Plant
 from loopslack.calc.course.relief import passed
 from loopslack.calc.course.state import State
@@ -17,6 +18,8 @@ from loopslack.kernel.roots import bracketed
 Ending = Literal["steam", "no-steam", "overfull"]
 
 _FIRST_STRIDE = 1e-5
+_MOST_TRIALS = 200
+_UNEVEN = 100.0  # between the residuals at the ends of a bracket
 _NEGLIGIBLE = 1e-10  # of the filled mass: vapour that may stay unaccounted for when the root is taken
 
 
@@ -55,38 +58,36 @@ def step(plant: Plant, state: State, weather: Weather, dt: float) -> Step:
     ending = _solve(balance)
     valve_open = False
     if plant.loop.relief is not None:
-        ending, valve_open = _relieve(balance, ending)
+        ending, valve_open = _relieve(balance, plant.loop.relief, ending)
     collector = balance.collector
     if ending == "no-steam":
         warm = collector.warm(balance.geometric)
         return Step(balance, ending, warm, warm, collector.evaporated, 0.0, balance.dry_wall, 0.0, valve_open)
     surplus = -balance.missing if ending == "overfull" else 0.0
-    # No more can condense in the collectors than there is; the root leaves some millionths of a kilogram open.
-    held = state.vapour - balance.condensed - surplus
+    # No more can condense than there is; the root leaves some millionths of a kilogram open.
+    vapour = state.vapour + collector.evaporated - surplus
     return Step(
         balance,
         ending,
         collector.absorber,
         collector.boiling,
-        max(collector.evaporated, -held),
-        balance.condensed,
+        collector.evaporated - min(0.0, vapour),
+        min(balance.condensed, max(0.0, vapour)),
         balance.wall,
         surplus,
         valve_open,
     )
 
 
-def _relieve(balance: Balance, ending: Ending) -> tuple[Ending, bool]:
+def _relieve(balance: Balance, valve: ReliefValve, ending: Ending) -> tuple[Ending, bool]:
     """Let liquid out if the valve opens or stands open; whether it still stands open at the end of the step.
 
     If the valve can pass in this step what it takes to fall to the closing pressure, it does so and shuts;
     else it passes what it can.
     """
-    valve, state = balance.plant.loop.relief, balance.state
-    if valve is None:
-        return ending, False
     pressure = balance.vessel_pressure
-    if not (pressure > valve.set_pressure or (state.valve_open and pressure > valve.closing_pressure)):
+    stays_open = balance.state.valve_open and pressure > valve.closing_pressure
+    if not (stays_open or pressure > valve.set_pressure):
         return ending, False
     atmosphere = balance.plant.loop.atmosphere
     capacity = passed(valve, atmosphere, balance.vessel_density, pressure, balance.dt)
@@ -123,10 +124,36 @@ def _solve(balance: Balance) -> Ending:
         found = _downward(residual, start, here, least, stride)
         if found is None:
             return "no-steam"
-    root = bracketed(residual, *found, tolerance=1e-13 * highest).at
+    root = _root(residual, *found, tolerance=1e-13 * highest)
     if balance.volume != root:
         balance.residual(root)
     return "steam"
+
+
+def _root(
+    residual: Callable[[float], float],
+    low: float,
+    high: float,
+    at_low: float,
+    at_high: float,
+    *,
+    tolerance: float,
+) -> float:
+    """Volume at which the residual vanishes between two at which it has different signs.
+
+    An empty vessel makes the residual a hockey stick, flat on one side and steep on the other. Bent so that both
+    ends weigh alike it has the same root, which is found in a few trials there too.
+    """
+    scale = 4.0 * min(-at_low, at_high)
+    if max(-at_low, at_high) < _UNEVEN * scale or scale == 0.0:
+        return bracketed(residual, low, high, at_low, at_high, tolerance, _MOST_TRIALS).at
+
+    def bent(volume: float) -> float:
+        missing = residual(volume)
+        return missing / (abs(missing) + scale)
+
+    ends = at_low / (scale - at_low), at_high / (scale + at_high)
+    return bracketed(bent, low, high, *ends, tolerance, _MOST_TRIALS).at
 
 
 Bracket = tuple[float, float, float, float]
