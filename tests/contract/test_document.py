@@ -52,7 +52,7 @@ def test_the_served_document_is_the_committed_one(client: Any, name: str, media_
 
 
 def test_both_forms_say_the_same() -> None:
-    assert yaml.safe_load((OPENAPI / "v1.yaml").read_text(encoding="utf-8")) == DOCUMENT
+    assert yaml.load((OPENAPI / "v1.yaml").read_bytes(), yaml.CSafeLoader) == DOCUMENT
 
 
 def test_it_is_openapi() -> None:
@@ -135,7 +135,7 @@ def of_questions() -> list[str]:
     seen: set[str] = set()
     for operation, _ in ASKED:
         reached(operation.get("requestBody", {}), seen)
-    return sorted(target.rsplit("/", 1)[-1] for target in seen)
+    return sorted(target.rsplit("/", 1)[-1] for target in seen if "/schemas/" in target)
 
 
 @pytest.mark.parametrize("name", [name for name in of_questions() if "properties" in SCHEMAS[name]])

@@ -106,12 +106,8 @@ def _illustrate(schemas: SchemaBook, paths: PathBook) -> None:
             for body in bodies:
                 for content in body.get("content", {}).values():
                     for example in content.get("examples", {}).values():
-                        value = (
-                            paths.examples[example["$ref"].rsplit("/", 1)[-1]]["value"]
-                            if "$ref" in example
-                            else None
-                        )
-                        harvest.gather(content["schema"], value)
+                        name = example["$ref"].rsplit("/", 1)[-1]
+                        harvest.gather(content["schema"], paths.examples[name]["value"])
     harvest.place()
 
 

@@ -35,6 +35,12 @@ fun main(arguments: Array<String>) = runBlocking {
     }
     check(named == "propylene-glycol")
 
+    // A batch: every design has its own outcome, in the order asked.
+    val batch = api.designLoops(json.decodeFromString<LoopDesignBatchQuestion>(text("designLoops/three-roofs"))).body()!!
+    check(batch.designs.map { it.id to it.verdict?.value } == listOf("quote-1" to "holds", "quote-2" to "holds", "quote-3" to null))
+    check(batch.designs[2].problem?.errors.orEmpty()[0].pointer == "/staticHeight")
+    check(batch.summary.designs == 3)
+
     // A refused question: all faults at once.
     val wrong = asked.copy(
         staticHeight = Length(1e6, LengthUnit.METRE),
@@ -45,5 +51,5 @@ fun main(arguments: Array<String>) = runBlocking {
     val problem = json.decodeFromString<Problem>(refused.errorBody()!!.string())
     val pointers = problem.errors.orEmpty().map { it.pointer }
     check("/collectors/0/count" in pointers) { pointers }
-    println("kotlin: designed ${vessel.id} with $nulls members sent as null, refused ${pointers.size} faults")
+    println("kotlin: designed ${vessel.id} with $nulls members sent as null, a batch, refused ${pointers.size} faults")
 }

@@ -27,6 +27,13 @@ with loopslack.ApiClient(loopslack.Configuration(host=where)) as connection:
     assert result.chosen_vessel.nominal_volume.unit is loopslack.VolumeUnit.LITRE
     assert all(isinstance(check.verdict, loopslack.CheckVerdict) for check in result.checks)
 
+    # A batch: every design has its own outcome, in the order asked.
+    batch = designs.design_loops(loopslack.LoopDesignBatchQuestion.from_json(text("designLoops/three-roofs")))
+    outcomes = [(one.id, one.verdict.value if one.verdict else one.problem.status) for one in batch.designs]
+    assert outcomes == [("quote-1", "holds"), ("quote-2", "holds"), ("quote-3", 422)], outcomes
+    assert batch.designs[2].problem.errors[0].pointer == "/staticHeight"
+    assert batch.designs[0].answer.result.chosen_vessel.id.startswith("EV-")
+
     # The client itself refuses what the document rules out.
     try:
         loopslack.Length(value=1, unit="metres")
@@ -46,4 +53,4 @@ with loopslack.ApiClient(loopslack.Configuration(host=where)) as connection:
     pointers = {fault.pointer for fault in problem.errors}
     assert {"/reliefValve/setPresure", "/staticHeight/unit", "/collectors/0/count"} <= pointers
 
-sys.stdout.write(f"python: designed {result.chosen_vessel.id}, refused {len(pointers)} faults\n")
+sys.stdout.write(f"python: designed {result.chosen_vessel.id}, a batch, refused {len(pointers)} faults\n")

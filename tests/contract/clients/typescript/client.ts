@@ -39,6 +39,18 @@ assert.equal(named(asked.fluid), "by-volume");
 const wrong: Schemas["Length"] = { value: 1, unit: "barg" };
 assert.equal(wrong.unit, "barg");
 
+// A batch: every design has its own outcome, in the order asked.
+const { data: batch } = await client.POST("/v1/loop-design/batch", {
+  body: read<Schemas["LoopDesignBatchQuestion"]>("designLoops/three-roofs"),
+});
+assert(batch, "the batch was refused");
+assert.deepEqual(
+  batch.designs.map((outcome) => [outcome.id, outcome.verdict ?? outcome.problem?.status]),
+  [["quote-1", "holds"], ["quote-2", "holds"], ["quote-3", 422]],
+);
+assert.equal(batch.designs[2]?.problem?.errors?.[0]?.pointer, "/staticHeight");
+assert.equal(batch.summary.designs, 3);
+
 // A refused question: all faults at once, as a problem document with its own type.
 const refused = await client.POST("/v1/loop-design", { body: read<Schemas["LoopDesignQuestion"]>("designLoop/misspelt") });
 assert.equal(refused.response.status, 422);
@@ -47,4 +59,4 @@ const pointers = refused.error.errors.map((fault) => fault.pointer);
 for (const pointer of ["/reliefValve/setPresure", "/staticHeight/unit", "/collectors/0/count"])
   assert(pointers.includes(pointer), `${pointer} is not among ${pointers.join(", ")}`);
 
-console.log(`typescript: designed ${design.result.chosenVessel.nominalVolume.value} ${unit}, refused ${pointers.length} faults`);
+console.log(`typescript: designed ${design.result.chosenVessel.nominalVolume.value} ${unit}, a batch, refused ${pointers.length} faults`);
