@@ -2,11 +2,13 @@
 
 import hashlib
 from collections.abc import Callable
+from datetime import date
 
 import msgspec
 
 from loopslack.contract.answers import LoopDesignAnswer
 from loopslack.contract.questions_many import SheetQuestion
+from loopslack.kernel.errors import OutOfRange
 from loopslack.sheet.case import Case
 from loopslack.sheet.lines import Fact, Section, Sheet, Text
 from loopslack.sheet.sections import closing
@@ -53,6 +55,20 @@ def paper_of(question: SheetQuestion) -> str:
     return question.paper or ("letter" if question.design.units == "us" else "a4")
 
 
+def _day(stated: str | None) -> str:
+    """A stated date. Raises ``OutOfRange`` for a day the calendar has not."""
+    if stated is None:
+        return ""
+    try:
+        return date.fromisoformat(stated).isoformat()
+    except ValueError:
+        raise OutOfRange(
+            f"{stated} is no day of the calendar.",
+            remedy="State the date as YYYY-MM-DD, or leave it out.",
+            pointer="/date",
+        ) from None
+
+
 def compose(answer: LoopDesignAnswer, question: SheetQuestion) -> Sheet:
     """Everything that stands on the sheet of an answer."""
     case = Case(answer, question.design, question.language or "en")
@@ -65,8 +81,9 @@ def compose(answer: LoopDesignAnswer, question: SheetQuestion) -> Sheet:
     sections.append(closing.signing(case, mark))
     texts = {name: plain(getattr(question, name) or "").strip() for name in ("project", "customer", "author")}
     head = [Fact(words(f"head.{name}"), text) for name, text in texts.items() if text]
-    if question.date:
-        head.append(Fact(words("head.date"), question.date))
+    day = _day(question.date)
+    if day:
+        head.append(Fact(words("head.date"), day))
     foot = words(
         "foot",
         project=texts["project"] or words("title"),
@@ -79,7 +96,7 @@ def compose(answer: LoopDesignAnswer, question: SheetQuestion) -> Sheet:
         title=words("title"),
         subject=texts["project"],
         author=texts["author"],
-        date=question.date or "",
+        date=day,
         head=tuple(head),
         banner=banner(case),
         sections=tuple(sections),

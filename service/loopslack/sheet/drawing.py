@@ -1,4 +1,4 @@
-"""SVG written by hand: lines, areas, letters of one width, scales with round ticks, labels that keep clear of each other.
+"""SVG written by hand: lines, areas, letters of one width, scales with round ticks, labels that keep clear.
 
 A drawing is the same text on screen, in print and as a file of its own. All lettering is set in a font whose letters
 are equally wide, so that what fits is known without measuring. Strokes and patterns tell things apart, never colour
@@ -110,8 +110,7 @@ class Scale:
 
 def _c(number: float) -> str:
     """A coordinate, to a tenth."""
-    text = f"{number:.1f}"
-    return text[:-2] if text.endswith(".0") else text
+    return f"{number:.1f}".removesuffix(".0")
 
 
 class Canvas:
@@ -158,7 +157,8 @@ class Canvas:
     def ring(self, centre: Point, radius: float, kind: str = "paper", *, weight: float = 1.2) -> None:
         """A circle."""
         self._parts.append(
-            f'<circle class="ls-{kind}" cx="{_c(centre[0])}" cy="{_c(centre[1])}" r="{_c(radius)}"{_stroke(weight, "")}/>'
+            f'<circle class="ls-{kind}" cx="{_c(centre[0])}" cy="{_c(centre[1])}" r="{_c(radius)}"'
+            f"{_stroke(weight, '')}/>"
         )
 
     def text(
@@ -172,7 +172,8 @@ class Canvas:
         heavy = ' font-weight="bold"' if bold else ""
         sized = "" if size == LETTER else f' font-size="{_c(size)}"'
         self._parts.append(
-            f'<text class="ls-{kind}" x="{_c(x)}" y="{_c(y)}"{side}{sized}{heavy}{turned}>{escape(text, quote=False)}</text>'
+            f'<text class="ls-{kind}" x="{_c(x)}" y="{_c(y)}"{side}{sized}{heavy}{turned}>'
+            f"{escape(text, quote=False)}</text>"
         )
 
     def hatched(self, left: float, top: float, width: float, height: float, step: float = 5.0) -> None:
@@ -219,7 +220,8 @@ class Canvas:
     def svg(self, name: str, title: str, description: str) -> str:
         """The finished drawing, named and described for whoever cannot see it."""
         return (
-            f'<svg xmlns="http://www.w3.org/2000/svg" class="ls-figure" viewBox="0 0 {_c(self.width)} {_c(self.height)}" '
+            f'<svg xmlns="http://www.w3.org/2000/svg" class="ls-figure" '
+            f'viewBox="0 0 {_c(self.width)} {_c(self.height)}" '
             f'width="{_c(self.width)}" height="{_c(self.height)}" role="img" '
             f'aria-labelledby="{name}-title {name}-desc" font-family="{_FONT}" font-size="{_c(LETTER)}">'
             f'<title id="{name}-title">{escape(title, quote=False)}</title>'

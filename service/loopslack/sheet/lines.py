@@ -7,7 +7,8 @@ from typing import Literal
 
 from msgspec import Struct
 
-Align = Literal["text", "number"]
+Align = Literal["text", "number", "value"]
+"""``number`` takes the room its digits need; ``value`` is set right too, but shares the width like words."""
 Tone = Literal["plain", "lead", "stop", "warning", "note", "small"]
 Mark = Literal["", "holds", "fails", "open", "aside"]
 """``aside`` fails under a doubt that was not asked for: shown, not counted."""

@@ -135,6 +135,7 @@ class Numerals:
     """Numbers in one language."""
 
     def __init__(self, language: Language) -> None:
+        self._to = "bis" if language == "de" else "to"
         self._point = "," if language == "de" else "."
         self._units = {**_UNITS, **(_GERMAN_UNITS if language == "de" else {})}
 
@@ -163,7 +164,7 @@ class Numerals:
 
     def between(self, low: Quantity, high: Quantity) -> str:
         """A range."""
-        return f"{self.digits(low)} {NOTHING} {self(high)}"
+        return f"{self.digits(low)} {self._to} {self(high)}"
 
     def stated(self, quantity: Quantity | None) -> str:
         """A quantity of a question, with every digit it was stated with."""

@@ -6,9 +6,12 @@ its own, allowed by its fingerprint.
 
 import base64
 import hashlib
+import re
+from collections.abc import Callable
 from functools import cache
 from html import escape
 from importlib.resources import files
+from typing import Any
 
 from loopslack.sheet.drawing import STYLE
 from loopslack.sheet.lines import (
@@ -26,6 +29,11 @@ from loopslack.sheet.lines import (
     Sheet,
     Table,
     Text,
+)
+
+# Scripts that run from right to left.
+_FROM_RIGHT = re.compile(
+    "[\u0590-\u08ff\ufb1d-\ufdff\ufe70-\ufeff\U00010800-\U00010fff\U0001e800-\U0001efff]"
 )
 
 
@@ -52,7 +60,8 @@ def page(sheet: Sheet) -> str:
     return (
         f'<!DOCTYPE html>\n<html lang="{sheet.language}"><head><meta charset="utf-8">'
         f'<meta http-equiv="Content-Security-Policy" content="{policy}">'
-        '<meta name="viewport" content="width=device-width, initial-scale=1"><meta name="color-scheme" content="light dark">'
+        '<meta name="viewport" content="width=device-width, initial-scale=1">'
+        '<meta name="color-scheme" content="light dark">'
         '<meta name="referrer" content="no-referrer"><meta name="robots" content="noindex">'
         f"<title>{escape(title)}</title><style>{style}</style></head>"
         f'<body class="paper-{sheet.paper}"><header class="head"><h1>{escape(sheet.title)}</h1>'
@@ -75,35 +84,47 @@ def _section(number: int, section: Section) -> str:
     blocks = "".join(_block(block) for block in section.blocks)
     return (
         f'<section class="part{fresh}" id="{section.id}" aria-labelledby="{section.id}-title">'
-        f'<h2 id="{section.id}-title"><span class="number">{number}</span> {escape(section.title)}</h2>{blocks}</section>'
+        f'<h2 id="{section.id}-title"><span class="number">{number}</span> {escape(section.title)}</h2>'
+        f"{blocks}</section>"
     )
 
 
 def _block(block: Block) -> str:
-    if isinstance(block, Beside):
-        left, right = ("".join(_block(one) for one in side) for side in (block.left, block.right))
-        return f'<div class="beside"><div>{left}</div><div>{right}</div></div>'
-    if isinstance(block, Card):
-        blocks = "".join(_block(one) for one in block.blocks)
-        return f'<div class="card"><h3>{escape(block.title)}</h3>{blocks}</div>'
-    if isinstance(block, Table):
-        return _table(block)
-    if isinstance(block, Facts):
-        return f'<dl class="facts">{"".join(_fact(fact) for fact in block.facts)}</dl>'
-    if isinstance(block, Text):
-        return f'<p class="{block.tone}">{_guarded(block.text)}</p>'
-    if isinstance(block, Bullets):
-        kind = "ol" if block.numbered else "ul"
-        items = "".join(f"<li>{_guarded(item)}</li>" for item in block.items)
-        return f"<{kind}>{items}</{kind}>"
-    if isinstance(block, Notice):
-        return (
-            f'<div class="notice {block.tone}"><p><strong>{escape(block.grade)}</strong> {_guarded(block.message)}</p>'
-            f"<p>{_guarded(block.remedy)}</p></div>"
-        )
-    if isinstance(block, Drawing):
-        return f"<figure>{block.svg}<figcaption>{escape(block.title)}</figcaption></figure>"
-    return _blanks(block)
+    return _SET[type(block)](block)
+
+
+def _beside(block: Beside) -> str:
+    left, right = ("".join(_block(one) for one in side) for side in (block.left, block.right))
+    return f'<div class="beside"><div>{left}</div><div>{right}</div></div>'
+
+
+def _card(card: Card) -> str:
+    blocks = "".join(_block(one) for one in card.blocks)
+    return f'<div class="card"><h3>{escape(card.title)}</h3>{blocks}</div>'
+
+
+def _facts(facts: Facts) -> str:
+    return f'<dl class="facts">{"".join(_fact(fact) for fact in facts.facts)}</dl>'
+
+
+def _text(text: Text) -> str:
+    return f'<p class="{text.tone}">{_guarded(text.text)}</p>'
+
+
+def _bullets(bullets: Bullets) -> str:
+    kind = "ol" if bullets.numbered else "ul"
+    return f"<{kind}>{''.join(f'<li>{_guarded(item)}</li>' for item in bullets.items)}</{kind}>"
+
+
+def _notice(notice: Notice) -> str:
+    return (
+        f'<div class="notice {notice.tone}"><p><strong>{escape(notice.grade)}</strong> {_guarded(notice.message)}</p>'
+        f"<p>{_guarded(notice.remedy)}</p></div>"
+    )
+
+
+def _drawing(drawing: Drawing) -> str:
+    return f"<figure>{drawing.svg}<figcaption>{escape(drawing.title)}</figcaption></figure>"
 
 
 def _fact(fact: Fact) -> str:
@@ -114,7 +135,7 @@ def _fact(fact: Fact) -> str:
 
 def _table(table: Table) -> str:
     """A table that keeps its roles when a narrow screen sets its rows one under the other."""
-    align = ["num" if column.align == "number" else "txt" for column in table.columns]
+    align = ["txt" if column.align == "text" else "num" for column in table.columns]
     head = "".join(
         f'<th role="columnheader" scope="col" class="{kind}">{escape(column.title)}</th>'
         for kind, column in zip(align, table.columns, strict=True)
@@ -148,4 +169,17 @@ def _blanks(blanks: Blanks) -> str:
 def _guarded(text: str) -> str:
     """A text whose direction, whatever it is, ends where the text ends."""
     safe = escape(text)
-    return safe if text.isascii() else f"<bdi>{safe}</bdi>"
+    return f"<bdi>{safe}</bdi>" if _FROM_RIGHT.search(text) else safe
+
+
+_SET: dict[type, Callable[[Any], str]] = {
+    Beside: _beside,
+    Card: _card,
+    Table: _table,
+    Facts: _facts,
+    Text: _text,
+    Bullets: _bullets,
+    Notice: _notice,
+    Drawing: _drawing,
+    Blanks: _blanks,
+}

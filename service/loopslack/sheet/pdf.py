@@ -45,7 +45,7 @@ def pdf(sheet: Sheet) -> bytes:
     with _LOCK:
         try:
             return _set(engine, _printable(data, strict=False))
-        except BaseException as error:  # noqa: BLE001 - a panic of the typesetter is no Exception
+        except BaseException as error:
             if not isinstance(error, failure) and type(error).__name__ != _PANIC:
                 raise
         # A text the typesetter cannot set, whatever letters it has: set with the plainest letters only, by an

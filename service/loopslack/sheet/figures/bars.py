@@ -4,7 +4,7 @@ from loopslack.contract.answers_sizing import RuleComparison, SensitivityRow, Wa
 from loopslack.sheet.case import Case
 from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Scale, fitted, tick_labels, width_of
 from loopslack.sheet.lines import Drawing
-from loopslack.sheet.sections.sizing_names import input_name, input_number, rule_title, step_name
+from loopslack.sheet.sections.sizing_names import input_name, input_number, rule_short, rule_title, step_name
 
 MOST_INPUTS = 10
 _LEFT, _RIGHT = 6.0, WIDTH - 6.0
@@ -25,7 +25,7 @@ def rules(case: Case) -> Drawing | None:
     for number, rule in enumerate(answered):
         y = top + number * step
         verdict = words(f"figure.rule-{rule.verdict}")
-        canvas.text((_LEFT, y + 9.0), fitted(rule_title(case, rule), _RIGHT - _LEFT), size=SMALL)
+        canvas.text((_LEFT, y + 9.0), fitted(rule_short(case, rule), _RIGHT - _LEFT, SMALL), size=SMALL)
         width = room * _volume(rule) / most
         own = rule.rule == "mass-balance"
         canvas.box(_LEFT, y + 13.0, width, 10.0, "solid" if own else "water")
@@ -66,21 +66,40 @@ def walk(case: Case) -> Drawing | None:
     across = Scale(0.0, max(volumes) * 1.02, left, right)
     bottom = top + (len(steps) + 2) * row
     _ticks(canvas, case, across, top, bottom, found.start_volume.unit)
-    _whole(canvas, across, top, fitted(words(f"rule.{found.start}.short"), left - 12.0, SMALL), found.start_volume.value, say(found.start_volume))
+    _whole(
+        canvas,
+        across,
+        top,
+        fitted(words(f"rule.{found.start}.short"), left - 12.0, SMALL),
+        found.start_volume.value,
+        say(found.start_volume),
+    )
     told = []
     for number, step in enumerate(steps, 1):
         y = top + number * row
         low, high = sorted((across(step.before.value), across(step.after.value)))
         canvas.text((_LEFT, y + 12.0), fitted(step_name(case, step), left - 12.0, SMALL), size=SMALL)
         canvas.box(low, y + 4.0, max(high - low, 1.0), 11.0, "water" if step.change.value > 0 else "paper")
-        canvas.line((across(step.after.value), y + 4.0), (across(step.after.value), y + row + 4.0), "soft", dash="2 2")
+        canvas.line(
+            (across(step.after.value), y + 4.0), (across(step.after.value), y + row + 4.0), "soft", dash="2 2"
+        )
         canvas.text((_RIGHT, y + 13.0), say.signed(step.change), "end", size=SMALL)
         told.append(f"{step_name(case, step)} {say.signed(step.change)}")
     y = top + (len(steps) + 1) * row
-    _whole(canvas, across, y, fitted(words(f"rule.{found.end}.short"), left - 12.0, SMALL), found.end_volume.value, say(found.end_volume))
+    _whole(
+        canvas,
+        across,
+        y,
+        fitted(words(f"rule.{found.end}.short"), left - 12.0, SMALL),
+        found.end_volume.value,
+        say(found.end_volume),
+    )
     title = words("figure.walk.title")
     description = words(
-        "figure.walk.description", start=say(found.start_volume), end=say(found.end_volume), steps="; ".join(told)
+        "figure.walk.description",
+        start=say(found.start_volume),
+        end=say(found.end_volume),
+        steps="; ".join(told),
     )
     return Drawing("walk", canvas.svg("walk", title, description), title, description)
 
@@ -123,13 +142,17 @@ def sensitivity(case: Case) -> Drawing | None:
         y = top + number * step
         ends = _ends(row)
         start, end = across(min(ends)), across(max(ends))
-        canvas.text((_LEFT, y + 9.0), fitted(f"{input_name(case, row.input)}: {_range(case, row)}", _RIGHT - _LEFT, SMALL), size=SMALL)
+        name = fitted(f"{input_name(case, row.input)}: {_range(case, row)}", _RIGHT - _LEFT, SMALL)
+        canvas.box(_LEFT, y, width_of(name, SMALL) + 4.0, 12.0, "blank", weight=0.0)
+        canvas.text((_LEFT, y + 9.0), name, size=SMALL)
         canvas.box(min(start, centre), y + 14.0, max(end, centre) - min(start, centre), 9.0, "water")
+        canvas.line((centre, y + 12.5), (centre, y + 24.5), weight=2.4)
         if row.decides:
             canvas.sign("cross", (across(across.high) + 12.0, y + 18.5), 3.6)
         told.append(f"{input_name(case, row.input)}: {_range(case, row)}")
-    canvas.line((centre, top), (centre, bottom), weight=2.0)
-    canvas.text((_LEFT, bottom + 32.0), words("figure.recommended-volume", volume=say(sized.smallest)), size=SMALL)
+    canvas.text(
+        (_LEFT, bottom + 32.0), words("figure.recommended-volume", volume=say(sized.smallest)), size=SMALL
+    )
     if any(row.decides for row in rows):
         text = words("figure.decides")
         canvas.sign("cross", (_RIGHT - width_of(text, SMALL) - 10.0, bottom + 28.5), 3.6)

@@ -45,7 +45,9 @@ def day_course(case: Case) -> Drawing | None:
         y = _TOP + number * _ROW
         canvas.text((6.0, y + 16.0), fitted(words(f"phase.{phase}"), _LEFT - 12.0, SMALL), size=SMALL)
         width = across(end) - across(begin)
-        canvas.box(across(begin), y + 6.0, width, 14.0, "paper" if phase in {"boiling", "receding"} else "water")
+        canvas.box(
+            across(begin), y + 6.0, width, 14.0, "paper" if phase in {"boiling", "receding"} else "water"
+        )
         if phase in {"boiling", "receding"}:
             canvas.hatched(across(begin), y + 6.0, width, 14.0)
         told.append(f"{words(f'phase.{phase}')} {clock(getattr(course.phases, phase))}")

@@ -21,7 +21,7 @@ def fill_pressure_over_temperature(case: Case) -> Drawing | None:
     ]
     if len(rows) < 2:
         return None
-    words, say = case.words, case.say
+    words = case.words
     low, high = min(row[1] for row in rows), max(row[3] for row in rows)
     spare = 0.12 * (high - low)
     bottom = _TOP + _HIGH

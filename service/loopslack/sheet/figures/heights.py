@@ -3,13 +3,13 @@
 from loopslack.contract.answers_loop import StagnationState
 from loopslack.physics.statics import GRAVITY
 from loopslack.sheet.case import Case
-from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Point, Scale, tick_labels
+from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Point, Scale, tick_labels, width_of
 from loopslack.sheet.figures.fronts import front_height
 from loopslack.sheet.figures.marks import SIGNS, Entry, key, key_height
 from loopslack.sheet.lines import Drawing
 
 NAME = "pressure-over-height"
-_LEFT, _TOP, _HIGH = 44.0, 14.0, 214.0
+_LEFT, _TOP, _HIGH = 44.0, 14.0, 232.0
 _LEAST_RISE = 0.3  # m of height below which both ends of a line fall together and are drawn as one
 
 _Line = tuple[str, list[Point], Entry]
@@ -31,10 +31,10 @@ def pressure_over_height(case: Case) -> Drawing | None:
     bottom = _TOP + _HIGH
     canvas = Canvas(bottom + 42.0 + key_height(entries, heads=True))
     across = Scale(low, max(pressures) + 0.06 * span, _LEFT, WIDTH - 10.0)
-    up = Scale(0.0, top, bottom - 8.0, _TOP + 10.0)
+    up = Scale(0.0, top, bottom - 22.0, _TOP + 22.0)
     _grid(canvas, case, across, up, bottom)
     for pressure, height, name in limits:
-        _limit(canvas, across(pressure), up(height), name, down=height > 0)
+        _limit(canvas, across(pressure), up(height), name, above=height > 0)
     for state, points, _ in lines:
         sign, dash = SIGNS[state]
         drawn = [(across(x), up(y)) for x, y in points]
@@ -72,15 +72,13 @@ def _stagnation_lines(case: Case) -> list[_Line]:
             name = f"{name}: {case.words(f'short.{state.scenario}')}"
         bound = "≥ " if state.lower_bound else ""
         entry = Entry(sign, name, (bound + case.say(state.vessel_pressure), ""), opens)
-        found.append((sign, _hot_line(case, state), entry))
+        found.append((sign, _hot_line(case, state, state.vessel_pressure.value), entry))
     return found
 
 
-def _hot_line(case: Case, state: StagnationState) -> list[Point]:
+def _hot_line(case: Case, state: StagnationState, pressure: float) -> list[Point]:
     """Liquid up to the steam front, steam of one pressure above it; liquid all the way where nothing boils."""
     write, loop = case.write, case.loop
-    assert state.vessel_pressure is not None
-    pressure = state.vessel_pressure.value
     front = front_height(case, state)
     density = loop.fluid.density(min(loop.temperatures.hot_liquid, loop.fluid.highest))
     reached = loop.top if front is None else max(0.0, min(front, loop.top))
@@ -104,13 +102,12 @@ def _limits(case: Case) -> list[tuple[float, float, str]]:
     return found
 
 
-def _limit(canvas: Canvas, x: float, y: float, name: str, *, down: bool) -> None:
+def _limit(canvas: Canvas, x: float, y: float, name: str, *, above: bool) -> None:
     """A short bar across the height it counts at, named beside it."""
     canvas.line((x, y - 9.0), (x, y + 9.0), "stop", weight=2.6)
-    if x > WIDTH / 2:
-        canvas.text((x - 5.0, y + (14.0 if down else -6.0)), name, "end", size=SMALL, kind="stop-t")
-    else:
-        canvas.text((x + 5.0, y + (16.0 if down else -6.0)), name, size=SMALL, kind="stop-t")
+    room = width_of(name, SMALL)
+    start = min(max(x - room / 2.0, _LEFT + 3.0), WIDTH - 12.0 - room)
+    canvas.text((start, y - 12.0 if above else y + 18.0), name, size=SMALL, kind="stop-t")
 
 
 def _grid(canvas: Canvas, case: Case, across: Scale, up: Scale, bottom: float) -> None:

@@ -4,7 +4,7 @@ from itertools import pairwise
 
 from loopslack.contract.answers_loop import StagnationState
 from loopslack.sheet.case import Case
-from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Scale, fitted, width_of, tick_labels
+from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Scale, tick_labels, width_of
 from loopslack.sheet.figures.marks import SIGNS, Entry, key, key_height
 from loopslack.sheet.lines import Drawing
 
@@ -158,24 +158,27 @@ def _limits(canvas: Canvas, case: Case, across: Scale, up: Scale) -> None:
     for (_, name, dash), place, at in zip(lines, places, names, strict=True):
         canvas.line((_LEFT, place), (WIDTH - 10.0, place), "stop", weight=1.6, dash=dash)
         canvas.text((_LEFT + 5.0, at), name, size=SMALL, kind="stop-t")
-    bottom = up(up.low)
-    reserve, vessel = case.check("reserve", "cold"), case.vessel
+    _uprights(canvas, case, across, up)
+
+
+def _uprights(canvas: Canvas, case: Case, across: Scale, up: Scale) -> None:
+    """Reserve and acceptance volume as upright lines, named at their feet, where the curves never come."""
+    words, say, vessel = case.words, case.say, case.vessel
+    bottom, taken = up(up.low), _LEFT
+    reserve = case.check("reserve", "cold")
     if reserve is not None and reserve.limit is not None and 0 < reserve.limit.value < across.high:
         x = across(reserve.limit.value)
+        name = f"{words('figure.reserve')} {say(reserve.limit)}"
         canvas.line((x, bottom), (x, bottom - 90.0), "soft", dash="2 2")
-        name = fitted(f"{words('figure.reserve')} {say(reserve.limit)}", 88.0, SMALL)
-        canvas.text((x - 3.0, bottom - 4.0), name, size=SMALL, kind="q", upright=False)
-    if vessel is not None and vessel.acceptance_volume is not None:
-        accepted = vessel.acceptance_volume.value * vessel.pieces
-        if accepted < across.high:
-            x = across(accepted)
-            canvas.line((x, bottom), (x, _TOP), "stop", weight=1.2, dash="2 2")
-            name = words("figure.acceptance")
-            room = width_of(name, SMALL)
-            canvas.text(
-                (x + 9.0, bottom - 6.0 if room < _HIGH else bottom),
-                name,
-                size=SMALL,
-                kind="stop-t",
-                upright=False,
-            )
+        canvas.text((x + 4.0, bottom - 4.0), name, size=SMALL, kind="q")
+        taken = x + 4.0 + width_of(name, SMALL)
+    if vessel is None or vessel.acceptance_volume is None:
+        return
+    accepted = vessel.acceptance_volume.value * vessel.pieces
+    if accepted < across.high:
+        x = across(accepted)
+        name = words("figure.acceptance")
+        room = width_of(name, SMALL)
+        base = bottom - (4.0 if x - 4.0 - room > taken + 6.0 else 16.0)
+        canvas.line((x, bottom), (x, _TOP), "stop", weight=1.2, dash="2 2")
+        canvas.text((x - 4.0, base), name, "end", size=SMALL, kind="stop-t")

@@ -33,8 +33,8 @@ def loop_schematic(case: Case) -> Drawing:
     low = min(0.0, loop.station.height, loop.relief.height, *heights)
     high = max(loop.top, loop.relief.height, loop.station.height, *heights, low + _LEAST_SPAN)
     count = min(len(loop.groups), MOST_GROUPS) + min(len(loop.branches), MOST_RUNS) + 5
-    height = max(330.0, count * _ROW + 40.0)
-    up = Scale(low, high, height - _BELOW - 24.0, 40.0)
+    height = max(344.0, count * _ROW + 40.0)
+    up = Scale(low, high, height - _BELOW - 38.0, 40.0)
     canvas = Canvas(height)
     _heights(canvas, case, low, high, up)
     labels = [*_field(canvas, case, up), *_plant(canvas, case, up)]
@@ -145,7 +145,7 @@ def _plant(canvas: Canvas, case: Case, up: Scale) -> Iterator[_Label]:
 
 def _name(canvas: Canvas, labels: list[_Label], height: float) -> None:
     """Names at the right, as near to their parts as they can be without touching."""
-    places = spread([label.at[1] for label in labels], _ROW, 26.0, height - 34.0)
+    places = spread([label.at[1] for label in labels], _ROW, 26.0, height - 48.0)
     for label, y in zip(labels, places, strict=True):
         x, at = label.at
         canvas.path([(x, at), (_LABELS - 12.0, y), (_LABELS - 4.0, y)], "soft", weight=0.7)

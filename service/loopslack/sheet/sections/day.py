@@ -2,7 +2,7 @@
 
 from loopslack.sheet.case import Case
 from loopslack.sheet.figures.day import clock, day_course
-from loopslack.sheet.lines import Beside, Block, Bullets, Column, Row, Section, Table, Text
+from loopslack.sheet.lines import Beside, Block, Bullets, Column, Row, Section, Table, Text, Tone
 from loopslack.sheet.words import plain
 
 _PHASES = ("start", "emptying", "boiling", "receding", "refilling", "end")
@@ -14,7 +14,14 @@ _PEAKS = (
     "highest_collector_temperature",
     "discharged",
 )
-_NEVER = ("above-lowest-opening", "discharge", "membrane-full", "vessel-empty", "liquid-freezes", "start-above-set")
+_NEVER = (
+    "above-lowest-opening",
+    "discharge",
+    "membrane-full",
+    "vessel-empty",
+    "liquid-freezes",
+    "start-above-set",
+)
 
 
 def day(case: Case) -> Section | None:
@@ -31,7 +38,11 @@ def day(case: Case) -> Section | None:
     )
     peaks = Table(
         words("table.peaks"),
-        (Column(words("column.peak")), Column(words("column.course"), "number"), Column(words("column.envelope"), "number")),
+        (
+            Column(words("column.peak")),
+            Column(words("column.course"), "number"),
+            Column(words("column.envelope"), "number"),
+        ),
         tuple(
             Row((words(f"peak.{name.replace('_', '-')}"), say(span.course), say.between(span.low, span.high)))
             for name in _PEAKS
@@ -46,7 +57,7 @@ def day(case: Case) -> Section | None:
     if not course.complete:
         blocks.insert(0, Text(words("day.incomplete"), "stop"))
     for flag in course.flags:
-        tone = "stop" if flag in _NEVER else "plain"
+        tone: Tone = "stop" if flag in _NEVER else "plain"
         sure = words("day.in-all") if flag in course.certain_flags else words("day.in-some")
         blocks.append(Text(f"{words.or_else(f'flag.{flag}', plain(flag))} {sure}", tone))
     notes = tuple(words.phrase(plain(note.note)) for note in course.notes)

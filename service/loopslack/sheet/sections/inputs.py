@@ -7,12 +7,12 @@ from msgspec.structs import fields as fields_of
 
 from loopslack.contract.quantity import Price, Quantity
 from loopslack.contract.questions_collectors import CollectorGroup
-from loopslack.contract.questions_fluid import ByMass, ByVolume, OwnFluid, ProtectTo, Water
+from loopslack.contract.questions_fluid import BoilingLike, OwnFluid, ProtectTo, Water
 from loopslack.contract.questions_vessels import FromSeries, FromStock
 from loopslack.sheet.case import Case
-from loopslack.sheet.lines import Block, Column, Fact, Facts, Row, Section, Table
-from loopslack.sheet.sections.names import word_name
+from loopslack.sheet.lines import Beside, Block, Column, Fact, Facts, Row, Section, Table
 from loopslack.sheet.sections.inputs_pipes import pipes
+from loopslack.sheet.sections.names import word_name
 from loopslack.sheet.words import plain
 
 MOST_ROWS = 60
@@ -33,7 +33,10 @@ _NESTED = (
 def inputs(case: Case) -> Section:
     """Single members as a list, collectors, pipes and rated parts as tables."""
     words = case.words
-    blocks: list[Block] = [Facts(tuple(_single(case))), _collectors(case), pipes(case, MOST_ROWS)]
+    single = tuple(_single(case))
+    half = (len(single) + 1) // 2
+    both = Beside((Facts(single[:half]),), (Facts(single[half:]),))
+    blocks: list[Block] = [both, _collectors(case), pipes(case, MOST_ROWS)]
     parts = _parts(case)
     if parts is not None:
         blocks.append(parts)
@@ -109,7 +112,6 @@ def _fluid(case: Case) -> str:
     kind, share = words(f"fluid.{case.loop.fluid.kind}"), fluid.concentration
     if isinstance(share, ProtectTo):
         return words("inputs.protect-to", fluid=kind, temperature=say.stated(share.temperature))
-    assert isinstance(share, ByMass | ByVolume)
     return f"{kind}, {say.stated(share.share)}"
 
 
@@ -224,7 +226,7 @@ def _own_fluid(case: Case) -> Table | None:
 
 def _boiling(case: Case, fluid: OwnFluid) -> str:
     words, say, boiling = case.words, case.say, fluid.boiling
-    if hasattr(boiling, "glycol"):
+    if isinstance(boiling, BoilingLike):
         kind = words(f"fluid.{boiling.glycol}")
         return words("inputs.boils-like", fluid=kind, share=say.stated(boiling.share))
     points = "; ".join(

@@ -2,9 +2,7 @@
 
 from loopslack.contract.questions_pipes import (
     BoreTube,
-    ContentTube,
     Insulation,
-    Insulated,
     NoInsulation,
     PipeSegment,
     StandardTube,
@@ -20,7 +18,8 @@ from loopslack.sheet.words import plain
 def pipes(case: Case, most: int) -> Table:
     """A row a stretch, at most ``most``; those left out are counted."""
     words = case.words
-    rows, total = [], 0
+    rows: list[Row] = []
+    total = 0
     for index, run in enumerate(case.design.pipe_runs):
         for number, segment in enumerate(run.segments):
             total += 1
@@ -68,7 +67,6 @@ def _tube(case: Case, tube: Tube) -> str:
     )
     if isinstance(tube, BoreTube):
         return words("inputs.bore", diameter=say.stated(tube.bore)) + outer
-    assert isinstance(tube, ContentTube)
     return say.stated(tube.content_per_length) + outer
 
 
@@ -79,7 +77,6 @@ def _insulation(case: Case, insulation: Insulation | None) -> str:
     if isinstance(insulation, NoInsulation):
         return words("word.bare")
     told = [words("word.weathered")] if isinstance(insulation, Weathered) else []
-    assert isinstance(insulation, Insulated | Weathered)
     told += [say.stated(one) for one in (insulation.thickness, insulation.conductivity) if one is not None]
     if isinstance(insulation, Weathered) and insulation.loss_factor is not None:
         told.append(f"\N{MULTIPLICATION SIGN} {say.every_digit(insulation.loss_factor)}")

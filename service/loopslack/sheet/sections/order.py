@@ -19,7 +19,10 @@ def _items(case: Case) -> Table:
     if vessel is not None:
         name = words("part.vessel" if case.chosen else "part.vessel-nearest")
         rows.append(
-            (f"{name}, {article(case, vessel.id)}", f"{vessel.pieces} \N{MULTIPLICATION SIGN} {say(vessel.nominal_volume)}")
+            (
+                f"{name}, {article(case, vessel.id)}",
+                f"{vessel.pieces} \N{MULTIPLICATION SIGN} {say(vessel.nominal_volume)}",
+            )
         )
         if vessel.price is not None:
             amount = say.plain(f"{vessel.price.amount:.2f}")

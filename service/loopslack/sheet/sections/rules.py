@@ -9,7 +9,13 @@ from loopslack.sheet.lines import Beside, Block, Bullets, Column, Mark, Row, Sec
 from loopslack.sheet.sections.sizing_names import rule_title
 from loopslack.sheet.words import plain
 
-_MARKS: dict[str, Mark] = {"holds": "holds", "favourable-only": "fails", "does-not-hold": "fails", "not-assessed": "open"}
+# A rule that fails here is no fault of the design: told in words and a sign, not with the weight of a failed check.
+_MARKS: dict[str, Mark] = {
+    "holds": "holds",
+    "favourable-only": "aside",
+    "does-not-hold": "aside",
+    "not-assessed": "aside",
+}
 
 
 def rules(case: Case) -> Section | None:
@@ -39,7 +45,13 @@ def _cells(case: Case, rule: RuleComparison) -> tuple[str, ...]:
     counts = words.or_else(f"rule.{rule.rule}.counts", plain(rule.counts))
     if rule.nominal_volume is None:
         reason = words.or_else(f"rule.{rule.rule}.refuses", words.phrase(plain(rule.reason or "")))
-        return (rule_title(case, rule), f"{counts} {reason}", "\N{EN DASH}", "\N{EN DASH}", words("mark.no-answer"))
+        return (
+            rule_title(case, rule),
+            f"{counts} {reason}",
+            "\N{EN DASH}",
+            "\N{EN DASH}",
+            words("mark.no-answer"),
+        )
     return (
         rule_title(case, rule),
         counts,
@@ -66,7 +78,12 @@ def _walk(case: Case, walk: Walk) -> list[Text | Bullets]:
         to=say(walk.end_volume),
     )
     told = tuple(_told(case, step) for step in walk.steps if moving(step))
-    unmoved = [case.words.or_else(f"walk.{code}", plain(code)) for step in walk.steps if not moving(step) for code in step.codes]
+    unmoved = [
+        case.words.or_else(f"walk.{code}", plain(code))
+        for step in walk.steps
+        if not moving(step)
+        for code in step.codes
+    ]
     blocks: list[Text | Bullets] = [Text(lead, "lead"), Bullets(told, numbered=True)]
     if unmoved:
         blocks.append(Text(words("walk-unmoved", steps=", ".join(unmoved)), "small"))

@@ -8,6 +8,8 @@ from loopslack.sheet.sections.names import state_name
 from loopslack.sheet.sections.sizing_names import input_name, input_number
 from loopslack.sheet.words import plain
 
+_NOTHING = 1e-6  # share of the volume
+
 
 def sensitivity(case: Case) -> Section | None:
     """The figure beside what the vessel still takes, then every input."""
@@ -17,7 +19,11 @@ def sensitivity(case: Case) -> Section | None:
     words = case.words
     room = Table(
         words("table.head-room"),
-        (Column(words("column.worse")), Column(words("column.by-up-to"), "number"), Column(words("column.ended-by"))),
+        (
+            Column(words("column.worse")),
+            Column(words("column.by-up-to"), "number"),
+            Column(words("column.ended-by")),
+        ),
         tuple(_room(case, row) for row in found.head_room),
         compact=True,
     )
@@ -31,9 +37,20 @@ def sensitivity(case: Case) -> Section | None:
         Column(words("column.volume-high"), "number"),
         Column(words("column.largest-change"), "number"),
     )
-    rows = tuple(Row(_cells(case, row)) for row in found.inputs)
-    blocks.append(Table(words("table.sensitivity"), columns, rows, words("table.sensitivity-note"), compact=True))
+    moved = [row for row in found.inputs if row.decides or _moves(row)]
+    rows = tuple(Row(_cells(case, row)) for row in moved)
+    still = ", ".join(input_name(case, row.input) for row in found.inputs if row not in moved)
+    note = words("table.sensitivity-note")
+    if still:
+        note = f"{note} {words('sensitivity.still', inputs=still)}"
+    blocks.append(Table(words("table.sensitivity"), columns, rows, note, compact=True))
     return Section("sensitivity", words("section.sensitivity"), tuple(blocks))
+
+
+def _moves(row: SensitivityRow) -> bool:
+    """Whether an input moves the volume by more than the solvers' own rounding."""
+    ends = [end.nominal_volume.value for end in (row.low, row.high) if end.nominal_volume is not None]
+    return row.largest_change is None or not ends or row.largest_change.value > _NOTHING * max(ends)
 
 
 def _cells(case: Case, row: SensitivityRow) -> tuple[str, ...]:

@@ -29,15 +29,15 @@ def settings(case: Case) -> Section:
         lead = (Text(words("settings.not-chosen"), "stop"),)
     table = _by_temperature(case, card)
     upper = Beside((Facts(tuple(_facts(case, card))),), (table,) if figure is None else (figure,))
-    lower = Beside((_readings(case, card),), () if figure is None else (table,))
     steps = Bullets(tuple(words.phrase(step) for step in card.instructions), numbered=True)
+    lower = Beside((_readings(case, card), steps), () if figure is None else (table,))
     names = ("blank.date", "blank.temperature", "blank.pressure", "blank.name")
     blanks = Blanks(tuple(words(name) for name in names))
     title = words("settings.card") if case.chosen else words("settings.card-nearest")
     return Section(
         "settings",
         words("section.settings"),
-        (Card(title, (*lead, upper, lower, steps, blanks)),),
+        (Card(title, (*lead, upper, lower, blanks)),),
         on_new_page=True,
     )
 
@@ -47,7 +47,11 @@ def _facts(case: Case, card: SettingsCard) -> list[Fact]:
     vessel = case.vessel
     found = []
     if vessel is not None:
-        found.append(Fact(words("part.vessel"), f"{vessel.pieces} \N{MULTIPLICATION SIGN} {say(vessel.nominal_volume)}"))
+        found.append(
+            Fact(
+                words("part.vessel"), f"{vessel.pieces} \N{MULTIPLICATION SIGN} {say(vessel.nominal_volume)}"
+            )
+        )
         if vessel.cooling_vessel is not None:
             found.append(Fact(words("part.cooling-vessel"), say(vessel.cooling_vessel.content)))
     found += [
@@ -89,7 +93,9 @@ def _by_temperature(case: Case, card: SettingsCard) -> Table:
     rows = []
     for row in card.by_temperature:
         if row.recommended is None:
-            rows.append(Row((say(row.temperature), "\N{EN DASH}", words(f"omitted.{row.omitted}"), "\N{EN DASH}")))
+            rows.append(
+                Row((say(row.temperature), "\N{EN DASH}", words(f"omitted.{row.omitted}"), "\N{EN DASH}"))
+            )
         else:
             rows.append(Row((say(row.temperature), say(row.lower), say(row.recommended), say(row.upper))))
     columns = (

@@ -28,7 +28,18 @@ def _volumes(case: Case) -> Table:
     )
     for name, sized in named:
         if sized is None:
-            rows.append(Row((words(f"volume.{name}"), words("volume.none"), "\N{EN DASH}", "\N{EN DASH}", "\N{EN DASH}"), "aside"))
+            rows.append(
+                Row(
+                    (
+                        words(f"volume.{name}"),
+                        words("volume.none"),
+                        "\N{EN DASH}",
+                        "\N{EN DASH}",
+                        "\N{EN DASH}",
+                    ),
+                    "aside",
+                )
+            )
             continue
         least = say(sized.smallest)
         if sized.floor is not None:
@@ -57,7 +68,9 @@ def _choice(case: Case) -> str:
     others = len(selection.alternatives) + selection.alternatives_omitted
     if others:
         names = ", ".join(
-            f"{one.pieces} \N{MULTIPLICATION SIGN} {_short(case, one.id)}" if one.pieces > 1 else _short(case, one.id)
+            f"{one.pieces} \N{MULTIPLICATION SIGN} {_short(case, one.id)}"
+            if one.pieces > 1
+            else _short(case, one.id)
             for one in selection.alternatives[:6]
         )
         told = f"{told} {words('selection.alternatives', number=others, names=names)}"

@@ -10,6 +10,9 @@ from loopslack.sheet.words import plain
 # millimetre, or gallons per square foot: a foot of it is 1728/231 gallons, since a gallon has 231 cubic inches.
 _PER_AREA = {"m": (1000.0, "L/m²"), "ft": (1728.0 / 231.0, "gal/ft²")}
 
+# Ratios that people say as so many times, not as so many percent.
+_TIMES = frozenset({"insulation-thickness-per-diameter", "doubt-measured-steam-power"})
+
 
 def rule_title(case: Case, rule: RuleComparison) -> str:
     """A rule's name, with the variant where there are two."""
@@ -19,26 +22,36 @@ def rule_title(case: Case, rule: RuleComparison) -> str:
     return f"{title}, {case.words.or_else(f'variant.{rule.variant}', plain(rule.variant))}"
 
 
+def rule_short(case: Case, rule: RuleComparison) -> str:
+    """A rule in a few words, for figures."""
+    short = case.words.or_else(f"rule.{rule.rule}.short", plain(rule.title))
+    if rule.variant is None:
+        return short
+    return f"{short}, {case.words.or_else(f'variant.{rule.variant}', plain(rule.variant))}"
+
+
 def step_name(case: Case, step: WalkStep) -> str:
     """A step in a few words."""
     return " + ".join(case.words.or_else(f"walk.{code}", plain(code)) for code in step.codes)
 
 
-def input_name(case: Case, input: str) -> str:
+def input_name(case: Case, moved: str) -> str:
     """An input that was moved."""
     words = case.words
-    if f"input.{input}" in words:
-        return words(f"input.{input}")
+    if f"input.{moved}" in words:
+        return words(f"input.{moved}")
     for build in ("flat-plate", "evacuated-tube-direct", "evacuated-tube-heat-pipe"):
-        if input.endswith(f"-{build}"):
-            return words.or_else(f"input.{input.removesuffix(f'-{build}')}", plain(input))
-    return plain(input)
+        if moved.endswith(f"-{build}"):
+            return words.or_else(f"input.{moved.removesuffix(f'-{build}')}", plain(moved))
+    return plain(moved)
 
 
-def input_number(case: Case, input: str, quantity: AnyQuantity) -> str:
+def input_number(case: Case, moved: str, quantity: AnyQuantity) -> str:
     """The number of an input as the trade writes it."""
     say = case.say
-    if quantity.unit in _PER_AREA and input.startswith(("collector-content", "station-content-per-area")):
+    if quantity.unit == "1" and moved in _TIMES:
+        return say.plain(rounded(quantity.value, "1"))
+    if quantity.unit in _PER_AREA and moved.startswith(("collector-content", "station-content-per-area")):
         factor, unit = _PER_AREA[quantity.unit]
         return f"{say.plain(rounded(quantity.value * factor, unit))}{NO_BREAK}{unit}"
     return say(quantity)

@@ -21,19 +21,19 @@ def steam(case: Case) -> Section:
     return Section("steam", case.words("section.steam"), tuple(blocks))
 
 
-def _bounded(case: Case, state: StagnationState, shown: str) -> str:
+def _bounded(state: StagnationState, shown: str) -> str:
     return f"≥ {shown}" if state.lower_bound else shown
 
 
 _ROWS: tuple[tuple[str, _Cell], ...] = (
     ("regime", lambda case, state: case.words(f"regime.{state.regime}")),
-    ("pressure", lambda case, state: _bounded(case, state, case.say(state.vessel_pressure))),
+    ("pressure", lambda case, state: _bounded(state, case.say(state.vessel_pressure))),
     ("steam-temperature", lambda case, state: case.say(state.steam_temperature)),
     ("stagnation-temperature", lambda case, state: case.say(state.stagnation_temperature)),
     ("steam-power", lambda case, state: case.say(state.steam_power)),
     ("unspent", lambda case, state: case.say(state.unspent_power)),
-    ("steam-volume", lambda case, state: _bounded(case, state, case.say(state.steam_volume))),
-    ("vessel-liquid", lambda case, state: _bounded(case, state, case.say(state.vessel_liquid))),
+    ("steam-volume", lambda case, state: _bounded(state, case.say(state.steam_volume))),
+    ("vessel-liquid", lambda case, state: _bounded(state, case.say(state.vessel_liquid))),
     ("gas", lambda case, state: case.say(state.gas_temperature)),
     ("mixed", lambda case, state: case.say(state.mixed_temperature)),
     ("last", lambda case, state: case.say(state.last_arriving_temperature)),
@@ -46,8 +46,13 @@ def _table(case: Case) -> Table:
     marks = [_mark(case, state) for state in states]
     worst: Mark = "fails" if "fails" in marks else "open" if "open" in marks else ""
     rows.append(Row((words("column.verdict"), *(verdict_word(case, mark) for mark in marks)), worst))
-    columns = (Column(words("column.case")), *(Column(state_name(case, state.scenario), "number") for state in states))
-    return Table(words("table.stagnation"), columns, tuple(rows), words("table.stagnation-note"), compact=True)
+    columns = (
+        Column(words("column.case")),
+        *(Column(state_name(case, state.scenario), "value") for state in states),
+    )
+    return Table(
+        words("table.stagnation"), columns, tuple(rows), words("table.stagnation-note"), compact=True
+    )
 
 
 def _mark(case: Case, state: StagnationState) -> Mark:
