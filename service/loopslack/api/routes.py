@@ -21,6 +21,7 @@ from loopslack.api.record import internal_fault, log_fault, note_of
 from loopslack.api.reference import Page, page_route, reference_page
 from loopslack.api.reply import Reply, problem_reply
 from loopslack.api.wrappers import nothing_here
+from loopslack.contract.answering import Unfinished
 from loopslack.contract.encoding import encoded
 from loopslack.contract.refusals import Refused, refusal_of
 from loopslack.contract.strict.decoding import decode_in_steps
@@ -79,7 +80,11 @@ def _answering(operation: Operation[Any, Any], floor: Floor) -> Handler:
             if operation.costly is True or (is_costly is not None and is_costly(asked)):
                 answered = await floor.costly.run(lambda: _finished(ask(asked)))
             else:
-                answered = _finished(ask(asked))
+                begin = ask(asked)
+                if isinstance(begin, Unfinished):
+                    answered = await floor.costly.run(lambda: _finished(begin))
+                else:
+                    answered = _finished(begin)
         except CalculationError as error:
             raise refusal_of(error) from None
         told, sent = answered
@@ -96,7 +101,8 @@ def _answering(operation: Operation[Any, Any], floor: Floor) -> Handler:
 
 def _finished(answer: object) -> tuple[object, bytes]:
     """An answer with its bytes; in the same thread, since encoding a long one takes its time too."""
-    return answer, answer if isinstance(answer, bytes) else encoded(answer)
+    told = answer.finish() if isinstance(answer, Unfinished) else answer
+    return told, told if isinstance(told, bytes) else encoded(told)
 
 
 def _responding(operation: Operation[Any, Any], floor: Floor) -> Handler:

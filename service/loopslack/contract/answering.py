@@ -1,47 +1,44 @@
-"""From a question to its answer: reads, asks the calculation, writes. One function per operation, nothing more."""
+"""From a question to its answer: reads, asks the calculation, writes. One function per operation, nothing more.
 
-from typing import NamedTuple, TypedDict
+A question that turns out to need costly parts is answered with ``Unfinished`` where the caller says it can finish it
+elsewhere, so that a service need not hold its event loop.
+"""
 
-from loopslack.calc.band import band
+from collections.abc import Callable
+from typing import Generic, NamedTuple, TypeVar
+
 from loopslack.calc.design import Design, Request, design
-from loopslack.calc.existing import check
-from loopslack.calc.fit import Fit
-from loopslack.calc.judgement import Judgement
+from loopslack.calc.existing import Checked, check
 from loopslack.calc.model import Vessel
+from loopslack.contract import answering_extras as extras
 from loopslack.contract import answers, questions
-from loopslack.contract import writing_band as write_band
-from loopslack.contract import writing_course as write_course
 from loopslack.contract import writing_design as write_design
 from loopslack.contract import writing_loop as write_loop
 from loopslack.contract import writing_sizing as write_sizing
 from loopslack.contract.advice import Advisor
-from loopslack.contract.answering_course import emptying_stated
-from loopslack.contract.answers_band import ToleranceBand
-from loopslack.contract.answers_common import Basis, Check, Verdict
-from loopslack.contract.answers_course import CourseSummary
-from loopslack.contract.answers_loop import (
-    Doubt,
-    FillWindow,
-    LiquidState,
-    LoopContent,
-    Provisional,
-    StagnationState,
-)
-from loopslack.contract.fields import field_of
 from loopslack.contract.reader import Reader
 from loopslack.contract.reading import Reading, read_loop
+from loopslack.contract.reading_existing import CheckReading, read_check
 from loopslack.contract.reading_tolerances import Tolerances, read_tolerances
-from loopslack.contract.reading_vessels import Choice, read_choice, read_fill, read_vessel
+from loopslack.contract.reading_vessels import Choice, read_choice
+from loopslack.contract.writing_changes import Asked
 from loopslack.contract.writing_common import CAUTIONS, assumptions, provenance
 from loopslack.library.vessels import preferred_vessels
 
-_FILL = field_of(questions.StagnationCheckQuestion, "fill_pressure")
+A = TypeVar("A")
+
+
+class Unfinished(NamedTuple, Generic[A]):
+    """An answer whose costly rest is still to be computed."""
+
+    finish: Callable[[], A]
 
 
 class Designed(NamedTuple):
     """A designed loop with how it was asked for."""
 
     reading: Reading
+    choice: Choice
     design: Design
     tolerances: Tolerances
 
@@ -61,43 +58,63 @@ def designed(question: questions.SizingQuestion) -> Designed:
         reading.accept_without_boiling,
         choice.fill_pressure,
     )
-    return Designed(reading, design(reading.loop, request), tolerances)
+    return Designed(reading, choice, design(reading.loop, request), tolerances)
 
 
 def design_loop(question: questions.LoopDesignQuestion) -> answers.LoopDesignAnswer:
     """Answer a loop design question."""
-    reading, found, tolerances = designed(question)
+    return _design_answer(question, designed(question))
+
+
+def design_loop_in_turns(
+    question: questions.LoopDesignQuestion,
+) -> answers.LoopDesignAnswer | Unfinished[answers.LoopDesignAnswer]:
+    """Answer a loop design question, or leave the rest where remedies have to be sought."""
+    found = designed(question)
+    if extras.wants_remedies(found.reading, found.design.judgement):
+        return Unfinished(lambda: _design_answer(question, found))
+    return _design_answer(question, found)
+
+
+def _design_answer(question: questions.LoopDesignQuestion, asked: Designed) -> answers.LoopDesignAnswer:
+    reading, found = asked.reading, asked.design
     write = reading.write
     pressure = write_loop.Pressures(write, reading.loop.atmosphere)
     shown, judgement = found.shown, found.judgement
     result = answers.LoopDesignResult(
-        **_judged(reading, shown, judgement),
-        band=_band(reading, shown, shown.window.recommended, tolerances),
+        **extras.judged(reading, shown, judgement),
+        band=extras.tolerance_band(reading, shown, shown.window.recommended, asked.tolerances),
         chosen_vessel=None if found.chosen is None else write_loop.vessel(found.chosen, write),
         nearest_vessel=None if found.chosen is not None else write_loop.vessel(shown, write),
         volumes=write_design.volumes(found, write, pressure),
         selection=write_design.selection(found.selection, write),
         settings=write_design.settings(shown, judgement, write, pressure),
         order=write_design.order(shown, write),
+        discharge=extras.discharged(reading, shown, shown.mass, judgement),
     )
     include = reading.include or frozenset()
     rules = write_sizing.compared(found) if "rules" in include else None
+    stock = len(asked.choice.vessels) if asked.choice.kind == "stock" else 0
     return answers.LoopDesignAnswer(
         result=result,
         assumptions=assumptions(reading.assumed, reading.system),
         advisories=Advisor(shown, judgement, reading.policy, reading.system).all(),
         cautions=CAUTIONS,
         provenance=provenance(),
-        rules=None if rules is None else write_sizing.rules(rules, write, pressure, wanted_rules(question)),
+        remedies=extras.remedies_of_design(reading, found, Asked("design", stock)),
+        robust_cooler=extras.robust_cooler(reading, found),
+        rules=None if rules is None else write_sizing.rules(rules, write, pressure, _wanted_rules(question)),
         walk=None if rules is None else write_sizing.walk(found, rules, write, reading.loop.atmosphere),
         sensitivity=write_sizing.sensitivities(found, write) if "sensitivity" in include else None,
-        course=_course(reading, shown, shown.mass) if "course" in include else None,
+        course=extras.course(reading, shown, shown.mass) if "course" in include else None,
+        derivation=extras.derived(found, reading, question) if "derivation" in include else None,
     )
 
 
 def size_vessel(question: questions.VesselSizingQuestion) -> answers.VesselSizingAnswer:
     """Answer a vessel sizing question: every rule side by side, and the vessel to take."""
-    reading, found, tolerances = designed(question)
+    asked = designed(question)
+    reading, found = asked.reading, asked.design
     write, loop = reading.write, reading.loop
     pressure = write_loop.Pressures(write, loop.atmosphere)
     shown, judgement = found.shown, found.judgement
@@ -109,7 +126,7 @@ def size_vessel(question: questions.VesselSizingQuestion) -> answers.VesselSizin
         chosen_vessel=None if found.chosen is None else write_loop.vessel(found.chosen, write),
         nearest_vessel=None if found.chosen is not None else write_loop.vessel(shown, write),
         volumes=write_design.volumes(found, write, pressure),
-        rules=write_sizing.rules(rules, write, pressure, wanted_rules(question)),
+        rules=write_sizing.rules(rules, write, pressure, _wanted_rules(question)),
         walk=write_sizing.walk(found, rules, write, loop.atmosphere),
         window=write_loop.window(shown.window, write, pressure),
         precharge=pressure(shown.gas.precharge),
@@ -117,50 +134,84 @@ def size_vessel(question: questions.VesselSizingQuestion) -> answers.VesselSizin
         checks=write_design.checks(judgement, write, loop.atmosphere),
         doubts=write_loop.doubts(loop, judgement),
         to_confirm=confirm,
-        band=_band(reading, shown, shown.window.recommended, tolerances),
+        band=extras.tolerance_band(reading, shown, shown.window.recommended, asked.tolerances),
     )
+    include = reading.include or frozenset()
     return answers.VesselSizingAnswer(
         result=result,
         assumptions=assumptions(reading.assumed, reading.system),
         advisories=Advisor(shown, judgement, reading.policy, reading.system).all(),
         cautions=CAUTIONS,
         provenance=provenance(),
+        derivation=extras.derived(found, reading, question) if "derivation" in include else None,
     )
 
 
-def wanted_rules(question: questions.SizingQuestion) -> frozenset[str] | None:
-    """The rules a question names, None for all of them."""
-    return None if question.rules is None else frozenset(question.rules)
+class CheckedVessel(NamedTuple):
+    """A judged vessel with how it was asked for."""
+
+    asked: CheckReading
+    found: Checked
+    pieces: int
+    tolerances: Tolerances
+
+
+def checked(question: questions.StagnationCheckQuestion) -> CheckedVessel:
+    """Read a question about a vessel that is there and judge it."""
+    asked = read_check(question)
+    reader = Reader(asked.reading.loop.atmosphere)
+    tolerances = read_tolerances(reader, question.tolerances)
+    reader.finish()
+    reading, pieces = asked.reading, question.vessels_in_parallel or 1
+    found = check(reading.loop, asked.vessel, pieces, reading.policy, fill_pressure=asked.fill_pressure)
+    return CheckedVessel(asked, found, pieces, tolerances)
 
 
 def check_stagnation(question: questions.StagnationCheckQuestion) -> answers.StagnationCheckAnswer:
     """Answer a stagnation check of a given vessel."""
-    reader = Reader()
-    reading = read_loop(question, reader)
-    stated = question.vessel
-    vessel = read_vessel(reader, stated, "/vessel", stated.id or "given")
-    fill = read_fill(reader, question.fill_pressure, _FILL, "")
-    tolerances = read_tolerances(reader, question.tolerances)
-    reader.finish()
-    found = check(reading.loop, vessel, question.vessels_in_parallel or 1, reading.policy, fill_pressure=fill)
+    return _check_answer(question, checked(question))
+
+
+def check_stagnation_in_turns(
+    question: questions.StagnationCheckQuestion,
+) -> answers.StagnationCheckAnswer | Unfinished[answers.StagnationCheckAnswer]:
+    """Answer a stagnation check, or leave the rest where remedies have to be sought."""
+    asked = checked(question)
+    if extras.wants_remedies(asked.asked.reading, asked.found.judgement):
+        return Unfinished(lambda: _check_answer(question, asked))
+    return _check_answer(question, asked)
+
+
+def _check_answer(
+    question: questions.StagnationCheckQuestion, asked: CheckedVessel
+) -> answers.StagnationCheckAnswer:
+    reading, found = asked.asked.reading, asked.found
     write = reading.write
     pressure = write_loop.Pressures(write, reading.loop.atmosphere)
     result = answers.StagnationCheckResult(
-        **_judged(reading, found.fitted, found.judgement),
-        band=_band(reading, found.fitted, found.fill_pressure, tolerances),
+        **extras.judged(reading, found.fitted, found.judgement),
+        band=extras.tolerance_band(reading, found.fitted, found.fill_pressure, asked.tolerances),
         vessel=write_loop.vessel(found.fitted, write),
         precharge=pressure(found.fitted.gas.precharge),
         fill_pressure=pressure.optional(found.fill_pressure),
+        discharge=extras.discharged(reading, found.fitted, found.mass, found.judgement),
     )
     include = reading.include or frozenset()
     return answers.StagnationCheckAnswer(
         result=result,
-        course=_course(reading, found.fitted, found.mass) if "course" in include else None,
         assumptions=assumptions(reading.assumed, reading.system),
         advisories=Advisor(found.fitted, found.judgement, reading.policy, reading.system).all(),
         cautions=CAUTIONS,
         provenance=provenance(),
+        remedies=extras.remedies_of_check(asked.asked, found, asked.pieces),
+        course=extras.course(reading, found.fitted, found.mass) if "course" in include else None,
+        derivation=extras.derived(found, reading, question) if "derivation" in include else None,
     )
+
+
+def _wanted_rules(question: questions.SizingQuestion) -> frozenset[str] | None:
+    """The rules a question names, None for all of them."""
+    return None if question.rules is None else frozenset(question.rules)
 
 
 def candidates(choice: Choice) -> tuple[Vessel, ...]:
@@ -170,52 +221,4 @@ def candidates(choice: Choice) -> tuple[Vessel, ...]:
     return tuple(
         Vessel(id=size.id, nominal_volume=size.nominal_volume, rated_pressure=choice.rated_pressure)
         for size in preferred_vessels()
-    )
-
-
-def _band(reading: Reading, fitted: Fit, fill: float, tolerances: Tolerances) -> ToleranceBand | None:
-    """What the stated tolerances do to a filled vessel."""
-    found = band(fitted, fill, write_band.by_id(tolerances), reading.policy)
-    pressure = write_loop.Pressures(reading.write, reading.loop.atmosphere)
-    return write_band.tolerance_band(found, reading.write, pressure)
-
-
-def _course(reading: Reading, fitted: Fit, mass: float) -> CourseSummary:
-    """A clear day without flow, under the design sun."""
-    case = write_course.lumped(fitted, mass, emptying_stated=emptying_stated(reading))
-    pressure = write_loop.Pressures(reading.write, reading.loop.atmosphere)
-    return write_course.summary(write_course.course(case), reading.write, pressure)
-
-
-class _Judged(TypedDict):
-    """The members of every judged result."""
-
-    verdict: Verdict
-    basis: Basis
-    robust: bool
-    doubts: list[Doubt]
-    checks: list[Check]
-    to_confirm: list[Provisional]
-    content: LoopContent
-    window: FillWindow | None
-    states: list[LiquidState]
-    stagnation: list[StagnationState]
-
-
-def _judged(reading: Reading, shown: Fit, judgement: Judgement) -> _Judged:
-    """Write what every judged vessel has."""
-    write, loop = reading.write, shown.analysis.loop
-    pressure = write_loop.Pressures(write, loop.atmosphere)
-    confirm = write_design.to_confirm(reading, judgement)
-    return _Judged(
-        verdict=judgement.verdict,
-        basis=write_design.basis(confirm),
-        robust=judgement.robust,
-        doubts=write_loop.doubts(loop, judgement),
-        checks=write_design.checks(judgement, write, loop.atmosphere),
-        to_confirm=confirm,
-        content=write_loop.content(write_loop.held_by(loop), write, reading.assumed),
-        window=write_loop.window(shown.window, write, pressure),
-        states=[write_loop.liquid_state(state, write, pressure) for state in judgement.states],
-        stagnation=write_loop.stagnation(shown.analysis, judgement, write, pressure),
     )

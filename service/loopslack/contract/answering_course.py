@@ -8,8 +8,8 @@ from loopslack.contract import answers, questions_existing
 from loopslack.contract import writing_course as write_course
 from loopslack.contract import writing_loop as write_loop
 from loopslack.contract.advice import Advisor
+from loopslack.contract.answering_extras import emptying_stated
 from loopslack.contract.answers_course import StagnationCourseResult
-from loopslack.contract.reading import Reading
 from loopslack.contract.reading_existing import CourseReading, read_course
 from loopslack.contract.writing_common import CAUTIONS, assumptions, provenance
 
@@ -48,11 +48,6 @@ def compute_stagnation_course(
         cautions=CAUTIONS,
         provenance=provenance(),
     )
-
-
-def emptying_stated(reading: Reading) -> bool:
-    """Whether every emptying class was stated."""
-    return not any(entry.code == "emptying-class-assumed" for entry in reading.provisional)
 
 
 def _as_stated(case: Mapped, asked: CourseReading) -> Mapped:

@@ -18,6 +18,7 @@ from loopslack.contract.answers_common import (
     Verdict,
 )
 from loopslack.contract.answers_course import CourseSummary, StagnationCourseResult
+from loopslack.contract.answers_derivation import Derivation
 from loopslack.contract.answers_loop import (
     Doubt,
     FillWindow,
@@ -31,6 +32,7 @@ from loopslack.contract.answers_loop import (
     VesselResult,
     Volumes,
 )
+from loopslack.contract.answers_remedies import Discharge, Remedies, RobustCooler
 from loopslack.contract.answers_sizing import RuleComparison, Sensitivity, Walk
 from loopslack.contract.fields import text
 
@@ -139,6 +141,7 @@ class VesselSizingAnswer(Answer, frozen=True, kw_only=True):
     """The answer to a vessel sizing question."""
 
     result: Annotated[VesselSizingResult, text("The sizing.")]
+    derivation: Annotated[Derivation | None, text("Every number with its equation, if asked for.")] = None
 
 
 class StagnationCheckResult(JudgedResult, frozen=True, kw_only=True):
@@ -147,12 +150,17 @@ class StagnationCheckResult(JudgedResult, frozen=True, kw_only=True):
     vessel: Annotated[VesselResult, text("The vessel.")]
     precharge: Annotated[q.Pressure, text("Its precharge, read on site.")]
     fill_pressure: Annotated[q.Pressure | None, text("The fill pressure it was judged at.")] = None
+    discharge: Annotated[
+        list[Discharge], text("What leaves through the valve, in every case in which it opens.")
+    ]
 
 
 class StagnationCheckAnswer(Answer, frozen=True, kw_only=True):
     """The answer to a stagnation check."""
 
     result: Annotated[StagnationCheckResult, text("The check.")]
+    remedies: Annotated[Remedies | None, text("What would make it hold.")] = None
+    derivation: Annotated[Derivation | None, text("Every number with its equation, if asked for.")] = None
     course: Annotated[CourseSummary | None, text("A day without flow, if asked for.")] = None
 
 
@@ -178,12 +186,20 @@ class LoopDesignResult(JudgedResult, frozen=True, kw_only=True):
         SettingsCard | None, text("Settings for the installer. Absent where the window is empty.")
     ] = None
     order: Annotated[OrderList, text("What to order.")]
+    discharge: Annotated[
+        list[Discharge], text("What leaves through the valve, in every case in which it opens.")
+    ]
 
 
 class LoopDesignAnswer(Answer, frozen=True, kw_only=True):
     """The answer to a loop design question."""
 
     result: Annotated[LoopDesignResult, text("The design.")]
+    remedies: Annotated[Remedies | None, text("What would make the loop hold.")] = None
+    robust_cooler: Annotated[
+        RobustCooler | None, text("The cooler that would let a vessel survive all doubts, with `remedies`.")
+    ] = None
+    derivation: Annotated[Derivation | None, text("Every number with its equation, if asked for.")] = None
     rules: Annotated[list[RuleComparison] | None, text("Every rule side by side, if asked for.")] = None
     walk: Annotated[Walk | None, text("From the smallest rule to the recommended volume, with `rules`.")] = (
         None

@@ -1,0 +1,144 @@
+"""Parts that several answers share: the judged vessel, and the costly parts computed only when they are wanted."""
+
+from typing import TypedDict
+
+from loopslack.calc.band import band
+from loopslack.calc.course.march import finished
+from loopslack.calc.design import Design
+from loopslack.calc.existing import Checked
+from loopslack.calc.fit import Fit
+from loopslack.calc.judgement import Judgement
+from loopslack.calc.remedies.bench import Bench
+from loopslack.calc.remedies.case import case_of_design, case_of_vessel
+from loopslack.calc.remedies.robust import cooler_for_robust
+from loopslack.calc.remedies.seek import remedies
+from loopslack.contract import writing_band as write_band
+from loopslack.contract import writing_course as write_course
+from loopslack.contract import writing_design as write_design
+from loopslack.contract import writing_discharge as write_discharge
+from loopslack.contract import writing_loop as write_loop
+from loopslack.contract import writing_remedies as write_remedies
+from loopslack.contract.answers_band import ToleranceBand
+from loopslack.contract.answers_common import Basis, Check, Verdict
+from loopslack.contract.answers_course import CourseSummary
+from loopslack.contract.answers_derivation import Derivation
+from loopslack.contract.answers_loop import (
+    Doubt,
+    FillWindow,
+    LiquidState,
+    LoopContent,
+    Provisional,
+    StagnationState,
+)
+from loopslack.contract.answers_remedies import Discharge, Remedies, RobustCooler
+from loopslack.contract.questions import LoopQuestion
+from loopslack.contract.reading import Reading
+from loopslack.contract.reading_existing import CheckReading
+from loopslack.contract.reading_tolerances import Tolerances
+from loopslack.contract.writing_changes import Asked
+from loopslack.contract.writing_derivation import derivation
+
+
+class Judged(TypedDict):
+    """The members of every judged result."""
+
+    verdict: Verdict
+    basis: Basis
+    robust: bool
+    doubts: list[Doubt]
+    checks: list[Check]
+    to_confirm: list[Provisional]
+    content: LoopContent
+    window: FillWindow | None
+    states: list[LiquidState]
+    stagnation: list[StagnationState]
+
+
+def judged(reading: Reading, shown: Fit, judgement: Judgement) -> Judged:
+    """Write what every judged vessel has."""
+    write, loop = reading.write, shown.analysis.loop
+    pressure = write_loop.Pressures(write, loop.atmosphere)
+    confirm = write_design.to_confirm(reading, judgement)
+    return Judged(
+        verdict=judgement.verdict,
+        basis=write_design.basis(confirm),
+        robust=judgement.robust,
+        doubts=write_loop.doubts(loop, judgement),
+        checks=write_design.checks(judgement, write, loop.atmosphere),
+        to_confirm=confirm,
+        content=write_loop.content(write_loop.held_by(loop), write, reading.assumed),
+        window=write_loop.window(shown.window, write, pressure),
+        states=[write_loop.liquid_state(state, write, pressure) for state in judgement.states],
+        stagnation=write_loop.stagnation(shown.analysis, judgement, write, pressure),
+    )
+
+
+def wants_remedies(reading: Reading, judgement: Judgement) -> bool:
+    """Whether remedies are asked for, or left open and needed."""
+    if reading.include is None:
+        return judgement.verdict != "holds"
+    return "remedies" in reading.include
+
+
+def remedies_of_design(reading: Reading, found: Design, asked: Asked) -> Remedies | None:
+    """What would make a design hold, if wanted."""
+    if not wants_remedies(reading, found.judgement):
+        return None
+    case = case_of_design(found)
+    sought = finished(remedies(case, Bench()))
+    return write_remedies.RemedyWriter(case, asked, reading.write).remedies(sought)
+
+
+def remedies_of_check(asked: CheckReading, found: Checked, pieces: int) -> Remedies | None:
+    """What would make a vessel that is there hold, if wanted."""
+    reading = asked.reading
+    if not wants_remedies(reading, found.judgement):
+        return None
+    case = case_of_vessel(
+        reading.loop, asked.vessel, pieces, reading.policy, fill_pressure=asked.fill_pressure
+    )
+    sought = finished(remedies(case, Bench()))
+    return write_remedies.RemedyWriter(case, Asked("check"), reading.write).remedies(sought)
+
+
+def robust_cooler(reading: Reading, found: Design) -> RobustCooler | None:
+    """The cooler a design lacks to be robust; sought with the remedies only."""
+    if not wants_remedies(reading, found.judgement):
+        return None
+    cooler = finished(cooler_for_robust(found))
+    return None if cooler is None else write_remedies.robust_cooler(cooler, reading.write)
+
+
+def discharged(reading: Reading, fitted: Fit, mass: float, judgement: Judgement) -> list[Discharge]:
+    """What leaves through the valve in every case in which it opens."""
+    if not any(result.regime == "valve-opens" for result in judgement.stagnation.values()):
+        return []
+    return write_discharge.discharges(
+        fitted.analysis, fitted.gas, mass, reading.write, recommended=max(fitted.mass, 0.0) or None
+    )
+
+
+def tolerance_band(
+    reading: Reading, fitted: Fit, fill: float, tolerances: Tolerances
+) -> ToleranceBand | None:
+    """What the stated tolerances do to a filled vessel."""
+    found = band(fitted, fill, write_band.by_id(tolerances), reading.policy)
+    pressure = write_loop.Pressures(reading.write, reading.loop.atmosphere)
+    return write_band.tolerance_band(found, reading.write, pressure)
+
+
+def emptying_stated(reading: Reading) -> bool:
+    """Whether every emptying class was stated."""
+    return not any(entry.code == "emptying-class-assumed" for entry in reading.provisional)
+
+
+def course(reading: Reading, fitted: Fit, mass: float) -> CourseSummary:
+    """A clear day without flow, under the design sun."""
+    case = write_course.lumped(fitted, mass, emptying_stated=emptying_stated(reading))
+    pressure = write_loop.Pressures(reading.write, reading.loop.atmosphere)
+    return write_course.summary(write_course.course(case), reading.write, pressure)
+
+
+def derived(found: Design | Checked, reading: Reading, question: LoopQuestion) -> Derivation:
+    """Every number of the base case as steps to be redone by hand."""
+    return derivation(found, reading, question)
