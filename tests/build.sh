@@ -9,4 +9,4 @@ python -m build --no-isolation --outdir .cache/dist . >.cache/reports/build.log 
 }
 python -m pip install -qq --no-deps --no-index --no-compile --target .cache/wheel .cache/dist/*.whl
 cd .cache/wheel
-PYTHONPATH=$PWD python ../../tests/answer_from_wheel.py
+LOOPSLACK_ACCESS_LOG=false PYTHONPATH=$PWD python ../../tests/answer_from_wheel.py

@@ -16,10 +16,10 @@ name=loopslack-tested-$$
 sh deploy/image.sh "$image"
 
 port=$(python -c 'import socket; s = socket.socket(); s.bind(("127.0.0.1", 0)); print(s.getsockname()[1])')
-podman run --detach --name "$name" --network host --env LOOPSLACK_BIND="127.0.0.1:$port" \
+podman --log-level fatal run --detach --name "$name" --network host --env LOOPSLACK_BIND="127.0.0.1:$port" \
     --user 10001:10001 --read-only --read-only-tmpfs=false --tmpfs /dev/shm:rw,size=16m --tmpfs /tmp:rw,size=16m \
     --cap-drop all --security-opt no-new-privileges --memory 384m --pids-limit 64 "$image" >/dev/null
-trap 'podman rm --force --time 1 "$name" >/dev/null 2>&1' EXIT INT TERM
+trap 'podman --log-level fatal rm --force --time 1 "$name" >/dev/null 2>&1' EXIT INT TERM
 
 # The tools' interpreter is first on the path: it has the schema of the bill of materials.
 if ! python tests/container/smoke.py "$name" "$port"; then
@@ -28,8 +28,11 @@ if ! python tests/container/smoke.py "$name" "$port"; then
     exit 1
 fi
 
+say "The contract, fuzzed against the container:"
+PATH="$(dirname "$tests_python"):$PATH" sh tests/live/fuzz.sh "http://127.0.0.1:$port" 5
+
 began=$(date +%s)
-podman stop --time 20 "$name" >/dev/null
+podman --log-level fatal stop --time 20 "$name" >/dev/null
 stopped=$(podman inspect --format '{{.State.ExitCode}}' "$name")
 say "Stopped with exit code $stopped in $(($(date +%s) - began)) s."
 [ "$stopped" = 0 ]
