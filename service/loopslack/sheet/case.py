@@ -84,9 +84,14 @@ class Case:
         """Stagnation under a scenario."""
         return next((state for state in self.result.stagnation if state.scenario == scenario), None)
 
+    def pressure_reached(self, scenario: str) -> Check | None:
+        """The check of the relief valve: what the vessel would reach under a scenario if the valve stayed shut."""
+        check = self.check("relief-valve", scenario)
+        return None if check is None or check.value is None else check
+
     @property
     def worst_stagnation(self) -> StagnationState | None:
-        """Of the doubts that count, the one with the highest pressure that was computed."""
+        """Of the doubts that count, the one under which the vessel would reach the highest pressure."""
         doubts = [
             state
             for state in self.result.stagnation
@@ -94,7 +99,11 @@ class Case:
             and state.scenario != "base"
             and state.vessel_pressure is not None
         ]
-        return max(doubts, key=_pressure, default=None)
+        return max(doubts, key=self._pressure, default=None)
+
+    def _pressure(self, state: StagnationState) -> float:
+        check = self.pressure_reached(state.scenario)
+        return float("-inf") if check is None or check.value is None else check.value.value
 
     def check(self, code: str, scenario: str) -> Check | None:
         """A check by its code and state."""
@@ -152,7 +161,3 @@ class Case:
             pointer="/figure",
             facts={"figure": figure},
         )
-
-
-def _pressure(state: StagnationState) -> float:
-    return float("-inf") if state.vessel_pressure is None else state.vessel_pressure.value

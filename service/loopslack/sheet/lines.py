@@ -26,6 +26,8 @@ class Row(Struct, frozen=True):
 
     cells: tuple[str, ...]
     mark: Mark = ""
+    marks: tuple[Mark, ...] = ()
+    """Of each cell, where they differ."""
 
 
 class Table(Struct, frozen=True, tag_field="block", tag="table"):

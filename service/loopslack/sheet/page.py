@@ -31,6 +31,10 @@ from loopslack.sheet.lines import (
     Text,
 )
 
+_ALIGN = {"text": "txt", "number": "num", "value": "val"}
+_LONG = 28  # letters without a gap, which a narrow column may break
+_PART = re.compile(rf"[^\s\u00a0]{{{_LONG}}}(?=[^\s\u00a0])")
+_BREAK = "\x00"  # no text has it any more: see ``words.plain``
 # Scripts that run from right to left.
 _FROM_RIGHT = re.compile(
     "[\u0590-\u08ff\ufb1d-\ufdff\ufe70-\ufeff\U00010800-\U00010fff\U0001e800-\U0001efff]"
@@ -135,7 +139,7 @@ def _fact(fact: Fact) -> str:
 
 def _table(table: Table) -> str:
     """A table that keeps its roles when a narrow screen sets its rows one under the other."""
-    align = ["txt" if column.align == "text" else "num" for column in table.columns]
+    align = [_ALIGN[column.align] for column in table.columns]
     head = "".join(
         f'<th role="columnheader" scope="col" class="{kind}">{escape(column.title)}</th>'
         for kind, column in zip(align, table.columns, strict=True)
@@ -144,9 +148,11 @@ def _table(table: Table) -> str:
     for row in table.rows:
         first, *others = row.cells
         cells = [f'<th role="rowheader" scope="row" class="{align[0]}">{_guarded(first)}</th>']
+        marks = row.marks[1:] or ("",) * len(others)
         cells += [
-            f'<td role="cell" class="{kind}" data-name="{escape(column.title)}">{_guarded(cell)}</td>'
-            for kind, column, cell in zip(align[1:], table.columns[1:], others, strict=True)
+            f'<td role="cell" class="{kind}{f" {own}" if own else ""}" data-name="{escape(column.title)}">'
+            f"{_guarded(cell)}</td>"
+            for kind, own, column, cell in zip(align[1:], marks, table.columns[1:], others, strict=True)
         ]
         mark = f' class="{row.mark}"' if row.mark else ""
         rows.append(f'<tr role="row"{mark}>{"".join(cells)}</tr>')
@@ -167,8 +173,10 @@ def _blanks(blanks: Blanks) -> str:
 
 
 def _guarded(text: str) -> str:
-    """A text whose direction, whatever it is, ends where the text ends."""
-    safe = escape(text)
+    """A text that may break where it is one long word, and whose direction ends where it ends."""
+    if len(text) > _LONG and _PART.search(text):
+        text = _PART.sub(lambda found: f"{found[0]}{_BREAK}", text)
+    safe = escape(text).replace(_BREAK, "<wbr>")
     return f"<bdi>{safe}</bdi>" if _FROM_RIGHT.search(text) else safe
 
 

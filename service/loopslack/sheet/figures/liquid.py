@@ -11,6 +11,7 @@ from loopslack.sheet.lines import Drawing
 NAME = "pressure-over-liquid"
 _LEFT, _TOP, _HIGH = 44.0, 14.0, 236.0
 _POINTS = 60
+_SAME = 1e-9
 
 
 class _Curve:
@@ -48,10 +49,13 @@ def pressure_over_liquid(case: Case) -> Drawing | None:
     across = Scale(0.0, nominal, _LEFT, WIDTH - 10.0)
     up = Scale(least, most, bottom, _TOP)
     _grid(canvas, case, across, up, bottom)
-    _curves(canvas, points, nominal, atmosphere, across, up)
-    _limits(canvas, case, across, up)
-    for state, liquid, pressure, _ in sorted(points, key=lambda point: point[0] != "cut-off"):
-        canvas.sign(SIGNS[state][0], (across(liquid), up(pressure)), 4.2)
+    heavy = _curves(canvas, points, nominal, atmosphere, across, up)
+    _limits(canvas, case, heavy, across, up)
+    for state, liquid, pressure, entry in points:
+        if entry.stop:
+            canvas.sign("cross", (across(heavy.liquid_at(pressure)), up(pressure)), 4.2)
+        else:
+            canvas.sign(SIGNS[state][0], (across(liquid), up(pressure)), 4.2)
     key(canvas, bottom + 38.0, entries)
     words = case.words
     title = words(f"figure.{NAME}.title")
@@ -126,38 +130,52 @@ def _grid(canvas: Canvas, case: Case, across: Scale, up: Scale, bottom: float) -
 
 def _curves(
     canvas: Canvas, points: list[_Point], nominal: float, atmosphere: float, across: Scale, up: Scale
-) -> None:
-    """The curve through the coldest state lightly, that of stagnation heavily, for what lies within the drawing."""
-    heavy = next((point for point in points if point[0] == "base"), points[-1])
-    for point in {id(points[0]): points[0], id(heavy): heavy}.values():
-        curve = _Curve(nominal, atmosphere, point[1], point[2])
+) -> _Curve:
+    """The curve through the coldest state lightly, that of stagnation heavily, for what lies within the drawing.
+
+    The heavy one is given back. A state in which the valve opens lies on no curve: the warmest other one stands in.
+    """
+    within = [point for point in points if not point[3].stop and point[1] < nominal]
+    if not within:
+        within = points[:1]
+    heavy = next((point for point in within if point[0] == "base"), within[-1])
+    drawn: list[_Curve] = []
+    for point, kind, weight, dash in ((within[0], "soft", 0.8, "3 2"), (heavy, "ink", 2.0, "")):
+        curve = _Curve(nominal, atmosphere, min(point[1], 0.99 * nominal), point[2])
         start = max(0.0, curve.liquid_at(up.low)) if up.low + atmosphere > 0 else 0.0
         end = curve.liquid_at(up.high)
         steps = [start + (end - start) * k / _POINTS for k in range(_POINTS + 1)]
-        line = [(across(liquid), up(curve(liquid))) for liquid in steps]
-        weight = 2.0 if point is heavy else 0.8
-        canvas.path(
-            line, "ink" if point is heavy else "soft", weight=weight, dash="" if point is heavy else "3 2"
-        )
+        canvas.path([(across(liquid), up(curve(liquid))) for liquid in steps], kind, weight=weight, dash=dash)
+        drawn.append(curve)
+    return drawn[-1]
 
 
-def _limits(canvas: Canvas, case: Case, across: Scale, up: Scale) -> None:
-    """Set pressure and opening pressure across, reserve and acceptance volume upright, their names kept apart."""
+def _limits(canvas: Canvas, case: Case, curve: _Curve, across: Scale, up: Scale) -> None:
+    """Set pressure and opening pressure across, named on the side of the curve that has more room."""
     words, say = case.words, case.say
     stamped = case.write.gauge(case.loop.relief.set_pressure)
     opening = case.check("relief-valve", "base")
     lines = [(stamped.value, f"{words('figure.set-pressure')} {say(stamped)}", "")]
-    if opening is not None and opening.limit is not None and abs(opening.limit.value - stamped.value) > 1e-9:
+    if (
+        opening is not None
+        and opening.limit is not None
+        and abs(opening.limit.value - stamped.value) > _SAME * stamped.value
+    ):
         lines.append((opening.limit.value, f"{words('figure.may-open')} {say(opening.limit)}", "6 3"))
     lines.sort(reverse=True)
     places = [up(value) for value, _, _ in lines]
-    names = [place - 4.0 for place in places]
+    bases = [place - 4.0 for place in places]
     for k, (above, below) in enumerate(pairwise(places)):
-        if below - above < 13.0:
-            names[k + 1] = below + 11.0
-    for (_, name, dash), place, at in zip(lines, places, names, strict=True):
-        canvas.line((_LEFT, place), (WIDTH - 10.0, place), "stop", weight=1.6, dash=dash)
-        canvas.text((_LEFT + 5.0, at), name, size=SMALL, kind="stop-t")
+        if below - above < SMALL + 5.0:
+            bases[k + 1] = below + 11.0
+    right = WIDTH - 10.0
+    for (value, name, dash), place, base in zip(lines, places, bases, strict=True):
+        canvas.line((_LEFT, place), (right, place), "stop", weight=1.6, dash=dash)
+        met = across(max(0.0, curve.liquid_at(value)))
+        if met - _LEFT >= right - met:
+            canvas.text((_LEFT + 5.0, base), name, size=SMALL, kind="stop-t")
+        else:
+            canvas.text((right - 3.0, base), name, "end", size=SMALL, kind="stop-t")
     _uprights(canvas, case, across, up)
 
 

@@ -139,7 +139,7 @@ def _plant(canvas: Canvas, case: Case, up: Scale) -> Iterator[_Label]:
     if line is not None:
         more = f"{more} · {words('figure.line', content=say(line))}"
     yield _Label(
-        (_VESSEL + 14.0, top + 20.0), words("part.vessel" if case.chosen else "part.vessel-nearest"), more
+        (_VESSEL + 14.0, top + 20.0), words("part.vessel" if case.chosen else "figure.vessel-nearest"), more
     )
 
 

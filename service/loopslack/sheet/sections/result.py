@@ -1,6 +1,7 @@
 """The verdict, the vessel with its settings, the loop as a drawing, and the tightest margin of every check."""
 
 from loopslack.contract.answers_common import Check
+from loopslack.contract.answers_loop import StagnationState
 from loopslack.sheet.case import Case
 from loopslack.sheet.figures.schematic import loop_schematic
 from loopslack.sheet.figures.verdicts import verdict_sign
@@ -119,22 +120,25 @@ def _range(case: Case) -> str:
 
 
 def _stagnation(case: Case) -> list[Fact]:
-    words, say = case.words, case.say
-    base, worst = case.stagnation("base"), case.worst_stagnation
+    """What the vessel reaches, and at worst would reach, with a valve that stayed shut."""
+    words, base, worst = case.words, case.stagnation("base"), case.worst_stagnation
     if base is None:
         return []
-    bound = "≥ " if base.lower_bound else ""
     more = [words(f"regime.{base.regime}")]
     if worst is not None:
-        sign = "≥ " if worst.lower_bound else ""
         more.append(
             words(
-                "fact.stagnation-more",
-                pressure=f"{sign}{say(worst.vessel_pressure)}",
-                doubt=state_name(case, worst.scenario),
+                "fact.stagnation-more", pressure=_reached(case, worst), doubt=state_name(case, worst.scenario)
             )
         )
-    return [Fact(words("fact.stagnation"), f"{bound}{say(base.vessel_pressure)}", " · ".join(more))]
+    return [Fact(words("fact.stagnation"), _reached(case, base), " · ".join(more))]
+
+
+def _reached(case: Case, state: StagnationState) -> str:
+    check = case.pressure_reached(state.scenario)
+    if check is None:
+        return case.say(state.vessel_pressure)
+    return f"≥ {case.say(check.value)}" if check.at_least else case.say(check.value)
 
 
 def _margins(case: Case) -> Table:

@@ -85,26 +85,30 @@ def _short(case: Case, id: str) -> str:
 
 
 def _refused(case: Case) -> Table | None:
-    """The refused candidates, those nearest to fitting: the last before the choice in rank."""
+    """The refused candidates, those nearest to fitting: the last before the choice in rank, alike ones together."""
     words, refused = case.words, case.result.selection.refused
     if not refused:
         return None
     shown = refused[-MOST_REFUSED:]
-    rows = []
+    alike: dict[str, list[str]] = {}
     for one in shown:
+        reasons = "; ".join(_reason(case, reason) for reason in one.reasons)
         name = _short(case, one.id)
-        name = f"{one.pieces} \N{MULTIPLICATION SIGN} {name}" if one.pieces > 1 else name
-        rows.append(Row((name, "; ".join(_reason(case, reason) for reason in one.reasons))))
+        named = f"{one.pieces} \N{MULTIPLICATION SIGN} {name}" if one.pieces > 1 else name
+        alike.setdefault(reasons, []).append(named)
+    rows = tuple(Row((", ".join(names), reasons)) for reasons, names in alike.items())
     columns = (Column(words("column.candidate")), Column(words("column.refused")))
     note = words("selection.more", number=len(refused) - len(shown)) if len(refused) > len(shown) else ""
-    return Table(words("table.refused"), columns, tuple(rows), note, compact=True)
+    return Table(words("table.refused"), columns, rows, note, compact=True)
 
 
 def _reason(case: Case, reason: RefusalReason) -> str:
+    """A reason with the number the vessel has, the one it needs and what is missing, as far as there are any."""
     words, say = case.words, case.say
     told = words(f"refusal.{reason.code}")
-    if reason.value is not None and reason.limit is not None:
-        told = words("refusal.numbers", reason=told, value=say(reason.value), limit=say(reason.limit))
-        if reason.short_by is not None:
-            told = words("refusal.short", told=told, short=say(reason.short_by))
-    return told
+    if reason.value is None or reason.limit is None:
+        return told
+    if reason.limit.value == 0:
+        return words("refusal.left", reason=told, value=say(reason.value))
+    told = words("refusal.numbers", reason=told, value=say(reason.value), limit=say(reason.limit))
+    return told if reason.short_by is None else words("refusal.short", told=told, short=say(reason.short_by))

@@ -44,8 +44,9 @@ def _table(case: Case) -> Table:
     words, states = case.words, case.result.stagnation
     rows = [Row((words(f"column.{name}"), *(cell(case, state) for state in states))) for name, cell in _ROWS]
     marks = [_mark(case, state) for state in states]
-    worst: Mark = "fails" if "fails" in marks else "open" if "open" in marks else ""
-    rows.append(Row((words("column.verdict"), *(verdict_word(case, mark) for mark in marks)), worst))
+    rows.append(
+        Row((words("column.verdict"), *(verdict_word(case, mark) for mark in marks)), marks=("", *marks))
+    )
     columns = (
         Column(words("column.case")),
         *(Column(state_name(case, state.scenario), "value") for state in states),
