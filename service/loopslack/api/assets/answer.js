@@ -4,7 +4,7 @@
 import { jsonText } from "./question.js";
 
 const SVG = "http://www.w3.org/2000/svg";
-const { words, hints, units } = JSON.parse(document.getElementById("vocabulary").textContent);
+const { words, states, hints, units } = JSON.parse(document.getElementById("vocabulary").textContent);
 
 /** An element with attributes and children; null and undefined children are left out. */
 export function element(name, attributes, ...children) {
@@ -41,7 +41,7 @@ function table(caption, heads, rows) {
       cells.map((cell, at) => element(at ? "td" : "th", {
         role: at ? "cell" : "rowheader", "data-label": heads[at], ...(at ? {} : { scope: "row" }),
       }, element("div", {}, cell))));
-  return element("table", { class: "records", role: "table" },
+  return element("table", { class: heads.length > 3 ? "records broad" : "records", role: "table" },
     element("caption", {}, caption),
     element("thead", { role: "rowgroup" },
       element("tr", { role: "row" }, heads.map((head) => element("th", { scope: "col", role: "columnheader" }, head)))),
@@ -86,38 +86,58 @@ function settings(result) {
   ]));
 }
 
-function checks(result) {
-  const order = { "does-not-hold": 0, "not-assessed": 1, holds: 2 };
-  const found = [...result.checks].sort((one, other) => order[one.verdict] - order[other.verdict]);
-  const failing = found.filter((check) => check.verdict === "does-not-hold").length;
-  const rows = found.map((check) => ({
+function checkRow(check) {
+  return {
     verdict: check.verdict,
     cells: [
-      [element("a", { href: `/docs/checks#${check.code}` }, said(check.code)), check.subject ? `: ${check.subject}` : ""],
+      [element("a", { href: `/docs/checks#${check.code}` }, said(check.code)), check.subject ? `: ${said(check.subject)}` : ""],
       plate(check.verdict, check.verdict === "does-not-hold" ? "FAILS" : said(check.verdict)),
-      words.ScenarioName[check.scenario] ?? said(check.scenario),
-      quantity(check.value) || (check.reason ? said(check.reason) : "none"),
+      states[check.scenario] ?? said(check.scenario),
+      check.value ? `${check.atLeast ? "at least " : ""}${quantity(check.value)}` : said(check.reason ?? "none"),
       quantity(check.limit) || "none",
       quantity(check.margin) || "none",
     ],
-  }));
-  const title = failing ? `Checks: ${failing} of ${found.length} fail, shown first` : `Checks: none of ${found.length} fails`;
-  return table(title, ["check", "outcome", "state or doubt", "value", "limit", "margin"], rows);
+  };
+}
+
+/** Checks by outcome: what fails and what nobody could check is open to the eye, what holds is behind a heading. */
+function checks(result) {
+  const heads = ["check", "outcome", "state or doubt", "value", "limit", "margin"];
+  const rows = (verdict) => result.checks.filter((check) => check.verdict === verdict).map(checkRow);
+  const [failing, open, held] = [rows("does-not-hold"), rows("not-assessed"), rows("holds")];
+  const count = (some) => `${some.length} of ${result.checks.length} checks`;
+  return [
+    element("h3", {}, "Checks"),
+    failing.length ? table(`${count(failing)} fail`, heads, failing) : element("p", {}, `None of ${result.checks.length} checks fails.`),
+    open.length ? table(`${count(open)} could not be made: no pass`, heads, open) : null,
+    held.length ? element("details", {}, element("summary", {}, `${count(held)} hold`), table("Checks that hold", heads, held)) : null,
+  ];
+}
+
+/** What would make the loop hold, where the answer says so. */
+function remedies(result) {
+  const found = result.remedies;
+  if (!found) return null;
+  return [
+    element("h3", {}, "What would mend it"),
+    element("p", {}, found.summary ?? ""),
+    element("ol", {}, [...(found.single ?? []), ...(found.pair?.steps ?? [])].map((step) => element("li", {}, step.sentence))),
+  ];
 }
 
 function stagnation(result) {
   const rows = result.stagnation.map((state) => ({
     verdict: state.verdict,
     cells: [
-      words.ScenarioName[state.scenario] ?? said(state.scenario),
+      states[state.scenario] ?? said(state.scenario),
       plate(state.verdict),
       words.StagnationRegime[state.regime] ?? said(state.regime ?? ""),
-      quantity(state.vesselPressure) || "none",
+      state.vesselPressure ? `${state.lowerBound ? "at least " : ""}${quantity(state.vesselPressure)}` : "none",
       quantity(state.steamVolume) || "none",
       quantity(state.mixedTemperature) || "none",
     ],
   }));
-  return table("Stagnation: at rest in full sun",
+  return table("At rest in full sun",
     ["case", "outcome", "what happens", "pressure", "steam", "in the vessel"], rows);
 }
 
@@ -131,7 +151,7 @@ function advisories(answer) {
 
 function confirm(result) {
   if (!result.toConfirm?.length) return null;
-  return [element("h4", {}, "To be confirmed before building"), element("ul", {}, result.toConfirm.map((open) =>
+  return [element("h3", {}, "To be confirmed before building"), element("ul", {}, result.toConfirm.map((open) =>
     element("li", {}, said(open.code), open.subject ? `: ${said(open.subject)}` : "", open.field ? [" at ", element("code", {}, open.field)] : "")))];
 }
 
@@ -157,13 +177,15 @@ export function shownDesign(answer) {
     element("h3", {}, "Advisories"),
     advisories(answer),
     confirm(result),
+    remedies(result),
     checks(result),
+    element("h3", {}, "Stagnation"),
     stagnation(result),
     assumptions(answer),
     element("details", {}, element("summary", {}, "Cautions, for every such loop"),
       element("ul", {}, (answer.cautions ?? []).map((caution) => element("li", {}, caution.message)))),
     raw("The whole answer as JSON", answer),
-  ].flat();
+  ].flat(Infinity);
 }
 
 /** A problem document, with a link to each field of the form that is at fault. */

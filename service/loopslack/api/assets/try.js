@@ -25,7 +25,10 @@ function readIntoFields() {
     const value = there ? valueAt(question, pointers[0]) : undefined;
     field.disabled = !there;
     const note = at(`${field.id}-note`);
-    if (field.getAttribute("aria-invalid") !== "true") note.textContent = there || !question ? "" : "Not in this question.";
+    if (field.getAttribute("aria-invalid") !== "true") {
+      note.className = "hint";
+      note.textContent = there || !question ? "" : "Not in this question.";
+    }
     if (field.tagName === "SELECT") offer(field, value ?? "");
     else field.value = value ?? "";
     const unit = at(`${field.id}-unit`);
@@ -73,7 +76,9 @@ function markFaults(problem) {
     const field = at(fieldAt(fault.pointer) ?? "");
     if (!field) continue;
     field.setAttribute("aria-invalid", "true");
-    at(`${field.id}-note`).textContent = fault.message;
+    const note = at(`${field.id}-note`);
+    note.className = "fault";
+    note.textContent = fault.message;
   }
 }
 

@@ -23,6 +23,7 @@ from loopslack.api.docs.markup import (
 from loopslack.api.docs.prose import paragraph, phrase
 from loopslack.api.docs.words import ADVISORIES, CHECKS, METHOD_CODES, REASONS, TO_CONFIRM, VERDICT_HINTS
 from loopslack.api.reference import Page
+from loopslack.contract.advice_words import FAILING
 from loopslack.contract.problems import FIELD_CODES, PROBLEM_TYPES, ProblemType
 from loopslack.contract.writing_common import CAUTIONS
 
@@ -63,10 +64,7 @@ def _checks(contract: Contract) -> Page:
 
 def _coded(label: str, prefix: str, meanings: Mapping[str, str], head: str = "meaning") -> Html:
     """A table of codes, each with an anchor."""
-    rows = [
-        (anchored(f"{prefix}.{word}" if prefix else word, code(word)), phrase(text))
-        for word, text in meanings.items()
-    ]
+    rows = [(anchored(f"{prefix}.{word}", code(word)), phrase(text)) for word, text in meanings.items()]
     return table(label, ("code", head), rows)
 
 
@@ -91,13 +89,21 @@ def _doubts(contract: Contract) -> Html:
 
 
 def _check_codes() -> Html:
+    rows = [
+        (
+            anchored(word, code(word)),
+            phrase(meaning),
+            FAILING[word][1] if word in FAILING else "Ask its maker.",
+        )
+        for word, meaning in CHECKS.items()
+    ]
     return joined(
         paragraph(
             "Each check has a value, a limit and a margin that is negative where it fails. Core checks decide the "
             "verdict; the others must be confirmed by somebody, and one without a limit is not assessed, which is "
             "never a pass."
         ),
-        _coded("Codes of checks", "", CHECKS, "what is compared"),
+        table("Codes of checks", ("code", "what is compared", "what to do if it fails"), rows),
     )
 
 

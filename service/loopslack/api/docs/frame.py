@@ -8,7 +8,7 @@ from collections.abc import Sequence
 
 from msgspec import Struct
 
-from loopslack.api.docs.markup import Html, joined, link, tag
+from loopslack.api.docs.markup import Html, disclosure, joined, link, tag
 from loopslack.api.reference import Page
 from loopslack.contract.writing_common import CONTRACT_VERSION
 
@@ -30,6 +30,9 @@ PAGES = (
 ASSETS = "/docs/assets"
 REVALIDATED = "no-cache"
 """Pages and assets of one version belong together, so a browser asks each time and is told in a few bytes."""
+
+_MANY = 24
+"""Entries of a page from which they are listed only when asked for."""
 
 _LOADS = "style-src 'self'; img-src 'self'; base-uri 'none'; form-action 'none'; frame-ancestors 'none'"
 _PURE = "require-trusted-types-for 'script'; trusted-types 'none'"
@@ -122,7 +125,10 @@ def _contents(sections: Sequence[Section]) -> Html:
     entries = [
         tag("li", link(f"#{part.anchor}", tag("span", part.title))) for part in sections if part.listed
     ]
-    return tag("nav", tag("ol", entries), aria_label="On this page", class_="contents")
+    listed = tag("ol", entries)
+    if len(entries) > _MANY:
+        listed = disclosure(f"On this page: {len(entries)} entries", listed)
+    return tag("nav", listed, aria_label="On this page", class_="contents")
 
 
 def _foot() -> Html:

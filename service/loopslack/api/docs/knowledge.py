@@ -125,7 +125,8 @@ def _assumptions() -> Page:
     lead = (
         "Whatever a question leaves open is filled in from these, and every one that was used is listed in the "
         "answer under `assumptions` with its range, reason and source. The range is what the trade knows, not a "
-        "limit on what may be stated. No rated pressure is ever assumed."
+        "limit on what may be stated. No rated pressure is ever assumed. A content per area is a length: 1 mm is one "
+        "litre on a square metre."
     )
     heads = ("default", "value", "range", "why", "source")
     sections = [

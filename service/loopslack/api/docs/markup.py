@@ -78,7 +78,7 @@ def table(label: str, heads: Iterable[object], rows: Iterable[Iterable[object]])
         tag("thead", head, role="rowgroup"),
         tag("tbody", [_row(titles, list(row)) for row in rows], role="rowgroup"),
         role="table",
-        class_="records",
+        class_="records broad" if len(titles) > 3 else "records",
     )
 
 

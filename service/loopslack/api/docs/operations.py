@@ -51,6 +51,10 @@ def _breakable(path: str) -> Html:
     return Html(joined(path).replace("/", "<wbr>/"))
 
 
+def _job(tag_name: str) -> str:
+    return f"/docs/operations#{tag_name}"
+
+
 def _index(contract: Contract) -> Page:
     sections = []
     for told in contract.document["tags"]:
@@ -67,7 +71,7 @@ def _index(contract: Contract) -> Page:
             tag("p", phrase(told["description"])),
             table(f"Operations: {told['name']}", ("operation", "request", "what it does"), rows),
         )
-        sections.append(Section(anchor=told["name"].lower(), title=told["name"], body=body))
+        sections.append(Section(anchor=told["name"], title=told["name"], body=body))
     lead = (
         "Every operation of the contract, by the job it is for. A question is a POST that changes nothing: the "
         "same body gets the same answer, so it may be sent again at any time."
@@ -102,7 +106,9 @@ def _page(contract: Contract, operation: Described) -> Page:
     sections.append(
         Section(anchor="statuses", title="Statuses and problems", body=_statuses(contract, operation))
     )
-    lead = joined(written["summary"], ". Operation ", code(operation.id), ".")
+    lead = joined(
+        "Operation ", code(operation.id), ", for the job ", link(_job(operation.tag), operation.tag), "."
+    )
     return framed(operation.where, written["summary"], lead, sections)
 
 

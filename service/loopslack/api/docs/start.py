@@ -97,7 +97,8 @@ def _in_short(answer: LoopDesignAnswer) -> Html:
     ]
     vessel = result.chosen_vessel
     if vessel is not None:
-        lines.append(("Expansion vessel", f"{vessel.pieces} of {_said(vessel.nominal_volume)}"))
+        pieces = f"{vessel.pieces} of " if vessel.pieces > 1 else ""
+        lines.append(("Expansion vessel", pieces + _said(vessel.nominal_volume)))
         if vessel.cooling_vessel is not None:
             lines.append(("Cooling vessel before it", _said(vessel.cooling_vessel.content)))
     if result.settings is not None:
@@ -143,9 +144,9 @@ def _limits() -> Html:
     known = {field.name: field for field in msgspec.structs.fields(Settings)}
     rows = [
         (
-            code(PREFIX + name.upper()),
-            f"{known[name].default:,}".replace(",", " "),  # a thin space
             phrase(msgspec.json.schema(known[name].type)["description"]),
+            f"{known[name].default:,.10g}",
+            code(PREFIX + name.upper()),
         )
         for name in LIMITS
     ]
@@ -155,7 +156,7 @@ def _limits() -> Html:
             "`Authorization: Bearer` and yours. A caller beyond its rate, and any caller while the service is full, is "
             "told so at once with `Retry-After` in seconds: wait that long and send the same again."
         ),
-        table("Limits", ("setting", "as delivered", "meaning"), rows),
+        table("Limits", ("limit", "as delivered", "setting"), rows),
     )
 
 

@@ -10,7 +10,7 @@ from loopslack.api.docs.contract import Contract, Schema
 from loopslack.api.docs.frame import Section, framed
 from loopslack.api.docs.markup import Html, code, data_block, joined, json_text, link, listing, tag
 from loopslack.api.docs.start import ADDRESS, first_question
-from loopslack.api.docs.words import UNIT_SIGNS, VERDICT_HINTS
+from loopslack.api.docs.words import STATES, UNIT_SIGNS, VERDICT_HINTS
 from loopslack.api.reference import Page
 from loopslack.library.tubes import tube_standards
 
@@ -190,7 +190,7 @@ def _field(contract: Contract, field: Field) -> Html:
         "div",
         tag("label", field.label, for_=field.id),
         tag("div", control, class_="control"),
-        tag("p", id=f"{field.id}-note", class_="fault"),
+        tag("p", id=f"{field.id}-note", class_="hint"),
         class_="field",
     )
 
@@ -224,6 +224,7 @@ def _vocabulary(contract: Contract) -> dict[str, object]:
     """What the script needs to say an answer: the contract's own words, and units as a person writes them."""
     return {
         "words": {name: contract.words(name) for name in _WORD_LISTS},
+        "states": contract.words("LiquidStateName") | contract.words("ScenarioName") | STATES,
         "hints": VERDICT_HINTS,
         "units": UNIT_SIGNS,
     }

@@ -13,7 +13,12 @@ CHECKS: dict[str, str] = {
     "from boiling.",
     "steam-at-station": "Steam power that is left when every open pipe is full of steam and would reach pump, "
     "exchanger and vessel; beyond what the station is said to take there may be none.",
+    "steam-reach": "Length of the pipe run that steam fills furthest against its length. The verdict rests on the "
+    "power that is left, not on this.",
     "membrane-temperature": "Temperature of the liquid mixed in the vessel against the limit of its membrane.",
+    "glycol-degradation": "Temperature of the hottest liquid in stagnation against the one above which glycol ages "
+    "quickly.",
+    "construction": "What no vessel can make sound, such as an automatic make-up: it is there or it is not.",
     "freezing": "Freezing point of the fluid against the coldest outdoor temperature less a margin.",
     "fill-window": "Width of the range of fill pressures that keep every check against what an installer can hit. "
     "A filling outside the range fails whatever its width.",
@@ -28,6 +33,8 @@ CHECKS: dict[str, str] = {
 
 REASONS: dict[str, str] = {
     "vessel-empty": "The vessel would be empty, so that there is no pressure to name.",
+    "automatic-make-up": "The loop has an automatic make-up, which thins the glycol unseen.",
+    "galvanised-parts": "The loop has galvanised parts, whose zinc glycol dissolves.",
     "no-window": "No fill pressure keeps every check.",
     "fill-outside-window": "The filling lies outside the fill window.",
     "too-close-to-precharge": "The fill window lies too close to the precharge.",
@@ -49,7 +56,6 @@ TO_CONFIRM: dict[str, str] = {
 ADVISORIES: dict[str, tuple[str, str]] = {
     "not-assessed": ("stop", "A state of stagnation could not be computed, so nothing about it is a pass."),
     "freezes": ("stop", "The fluid freezes above the coldest outdoor temperature."),
-    "glycol-degrades": ("warning", "Liquid stands hot enough in stagnation for glycol to age quickly."),
     "hot-liquid-arrives": (
         "warning",
         "The liquid that enters the vessel last is hotter than its membrane may get, mixed it is not.",
@@ -85,6 +91,9 @@ VERDICT_HINTS: dict[str, str] = {
 }
 """What a verdict means for whoever stands before the roof."""
 
+STATES: dict[str, str] = {"required-doubts": "Over all doubts asked for"}
+"""States of a check that are neither one of the loop nor one doubt."""
+
 LIMITS: tuple[str, ...] = (
     "single_body_bytes",
     "batch_body_bytes",
@@ -114,10 +123,6 @@ UNIT_SIGNS: dict[str, str] = {
     "kg/m3": "kg/m³",
     "mass-percent": "% by mass",
     "volume-percent": "% by volume",
-    "barg": "bar gauge",
-    "bara": "bar absolute",
-    "psig": "psi gauge",
-    "psia": "psi absolute",
     "percent": "%",
     "1": "",
 }
