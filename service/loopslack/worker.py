@@ -80,6 +80,8 @@ class GuardedProtocol(ASGIProtocol):
       connection kept alive (which also stays bounded by gunicorn's own idle limit).
     * A client that reads nothing for a set time while an answer waits for it loses the connection.
     * A client that closes its sending side after a request still gets the answer.
+    * A client that sends its next request the moment it has the answer is not cut off: what arrives before
+      the last request is put away waits. The server's own way keeps 64 kB of it and closes beyond.
     * Beyond `worker_connections` a connection is answered 503 without being read; beyond twice that number
       it is reset.
 
@@ -94,6 +96,7 @@ class GuardedProtocol(ASGIProtocol):
         self._refused = False
         self._head_begun = False
         self._no_more_requests = False
+        self._early = b""
 
     def connection_made(self, transport: Any) -> None:
         """Refuse the connection if there are too many, else start to wait for its first request."""
@@ -111,8 +114,15 @@ class GuardedProtocol(ASGIProtocol):
 
     def data_received(self, data: bytes) -> None:
         """Read on, unless the connection has been refused: then what comes is dropped."""
-        if not self._refused:
-            super().data_received(data)
+        if self._refused:
+            return
+        if self._is_answering():
+            self._early += data
+            self._pause_reading()
+        else:
+            # more may have come before what was kept was fed
+            early, self._early = self._early, b""
+            super().data_received(early + data)
 
     def eof_received(self) -> bool:
         """Keep a connection whose client has sent its last request but still waits for the answer.
@@ -147,6 +157,21 @@ class GuardedProtocol(ASGIProtocol):
         """
         if self.req_count > 1 and self._awaiting_request and not self._head_begun:
             self._close()
+
+    def _is_answering(self) -> bool:
+        """Whether a request has come completely and has not been put away yet."""
+        receiver = self._body_receiver
+        return self._current_request is not None and receiver is not None and receiver._complete
+
+    def _resume_reading(self) -> None:
+        """Read on; the server calls this just before it puts the last request away."""
+        super()._resume_reading()
+        if self._early:
+            self.worker.loop.call_soon(self._feed_early)
+
+    def _feed_early(self) -> None:
+        if self._early and not (self._closed or self._is_answering()):
+            self.data_received(b"")
 
     def _feed_callback_parser(self, data: bytes) -> bool:
         going_on: bool = super()._feed_callback_parser(data)

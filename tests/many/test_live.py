@@ -94,6 +94,19 @@ def test_many_streams_on_one_connection_are_all_answered(server):
     assert json.loads(client.getresponse().read())["summary"]["designs"] == 1
 
 
+def test_a_long_request_right_behind_an_answer_finds_the_connection_open(server):
+    client = connection(server)
+    body = lines(*(faulty(f"q-{number}") for number in range(300)))
+    assert len(body) > 140_000
+    client.connect()
+    opened = client.sock.getsockname()
+    for _ in range(25):
+        client.request("POST", STREAM_PATH, body, NDJSON)
+        # the next request is on its way before the server has put this one away
+        assert b'"complete":true' in client.getresponse().read()
+        assert client.sock.getsockname() == opened
+
+
 def test_memory_does_not_grow_with_the_number_of_lines(server, capsys):
     client = connection(server)
     short = lines(*(faulty(f"q-{number}") for number in range(1000)))
