@@ -15,10 +15,12 @@ from loopslack.sheet.sections import closing
 from loopslack.sheet.sections.assumptions import assumptions
 from loopslack.sheet.sections.checks import checks
 from loopslack.sheet.sections.day import day
+from loopslack.sheet.sections.derivation import derivation
 from loopslack.sheet.sections.inputs import inputs
 from loopslack.sheet.sections.notices import notices
 from loopslack.sheet.sections.order import order
 from loopslack.sheet.sections.pressures import pressures
+from loopslack.sheet.sections.remedies import remedies
 from loopslack.sheet.sections.result import banner, result
 from loopslack.sheet.sections.rules import rules
 from loopslack.sheet.sections.sensitivity import sensitivity
@@ -30,6 +32,7 @@ from loopslack.sheet.words import paragraphs, plain
 SECTIONS: tuple[Callable[[Case], Section | None], ...] = (
     result,
     notices,
+    remedies,
     pressures,
     steam,
     sizing,
@@ -41,6 +44,7 @@ SECTIONS: tuple[Callable[[Case], Section | None], ...] = (
     order,
     inputs,
     assumptions,
+    derivation,
     closing.cautions,
 )
 

@@ -48,6 +48,7 @@ _AT_MOST = {
     "ftH2O": 1,
     "min": 0,
 }
+_RAISED = str.maketrans("-0123456789", "⁻⁰¹²³⁴⁵⁶⁷⁸⁹")
 _DIGITS = 3  # for everything else: litres, gallons, watts, areas, densities
 
 _UNITS = {
@@ -175,6 +176,16 @@ class Numerals:
     def every_digit(self, value: float) -> str:
         """A number with all its digits, for a reader who does the sum again."""
         return self.plain(f"{Decimal(repr(float(value))).normalize():f}")
+
+    def scientific(self, quantity: Quantity) -> str:
+        """A number so small that only its power of ten says anything."""
+        head, _, power = f"{quantity.value:.1e}".partition("e")
+        if not power or -3 <= int(power) <= 5:
+            return self.stated(quantity)
+        raised = str(int(power)).translate(_RAISED)
+        return self.joined(
+            f"{self.plain(head)} \N{MULTIPLICATION SIGN} 10{raised}".replace(" ", NO_BREAK), quantity.unit
+        )
 
     def unit(self, code: str) -> str:
         """How a unit is written."""

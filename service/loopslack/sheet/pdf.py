@@ -11,7 +11,7 @@ from functools import cache
 from importlib.resources import as_file, files
 from pathlib import Path
 from threading import Lock
-from typing import TYPE_CHECKING, Any
+from typing import Any, Literal
 
 import msgspec
 
@@ -19,11 +19,8 @@ from loopslack.kernel.errors import CalculationError
 from loopslack.sheet.lines import Sheet
 from loopslack.sheet.words import REPLACEMENT
 
-if TYPE_CHECKING:
-    import typst
-
 _NO_DATE = date(2000, 1, 1)  # a file for the archive must bear a date; it is printed nowhere
-_STANDARDS = ["ua-1", "a-2a"]
+_STANDARDS: list[Literal["ua-1", "a-2a"]] = ["ua-1", "a-2a"]
 _LONG = re.compile(r"[^\s\u00a0\u200b]{28}")
 _SOFT_BREAK = "\u200b"
 _PANIC = "PanicException"
@@ -36,54 +33,65 @@ class NotInstalled(CalculationError):
     code = "not-installed"
 
 
+class _Typesetter:
+    """The typesetter with our template, which it is handed anew for every sheet."""
+
+    def __init__(self) -> None:
+        try:
+            import typst  # noqa: PLC0415 - an extra of the installation
+        except ImportError:
+            raise NotInstalled(
+                "Sheets as PDF are not available in this installation.",
+                remedy="Install the service with its extra `sheet`, or ask for the sheet as HTML.",
+            ) from None
+        with as_file(files("loopslack.sheet").joinpath("assets")) as folder:
+            self._template = Path(folder, "sheet.typ").read_bytes()
+            nowhere = str(Path(folder, "no-packages"))
+            self._engine = typst.Compiler(
+                input=self._template,
+                root=str(folder),
+                ignore_system_fonts=True,
+                package_path=nowhere,
+                package_cache_path=nowhere,
+            )
+        self.failure: type[Exception] = typst.TypstError
+
+    def __call__(self, data: object) -> bytes:
+        """Data set by the template. Raises ``failure`` for what the template cannot set."""
+        made = self._engine.compile(
+            input=self._template,
+            format="pdf",
+            sys_inputs={"data": msgspec.json.encode(data).decode()},
+            pdf_standards=[*_STANDARDS],
+            timestamp=0,
+        )
+        if not isinstance(made, bytes):
+            raise TypeError("the typesetter gave no single file")
+        return made
+
+
+@cache
+def typesetter() -> _Typesetter:
+    """The typesetter, made once. Raises ``NotInstalled`` where it is missing."""
+    return _Typesetter()
+
+
 def pdf(sheet: Sheet) -> bytes:
     """The whole sheet as PDF. Raises ``NotInstalled`` where the typesetter is missing."""
-    engine, failure = typesetter()
+    typeset = typesetter()
     data = msgspec.to_builtins(sheet)
     stated = date.fromisoformat(sheet.date) if sheet.date else _NO_DATE
     data |= {"year": stated.year, "month": stated.month, "day": stated.day}
     with _LOCK:
         try:
-            return _set(engine, _printable(data, strict=False))
+            return typeset(_printable(data, strict=False))
         except BaseException as error:
-            if not isinstance(error, failure) and type(error).__name__ != _PANIC:
+            if not isinstance(error, typeset.failure) and type(error).__name__ != _PANIC:
                 raise
-        # A text the typesetter cannot set, whatever letters it has: set with the plainest letters only, by an
-        # engine that has not seen it.
+        # A text the typesetter cannot set, whatever letters it has: set with the plainest letters only, by a
+        # typesetter that has not seen it.
         typesetter.cache_clear()
-        return _set(typesetter()[0], _printable(data, strict=True))
-
-
-def _set(engine: "typst.Compiler", data: object) -> bytes:
-    text = msgspec.json.encode(data).decode()
-    made = engine.compile(format="pdf", sys_inputs={"data": text}, pdf_standards=_STANDARDS, timestamp=0)  # type: ignore[arg-type]
-    if not isinstance(made, bytes):
-        raise TypeError("the typesetter gave no single file")
-    return made
-
-
-@cache
-def typesetter() -> tuple["typst.Compiler", type[Exception]]:
-    """The typesetter with our template in it, made once."""
-    try:
-        import typst  # noqa: PLC0415 - an extra of the installation
-    except ImportError:
-        raise NotInstalled(
-            "Sheets as PDF are not available in this installation.",
-            remedy="Install the service with its extra `sheet`, or ask for the sheet as HTML.",
-        ) from None
-    with as_file(files("loopslack.sheet").joinpath("assets")) as folder:
-        root = str(Path(folder))
-        template = Path(folder, "sheet.typ").read_bytes()
-        nowhere = str(Path(folder, "no-packages"))
-        engine = typst.Compiler(
-            input=template,
-            root=root,
-            ignore_system_fonts=True,
-            package_path=nowhere,
-            package_cache_path=nowhere,
-        )
-    return engine, typst.TypstError
+        return typesetter()(_printable(data, strict=True))
 
 
 @cache

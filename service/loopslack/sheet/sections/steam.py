@@ -5,7 +5,8 @@ from collections.abc import Callable
 from loopslack.contract.answers_loop import StagnationState
 from loopslack.sheet.case import Case
 from loopslack.sheet.figures.reach import steam_reach
-from loopslack.sheet.lines import Beside, Block, Column, Mark, Row, Section, Table
+from loopslack.sheet.lines import Beside, Block, Column, Mark, Row, Section, Table, Text
+from loopslack.sheet.sections.discharges import discharges
 from loopslack.sheet.sections.doubts import doubts
 from loopslack.sheet.sections.names import state_name, verdict_word
 
@@ -18,6 +19,22 @@ def steam(case: Case) -> Section:
     blocks: list[Block] = [doubts(case)] if figure is None else [Beside((figure,), (doubts(case),))]
     if case.result.stagnation:
         blocks.append(_table(case))
+    left = discharges(case)
+    if left is not None:
+        blocks.append(left)
+    cooler = case.answer.robust_cooler
+    if cooler is not None:
+        say = case.say
+        blocks.append(
+            Text(
+                case.words(
+                    "steam.robust-cooler",
+                    unspent=say(cooler.unspent_power),
+                    power=say(cooler.power),
+                    volume=say(cooler.nominal_volume),
+                )
+            )
+        )
     return Section("steam", case.words("section.steam"), tuple(blocks))
 
 

@@ -1,0 +1,100 @@
+"""The derivation: equation, numbers put in, result and source, line by line, for a reader who does the sums again.
+
+A loop takes hundreds of steps. Unless the question itself includes the derivation, the sheet prints the steps whose
+numbers the answer shows and those they take their numbers from; all keep the numbers they have in the answer. Numbers
+have all their digits here.
+"""
+
+from collections.abc import Iterable
+
+from loopslack.contract.answers_derivation import Derivation, DerivationInput, DerivationStep
+from loopslack.sheet.case import Case
+from loopslack.sheet.lines import Block, Column, Row, Section, Table, Text
+from loopslack.sheet.sections.names import source_name
+from loopslack.sheet.words import plain
+
+
+def derivation(case: Case) -> Section | None:
+    """A table a chapter, then the fitted constants they use."""
+    found = case.answer.derivation
+    if found is None:
+        return None
+    words = case.words
+    whole = "derivation" in (case.design.include or ())
+    steps = found.steps if whole else _shown(found)
+    lead = words("derivation.whole" if whole else "derivation.part", shown=len(steps), all=len(found.steps))
+    blocks: list[Block] = [Text(f"{lead} {words.phrase(plain(found.redoing))}", "small")]
+    sources = {equation.id: equation.source for equation in found.equations}
+    for chapter in dict.fromkeys(step.chapter for step in steps):
+        rows = tuple(
+            _row(case, step, source_name(case, sources[step.equation]) if step.equation in sources else "")
+            for step in steps
+            if step.chapter == chapter
+        )
+        blocks.append(Table(words(f"chapter.{chapter}"), _columns(case), rows, compact=True))
+    used = {name for step in steps for name in step.constants or ()}
+    constants = [constant for constant in found.constants if constant.id in used]
+    if constants:
+        rows = tuple(
+            Row(
+                (
+                    plain(constant.id),
+                    "; ".join(case.say.every_digit(value) for value in constant.values),
+                    source_name(case, constant.source),
+                )
+            )
+            for constant in constants
+        )
+        columns = (
+            Column(words("column.constants")),
+            Column(words("column.numbers")),
+            Column(words("column.source")),
+        )
+        blocks.append(Table(words("table.constants"), columns, rows, compact=True))
+    return Section("derivation", words("section.derivation"), tuple(blocks))
+
+
+def _columns(case: Case) -> tuple[Column, ...]:
+    words = case.words
+    return (
+        Column(words("column.step")),
+        Column(words("column.what")),
+        Column(words("column.law")),
+        Column(words("column.result"), "number"),
+        Column(words("column.source")),
+    )
+
+
+def _shown(found: Derivation) -> list[DerivationStep]:
+    """The steps the answer shows and those their inputs come from."""
+    by_number = {step.number: step for step in found.steps}
+    shown = {step.number for step in found.steps if step.answers}
+    shown |= {one.step for number in shown for one in by_number[number].inputs if one.step is not None}
+    return [step for step in found.steps if step.number in shown]
+
+
+def _row(case: Case, step: DerivationStep, source: str) -> Row:
+    return Row((str(step.number), plain(step.name), _law(case, step), case.say.stated(step.value), source))
+
+
+def _law(case: Case, step: DerivationStep) -> str:
+    """The law with its numbers, or what a root solves."""
+    words = case.words
+    if step.system is not None:
+        steps = ", ".join(str(number) for number in step.system.equations)
+        told = words("derivation.root", meaning=words.phrase(plain(step.system.meaning)), steps=steps)
+        if step.system.residual is not None:
+            told = (
+                f"{told} {words('derivation.residual', residual=case.say.scientific(step.system.residual))}"
+            )
+        return told
+    numbers = ", ".join(_inputs(case, step.inputs))
+    law = plain(step.law or "")
+    outside = f" {words('derivation.outside')}" if step.outside else ""
+    return f"{law};  {numbers}{outside}" if numbers else f"{law}{outside}"
+
+
+def _inputs(case: Case, inputs: Iterable[DerivationInput]) -> Iterable[str]:
+    for one in inputs:
+        origin = case.words(f"origin.{one.origin}", step=one.step)
+        yield f"{plain(one.symbol or one.name)} = {case.say.stated(one.value)} {origin}"
