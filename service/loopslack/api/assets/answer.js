@@ -169,7 +169,7 @@ export function shownDesign(answer) {
   const { result } = answer;
   return [
     element("div", { class: "outcome", "data-verdict": result.verdict },
-      heading(plate(result.verdict, said(result.verdict).toUpperCase())),
+      heading(plate(result.verdict, said(result.verdict).toUpperCase()), " ", element("span", { class: "basis" }, result.basis)),
       element("p", {}, `${words.Verdict[result.verdict] ?? ""}. `, element("strong", {}, hints[result.verdict] ?? "")),
       element("p", {}, `Basis ${result.basis}: ${(words.Basis[result.basis] ?? "").toLowerCase()}. `,
         result.robust ? "All doubts at once are survived." : "Not all doubts at once are survived."),

@@ -79,6 +79,7 @@ METHOD_CODES: dict[str, str] = {
     "unknown-tube-standard": "The service has no table of this tube standard.",
     "unknown-tube-size": "The standard has no tube of this nominal size.",
     "unknown-sizing-rule": "There is no sizing rule of this name.",
+    "other-physics": "The loop is open or drains back; this service computes closed loops under pressure only.",
     "course-not-applicable": "The day without flow cannot be followed for this loop; the message says why.",
 }
 """Codes of `errors` that a method adds to those every operation can give."""
