@@ -21,6 +21,8 @@ from loopslack.contract.reading_vessels import read_choice
 from loopslack.contract.writing_changes import Asked
 from loopslack.contract.writing_remedies import RemedyWriter
 
+WITHOUT_EXTRAS: dict[str, Any] = {"include": []}
+
 
 def changed(question: dict[str, Any], changes: list[dict[str, Any]]) -> dict[str, Any]:
     """The question after its changes, made as the answer describes them."""
@@ -99,13 +101,13 @@ def remedies_of_check(question: dict[str, Any]) -> Sought:
 
 def verdict_of_design(question: dict[str, Any]) -> str:
     """Verdict of a design question, or that a vessel is lacking."""
-    result = design_loop(decoded(question, LoopDesignQuestion)).result
+    result = design_loop(decoded(question | WITHOUT_EXTRAS, LoopDesignQuestion)).result
     return result.verdict if result.chosen_vessel is not None else f"{result.verdict}, no vessel chosen"
 
 
 def verdict_of_check(question: dict[str, Any]) -> str:
     """Verdict of a stagnation check."""
-    return check_stagnation(decoded(question, StagnationCheckQuestion)).result.verdict
+    return check_stagnation(decoded(question | WITHOUT_EXTRAS, StagnationCheckQuestion)).result.verdict
 
 
 def offered(found: out.Remedies) -> list[tuple[str, list[dict[str, Any]]]]:
