@@ -15,6 +15,7 @@ from loopslack.contract.fields import field_of
 from loopslack.contract.quantity import Quantity
 from loopslack.contract.questions_plant import AllowanceStated
 from loopslack.contract.reading import Reading
+from loopslack.kernel.units import GAUGE_UNITS
 from loopslack.library.tubes import tube as tube_of_standard
 
 _GROUP, _COEFFICIENTS = collectors.CollectorGroup, collectors.CollectorCoefficients
@@ -27,6 +28,7 @@ _BORE = field_of(pipes.BoreTube, "bore")
 _VOLUME_SHARE = field_of(fluids.ByVolume, "share")
 _PROTECT = field_of(fluids.ProtectTo, "temperature")
 _ALLOWANCE = field_of(AllowanceStated, "value")
+_FILL = field_of(vessels.GivenVessel, "fill_pressure")
 _WORSE = {"good": "fair", "fair": "poor"}
 
 
@@ -41,7 +43,7 @@ def ground_of(question: questions.LoopQuestion, reading: Reading) -> Ground:
         vessels=_vessels(question),
         heights=_heights(question),
         sized_cooling=reading.cooling == "size",
-        fill_pressure=_fill(question),
+        fill=_fill(question, reading.loop.atmosphere),
         allowance=_si(valve.value, _ALLOWANCE.lines) if isinstance(valve, AllowanceStated) else None,
     )
 
@@ -136,11 +138,14 @@ def _heights(question: questions.LoopQuestion) -> frozenset[str]:
     return frozenset(collectors_stated | ends_stated)
 
 
-def _fill(question: questions.LoopQuestion) -> str:
-    """Pointer of a stated fill pressure, empty where it is recommended."""
-    if isinstance(question, questions.StagnationCheckQuestion) and question.fill_pressure is not None:
-        return "/fillPressure"
-    choice = question.vessel if isinstance(question, questions.SizingQuestion) else None
-    if isinstance(choice, vessels.GivenVessel) and choice.fill_pressure is not None:
-        return "/vessel/fillPressure"
-    return ""
+def _fill(question: questions.LoopQuestion, atmosphere: float) -> tuple[float, str] | None:
+    """A stated fill pressure, Pa absolute, and its pointer; None where it is recommended."""
+    stated, pointer = None, "/fillPressure"
+    if isinstance(question, questions.StagnationCheckQuestion):
+        stated = question.fill_pressure
+    elif isinstance(question, questions.SizingQuestion) and isinstance(question.vessel, vessels.GivenVessel):
+        stated, pointer = question.vessel.fill_pressure, "/vessel/fillPressure"
+    if stated is None:
+        return None
+    datum = atmosphere if stated.unit in GAUGE_UNITS else 0.0
+    return _FILL.lines[stated.unit][0] * stated.value + datum, pointer

@@ -86,6 +86,19 @@ def loop_content(
 
 
 @equation(
+    "all-liquid",
+    law="V_l = V_N",
+    symbols={"V_N": "nominal volume"},
+    source=DERIVED,
+    note="A vessel that has no gas left holds its nominal volume.",
+    valid={"nominal_volume": _FROM_ZERO},
+)
+def all_liquid(nominal_volume: NominalVolume) -> Volume:
+    """Liquid, m3, in a vessel whose gas has no room left."""
+    return Volume(nominal_volume)
+
+
+@equation(
     "length-sum",
     law="L = L_1 + L_2",
     symbols={"L_1": "first", "L_2": "second"},

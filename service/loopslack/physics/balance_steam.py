@@ -91,6 +91,19 @@ def steam_power_per_area(of_class: Irradiance, bound: Irradiance) -> Irradiance:
 
 
 @equation(
+    "doubted-steam-power",
+    law="q = f * q_m",
+    symbols={"f": "factor", "q_m": "measured"},
+    source=OWN_ASSUMPTION,
+    note="A measurement on one day may have missed a worse one.",
+    valid={"factor": Range(1.0), "measured": _FROM_ZERO},
+)
+def doubted_steam_power(factor: Ratio, measured: Irradiance) -> Irradiance:
+    """Steam power per area, W/m2, of a field whose measured figure is doubted."""
+    return Irradiance(factor * measured)
+
+
+@equation(
     "power-sum",
     law="Q = Q_1 + Q_2",
     symbols={"Q_1": "first", "Q_2": "second"},

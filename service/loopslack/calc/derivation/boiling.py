@@ -131,4 +131,15 @@ class GroupSteps:
             title = f"steam power per area, {key.removeprefix('steam-power-').replace('-', ' ')}"
             return self.book.tabulated(number, kinds.IRRADIANCE, title, "defaults", key, row.source)
         pointer = f"{group.place}/measuredSteamPower"
-        return self.book.leaf(number, kinds.IRRADIANCE, "steam power per area, as measured", pointer)
+        title = "steam power per area, as measured"
+        measured = self.book.leaf(model.steam_power, kinds.IRRADIANCE, title, pointer)
+        if number == model.steam_power:
+            return measured
+        if model.emptying != "measured":
+            return self.book.leaf(number, kinds.IRRADIANCE, "steam power per area, next worse class", pointer)
+        return self.book.step(
+            balance_steam.doubted_steam_power,
+            f"steam power per area of {group.name}, doubted",
+            factor=self.frame.leaves.default("doubt-measured-steam-power"),
+            measured=measured,
+        )

@@ -73,7 +73,7 @@ class FrontSteps:
         """Reach in each run, height of the front, and the roots among them."""
         path, found, book = self.path, self.found, self.book
         lengths = [self._length(index) for index in self.indices]
-        end = self.frame.leaves.height(path.heights[-1], "height of the runs' end", "/station/height")
+        end = self.frame.leaves.height(path.heights[-1], "height of the runs' end", self._end_pointer())
         if found.unspent > 0:
             return lengths, end, []
         numbers = path.reach(found.place)
@@ -162,6 +162,13 @@ class FrontSteps:
 
     def _name(self, index: int) -> str:
         return run_name(self.frame.loop.branches[index], index)
+
+    def _end_pointer(self) -> str:
+        """The member that says where the runs end: that of their last stretch, else the station's height."""
+        index = self.indices[0]
+        last = len(self.parts.runs[index]) - 1
+        pointer = f"/pipeRuns/{index}/segments/{last}/endHeight"
+        return pointer if pointer in self.parts.ground.heights else "/station/height"
 
     def _height_pointer(self, space: SteamSpace) -> str:
         """The member that says how high the space begins: that of its highest group, else the static height."""

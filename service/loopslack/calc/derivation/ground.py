@@ -48,8 +48,8 @@ class Ground(Struct, frozen=True, kw_only=True):
 
     ``assumed`` gives the source of what the question left open, by pointer; ``vessels`` the pointer of an article by
     its id, which is missing for the generic series. ``heights`` are the pointers of heights that were stated.
-    ``sized_cooling`` says that the cooling vessel's content was solved for; ``fill_pressure`` is the pointer of one
-    that is stated; ``allowance`` the opening allowance (Pa) where one was stated instead of a rule.
+    ``sized_cooling`` says that the cooling vessel's content was solved for; ``fill`` is a stated fill pressure (Pa
+    absolute) with its pointer; ``allowance`` the opening allowance (Pa) where one was stated instead of a rule.
     """
 
     assumed: Mapping[str, Cite] = {}
@@ -59,5 +59,5 @@ class Ground(Struct, frozen=True, kw_only=True):
     vessels: Mapping[str, str] = {}
     heights: frozenset[str] = frozenset()
     sized_cooling: bool = False
-    fill_pressure: str = ""
+    fill: tuple[float, str] | None = None
     allowance: float | None = None

@@ -40,10 +40,12 @@ class Leaves:
 
     def temperature(self, name: str) -> Value:
         """A temperature of the states by its name in the loop."""
+        number = getattr(self.loop.temperatures, name)
         if name == "vessel_cold":
-            return self.temperature("site_minimum" if self.loop.vessel_outdoor else "indoor_cold")
+            # As cold as the vessel's zone, which is where the question says so.
+            name = "site_minimum" if self.loop.vessel_outdoor else "indoor_cold"
         title, pointer = _TEMPERATURES[name]
-        return self.book.leaf(getattr(self.loop.temperatures, name), kinds.TEMPERATURE, title, pointer)
+        return self.book.leaf(number, kinds.TEMPERATURE, title, pointer)
 
     def criterion(self, name: str) -> Value:
         """A criterion by its name in the loop."""

@@ -37,15 +37,17 @@ class ShownSteps:
         book.report(width, "/result/window/width", *self._card("/window/width"))
         return found
 
-    def fill_pressure(self, window: WindowValues, stated: str) -> Value:
-        """The fill pressure: as stated at a pointer, else recommended."""
+    def stated_fill(self, number: float, pointer: str) -> Value:
+        """A fill pressure that the question states."""
+        book, air = self.book, self.frame.site.atmosphere
+        book.chapter = "filling"
+        reading = book.leaf(number - air.si, kinds.GAUGE_PRESSURE, "fill pressure as stated", pointer)
+        return book.step(statics.absolute_from_gauge, "fill pressure", gauge=reading, atmosphere=air)
+
+    def recommended_fill(self, window: WindowValues) -> Value:
+        """The fill pressure that is recommended."""
         book, frame = self.book, self.frame
         book.chapter = "filling"
-        number = self.fitted.window.recommended
-        if stated:
-            air = frame.site.atmosphere
-            reading = book.leaf(number - air.si, kinds.GAUGE_PRESSURE, "fill pressure as stated", stated)
-            return book.step(statics.absolute_from_gauge, "fill pressure", gauge=reading, atmosphere=air)
         if window.lower is None:
             return window.base
         return book.step(

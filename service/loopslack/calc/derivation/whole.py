@@ -9,6 +9,7 @@ from math import isfinite
 
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.derivation.book import Book
+from loopslack.calc.derivation.charge import Filled
 from loopslack.calc.derivation.frame import Frame
 from loopslack.calc.derivation.ground import Ground
 from loopslack.calc.derivation.order import write_closed_forms, write_order
@@ -21,14 +22,26 @@ from loopslack.calc.existing import Checked
 from loopslack.calc.fit import Fit
 from loopslack.calc.judge import required
 from loopslack.calc.scenarios import BASE, Scenario
+from loopslack.kernel.value import Value
+
+_CARD = "/result/settings"
 
 
 def derive_design(found: Design, ground: Ground) -> Book:
     """Derive a design: the vessel shown, the volumes, the order list."""
     whole = _Whole(found.analysis, found.shown, ground)
-    shown = whole.shown(found.shown, found, settings=_has_window(found.shown))
+    window_shown = _has_window(found.shown)
+    shown = whole.shown(found.shown, found, settings=window_shown)
+    window = shown.window()
+    fill = ground.fill
+    pressure = shown.recommended_fill(window) if fill is None else shown.stated_fill(*fill)
+    gauge = shown.gauge(pressure, "fill pressure, gauge")
+    if window_shown:
+        whole.book.report(gauge, "/result/window/recommended", f"{_CARD}/fillPressure")
+        whole.book.report(gauge, f"{_CARD}/window/recommended")
+        whole.card(shown)
+    filled = whole.at_rest(shown, pressure)
     scenarios: Sequence[Scenario] = required(found.analysis, found.request.policy)
-    whole.vessel(shown, ground.fill_pressure)
     own = scenarios if found.selection.chosen is not None else (BASE,)
     whole.cooling(shown, tuple(own))
     volumes = VolumeSteps(whole.parts, whole.site, found.analysis)
@@ -36,8 +49,8 @@ def derive_design(found: Design, ground: Ground) -> Book:
     for name, sized in zip(sets, found.volumes, strict=True):
         if sized is not None:
             volumes.write(sized, sets[name], name)
-    write_order(whole.frame, whole.filled)
-    if _has_window(found.shown):
+    write_order(whole.frame, filled)
+    if window_shown:
         write_closed_forms(whole.frame, shown.charged)
     return whole.book
 
@@ -46,9 +59,18 @@ def derive_check(found: Checked, ground: Ground) -> Book:
     """Derive a stagnation check of a given vessel."""
     whole = _Whole(found.fitted.analysis, found.fitted, ground)
     shown = whole.shown(found.fitted, found, settings=False)
-    whole.vessel(shown, ground.fill_pressure)
+    window = shown.window()
+    pressure = shown.recommended_fill(window)
+    if _has_window(found.fitted):
+        recommended = shown.gauge(pressure, "recommended fill pressure, gauge")
+        whole.book.report(recommended, "/result/window/recommended")
+    if ground.fill is not None:
+        pressure = shown.stated_fill(*ground.fill)
+    if isfinite(found.fill_pressure):
+        whole.book.report(shown.gauge(pressure, "fill pressure, gauge"), "/result/fillPressure")
     gauge = shown.gauge(shown.charged.precharge, "precharge, gauge")
     whole.book.report(gauge, "/result/precharge")
+    whole.at_rest(shown, pressure)
     return whole.book
 
 
@@ -74,34 +96,21 @@ class _Whole:
         frame = self.frame
         for state in (frame.cold, frame.operating, frame.cut_off):
             frame.column(state)
-        shown = ShownSteps(frame, fitted, found.judgement, settings=settings)
-        self.settings = settings
-        return shown
+        return ShownSteps(frame, fitted, found.judgement, settings=settings)
 
-    def vessel(self, shown: ShownSteps, stated_fill: str) -> None:
-        """Window, filling, states and stagnation."""
-        book = self.book
-        window = shown.window()
-        pressure = shown.fill_pressure(window, stated_fill)
-        gauge = shown.gauge(pressure, "fill pressure, gauge")
-        places = ["/result/fillPressure"]
-        if _has_window(shown.fitted):
-            places.append("/result/window/recommended")
-        if self.settings:
-            places = [
-                "/result/window/recommended",
-                "/result/settings/fillPressure",
-                "/result/settings/window/recommended",
-            ]
-        book.report(gauge, *places)
-        self.filled = shown.filled(pressure)
-        shown.liquid_states(self.filled)
-        shown.stagnation(self.filled)
-        if self.settings:
-            final = shown.gauge(self.site.final, "final pressure, gauge")
-            book.report(final, "/result/settings/finalPressure")
-            precharge = shown.gauge(shown.charged.precharge, "precharge, gauge")
-            book.report(precharge, "/result/settings/precharge")
+    def at_rest(self, shown: ShownSteps, pressure: Value) -> Filled:
+        """The vessel filled, its liquid states and its stagnation."""
+        filled = shown.filled(pressure)
+        shown.liquid_states(filled)
+        shown.stagnation(filled)
+        return filled
+
+    def card(self, shown: ShownSteps) -> None:
+        """Pressures of the settings card."""
+        final = shown.gauge(self.site.final, "final pressure, gauge")
+        self.book.report(final, f"{_CARD}/finalPressure")
+        precharge = shown.gauge(shown.charged.precharge, "precharge, gauge")
+        self.book.report(precharge, f"{_CARD}/precharge")
 
     def cooling(self, shown: ShownSteps, scenarios: tuple[Scenario, ...]) -> None:
         """Close the cooling vessel's content, if it was sized."""
