@@ -5,7 +5,8 @@ from math import log, pi
 
 from calc.reference import CRITERIA
 from loopslack.calc.balance import Balance, mixing
-from loopslack.calc.equilibrium import Charge, Equilibrium, equilibrium
+from loopslack.calc.charge import Charge
+from loopslack.calc.equilibrium import Equilibrium, equilibrium
 from loopslack.calc.fluid import Fluid, glycol, water
 from loopslack.calc.model import (
     Branch,

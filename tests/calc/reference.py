@@ -31,21 +31,21 @@ def stagnation_rise(gain: float, linear: float, quadratic: float) -> float:
 
 
 def group(**changes) -> CollectorGroup:
-    values = dict(
-        name="roof",
-        count=8,
-        aperture=18.4,
-        content=13.6e-3,
-        peak_efficiency=0.79,
-        linear_loss=3.7,
-        quadratic_loss=0.014,
-        stagnation_temperature=ZERO + 30 + stagnation_rise(790, 3.7, 0.014),
-        measured_stagnation=False,
-        emptying="fair",
-        steam_power=80.0,
-        worse_steam_power=120.0,
-        height=11.0,
-    )
+    values = {
+        "name": "roof",
+        "count": 8,
+        "aperture": 18.4,
+        "content": 13.6e-3,
+        "peak_efficiency": 0.79,
+        "linear_loss": 3.7,
+        "quadratic_loss": 0.014,
+        "stagnation_temperature": ZERO + 30 + stagnation_rise(790, 3.7, 0.014),
+        "measured_stagnation": False,
+        "emptying": "fair",
+        "steam_power": 80.0,
+        "worse_steam_power": 120.0,
+        "height": 11.0,
+    }
     return CollectorGroup(**(values | changes))
 
 
@@ -55,19 +55,19 @@ def conductance(outer: float, insulation: float, conductivity: float = 0.04, fil
 
 
 def run(name: str, role: str, length: float = 23.0, access: str = "open", **changes) -> Branch:
-    values = dict(
-        name=name,
-        length=length,
-        area=pi / 4 * 0.025**2,
-        outer_diameter=0.028,
-        insulation=0.02,
-        conductivity=0.04,
-        conductance=conductance(0.028, 0.02),
-        ambient=ZERO + 20,
-        start_height=11.0,
-        end_height=0.0,
-        outdoor=False,
-    )
+    values = {
+        "name": name,
+        "length": length,
+        "area": pi / 4 * 0.025**2,
+        "outer_diameter": 0.028,
+        "insulation": 0.02,
+        "conductivity": 0.04,
+        "conductance": conductance(0.028, 0.02),
+        "ambient": ZERO + 20,
+        "start_height": 11.0,
+        "end_height": 0.0,
+        "outdoor": False,
+    }
     segment = Segment(**(values | changes))
     return Branch(name=name, role=role, access=access, segments=(segment,))
 
@@ -101,34 +101,34 @@ TEMPERATURES = Temperatures(
 
 
 def loop(**changes) -> Loop:
-    values = dict(
-        fluid=glycol("propylene-glycol", 0.43),
-        groups=(group(),),
-        branches=(run("flow", "flow"), run("return", "return")),
-        station=Station(content=6.4e-3, height=0.0),
-        line_content=0.0,
-        cooling_content=0.0,
-        top=11.0,
-        vessel_outdoor=False,
-        pump_height=0.0,
-        pump_head=0.0,
-        pump_side="suction",
-        gauge_height=0.0,
-        atmosphere=ATMOSPHERE,
-        altitude=0.0,
-        relief=Relief(
+    values = {
+        "fluid": glycol("propylene-glycol", 0.43),
+        "groups": (group(),),
+        "branches": (run("flow", "flow"), run("return", "return")),
+        "station": Station(content=6.4e-3, height=0.0),
+        "line_content": 0.0,
+        "cooling_content": 0.0,
+        "top": 11.0,
+        "vessel_outdoor": False,
+        "pump_height": 0.0,
+        "pump_head": 0.0,
+        "pump_side": "suction",
+        "gauge_height": 0.0,
+        "atmosphere": ATMOSPHERE,
+        "altitude": 0.0,
+        "relief": Relief(
             set_pressure=6 * BAR,
             opening_pressure=5.4 * BAR,
             closing_pressure=4.8 * BAR,
             height=0.0,
             allowance_rule="en-12828",
         ),
-        parts=(Part(name="collectors", height=11.0, rated_pressure=10 * BAR),),
-        temperatures=TEMPERATURES,
-        sun=Sun(irradiance=1000.0, ambient=ZERO + 30),
-        criteria=CRITERIA,
-        precharge=Precharge(kind="rule"),
-    )
+        "parts": (Part(name="collectors", height=11.0, rated_pressure=10 * BAR),),
+        "temperatures": TEMPERATURES,
+        "sun": Sun(irradiance=1000.0, ambient=ZERO + 30),
+        "criteria": CRITERIA,
+        "precharge": Precharge(kind="rule"),
+    }
     return Loop(**(values | changes))
 
 

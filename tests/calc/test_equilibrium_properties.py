@@ -8,7 +8,8 @@ from msgspec.structs import replace
 from calc.loops import random_loop
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.balance import Balance, mixing
-from loopslack.calc.equilibrium import Charge, Equilibrium, equilibrium
+from loopslack.calc.charge import Charge
+from loopslack.calc.equilibrium import Equilibrium, equilibrium
 from loopslack.calc.model import Loop
 from loopslack.calc.scenarios import BASE
 from loopslack.kernel.errors import CalculationError

@@ -10,7 +10,8 @@ from msgspec.structs import replace
 from calc import reference
 from calc.reference import ATMOSPHERE, BAR, ZERO
 from loopslack.calc.balance import Balance, mixing
-from loopslack.calc.equilibrium import Charge, Equilibrium, equilibrium
+from loopslack.calc.charge import Charge
+from loopslack.calc.equilibrium import Equilibrium, equilibrium
 from loopslack.calc.scenarios import BASE, Scenario
 from loopslack.kernel.roots import bracketed
 

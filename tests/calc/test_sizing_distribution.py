@@ -16,7 +16,7 @@ from loopslack.calc.design import Design, Request, design
 from loopslack.calc.judge import judge
 from loopslack.calc.model import Vessel
 from loopslack.calc.precharge import gas_of
-from loopslack.calc.selection import Selector
+from loopslack.calc.selector import Selector
 from loopslack.calc.sizing.volumes import size
 from loopslack.calc.window import Bounds, Gas
 from loopslack.library.vessels import preferred_vessels

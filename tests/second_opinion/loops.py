@@ -92,7 +92,7 @@ def _heights(random: Random, start: float, end: float, pieces: int) -> list[floa
     return heights
 
 
-def _branch(  # noqa: PLR0917 - all of it drawn
+def _branch(
     random: Random, role: Literal["flow", "return"], space: int, area: float, start: float, end: float
 ) -> Branch:
     bore, outer = _tube(random, area)
@@ -164,7 +164,7 @@ def _without_crest(branch: Branch, start: float) -> Branch:
     return Branch(segments=segments, role=branch.role, space=branch.space, open=branch.open)
 
 
-def _conditioned(  # noqa: PLR0917 - all of it drawn
+def _conditioned(
     random: Random,
     groups: list[Group],
     branches: list[Branch],

@@ -26,7 +26,7 @@ EQUILIBRIA = [
 @pytest.mark.parametrize(
     ("vessel", "regime", "gauge", "boiling", "power", "reach", "steam", "liquid"), EQUILIBRIA
 )
-def test_the_equilibrium_table_is_reproduced(  # noqa: PLR0917 - a row of the table
+def test_the_equilibrium_table_is_reproduced(
     vessel: float,
     regime: str,
     gauge: float,

@@ -63,11 +63,15 @@ def membrane(state: str, found: Equilibrium, limit: float) -> Check:
     )
 
 
-def steam_at_station(state: str, found: Equilibrium) -> Check:
-    """Steam power left when the branches are full, beyond what the station is said to take."""
-    extent = found.extent
-    power = sum(space.power for space in extent.spaces)
-    return compare("steam-at-station", state, kinds.POWER, extent.unspent, 0.0, at_most=True, scale=power)
+def steam_at_station(analysis: Analysis, state: str, found: Equilibrium) -> Check:
+    """Steam power left when the branches are full, beyond what the station is said to take.
+
+    It is a difference of powers as large as the sun's on the field, and its rounding goes with that.
+    """
+    loop = analysis.loop
+    sun = loop.sun.irradiance * loop.aperture
+    unspent = found.extent.unspent
+    return compare("steam-at-station", state, kinds.POWER, unspent, 0.0, at_most=True, scale=sun)
 
 
 def steam_reach(state: str, case: SteamCase, found: Equilibrium) -> Check | None:

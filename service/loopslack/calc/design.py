@@ -10,7 +10,8 @@ from loopslack.calc.judgement import DoubtPolicy, Judgement
 from loopslack.calc.model import Loop, Vessel
 from loopslack.calc.precharge import gas_of
 from loopslack.calc.scenarios import BASE, Scenario
-from loopslack.calc.selection import Selection, Selector
+from loopslack.calc.selection import Selection, choose
+from loopslack.calc.selector import Selector
 from loopslack.calc.sizing.volumes import CoolingMode, Sized, size
 from loopslack.calc.window import Bounds
 from loopslack.kernel.errors import CalculationError
@@ -119,7 +120,7 @@ def _select(
     analysis: Analysis, scenarios: Sequence[Scenario], sized: Sized | None, request: Request
 ) -> Selection:
     selector = Selector(analysis, scenarios, sized, request.cooling, analysis.loop.criteria.membrane_limit)
-    return selector.choose(request.candidates, request.most_in_parallel)
+    return choose(selector, request.candidates, request.most_in_parallel)
 
 
 def _nearest(

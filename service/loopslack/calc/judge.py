@@ -8,7 +8,8 @@ from collections.abc import Iterable
 
 from loopslack.calc import checks
 from loopslack.calc.analysis import Analysis
-from loopslack.calc.equilibrium import Charge, Equilibrium, equilibrium
+from loopslack.calc.charge import Charge
+from loopslack.calc.equilibrium import Equilibrium, equilibrium
 from loopslack.calc.judgement import (
     Check,
     CheckVerdict,
@@ -212,7 +213,7 @@ def _hot(
     yield checks.relief_valve(analysis, id, pressure, at_least=at_least)
     yield checks.acceptance(id, found, gas.acceptance, gas.nominal)
     yield checks.membrane(id, found, membrane_limit)
-    yield checks.steam_at_station(id, found)
+    yield checks.steam_at_station(analysis, id, found)
     told = (
         checks.steam_reach(id, analysis.case(scenario), found),
         checks.degradation(analysis, id, found),

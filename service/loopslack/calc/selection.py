@@ -1,32 +1,15 @@
-"""The choice of a vessel from a list: ranked, each candidate checked itself, each refusal with its number.
-
-Candidates of the same size share everything the loop has to say about that size, so that a list of thousands costs
-little more than a list of fifty.
-"""
+"""The choice of a vessel from a list: ranked, the first that fits taken, every refusal kept with its reasons."""
 
 from collections.abc import Sequence
-from functools import cached_property
 from math import inf
 from typing import Literal, NamedTuple
 
-from msgspec.structs import replace
-
-from loopslack.calc.analysis import Analysis
-from loopslack.calc.checks import pressure_to_withstand
-from loopslack.calc.cooling import Charged, hottest
-from loopslack.calc.delivered import nearest_precharge
-from loopslack.calc.fit import Fit, acceptance_needed, cooling_for, fit
+from loopslack.calc.fit import Fit
 from loopslack.calc.model import Vessel
-from loopslack.calc.reasons import Reason, ReasonCode, shortage
-from loopslack.calc.scenarios import Scenario
-from loopslack.calc.sizing.volumes import CoolingMode, Sized
-from loopslack.kernel import kinds
+from loopslack.calc.reasons import Reason
+from loopslack.calc.selector import Selector
 
 RankedBy = Literal["price", "volume"]
-
-# Refusals solved with the candidate's own cooling vessel; further ones are told by the loop as sized, so that a list
-# of thousands stays affordable.
-_MOST_SOLVED = 50
 
 
 class Refusal(NamedTuple):
@@ -47,242 +30,27 @@ class Selection(NamedTuple):
     nearest: tuple[Vessel, int]
 
 
-class Selector:
-    """Compares candidates for one loop under one policy."""
-
-    def __init__(
-        self,
-        analysis: Analysis,
-        scenarios: Sequence[Scenario],
-        sized: Sized | None,
-        cooling: CoolingMode,
-        membrane_limit: float,
-    ) -> None:
-        self.analysis, self.scenarios, self.sized = analysis, scenarios, sized
-        self.cooling: CoolingMode = cooling
-        self.membrane_limit = membrane_limit
-        self._fits: dict[tuple[object, ...], Fit | None] = {}
-        self._reasons: dict[tuple[object, ...], tuple[Reason, ...]] = {}
-        self._acceptances: dict[tuple[float, float | None], float] = {}
-        self._solved = 0
-        self._needed = pressure_to_withstand(analysis, analysis.loop.relief, 0.0)
-
-    def choose(self, candidates: Sequence[Vessel], most: int) -> Selection:
-        """Rank the candidates, up to ``most`` equal ones in parallel, and take the first that fits."""
-        by_price = _one_currency(candidates)
-        offers = [(vessel, count) for vessel in candidates for count in range(1, most + 1)]
-        if by_price:
-            offers.sort(key=lambda o: (_price(o), o[0].nominal_volume * o[1], o[1], o[0].id))
+def choose(selector: Selector, candidates: Sequence[Vessel], most: int) -> Selection:
+    """Rank the candidates, up to ``most`` equal ones in parallel, and take the first that fits."""
+    by_price = _one_currency(candidates)
+    offers = [(vessel, count) for vessel in candidates for count in range(1, most + 1)]
+    if by_price:
+        offers.sort(key=lambda o: (_price(o), o[0].nominal_volume * o[1], o[1], o[0].id))
+    else:
+        offers.sort(key=lambda o: (o[0].nominal_volume * o[1], o[1], o[0].id))
+    chosen: Fit | None = None
+    alternatives, refused = [], []
+    for vessel, count in offers:
+        reasons = selector.reasons(vessel, count, exact=chosen is None)
+        if reasons:
+            refused.append(Refusal(vessel, count, reasons))
+        elif chosen is None:
+            chosen = selector.fit(vessel, count)
         else:
-            offers.sort(key=lambda o: (o[0].nominal_volume * o[1], o[1], o[0].id))
-        chosen: Fit | None = None
-        alternatives, refused = [], []
-        for vessel, count in offers:
-            reasons = self.reasons(vessel, count, exact=chosen is None)
-            if reasons:
-                refused.append(Refusal(vessel, count, reasons))
-            elif chosen is None:
-                chosen = self._fit(vessel, count)
-            else:
-                alternatives.append((vessel, count))
-        nearest = (chosen.vessel, chosen.pieces) if chosen else _nearest(refused)
-        ranked: RankedBy = "price" if by_price else "volume"
-        return Selection(chosen, tuple(alternatives), tuple(refused), ranked, nearest)
-
-    def reasons(self, vessel: Vessel, count: int, *, exact: bool = True) -> tuple[Reason, ...]:
-        """Every reason against a candidate.
-
-        ``exact`` solves for the candidate's own cooling vessel; without it, and after ``_MOST_SOLVED`` refusals, the
-        loop as sized tells, which is enough to sort those ranked after the choice.
-        """
-        key = (exact, vessel.rated_pressure, count, *self._key(vessel, count))
-        found = self._reasons.get(key)
-        if found is None:
-            found = self._reasons[key] = tuple(self._found(vessel, count, exact=exact))
-        return found
-
-    def _found(self, vessel: Vessel, count: int, *, exact: bool) -> list[Reason]:
-        found = []
-        rated, sized = vessel.rated_pressure, self.sized
-        if rated is not None and rated < self._needed:
-            found.append(shortage("rated-pressure", kinds.GAUGE_PRESSURE, rated, self._needed))
-        if sized is None:
-            found.append(self._no_volume)
-            return found
-        nominal = vessel.nominal_volume * count
-        smallest, largest = sized.smallest, sized.interval.largest
-        if nominal < smallest:
-            found.append(shortage("nominal-volume", kinds.NOMINAL_VOLUME, nominal, smallest))
-            found += self._acceptance(vessel, count, sized, smallest, None)
-        elif nominal > largest:
-            code: ReasonCode = "nominal-volume-beyond-interval"
-            found.append(Reason(code, kinds.NOMINAL_VOLUME, nominal, largest, nominal - largest))
-        else:
-            brief = [] if exact and self._solved < _MOST_SOLVED else self._brief(vessel, count, sized)
-            if brief or not exact:
-                return found + brief
-            fitted = self._fit(vessel, count)
-            if fitted is None:
-                limit = self._limit(vessel)
-                found.append(Reason("membrane-temperature", kinds.TEMPERATURE, limit, None, None))
-            elif not fitted.window.wide_enough:
-                self._solved += 1
-                self._explain(vessel, count, fitted, found)
-        return found
-
-    def _brief(self, vessel: Vessel, count: int, sized: Sized) -> list[Reason]:
-        """Reasons against a vessel in the loop as it was sized, with the cooling vessel of the smallest one."""
-        nominal = vessel.nominal_volume * count
-        fixed = None if vessel.precharge_adjustable else vessel.delivered_precharge
-        if fixed is not None:
-            bare = replace(vessel, acceptance_volume=None)
-            plain = fit(sized.analysis, self.scenarios, bare, count, "size", inf, content=0.0)
-            adjusted = fit(
-                sized.analysis,
-                self.scenarios,
-                replace(bare, precharge_adjustable=True),
-                count,
-                "size",
-                inf,
-                content=0.0,
-            )
-            if plain is not None and adjusted is not None and not plain.window.wide_enough:
-                if not adjusted.window.wide_enough:
-                    return [self._too_narrow(plain)]
-                needed = nearest_precharge(adjusted, self.scenarios, fixed, lambda _: True)
-                return [shortage("precharge-as-delivered", kinds.GAUGE_PRESSURE, fixed, needed)]
-        return self._acceptance(vessel, count, sized, nominal, fixed)
-
-    @cached_property
-    def _no_volume(self) -> Reason:
-        """No volume holds: the steam power nothing condenses, or no window at any size."""
-        unspent = max(self.analysis.case(s).final.unspent for s in self.scenarios)
-        if unspent > 0:
-            return Reason("unspent-power", kinds.POWER, unspent, 0.0, unspent)
-        return Reason("no-window", kinds.PRESSURE_DIFFERENCE, None, None, None)
-
-    def _explain(self, vessel: Vessel, count: int, fitted: Fit, found: list[Reason]) -> None:
-        """Which property of the vessel narrows its window."""
-        unbounded = fit(
-            self.analysis,
-            self.scenarios,
-            replace(vessel, acceptance_volume=None),
-            count,
-            self.cooling,
-            self._limit(vessel),
-        )
-        if vessel.acceptance_volume is not None and unbounded and unbounded.window.wide_enough:
-            needed = acceptance_needed(unbounded, self.scenarios) / count
-            value = vessel.acceptance_volume
-            found.append(Reason("acceptance-volume", kinds.ACCEPTANCE_VOLUME, value, needed, needed - value))
-            return
-        if not vessel.precharge_adjustable and vessel.delivered_precharge is not None:
-            adjusted = fit(
-                self.analysis,
-                self.scenarios,
-                replace(vessel, precharge_adjustable=True),
-                count,
-                self.cooling,
-                self.membrane_limit,
-            )
-            if adjusted is not None and adjusted.window.wide_enough:
-                found.append(self._delivered(vessel, vessel.delivered_precharge, adjusted))
-                return
-        if fitted.window.lower_bound.code == "membrane-temperature":
-            limit = self._limit(vessel)
-            needed_limit = self._membrane_needed(fitted)
-            short = None if needed_limit is None else needed_limit - limit
-            found.append(Reason("membrane-temperature", kinds.TEMPERATURE, limit, needed_limit, short))
-            return
-        found.append(self._too_narrow(fitted))
-
-    def _too_narrow(self, fitted: Fit) -> Reason:
-        width = fitted.window.width
-        limit = self.analysis.loop.criteria.window_width
-        value = width if abs(width) < inf else None
-        return Reason("no-window", kinds.PRESSURE_DIFFERENCE, value, limit, None)
-
-    def _delivered(self, vessel: Vessel, delivered: float, adjusted: Fit) -> Reason:
-        """How far the delivered precharge is from the nearest one that leaves a window."""
-
-        def holds(precharge: float) -> bool:
-            other = replace(vessel, delivered_precharge=precharge)
-            found = fit(
-                self.analysis, self.scenarios, other, adjusted.pieces, self.cooling, self.membrane_limit
-            )
-            return found is not None and found.window.wide_enough
-
-        needed = nearest_precharge(adjusted, self.scenarios, delivered, holds)
-        return shortage("precharge-as-delivered", kinds.GAUGE_PRESSURE, delivered, needed)
-
-    def _membrane_needed(self, fitted: Fit) -> float | None:
-        """Membrane limit (K) with which a vessel's window would be just wide enough."""
-        plain = fit(fitted.analysis, self.scenarios, fitted.vessel, fitted.pieces, "size", inf, content=0.0)
-        if plain is None or not plain.window.wide_enough:
-            return None
-        # Ten pascals lower, so that a window found with this limit is wide enough in spite of rounding.
-        lowest = plain.window.upper - self.analysis.loop.criteria.window_width - 10.0
-        charged = Charged(plain.analysis, plain.gas, plain.mass_at(lowest))
-        return hottest(charged, self.scenarios)[0] + 1e-6
-
-    def _acceptance(
-        self, vessel: Vessel, count: int, sized: Sized, nominal: float, fixed: float | None
-    ) -> list[Reason]:
-        """Whether the membrane takes what a vessel of ``nominal`` m3 would have to hold in the loop as sized."""
-        accepted = vessel.acceptance_volume
-        if accepted is None:
-            return []
-        needed = self._acceptances.get((nominal, fixed))
-        if needed is None:
-            article = Vessel(
-                id="",
-                nominal_volume=nominal,
-                delivered_precharge=fixed,
-                precharge_adjustable=fixed is None,
-            )
-            fitted = fit(sized.analysis, self.scenarios, article, 1, "size", inf, content=0.0)
-            needed = 0.0 if fitted is None else acceptance_needed(fitted, self.scenarios)
-            self._acceptances[nominal, fixed] = needed
-        if accepted * count >= needed:
-            return []
-        return [shortage("acceptance-volume", kinds.ACCEPTANCE_VOLUME, accepted, needed / count)]
-
-    def _limit(self, vessel: Vessel) -> float:
-        return self.membrane_limit if vessel.membrane_limit is None else vessel.membrane_limit
-
-    def _key(self, vessel: Vessel, count: int) -> tuple[object, ...]:
-        fixed = None if vessel.precharge_adjustable else vessel.delivered_precharge
-        acceptance = vessel.acceptance_volume
-        return (
-            vessel.nominal_volume * count,
-            None if acceptance is None else acceptance * count,
-            fixed,
-            vessel.membrane_limit,
-        )
-
-    def _fit(self, vessel: Vessel, count: int) -> Fit | None:
-        key = self._key(vessel, count)
-        if key not in self._fits:
-            content = None
-            if self.cooling == "size":
-                content = cooling_for(self.analysis, self.scenarios, vessel, count, self._limit(vessel))
-                if content is None:
-                    # Either no cooling vessel helps or the vessel has no window at all: the plain fit tells which.
-                    plain = fit(self.analysis, self.scenarios, vessel, count, "size", inf, content=0.0)
-                    wide = plain is not None and plain.window.wide_enough
-                    self._fits[key] = None if wide else plain
-                    return self._fits[key]
-            self._fits[key] = fit(
-                self.analysis,
-                self.scenarios,
-                vessel,
-                count,
-                self.cooling,
-                self.membrane_limit,
-                content,
-            )
-        found = self._fits[key]
-        return found and found._replace(vessel=vessel, pieces=count)
+            alternatives.append((vessel, count))
+    nearest = (chosen.vessel, chosen.pieces) if chosen else _nearest(refused)
+    ranked: RankedBy = "price" if by_price else "volume"
+    return Selection(chosen, tuple(alternatives), tuple(refused), ranked, nearest)
 
 
 def _price(offer: tuple[Vessel, int]) -> float:

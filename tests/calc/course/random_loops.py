@@ -16,13 +16,13 @@ from msgspec.structs import replace
 from calc import reference
 from calc.course.checks import check_step
 from calc.course.quasi_static import at_rest, liquid_of
+from loopslack.calc.charge import Charge
 from loopslack.calc.course.assumptions import RESIDUAL_SHARE
 from loopslack.calc.course.curve import COLUMNS, Curve
 from loopslack.calc.course.lumped import Emptying, LumpedLoop, Start
 from loopslack.calc.course.mapping import mapped
 from loopslack.calc.course.march import Accuracy, March
 from loopslack.calc.course.weather import ClearSky, StatedWeather, Weather
-from loopslack.calc.equilibrium import Charge
 from loopslack.calc.fluid import glycol, water
 from loopslack.calc.model import Loop, Relief, Station
 

@@ -6,10 +6,10 @@ import pytest
 
 from calc.course.random_loops import Found, RandomCase, checked, random_case
 from calc.loops import random_loop
+from loopslack.calc.charge import Charge
 from loopslack.calc.course.mapping import mapped
 from loopslack.calc.course.march import Accuracy
 from loopslack.calc.course.weather import ClearSky
-from loopslack.calc.equilibrium import Charge
 from loopslack.kernel.errors import NotApplicable
 
 

@@ -7,6 +7,7 @@ stated.
 
 from typing import NamedTuple
 
+from loopslack.calc.charge import Charge
 from loopslack.calc.course.assumptions import (
     COLLECTOR_CAPACITY,
     RESIDUAL_SHARE,
@@ -33,7 +34,6 @@ from loopslack.calc.course.mapping_pipe import dead_content, lumped_pipe
 from loopslack.calc.course.mapping_valve import lumped_valve
 from loopslack.calc.course.properties import residue_of
 from loopslack.calc.course.refusal import not_applicable
-from loopslack.calc.equilibrium import Charge
 from loopslack.calc.model import CollectorGroup, Loop
 from loopslack.kernel.errors import CalculationError
 

@@ -17,7 +17,8 @@ from loopslack.calc.model import Vessel
 from loopslack.calc.precharge import gas_of
 from loopslack.calc.remedies.case import Case, Outcome
 from loopslack.calc.scenarios import Scenario
-from loopslack.calc.selection import Selector
+from loopslack.calc.selection import choose
+from loopslack.calc.selector import Selector
 from loopslack.calc.sizing.mass_balance import feasible
 from loopslack.calc.sizing.volumes import Sized, size, without_boiling_floor
 from loopslack.calc.window import Bounds
@@ -164,7 +165,7 @@ def _designed(case: Case) -> Outcome:
         return Outcome(False)
     limit = case.loop.criteria.membrane_limit
     selector = Selector(analysis, scenarios, sized, case.cooling, limit)
-    chosen = selector.choose(case.candidates, case.pieces).chosen
+    chosen = choose(selector, case.candidates, case.pieces).chosen
     if chosen is None:
         return Outcome(False)
     if case.fill_pressure is not None:

@@ -97,5 +97,5 @@ def _checks(analysis: Analysis, found: Equilibrium) -> tuple[Check, ...]:
     return (
         checks.relief_valve(analysis, BASE.id, pressure, at_least=found.bound),
         checks.membrane(BASE.id, found, analysis.loop.criteria.membrane_limit),
-        checks.steam_at_station(BASE.id, found),
+        checks.steam_at_station(analysis, BASE.id, found),
     )
