@@ -26,6 +26,7 @@ from loopslack.sheet.sections.rules import rules
 from loopslack.sheet.sections.sensitivity import sensitivity
 from loopslack.sheet.sections.settings import settings
 from loopslack.sheet.sections.sizing import sizing
+from loopslack.sheet.sections.sources import sources
 from loopslack.sheet.sections.steam import steam
 from loopslack.sheet.words import paragraphs, plain
 
@@ -45,6 +46,7 @@ SECTIONS: tuple[Callable[[Case], Section | None], ...] = (
     inputs,
     assumptions,
     derivation,
+    sources,
     closing.cautions,
 )
 

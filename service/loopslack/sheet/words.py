@@ -2,9 +2,10 @@
 
 English is the first catalogue and complete; another has the same keys. Sentences that an answer brings in English
 (why something was assumed, what to do on site) stand in the other catalogue under the English sentence itself, so
-that a sentence nobody has translated yet is printed in English rather than not at all.
+that a sentence nobody has translated yet is printed in English rather than not at all; ``{}`` in it is a number.
 """
 
+import re
 import tomllib
 import unicodedata
 from collections.abc import Iterator, Mapping
@@ -21,6 +22,10 @@ _DIRECTIONS = frozenset("\u061c\u200e\u200f\u202a\u202b\u202c\u202d\u202e\u2066\
 _BREAKS = frozenset("\n\r\x0b\x0c\x85\u2028\u2029")
 _UNPRINTABLE = frozenset({"Cc", "Cs", "Co", "Cn"})
 
+_SENTENCE = re.compile(r"(?<=[.])\s+(?=[A-Z])")
+_UNITS = {"degC": "°C", "m2": "m²", "m3": "m³", "W/m2": "W/m²", "mm2": "mm²"}
+_UNIT = re.compile(r"(?<![\w/])(?:degC|W/m2|mm2|m2|m3)(?![\w/])")
+
 
 class Words:
     """What the sheet says, by key."""
@@ -28,6 +33,7 @@ class Words:
     def __init__(self, language: Language, entries: Mapping[str, str], phrases: Mapping[str, str]) -> None:
         self.language = language
         self._entries, self._phrases = entries, phrases
+        self._patterns = [(_pattern(english), told) for english, told in phrases.items() if "{}" in english]
 
     def __call__(self, key: str, **parts: object) -> str:
         """The text of a key, its places filled. Raises ``KeyError`` for a key the catalogue has not."""
@@ -40,8 +46,21 @@ class Words:
         return other if text is None else text.format(**parts)
 
     def phrase(self, english: str) -> str:
-        """An English sentence of an answer in this language."""
-        return self._phrases.get(english, english)
+        """An English text of an answer in this language, sentence by sentence, units written as everywhere."""
+        found = self._phrase(english)
+        if found is None:
+            found = " ".join(self._phrase(one) or one for one in _SENTENCE.split(english))
+        return _UNIT.sub(lambda code: _UNITS[code[0]], found)
+
+    def _phrase(self, english: str) -> str | None:
+        exact = self._phrases.get(english)
+        if exact is not None:
+            return exact
+        for pattern, told in self._patterns:
+            found = pattern.fullmatch(english)
+            if found is not None:
+                return told.format(*found.groups())
+        return None
 
     def __contains__(self, key: str) -> bool:
         return key in self._entries
@@ -59,6 +78,11 @@ def words(language: Language) -> Words:
     tables = tomllib.loads(text)
     phrases = tables.pop("phrases", {})
     return Words(language, dict(_flat(tables)), phrases)
+
+
+def _pattern(english: str) -> "re.Pattern[str]":
+    """A sentence with places for its numbers."""
+    return re.compile("(.+)".join(re.escape(part) for part in english.split("{}")))
 
 
 def _flat(tables: Mapping[str, Any], prefix: str = "") -> Iterator[tuple[str, str]]:
