@@ -24,6 +24,8 @@ from typing import TYPE_CHECKING, Any
 from gunicorn.asgi.protocol import ASGIProtocol  # type: ignore[import-untyped]  # gunicorn ships no types
 from gunicorn.workers import gasgi  # type: ignore[import-untyped]  # as above
 
+from loopslack.observability import READINESS
+
 if TYPE_CHECKING:
     from asyncio import TimerHandle
 
@@ -238,6 +240,7 @@ class Worker(gasgi.ASGIWorker):
 
     def handle_exit_signal(self) -> None:
         """Stop gracefully: requests finish, and idle kept-alive connections do not hold the stop up."""
+        READINESS.draining = True
         super().handle_exit_signal()
         for connection in tuple(self.connections):
             connection.close_if_idle()
