@@ -1,6 +1,6 @@
 import pytest
 
-from many.designs import serving
+from many.service import serving
 
 
 @pytest.fixture(scope="module")

@@ -3,17 +3,9 @@
 from __future__ import annotations
 
 import json
-from contextlib import contextmanager
 from copy import deepcopy
 from pathlib import Path
 from typing import Any
-
-from litestar.testing import TestClient
-
-from loopslack.api.v1 import OPERATIONS
-from loopslack.api.v1_many import MANY_OPERATIONS
-from loopslack.app import create_app
-from loopslack.settings import Settings
 
 EXAMPLE = Path(__file__).parents[2] / "openapi" / "examples" / "designLoops" / "three-roofs.question.json"
 BATCH: dict[str, Any] = json.loads(EXAMPLE.read_text(encoding="utf-8"))
@@ -23,9 +15,6 @@ JSON = {"content-type": "application/json"}
 NDJSON = {"content-type": "application/x-ndjson"}
 BATCH_PATH = "/v1/loop-design/batch"
 STREAM_PATH = "/v1/loop-design/stream"
-
-_ours = {operation.operation_id for operation in MANY_OPERATIONS}
-ALL_OPERATIONS = (*MANY_OPERATIONS, *(one for one in OPERATIONS if one.operation_id not in _ours))
 
 
 def design(name: str, **members: Any) -> dict[str, Any]:
@@ -53,14 +42,3 @@ def read(body: bytes) -> tuple[list[dict[str, Any]], dict[str, Any]]:
     """The items of a stream and its last line."""
     *items, end = (json.loads(line) for line in body.splitlines())
     return items, end
-
-
-@contextmanager
-def serving(**settings: Any) -> Any:
-    """A client of the service in this process."""
-    app = create_app(
-        Settings(**{"shed_lag_seconds": 10.0, "access_log": False} | settings), operations=ALL_OPERATIONS
-    )
-    with TestClient(app, raise_server_exceptions=False) as client:
-        client.service = app
-        yield client

@@ -7,7 +7,8 @@ import pytest
 
 from loopslack.api import many_places, many_work
 from loopslack.observability import DESIGNS
-from many.designs import BATCH, BATCH_PATH, HEAD, JSON, batch, design, faulty, serving
+from many.designs import BATCH, BATCH_PATH, HEAD, JSON, batch, design, faulty
+from many.service import serving
 
 
 def post(client, body, **headers):

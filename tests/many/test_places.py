@@ -9,11 +9,10 @@ import pytest
 from api.small_service import ask_raw
 from loopslack.api import many_work
 from loopslack.api.many_places import ManyPlaces
-from loopslack.app import create_app
 from loopslack.contract.refusals import Refused
 from loopslack.observability import Readiness
-from loopslack.settings import Settings
-from many.designs import ALL_OPERATIONS, STREAM_PATH, design, faulty, lines
+from many.designs import STREAM_PATH, design, faulty, lines
+from many.service import service as app
 
 
 def places(waiting=1):
@@ -59,12 +58,6 @@ def test_slices_of_several_batches_take_turns_and_never_run_at_once():
     many.close()
     assert most == 1
     assert order[:6] == ["a", "b"] * 3
-
-
-def app(**settings):
-    return create_app(
-        Settings(**{"shed_lag_seconds": 10.0, "access_log": False} | settings), operations=ALL_OPERATIONS
-    )
 
 
 SCOPE = {

@@ -15,8 +15,8 @@ from many.designs import (
     faulty,
     lines,
     read,
-    serving,
 )
+from many.service import serving
 
 
 def post(client, body, **headers):
