@@ -19,6 +19,8 @@ wsgi_app = "loopslack.app:app"
 # alternative ignores. The guarded form adds time limits and the connection limit (see its module).
 worker_class = "loopslack.worker.Worker"
 workers = int(os.environ.get("WEB_CONCURRENCY") or len(os.sched_getaffinity(0)))
+# The application shares a key's rate out among the workers, so it must know how many there are.
+os.environ["WEB_CONCURRENCY"] = str(workers)
 # The application is loaded once and forked: workers share its memory and start at once. A reload that must
 # load new code therefore replaces the master (USR2, then TERM to the old one) or restarts the unit. For USR2
 # start the program `gunicorn`, not `python -m gunicorn`: the new master would look for modules inside gunicorn.
