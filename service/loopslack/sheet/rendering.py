@@ -28,13 +28,13 @@ _NEEDED: dict[str, tuple[Extra, ...]] = {
 
 def sheet_html(question: SheetQuestion) -> bytes:
     """Design the loop and set the sheet as HTML."""
-    return render_html(design_loop(_with(question.design, SHOWN)), question)
+    return render_html(design_loop(asked_in_full(question.design)), question)
 
 
 def sheet_pdf(question: SheetQuestion) -> bytes:
     """Design the loop and set the sheet as PDF. Raises ``NotInstalled`` where the typesetter is missing."""
     typesetter()
-    return render_pdf(design_loop(_with(question.design, SHOWN)), question)
+    return render_pdf(design_loop(asked_in_full(question.design)), question)
 
 
 def figure_svg(question: FigureQuestion) -> bytes:
@@ -68,6 +68,7 @@ def render_figure(answer: LoopDesignAnswer, question: FigureQuestion) -> bytes:
     return drawing.svg.encode()
 
 
-def _with(design: LoopDesignQuestion, extras: tuple[Extra, ...]) -> LoopDesignQuestion:
+def asked_in_full(design: LoopDesignQuestion) -> LoopDesignQuestion:
+    """A design asked with everything the sheet shows, and with what it includes itself."""
     stated = design.include or []
-    return replace(design, include=list(dict.fromkeys((*stated, *extras))))
+    return replace(design, include=list(dict.fromkeys((*stated, *SHOWN))))

@@ -16,18 +16,32 @@ from loopslack.sheet.sections.names import word_name
 from loopslack.sheet.words import plain
 
 MOST_ROWS = 60
-_NESTED = (
+NESTED = (
     "site",
     "station",
     "vessel_line",
     "relief_valve",
     "pump",
     "gauge",
+    "construction",
     "temperatures",
     "design_sun",
     "criteria",
     "tolerances",
 )
+ALONE = (
+    "fluid",
+    "static_height",
+    "highest_point",
+    "vessel",
+    "vessels_in_parallel",
+    "cooling_vessel",
+    "precharge",
+    "vessel_zone",
+    "doubt_policy",
+    "accept_without_boiling",
+)
+"""Members that are one value each; those of ``NESTED`` are told one by one."""
 
 
 def inputs(case: Case) -> Section:
@@ -53,7 +67,7 @@ def _single(case: Case) -> Iterator[Fact]:
     yield Fact(words("field.staticHeight"), case.say.stated(design.static_height))
     if design.highest_point is not None:
         yield Fact(words("field.highestPoint"), case.say.stated(design.highest_point))
-    for name in _NESTED:
+    for name in NESTED:
         found = getattr(design, name)
         if found is not None:
             yield from _members(case, name, found)
@@ -77,14 +91,20 @@ def _members(case: Case, parent: str, found: Struct) -> Iterator[Fact]:
         value = getattr(found, field.name)
         if value is None:
             continue
-        key = f"field.{_camel(parent)}-{field.encode_name}"
-        name = case.words(key) if key in case.words else case.words(f"field.{field.encode_name}")
-        yield Fact(name, _shown(case, value))
+        yield Fact(member_label(case, _camel(parent), field.encode_name), _shown(case, value))
+
+
+def member_label(case: Case, parent: str, name: str) -> str:
+    """What people call a member: by its place if the catalogue knows it there, else by its name."""
+    other = case.words.or_else(f"field.{name}", plain(name))
+    return case.words.or_else(f"field.{parent}-{name}", other)
 
 
 def _shown(case: Case, value: object) -> str:
     if isinstance(value, Quantity):
         return case.say.stated(value)  # type: ignore[arg-type]  # every quantity has a value and a unit
+    if isinstance(value, bool):
+        return case.words("word.yes" if value else "word.no")
     if isinstance(value, str):
         return word_name(case, value)
     return _tagged(case, value) if isinstance(value, Struct) else str(value)
@@ -131,9 +151,7 @@ def _vessel(case: Case) -> str:
         if isinstance(value, Price):
             shown = f"{say.plain(f'{value.amount:.2f}')} {value.currency}"
         else:
-            shown = (
-                words("word.yes" if value else "word.no") if isinstance(value, bool) else _shown(case, value)
-            )
+            shown = _shown(case, value)
         told.append(f"{words(f'field.{field.encode_name}')} {shown}")
     return " · ".join(told if choice.id is None else [f"{told[0]}: {plain(choice.id)}", *told[1:]])
 

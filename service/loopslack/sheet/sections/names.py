@@ -12,6 +12,8 @@ _PART_SUBJECTS = {
     "collectors": "part.collectors",
     "station": "part.station",
     "cooling vessel": "part.cooling-vessel",
+    "automatic-make-up": "part.automatic-make-up",
+    "galvanised-parts": "part.galvanised-parts",
 }
 _NUMBERED = re.compile(r"collectors (\d+)\Z")
 
