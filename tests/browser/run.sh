@@ -16,11 +16,11 @@ set -eu
 cd "$(dirname "$0")/../.."
 . tests/contract/tools.sh
 
+trap stop_service EXIT
+url=${1:-}
+[ -n "$url" ] || start_service # first, since the next line may put another Python on the path
 node_tool
 debian_tool chromium chromium
 tools=$(node_tools tests/browser)
-trap stop_service EXIT
-url=${1:-}
-[ -n "$url" ] || start_service
 BROWSER_TOOLS=$(dirname "$tools") CHROMIUM=$(command -v chromium) SCREENSHOTS=$PWD/.cache/browser \
     node tests/browser/support/runner.mjs "$url"
