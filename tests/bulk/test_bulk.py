@@ -105,7 +105,7 @@ def test_a_file_that_ends_in_rubbish_is_mended(tmp_path):
 
 
 def test_a_run_that_was_killed_is_finished_by_the_next(tmp_path):
-    source, text = whole(tmp_path, 160)
+    source, text = whole(tmp_path, 110)
     target = tmp_path / "out"
     first = start(source, target, "--processes", 2)
     deadline = time.monotonic() + 60
@@ -132,7 +132,7 @@ def alive(process):
 
 @pytest.mark.parametrize("sent", [signal.SIGINT, signal.SIGTERM])
 def test_a_run_that_is_told_to_end_says_how_to_go_on(tmp_path, sent):
-    source = questions(tmp_path, 300)
+    source = questions(tmp_path, 200)
     target = tmp_path / "out"
     first = start(source, target, "--processes", 2, "--quiet")
     deadline = time.monotonic() + 60
@@ -148,7 +148,7 @@ def test_a_run_that_is_told_to_end_says_how_to_go_on(tmp_path, sent):
 
 
 def test_a_process_that_is_killed_is_replaced_and_nothing_is_lost(tmp_path):
-    source, text = whole(tmp_path, 160)
+    source, text = whole(tmp_path, 110)
     target = tmp_path / "out"
     running = start(source, target, "--processes", 2, "--quiet")
     deadline = time.monotonic() + 60
@@ -196,7 +196,7 @@ def test_questions_added_at_the_end_are_answered_after_the_others(tmp_path):
 
 def test_answers_of_another_version_are_not_mixed_in(tmp_path, monkeypatch):
     source, target = interrupted(tmp_path)
-    monkeypatch.setattr("loopslack.bulk.target._maker", lambda: "another")
+    monkeypatch.setattr("loopslack.bulk.target.maker", lambda: "another")
     with pytest.raises(CannotResumeError, match="version"):
         answer_file(source, target, Alone(), SILENT)
 

@@ -128,7 +128,7 @@ class Target:
 
     def _resume(self, size: int) -> None:
         earlier = self._earlier()
-        if earlier.made_by != _maker():
+        if earlier.made_by != maker():
             raise self._different("its answers were computed by another version of this package")
         if earlier.head != _text(self._source.head):
             raise self._different("the first line of the questions has changed")
@@ -175,7 +175,7 @@ class Target:
         os.fsync(self._file.fileno())
         size, changed = self._source.state
         state = Checkpoint(
-            made_by=_maker(),
+            made_by=maker(),
             head=_text(self._source.head),
             source_size=size,
             source_time=changed,
@@ -205,7 +205,8 @@ def _whole(line: bytes) -> _Line | None:
         return None
 
 
-def _maker() -> str:
+def maker() -> str:
+    """What computes answers here: equal makers give equal bytes."""
     made = provenance()
     return f"{made.service_version} {made.contract_version} {made.equations}"
 
