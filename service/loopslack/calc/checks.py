@@ -74,10 +74,11 @@ def steam_at_station(analysis: Analysis, state: str, found: Equilibrium) -> Chec
     return compare("steam-at-station", state, kinds.POWER, unspent, 0.0, at_most=True, scale=sun)
 
 
-def steam_reach(state: str, case: SteamCase, found: Equilibrium) -> Check | None:
+def steam_reach(state: str, case: SteamCase, found: Equilibrium, at_station: CheckVerdict) -> Check | None:
     """The pipe run with least liquid left before the steam: its reach against its length. Told, not decisive.
 
-    What decides is the steam power left over, since a front may well stand at the end of a run.
+    What decides is the steam power left over, since a front may well stand at the end of a run; where that check
+    (``at_station``) does not hold, the front would be beyond it.
     """
     spare = [
         (branch.length - reach, reach, branch)
@@ -90,6 +91,8 @@ def steam_reach(state: str, case: SteamCase, found: Equilibrium) -> Check | None
     check = compare(
         "steam-reach", state, kinds.LENGTH, reach, branch.length, at_most=True, subject=branch.name
     )
+    if at_station == "does-not-hold":
+        return check._replace(core=False, verdict=at_station, at_least=True)
     return check._replace(core=False)
 
 

@@ -213,9 +213,10 @@ def _hot(
     yield checks.relief_valve(analysis, id, pressure, at_least=at_least)
     yield checks.acceptance(id, found, gas.acceptance, gas.nominal)
     yield checks.membrane(id, found, membrane_limit)
-    yield checks.steam_at_station(analysis, id, found)
+    at_station = checks.steam_at_station(analysis, id, found)
+    yield at_station
     told = (
-        checks.steam_reach(id, analysis.case(scenario), found),
+        checks.steam_reach(id, analysis.case(scenario), found, at_station.verdict),
         checks.degradation(analysis, id, found),
     )
     yield from (check for check in told if check is not None)

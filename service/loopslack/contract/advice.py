@@ -50,8 +50,9 @@ class Advisor:
                 severity = "stop"
             elif not check.core and counts:
                 severity = "warning"
-            # One doubt that fails like the base case says nothing new.
-            if stagnation and check.state != BASE.id and (check.code, BASE.id) in told:
+            # A doubt that fails like the base case says nothing new.
+            doubted = (stagnation or check.state == JOINT) and check.state != BASE.id
+            if doubted and (check.code, BASE.id) in told:
                 continue
             told.add((check.code, check.state))
             yield self._of(check, severity)
@@ -77,6 +78,7 @@ class Advisor:
             remedy=remedy,
             parameters=parameters,
             subject=check.subject or None,
+            scenario=check.state,
         )
 
     def _unknown(self) -> Iterator[Advisory]:

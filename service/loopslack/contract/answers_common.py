@@ -94,6 +94,9 @@ class Advisory(AnswerPart, frozen=True, kw_only=True):
     subject: Annotated[
         str | None, text("The part, the vessel or the member concerned.", "/station/ratedPressure")
     ] = None
+    scenario: Annotated[
+        str | None, text("The state or the doubt under which a check does not hold.", "hotter-stagnation")
+    ] = None
 
 
 class Caution(AnswerPart, frozen=True, kw_only=True, gc=False):

@@ -1,6 +1,6 @@
 """What to know about this loop, gravest first, and what is still to be confirmed."""
 
-from loopslack.contract.answers_common import Advisory, AnyQuantity, Check
+from loopslack.contract.answers_common import Advisory, Check
 from loopslack.contract.answers_loop import Provisional
 from loopslack.sheet.case import Case
 from loopslack.sheet.lines import Bullets, Notice, Section, Text
@@ -60,23 +60,12 @@ def _plain_worded(case: Case, advisory: Advisory, numbers: dict[str, str]) -> st
 
 
 def _check_of(case: Case, advisory: Advisory) -> Check | None:
-    """The failing check an advisory speaks of: same code, part and numbers."""
+    """The failing check an advisory speaks of."""
+    about = (advisory.code, advisory.scenario, advisory.subject)
     for check in case.result.checks:
-        if (
-            check.code != advisory.code
-            or check.verdict != "does-not-hold"
-            or check.subject != advisory.subject
-        ):
-            continue
-        if _same(check.value, advisory.parameters.get("value")) and _same(
-            check.margin, advisory.parameters.get("margin")
-        ):
+        if check.verdict == "does-not-hold" and (check.code, check.scenario, check.subject) == about:
             return check
     return None
-
-
-def _same(one: AnyQuantity | None, other: AnyQuantity | None) -> bool:
-    return one == other
 
 
 def _confirm(case: Case, one: Provisional) -> str:
