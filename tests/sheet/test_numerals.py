@@ -78,5 +78,5 @@ def test_a_stated_number_keeps_every_digit() -> None:
 
 
 def test_a_residual_is_written_with_its_power_of_ten() -> None:
-    assert EN.scientific(q(6.98492e-15, "bar")) == "7.0\u00a0×\u00a010⁻¹⁵\u00a0bar"
+    assert EN.scientific(q(6.98492e-15, "bar")) == "7.0\u00a0\N{MULTIPLICATION SIGN}\u00a010⁻¹⁵\u00a0bar"
     assert EN.scientific(q(0.0, "bar")) == "0\u00a0bar"

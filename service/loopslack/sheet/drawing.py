@@ -223,9 +223,9 @@ class Canvas:
             f'<svg xmlns="http://www.w3.org/2000/svg" class="ls-figure" '
             f'viewBox="0 0 {_c(self.width)} {_c(self.height)}" '
             f'width="{_c(self.width)}" height="{_c(self.height)}" role="img" '
-            f'aria-labelledby="{name}-title {name}-desc" font-family="{_FONT}" font-size="{_c(LETTER)}">'
-            f'<title id="{name}-title">{escape(title, quote=False)}</title>'
-            f'<desc id="{name}-desc">{escape(description, quote=False)}</desc>'
+            f'aria-labelledby="figure-{name}-title figure-{name}-desc" font-family="{_FONT}" font-size="{_c(LETTER)}">'
+            f'<title id="figure-{name}-title">{escape(title, quote=False)}</title>'
+            f'<desc id="figure-{name}-desc">{escape(description, quote=False)}</desc>'
             f"<style>{STYLE}</style>{''.join(self._parts)}</svg>"
         )
 

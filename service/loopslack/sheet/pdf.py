@@ -118,6 +118,6 @@ def _printable(value: Any, *, strict: bool, drawn: bool = False) -> Any:  # noqa
         return {
             name: _printable(one, strict=strict, drawn=name in {"svg", "sign"}) for name, one in value.items()
         }
-    if isinstance(value, list):
+    if isinstance(value, list | tuple):
         return [_printable(one, strict=strict) for one in value]
     return value

@@ -102,7 +102,7 @@ def plain(text: str) -> str:
 
 def paragraphs(text: str) -> list[str]:
     """A caller's longer text, line by line, each of them plain; empty lines are left out."""
-    return [line for part in text.splitlines() if (line := plain(part).strip())]
+    return [line for part in text.replace("\r", "\n").split("\n") if (line := plain(part).strip())]
 
 
 def _safe(letter: str) -> str:

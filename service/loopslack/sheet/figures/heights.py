@@ -43,7 +43,7 @@ def pressure_over_height(case: Case) -> Drawing | None:
             canvas.sign(sign, end, 3.8)
     key(canvas, bottom + 38.0, entries, heads)
     title = words(f"figure.{NAME}.title")
-    told = "; ".join(f"{entry.name}: {', '.join(entry.numbers)}" for entry in entries)
+    told = "; ".join(f"{entry.name}: {', '.join(filter(None, entry.numbers))}" for entry in entries)
     description = words(f"figure.{NAME}.description", height=say(write.length(case.loop.top)), states=told)
     return Drawing(NAME, canvas.svg(NAME, title, description), title, description)
 

@@ -10,7 +10,7 @@ from loopslack.sheet.sections.fluids import fluid_name
 from loopslack.sheet.sections.names import check_name, mark_of, state_name, verdict_word
 from loopslack.sheet.words import plain
 
-_WEIGHT = {"fails": 0, "open": 1, "aside": 2, "holds": 3, "": 4}
+_WEIGHT = {"fails": 0, "open": 1, "holds": 2, "aside": 3, "": 4}
 
 
 def banner(case: Case) -> Banner:
@@ -142,13 +142,19 @@ def _reached(case: Case, state: StagnationState) -> str:
 
 
 def _margins(case: Case) -> Table:
-    """Of every check the state in which it is tightest, failing ones first."""
+    """Of every check the state that counts in which it is tightest, failing ones first.
+
+    What fails only where it does not count comes last, beside the row that counts and not in its place.
+    """
     words, say = case.words, case.say
-    tightest: dict[str, Check] = {}
+    tightest: dict[tuple[str, bool], Check] = {}
     for check in case.result.checks:
-        known = tightest.get(check.code)
+        aside = mark_of(case, check) == "aside"
+        if not aside and check.scenario not in case.counted:
+            continue
+        known = tightest.get((check.code, aside))
         if known is None or _tightness(case, check) < _tightness(case, known):
-            tightest[check.code] = check
+            tightest[check.code, aside] = check
     rows = []
     for check in sorted(tightest.values(), key=lambda check: _WEIGHT[mark_of(case, check)]):
         mark = mark_of(case, check)

@@ -1,0 +1,134 @@
+"""The numbers on the sheet are those of the answer: each quantity is found rounded, and none is made up."""
+
+import re
+from collections.abc import Iterator
+from typing import Any
+
+import msgspec
+import pytest
+
+from loopslack.contract.answers_common import AnyQuantity
+from loopslack.sheet.lines import Facts, Row, Sheet, Table
+from loopslack.sheet.numerals import Numerals, numerals
+from sheet.sheets import NAMES, asked, blocks, sheet
+
+# Parts of an answer whose every quantity stands on the sheet.
+WHOLE = (
+    ("result", "states"),
+    ("result", "content", "parts"),
+    ("result", "settings", "byTemperature"),
+    ("result", "settings", "readings"),
+    ("result", "volumes"),
+    ("result", "order"),
+    ("assumptions",),
+)
+# What stands there too, one by one.
+LEFT_OUT = {"unit", "margin"}
+
+
+def quantities(value: Any, path: tuple[str, ...] = ()) -> Iterator[tuple[tuple[str, ...], AnyQuantity]]:
+    if isinstance(value, dict):
+        if set(value) == {"value", "unit"}:
+            yield path, AnyQuantity(value=value["value"], unit=value["unit"])
+            return
+        for name, inner in value.items():
+            yield from quantities(inner, (*path, name))
+    elif isinstance(value, list):
+        for place, inner in enumerate(value):
+            yield from quantities(inner, (*path, str(place)))
+
+
+def part(answer: Any, path: tuple[str, ...]) -> Any:
+    for name in path:
+        if name not in answer:
+            return None
+        answer = answer[name]
+    return answer
+
+
+def texts(of: Sheet) -> str:
+    found = []
+    for block in blocks(of):
+        if isinstance(block, Facts):
+            found += [f"{fact.name} {fact.value} {fact.more}" for fact in block.facts]
+        if isinstance(block, Table):
+            found += [" | ".join(row.cells) for row in block.rows]
+            found.append(block.note)
+    return "\n".join(found)
+
+
+@pytest.mark.parametrize("name", NAMES)
+def test_every_number_that_matters_stands_on_the_sheet_as_answered(name: str) -> None:
+    answer = msgspec.json.decode(msgspec.json.encode(asked(name).answer))
+    say, shown = numerals(sheet(name).language), texts(sheet(name))  # type: ignore[arg-type]
+    missing = [
+        (path, say(quantity))
+        for start in WHOLE
+        for path, quantity in quantities(part(answer, start), start)
+        if say.digits(quantity) not in shown
+    ]
+    assert missing == []
+
+
+def table(of: Sheet, caption: str) -> list[Row]:
+    return next(
+        list(block.rows) for block in blocks(of) if isinstance(block, Table) and block.caption == caption
+    )
+
+
+@pytest.mark.parametrize("name", [name for name in NAMES if sheet(name).language == "en"])
+def test_a_row_of_checks_is_the_check_of_the_answer(name: str) -> None:
+    say = numerals("en")
+    rows = table(sheet(name), "Checks in every state")
+    checks = asked(name).answer.result.checks
+    assert len(rows) == len(checks)
+    for row, check in zip(rows, checks, strict=True):
+        assert row.cells[2].removeprefix("≥ ") == say(check.value)
+        assert row.cells[2].startswith("≥ ") == bool(check.at_least)
+        assert row.cells[3] == say(check.limit)
+        assert row.cells[4] == say.signed(check.margin)
+
+
+@pytest.mark.parametrize("name", NAMES)
+def test_no_failed_check_reads_like_a_pass(name: str) -> None:
+    of = sheet(name)
+    words = {"en": ("holds", "FAILS"), "de": ("hält", "FÄLLT DURCH")}[of.language]
+    caption = {"en": "Checks in every state", "de": "Prüfungen in jedem Zustand"}[of.language]
+    for row, check in zip(table(of, caption), asked(name).answer.result.checks, strict=True):
+        verdict = row.cells[-1]
+        assert (words[0] in verdict and "✗" not in verdict) == (check.verdict == "holds"), (check, verdict)
+        if check.verdict == "does-not-hold":
+            assert verdict.startswith("✗")
+            assert row.mark in {"fails", "aside"}
+            assert row.mark == "aside" or words[1] in verdict
+
+
+@pytest.mark.parametrize("name", NAMES)
+def test_the_verdict_is_that_of_the_answer_and_a_vessel_not_chosen_is_not_offered(name: str) -> None:
+    of, result = sheet(name), asked(name).answer.result
+    assert of.banner.verdict == result.verdict
+    assert (result.verdict == "holds") == (of.banner.word in {"HOLDS", "HÄLT"})
+    shown = texts(of)
+    offered = re.search(r"(Expansion vessel|Ausdehnungsgefäß) ", shown.splitlines()[0])
+    assert bool(offered) == (result.chosen_vessel is not None)
+
+
+def test_us_units_stand_on_the_sheet_of_a_question_in_us_units() -> None:
+    shown = texts(sheet("cabin-us-units"))
+    stated = shown.split("Rated pressure of the station")[0]
+    assert "psig" in stated
+    assert "°F" in stated
+    assert " gal" in stated.replace("\u00a0", " ")
+    assert "bar(g)" not in stated
+    assert sheet("cabin-us-units").paper == "letter"
+
+
+def test_the_derivation_keeps_every_digit_so_that_it_can_be_redone() -> None:
+    derived = asked("wash-house").answer.derivation
+    assert derived is not None
+    say: Numerals = numerals("en")
+    shown = texts(sheet("wash-house"))
+    for step in derived.steps:
+        if step.answers:
+            assert f"{step.number} | {step.name}" in shown
+            assert say.stated(step.value) in shown

@@ -1,0 +1,51 @@
+"""How long a sheet takes beyond its design, in time of the processor: other work on the machine does not count."""
+
+import time
+import tracemalloc
+from collections.abc import Callable
+
+import pytest
+
+from loopslack.sheet.rendering import render_html, render_pdf
+from sheet.sheets import NAMES, asked
+
+HTML_SECONDS = 0.030
+PDF_SECONDS = 0.400
+
+
+def least(of: Callable[[], object], times: int = 5) -> float:
+    def once() -> float:
+        began = time.process_time()
+        of()
+        return time.process_time() - began
+
+    return min(once() for _ in range(times))
+
+
+@pytest.mark.parametrize("name", NAMES)
+def test_a_page_takes_thirty_milliseconds_at_most(name: str) -> None:
+    question, answer = asked(name)
+    assert least(lambda: render_html(answer, question)) <= HTML_SECONDS
+
+
+@pytest.mark.parametrize("name", NAMES)
+def test_a_pdf_takes_four_hundred_milliseconds_at_most_once_warm(name: str) -> None:
+    question, answer = asked(name)
+    assert least(lambda: render_pdf(answer, question), 3) <= PDF_SECONDS
+
+
+def test_sheet_after_sheet_keeps_no_memory() -> None:
+    question, answer = asked("wash-house")
+    render_html(answer, question)
+    tracemalloc.start()
+    try:
+        for _ in range(3):
+            render_html(answer, question)
+        before = tracemalloc.get_traced_memory()[0]
+        for _ in range(20):
+            render_html(answer, question)
+        after, most = tracemalloc.get_traced_memory()
+    finally:
+        tracemalloc.stop()
+    assert after - before < 200_000
+    assert most < 20_000_000
