@@ -8,12 +8,14 @@ export default async function (context, url) {
   await aFirstQuoteIsDesigned(page);
   await fieldsAndJsonFollowEachOther(page);
   await aDesignThatDoesNotHoldIsUnmistakable(page);
+  await aRemedyIsPutIntoTheQuestion(page);
   await usUnitsAreShown(page);
   context.expectedRefusals = [422, 400];
   await aRefusalShowsEveryFault(page);
   await textThatIsNoJsonIsTheServicesToRefuse(page);
   await nothingInAnAnswerBecomesMarkup(page);
   await aServiceOutOfReachIsSaid(page);
+  await aKeyIsSentAsTheServiceAsksForIt(page);
 }
 
 /** Sends the question; what was sent, what the service said, and what the page says of it. */
@@ -81,6 +83,10 @@ async function aDesignThatDoesNotHoldIsUnmistakable(page) {
   assert.equal(told.result.verdict, "does-not-hold");
   assert.match(text, /DOES NOT HOLD/);
   assert.match(text, /do not build it/i);
+  const { single = [], pair } = told.remedies;
+  const said = [...single, ...(pair?.steps ?? []), ...told.result.discharge];
+  assert.ok(single.length + (pair ? 2 : 0) > 0, "remedies");
+  for (const { sentence } of said) assert.ok(text.includes(sentence), sentence);
   const failing = told.result.checks.filter((check) => check.verdict === "does-not-hold").length;
   assert.equal(await page.locator("#answer tr[data-verdict=does-not-hold]", { hasText: "FAILS" }).count(), failing);
   assert.equal(await page.locator("#answer .severity[data-severity=stop]").count(),
@@ -97,6 +103,14 @@ async function aDesignThatDoesNotHoldIsUnmistakable(page) {
     assert.deepEqual(await accessibilityFindings(page), []);
     await picture(page, `docs-try-does-not-hold-${width}-${colorScheme}`, { fullPage: true });
   }
+}
+
+async function aRemedyIsPutIntoTheQuestion(page) {
+  await page.locator("#answer .take").first().click();
+  assert.equal(await page.evaluate(() => document.activeElement.id), "send");
+  const { text, told } = await asked(page);
+  assert.equal(told.result.verdict, "holds", "what the service calls a remedy is one");
+  assert.match(text, /HOLDS/);
 }
 
 async function usUnitsAreShown(page) {
@@ -153,4 +167,13 @@ async function aServiceOutOfReachIsSaid(page) {
   await page.route("**/v1/loop-design", (route) => route.fulfill({ status: 502, contentType: "text/plain", body: "no" }));
   page.context().expectedRefusals = [502];
   assert.match(await ask(page), /NO ANSWER/);
+}
+
+async function aKeyIsSentAsTheServiceAsksForIt(page) {
+  await page.unroute("**/v1/loop-design");
+  await page.click("summary:has-text('asks for a key')");
+  await page.fill("#key", "not a key");
+  const request = page.waitForRequest("**/v1/loop-design");
+  await ask(page);
+  assert.equal((await request).headers().authorization, "Bearer not a key");
 }

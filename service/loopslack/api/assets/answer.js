@@ -114,15 +114,35 @@ function checks(result) {
   ];
 }
 
-/** What would make the loop hold, where the answer says so. */
-function remedies(result) {
-  const found = result.remedies;
+const sentences = (list, kind = "ol") => element(kind, {}, list.map(({ sentence }) => element("li", {}, sentence)));
+
+/** A button that puts a remedy into the question. */
+function taking(remedy, take) {
+  const button = element("button", { type: "button", class: "take" }, "Put it into the question");
+  button.addEventListener("click", () => take(remedy.changes));
+  return button;
+}
+
+/** What would make the loop hold, where the answer says so: measures that do alone, else two that do together. */
+function remedies(answer, take) {
+  const found = answer.remedies;
   if (!found) return null;
+  const { single = [], pair, toBeProved = [] } = found;
   return [
     element("h3", {}, "What would mend it"),
     element("p", {}, found.summary ?? ""),
-    element("ol", {}, [...(found.single ?? []), ...(found.pair?.steps ?? [])].map((step) => element("li", {}, step.sentence))),
+    single.length ? element("ol", {}, single.map((remedy) => element("li", {}, remedy.sentence, " ", taking(remedy, take)))) : null,
+    pair ? [element("p", {}, "Only both together: ", taking(pair, take)), sentences(pair.steps ?? [], "ul")] : null,
+    toBeProved.length ? [element("p", {}, "To be measured before anything rests on it:"), sentences(toBeProved, "ul")] : null,
+    answer.robustCooler ? element("p", {}, answer.robustCooler.sentence) : null,
   ];
+}
+
+/** What leaves through the relief valve where it opens. */
+function discharge(result) {
+  if (!result.discharge?.length) return null;
+  return [element("h3", {}, "Where the relief valve opens"), element("ul", {}, result.discharge.map((case_) =>
+    element("li", {}, element("strong", {}, states[case_.scenario] ?? said(case_.scenario)), `: ${case_.sentence}`)))];
 }
 
 function stagnation(result) {
@@ -164,8 +184,8 @@ function assumptions(answer) {
     table("Assumptions", ["member", "value", "why"], rows));
 }
 
-/** A design, verdict first. */
-export function shownDesign(answer) {
+/** A design, verdict first. `take` is given the changes of a remedy that somebody chooses. */
+export function shownDesign(answer, take) {
   const { result } = answer;
   return [
     element("div", { class: "outcome", "data-verdict": result.verdict },
@@ -177,10 +197,11 @@ export function shownDesign(answer) {
     element("h3", {}, "Advisories"),
     advisories(answer),
     confirm(result),
-    remedies(result),
+    remedies(answer, take),
     checks(result),
     element("h3", {}, "Stagnation"),
     stagnation(result),
+    discharge(result),
     assumptions(answer),
     element("details", {}, element("summary", {}, "Cautions, for every such loop"),
       element("ul", {}, (answer.cautions ?? []).map((caution) => element("li", {}, caution.message)))),

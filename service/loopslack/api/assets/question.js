@@ -29,6 +29,36 @@ export function setAt(question, pointer, value) {
   else holder[name] = value;
 }
 
+/** A copy of a question after the changes of a remedy, taken in their order. */
+export function changedBy(changes, question) {
+  const made = structuredClone(question);
+  for (const { action, field, value, word, number } of changes) {
+    if (action === "remove") setAt(made, field, undefined);
+    else if (action === "repeat") repeatAt(made, field);
+    else {
+      makeHolder(made, field);
+      setAt(made, field, value ?? word ?? number);
+    }
+  }
+  return made;
+}
+
+/** Makes the objects on the way to a member that are not there yet. */
+function makeHolder(question, pointer) {
+  let holder = question;
+  for (const step of steps(pointer).slice(0, -1)) {
+    if (holder[step] === undefined || holder[step] === null) holder[step] = {};
+    holder = holder[step];
+  }
+}
+
+/** Puts a copy of a list's entry right behind it. */
+function repeatAt(question, pointer) {
+  const list = holderOf(question, pointer);
+  const place = Number(steps(pointer).at(-1));
+  list.splice(place + 1, 0, structuredClone(list[place]));
+}
+
 const onOneLine = (value) => {
   if (Array.isArray(value)) return `[${value.map(onOneLine).join(", ")}]`;
   if (value === null || typeof value !== "object") return JSON.stringify(value);

@@ -2,7 +2,7 @@
 // own to say: the text is sent as it stands.
 
 import { shownDesign, shownFailure, shownProblem } from "./answer.js";
-import { holderOf, jsonText, questionIn, setAt, valueAt } from "./question.js";
+import { changedBy, holderOf, jsonText, questionIn, setAt, valueAt } from "./question.js";
 
 const MOST_TRIES = 4;
 const SECONDS_TO_ANSWER = 60;
@@ -99,6 +99,16 @@ async function ask(body) {
   }
 }
 
+/** Puts a remedy into the question that was answered, ready to be sent. */
+function take(changes) {
+  const question = questionIn(text.value);
+  if (!question) return;
+  text.value = jsonText(changedBy(changes, question));
+  readIntoFields();
+  at("progress").textContent = "The question was changed; send it to see.";
+  at("send").focus();
+}
+
 async function outcomeOf(body) {
   let reply;
   try {
@@ -114,7 +124,7 @@ async function outcomeOf(body) {
   } catch {
     return shownFailure(`Status ${reply.status}, and the body is no JSON.`);
   }
-  if (reply.ok) return shownDesign(said);
+  if (reply.ok) return shownDesign(said, take);
   markFaults(said);
   return shownProblem(said, fieldAt);
 }

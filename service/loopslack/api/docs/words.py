@@ -121,6 +121,8 @@ UNIT_SIGNS: dict[str, str] = {
     "gal_us": "US gal",
     "gal_uk": "imp gal",
     "W/m2": "W/m²",
+    "W/m2K": "W/m²K",
+    "W/m2K2": "W/m²K²",
     "kg/m3": "kg/m³",
     "mass-percent": "% by mass",
     "volume-percent": "% by volume",
