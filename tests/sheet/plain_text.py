@@ -28,7 +28,8 @@ FOLDER = Path(__file__).parent / "golden"
 KEPT = ("wash-house", "too-small", "cabin-us-units", "garden-house")
 # Versions and fingerprints change with every release, what a root leaves over with every machine.
 _CHANGING = re.compile(
-    r"\b(?:[0-9a-f]{16}|[0-9a-f]{12})\b|\b\d+\.\d+\.\d+\b|(?<=: )[\d.,]+ \u00d7 10\S+ \w+|(?<=: )0 (?:bar|psi|W)\b"
+    r"\b(?:[0-9a-f]{16}|[0-9a-f]{12})\b|\b\d+\.\d+\.\d+\b"
+    r"|(?<=: )[\d.,]+ \u00d7 10\S+ \w+|(?<=: )0 (?:bar|psi|W)\b"
 )
 
 
