@@ -8,12 +8,12 @@ from typing import Annotated
 
 from msgspec import Meta
 
+from loopslack.calc.judgement import DoubtPolicy
 from loopslack.contract.fields import quantity, text
 from loopslack.contract.quantity import Length, Pressure, Temperature, Volume
 from loopslack.contract.questions_collectors import CollectorGroup, DesignSun, QuestionPart
 from loopslack.contract.questions_criteria import (
     Criteria,
-    DoubtPolicy,
     Include,
     Rules,
     Tolerances,

@@ -4,6 +4,7 @@ from typing import Annotated, Literal
 
 from msgspec import Meta
 
+from loopslack.calc.sizing.rules.rule import RuleId
 from loopslack.contract.fields import quantity, trade
 from loopslack.contract.quantity import (
     Length,
@@ -16,20 +17,7 @@ from loopslack.contract.quantity import (
 )
 from loopslack.contract.questions_collectors import QuestionPart
 
-DoubtPolicy = Literal["single", "combined", "none"]
 UnitSystem = Literal["metric", "us"]
-RuleId = Literal[
-    "ashrae-diaphragm",
-    "ashrae-closed",
-    "us-mechanical-code",
-    "en-12828",
-    "collector-boil-off",
-    "en-12977",
-    "idae-asit",
-    "ufc",
-    "steam-range",
-    "mass-balance",
-]
 Extra = Literal["rules", "remedies", "sensitivity", "course", "derivation"]
 Rules = Annotated[list[RuleId], Meta(min_length=1, max_length=10)]
 Include = Annotated[list[Extra], Meta(max_length=5)]

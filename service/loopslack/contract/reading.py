@@ -9,10 +9,11 @@ from typing import NamedTuple
 from msgspec import Struct
 
 from loopslack.calc.fluids_base import Fluid
+from loopslack.calc.judgement import DoubtPolicy
 from loopslack.calc.model import Loop, Part, Precharge, Sun, Temperatures
 from loopslack.contract import questions as asked
 from loopslack.contract.fields import field_of
-from loopslack.contract.questions_criteria import DoubtPolicy, Extra
+from loopslack.contract.questions_criteria import Extra
 from loopslack.contract.questions_plant import Site
 from loopslack.contract.questions_vessels import CoolingVessel, CoolingVesselGiven
 from loopslack.contract.questions_vessels import Precharge as AskedPrecharge
