@@ -131,6 +131,7 @@ def test_every_advisory_is_explained_with_its_severity() -> None:
         stated = {word.arg: word.value for word in call.keywords}
         if isinstance(stated.get("code"), ast.Constant):
             given[stated["code"].value] = stated["severity"].value
+    given |= advisories_in_tables(PACKAGE / "contract")
     assert given == {code: severity for code, (severity, _) in ADVISORIES.items()}
     for code, (severity, meaning) in ADVISORIES.items():
         said = row("/docs/checks", f"advisory.{code}")
@@ -175,6 +176,18 @@ def calls(name: str, folder: Path) -> Iterator[ast.Call]:
                 called = node.func
                 if (called.attr if isinstance(called, ast.Attribute) else getattr(called, "id", "")) == name:
                     yield node
+
+
+def advisories_in_tables(folder: Path) -> dict[str, str]:
+    """Code and severity of the advisories that stand in tables of this name."""
+    found = {}
+    for path in sorted(folder.rglob("*.py")):
+        for node in ast.walk(ast.parse(path.read_text(encoding="utf-8"))):
+            target = node.target if isinstance(node, ast.AnnAssign) else None
+            if isinstance(target, ast.Name) and target.id == "_ADVISORIES":
+                for code, row in ast.literal_eval(node.value).items():
+                    found[code] = row[0]
+    return found
 
 
 def constants_named(argument: str, folder: Path) -> Iterator[str]:

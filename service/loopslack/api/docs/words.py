@@ -49,6 +49,7 @@ TO_CONFIRM: dict[str, str] = {
     "coefficients-assumed": "The efficiency coefficients of a group of collectors were assumed.",
     "emptying-class-assumed": "How well the collectors empty was assumed.",
     "steam-access-unknown": "Nobody stated whether steam can enter a pipe run.",
+    "precharge-not-known": "Nobody stated what the precharge of an existing vessel is or was.",
     "rating-unstated": "A rated pressure was not stated.",
 }
 """What, beside checks without a limit, makes a basis provisional."""
@@ -72,6 +73,24 @@ ADVISORIES: dict[str, tuple[str, str]] = {
         "note",
         "A pipe run rises away from the collectors; of several states the worst is shown.",
     ),
+    "reading-undecided": (
+        "warning",
+        "Audit: lost liquid and lost gas would both explain what the gauge shows.",
+    ),
+    "liquid-missing": ("warning", "Audit: liquid is missing from the loop."),
+    "liquid-too-much": ("warning", "Audit: the loop holds more liquid than it was filled with."),
+    "precharge-lost": ("warning", "Audit: the vessel has lost some of its precharge."),
+    "precharge-high": ("warning", "Audit: the precharge is higher than it was set."),
+    "vessel-empty": (
+        "warning",
+        "Audit: the reading lies below the precharge, so there is no liquid in the vessel.",
+    ),
+    "vessel-too-small": (
+        "stop",
+        "Audit: no precharge and no filling makes this vessel hold; a larger one would.",
+    ),
+    "no-vessel-holds": ("stop", "Audit: no vessel makes this loop hold; the loop itself has to change."),
+    "precharge-not-known": ("note", "Audit: nobody stated what the precharge is or was, so it was taken."),
 }
 """Advisories beside those of failing checks: how grave they are and what they say."""
 
