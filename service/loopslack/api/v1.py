@@ -4,6 +4,7 @@ from collections.abc import Iterable
 from typing import Any
 
 from loopslack.api.operations import Operation
+from loopslack.api.v1_audit import AUDIT_OPERATIONS
 from loopslack.api.v1_many import MANY_OPERATIONS
 from loopslack.api.v1_sheet import SHEET_OPERATIONS
 from loopslack.contract import (
@@ -182,4 +183,9 @@ _SINGLE: tuple[Operation[Any, Any], ...] = (
     ),
 )
 
-OPERATIONS: tuple[Operation[Any, Any], ...] = (*_SINGLE, *MANY_OPERATIONS, *SHEET_OPERATIONS)
+OPERATIONS: tuple[Operation[Any, Any], ...] = (
+    *_SINGLE,
+    *AUDIT_OPERATIONS,
+    *MANY_OPERATIONS,
+    *SHEET_OPERATIONS,
+)
