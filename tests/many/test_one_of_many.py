@@ -1,6 +1,8 @@
 """One design among many: answered as it would be on its own, or told what stands in the way."""
 
 import json
+import sys
+from concurrent.futures import ThreadPoolExecutor
 
 import msgspec
 import pytest
@@ -239,3 +241,28 @@ def test_an_early_end_says_why():
 def test_errors_of_a_calculation_survive_on_their_way_between_processes():
     error = Contradiction("a", remedy="b", pointer="/c")
     assert error.__reduce__()[1][1:4] == ("a", "b", "/c")
+
+
+def test_an_answer_does_not_depend_on_what_is_computed_beside_it():
+    """The event loop, costly questions and batches compute in threads of their own over shared tables."""
+    asked = [
+        json.dumps(
+            design(
+                f"q-{number}",
+                staticHeight={"value": 3 + number, "unit": "m"},
+                units=("metric", "us")[number % 2],
+            )
+        ).encode()
+        for number in range(12)
+    ]
+    alone = [answer_design(body, 0, SHARED).line for body in asked]
+    interval = sys.getswitchinterval()
+    sys.setswitchinterval(1e-5)
+    try:
+        with ThreadPoolExecutor(4) as threads:
+            beside = list(
+                threads.map(lambda body: answer_design(body, 0, SHARED).line, [*asked, *asked[::-1]])
+            )
+    finally:
+        sys.setswitchinterval(interval)
+    assert beside == alone + alone[::-1]
