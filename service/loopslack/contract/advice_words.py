@@ -50,7 +50,7 @@ FAILING: dict[str, tuple[str, str]] = {
     ),
     "fill-window": (
         "the fill window is too narrow for an installer: {value} where {limit} is asked for",
-        "Take a larger vessel.",
+        "Fill inside the window where there is one, else take a larger vessel.",
     ),
     "part-protected": (
         "{subject} would see {value} while the relief valve stands at its set pressure, above its rating of {limit}",

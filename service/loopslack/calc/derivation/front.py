@@ -8,7 +8,8 @@ from typing import NamedTuple
 from loopslack.calc.balance import is_open
 from loopslack.calc.derivation.book import System
 from loopslack.calc.derivation.frame import Frame
-from loopslack.calc.derivation.parts import SegmentValues, run_name
+from loopslack.calc.derivation.parts import SegmentValues
+from loopslack.calc.model import run_name
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.steam import Steam, SteamSpace
 from loopslack.kernel import kinds

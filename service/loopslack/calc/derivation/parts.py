@@ -10,7 +10,7 @@ from loopslack.calc.derivation.book import Book
 from loopslack.calc.derivation.fluid import FluidSteps
 from loopslack.calc.derivation.ground import CollectorGround, Ground, TubeGround
 from loopslack.calc.derivation.leaves import Leaves
-from loopslack.calc.model import Branch, CollectorGroup, Loop, Segment
+from loopslack.calc.model import Branch, CollectorGroup, Loop, Segment, run_name
 from loopslack.kernel import kinds
 from loopslack.kernel.value import Value
 from loopslack.physics import balance, balance_steam, collector, collector_area, geometry, heat_loss
@@ -293,8 +293,3 @@ class Parts:
             first=computed,
             second=measured,
         )
-
-
-def run_name(branch: Branch, index: int) -> str:
-    """What to call a pipe run."""
-    return branch.name or f"{branch.role} run {index + 1}"

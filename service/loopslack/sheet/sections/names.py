@@ -16,6 +16,7 @@ _PART_SUBJECTS = {
     "galvanised-parts": "part.galvanised-parts",
 }
 _NUMBERED = re.compile(r"collectors (\d+)\Z")
+_RUN = re.compile(r"(?:flow|return) run (\d+)\Z")
 
 
 def state_name(case: Case, scenario: str) -> str:
@@ -32,6 +33,9 @@ def subject_name(case: Case, subject: str) -> str:
     numbered = _NUMBERED.match(subject)
     if numbered:
         return f"{case.words('part.collectors')} {numbered[1]}"
+    run = _RUN.match(subject)
+    if run and int(run[1]) <= len(case.design.pipe_runs):
+        return case.run_name(int(run[1]) - 1)
     if subject.startswith("/"):
         return member_name(case, subject)
     return plain(subject)
