@@ -17,6 +17,7 @@ sh deploy/image.sh "$image"
 
 port=$(python -c 'import socket; s = socket.socket(); s.bind(("127.0.0.1", 0)); print(s.getsockname()[1])')
 podman --log-level fatal run --detach --name "$name" --network host --env LOOPSLACK_BIND="127.0.0.1:$port" \
+    --env LOOPSLACK_SHED_LAG_SECONDS=10 --env LOOPSLACK_DEADLINE_SECONDS=120 \
     --user 10001:10001 --read-only --read-only-tmpfs=false --tmpfs /dev/shm:rw,size=16m --tmpfs /tmp:rw,size=16m \
     --cap-drop all --security-opt no-new-privileges --memory 384m --pids-limit 64 "$image" >/dev/null
 trap 'podman --log-level fatal rm --force --time 1 "$name" >/dev/null 2>&1' EXIT INT TERM
