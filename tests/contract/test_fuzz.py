@@ -1,6 +1,7 @@
 """A small fuzzing run in this process; the long one against a live service is `fuzz_live.sh`."""
 
 import json
+from pathlib import Path
 from typing import Any
 
 import schemathesis
@@ -10,11 +11,27 @@ from contract.asked_examples import SETTINGS
 from contract.strict_document import DOCUMENT, strict
 from loopslack.app import create_app
 
-schema = schemathesis.openapi.from_dict(strict(json.loads(DOCUMENT.read_bytes())))
-schema.app = create_app(SETTINGS)
+CONFIG = schemathesis.Config.from_path(Path(__file__).parent / "schemathesis.toml")
+schema = schemathesis.openapi.from_dict(strict(json.loads(DOCUMENT.read_bytes())), config=CONFIG)
+SERVICE = create_app(SETTINGS)
+
+
+async def standing(scope: Any, receive: Any, send: Any) -> None:
+    """The service without start and stop, which the fuzzer would ask for anew with every question."""
+    if scope["type"] != "lifespan":
+        await SERVICE(scope, receive, send)
+        return
+    while True:
+        message = await receive()
+        await send({"type": f"{message['type']}.complete"})
+        if message["type"] == "lifespan.shutdown":
+            return
+
+
+schema.app = standing
 
 
 @schema.parametrize()
-@settings(max_examples=15, deadline=None, derandomize=True, suppress_health_check=list(HealthCheck))
+@settings(max_examples=10, deadline=None, derandomize=True, suppress_health_check=list(HealthCheck))
 def test_any_question_gets_what_the_document_says(case: Any) -> None:
     case.call_and_validate()

@@ -13,6 +13,7 @@ from typing import Any
 
 from loopslack.api.document.analysis_names import ANALYSIS_LISTS, ANALYSIS_UNIONS
 from loopslack.api.document.answer_names import ANSWER_LISTS, ANSWER_UNIONS, LEFT_OUT, SCHEMA_NAMES
+from loopslack.api.document.audit_names import AUDIT_LISTS
 from loopslack.api.document.examples import ExampleBook, Harvest
 from loopslack.api.document.headers import HEADERS, PARAMETERS
 from loopslack.api.document.overview import DESCRIPTION, SUMMARY, TAGS, TITLE
@@ -28,7 +29,7 @@ from loopslack.api.operations import Operation
 from loopslack.contract.problems import FaultyField, Problem
 from loopslack.contract.writing_common import CONTRACT_VERSION
 
-VALUES = (*UNIT_LISTS, *QUESTION_LISTS, *ANSWER_LISTS, *ANALYSIS_LISTS, *HEALTH_LISTS)
+VALUES = (*UNIT_LISTS, *QUESTION_LISTS, *ANSWER_LISTS, *ANALYSIS_LISTS, *AUDIT_LISTS, *HEALTH_LISTS)
 UNIONS = (*QUESTION_UNIONS, *ANSWER_UNIONS, *ANALYSIS_UNIONS)
 Schema = dict[str, Any]
 
