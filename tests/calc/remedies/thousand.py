@@ -52,10 +52,10 @@ class Tally(NamedTuple):
         ]
 
 
-def tally(wanted: int) -> Tally:
-    """Seek and try until so many failing cases are done."""
+def tally(wanted: int, *, first: int = 0) -> Tally:
+    """Seek and try, from the loop of a seed on, until so many failing cases are done."""
     found = Tally(0, Counter(), Counter(), [], [])
-    failing = seed = 0
+    failing, seed = 0, first
     while failing < wanted:
         loop = random_loop(seed)
         asked = design(loop, Request(SERIES, 1, "size", "single"))
