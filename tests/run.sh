@@ -30,9 +30,9 @@ stage_build() { sh tests/build.sh; }
 stage_shell() { sh tests/deployment/shell.sh; }
 stage_deployment() { sh tests/deployment/run.sh; }
 stage_contract_lint() { with_node sh tests/contract/lint.sh; }
-stage_clients() { with_node python tests/with_service.py sh tests/contract/clients/run.sh URL; }
+stage_clients() { with_node sh tests/contract/clients/run.sh; }
 stage_fuzz_live() { python tests/with_service.py sh tests/live/fuzz.sh URL; }
-stage_browser() { with_node python tests/with_service.py sh tests/browser/run.sh URL; }
+stage_browser() { with_node sh tests/browser/run.sh; }
 stage_faults() { sh tests/faults/run.sh; }
 stage_load() { sh tests/load/run.sh --short; }
 stage_container() { sh tests/container/run.sh; }
@@ -52,16 +52,12 @@ run_pytest() {
     [ "$pytest_status" -eq 0 ] && [ "$more_skipped" -eq 0 ]
 }
 
-# Node.js, Java and Chromium for the scripts that need them; their own packages they install themselves.
+# A script that needs Node.js, with the tests' own Python first on the path all the same.
 with_node() {
     (
         . tests/tools.sh
         node_tool
-        case "$*" in
-        *clients*) debian_tool java default-jre-headless ;;
-        *browser*) debian_tool chromium chromium ;;
-        esac
-        PATH="$PWD/.cache/tests/bin:$PATH" LOOPSLACK_TOOLS="$PWD/.cache/contract-tools" "$@"
+        PATH="$PWD/.cache/tests/bin:$PATH" "$@"
     )
 }
 
