@@ -10,7 +10,8 @@
 # `context.expectedRefusals = [422]`, since the browser writes such answers to the console by itself.
 # FILTER=name runs the files whose name has it. Screenshots are kept in .cache/browser.
 #
-# Needs Python on the path with the service installed, as tests/run.sh sets it up, Node.js 20 with npm, and Chromium.
+# Needs Python on the path with the service installed, as tests/run.sh sets it up, Node.js 20 with npm, Chromium, and Poppler
+# and qpdf for the PDFs.
 # What is missing is installed where this user may, and named as a failure where not.
 set -eu
 cd "$(dirname "$0")/../.."
@@ -21,6 +22,8 @@ url=${1:-}
 [ -n "$url" ] || start_service # first, since the next line may put another Python on the path
 node_tool
 debian_tool chromium chromium
+debian_tool pdftotext poppler-utils
+debian_tool qpdf qpdf
 tools=$(node_tools tests/browser)
 BROWSER_TOOLS=$(dirname "$tools") CHROMIUM=$(command -v chromium) SCREENSHOTS=$PWD/.cache/browser \
     node tests/browser/support/runner.mjs "$url"

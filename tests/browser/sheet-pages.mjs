@@ -96,5 +96,5 @@ async function printed(page, name) {
   assert.ok(broken < 1000, `the card of ${name} is ${broken} pixels high and fits no page`);
   const dark = await page.evaluate(() => getComputedStyle(document.body).backgroundColor);
   assert.equal(dark, "rgb(255, 255, 255)", "paper is white on a dark screen too");
-  await page.emulateMedia({ media: "screen" });
+  await page.emulateMedia({ media: null });
 }

@@ -24,7 +24,9 @@ def pipes(case: Case, most: int) -> Table:
         for number, segment in enumerate(run.segments):
             total += 1
             if len(rows) < most:
-                name = case.run_name(index) if number == 0 else ""
+                name = case.run_name(index)
+                if number:
+                    name = words("inputs.stretch", run=name, number=number + 1)
                 access = word_name(case, run.steam_access or "unknown") if number == 0 else ""
                 rows.append(Row((name, access, *_stretch(case, segment))))
     columns = (
