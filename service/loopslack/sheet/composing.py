@@ -81,6 +81,8 @@ def compose(answer: LoopDesignAnswer, question: SheetQuestion) -> Sheet:
     words = case.words
     mark = fingerprint(question)
     sections = [section for make in SECTIONS if (section := make(case)) is not None]
+    if case.chosen:  # what to set comes right behind the result; where nothing is chosen, why not comes first
+        sections.sort(key=lambda section: {"result": 0, "settings": 1}.get(section.id, 2))
     if question.remark:
         remark = tuple(Text(line) for line in paragraphs(question.remark))
         sections.insert(1, Section("remark", words("section.remark"), remark))

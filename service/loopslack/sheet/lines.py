@@ -10,8 +10,9 @@ from msgspec import Struct
 Align = Literal["text", "number", "value"]
 """``number`` takes the room its digits need; ``value`` is set right too, but shares the width like words."""
 Tone = Literal["plain", "lead", "stop", "warning", "note", "small"]
-Mark = Literal["", "holds", "fails", "open", "aside"]
-"""``aside`` fails under a doubt that was not asked for: shown, not counted."""
+Mark = Literal["", "holds", "fails", "warns", "open", "aside"]
+"""``warns`` fails a check that does not decide; ``aside`` fails under a doubt that was not asked for: both are shown,
+not counted."""
 
 
 class Column(Struct, frozen=True):

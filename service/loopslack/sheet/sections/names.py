@@ -53,7 +53,16 @@ def mark_of(case: Case, check: Check) -> Mark:
         return "holds"
     if check.verdict == "not-assessed":
         return "open"
-    return "fails" if check.scenario in case.counted else "aside"
+    if check.scenario not in case.counted:
+        return "aside"
+    return "fails" if check.group == "core" else "warns"
+
+
+def mark_of_state(case: Case, scenario: str) -> Mark:
+    """How much weight a state carries: that of the gravest of its checks."""
+    marks = {mark_of(case, check) for check in case.result.checks if check.scenario == scenario}
+    gravest: tuple[Mark, ...] = ("fails", "open", "aside", "warns")
+    return next((mark for mark in gravest if mark in marks), "holds")
 
 
 def verdict_word(case: Case, mark: Mark) -> str:

@@ -6,11 +6,12 @@ from loopslack.sheet.case import Case
 from loopslack.sheet.figures.schematic import loop_schematic
 from loopslack.sheet.figures.verdicts import verdict_sign
 from loopslack.sheet.lines import Banner, Beside, Column, Fact, Facts, Row, Section, Table, Text
+from loopslack.sheet.numerals import NO_BREAK
 from loopslack.sheet.sections.fluids import fluid_name
 from loopslack.sheet.sections.names import check_name, mark_of, state_name, verdict_word
 from loopslack.sheet.words import plain
 
-_WEIGHT = {"fails": 0, "open": 1, "holds": 2, "aside": 3, "": 4}
+_WEIGHT = {"fails": 0, "warns": 1, "open": 2, "holds": 3, "aside": 4, "": 5}
 
 
 def banner(case: Case) -> Banner:
@@ -109,7 +110,14 @@ def _vessel(case: Case) -> list[Fact]:
 
 def article(case: Case, id: str) -> str:
     """A vessel's article: the caller's own name, or that it is a generic size."""
-    return case.words("result.generic") if id.startswith("preferred-") else plain(id)
+    if not id.startswith("preferred-"):
+        return plain(id)
+    return case.words("result.generic", size=generic_size(case, id))
+
+
+def generic_size(case: Case, id: str) -> str:
+    """A generic size by its litres, which are its name in any units."""
+    return f"{case.say.plain(id.removeprefix('preferred-').replace('-', '.'))}{NO_BREAK}L"
 
 
 def _range(case: Case) -> str:
@@ -156,7 +164,7 @@ def _margins(case: Case) -> Table:
         if known is None or _tightness(case, check) < _tightness(case, known):
             tightest[check.code, aside] = check
     rows = []
-    for check in sorted(tightest.values(), key=lambda check: _WEIGHT[mark_of(case, check)]):
+    for check in sorted(tightest.values(), key=lambda check: _tightness(case, check)):
         mark = mark_of(case, check)
         at_least = "≥ " if check.at_least else ""
         cells = (

@@ -3,7 +3,7 @@
 from loopslack.contract.answers_loop import RefusalReason, SizedVolume
 from loopslack.sheet.case import Case
 from loopslack.sheet.lines import Block, Column, Row, Section, Table, Text
-from loopslack.sheet.sections.result import article
+from loopslack.sheet.sections.result import article, generic_size
 
 MOST_REFUSED = 12
 
@@ -80,7 +80,7 @@ def _choice(case: Case) -> str:
 def _short(case: Case, id: str) -> str:
     """A candidate's name; a generic size by its litres."""
     if id.startswith("preferred-"):
-        return f"{case.say.plain(id.removeprefix('preferred-').replace('-', '.'))} L"
+        return generic_size(case, id)
     return article(case, id)
 
 

@@ -5,10 +5,10 @@ from collections.abc import Callable
 from loopslack.contract.answers_loop import StagnationState
 from loopslack.sheet.case import Case
 from loopslack.sheet.figures.reach import steam_reach
-from loopslack.sheet.lines import Beside, Block, Column, Mark, Row, Section, Table, Text
+from loopslack.sheet.lines import Beside, Block, Column, Row, Section, Table, Text
 from loopslack.sheet.sections.discharges import discharges
 from loopslack.sheet.sections.doubts import doubts
-from loopslack.sheet.sections.names import state_name, verdict_word
+from loopslack.sheet.sections.names import mark_of_state, state_name, verdict_word
 
 _Cell = Callable[[Case, StagnationState], str]
 
@@ -60,7 +60,7 @@ _ROWS: tuple[tuple[str, _Cell], ...] = (
 def _table(case: Case) -> Table:
     words, states = case.words, case.result.stagnation
     rows = [Row((words(f"column.{name}"), *(cell(case, state) for state in states))) for name, cell in _ROWS]
-    marks = [_mark(case, state) for state in states]
+    marks = [mark_of_state(case, state.scenario) for state in states]
     rows.append(
         Row((words("column.verdict"), *(verdict_word(case, mark) for mark in marks)), marks=("", *marks))
     )
@@ -71,11 +71,3 @@ def _table(case: Case) -> Table:
     return Table(
         words("table.stagnation"), columns, tuple(rows), words("table.stagnation-note"), compact=True
     )
-
-
-def _mark(case: Case, state: StagnationState) -> Mark:
-    if state.verdict == "holds":
-        return "holds"
-    if state.verdict == "not-assessed":
-        return "open"
-    return "fails" if state.scenario in case.counted else "aside"
