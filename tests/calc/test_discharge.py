@@ -7,10 +7,10 @@ from calc.loops import random_loop
 from calc.reference import ATMOSPHERE, BAR, group, loop
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.discharge import closing_pressure, discharge, steam_at_valve
-from loopslack.calc.judge import stagnation
 from loopslack.calc.model import Vessel
 from loopslack.calc.precharge import gas_of
 from loopslack.calc.scenarios import BASE
+from loopslack.calc.stagnation import stagnation
 from loopslack.calc.window import Bounds
 from loopslack.kernel.errors import CalculationError
 

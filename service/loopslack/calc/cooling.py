@@ -9,9 +9,9 @@ from typing import NamedTuple
 
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.equilibrium import Equilibrium
-from loopslack.calc.judge import stagnation
 from loopslack.calc.scenarios import Scenario
-from loopslack.calc.window import Bound, Gas
+from loopslack.calc.stagnation import stagnation
+from loopslack.calc.window import Bound, Bounds, Gas, Window
 from loopslack.kernel.roots import bracketed
 
 _MOST = 1e3  # m3: no cooling vessel is sought beyond
@@ -126,6 +126,15 @@ def membrane_bound(
         if worst is scenario and temperature > limit:
             lower = lower._replace(mass=lower.mass + _TOLERANCE * upper.mass)
     return lower
+
+
+def cool_window(analysis: Analysis, scenarios: Sequence[Scenario], gas: Gas, membrane_limit: float) -> Window:
+    """The fill window at the fill temperature in which no scenario heats the membrane beyond its limit (K)."""
+    bounds = Bounds(analysis, scenarios, gas)
+    lower, upper = bounds.masses(gas.nominal, gas.acceptance)
+    if 0 <= lower.mass < upper.mass:
+        lower = membrane_bound(analysis, scenarios, gas, lower, upper, membrane_limit)
+    return bounds.window_between(gas.nominal, lower, upper, analysis.loop.temperatures.fill)
 
 
 class _NoVessel(Exception):

@@ -10,9 +10,9 @@ from typing import NamedTuple
 
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.balance import Extent
-from loopslack.calc.judge import charge_of, stagnation
 from loopslack.calc.model import Loop
 from loopslack.calc.scenarios import Scenario
+from loopslack.calc.stagnation import charge_of, stagnation
 from loopslack.calc.states import LiquidState, StateId
 from loopslack.calc.window import Gas
 from loopslack.kernel.roots import bracketed

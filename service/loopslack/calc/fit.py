@@ -4,12 +4,12 @@ from collections.abc import Sequence
 from typing import NamedTuple
 
 from loopslack.calc.analysis import Analysis
-from loopslack.calc.cooling import Charged, membrane_bound, smallest_content
-from loopslack.calc.judge import stagnation
+from loopslack.calc.cooling import Charged, cool_window, smallest_content
 from loopslack.calc.model import Vessel
 from loopslack.calc.precharge import gas_of
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.sizing.volumes import CoolingMode
+from loopslack.calc.stagnation import stagnation
 from loopslack.calc.window import Bounds, Gas, Window
 
 
@@ -59,12 +59,11 @@ def fit(
             return None
         analysis = analysis.with_cooling(content) if content else analysis
     gas = gas_of(analysis, vessel, count)
-    bounds = Bounds(analysis, scenarios, gas)
-    lower, upper = bounds.masses(gas.nominal, gas.acceptance)
-    if cooling != "size" and 0 <= lower.mass < upper.mass:
-        lower = membrane_bound(analysis, scenarios, gas, lower, upper, limit)
-    fill = analysis.loop.temperatures.fill
-    return Fit(vessel, count, gas, analysis, bounds.window_between(gas.nominal, lower, upper, fill))
+    if cooling == "size":  # which keeps the membrane cool at the least filling already
+        window = Bounds(analysis, scenarios, gas).window(gas.nominal, gas.acceptance)
+    else:
+        window = cool_window(analysis, scenarios, gas, limit)
+    return Fit(vessel, count, gas, analysis, window)
 
 
 def cooling_for(

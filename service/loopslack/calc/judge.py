@@ -8,8 +8,8 @@ from collections.abc import Iterable
 
 from loopslack.calc import checks
 from loopslack.calc.analysis import Analysis
-from loopslack.calc.charge import Charge
-from loopslack.calc.equilibrium import Equilibrium, equilibrium
+from loopslack.calc.cooling import cool_window
+from loopslack.calc.equilibrium import Equilibrium
 from loopslack.calc.judgement import (
     Check,
     CheckVerdict,
@@ -22,59 +22,13 @@ from loopslack.calc.judgement import (
 from loopslack.calc.model import Part, Vessel
 from loopslack.calc.relief_size import relief_size_check
 from loopslack.calc.scenarios import BASE, Scenario
+from loopslack.calc.stagnation import stagnation, unrelieved_pressure
 from loopslack.calc.states import LiquidState
 from loopslack.calc.window import Bounds, Gas, Window
 from loopslack.kernel.errors import CalculationError
 from loopslack.physics.statics import GRAVITY
 
 JOINT = "required-doubts"  # the state under which checks of all required scenarios together stand
-
-
-def charge_of(analysis: Analysis, gas: Gas, mass: float) -> Charge:
-    """A vessel filled with ``mass`` kg, as the equilibrium wants it."""
-    loop = analysis.loop
-    return Charge(
-        gas.nominal,
-        gas.precharge,
-        gas.temperature,
-        mass / analysis.states.fill.vessel_density,
-        mass,
-        loop.temperatures.vessel_room,
-        analysis.allowance,
-    )
-
-
-def stagnation(analysis: Analysis, scenario: Scenario, gas: Gas, mass: float) -> Equilibrium:
-    """The stagnation equilibrium of a filled vessel under one scenario, with the relief valve in place."""
-    case = analysis.case(scenario)
-    return equilibrium(
-        case.balance,
-        charge_of(analysis, gas, mass),
-        analysis.mix,
-        gas_follows=scenario.gas_follows,
-        opening=analysis.final_pressure,
-        limit=case.final,
-    )
-
-
-def unrelieved_pressure(analysis: Analysis, scenario: Scenario, gas: Gas, mass: float) -> float | None:
-    """Vessel pressure (Pa) if the valve stayed shut; None where it lies beyond the bubble line."""
-    balance = analysis.case(scenario).balance
-    ceiling = min(
-        space.fluid.highest_pressure * 0.9999 + space.column * max(space.path.heights)
-        for space in balance.spaces
-    )
-    try:
-        found = equilibrium(
-            balance,
-            charge_of(analysis, gas, mass),
-            analysis.mix,
-            gas_follows=scenario.gas_follows,
-            opening=ceiling,
-        )
-    except CalculationError:
-        return None
-    return None if found.regime in ("valve-opens", "membrane-full") else found.pressure
 
 
 def judge(
@@ -91,10 +45,15 @@ def judge(
 
     ``window`` is that of the scenarios the policy requires, if it is known already.
     """
-    bounds = Bounds(analysis, (BASE,), gas)
     states = {id: _state(analysis, state, gas, mass) for id, state in analysis.states.by_id.items()}
-    found = list(_static(analysis, vessel, gas, mass, bounds, states))
-    joint = _joint_window(analysis, gas, mass, policy, window)
+    found = list(_static(analysis, vessel, gas, mass, states))
+    found.append(_window(analysis, (BASE,), gas, mass, membrane_limit, None, BASE.id))
+    # The window that survives every required doubt counts with the doubts, not with the base case.
+    joint = (
+        []
+        if policy == "none"
+        else [_window(analysis, required(analysis, policy), gas, mass, membrane_limit, window, JOINT)]
+    )
     results: dict[str, Equilibrium] = {}
     refused: dict[str, str] = {}
     outcome: dict[str, CheckVerdict] = {}
@@ -149,17 +108,14 @@ def _static(
     vessel: Vessel,
     gas: Gas,
     mass: float,
-    bounds: Bounds,
     states: dict[str, StateResult],
 ) -> Iterable[Check]:
     """Checks that no doubt about the steam touches."""
     loop = analysis.loop
-    yield checks.reserve(bounds, analysis.states.cold, mass, gas.nominal)
+    yield checks.reserve(Bounds(analysis, (), gas), analysis.states.cold, mass, gas.nominal)
     yield checks.top_pressure(analysis, states["cold"].top_pressure)
     yield checks.cut_off(analysis, states["cut-off"].pressure)
     yield checks.freezing(analysis)
-    window = bounds.window(gas.nominal, gas.acceptance)
-    yield checks.fill_window(analysis, window, states["fill"].pressure, BASE.id)
     yield checks.protected(
         analysis, Part(name="expansion vessel", height=0.0, rated_pressure=vessel.rated_pressure)
     )
@@ -176,21 +132,22 @@ def required(analysis: Analysis, policy: DoubtPolicy) -> tuple[Scenario, ...]:
     return {"single": analysis.singles, "combined": analysis.every, "none": (BASE,)}[policy]
 
 
-def _joint_window(
-    analysis: Analysis, gas: Gas, mass: float, policy: DoubtPolicy, window: Window | None
-) -> list[Check]:
-    """The window that survives every required doubt; it counts with the doubts, not with the base case."""
-    if policy == "none":
-        return []
-    bounds = Bounds(analysis, (BASE,), gas)
-    pressure = bounds.pressure(gas.nominal, mass, analysis.loop.temperatures.fill)
-    if window is None:
-        try:
-            window = Bounds(analysis, required(analysis, policy), gas).window(gas.nominal, gas.acceptance)
-        except CalculationError as error:
-            reason = str(error)
-            return [Check("fill-window", True, JOINT, "not-assessed", checks.DIFFERENCE, reason=reason)]
-    return [checks.fill_window(analysis, window, pressure, JOINT)]
+def _window(
+    analysis: Analysis,
+    scenarios: tuple[Scenario, ...],
+    gas: Gas,
+    mass: float,
+    membrane_limit: float,
+    known: Window | None,
+    state: str,
+) -> Check:
+    """The fill window of some scenarios, and whether the filling lies in it."""
+    try:
+        window = known or cool_window(analysis, scenarios, gas, membrane_limit)
+    except CalculationError as error:
+        return Check("fill-window", True, state, "not-assessed", checks.DIFFERENCE, reason=str(error))
+    pressure = Bounds(analysis, (), gas).pressure(gas.nominal, mass, analysis.loop.temperatures.fill)
+    return checks.fill_window(analysis, window, pressure, state)
 
 
 def _hot(

@@ -15,6 +15,9 @@ from loopslack.calc.scenarios import Scenario
 from loopslack.kernel.kinds import NominalVolume, Volume
 from loopslack.physics.vessel import reserve_en_12828
 
+_WARM_KELVIN = 1e-11  # what a mixed temperature may be off
+_WARM_PASSES = 80  # five are usual; where two answers are about to vanish the passes get slow
+
 
 class Bound(NamedTuple):
     """A bound on the filling of the vessel: which check sets it, under which scenario, and the mass (kg)."""
@@ -69,7 +72,6 @@ class Bounds:
         self.lower: list[tuple[str, str, float, float]] = []
         self.upper: list[tuple[str, str, float, float]] = []
         self.warm: list[Scenario] = []
-        self._started: dict[tuple[str, str], float] = {}
         self._cold()
         self._cut_off()
         for scenario in scenarios:
@@ -141,24 +143,25 @@ class Bounds:
         for scenario in self.warm:
             case = self.analysis.case(scenario)
             pressure = self.analysis.final_pressure
-            mass = self._warm_mass(nominal, pressure, case.final.expelled, (scenario.id, "final"))
+            mass = self._warm_mass(nominal, pressure, case.final.expelled)
             if mass < highest.mass:
                 highest = Bound("relief-valve", scenario.id, mass)
             if case.station is not None:
                 station = case.station
-                mass = self._warm_mass(nominal, station.pressure, station.expelled, (scenario.id, "station"))
+                mass = self._warm_mass(nominal, station.pressure, station.expelled)
                 if mass > lowest.mass:
                     lowest = Bound("steam-at-station", scenario.id, mass)
         if acceptance < nominal:
             highest = self._accepting(nominal, acceptance, highest)
         return lowest, highest
 
-    def _warm_mass(self, nominal: float, pressure: float, expelled: float, start: tuple[str, str]) -> float:
+    def _warm_mass(self, nominal: float, pressure: float, expelled: float) -> float:
         """As ``_line`` with gas and liquid of the vessel at the mixed temperature.
 
-        Substitution shrinks the error about tenfold a pass, since warmer gas leaves less room for the liquid that
-        warms it; a secant through two passes does the rest. ``start`` names where the temperature of the last
-        vessel asked for is kept, since a search asks for similar ones.
+        Warmer gas leaves less room for the cool liquid that was there first, so the mixed temperature rises with
+        itself, and bends upwards: a nearly empty vessel can have two answers. Substitution that starts at the
+        room's temperature comes to the lower of them, and a secant through two of its passes does so sooner; the
+        lower one is the larger mass, on the branch where more liquid means more pressure.
         """
         analysis, mix = self.analysis, self.analysis.mix
         density, fill = analysis.fluid.density, self.fill_density
@@ -172,24 +175,19 @@ class Bounds:
         if squeeze * mix.hot >= 1:
             # Hot gas alone fills the vessel at this pressure: a shortage that grows with the vessel.
             return -expelled - self.room_density * nominal * squeeze * mix.hot
-        first = self._started.get(start, mix.room)
-        second = mass_at(first)[1]
+        first = mix.room
+        mass, second = mass_at(first)
         error = second - first
-        for _ in range(30):
+        for _ in range(_WARM_PASSES):
+            if abs(error) < _WARM_KELVIN or first == second:
+                break
             mass, mixed = mass_at(second)
             following = mixed - second
-            if abs(following) < 1e-11:
-                self._started[start] = second
-                break
-            step = following - error
-            first, previous = second, first
-            if step != 0:
-                second -= following * (second - previous) / step
-                # A secant may overshoot where the return pipe's liquid ends; the temperatures bound it.
-                second = min(max(second, mix.room), mix.hot) if mix.hot > mix.room else mix.room
-            else:
-                second = mixed
-            error = following
+            # Only where the error falls on the way up does the secant lead to the lower answer; else substitute.
+            fall = (error - following) / (second - first)
+            step = following / fall if fall > 0 else following
+            first, error = second, following
+            second = min(max(second + step, mix.room), mix.hot) if mix.hot > mix.room else mix.room
         return mass
 
     def _accepting(self, nominal: float, acceptance: float, highest: Bound) -> Bound:

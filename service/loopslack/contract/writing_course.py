@@ -8,7 +8,7 @@ from loopslack.calc.course.mapping import Mapped, mapped
 from loopslack.calc.course.march import finished
 from loopslack.calc.course.weather import ClearSky, Weather
 from loopslack.calc.fit import Fit
-from loopslack.calc.judge import charge_of
+from loopslack.calc.stagnation import charge_of
 from loopslack.contract import answers_course as out
 from loopslack.contract.quantity import TimeSpan
 from loopslack.contract.units_out import Writer

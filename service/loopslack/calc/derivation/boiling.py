@@ -1,7 +1,7 @@
 """Steps of the collectors of one steam space: what they send out as steam, what steam has taken of their content."""
 
+from loopslack.calc.derivation.collectors import GroupValues
 from loopslack.calc.derivation.frame import Frame
-from loopslack.calc.derivation.parts import GroupValues
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.steam import Steam, SteamSpace
 from loopslack.kernel import kinds

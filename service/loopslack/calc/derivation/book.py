@@ -188,3 +188,7 @@ class Book:
         """Note where the answer shows a number."""
         for pointer in pointers:
             self.reported[pointer] = value
+
+    def keep_reported(self, *prefixes: str) -> None:
+        """Forget where an answer would show numbers that this one does not show."""
+        self.reported = {pointer: v for pointer, v in self.reported.items() if pointer.startswith(prefixes)}

@@ -27,8 +27,8 @@ from loopslack.kernel.value import Value
 _CARD = "/result/settings"
 
 
-def derive_design(found: Design, ground: Ground) -> Book:
-    """Derive a design: the vessel shown, the volumes, the order list."""
+def derive_design(found: Design, ground: Ground, *, sizing: bool = False) -> Book:
+    """Derive a design: the vessel shown, the volumes, the order list; ``sizing`` where only a sizing is answered."""
     whole = _Whole(found.analysis, found.shown, ground)
     window_shown = _has_window(found.shown)
     shown = whole.shown(found.shown, found, settings=window_shown)
@@ -39,7 +39,13 @@ def derive_design(found: Design, ground: Ground) -> Book:
     if window_shown:
         whole.book.report(gauge, "/result/window/recommended", f"{_CARD}/fillPressure")
         whole.book.report(gauge, f"{_CARD}/window/recommended")
-        whole.card(shown)
+        final = shown.gauge(whole.site.final, "final pressure, gauge")
+        whole.book.report(final, f"{_CARD}/finalPressure")
+    precharge = shown.gauge(shown.charged.precharge, "precharge, gauge")
+    if sizing:
+        whole.book.report(precharge, "/result/precharge")
+    elif window_shown:
+        whole.book.report(precharge, f"{_CARD}/precharge")
     filled = whole.at_rest(shown, pressure)
     scenarios: Sequence[Scenario] = required(found.analysis, found.request.policy)
     own = scenarios if found.selection.chosen is not None else (BASE,)
@@ -49,6 +55,9 @@ def derive_design(found: Design, ground: Ground) -> Book:
     for name, sized in zip(sets, found.volumes, strict=True):
         if sized is not None:
             volumes.write(sized, sets[name], name)
+    if sizing:
+        whole.book.keep_reported("/result/window/", "/result/volumes/", "/result/precharge")
+        return whole.book
     write_order(whole.frame, filled)
     if window_shown:
         write_closed_forms(whole.frame, shown.charged)
@@ -104,13 +113,6 @@ class _Whole:
         shown.liquid_states(filled)
         shown.stagnation(filled)
         return filled
-
-    def card(self, shown: ShownSteps) -> None:
-        """Pressures of the settings card."""
-        final = shown.gauge(self.site.final, "final pressure, gauge")
-        self.book.report(final, f"{_CARD}/finalPressure")
-        precharge = shown.gauge(shown.charged.precharge, "precharge, gauge")
-        self.book.report(precharge, f"{_CARD}/precharge")
 
     def cooling(self, shown: ShownSteps, scenarios: tuple[Scenario, ...]) -> None:
         """Close the cooling vessel's content, if it was sized."""

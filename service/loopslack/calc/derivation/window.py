@@ -12,8 +12,8 @@ from loopslack.calc.derivation.charge import Charged, Filled, reserve
 from loopslack.calc.derivation.equilibrium import at_rest
 from loopslack.calc.derivation.frame import Frame, StateValues
 from loopslack.calc.derivation.hot_bounds import HotBounds
-from loopslack.calc.judge import stagnation
 from loopslack.calc.scenarios import Scenario
+from loopslack.calc.stagnation import stagnation
 from loopslack.calc.window import Bound, Gas, Window
 from loopslack.kernel import kinds
 from loopslack.kernel.value import Value

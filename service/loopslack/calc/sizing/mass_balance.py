@@ -67,9 +67,12 @@ def feasible(
     smallest = volume
     if rungs:
         smallest = bracketed(slack.at, previous, volume, before, value, _VOLUME * volume).at
-        # The root is met from above, so that the smallest vessel reported has its window.
-        while slack.at(smallest) < 0:
-            smallest *= 1 + 2 * _VOLUME
+        # The root is met from above, so that the smallest vessel reported has its window. Where the slack jumps,
+        # the root may be some way off: the steps grow, up to the volume known to do.
+        step = 2 * _VOLUME
+        while smallest < volume and slack.at(smallest) < 0:
+            smallest = min(smallest * (1 + step), volume)
+            step *= 4
     largest = slack.upper_end(volume) if upper_end else inf
     return Interval(smallest, largest, slack.window(smallest), slack.precharge(smallest))
 
@@ -136,8 +139,10 @@ class _Slack:
             value = self.at(following)
             if value < 0:
                 found = bracketed(self.at, volume, following, self.at(volume), value, 1e-12 * following).at
-                while self.at(found) < 0:
-                    found *= 1 - 1e-12
+                step = 1e-12
+                while found > volume and self.at(found) < 0:
+                    found = max(found * (1 - step), volume)
+                    step *= 4
                 return found
             volume = following
         return inf

@@ -6,12 +6,12 @@ vessel must hold in its hottest state, times a factor.
 
 from collections.abc import Sequence
 
-from loopslack.calc.judge import stagnation
 from loopslack.calc.precharge import precharge, precharge_temperature
 from loopslack.calc.scenarios import BASE, Scenario
 from loopslack.calc.sizing.rules.basis import Basis
 from loopslack.calc.sizing.rules.rule import Answer, Rule, applied, refused
 from loopslack.calc.sizing.volumes import Sized, size
+from loopslack.calc.stagnation import stagnation
 from loopslack.calc.window import Bounds, Gas
 from loopslack.kernel.citations import DERIVED
 from loopslack.kernel.equation import Range, equation

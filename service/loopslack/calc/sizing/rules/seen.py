@@ -10,9 +10,10 @@ from typing import NamedTuple
 from loopslack.calc import checks
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.equilibrium import Equilibrium, Regime
-from loopslack.calc.judge import stagnation, unrelieved_pressure, verdict_of
+from loopslack.calc.judge import verdict_of
 from loopslack.calc.judgement import Check, CheckCode, CheckVerdict, DoubtPolicy, DoubtVerdict, Verdict
 from loopslack.calc.scenarios import BASE, Scenario
+from loopslack.calc.stagnation import stagnation, unrelieved_pressure
 from loopslack.calc.window import Gas
 from loopslack.kernel.errors import CalculationError
 
