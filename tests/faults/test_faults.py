@@ -21,16 +21,17 @@ from pathlib import Path
 import pytest
 
 from faults.server import ROOT, Server, serving
-from load.client import Report, Target, open_loop
+from load.client import Report, Target, closed_loop, open_loop
 from load.questions import Corpus, drawn
 from load.server_facts import descriptors, proportional_memory
 
-QUIET = {"LOOPSLACK_ACCESS_LOG": "false"}
+QUIET = {"LOOPSLACK_ACCESS_LOG": "false", "LOOPSLACK_SHED_LAG_SECONDS": "3"}
+"""The load is meant to be served, also by a machine that has other work; only the flood is to be refused."""
 
 
 @pytest.fixture(scope="module")
 def corpus() -> Corpus:
-    return drawn(20, 4)
+    return drawn(20, 4, include=[])
 
 
 @pytest.fixture
@@ -58,6 +59,14 @@ def under_load(
     return asyncio.run(run())
 
 
+def wait_for(fact: Callable[[], bool], seconds: float = 25.0) -> None:
+    """Return once something is so; fail if it is not in time."""
+    deadline = time.monotonic() + seconds
+    while not fact():
+        assert time.monotonic() < deadline, "it did not come to pass"
+        time.sleep(0.05)
+
+
 def tell(capsys: pytest.CaptureFixture[str], what: str, report: Report) -> None:
     """Print one line of the table."""
     with capsys.disabled():
@@ -73,12 +82,10 @@ def test_a_killed_worker_takes_only_its_own_requests_with_it(
     victim = server.workers()[0]
     report = under_load(designs(server, corpus), 40, 4, (1.5, lambda: os.kill(victim, signal.SIGKILL)))
     tell(capsys, "worker killed, no retry", report)
-    assert victim not in server.workers()
-    assert len(server.workers()) == 2
-    assert report.failed <= 10
+    wait_for(lambda: victim not in server.workers() and len(server.workers()) == 2)
     assert report.wrong == 0
     assert len(report.served) + len(report.refused) + report.failed == 160
-    assert len(report.served) >= 120
+    assert report.failed <= 16, "more than the requests that were in one worker's hands"
 
 
 def test_a_client_that_retries_once_does_not_notice_a_killed_worker(
@@ -98,7 +105,7 @@ def test_a_reload_under_load_fails_no_request_that_has_its_own_connection(
     report = under_load(target, 20, 6, (1.5, lambda: server.process.send_signal(signal.SIGHUP)))
     tell(capsys, "reload, one connection per request", report)
     assert (report.failed, report.wrong) == (0, 0)
-    assert not before & set(server.workers())
+    wait_for(lambda: not before & set(server.workers()))
 
 
 def test_a_reload_under_load_fails_no_client_that_retries_once_on_a_reset(
@@ -164,7 +171,8 @@ def test_a_jump_of_the_clock_changes_nothing_but_the_date(
         target = designs(server, corpus)
         report = under_load(target, 20, 6, (1.5, lambda: jump(40)), (3.5, lambda: jump(-400)))
         tell(capsys, "clock 40 days on, then 400 back", report)
-        assert (report.failed, report.wrong, len(report.served)) == (0, 0, 120)
+        assert (report.failed, report.wrong) == (0, 0)
+        assert len(report.served) + len(report.refused) == 120
         assert set(server.workers()) == before
         with server.connect() as connection:
             connection.sendall(b"GET /livez HTTP/1.1\r\nHost: a\r\n\r\n")
@@ -185,7 +193,8 @@ def test_silent_and_slow_connections_do_not_keep_honest_ones_out(
         report = under_load(designs(server, corpus, retries=1), 20, 4)
         tell(capsys, "150 silent or slow connections", report)
         assert (report.failed, report.wrong) == (0, 0)
-        assert len(report.served) >= 70
+        assert len(report.served) + len(report.refused) == 80
+        assert len(report.served) >= 40
         for connection in slow:
             connection.settimeout(5)
             while connection.recv(4096):
@@ -219,19 +228,19 @@ def test_uploads_broken_off_leave_nothing_behind(
 
 
 def test_ten_times_too_much_is_refused_early_and_soon_forgotten(
-    server: Server, corpus: Corpus, capsys: pytest.CaptureFixture[str]
+    tmp_path: Path, corpus: Corpus, capsys: pytest.CaptureFixture[str]
 ) -> None:
-    quiet = under_load(designs(server, corpus), 10, 3)
-    capacity = 2.0 / (sum(quiet.served) / len(quiet.served))
-    flood = under_load(designs(server, corpus, retries=1), min(10 * capacity, 1500.0), 4)
-    tell(capsys, f"flood of {min(10 * capacity, 1500.0):.0f}/s for 4 s", flood)
-    assert flood.wrong == 0
-    assert set(flood.statuses) <= {200, 503}
-    assert len(flood.refused) > 0
-    time.sleep(1.0)
-    after = under_load(designs(server, corpus), 10, 3)
-    tell(capsys, "after the flood", after)
-    assert (after.failed, after.wrong, len(after.refused)) == (0, 0, 0)
+    with serving(tmp_path, workers=2, environment={"LOOPSLACK_ACCESS_LOG": "false"}) as server:
+        target = designs(server, corpus)
+        capacity = asyncio.run(closed_loop(target, 2, 3)).rate
+        rate = min(10.0 * capacity, 1500.0)
+        flood = under_load(target, rate, 4)
+        tell(capsys, f"flood of {rate:.0f}/s for 4 s, {rate / capacity:.1f} times the capacity", flood)
+        assert flood.wrong == 0
+        assert set(flood.statuses) <= {200, 503}
+        assert len(flood.refused) > 0
+        wait_for(lambda: under_load(target, 5, 1).statuses[200] == 5)
+        assert len(server.workers()) == 2
 
 
 def test_a_long_run_in_short_form_grows_neither_memory_nor_descriptors(
@@ -239,19 +248,21 @@ def test_a_long_run_in_short_form_grows_neither_memory_nor_descriptors(
 ) -> None:
     target = designs(server, corpus)
     readings = []
-    for _ in range(5):
-        report = under_load(target, 30, 8)
+    requests = 0
+    for number in range(9):
+        report = asyncio.run(closed_loop(target, 4, 4))
         assert (report.failed, report.wrong) == (0, 0)
-        readings.append(
-            (
-                max(proportional_memory(worker) for worker in server.workers()),
-                max(descriptors(worker) for worker in server.workers()),
-            )
-        )
+        requests += (
+            len(report.served) if number > 4 else 0
+        )  # before that, workers come to own what they shared
+        memory = sum(proportional_memory(worker) for worker in server.workers())
+        readings.append((memory, max(descriptors(worker) for worker in server.workers())))
+    growth = (readings[-1][0] - readings[4][0]) * 1e3 / requests
     with capsys.disabled():
-        print("\nsoak, MB and descriptors every 8 s: " + ", ".join(f"{m:.1f}/{d}" for m, d in readings))
-    assert readings[-1][0] <= readings[1][0] + 2.0
-    assert readings[-1][1] <= readings[1][1] + 2
+        told = ", ".join(f"{memory:.1f} MB/{held}" for memory, held in readings)
+        print(f"\nsoak, both workers, every 4 s: {told}; {growth:.2f} kB a request at the end")
+    assert growth <= 1.5
+    assert readings[-1][1] <= readings[4][1] + 4
 
 
 def test_a_filesystem_without_a_writable_place_but_memory_is_enough(

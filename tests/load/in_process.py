@@ -38,7 +38,12 @@ def figures(run: Run) -> list[Figure]:
     unit, design = sums(corpus.bodies, corpus.answers, repeats)
     table.append(at_most("in process, all loops", design / unit, 6.0, "U"))
     table.append(Figure("designs per second and core", f"{len(corpus.bodies) / design:.0f} /s"))
-    for name, include, bound in (("derivation", ["derivation"], 25.0), ("everything", EVERYTHING, None)):
+    parts: list[tuple[str, list[str] | None, float | None]] = [
+        ("derivation", ["derivation"], 25.0),
+        ("what the service adds by default", None, None),
+        ("everything", EVERYTHING, None),
+    ]
+    for name, include, bound in parts:
         costly = drawn(4 if run.short else 12, 0, include=include)
         unit, design = sums(costly.bodies, costly.answers, 1)
         label = f"in process, with {name}"
