@@ -12,7 +12,7 @@ from loopslack.calc.design import Design
 from loopslack.calc.existing import Checked
 from loopslack.contract import answers_derivation as out
 from loopslack.contract.answers_common import AnyQuantity
-from loopslack.contract.questions import LoopQuestion
+from loopslack.contract.questions import LoopQuestion, VesselSizingQuestion
 from loopslack.contract.reading import Reading
 from loopslack.contract.reading_derivation import ground_of
 from loopslack.contract.units_out import System
@@ -37,7 +37,10 @@ REDOING = (
 def derivation(found: Design | Checked, reading: Reading, question: LoopQuestion) -> out.Derivation:
     """Derive a design or a check: the base case, from the members of its question."""
     ground = ground_of(question, reading)
-    book = derive_design(found, ground) if isinstance(found, Design) else derive_check(found, ground)
+    if isinstance(found, Design):
+        book = derive_design(found, ground, sizing=isinstance(question, VesselSizingQuestion))
+    else:
+        book = derive_check(found, ground)
     return write_book(book, reading.system)
 
 

@@ -323,6 +323,16 @@ def _case(plain: Plain, answer: object, found: Design | Checked, book: Book, der
     )
 
 
+@cache
+def sizing_case(name: str) -> Case:
+    plain = DESIGNS[name]()
+    question = msgspec.json.decode(json.dumps(plain), type=questions.VesselSizingQuestion)
+    asked = answering.designed(question)
+    reading, found = asked.reading, asked.design
+    book = derive_design(found, ground_of(question, reading), sizing=True)
+    return _case(plain, answering.size_vessel(question), found, book, derivation(found, reading, question))
+
+
 CASES = [*(("design", name) for name in DESIGNS), *(("check", name) for name in CHECKS)]
 
 

@@ -1,10 +1,11 @@
 """A reader with a pencil: every printed step, redone from its own printed inputs, gives its printed number."""
 
+from functools import reduce
 from typing import Any
 
 import pytest
 
-from calc.derivation.cases import CASES, Case, case
+from calc.derivation.cases import CASES, Case, case, sizing_case
 from calc.derivation.redoing import FLUID_LAWS, Redone, half_digit, si
 from loopslack.kernel.equation import EQUATIONS
 from loopslack.kernel.units import GAUGE_UNITS, to_si
@@ -145,6 +146,17 @@ def test_every_member_of_the_answer_that_a_step_names_shows_its_number(kind: str
             place = place[int(member)] if isinstance(place, list) else place[member]
         assert place["unit"] == value["unit"], pointer
         assert place["value"] == pytest.approx(value["value"], rel=1.01e-6, abs=1e-9), pointer
+
+
+@pytest.mark.parametrize("name", ["the committed example", "a first quote", "steam at the station"])
+def test_a_sizing_names_only_members_that_a_sizing_has(name: str) -> None:
+    found = sizing_case(name)
+    pointers = {pointer for step in found.printed["steps"] for pointer in step.get("answers", ())}
+    assert "/result/precharge" in pointers
+    for step in found.printed["steps"]:
+        for pointer in step.get("answers", ()):
+            shown = reduce(lambda place, member: place[member], pointer.strip("/").split("/"), found.answer)
+            assert shown["value"] == pytest.approx(step["value"]["value"], rel=1.01e-6)
 
 
 @cases
