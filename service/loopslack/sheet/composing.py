@@ -50,6 +50,8 @@ SECTIONS: tuple[Callable[[Case], Section | None], ...] = (
     closing.cautions,
 )
 
+_FOOT = 48  # letters
+
 
 def fingerprint(question: SheetQuestion) -> str:
     """What the sheet was asked for, as sixteen letters: the same question has the same fingerprint."""
@@ -75,6 +77,11 @@ def _day(stated: str | None) -> str:
         ) from None
 
 
+def _short(text: str) -> str:
+    """A text short enough for the foot of every page."""
+    return text if len(text) <= _FOOT else f"{text[: _FOOT - 1].rstrip()}…"
+
+
 def compose(answer: LoopDesignAnswer, question: SheetQuestion) -> Sheet:
     """Everything that stands on the sheet of an answer."""
     case = Case(answer, question.design, question.language or "en")
@@ -94,7 +101,7 @@ def compose(answer: LoopDesignAnswer, question: SheetQuestion) -> Sheet:
         head.append(Fact(words("head.date"), day))
     foot = words(
         "foot",
-        project=texts["project"] or words("title"),
+        project=_short(texts["project"]) or words("title"),
         version=plain(answer.provenance.service_version),
         mark=mark,
     )

@@ -100,9 +100,15 @@ def plain(text: str) -> str:
     return "".join(_safe(letter) for letter in text)
 
 
+MOST_LINES = 60
+
+
 def paragraphs(text: str) -> list[str]:
-    """A caller's longer text, line by line, each of them plain; empty lines are left out."""
-    return [line for part in text.replace("\r", "\n").split("\n") if (line := plain(part).strip())]
+    """A caller's longer text, line by line, each of them plain; empty lines are left out, very many run together."""
+    lines = [line for part in text.replace("\r", "\n").split("\n") if (line := plain(part).strip())]
+    return (
+        lines if len(lines) <= MOST_LINES else [*lines[: MOST_LINES - 1], " ".join(lines[MOST_LINES - 1 :])]
+    )
 
 
 def _safe(letter: str) -> str:

@@ -32,7 +32,8 @@ def loop_schematic(case: Case) -> Drawing:
     heights = [group.height for group in loop.groups]
     low = min(0.0, loop.station.height, loop.relief.height, *heights)
     high = max(loop.top, loop.relief.height, loop.station.height, *heights, low + _LEAST_SPAN)
-    count = min(len(loop.groups), MOST_GROUPS) + min(len(loop.branches), MOST_RUNS) + 5
+    count = min(len(loop.groups), MOST_GROUPS) + min(len(loop.branches), MOST_RUNS) + 6
+    count += (len(loop.groups) > MOST_GROUPS) + (len(loop.branches) > MOST_RUNS)
     height = max(344.0, count * _ROW + 40.0)
     up = Scale(low, high, height - _BELOW - 38.0, 40.0)
     canvas = Canvas(height)
@@ -70,16 +71,18 @@ def _field(canvas: Canvas, case: Case, up: Scale) -> Iterator[_Label]:
     parts = case.result.content.parts
     shown = case.groups_by_height()[:MOST_GROUPS]
     width = 104.0 / len(shown)
-    left = _STATION - 52.0
+    left, at = _STATION - 52.0, (_STATION, up(loop.top))
     for place, (index, group) in enumerate(shown):
         middle = left + (place + 0.5) * width
         y = up(group.height)
         collector(canvas, (middle, y), min(width - 6.0, 64.0))
         name = f"{case.group_name(index)} \N{MULTIPLICATION SIGN} {group.count}"
-        if place == len(shown) - 1 and len(loop.groups) > len(shown):
-            name = f"{name} {words('figure.and-more', number=len(loop.groups) - len(shown))}"
         more = f"{say(parts[index].content)} · {say(case.write.length(group.height))}"
-        yield _Label((middle + min(width - 6.0, 64.0) / 2.0, y), name, more)
+        at = (middle + min(width - 6.0, 64.0) / 2.0, y)
+        yield _Label(at, name, more)
+    if len(loop.groups) > len(shown):
+        rest = words("figure.more-groups", number=len(loop.groups) - len(shown))
+        yield _Label(at, rest, words("figure.in-all", content=say(case.result.content.collectors)))
     drawn = {"flow": 0, "return": 0}
     for index, branch in enumerate(loop.branches[:MOST_RUNS]):
         lane = drawn[branch.role]
@@ -95,12 +98,14 @@ def _field(canvas: Canvas, case: Case, up: Scale) -> Iterator[_Label]:
         canvas.path(points, weight=2.0, dash="" if branch.role == "flow" else "7 3")
         content = parts[len(loop.groups) + index].content
         name = case.run_name(index)
-        if index == MOST_RUNS - 1 and len(loop.branches) > MOST_RUNS:
-            name = f"{name} {words('figure.and-more', number=len(loop.branches) - MOST_RUNS)}"
         more = f"{say(content)} · {words('figure.long', length=say(case.write.length(branch.length)))}"
         half = len(points) // 2
         (x1, y1), (x2, y2) = points[half - 1], points[half]
-        yield _Label(((x1 + x2) / 2.0, (y1 + y2) / 2.0), name, more)
+        at = ((x1 + x2) / 2.0, (y1 + y2) / 2.0)
+        yield _Label(at, name, more)
+    if len(loop.branches) > MOST_RUNS:
+        rest = words("figure.more-runs", number=len(loop.branches) - MOST_RUNS)
+        yield _Label(at, rest, words("figure.in-all", content=say(case.result.content.pipes)))
 
 
 def _plant(canvas: Canvas, case: Case, up: Scale) -> Iterator[_Label]:

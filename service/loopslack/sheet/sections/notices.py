@@ -8,6 +8,7 @@ from loopslack.sheet.sections.names import member_name, state_name, subject_name
 from loopslack.sheet.words import plain
 
 MOST_CONFIRM = 40
+MOST_NOTICES = 60
 
 
 def notices(case: Case) -> Section | None:
@@ -15,9 +16,12 @@ def notices(case: Case) -> Section | None:
     words = case.words
     told = tuple(
         Notice(advisory.severity, words(f"severity.{advisory.severity}"), *_worded(case, advisory))
-        for advisory in case.answer.advisories
+        for advisory in case.answer.advisories[:MOST_NOTICES]
     )
     blocks: list[Notice | Text | Bullets] = list(told)
+    more = len(case.answer.advisories) - len(told)
+    if more:
+        blocks.append(Text(words("notices.more", number=more), "lead"))
     confirm = case.result.to_confirm
     if confirm:
         blocks.append(Text(words("notices.confirm"), "lead"))
