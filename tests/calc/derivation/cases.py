@@ -182,7 +182,17 @@ DESIGNS: dict[str, Callable[[], Plain]] = {
     "a stated allowance": lambda: changed(
         wash_house(), "/reliefValve/openingAllowance", {"kind": "stated", "value": quantity(0.4, "bar")}
     ),
-    "an allowance of a low valve by Task 26": lambda: changed(
+    "an allowance below the set tolerance": lambda: changed(
+        changed(wash_house(), "/reliefValve/setPressure", quantity(16, "barg")),
+        "/reliefValve/openingAllowance",
+        {"kind": "rule", "rule": "five-psi"},
+    ),
+    "a top pressure that decides": lambda: changed(
+        changed(wash_house(), "/criteria/topPressure", quantity(1.5, "barg")),
+        "/precharge",
+        {"kind": "stated", "pressure": quantity(1.6, "barg"), "temperature": quantity(15, "degC")},
+    ),
+    "an allowance by five psi": lambda: changed(
         wash_house(), "/reliefValve/openingAllowance", {"kind": "rule", "rule": "five-psi"}
     ),
     "coefficients on the gross area, stagnation measured elsewhere": gross,
@@ -271,10 +281,24 @@ CHECKS: dict[str, Callable[[], Plain]] = {
     "a cooling vessel that is there": lambda: checked(
         wash_house(), 100, coolingVessel={"kind": "given", "content": quantity(15, "L")}
     ),
-    "no boiling": lambda: changed(
+    "hardly any boiling": lambda: changed(
         checked(wash_house(), 25, fillPressure=quantity(3.4, "barg")),
         "/reliefValve/setPressure",
         quantity(12, "barg"),
+    ),
+    "no boiling": lambda: changed(
+        checked(wash_house(), 25, fillPressure=quantity(4.5, "barg")),
+        "/reliefValve/setPressure",
+        quantity(16, "barg"),
+    ),
+    "a membrane that is full when filled": lambda: checked(
+        wash_house(),
+        80,
+        vessel={
+            "nominalVolume": quantity(80, "L"),
+            "ratedPressure": quantity(10, "barg"),
+            "acceptanceVolume": quantity(1.2, "L"),
+        },
     ),
 }
 
