@@ -16,11 +16,14 @@ import json
 import os
 import socket
 import struct
+import time
 from collections.abc import Callable
 from contextlib import suppress
+from email.utils import formatdate
 from http import HTTPStatus
 from typing import TYPE_CHECKING, Any
 
+from gunicorn.asgi import protocol  # type: ignore[import-untyped]  # as below
 from gunicorn.asgi.protocol import ASGIProtocol  # type: ignore[import-untyped]  # gunicorn ships no types
 from gunicorn.workers import gasgi  # type: ignore[import-untyped]  # as above
 
@@ -230,6 +233,26 @@ class GuardedProtocol(ASGIProtocol):
         self.transport.abort()
 
 
+class DateHeader:
+    """The `Date` of answers, made anew every second.
+
+    gunicorn's own is kept until the wall clock has gone on by a second, so that a clock set back leaves it in the
+    future until the clock has caught up.
+    """
+
+    def __init__(self) -> None:
+        self._made_at = -2.0
+        self._line = b""
+
+    def __call__(self) -> bytes:
+        """Give the header line."""
+        now = time.monotonic()
+        if now - self._made_at >= 1.0:
+            self._made_at = now
+            self._line = f"Date: {formatdate(usegmt=True)}\r\n".encode("ascii")
+        return self._line
+
+
 class Worker(gasgi.ASGIWorker):
     """gunicorn's ASGI worker, serving guarded connections and letting idle ones go when it stops."""
 
@@ -251,3 +274,4 @@ class Worker(gasgi.ASGIWorker):
 ASGIProtocol._check_h1c_protocol_available()
 # The worker makes its connections from this name of its module; there is no other place to put a class.
 gasgi.ASGIProtocol = GuardedProtocol
+protocol._get_cached_date_header = DateHeader()
