@@ -10,7 +10,7 @@ import os
 from pathlib import Path
 
 import msgspec
-from litestar import Litestar, Request, Response, post
+from litestar import Litestar, Request, Response, get, post
 
 from loopslack.contract.answers import LoopDesignAnswer
 from loopslack.contract.questions import LoopDesignQuestion
@@ -30,4 +30,10 @@ async def answer_from_memory(request: Request) -> Response[bytes]:  # type: igno
     return Response(ENCODER.encode(BY_BODY[body]), media_type="application/json")
 
 
-app = Litestar([answer_from_memory], openapi_config=None, logging_config=None)
+@get("/readyz", sync_to_thread=False)
+def ready() -> str:
+    """Say that it serves, as the service does."""
+    return "pass"
+
+
+app = Litestar([answer_from_memory, ready], openapi_config=None, logging_config=None)
