@@ -100,10 +100,15 @@ class Connection(asyncio.Protocol):
         if end < 0 or self._waiting is None or self._waiting.done():
             return
         head = bytes(self._received[:end]).lower()
-        length = int(head.partition(b"content-length:")[2].partition(b"\r\n")[0] or 0)
-        if len(self._received) < end + 4 + length:
-            return
-        body = bytes(self._received[end + 4 : end + 4 + length])
+        if b"\r\ntransfer-encoding: chunked" in head:
+            if not self._received.endswith(b"\r\n0\r\n\r\n"):
+                return
+            body = joined(bytes(self._received[end + 4 :]))
+        else:
+            length = int(head.partition(b"content-length:")[2].partition(b"\r\n")[0] or 0)
+            if len(self._received) < end + 4 + length:
+                return
+            body = bytes(self._received[end + 4 : end + 4 + length])
         self._received.clear()
         if b"\r\nconnection: close" in head:
             self.close()
@@ -123,6 +128,17 @@ class Connection(asyncio.Protocol):
         self.open = False
         if self.transport is not None:
             self.transport.close()
+
+
+def joined(chunks: bytes) -> bytes:
+    """The body of an answer sent in chunks (RFC 9112, chunked transfer coding, without extensions)."""
+    body = bytearray()
+    while chunks:
+        size, _, chunks = chunks.partition(b"\r\n")
+        length = int(size, 16)
+        body += chunks[:length]
+        chunks = chunks[length + 2 :]
+    return bytes(body)
 
 
 class Caller:
