@@ -5,6 +5,7 @@ from typing import get_args
 
 import pytest
 
+from loopslack.calc.course.assumptions import STANDING
 from loopslack.calc.course.chronicle import Flag
 from loopslack.calc.derivation.book import Chapter
 from loopslack.calc.equilibrium import Regime
@@ -138,3 +139,10 @@ def test_a_text_of_a_caller_stays_on_its_line_and_runs_its_own_way(stated: str, 
 
 def test_a_remark_keeps_its_lines_but_no_empty_ones() -> None:
     assert paragraphs("one\n\n  two \r\nthree\x00") == ["one", "two", "three\ufffd"]
+
+
+def test_everything_a_day_takes_for_granted_is_told_in_german() -> None:
+    for taken in STANDING:
+        told = DE.phrase(taken.text)
+        for part in (" the ", " is ", " are ", " of "):
+            assert part not in told, told

@@ -23,8 +23,19 @@ _BREAKS = frozenset("\n\r\x0b\x0c\x85\u2028\u2029")
 _UNPRINTABLE = frozenset({"Cc", "Cs", "Co", "Cn"})
 
 _SENTENCE = re.compile(r"(?<=[.])\s+(?=[A-Z])")
-_UNITS = {"degC": "°C", "m2": "m²", "m3": "m³", "W/m2": "W/m²", "mm2": "mm²"}
-_UNIT = re.compile(r"(?<![\w/])(?:degC|W/m2|mm2|m2|m3)(?![\w/])")
+_UNITS = {
+    "degC": "°C",
+    "kJ/m2K": "kJ/(m²·K)",
+    "W/m2K": "W/(m²·K)",
+    "W/m2": "W/m²",
+    "J/kgK": "J/(kg·K)",
+    "kg/m3": "kg/m³",
+    "mm2": "mm²",
+    "m2": "m²",
+    "m3": "m³",
+}
+_UNIT = re.compile(rf"(?<![\w/])(?:{'|'.join(_UNITS)})(?![\w/])")
+_NUMBER = re.compile(r"-?\d+(?:\.\d+)?")
 
 
 class Words:
@@ -59,8 +70,12 @@ class Words:
         for pattern, told in self._patterns:
             found = pattern.fullmatch(english)
             if found is not None:
-                return told.format(*found.groups())
+                return told.format(*(self._number(part) for part in found.groups()))
         return None
+
+    def _number(self, part: str) -> str:
+        """A number within a sentence, with the language's decimal sign; anything else as it is."""
+        return part.replace(".", ",") if self.language == "de" and _NUMBER.fullmatch(part) else part
 
     def __contains__(self, key: str) -> bool:
         return key in self._entries

@@ -33,9 +33,9 @@ def sensitivity(case: Case) -> Section | None:
         Column(words("column.input")),
         Column(words("column.present"), "number"),
         Column(words("column.range"), "number"),
-        Column(words("column.volume-low"), "number"),
-        Column(words("column.volume-high"), "number"),
-        Column(words("column.largest-change"), "number"),
+        Column(words("column.volume-low"), "value"),
+        Column(words("column.volume-high"), "value"),
+        Column(words("column.largest-change"), "value"),
     )
     moved = [row for row in found.inputs if row.decides or _moves(row)]
     rows = tuple(Row(_cells(case, row)) for row in moved)
