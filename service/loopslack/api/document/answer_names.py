@@ -149,7 +149,6 @@ ANSWER_LISTS: tuple[NamedValues, ...] = (
             "pinned": "Steam in the collectors keeps them at their stagnation temperature and goes no further",
             "steam": "Steam fills the collectors and reaches into the pipes",
             "valve-opens": "The pressure reaches that at which the relief valve may open",
-            "membrane-full": "The vessel takes no more liquid",
         },
     ),
     named(

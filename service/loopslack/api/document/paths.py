@@ -108,11 +108,20 @@ class PathBook:
         if shown:
             body["examples"] = shown
         carried = ("ServerTiming", "NoStore") if operation.method == "POST" else ("EntityTag", "Cacheable")
-        return {
+        answer: Schema = {
             "description": "The answer.",
             "headers": header_references("RequestId", *carried),
             "content": {operation.media_type: body},
         }
+        if operation.method == "GET":
+            answer["links"] = {
+                "AskAgain": {
+                    "operationId": operation.operation_id,
+                    "description": "Sent back, the tag spares an unchanged answer.",
+                    "parameters": {"header.If-None-Match": "$response.header.ETag"},
+                }
+            }
+        return answer
 
     def _shown(self, entry: Example, part: str, value: object) -> Schema:
         """A reference to the example, which stands with the components so that operations stay short to read."""

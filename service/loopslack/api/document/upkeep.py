@@ -99,7 +99,7 @@ def upkeep_paths(schemas: SchemaBook, responses: ProblemResponses) -> dict[str, 
     whole = schemas.read([OpenApiDocument])[0]
     return {
         "/v1/openapi.json": document("readContractJson", "JSON", "application/json", whole),
-        "/v1/openapi.yaml": document("readContractYaml", "YAML", "application/yaml", {"type": "string"}),
+        "/v1/openapi.yaml": document("readContractYaml", "YAML", "application/yaml", whole),
         "/livez": page(
             "probeLiveness", "Is the process alive", "Whether the process answers at all.", alive, _ANY
         ),
