@@ -4,6 +4,7 @@ set -eu
 cd "$(dirname "$0")/../.."
 . tests/tools.sh
 python_tools
+debian_tool git git
 scripts=$(git ls-files --cached --others --exclude-standard -- '*.sh' .ci/run)
 # A list of paths without blanks; `NAME= command` sets an empty variable for that command and is meant.
 # shellcheck disable=SC2086
