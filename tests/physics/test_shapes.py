@@ -213,7 +213,7 @@ def test_the_last_to_arrive_is_told_apart_from_the_mixture() -> None:
     assert (none.mixed, none.last) == (drawn.mixed, drawn.last) == (288.15, 288.15)
 
 
-@given(st.floats(0, 10), st.floats(345, 420), st.floats(275, 340))
+@given(st.floats(1e-6, 10), st.floats(345, 420), st.floats(275, 340))
 def test_the_needed_cooling_content_brings_the_mixture_to_the_limit(
     hot: float, temperature: float, cool: float
 ) -> None:

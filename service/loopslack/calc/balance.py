@@ -47,8 +47,10 @@ class Mixing(NamedTuple):
         """Volume-weighted temperature (K) of ``held`` m3, of which ``filled`` m3 were there at room temperature.
 
         No losses: the liquid of the vessel line and the cooling vessel arrives first at room temperature, then the
-        return pipe at the return temperature, then the rest hot. Errs on the hot side.
+        return pipe at the return temperature, then the rest hot. Errs on the hot side. A loop that was short of
+        liquid when filled (``filled`` below 0) had none in the vessel.
         """
+        filled = max(filled, 0.0)
         if held <= filled:
             return self.room
         arrived = held - filled
@@ -60,7 +62,7 @@ class Mixing(NamedTuple):
 
     def last(self, filled: float, held: float) -> float:
         """Temperature (K) of the liquid that arrived last."""
-        arrived = held - filled
+        arrived = held - max(filled, 0.0)
         if arrived <= self.cool:
             return self.room
         return self.back if arrived <= self.cool + self.back_volume else self.hot

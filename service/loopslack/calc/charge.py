@@ -4,6 +4,8 @@ from typing import NamedTuple
 
 from loopslack.calc.balance import Balance, Mixing
 
+_LEAST = 0.01  # share of the precharge below which no vessel pressure is a solution
+
 
 class Charge(NamedTuple):
     """A vessel as it was charged and filled: volumes m3, absolute pressures Pa, temperatures K, mass kg.
@@ -21,7 +23,11 @@ class Charge(NamedTuple):
 
     def room_at(self, pressure: float, gas_temperature: float) -> float:
         """Liquid (m3) the vessel has room for at a pressure (Pa) and gas temperature (K), by Boyle's law."""
-        squeezed = self.precharge / pressure * gas_temperature / self.precharge_temperature
+        least = _LEAST * self.precharge
+        # A column that hangs below the vessel can ask for pressures at or below nought, which no gas has: there the
+        # law goes on along its tangent, so that a search sees ever less room and not a change of sign.
+        inverse = 1.0 / pressure if pressure > least else (2.0 - pressure / least) / least
+        squeezed = self.precharge * inverse * gas_temperature / self.precharge_temperature
         return self.nominal * (1.0 - squeezed)
 
     def pressure_holding(self, liquid: float, gas_temperature: float) -> float:

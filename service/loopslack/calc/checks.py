@@ -37,7 +37,7 @@ def compare(
     ``scale`` is a size the value's rounding goes with, where value and limit are both small.
     """
     margin = limit - value if at_most else value - limit
-    holds = margin >= -ROUNDING * max(abs(limit), abs(value), scale)
+    holds = margin >= -ROUNDING * max(abs(limit), scale)
     if holds and margin < 0:
         margin = 0.0
     verdict: CheckVerdict = "holds" if holds else "does-not-hold"

@@ -10,9 +10,10 @@ from typing import Literal, NamedTuple
 
 from loopslack.calc.balance import Balance, Extent, Mixing
 from loopslack.calc.charge import Charge, VesselLaw
+from loopslack.kernel.errors import NotApplicable
 from loopslack.kernel.roots import bracketed, first_crossing
 
-Regime = Literal["no-boiling", "pinned", "steam", "valve-opens", "membrane-full"]
+Regime = Literal["no-boiling", "pinned", "steam", "valve-opens"]
 
 _RELATIVE = 2e-11  # of a steam temperature, 1e-8 K: a hundredth of what rounding may do to a verdict
 
@@ -256,7 +257,10 @@ def _state(regime: Regime, pressure: float, extent: Extent, law: VesselLaw) -> E
     if regime != "valve-opens":
         pressure = charge.pressure_holding(liquid, gas)
         if pressure == float("inf"):
-            regime, bound = "membrane-full", True
+            raise NotApplicable(
+                "no state of rest was found: at the one that was, the liquid would more than fill the vessel",
+                remedy="Check heights and contents; where they are right, take a larger vessel.",
+            )
     return Equilibrium(
         regime,
         pressure,

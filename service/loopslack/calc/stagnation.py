@@ -52,4 +52,4 @@ def unrelieved_pressure(analysis: Analysis, scenario: Scenario, gas: Gas, mass: 
         )
     except CalculationError:
         return None
-    return None if found.regime in ("valve-opens", "membrane-full") else found.pressure
+    return None if found.regime == "valve-opens" else found.pressure

@@ -90,8 +90,6 @@ def _pressure(
 ) -> Value | None:
     """What the vessel bears: the gas squeezed by the liquid, or the final pressure where the valve opens."""
     book = frame.book
-    if found.regime == "membrane-full":
-        return None
     if found.regime == "valve-opens":
         final = frame.site.final
         room = book.step(

@@ -66,7 +66,7 @@ def _stagnation_lines(case: Case) -> list[_Line]:
     for sign, state in (("base", case.stagnation("base")), ("worst", case.worst_stagnation)):
         if state is None or state.vessel_pressure is None:
             continue
-        opens = state.regime in ("valve-opens", "membrane-full")
+        opens = state.regime == "valve-opens"
         name = case.words("short.stagnation")
         if sign == "worst":
             name = f"{name}: {case.words(f'short.{state.scenario}')}"

@@ -95,7 +95,7 @@ def _stagnation(case: Case, sign: str, state: StagnationState) -> Entry:
     name = words("short.stagnation")
     if sign == "worst":
         name = f"{name}: {words(f'short.{state.scenario}')}"
-    opens = state.regime in ("valve-opens", "membrane-full")
+    opens = state.regime == "valve-opens"
     if opens:
         name = f"{name} \N{EN DASH} {words('figure.opens')}"
     pressure = say(state.vessel_pressure)

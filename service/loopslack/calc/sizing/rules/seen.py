@@ -83,10 +83,9 @@ def _scenario(analysis: Analysis, scenario: Scenario, gas: Gas, mass: float) -> 
         found = stagnation(analysis, scenario, gas, mass)
     except CalculationError as error:
         return ScenarioSeen(scenario.id, "not-assessed", None, None, reason=str(error))
+    pressure: float | None = found.pressure
     if found.regime == "valve-opens":
         pressure = unrelieved_pressure(analysis, scenario, gas, mass)
-    else:
-        pressure = None if found.regime == "membrane-full" else found.pressure
     failing = tuple(check.code for check in _checks(analysis, found) if check.verdict == "does-not-hold")
     verdict: CheckVerdict = "does-not-hold" if failing else "holds"
     return ScenarioSeen(scenario.id, verdict, found.regime, pressure, found.extent.unspent > 0, failing)
