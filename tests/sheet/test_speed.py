@@ -5,9 +5,11 @@ import tracemalloc
 from collections.abc import Callable
 
 import pytest
+from msgspec.structs import replace
 
-from loopslack.sheet.rendering import render_html, render_pdf
-from sheet.sheets import NAMES, asked
+from loopslack.sheet.pdf import pdf
+from loopslack.sheet.rendering import render_html
+from sheet.sheets import NAMES, asked, sheet
 
 HTML_SECONDS = 0.030
 PDF_SECONDS = 0.400
@@ -30,8 +32,14 @@ def test_a_page_takes_thirty_milliseconds_at_most(name: str) -> None:
 
 @pytest.mark.parametrize("name", NAMES)
 def test_a_pdf_takes_four_hundred_milliseconds_at_most_once_warm(name: str) -> None:
-    question, answer = asked(name)
-    assert least(lambda: render_pdf(answer, question), 3) <= PDF_SECONDS
+    """Each time another sheet: the typesetter remembers what it has set, and would give the same one in a tenth."""
+    number = iter(range(1000))
+
+    def another() -> bytes:
+        return pdf(replace(sheet(name), foot=f"{sheet(name).foot} {next(number)}"))
+
+    another()
+    assert least(another, 4) <= PDF_SECONDS
 
 
 def test_sheet_after_sheet_keeps_no_memory() -> None:
