@@ -8,9 +8,11 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from contract import changes_of_answers, changes_of_operations, changes_of_questions, changes_without_harm
 from contract.compatibility import breaks, version_faults
 from contract.mutations import CHANGES
 
+FILLED_BY = (changes_of_answers, changes_of_operations, changes_of_questions, changes_without_harm)
 OPENAPI = Path(__file__).parents[2] / "openapi"
 DOCUMENT: dict[str, Any] = json.loads((OPENAPI / "v1.json").read_bytes())
 del DOCUMENT["components"]["examples"]  # promises nothing, and is most of the bytes

@@ -86,7 +86,7 @@ def test_an_answer_may_narrow(narrow: dict[str, Any], wide: dict[str, Any]) -> N
     assert [finding for finding in found if finding.grade == "wire"] == []
 
 
-def test_a_shared_schema_is_judged_in_both_directions() -> None:
+def test_a_schema_both_sent_and_received_is_judged_in_both_directions() -> None:
     old = document({"$ref": "#/components/schemas/S"}, {"$ref": "#/components/schemas/S"})
     old["components"] = {"schemas": {"S": {"type": "string", "enum": ["a", "b"]}}}
     for values in (["a"], ["a", "b", "c"]):
