@@ -22,6 +22,8 @@ from loopslack.sheet.words import REPLACEMENT
 _NO_DATE = date(2000, 1, 1)  # a file for the archive must bear a date; it is printed nowhere
 _STANDARDS: list[Literal["ua-1", "a-2a"]] = ["ua-1", "a-2a"]
 _LONG = re.compile(r"[^\s\u00a0\u200b]{28}")
+_REMEMBERED = 11
+_NOTHING = b"."
 _SOFT_BREAK = "\u200b"
 _PANIC = "PanicException"
 _LOCK = Lock()  # the typesetter works on one sheet at a time anyway
@@ -58,16 +60,30 @@ class _Typesetter:
 
     def __call__(self, data: object) -> bytes:
         """Data set by the template. Raises ``failure`` for what the template cannot set."""
-        made = self._engine.compile(
+        try:
+            made = self._set(data)
+        finally:
+            self._forget()
+        if not isinstance(made, bytes):
+            raise TypeError("the typesetter gave no single file")
+        return made
+
+    def _forget(self) -> None:
+        """Let the typesetter drop what it remembers of a sheet, 25 MB each; nobody will ask for the same again.
+
+        It keeps what was used within its last ten documents: so it is given as many that hold nothing.
+        """
+        for _ in range(_REMEMBERED):
+            self._engine.compile(input=_NOTHING, format="pdf")
+
+    def _set(self, data: object) -> object:
+        return self._engine.compile(
             input=self._template,
             format="pdf",
             sys_inputs={"data": msgspec.json.encode(data).decode()},
             pdf_standards=[*_STANDARDS],
             timestamp=0,
         )
-        if not isinstance(made, bytes):
-            raise TypeError("the typesetter gave no single file")
-        return made
 
 
 @cache
