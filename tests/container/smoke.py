@@ -54,7 +54,9 @@ EXPECTED = {
 
 def podman(*arguments: str) -> str:
     """What a podman command prints; its error is an error here."""
-    return subprocess.run(["podman", "--log-level", "fatal", *arguments], check=True, capture_output=True, text=True).stdout
+    return subprocess.run(
+        ["podman", "--log-level", "fatal", *arguments], check=True, capture_output=True, text=True
+    ).stdout
 
 
 def fetched(port: int, path: str, body: bytes | None = None) -> tuple[int, bytes]:

@@ -237,8 +237,20 @@ class FaultyField(Struct, frozen=True, kw_only=True, omit_defaults=True):
         ),
     ]
     parameters: Annotated[
-        dict[str, str | float | int | bool],
-        Meta(description="The numbers behind the message, by name, for a translation.", examples=[{}]),
+        dict[str, float],
+        Meta(
+            description=(
+                "The numbers behind the message, by name, for a translation; physical ones in base units of the SI."
+            ),
+            examples=[{"limit": 60}],
+        ),
+    ] = {}
+    words: Annotated[
+        dict[str, str],
+        Meta(
+            description="The words behind the message, by name, for a translation.",
+            examples=[{"near": "degC"}],
+        ),
     ] = {}
 
 

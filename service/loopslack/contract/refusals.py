@@ -6,6 +6,7 @@ The text of an unforeseen exception is no part of any of this: it never reaches 
 import math
 import uuid
 from collections.abc import Mapping, Sequence
+from typing import TypeGuard
 
 from loopslack.contract.problems import MOST_COUNTED, MOST_FAULTS, PROBLEM_TYPES, FaultyField, Problem
 from loopslack.kernel.errors import CalculationError, Refusals
@@ -90,11 +91,15 @@ def fault_of(cause: CalculationError, within: str = "") -> FaultyField:
         pointer=within + cause.pointer,
         code=cause.code,
         message=f"{cause.message.rstrip()} {remedy}".rstrip(),
-        parameters={name: _plain(fact) for name, fact in cause.facts.items()},
+        parameters={name: _shown(fact) for name, fact in cause.facts.items() if _is_number(fact)},
+        words={name: str(fact) for name, fact in cause.facts.items() if not _is_number(fact)},
     )
 
 
-def _plain(fact: object) -> str | float | int | bool:
-    if isinstance(fact, float) and not math.isfinite(fact):
-        return str(fact)
-    return fact if isinstance(fact, str | int | float) else str(fact)
+def _is_number(fact: object) -> TypeGuard[float]:
+    return isinstance(fact, int | float) and not isinstance(fact, bool) and math.isfinite(fact)
+
+
+def _shown(fact: float) -> float:
+    """Without the noise of unit conversion."""
+    return float(f"{fact:.9g}")

@@ -7,15 +7,10 @@ from __future__ import annotations
 
 from loopslack.api.document.vocabulary import NamedUnion, NamedValues, named
 from loopslack.contract import answers_loop as loop
-from loopslack.contract import problems
 
 SCHEMA_NAMES: dict[type, str] = {
     loop.GaugeReading: "ExpectedReading",
 }
-
-# A map of mixed scalars has no form that Kotlin and Swift clients can read. Until it is two maps, one of numbers and
-# one of texts, it is a member that readers do not know, which answers may have.
-LEFT_OUT: frozenset[tuple[type, str]] = frozenset({(problems.FaultyField, "parameters")})
 
 _SCENARIOS = {
     "base": "The base case",

@@ -12,7 +12,7 @@ from pathlib import Path
 from typing import Any
 
 from loopslack.api.document.analysis_names import ANALYSIS_LISTS, ANALYSIS_UNIONS
-from loopslack.api.document.answer_names import ANSWER_LISTS, ANSWER_UNIONS, LEFT_OUT, SCHEMA_NAMES
+from loopslack.api.document.answer_names import ANSWER_LISTS, ANSWER_UNIONS, SCHEMA_NAMES
 from loopslack.api.document.audit_names import AUDIT_LISTS
 from loopslack.api.document.examples import ExampleBook, Harvest
 from loopslack.api.document.headers import HEADERS, PARAMETERS
@@ -26,7 +26,7 @@ from loopslack.api.document.upkeep import HEALTH_LISTS, upkeep_paths
 from loopslack.api.document.vocabulary import DocumentError, Vocabulary
 from loopslack.api.document.yaml_text import yaml_text
 from loopslack.api.operations import Operation
-from loopslack.contract.problems import FaultyField, Problem
+from loopslack.contract.problems import Problem
 from loopslack.contract.writing_common import CONTRACT_VERSION
 
 VALUES = (*UNIT_LISTS, *QUESTION_LISTS, *ANSWER_LISTS, *ANALYSIS_LISTS, *AUDIT_LISTS, *HEALTH_LISTS)
@@ -42,7 +42,7 @@ def assembled(operations: Iterable[Operation[Any, Any]], examples: Path) -> Sche
 
     """
     operations = list(operations)
-    schemas, book = SchemaBook(Vocabulary(VALUES, UNIONS), SCHEMA_NAMES, LEFT_OUT), ExampleBook(examples)
+    schemas, book = SchemaBook(Vocabulary(VALUES, UNIONS), SCHEMA_NAMES), ExampleBook(examples)
     responses = ProblemResponses(schemas.read([Problem])[0], _faults(book))
     paths = PathBook(schemas, responses, book)
     paths.add(operations)
@@ -88,14 +88,9 @@ def _faults(book: ExampleBook) -> dict[str, list[Schema]]:
     for entry in book.entries:
         answer = book.answer(entry)
         if entry.status >= 400 and isinstance(answer, dict):
-            faults = [_documented(fault) for fault in answer.get("errors", [])]
+            faults = answer.get("errors", [])
             found.setdefault(answer["type"].rsplit("/", 1)[-1], faults)
     return found
-
-
-def _documented(fault: Schema) -> Schema:
-    left_out = {member for struct, member in LEFT_OUT if struct is FaultyField}
-    return {key: value for key, value in fault.items() if key not in left_out}
 
 
 def _illustrate(schemas: SchemaBook, paths: PathBook) -> None:

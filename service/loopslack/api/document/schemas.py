@@ -10,7 +10,7 @@ from __future__ import annotations
 
 import inspect
 import re
-from collections.abc import Collection, Iterable, Mapping
+from collections.abc import Iterable, Mapping
 from typing import Any, cast
 
 import msgspec
@@ -26,19 +26,16 @@ TAG_MEANING = "Says which kind this is."
 class SchemaBook:
     """All component schemas of a document; `read` adds the structs reachable from the given types.
 
-    A struct's name is the schema's, unless `names` has another. Members `left_out` are told apart by struct and
-    attribute; only an open struct may have one.
+    A struct's name is the schema's, unless `names` has another.
     """
 
     def __init__(
         self,
         vocabulary: Vocabulary,
         names: Mapping[type, str] | None = None,
-        left_out: Collection[tuple[type, str]] = (),
     ) -> None:
         self.vocabulary = vocabulary
         self._names = names or {}
-        self._left_out = left_out
         self.schemas: dict[str, Schema] = {}
         self._owners: dict[str, object] = {}
 
@@ -89,8 +86,6 @@ class SchemaBook:
             }
             required.append(info.tag_field)
         for field in info.fields:
-            if (info.cls, field.name) in self._left_out:
-                continue
             members[field.encode_name] = self._member(info, field)
             if field.required:
                 required.append(field.encode_name)
