@@ -15,12 +15,13 @@ CONFIG = schemathesis.Config.from_path(Path(__file__).parent / "schemathesis.tom
 CONFIG.projects.default.phases.coverage.enabled = False  # thousands of cases, for the long run
 schema = schemathesis.openapi.from_dict(strict(json.loads(DOCUMENT.read_bytes())), config=CONFIG)
 SERVICE = create_app(SETTINGS)
-SERVICE.readiness.loaded = True
 
 
 async def standing(scope: Any, receive: Any, send: Any) -> None:
     """The service without start and stop, which the fuzzer would ask for anew with every question."""
     if scope["type"] != "lifespan":
+        # The process has one readiness, which other tests that start and stop a service leave as stopping.
+        SERVICE.readiness.loaded, SERVICE.readiness.draining = True, False
         await SERVICE(scope, receive, send)
         return
     while True:
