@@ -111,28 +111,39 @@ def main(name: str, port: int) -> None:
         expect(path, fetched(port, path)[0], 200)
     status, document = fetched(port, "/v1/openapi.json")
     expect("serves the committed document", document == Path("openapi/v1.json").read_bytes(), True)
-    for question, answer in examples("designLoop"):
+    for question, answer, shortened in examples("designLoop"):
         status, body = fetched(port, "/v1/loop-design", question.read_bytes())
         expect(question.name, status, 200)
         told, committed = json.loads(body)["result"], json.loads(answer.read_bytes())["result"]
-        expect(f"{question.name} as on the developer's machine", told == committed, True)
+        same = begins_as(told, committed) if shortened else told == committed
+        expect(f"{question.name} as on the developer's machine", same, True)
     status, body = fetched(port, "/v1/loop-design", b'{"fluid": NaN}')
     expect("a body that is no JSON", status, 400)
     memory = podman("stats", "--no-stream", "--format", "{{.MemUsage}}", name).strip()
     sys.stdout.write(f"memory in use: {memory}\n")
 
 
-def examples(operation: str) -> list[tuple[Path, Path]]:
-    """The committed questions of an operation with their answers."""
+def examples(operation: str) -> list[tuple[Path, Path, bool]]:
+    """The committed questions of an operation with their answers, and whether an answer's lists are cut short."""
     folder = Path("openapi/examples")
     return [
         (
             folder / operation / f"{entry['name']}.question.json",
             folder / operation / f"{entry['name']}.answer.json",
+            entry.get("shortened", False),
         )
         for entry in json.loads((folder / "index.json").read_text())
         if entry["operation"] == operation and entry.get("status", 200) == 200
     ]
+
+
+def begins_as(told: Any, shown: Any) -> bool:
+    """Whether an answer is the shown one but for lists that go on."""
+    if isinstance(told, dict) and isinstance(shown, dict):
+        return told.keys() == shown.keys() and all(begins_as(told[key], shown[key]) for key in told)
+    if isinstance(told, list) and isinstance(shown, list):
+        return len(told) >= len(shown) and all(map(begins_as, told, shown))
+    return bool(told == shown)
 
 
 if __name__ == "__main__":
