@@ -85,7 +85,7 @@ class StagnationState(AnswerPart, frozen=True, kw_only=True):
     """The loop at rest in full sun, under the base case or a doubt."""
 
     scenario: Annotated[ScenarioId, text("Base case or doubt.", "base")]
-    verdict: Annotated[CheckVerdict, text("Whether every check of it holds.", "holds")]
+    verdict: Annotated[CheckVerdict, text("Whether every check that decides holds in it.", "holds")]
     regime: Annotated[Regime, text("What the loop does.", "steam")]
     vessel_pressure: Annotated[
         q.Pressure | None, text("Pressure at the vessel. Absent when its membrane is full.")

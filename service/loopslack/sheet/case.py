@@ -6,7 +6,7 @@ geometry only: where a drawing puts a part. Names of parts that a caller did not
 
 from functools import cached_property
 
-from loopslack.calc.model import Branch, CollectorGroup, Loop
+from loopslack.calc.model import CollectorGroup, Loop, run_name
 from loopslack.contract.answers import LoopDesignAnswer
 from loopslack.contract.answers_common import Check
 from loopslack.contract.answers_loop import LiquidState, StagnationState, SteamReach, VesselResult
@@ -140,14 +140,18 @@ class Case:
         free = list(range(len(self.loop.branches)))
         found = []
         for reach in state.reach:
-            run = next((k for k in free if self._is(self.loop.branches[k], reach)), None)
+            run = next((k for k in free if self._is(k, reach)), None)
             if run is not None:
                 free.remove(run)
                 found.append((run, reach))
         return sorted(found, key=lambda pair: pair[0])
 
-    def _is(self, branch: Branch, reach: SteamReach) -> bool:
-        return branch.name == reach.pipe_run and self.write.length(branch.length).value == reach.length.value
+    def _is(self, index: int, reach: SteamReach) -> bool:
+        branch = self.loop.branches[index]
+        return (
+            run_name(branch, index) == reach.pipe_run
+            and self.write.length(branch.length).value == reach.length.value
+        )
 
     def groups_by_height(self) -> list[tuple[int, CollectorGroup]]:
         """The collector groups from the highest down."""
