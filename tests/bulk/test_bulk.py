@@ -132,7 +132,7 @@ def alive(process):
 
 @pytest.mark.parametrize("sent", [signal.SIGINT, signal.SIGTERM])
 def test_a_run_that_is_told_to_end_says_how_to_go_on(tmp_path, sent):
-    source = questions(tmp_path, 200)
+    source = questions(tmp_path, 1000)
     target = tmp_path / "out"
     first = start(source, target, "--processes", 2, "--quiet")
     deadline = time.monotonic() + 60

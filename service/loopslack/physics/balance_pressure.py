@@ -170,8 +170,9 @@ def volume_residual(first: Volume, second: Volume) -> Volume:
 @equation(
     "mixed-vessel-temperature",
     law=(
-        "T = ((V_f + min(V_l - V_f, V_k)) * T_v + min(max(V_l - V_f - V_k, 0), V_r) * T_r "
-        "+ max(V_l - V_f - V_k - V_r, 0) * T_h) / V_l if V_l > V_f else T_v"
+        "T = ((max(V_f, 0) + min(V_l - max(V_f, 0), V_k)) * T_v "
+        "+ min(max(V_l - max(V_f, 0) - V_k, 0), V_r) * T_r "
+        "+ max(V_l - max(V_f, 0) - V_k - V_r, 0) * T_h) / V_l if V_l > max(V_f, 0) else T_v"
     ),
     symbols={
         "V_f": "filled",
@@ -197,8 +198,10 @@ def mixed_vessel_temperature(
 ) -> Temperature:
     """Temperature, K, of the liquid in the vessel, of which a part was there when the loop was filled.
 
-    Errs on the hot side, which is safe for the membrane.
+    Errs on the hot side, which is safe for the membrane. A loop that was short of liquid (``filled`` below 0) had
+    none in the vessel.
     """
+    filled = Volume(max(filled, 0))
     if held <= filled:
         return room_temperature
     arrived = held - filled
@@ -211,7 +214,7 @@ def mixed_vessel_temperature(
 
 @equation(
     "last-arriving-temperature",
-    law="T = T_v if V_l - V_f <= V_k else T_r if V_l - V_f <= V_k + V_r else T_h",
+    law="T = T_v if V_l - max(V_f, 0) <= V_k else T_r if V_l - max(V_f, 0) <= V_k + V_r else T_h",
     symbols={
         "V_f": "filled",
         "V_l": "held",
@@ -235,7 +238,7 @@ def last_arriving_temperature(
     hot_temperature: Temperature,
 ) -> Temperature:
     """Temperature, K, of the liquid that came into the vessel last."""
-    arrived = held - filled
+    arrived = held - max(filled, 0)
     if arrived <= vessel_side:
         return room_temperature
     return return_temperature if arrived <= vessel_side + return_pipes else hot_temperature

@@ -1,47 +1,14 @@
-"""How long a sheet takes beyond its design, in time of the processor: other work on the machine does not count."""
+"""Pages set one after another leave nothing behind."""
 
 import os
-import time
 import tracemalloc
-from collections.abc import Callable
 from pathlib import Path
 
-import pytest
 from msgspec.structs import replace
 
 from loopslack.sheet.pdf import pdf
 from loopslack.sheet.rendering import render_html
-from sheet.sheets import NAMES, asked, sheet
-
-HTML_SECONDS = 0.030
-PDF_SECONDS = 0.400
-
-
-def least(of: Callable[[], object], times: int = 5) -> float:
-    def once() -> float:
-        began = time.process_time()
-        of()
-        return time.process_time() - began
-
-    return min(once() for _ in range(times))
-
-
-@pytest.mark.parametrize("name", NAMES)
-def test_a_page_takes_thirty_milliseconds_at_most(name: str) -> None:
-    question, answer = asked(name)
-    assert least(lambda: render_html(answer, question)) <= HTML_SECONDS
-
-
-@pytest.mark.parametrize("name", NAMES)
-def test_a_pdf_takes_four_hundred_milliseconds_at_most_once_warm(name: str) -> None:
-    """Each time another sheet: the typesetter remembers what it has set, and would give the same one in a tenth."""
-    number = iter(range(1000))
-
-    def another() -> bytes:
-        return pdf(replace(sheet(name), foot=f"{sheet(name).foot} {next(number)}"))
-
-    another()
-    assert least(another, 4) <= PDF_SECONDS
+from sheet.sheets import asked, sheet
 
 
 def resident() -> int:
