@@ -44,6 +44,10 @@ run_pytest() {
     rm -f "$report"
     python -m pytest --junit-xml="$report" "$@"
     pytest_status=$?
+    [ -s "$report" ] || {
+        say "" "pytest ended without a report, with exit code $pytest_status."
+        return 1
+    }
     python tests/count.py "$report" >.cache/reports/counts || return 1
     read -r more_passed more_failed more_skipped <.cache/reports/counts
     passed=$((passed + more_passed))
