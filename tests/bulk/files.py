@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import json
 import os
+import signal
 import subprocess
 import sys
 from pathlib import Path
@@ -49,7 +50,12 @@ def run(*words: Any, module: str = "loopslack.bulk", **more: Any) -> subprocess.
 
 def start(*words: Any) -> subprocess.Popen[bytes]:
     """Start a run that a test will end."""
-    return subprocess.Popen(command(*words), env=environment(), stderr=subprocess.PIPE)
+    # A suite that runs in the background of a shell ignores the interrupt, and its children would inherit that.
+    before = signal.signal(signal.SIGINT, signal.default_int_handler)
+    try:
+        return subprocess.Popen(command(*words), env=environment(), stderr=subprocess.PIPE)
+    finally:
+        signal.signal(signal.SIGINT, before)
 
 
 def answers(path: Path) -> list[dict[str, Any]]:
