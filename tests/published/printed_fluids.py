@@ -1,7 +1,7 @@
 """The printed laws of the fluids in forty-digit decimals, written apart from the service's code.
 
 Run as a program it writes ``fluid_digits.toml``; do so only when a coefficient is meant to change, and say so
-in the change log. The tests compare that file with both this transcription and the code.
+in the change log. The tests compare that file with both these laws and the code.
 """
 
 import tomllib

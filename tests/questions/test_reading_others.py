@@ -51,9 +51,9 @@ def test_contents_come_part_by_part():
             ("collectors", "wash house roof"): 13.6,
             ("flow", "flow"): 11.29,
             ("return", "return"): 11.29,
-            ("station", ""): 6.4,
-            ("vessel-line", ""): 0.5,
-            ("cooling-vessel", ""): 20.0,
+            ("station", "station"): 6.4,
+            ("vessel-line", "vessel line"): 0.5,
+            ("cooling-vessel", "cooling vessel"): 20.0,
         },
         abs=1e-3,
     )

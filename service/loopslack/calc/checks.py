@@ -9,7 +9,7 @@ from math import isfinite
 from loopslack.calc.analysis import Analysis, SteamCase
 from loopslack.calc.equilibrium import ROUNDING, Equilibrium
 from loopslack.calc.judgement import Check, CheckCode, CheckVerdict
-from loopslack.calc.model import Part, Relief, run_name
+from loopslack.calc.model import Part, Relief
 from loopslack.calc.states import LiquidState
 from loopslack.calc.window import Bounds, Window, cut_off_pressure
 from loopslack.kernel import kinds
@@ -88,8 +88,9 @@ def steam_reach(state: str, case: SteamCase, found: Equilibrium, at_station: Che
     if not spare:
         return None
     _, reach, branch = min(spare, key=lambda row: row[0])
-    name = run_name(branch, next(k for k, run in enumerate(case.balance.loop.branches) if run is branch))
-    check = compare("steam-reach", state, kinds.LENGTH, reach, branch.length, at_most=True, subject=name)
+    check = compare(
+        "steam-reach", state, kinds.LENGTH, reach, branch.length, at_most=True, subject=branch.name
+    )
     if at_station == "does-not-hold":
         return check._replace(core=False, verdict=at_station, at_least=True)
     return check._replace(core=False)

@@ -83,11 +83,6 @@ class Branch(Struct, frozen=True, kw_only=True):
         return sum(segment.length * segment.area for segment in self.segments)
 
 
-def run_name(branch: Branch, index: int) -> str:
-    """What to call a pipe run by its place among all runs."""
-    return branch.name or f"{branch.role} run {index + 1}"
-
-
 class Part(Struct, frozen=True, kw_only=True):
     """A part whose rating matters: ``rated_pressure`` is gauge (Pa) or None when nobody stated it."""
 

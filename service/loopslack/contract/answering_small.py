@@ -23,8 +23,7 @@ def compute_loop_volume(question: questions.LoopVolumeQuestion) -> answers.LoopV
     """Answer a loop volume question."""
     reading = read_contents(question)
     held = [
-        Held(_KINDS[part.part], part.name or part.part, part.content, part.pointer, part.pieces)
-        for part in reading.parts
+        Held(_KINDS[part.part], part.name, part.content, part.pointer, part.pieces) for part in reading.parts
     ]
     return answers.LoopVolumeAnswer(
         result=answers.LoopVolumeResult(content=content(held, writer(reading.system), reading.assumed)),

@@ -23,7 +23,14 @@ _REASON = "Steam power counts per aperture area"
 
 
 def read_group(
-    reader: Reader, group: asked.CollectorGroup, place: str, *, sun: Sun, static_height: float, space: int
+    reader: Reader,
+    group: asked.CollectorGroup,
+    place: str,
+    *,
+    name: str,
+    sun: Sun,
+    static_height: float,
+    space: int,
 ) -> CollectorGroup:
     """Read one group; all figures come out for the whole group on the aperture."""
     areas = read_areas(reader, group, place)
@@ -32,7 +39,7 @@ def read_group(
     emptying, power, worse = read_steam_power(reader, group, place)
     height = reader.optional(group.height, _HEIGHT, place)
     return CollectorGroup(
-        name=group.id or "",
+        name=name,
         count=group.count,
         aperture=group.count * aperture,
         content=group.count * read_content(reader, group, place, aperture),

@@ -7,6 +7,7 @@ from loopslack.calc.model import Branch, CollectorGroup, Sun
 from loopslack.contract import questions as asked
 from loopslack.contract import questions_collectors as asked_collectors
 from loopslack.contract.fields import field_of
+from loopslack.contract.part_names import group_names, run_names
 from loopslack.contract.questions_pipes import PipeRun
 from loopslack.contract.reader import Reader
 from loopslack.contract.reading_collectors import read_group
@@ -37,11 +38,14 @@ def read_groups(
             reader,
             group,
             f"/collectors/{k}",
+            name=name,
             sun=sun,
             static_height=static,
             space=spaces.get(group.steam_space, 0),
         )
-        for k, group in enumerate(question.collectors)
+        for k, (group, name) in enumerate(
+            zip(question.collectors, group_names(question.collectors), strict=True)
+        )
     )
     heights = [group.height for group in groups]
     all_stated = all(group.height is not None for group in question.collectors)
@@ -63,10 +67,10 @@ def read_branches(
         stated.steam_space: group.space for stated, group in zip(question.collectors, groups, strict=True)
     }
     branches = []
-    for k, run in enumerate(question.pipe_runs):
+    for k, (run, name) in enumerate(zip(question.pipe_runs, run_names(question.pipe_runs), strict=True)):
         space = labels.get(run.steam_space, 0)
         start = max((group.height for group in groups if group.space == space), default=ends.static)
-        around = Run(start, ends.station, ends.outdoor_air, ends.hottest, space)
+        around = Run(start, ends.station, ends.outdoor_air, ends.hottest, space, name)
         branches.append(read_run(reader, run, f"/pipeRuns/{k}", around))
         end = branches[-1].segments[-1].end_height
         if question.station and question.station.height and abs(end - ends.station) > _SAME_HEIGHT:

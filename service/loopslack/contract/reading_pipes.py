@@ -40,6 +40,7 @@ class Run(NamedTuple):
     outdoor_air: float
     hottest: float
     space: int
+    name: str
 
 
 class _Tube(NamedTuple):
@@ -65,7 +66,7 @@ def read_run(reader: Reader, run: asked.PipeRun, place: str, around: Run) -> Bra
         segments.append(_segment(reader, segment, here, length=length, start=start, end=end, around=around))
         start = end
     return Branch(
-        name=run.id or "",
+        name=around.name,
         role=run.role,
         access=_access(access),
         segments=tuple(segments),

@@ -7,6 +7,7 @@ from loopslack.calc.fluids_base import Fluid
 from loopslack.calc.model import ConstructionFault, Part, PumpSide, Relief, Station
 from loopslack.contract import questions_plant as asked
 from loopslack.contract.fields import field_of
+from loopslack.contract.part_names import group_names
 from loopslack.contract.questions import LoopQuestion
 from loopslack.contract.questions_collectors import CollectorGroup
 from loopslack.contract.reader import Reader
@@ -167,10 +168,10 @@ def read_parts(
     A rating that is not stated makes the answer provisional; none is assumed.
     """
     groups, found = question.collectors, []
-    for k, (group, height) in enumerate(zip(groups, heights, strict=True)):
+    for k, (group, name, height) in enumerate(zip(groups, group_names(groups), heights, strict=True)):
         found.append(
             Part(
-                name=group.id or ("collectors" if len(groups) == 1 else f"collectors {k + 1}"),
+                name=name,
                 height=height,
                 rated_pressure=reader.optional_gauge(group.rated_pressure, _GROUP_RATING, f"/collectors/{k}"),
                 pointer=f"/collectors/{k}/ratedPressure",

@@ -5,6 +5,7 @@ from typing import NamedTuple
 from loopslack.calc.fluids_base import Fluid
 from loopslack.contract import questions as asked
 from loopslack.contract.fields import field_of
+from loopslack.contract.part_names import group_names, run_names
 from loopslack.contract.questions_vessels import CoolingVesselGiven
 from loopslack.contract.reader import Assumed, Reader
 from loopslack.contract.reading_collectors import read_areas
@@ -62,27 +63,31 @@ def read_contents(question: asked.LoopVolumeQuestion) -> ContentReading:
     """Read the contents of a loop part by part; raises ``Refusals``, or the only refusal."""
     reader = Reader()
     parts, aperture = [], 0.0
-    for k, group in enumerate(question.collectors):
+    for k, (group, name) in enumerate(
+        zip(question.collectors, group_names(question.collectors), strict=True)
+    ):
         place = f"/collectors/{k}"
         area = read_areas(reader, group, place)["aperture"]
         aperture += group.count * area
         one = collector_content(reader, group, place, area)
-        parts.append(HeldBy("collectors", group.id or "", f"{place}/content", group.count * one, group.count))
-    for k, run in enumerate(question.pipe_runs):
+        parts.append(HeldBy("collectors", name, f"{place}/content", group.count * one, group.count))
+    for k, (run, name) in enumerate(zip(question.pipe_runs, run_names(question.pipe_runs), strict=True)):
         place = f"/pipeRuns/{k}"
         held = [
             segment_content(reader, segment, f"{place}/segments/{j}")
             for j, segment in enumerate(run.segments)
         ]
-        parts.append(HeldBy(run.role, run.id or "", place, sum(held)))
+        parts.append(HeldBy(run.role, name, place, sum(held)))
     parts.append(
-        HeldBy("station", "", "/station/content", station_content(reader, question.station, aperture))
+        HeldBy("station", "station", "/station/content", station_content(reader, question.station, aperture))
     )
-    parts.append(HeldBy("vessel-line", "", "/vesselLine/content", read_line(reader, question.vessel_line)))
+    parts.append(
+        HeldBy("vessel-line", "vessel line", "/vesselLine/content", read_line(reader, question.vessel_line))
+    )
     cooling = question.cooling_vessel
     if isinstance(cooling, CoolingVesselGiven):
         content = reader.si(cooling.content, _COOLING, "/coolingVessel")
-        parts.append(HeldBy("cooling-vessel", "", "/coolingVessel/content", content))
+        parts.append(HeldBy("cooling-vessel", "cooling vessel", "/coolingVessel/content", content))
     reader.finish()
     return ContentReading(tuple(parts), tuple(reader.assumed), question.units or "metric")
 

@@ -12,7 +12,7 @@ from loopslack.calc.equilibrium import Equilibrium
 from loopslack.calc.fit import Fit
 from loopslack.calc.judgement import Check as CheckResult
 from loopslack.calc.judgement import Judgement, StateResult
-from loopslack.calc.model import Loop, Vessel, run_name
+from loopslack.calc.model import Loop, Vessel
 from loopslack.calc.scenarios import DOUBT_IDS, Scenario
 from loopslack.calc.window import Window
 from loopslack.contract import answers_loop as out
@@ -160,11 +160,8 @@ def _stagnation(
 ) -> out.StagnationState:
     spaces = analysis.case(scenario).balance.spaces
     extent = result.extent
-    names = {id(branch): run_name(branch, k) for k, branch in enumerate(analysis.loop.branches)}
     reach = [
-        out.SteamReach(
-            pipe_run=names[id(branch)], reach=write.length(length), length=write.length(branch.length)
-        )
+        out.SteamReach(pipe_run=branch.name, reach=write.length(length), length=write.length(branch.length))
         for space, steam in zip(spaces, extent.spaces, strict=True)
         for branch, length in zip(space.path.branches, space.path.reach(steam.place), strict=True)
     ]

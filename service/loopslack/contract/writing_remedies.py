@@ -177,7 +177,7 @@ class RemedyWriter:
     def _runs(self, found: Found) -> str:
         pipe = {"bare-pipe", "extra-pipe", "steam-access"}
         places = [change.place for change in found.changes if change.id in pipe]
-        names = [self.loop.branches[k].name or f"pipe run {k + 1}" for k in places]
+        names = [self.loop.branches[k].name for k in places]
         return " and ".join(dict.fromkeys(names))
 
     def _parts(self, found: Found) -> str:

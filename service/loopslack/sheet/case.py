@@ -6,7 +6,7 @@ geometry only: where a drawing puts a part. Names of parts that a caller did not
 
 from functools import cached_property
 
-from loopslack.calc.model import CollectorGroup, Loop, run_name
+from loopslack.calc.model import CollectorGroup, Loop
 from loopslack.contract.answers import LoopDesignAnswer
 from loopslack.contract.answers_common import Check
 from loopslack.contract.answers_loop import LiquidState, StagnationState, SteamReach, VesselResult
@@ -148,10 +148,7 @@ class Case:
 
     def _is(self, index: int, reach: SteamReach) -> bool:
         branch = self.loop.branches[index]
-        return (
-            run_name(branch, index) == reach.pipe_run
-            and self.write.length(branch.length).value == reach.length.value
-        )
+        return branch.name == reach.pipe_run and self.write.length(branch.length).value == reach.length.value
 
     def groups_by_height(self) -> list[tuple[int, CollectorGroup]]:
         """The collector groups from the highest down."""

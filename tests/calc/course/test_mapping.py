@@ -1,7 +1,7 @@
 """How a full loop becomes a lumped one: what is averaged, what is added, what is refused, and that it is said."""
 
 import pytest
-from msgspec.structs import replace
+from msgspec.structs import fields, replace
 
 from calc import reference
 from calc.course.cases import ATMOSPHERE, BAR, case, charge, course
@@ -10,6 +10,7 @@ from loopslack.calc.course.lumped import HOT_START, Start
 from loopslack.calc.course.mapping import mapped
 from loopslack.calc.fluid import BoilsLike, glycol, own_fluid, water
 from loopslack.calc.model import Relief, Station
+from loopslack.contract.questions_existing import StagnationCourseQuestion
 from loopslack.kernel.errors import NotApplicable
 
 WATERLIKE = [(273.15 + t, 1050 - 0.6 * t) for t in (-20, 20, 60, 100, 150, 200)]
@@ -28,6 +29,8 @@ def refused(**changes) -> NotApplicable:
         case(loop=reference.loop(**changes))
     assert error.value.code == "course-not-applicable"
     assert error.value.remedy
+    member = error.value.pointer.strip("/").split("/")[0]
+    assert not member or member in {field.encode_name for field in fields(StagnationCourseQuestion)}
     return error.value
 
 

@@ -23,7 +23,7 @@ def lumped_pipe(loop: Loop, notes: list[Assumption]) -> LumpedPipe:
         raise not_applicable(
             "No branch is open to steam, so the steam of the collectors has no pipe to condense in.",
             remedy="State a branch that steam can enter, or use the stagnation check.",
-            pointer="/pipes",
+            pointer="/pipeRuns",
         )
     path = SteamPath(branches, max(group.height for group in loop.groups))
     if not path.falling:
@@ -31,7 +31,7 @@ def lumped_pipe(loop: Loop, notes: list[Assumption]) -> LumpedPipe:
             "A pipe rises on its way from the collectors; liquid then stands in the crest and the course, "
             "which lets one front sink, does not describe it.",
             remedy="Use the stagnation check, or build and state the run without the crest.",
-            pointer="/pipes",
+            pointer="/pipeRuns",
         )
     unknown = [branch.name for branch in branches if branch.access == "unknown"]
     if unknown:

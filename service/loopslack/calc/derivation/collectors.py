@@ -38,7 +38,7 @@ class CollectorSteps:
         book = self.book
         place = f"/collectors/{number}"
         ground = self.ground.collectors.get(number) or CollectorGround(aperture=f"{place}/area")
-        name = group.name or ("the collectors" if len(self.loop.groups) == 1 else f"collectors {number + 1}")
+        name = group.name
         count = book.leaf(float(group.count), kinds.RATIO, "how many collectors", f"{place}/count")
         one = book.leaf(group.aperture / group.count, kinds.AREA, "aperture of one", ground.aperture)
         aperture = book.step(balance_steam.area_of_equal, f"aperture of {name}", pieces=count, area=one)

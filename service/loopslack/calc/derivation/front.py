@@ -9,7 +9,6 @@ from loopslack.calc.balance import is_open
 from loopslack.calc.derivation.book import System
 from loopslack.calc.derivation.frame import Frame
 from loopslack.calc.derivation.parts import SegmentValues
-from loopslack.calc.model import run_name
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.steam import Steam, SteamSpace
 from loopslack.kernel import kinds
@@ -162,7 +161,7 @@ class FrontSteps:
         return self.book.sum(balance.length_sum, f"length of {self._name(index)}", lengths)
 
     def _name(self, index: int) -> str:
-        return run_name(self.frame.loop.branches[index], index)
+        return self.frame.loop.branches[index].name
 
     def _end_pointer(self) -> str:
         """The member that says where the runs end: that of their last stretch, else the station's height."""

@@ -11,7 +11,7 @@ from loopslack.calc.derivation.collectors import CollectorSteps, GroupValues
 from loopslack.calc.derivation.fluid import FluidSteps
 from loopslack.calc.derivation.ground import Ground, TubeGround
 from loopslack.calc.derivation.leaves import Leaves
-from loopslack.calc.model import Branch, Loop, Segment, run_name
+from loopslack.calc.model import Branch, Loop, Segment
 from loopslack.kernel import kinds
 from loopslack.kernel.value import Value
 from loopslack.physics import balance, geometry, heat_loss
@@ -62,9 +62,7 @@ class Parts:
         runs = self.runs
         self.book.chapter = "content"
         return [
-            self.book.sum(
-                balance.content_sum, f"content of {run_name(branch, k)}", [s.content for s in runs[k]]
-            )
+            self.book.sum(balance.content_sum, f"content of {branch.name}", [s.content for s in runs[k]])
             for k, branch in enumerate(self.loop.branches)
         ]
 
@@ -137,7 +135,7 @@ class Parts:
     def _segment(self, branch: Branch, index: int, k: int, segment: Segment) -> SegmentValues:
         book = self.book
         place = f"/pipeRuns/{index}/segments/{k}"
-        name = run_name(branch, index)
+        name = branch.name
         if len(branch.segments) > 1:
             name = f"stretch {k + 1} of {name}"
         length = book.leaf(segment.length, kinds.LENGTH, f"length of {name}", f"{place}/length")

@@ -1,7 +1,5 @@
 """Names of states, parts and members of the question, and the words of verdicts, as every section uses them."""
 
-import re
-
 from loopslack.contract.answers_common import Assumption, Check, SourceNote
 from loopslack.sheet.case import JOINT, Case
 from loopslack.sheet.lines import Mark
@@ -9,14 +7,11 @@ from loopslack.sheet.words import plain
 
 _PART_SUBJECTS = {
     "expansion vessel": "part.vessel",
-    "collectors": "part.collectors",
     "station": "part.station",
     "cooling vessel": "part.cooling-vessel",
     "automatic-make-up": "part.automatic-make-up",
     "galvanised-parts": "part.galvanised-parts",
 }
-_NUMBERED = re.compile(r"collectors (\d+)\Z")
-_RUN = re.compile(r"(?:flow|return) run (\d+)\Z")
 
 
 def state_name(case: Case, scenario: str) -> str:
@@ -30,12 +25,12 @@ def subject_name(case: Case, subject: str) -> str:
     """A part that a check or an advisory is about."""
     if subject in _PART_SUBJECTS:
         return case.words(_PART_SUBJECTS[subject])
-    numbered = _NUMBERED.match(subject)
-    if numbered:
-        return f"{case.words('part.collectors')} {numbered[1]}"
-    run = _RUN.match(subject)
-    if run and int(run[1]) <= len(case.design.pipe_runs):
-        return case.run_name(int(run[1]) - 1)
+    for index, group in enumerate(case.loop.groups):
+        if group.name == subject:
+            return case.group_name(index)
+    for index, branch in enumerate(case.loop.branches):
+        if branch.name == subject:
+            return case.run_name(index)
     if subject.startswith("/"):
         return member_name(case, subject)
     return plain(subject)
