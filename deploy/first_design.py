@@ -274,5 +274,5 @@ def told(quantity: Answer) -> str:
 
 
 if __name__ == "__main__":
-    sys.stdout.reconfigure(errors="replace")  # type: ignore[union-attr]
+    sys.stdout.reconfigure(errors="replace")  # type: ignore[union-attr]  # it is a stream of text
     sys.exit(main())

@@ -134,7 +134,7 @@ def _judge(asked: argparse.Namespace, question: type[Any], answer: Callable[[Any
 def _sheet(asked: argparse.Namespace) -> int:
     """Set a design as a page to print. FILE is the question of a sheet, or of the design alone."""
     # A tenth of a second that no other command needs to wait for.
-    from loopslack.sheet import rendering  # noqa: PLC0415
+    from loopslack.sheet import rendering  # noqa: PLC0415 - see above
 
     body = _read(asked.question)
     if asked.form == "figure":

@@ -144,7 +144,7 @@ def metrics_page() -> tuple[bytes, str]:
     registry = REGISTRY
     if os.environ.get("PROMETHEUS_MULTIPROC_DIR"):
         registry = CollectorRegistry()
-        multiprocess.MultiProcessCollector(registry)  # type: ignore[no-untyped-call]
+        multiprocess.MultiProcessCollector(registry)  # type: ignore[no-untyped-call]  # the library has no types here
     return generate_latest(registry), CONTENT_TYPE_LATEST
 
 

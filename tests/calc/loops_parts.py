@@ -45,12 +45,16 @@ def _group(random: Random, name: str, wanted: float, height: float, sun: Sun, sp
         emptying = random.choice(("good", "fair", "fair", "poor"))
         if flat:
             efficiency, linear, quadratic = (
-                random.uniform(0.70, 0.82), random.uniform(3.0, 4.5), random.uniform(0.008, 0.018)
-            )  # fmt: skip
+                random.uniform(0.70, 0.82),
+                random.uniform(3.0, 4.5),
+                random.uniform(0.008, 0.018),
+            )
         else:
             efficiency, linear, quadratic = (
-                random.uniform(0.60, 0.75), random.uniform(0.8, 1.8), random.uniform(0.003, 0.009)
-            )  # fmt: skip
+                random.uniform(0.60, 0.75),
+                random.uniform(0.8, 1.8),
+                random.uniform(0.003, 0.009),
+            )
     power = powers[emptying]
     worse = {"good": powers["fair"], "fair": powers["poor"]}.get(emptying)
     if random.random() < 0.05:

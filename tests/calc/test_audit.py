@@ -80,10 +80,19 @@ def test_a_loop_filled_as_recorded_reads_as_recorded_at_any_temperature(celsius:
     assert found.shown.missing == pytest.approx(0.0, abs=1e-12)
     assert found.shown.lost == 0.0
     assert found.shown.held.mass == pytest.approx(MASS, rel=1e-11)
-    assert found.verdict == check(
-        replace(LOOP, precharge=replace(LOOP.precharge, kind="stated", pressure=GAS.precharge, temperature=FIFTEEN)),
-        VESSEL, 1, "single", mass=MASS,
-    ).judgement.verdict  # fmt: skip
+    assert (
+        found.verdict
+        == check(
+            replace(
+                LOOP,
+                precharge=replace(LOOP.precharge, kind="stated", pressure=GAS.precharge, temperature=FIFTEEN),
+            ),
+            VESSEL,
+            1,
+            "single",
+            mass=MASS,
+        ).judgement.verdict
+    )
 
 
 @pytest.mark.parametrize(("litres", "celsius"), product([0.5, 3, 8, -1, -6], [5, 15, 18, 40]))
@@ -186,12 +195,15 @@ def test_the_worked_example() -> None:
     """
     loop = reference.loop()
     found = audit(
-        loop, replace(VESSEL, nominal_volume=0.1), 1, "single",
+        loop,
+        replace(VESSEL, nominal_volume=0.1),
+        1,
+        "single",
         Found(
             Point(1.8 * BAR + ATMOSPHERE, FIFTEEN),
             record=Record(1.5 * BAR + ATMOSPHERE, 2.0 * BAR + ATMOSPHERE, FIFTEEN),
         ),
-    )  # fmt: skip
+    )
     liquid, gas = found.explanations
     assert found.difference == pytest.approx(-0.2 * BAR)
     assert liquid.state.held.liquid / LITRE == pytest.approx(10.6638, abs=5e-5)
@@ -235,10 +247,15 @@ def test_a_vessel_too_small_is_told_by_how_much() -> None:
     small = replace(VESSEL, nominal_volume=0.03)
     gas = GAS._replace(nominal=0.03)
     found = audit(
-        LOOP, small, 1, "single",
-        Found(Point(shown_by_gauge(LOOP, gas, filled_mass(LOOP, gas, FILL), EIGHTEEN), EIGHTEEN),
-              Point(GAS.precharge, FIFTEEN)),
-    )  # fmt: skip
+        LOOP,
+        small,
+        1,
+        "single",
+        Found(
+            Point(shown_by_gauge(LOOP, gas, filled_mass(LOOP, gas, FILL), EIGHTEEN), EIGHTEEN),
+            Point(GAS.precharge, FIFTEEN),
+        ),
+    )
     assert found.verdict == "does-not-hold"
     assert not found.target.holds
     smallest = found.target.smallest
@@ -285,9 +302,12 @@ def test_random_loops_come_back_from_their_gauges(seed: int) -> None:
     gauge = Point(pressure - column(analysis, temperature), temperature)
     try:
         found = audit(
-            loop, vessel, 1, "single",
+            loop,
+            vessel,
+            1,
+            "single",
             Found(gauge, Point(now.precharge, now.temperature), record(loop, set_up, fill)),
-        )  # fmt: skip
+        )
     except CalculationError:
         return
     density = loop.fluid.density(loop.temperatures.fill)

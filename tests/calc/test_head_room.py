@@ -108,8 +108,10 @@ def test_a_loop_without_pipes_has_no_head_room_of_pipe() -> None:
     assert found is not None
     rooms = head_room(Filled(found.analysis, found.gas, found.mass, analysis.singles, LIMIT))
     assert [room.id for room in rooms] == [
-        "stagnation-temperature", "precharge-loss", "precharge-loss-topped-up"
-    ]  # fmt: skip
+        "stagnation-temperature",
+        "precharge-loss",
+        "precharge-loss-topped-up",
+    ]
 
 
 def test_a_state_whose_properties_are_unknown_does_not_pass() -> None:

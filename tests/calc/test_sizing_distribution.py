@@ -117,11 +117,14 @@ STOCK = (
     Vessel(id="short membrane", nominal_volume=0.2, acceptance_volume=0.03, rated_pressure=10 * BAR),
     Vessel(id="weak", nominal_volume=0.2, rated_pressure=1.5 * BAR),
     Vessel(
-        id="overcharged", nominal_volume=0.3, delivered_precharge=4.5 * BAR, precharge_adjustable=False,
+        id="overcharged",
+        nominal_volume=0.3,
+        delivered_precharge=4.5 * BAR,
+        precharge_adjustable=False,
         rated_pressure=10 * BAR,
     ),
     Vessel(id="cool membrane", nominal_volume=0.2, membrane_limit=273.15 + 45, rated_pressure=10 * BAR),
-)  # fmt: skip
+)
 CHANGES = {
     "nominal-volume": lambda vessel, short: replace(vessel, nominal_volume=vessel.nominal_volume + short),
     "acceptance-volume": lambda vessel, short: replace(

@@ -397,9 +397,15 @@ def changes() -> list[Change]:
         ),
     ]
     part = _with(
-        parts=[{"name": "valve set", "height": q(5, "m"), "ratedPressure": q(10, "barg"),
-                "highestTemperature": q(150, "degC")}]
-    )  # fmt: skip
+        parts=[
+            {
+                "name": "valve set",
+                "height": q(5, "m"),
+                "ratedPressure": q(10, "barg"),
+                "highestTemperature": q(150, "degC"),
+            }
+        ]
+    )
     found += [
         (part, "/parts/0/name", "manifold"),
         (part, "/parts/0/height", q(6, "m")),

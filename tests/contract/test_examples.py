@@ -24,7 +24,7 @@ def test_an_example_is_answered_as_documented(key: tuple[str, str]) -> None:
 
 @pytest.mark.parametrize("operation", OPERATIONS, ids=lambda operation: operation.operation_id)
 def test_every_operation_has_an_example(operation: object) -> None:
-    assert BOOK.of(operation.operation_id, 200)  # type: ignore[attr-defined]
+    assert BOOK.of(operation.operation_id, 200)
 
 
 def test_every_example_belongs_to_an_operation_and_every_file_to_an_example() -> None:

@@ -42,7 +42,7 @@ def server(tmp_path: Path) -> Iterator[Server]:
 
 def designs(server: Server, corpus: Corpus, **settings: bool | int) -> Target:
     """Designs of the corpus, whose answers are compared."""
-    return Target(server.port, bodies=corpus.bodies, right=corpus.right, **settings)  # type: ignore[arg-type]
+    return Target(server.port, bodies=corpus.bodies, right=corpus.right, **settings)
 
 
 def under_load(

@@ -23,7 +23,7 @@ BY_BODY = {body.encode(): answer for body, answer in zip(BODIES, ANSWERS, strict
 
 
 @post("/v1/loop-design", status_code=200)
-async def answer_from_memory(request: Request) -> Response[bytes]:  # type: ignore[type-arg]
+async def answer_from_memory(request: Request) -> Response[bytes]:
     """Decode the question, encode the answer that it once got."""
     body = await request.body()
     DECODER.decode(body)

@@ -188,4 +188,4 @@ class Case:
 
     def but(self, **changes: object) -> Case:
         """The same loop with some fields changed."""
-        return replace(self, **changes)  # type: ignore[arg-type]
+        return replace(self, **changes)

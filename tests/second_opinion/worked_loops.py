@@ -49,7 +49,7 @@ def _pipe(length: float, outer: float, wall: float, insulation: float = 20.0, **
         bore=(outer - 2.0 * wall) * MM,
         outer=outer * MM,
         insulation=insulation * MM,
-        **more,  # type: ignore[arg-type]
+        **more,
     )
 
 
@@ -84,7 +84,7 @@ def _ski_hut() -> Case:
         glycol_mass_fraction=0.50,
         site_minimum=celsius(-30.0),
         sun=1100.0,
-        **_settings(1.2, 1.6, 6.0, air),  # type: ignore[arg-type]
+        **_settings(1.2, 1.6, 6.0, air),
     )
 
 
@@ -101,16 +101,22 @@ def _two_roofs() -> Case:
         station_content=9.0 * LITRE,
         vessel_line_content=0.6 * LITRE,
         vessel=250.0 * LITRE,
-        **_settings(1.9, 2.3, 6.0),  # type: ignore[arg-type]
+        **_settings(1.9, 2.3, 6.0),
     )
 
 
 def _mixed_field() -> Case:
     """Three unlike groups on one header, one of them with a measured stagnation temperature."""
     measured = Group(
-        area=8.0, eta0=0.76, a1=4.2, a2=0.016, class_power=50.0, content=6.0 * LITRE, height=9.0,
+        area=8.0,
+        eta0=0.76,
+        a1=4.2,
+        a2=0.016,
+        class_power=50.0,
+        content=6.0 * LITRE,
+        height=9.0,
         measured_stagnation=celsius(171.0),
-    )  # fmt: skip
+    )
     return Case(
         groups=[_flat(14.0, 120.0, 9.0, 9.0), measured, _evacuated(6.0, 100.0, 2.5, 9.0)],
         branches=[
@@ -122,7 +128,7 @@ def _mixed_field() -> Case:
         station_content=6.0 * LITRE,
         vessel=110.0 * LITRE,
         allowance=0.005,
-        **_settings(1.4, 1.8, 6.0),  # type: ignore[arg-type]
+        **_settings(1.4, 1.8, 6.0),
     )
 
 
@@ -133,7 +139,7 @@ def _vessel_in_the_attic() -> Case:
         branches=[Branch(segments=[_pipe(16.0, 22.0, 1.0)], role=role) for role in ("flow", "return")],
         station_content=3.0 * LITRE,
         vessel=35.0 * LITRE,
-        **_settings(0.7, 1.1, 6.0),  # type: ignore[arg-type]
+        **_settings(0.7, 1.1, 6.0),
     )
 
 
@@ -155,7 +161,7 @@ def _tower_block() -> Case:
         cooling_vessel_content=60.0 * LITRE,
         vessel=500.0 * LITRE,
         gas="mixed",
-        **_settings(4.4, 4.8, 10.0),  # type: ignore[arg-type]
+        **_settings(4.4, 4.8, 10.0),
     )
 
 
@@ -174,7 +180,7 @@ def _district_field() -> Case:
         vessel=8.0,
         glycol_mass_fraction=0.38,
         gas="mixed",
-        **_settings(1.2, 1.6, 6.0),  # type: ignore[arg-type]
+        **_settings(1.2, 1.6, 6.0),
     )
 
 
@@ -216,7 +222,7 @@ def _desert_laundry() -> Case:
         fluid="water",
         glycol_mass_fraction=0.0,
         site_minimum=_fahrenheit(41.0),
-    )  # fmt: skip
+    )
 
 
 def _trap_under_the_floor() -> Case:
@@ -238,7 +244,7 @@ def _trap_under_the_floor() -> Case:
         fluid="PG",
         glycol_mass_fraction=0.30,
         site_minimum=celsius(-8.0),
-        **_settings(0.9, 1.3, 6.0),  # type: ignore[arg-type]
+        **_settings(0.9, 1.3, 6.0),
     )
 
 

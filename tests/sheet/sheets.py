@@ -43,7 +43,7 @@ def html(name: str) -> str:
 
 def case(name: str, language: str = "") -> Case:
     question, answer = asked(name)
-    return Case(answer, question.design, language or question.language or "en")  # type: ignore[arg-type]
+    return Case(answer, question.design, language or question.language or "en")
 
 
 def blocks(of: Sheet) -> list[Block]:

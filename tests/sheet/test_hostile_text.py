@@ -88,7 +88,7 @@ def test_a_hostile_name_stays_a_name_in_every_figure(text: str) -> None:
     question = asked_with(text)
     answer = design_loop(question.design)
     for figure in ("loop-schematic", "steam-reach", "pressure-over-liquid"):
-        drawn = render_figure(answer, FigureQuestion(design=question.design, figure=figure)).decode()  # type: ignore[arg-type]
+        drawn = render_figure(answer, FigureQuestion(design=question.design, figure=figure)).decode()
         tags = [tag for tag, _ in read(drawn).seen]
         plain = asked_with("plain")
         other = FIGURES[figure]
@@ -96,7 +96,7 @@ def test_a_hostile_name_stays_a_name_in_every_figure(text: str) -> None:
         assert set(tags) <= {"svg", "title", "desc", "style", "line", "path", "rect", "circle", "text"}
         same = render_figure(
             design_loop(plain.design), FigureQuestion(design=plain.design, figure=figure)
-        ).decode()  # type: ignore[arg-type]
+        ).decode()
         assert tags == [tag for tag, _ in read(same).seen]
 
 

@@ -60,7 +60,7 @@ def texts(of: Sheet) -> str:
 @pytest.mark.parametrize("name", NAMES)
 def test_every_number_that_matters_stands_on_the_sheet_as_answered(name: str) -> None:
     answer = msgspec.json.decode(msgspec.json.encode(asked(name).answer))
-    say, shown = numerals(sheet(name).language), texts(sheet(name))  # type: ignore[arg-type]
+    say, shown = numerals(sheet(name).language), texts(sheet(name))
     missing = [
         (path, say(quantity))
         for start in WHOLE

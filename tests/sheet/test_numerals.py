@@ -11,7 +11,7 @@ EN, DE = numerals("en"), numerals("de")
 
 
 def q(value: float, unit: str) -> AnyQuantity:
-    return AnyQuantity(value=value, unit=unit)  # type: ignore[arg-type]
+    return AnyQuantity(value=value, unit=unit)
 
 
 @pytest.mark.parametrize(

@@ -100,7 +100,7 @@ def test_every_figure_the_contract_names_is_drawn_and_no_other() -> None:
 
 @pytest.mark.parametrize("row", [*defaults().values(), *choices().values()], ids=lambda row: row.why[:40])
 def test_every_reason_for_a_default_is_told_in_german(row: object) -> None:
-    why: str = row.why  # type: ignore[attr-defined]
+    why: str = row.why
     told = DE.phrase(why)
     assert told != EN.phrase(why)
     for part in ("The ", " the ", " is ", " are ", " of "):

@@ -170,9 +170,16 @@ def protected(analysis: Analysis, part: Part) -> Check:
     needed = pressure_to_withstand(analysis, loop.relief, part.height)
     if part.rated_pressure is None:
         return Check(
-            "part-rating", False, "fill", "not-assessed", kinds.GAUGE_PRESSURE, None, needed,
-            subject=part.name, reason="rating-not-stated",
-        )  # fmt: skip
+            "part-rating",
+            False,
+            "fill",
+            "not-assessed",
+            kinds.GAUGE_PRESSURE,
+            None,
+            needed,
+            subject=part.name,
+            reason="rating-not-stated",
+        )
     return compare(
         "part-protected",
         "fill",
@@ -204,9 +211,14 @@ def part_temperatures(analysis: Analysis) -> Iterator[Check]:
     for part in analysis.loop.parts:
         if part.highest_temperature is not None:
             yield compare(
-                "part-temperature", "cut-off", kinds.TEMPERATURE, hottest, part.highest_temperature,
-                at_most=True, subject=part.name,
-            )  # fmt: skip
+                "part-temperature",
+                "cut-off",
+                kinds.TEMPERATURE,
+                hottest,
+                part.highest_temperature,
+                at_most=True,
+                subject=part.name,
+            )
 
 
 def suction(analysis: Analysis, pressure: float | None) -> Check:
@@ -219,9 +231,15 @@ def suction(analysis: Analysis, pressure: float | None) -> Check:
         )
     if pressure is None:
         return Check(
-            "net-positive-suction", False, "cut-off", "does-not-hold", DIFFERENCE, None, needed,
+            "net-positive-suction",
+            False,
+            "cut-off",
+            "does-not-hold",
+            DIFFERENCE,
+            None,
+            needed,
             reason="vessel-empty",
-        )  # fmt: skip
+        )
     density = analysis.fluid.density(loop.temperatures.back)
     inlet = pressure - density * GRAVITY * loop.pump_height
     if loop.pump_side == "discharge":

@@ -8,6 +8,7 @@ from loopslack.contract import questions_vessels as asked
 from loopslack.contract.fields import Field, field_of
 from loopslack.contract.quantity import Pressure
 from loopslack.contract.reader import Reader
+from loopslack.kernel.kinds import Length
 from loopslack.kernel.units import GAUGE_UNITS
 from loopslack.physics.atmosphere import atmospheric_pressure
 
@@ -20,7 +21,7 @@ _MEMBRANE = field_of(asked.StockVessel, "membrane_limit")
 _FILL = field_of(asked.GivenVessel, "fill_pressure")
 _COOLING = field_of(asked.CoolingVesselGiven, "content")
 
-_SEA_LEVEL = atmospheric_pressure(0.0)  # type: ignore[arg-type]
+_SEA_LEVEL = atmospheric_pressure(Length(0.0))
 
 Cooling = Literal["given", "none", "size"]
 

@@ -37,7 +37,7 @@ def any_quantity(si: float, kind: Kind, system: System) -> AnyQuantity:
     number = (si - offset) / scale
     if offset and abs(number) < _NOISE_OF_OFFSET:
         number = 0.0
-    return AnyQuantity(value=six_digits(number), unit=unit)  # type: ignore[arg-type]
+    return AnyQuantity(value=six_digits(number), unit=unit)  # type: ignore[arg-type]  # the table of units is closed
 
 
 def optional_quantity(si: float | None, kind: Kind, system: System) -> AnyQuantity | None:

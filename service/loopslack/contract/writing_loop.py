@@ -220,7 +220,7 @@ def doubts(loop: Loop, judgement: Judgement) -> list[out.Doubt]:
         "closed-branch": "Pipe runs whose check valve nobody placed are closed to steam.",
     }
     return [
-        out.Doubt(id=id, verdict=judgement.doubts[id], meaning=meanings[id])  # type: ignore[arg-type]
+        out.Doubt(id=id, verdict=judgement.doubts[id], meaning=meanings[id])  # type: ignore[arg-type]  # as above
         for id in DOUBT_IDS
     ]
 

@@ -144,9 +144,17 @@ class Canvas:
         self._parts.append(f'<path class="ls-{kind}" d="M{steps}{end}"{_stroke(weight, dash)}/>')
 
     def box(
-        self, left: float, top: float, width: float, height: float, kind: str = "paper", *, weight: float = 1.0,
-        radius: float = 0.0, dash: str = "",
-    ) -> None:  # fmt: skip
+        self,
+        left: float,
+        top: float,
+        width: float,
+        height: float,
+        kind: str = "paper",
+        *,
+        weight: float = 1.0,
+        radius: float = 0.0,
+        dash: str = "",
+    ) -> None:
         """A rectangle."""
         rounded = f' rx="{_c(radius)}"' if radius else ""
         self._parts.append(
@@ -162,9 +170,16 @@ class Canvas:
         )
 
     def text(
-        self, place: Point, text: str, anchor: Anchor = "start", *, kind: str = "t", size: float = LETTER,
-        bold: bool = False, upright: bool = True,
-    ) -> None:  # fmt: skip
+        self,
+        place: Point,
+        text: str,
+        anchor: Anchor = "start",
+        *,
+        kind: str = "t",
+        size: float = LETTER,
+        bold: bool = False,
+        upright: bool = True,
+    ) -> None:
         """A line of lettering on its base line."""
         x, y = place
         turned = "" if upright else f' transform="rotate(-90 {_c(x)} {_c(y)})"'

@@ -177,10 +177,19 @@ def test_the_code_for_water_holds_from_170_to_230_fahrenheit(celsius: float, app
 @pytest.mark.parametrize(
     ("celsius", "percent"),
     [
-        (30, 0.66), (40, 0.93), (50, 1.29), (60, 1.71), (70, 2.22), (80, 2.81), (90, 3.47), (100, 4.21), (110, 5.03),
-        (120, 5.93), (130, 6.90),
+        (30, 0.66),
+        (40, 0.93),
+        (50, 1.29),
+        (60, 1.71),
+        (70, 2.22),
+        (80, 2.81),
+        (90, 3.47),
+        (100, 4.21),
+        (110, 5.03),
+        (120, 5.93),
+        (130, 6.90),
     ],
-)  # fmt: skip
+)
 def test_en_12828_expands_water_as_its_table_does(celsius: float, percent: float) -> None:
     """EN 12828 Annex D table (from memory); the polynomial was read in Raccolta R, 4.21 % at 100 degC."""
     result = run_rule("en-12828", Analysis(water_loop(celsius)), check=False)[0]
@@ -227,8 +236,11 @@ def test_pipes_at_the_collectors_height_count_for_one_guide_and_those_above_for_
     half = run("half", "return", 6.0, start_height=13.0, end_height=9.0)
     area = level.segments[0].area
     for branches, above, at_or_above in (
-        ((level,), 0.0, 4.0), ((crest,), 3.0, 3.0), ((half,), 3.0, 3.0), ((level, crest, half), 6.0, 10.0)
-    ):  # fmt: skip
+        ((level,), 0.0, 4.0),
+        ((crest,), 3.0, 3.0),
+        ((half,), 3.0, 3.0),
+        ((level, crest, half), 6.0, 10.0),
+    ):
         plan = loop(branches=branches)
         assert pipes_above_collectors(plan, level=False) == pytest.approx(above * area)
         assert pipes_above_collectors(plan, level=True) == pytest.approx(at_or_above * area)

@@ -53,19 +53,25 @@ _FIELDS: tuple[tuple[str, tuple[Field, ...]], ...] = (
             Field("count", "Number of collectors", ("/collectors/0/count",), lowest=1),
             Field("area", "Area of one", ("/collectors/0/area/value",)),
             Field("type", "Build", ("/collectors/0/type",), words=(("", "CollectorType"),)),
-            Field("emptying", "How well they empty in stagnation", ("/collectors/0/emptyingClass",),
-                  words=(("not stated", "EmptyingClass"),)),
+            Field(
+                "emptying",
+                "How well they empty in stagnation",
+                ("/collectors/0/emptyingClass",),
+                words=(("not stated", "EmptyingClass"),),
+            ),
         ),
     ),
     (
         "Pipes and answer",
         (
             Field("length", "Length of pipe, each way", tuple(f"{leg}/length/value" for leg in _LEGS)),
-            Field("tube", "Copper tube", tuple(f"{leg}/tube/size" for leg in _LEGS), words=(("", "en-1057"),)),
+            Field(
+                "tube", "Copper tube", tuple(f"{leg}/tube/size" for leg in _LEGS), words=(("", "en-1057"),)
+            ),
             Field("units", "Units of the answer", ("/units",), words=(("not stated: metric", "UnitSystem"),)),
         ),
     ),
-)  # fmt: skip
+)
 
 
 def try_page(contract: Contract) -> Page:

@@ -117,7 +117,7 @@ def _tagged(case: Case, found: Struct) -> str:
     for field in fields_of(type(found)):
         value = getattr(found, field.name)
         if isinstance(value, Quantity):
-            numbers.append(case.say.stated(value))  # type: ignore[arg-type]
+            numbers.append(case.say.stated(value))  # type: ignore[arg-type]  # as above
         elif isinstance(value, str):
             numbers.append(word_name(case, value))
     return " · ".join([word_name(case, tag), *numbers])

@@ -91,9 +91,11 @@ def _vessel(case: Case) -> list[Fact]:
     if vessel is None:
         return [Fact(words("part.vessel"), "\N{EN DASH}")]
     size = f"{vessel.pieces} \N{MULTIPLICATION SIGN} {say(vessel.nominal_volume)}"
-    rating = words("fact.unrated") if vessel.rated_pressure is None else words(
-        "fact.rated", pressure=say(vessel.rated_pressure)
-    )  # fmt: skip
+    rating = (
+        words("fact.unrated")
+        if vessel.rated_pressure is None
+        else words("fact.rated", pressure=say(vessel.rated_pressure))
+    )
     name = "part.vessel" if case.chosen else "part.vessel-nearest"
     found = [Fact(words(name), size, f"{article(case, vessel.id)} · {rating}", large=True)]
     if vessel.cooling_vessel is not None:

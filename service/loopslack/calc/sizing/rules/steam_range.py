@@ -94,7 +94,7 @@ def vessel(
 def _run(basis: Basis) -> tuple[Answer, ...]:
     return (
         _answer(basis, "", lambda group: group.steam_power),
-        _answer(basis, "printed-steam-power", lambda group: PRINTED_POWER),  # noqa: ARG005
+        _answer(basis, "printed-steam-power", lambda _: PRINTED_POWER),
     )
 
 
