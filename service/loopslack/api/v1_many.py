@@ -32,7 +32,7 @@ MANY_OPERATIONS: tuple[Operation[Any, Any], ...] = (
     Operation(
         operation_id="streamLoopDesigns",
         path="/v1/loop-design/stream",
-        tag="bulk",
+        tag="Bulk",
         summary="Design loops line by line",
         description=(
             "For tens of thousands of designs: one JSON object a line, in and out (`application/x-ndjson`). The first "

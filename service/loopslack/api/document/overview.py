@@ -64,7 +64,7 @@ TAGS: dict[str, str] = {
     "Design": "The whole job, for one loop or for many.",
     "Parts": "Content and expansion by themselves.",
     "Check": "A given vessel: in stagnation, over a day without flow, years after it was filled.",
-    "bulk": "Designs as a stream of lines, for programs that read and write lines.",
+    "Bulk": "Designs as a stream of lines, for programs that read and write lines.",
     "Sheet": "A design as a page to print and sign.",
     "Reference": "Tables the service works with. They change only with its version, so keep them.",
     "Service": "The service about itself, for those who run it.",

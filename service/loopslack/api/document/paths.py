@@ -107,7 +107,10 @@ class PathBook:
         }
         if shown:
             body["examples"] = shown
-        carried = ("ServerTiming", "NoStore") if operation.method == "POST" else ("EntityTag", "Cacheable")
+        carried: tuple[str, ...] = ("EntityTag", "Cacheable")
+        if operation.method == "POST":
+            # An answer that is sent while it is computed goes out before its time is known.
+            carried = ("NoStore",) if operation.respond else ("ServerTiming", "NoStore")
         answer: Schema = {
             "description": "The answer.",
             "headers": header_references("RequestId", *carried),
