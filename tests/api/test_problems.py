@@ -115,4 +115,4 @@ def test_an_operation_knows_the_problems_it_can_give():
 def test_no_message_of_ours_is_lost_to_a_character_json_must_escape(client):
     refused = client.post("/v1/double", content=b'{"\\u0000\\"":1}', headers=JSON)
     assert refused.status_code == 422
-    assert json.loads(refused.content)["errors"][-1]["code"] == "unknown-field"
+    assert json.loads(refused.content)["errors"][0]["code"] == "unknown-field"

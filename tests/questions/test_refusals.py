@@ -195,7 +195,7 @@ def test_a_stock_list_is_read_in_si():
         price={"amount": 210, "currency": "EUR"},
     )
     (vessel,) = read_choice(reader, stock(listed)).vessels
-    reader.finish()
+    assert not reader.refused
     assert (vessel.id, vessel.nominal_volume, vessel.acceptance_volume) == ("a", 0.08, 0.054)
     assert (vessel.rated_pressure, vessel.delivered_precharge) == (pytest.approx(1e6), pytest.approx(1.5e5))
     assert (vessel.precharge_adjustable, vessel.price, vessel.currency) == (False, 210.0, "EUR")

@@ -16,11 +16,11 @@ from loopslack.contract import writing_design as write_design
 from loopslack.contract import writing_loop as write_loop
 from loopslack.contract import writing_sizing as write_sizing
 from loopslack.contract.advice import Advisor
-from loopslack.contract.reader import Reader
-from loopslack.contract.reading import Reading, read_loop
+from loopslack.contract.reading import Reading
 from loopslack.contract.reading_existing import CheckReading, read_check
-from loopslack.contract.reading_tolerances import Tolerances, read_tolerances
-from loopslack.contract.reading_vessels import Choice, read_choice
+from loopslack.contract.reading_sizing import read_sizing
+from loopslack.contract.reading_tolerances import Tolerances
+from loopslack.contract.reading_vessels import Choice
 from loopslack.contract.writing_changes import Asked
 from loopslack.contract.writing_common import CAUTIONS, assumptions, provenance
 from loopslack.library.vessels import preferred_vessels
@@ -45,11 +45,7 @@ class Designed(NamedTuple):
 
 def designed(question: questions.SizingQuestion) -> Designed:
     """Read a question about sizing or design and design the loop."""
-    reader = Reader()
-    reading = read_loop(question, reader)
-    choice = read_choice(reader, question.vessel)
-    tolerances = read_tolerances(reader, question.tolerances)
-    reader.finish()
+    reading, choice, tolerances = read_sizing(question)
     request = Request(
         candidates(choice),
         question.vessels_in_parallel or 1,
@@ -153,18 +149,14 @@ class CheckedVessel(NamedTuple):
     asked: CheckReading
     found: Checked
     pieces: int
-    tolerances: Tolerances
 
 
 def checked(question: questions.StagnationCheckQuestion) -> CheckedVessel:
     """Read a question about a vessel that is there and judge it."""
     asked = read_check(question)
-    reader = Reader(asked.reading.loop.atmosphere)
-    tolerances = read_tolerances(reader, question.tolerances)
-    reader.finish()
     reading, pieces = asked.reading, question.vessels_in_parallel or 1
     found = check(reading.loop, asked.vessel, pieces, reading.policy, fill_pressure=asked.fill_pressure)
-    return CheckedVessel(asked, found, pieces, tolerances)
+    return CheckedVessel(asked, found, pieces)
 
 
 def check_stagnation(question: questions.StagnationCheckQuestion) -> answers.StagnationCheckAnswer:
@@ -190,7 +182,7 @@ def _check_answer(
     pressure = write_loop.Pressures(write, reading.loop.atmosphere)
     result = answers.StagnationCheckResult(
         **extras.judged(reading, found.fitted, found.judgement),
-        band=extras.tolerance_band(reading, found.fitted, found.fill_pressure, asked.tolerances),
+        band=extras.tolerance_band(reading, found.fitted, found.fill_pressure, asked.asked.tolerances),
         vessel=write_loop.vessel(found.fitted, write),
         precharge=pressure(found.fitted.gas.precharge),
         fill_pressure=pressure.optional(found.fill_pressure),

@@ -1,20 +1,22 @@
 """Reads single members of a question into SI and keeps the books of what was assumed and refused.
 
-A refusal does not stop the reading, so that a caller sees every fault at once; ``finish`` raises them together. A
-number that was refused is replaced by the nearest permitted one only to read on, never to be computed with.
+A refusal does not stop the reading, so that a caller sees every fault at once. What was refused is replaced only to
+read on, never to be computed with; which of the refusals rest on such a stand-in is found in ``reading_again``.
 """
 
 from collections.abc import Mapping
 from functools import lru_cache
-from typing import NamedTuple, NoReturn, Protocol
+from typing import NamedTuple, Protocol, TypeVar
 
 from loopslack.contract.fields import Field
 from loopslack.contract.quantity import Pressure
 from loopslack.kernel.citations import DERIVED, Cite
-from loopslack.kernel.errors import CalculationError, Contradiction, Missing, OutOfRange, Refusals
+from loopslack.kernel.errors import CalculationError, Contradiction, Missing, OutOfRange
 from loopslack.kernel.kinds import Kind
 from loopslack.kernel.units import GAUGE_UNITS
 from loopslack.library.defaults import choice, default
+
+T = TypeVar("T")
 
 
 class Stated(Protocol):
@@ -52,13 +54,16 @@ class Provisional(NamedTuple):
 class Reader:
     """One reading of one question.
 
-    ``atmosphere`` is the site's, Pa absolute; it must be set before pressures are read.
+    ``atmosphere`` is the site's, Pa absolute; it must be set before pressures are read. ``turn`` numbers the readings
+    of one question: in each, other numbers stand in for what is refused. ``is_certain`` says that none had to.
     """
 
-    __slots__ = ("assumed", "atmosphere", "provisional", "refused")
+    __slots__ = ("assumed", "atmosphere", "is_certain", "provisional", "refused", "turn")
 
-    def __init__(self, atmosphere: float = 101325.0) -> None:
+    def __init__(self, atmosphere: float = 101325.0, *, turn: int = 0) -> None:
         self.atmosphere = atmosphere
+        self.turn = turn
+        self.is_certain = True
         self.assumed: list[Assumed] = []
         self.provisional: list[Provisional] = []
         self.refused: list[CalculationError] = []
@@ -148,15 +153,16 @@ class Reader:
         """Note that a number is needed that was not stated and has no default."""
         self.refused.append(Missing(message, remedy=remedy, pointer=pointer))
 
-    def finish(self) -> None:
-        """Raise what was refused, if anything: one refusal as it is, several together."""
-        if self.refused:
-            self._raise()
+    def stand_in(self, *options: T) -> T:
+        """What to read on with in place of something that was refused: another in each turn."""
+        self.is_certain = False
+        return options[self.turn % len(options)]
 
-    def _raise(self) -> NoReturn:
-        if len(self.refused) == 1:
-            raise self.refused[0]
-        raise Refusals(self.refused)
+    def take_over(self, other: "Reader", within: str) -> None:
+        """Note what another reader refused of the object at a place."""
+        self.is_certain = self.is_certain and other.is_certain
+        for error in other.refused:
+            self.refuse(error, within + error.pointer)
 
     def _out_of_range(self, stated: Stated, field: Field, place: str, number: float, datum: float) -> float:
         unit = stated.unit
@@ -172,7 +178,8 @@ class Reader:
                 facts={"value": value, "low": low, "high": high, "unit": unit},
             )
         )
-        return field.low if not number > field.low else field.high
+        near, far = (field.high, field.low) if number > field.low else (field.low, field.high)
+        return self.stand_in(near, far, (near + far) / 2)
 
 
 def _remedy(field: Field, unit: str) -> str:

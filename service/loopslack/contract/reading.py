@@ -18,6 +18,7 @@ from loopslack.contract.questions_plant import Site
 from loopslack.contract.questions_vessels import CoolingVessel, CoolingVesselGiven
 from loopslack.contract.questions_vessels import Precharge as AskedPrecharge
 from loopslack.contract.reader import Assumed, Provisional, Reader
+from loopslack.contract.reading_again import refusing
 from loopslack.contract.reading_fluid import read_fluid
 from loopslack.contract.reading_heat import read_sun
 from loopslack.contract.reading_layout import Ends, read_branches, read_groups, read_top
@@ -84,13 +85,9 @@ class Reading(Struct, frozen=True, kw_only=True):
         return writer(self.system)
 
 
-def read_loop(question: asked.LoopQuestion, reader: Reader | None = None) -> Reading:
-    """Read a question about a loop; raises ``Refusals``, or the only refusal, when it cannot be read.
-
-    With a ``reader`` the caller reads on and calls its ``finish``; nothing is raised here then.
-    """
-    own = reader is None
-    reader = reader or Reader()
+@refusing
+def read_loop(question: asked.LoopQuestion, reader: Reader) -> Reading:
+    """Read a question about a loop."""
     loop, cooling = _loop(reader, question)
     policy = question.doubt_policy or _policy(reader)
     accept = bool(question.accept_without_boiling)
@@ -100,8 +97,6 @@ def read_loop(question: asked.LoopQuestion, reader: Reader | None = None) -> Rea
             "A loop is accepted without boiling only where every group states a measured stagnation temperature.",
             "State measuredStagnation for every group, or leave this member out.",
         )
-    if own:
-        reader.finish()
     return Reading(
         loop=loop,
         cooling=cooling,

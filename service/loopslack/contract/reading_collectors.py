@@ -73,7 +73,7 @@ def read_areas(reader: Reader, group: asked.CollectorGroup, place: str) -> dict[
     if group.aperture_area is None and group.gross_area is None and group.absorber_area is None:
         if group.area_basis != "aperture":
             no_area(reader, "aperture", f"{place}/apertureArea", _REASON)
-            areas["aperture"] = area
+            areas["aperture"] = reader.stand_in(area, 0.9 * area)
         return areas
     stated = {"aperture": group.aperture_area, "gross": group.gross_area, "absorber": group.absorber_area}
     for basis, quantity in stated.items():
@@ -89,7 +89,7 @@ def read_areas(reader: Reader, group: asked.CollectorGroup, place: str) -> dict[
         areas.setdefault(basis, number)
     if "aperture" not in areas:
         no_area(reader, "aperture", f"{place}/apertureArea", _REASON)
-        areas["aperture"] = area
+        areas["aperture"] = reader.stand_in(area, 0.9 * area)
     if areas.get("gross", areas["aperture"]) < areas["aperture"] * (1 - _SAME_AREA):
         reader.contradiction(
             f"{place}/grossArea",

@@ -10,6 +10,8 @@ from loopslack.contract.fields import field_of
 from loopslack.contract.questions import StagnationCheckQuestion
 from loopslack.contract.reader import Reader
 from loopslack.contract.reading import Reading, read_loop
+from loopslack.contract.reading_again import refusing
+from loopslack.contract.reading_tolerances import Tolerances, read_tolerances
 from loopslack.contract.reading_vessels import read_fill, read_vessel
 from loopslack.kernel import kinds
 from loopslack.kernel.errors import CalculationError
@@ -47,6 +49,7 @@ class CheckReading(NamedTuple):
     reading: Reading
     vessel: Vessel
     fill_pressure: float | None
+    tolerances: Tolerances
 
 
 class CourseReading(NamedTuple):
@@ -86,21 +89,25 @@ class AuditReading(NamedTuple):
     commissioned: Commissioned | None
 
 
-def read_check(question: StagnationCheckQuestion) -> CheckReading:
-    """Read a stagnation check; raises ``Refusals``, or the only refusal."""
-    reader = Reader()
-    found = _check(reader, question)
-    reader.finish()
-    return found
+@refusing
+def read_check(question: StagnationCheckQuestion, reader: Reader) -> CheckReading:
+    """Read a stagnation check."""
+    reading = read_loop(question, reader)
+    return CheckReading(
+        reading,
+        read_vessel(reader, question.vessel, "/vessel", question.vessel.id or "given"),
+        read_fill(reader, question.fill_pressure, _FILL, ""),
+        read_tolerances(reader, question.tolerances),
+    )
 
 
-def read_course(question: asked.StagnationCourseQuestion) -> CourseReading:
-    """Read a day without flow; raises ``Refusals``, or the only refusal."""
-    reader = Reader()
-    check = _check(reader, question)
+@refusing
+def read_course(question: asked.StagnationCourseQuestion, reader: Reader) -> CourseReading:
+    """Read a day without flow."""
+    check = read_check(question, reader)
     weather = _weather(reader, question.weather, check.reading.loop.sun)
     interval = _MINUTE if question.interval is None else reader.si(question.interval, _INTERVAL, "")
-    found = CourseReading(
+    return CourseReading(
         check,
         weather,
         _start(reader, question.start),
@@ -109,13 +116,11 @@ def read_course(question: asked.StagnationCourseQuestion) -> CourseReading:
         reader.optional(question.reflux_share, _REFLUX, ""),
         question.gas == "follows-liquid",
     )
-    reader.finish()
-    return found
 
 
-def read_audit(question: asked.VesselAuditQuestion) -> AuditReading:
-    """Read an audit; raises ``Refusals``, or the only refusal. Pressures are read on site, so gauge ones."""
-    reader = Reader()
+@refusing
+def read_audit(question: asked.VesselAuditQuestion, reader: Reader) -> AuditReading:
+    """Read an audit. Pressures are read on site, so gauge ones."""
     reading = read_loop(question, reader)
     vessel = read_vessel(reader, question.vessel, "/vessel", question.vessel.id or "given")
     shown, place = question.gauge_reading, "/gaugeReading"
@@ -129,21 +134,13 @@ def read_audit(question: asked.VesselAuditQuestion) -> AuditReading:
             f"At {gauge.temperature - 273.15:.4g} degC the fluid is partly ice; the gauge then tells nothing.",
             "Read the gauge again on a warmer day.",
         )
-    found = AuditReading(
+    return AuditReading(
         reading,
         vessel,
         gauge,
         _measured(reader, question.measured_precharge),
         _commissioned(reader, question.commissioning, reading),
     )
-    reader.finish()
-    return found
-
-
-def _check(reader: Reader, question: StagnationCheckQuestion) -> CheckReading:
-    reading = read_loop(question, reader)
-    vessel = read_vessel(reader, question.vessel, "/vessel", question.vessel.id or "given")
-    return CheckReading(reading, vessel, read_fill(reader, question.fill_pressure, _FILL, ""))
 
 
 def _weather(reader: Reader, weather: asked.Weather | None, sun: Sun) -> Weather:
@@ -153,7 +150,7 @@ def _weather(reader: Reader, weather: asked.Weather | None, sun: Sun) -> Weather
         return _clear_day(reader, weather or _CLEAR, sun)
     except CalculationError as error:
         reader.refuse(error, "/weather")
-        return ClearSky()
+        return reader.stand_in(ClearSky())
 
 
 def _clear_day(reader: Reader, day: asked.ClearDay, sun: Sun) -> ClearSky:

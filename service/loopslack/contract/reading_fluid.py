@@ -31,7 +31,7 @@ _LIKE_SHARE = field_of(asked.BoilingLike, "share")
 
 
 def read_fluid(reader: Reader, fluid: asked.Fluid, place: str) -> Fluid:
-    """Make the fluid. Water stands in while reading on after a refusal."""
+    """Make the fluid; another one stands in for one that is refused."""
     try:
         if isinstance(fluid, asked.PropyleneGlycol):
             return _glycol(reader, "propylene-glycol", fluid.concentration, f"{place}/concentration")
@@ -41,7 +41,12 @@ def read_fluid(reader: Reader, fluid: asked.Fluid, place: str) -> Fluid:
             return _own(reader, fluid, place)
     except CalculationError as error:
         reader.refuse(error, place)
+        return _any_fluid(reader)
     return water()
+
+
+def _any_fluid(reader: Reader) -> Fluid:
+    return reader.stand_in(water(), glycol("propylene-glycol", 0.4))
 
 
 def _glycol(reader: Reader, kind: GlycolKind, strength: asked.Concentration, place: str) -> Fluid:
@@ -79,7 +84,7 @@ def _own(reader: Reader, fluid: asked.OwnFluid, place: str) -> Fluid:
         _rising(reader, [temperature for temperature, _ in boiling], f"{boils}/points")
     heat = _heat_capacity(reader, fluid, f"{place}/heatCapacity")
     if len(reader.refused) > before:
-        return water()
+        return _any_fluid(reader)
     return own_fluid(points, freezing, boiling, heat_capacity=heat, name=fluid.name)
 
 

@@ -75,13 +75,13 @@ def read_coefficients(
             "Both loss coefficients are 0; such a collector would heat up without end.",
             "State them as the test report gives them.",
         )
-        linear = 1.0
+        linear = reader.stand_in(1.0, 5.0)
     basis = stated.basis
     if basis == "aperture":
         return stated.eta0, linear, quadratic
     if basis not in areas:
         no_area(reader, basis, f"{place}/{basis}Area", f"The coefficients refer to the {basis} area")
-        return stated.eta0, linear, quadratic
+        return reader.stand_in(stated.eta0, 0.9 * stated.eta0), linear, quadratic
     test, aperture = Area(areas[basis]), Area(areas["aperture"])
     efficiency = optical_efficiency_on_area(Ratio(stated.eta0), test, aperture)
     if efficiency > 1:

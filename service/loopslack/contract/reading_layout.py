@@ -12,6 +12,7 @@ from loopslack.contract.questions_pipes import PipeRun
 from loopslack.contract.reader import Reader
 from loopslack.contract.reading_collectors import read_group
 from loopslack.contract.reading_pipes import Run, read_run
+from loopslack.contract.strict.hints import listing, shown
 from loopslack.kernel import kinds
 
 _HIGHEST = field_of(asked.LoopQuestion, "highest_point")
@@ -91,7 +92,7 @@ def read_spaces(
     if None in spaces and len(labels) == 1:
         for k, run in enumerate(runs):
             if run.steam_space is not None:
-                _no_such_space(reader, f"/pipeRuns/{k}/steamSpace", run.steam_space)
+                _no_such_space(reader, f"/pipeRuns/{k}/steamSpace", run.steam_space, ())
         return spaces
     for k, group in enumerate(groups):
         if group.steam_space is None:
@@ -100,7 +101,8 @@ def read_spaces(
         if run.steam_space is None:
             _label_missing(reader, f"/pipeRuns/{k}/steamSpace")
         elif run.steam_space not in spaces:
-            _no_such_space(reader, f"/pipeRuns/{k}/steamSpace", run.steam_space)
+            named = [label for label in labels if label is not None]
+            _no_such_space(reader, f"/pipeRuns/{k}/steamSpace", run.steam_space, named)
     return spaces
 
 
@@ -112,10 +114,11 @@ def _label_missing(reader: Reader, pointer: str) -> None:
     )
 
 
-def _no_such_space(reader: Reader, pointer: str, label: str) -> None:
+def _no_such_space(reader: Reader, pointer: str, label: str, named: Sequence[str]) -> None:
+    others = f"; there are {listing(named)}" if named else ""
     reader.contradiction(
         pointer,
-        f"No collector group belongs to the steam space {label!r}.",
+        f"No collector group belongs to the steam space {shown(label)}{others}.",
         "Use the name that the collectors of this run state as their steamSpace.",
     )
 

@@ -184,7 +184,7 @@ def _standard(reader: Reader, tube: asked.StandardTube, place: str, hottest: flo
     except CalculationError as error:
         member = "standard" if error.code == "unknown-tube-standard" else "size"
         reader.refuse(error, f"{place}/{member}")
-        return _Tube(5e-4, 0.03)
+        return reader.stand_in(_Tube(5e-4, 0.03), _Tube(1e-4, 0.015))
     limit = row.highest_temperature
     if limit is not None and hottest > limit:
         reader.refuse(

@@ -8,6 +8,7 @@ from loopslack.contract.fields import field_of
 from loopslack.contract.part_names import group_names, run_names
 from loopslack.contract.questions_vessels import CoolingVesselGiven
 from loopslack.contract.reader import Assumed, Reader
+from loopslack.contract.reading_again import refusing
 from loopslack.contract.reading_collectors import read_areas
 from loopslack.contract.reading_collectors import read_content as collector_content
 from loopslack.contract.reading_fluid import read_fluid
@@ -59,9 +60,9 @@ class ExpansionReading(NamedTuple):
     system: System
 
 
-def read_contents(question: asked.LoopVolumeQuestion) -> ContentReading:
-    """Read the contents of a loop part by part; raises ``Refusals``, or the only refusal."""
-    reader = Reader()
+@refusing
+def read_contents(question: asked.LoopVolumeQuestion, reader: Reader) -> ContentReading:
+    """Read the contents of a loop part by part."""
     parts, aperture = [], 0.0
     for k, (group, name) in enumerate(
         zip(question.collectors, group_names(question.collectors), strict=True)
@@ -88,17 +89,16 @@ def read_contents(question: asked.LoopVolumeQuestion) -> ContentReading:
     if isinstance(cooling, CoolingVesselGiven):
         content = reader.si(cooling.content, _COOLING, "/coolingVessel")
         parts.append(HeldBy("cooling-vessel", "cooling vessel", "/coolingVessel/content", content))
-    reader.finish()
     return ContentReading(tuple(parts), tuple(reader.assumed), question.units or "metric")
 
 
-def read_expansion(question: asked.ExpansionQuestion) -> ExpansionReading:
-    """Read a question about a fluid; raises ``Refusals``, or the only refusal."""
-    reader = Reader()
+@refusing
+def read_expansion(question: asked.ExpansionQuestion, reader: Reader) -> ExpansionReading:
+    """Read a question about a fluid."""
     altitude = reader.or_default(question.altitude, _ALTITUDE, "", "altitude")
     reader.atmosphere = atmospheric_pressure(Length(altitude))
     pressure = reader.optional_gauge(question.pressure, _PRESSURE, "")
-    found = ExpansionReading(
+    return ExpansionReading(
         read_fluid(reader, question.fluid, "/fluid"),
         reader.si(question.start_temperature, _START, ""),
         reader.si(question.end_temperature, _END, ""),
@@ -108,5 +108,3 @@ def read_expansion(question: asked.ExpansionQuestion) -> ExpansionReading:
         tuple(reader.assumed),
         question.units or "metric",
     )
-    reader.finish()
-    return found

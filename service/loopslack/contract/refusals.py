@@ -57,17 +57,17 @@ def occurrence(request_id: str) -> str:
         return uuid.uuid5(uuid.NAMESPACE_OID, request_id).urn
 
 
-def refusal_of_fields(faults: Sequence[FaultyField], further: int = 0) -> Refused:
-    """The refusal of a question with faulty fields, all of them listed."""
-    count = len(faults) + further
+def refusal_of_fields(faults: Sequence[FaultyField]) -> Refused:
+    """The refusal of a question with faulty fields, all of them counted and the first of them listed."""
+    count = len(faults)
     detail = (
         "1 field of the question is faulty." if count == 1 else f"{count} fields of the question are faulty."
     )
     if count >= MOST_COUNTED:
         detail = f"{count} fields of the question are faulty, and there may be more."
-    if further:
-        detail += f" The first {len(faults)} are listed."
-    return Refused("invalid-field", detail, faults=faults, further=further)
+    if count > MOST_FAULTS:
+        detail += f" The first {MOST_FAULTS} are listed."
+    return Refused("invalid-field", detail, faults=faults)
 
 
 def refusal_of(error: CalculationError) -> Refused:
@@ -75,7 +75,7 @@ def refusal_of(error: CalculationError) -> Refused:
     causes = error.errors if isinstance(error, Refusals) else (error,)
     faults = [fault_of(cause) for cause in causes]
     if all(cause.pointer and cause.code in _OF_ONE_FIELD for cause in causes):
-        return refusal_of_fields(faults[:MOST_FAULTS], max(0, len(faults) - MOST_FAULTS))
+        return refusal_of_fields(faults)
     detail = (
         faults[0].message
         if len(faults) == 1

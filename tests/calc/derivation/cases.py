@@ -328,7 +328,7 @@ def design_case(name: str) -> Case:
 def check_case(name: str) -> Case:
     plain = CHECKS[name]()
     question = msgspec.json.decode(json.dumps(plain), type=questions.StagnationCheckQuestion)
-    reading, vessel, fill = read_check(question)
+    reading, vessel, fill, _ = read_check(question)
     found = check(reading.loop, vessel, question.vessels_in_parallel or 1, reading.policy, fill_pressure=fill)
     book = derive_check(found, ground_of(question, reading))
     return _case(

@@ -62,7 +62,7 @@ def remedies_of_design(question: dict[str, Any]) -> Sought:
     reader = Reader()
     reading = read_loop(asked, reader)
     choice = read_choice(reader, asked.vessel)
-    reader.finish()
+    assert not reader.refused
     case = case_of_design(
         design(
             reading.loop,

@@ -12,7 +12,7 @@ import msgspec
 
 from loopslack.contract.problems import MOST_FAULTS, FaultyField
 from loopslack.contract.refusals import Refused
-from loopslack.contract.strict.faults import escaped
+from loopslack.contract.strict.findings import escaped
 
 LARGE_BODY = 64_000
 """Bytes beyond which a body is read in steps, so that no step holds the event loop for long."""

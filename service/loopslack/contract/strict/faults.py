@@ -1,218 +1,213 @@
 """Finds every faulty field of a question that the strict decoder refused, and says what to do about each.
 
-The decoder stops at the first fault; this module walks the value beside the type and reports them all. It
-runs only after a refusal, so that a good question pays nothing, and it accepts nothing: what it finds no
-fault with is put to the decoder again, whose verdict counts. The rules of single values are in `field_rules`.
+The decoder stops at the first fault; this module walks the value beside the type and reports them all. Where a value is
+faulty it drafts another to stand in, so that the question can then be read: numbers outside their range and members
+that contradict each other are told in the same answer, as far as they do not depend on what stands in
+(`reading_again` says how that is known, and what stays out of reach).
+
+It runs only after a refusal, so that a good question pays nothing, and it accepts nothing: what it finds no
+fault with is put to the decoder again, whose verdict counts. The rules of single values are in `field_rules`, the words
+of a fault in `findings`.
 """
 
 import math
-import re
-from collections.abc import Iterable, Mapping
+from collections.abc import Mapping
 from contextlib import suppress
 from functools import cache
 
 import msgspec
 from msgspec import inspect
 
-from loopslack.contract.problems import MOST_COUNTED, MOST_FAULTS, FaultyField
-from loopslack.contract.refusals import fault_of
-from loopslack.contract.strict.field_rules import Leaf, broken_rules, size, word, wrong_type
-from loopslack.contract.strict.hints import expectation, listing, members_near, shown
-from loopslack.kernel.errors import CalculationError, Refusals
-
-MOST_HINTS = 20
-"""Near misses looked for in one question; a search costs up to a millisecond."""
-
-
-class _EnoughError(Exception):
-    """Ends the walk."""
+from loopslack.contract.order import in_order
+from loopslack.contract.problems import FaultyField
+from loopslack.contract.reading_again import lasting
+from loopslack.contract.readings import Read
+from loopslack.contract.strict import drafts
+from loopslack.contract.strict.drafts import Draft
+from loopslack.contract.strict.field_rules import Leaf, broken_rules, size, wrong_type
+from loopslack.contract.strict.findings import EnoughError, Findings, escaped, first_fault, sentence
+from loopslack.contract.strict.hints import expectation, listing
+from loopslack.kernel.errors import CalculationError
 
 
-class Faults:
-    """The faults of one question: the first of them kept, all of them counted."""
+class _Walk(Findings):
+    """The walk through one question: what it finds, and the places where something has to stand in."""
 
     def __init__(self) -> None:
-        self.found: list[FaultyField] = []
-        self.count = 0
-        self._hints = 0
+        super().__init__()
+        self.unsound: set[str] = set()
 
-    @property
-    def further(self) -> int:
-        """Faults beyond those kept."""
-        return self.count - len(self.found)
+    def walk(
+        self, value: object, kind: inspect.Type, pointer: str, member: inspect.Type | None = None
+    ) -> Draft:
+        """Report every fault of a value at a place, going into its members; draft a value that is sound.
 
-    def walk(self, value: object, kind: inspect.Type, pointer: str) -> None:
-        """Report every fault of a value at a place, going into its members."""
-        kind = _bare(kind)
+        ``member`` is the type as its member declares it, with the range of a quantity and the leave to be absent.
+        """
+        member, kind = member or kind, _bare(kind)
         if isinstance(kind, Leaf):
-            self._add_all(pointer, broken_rules(value, kind, self._may_hint()))
-        elif isinstance(kind, inspect.UnionType):
-            self._union(value, kind, pointer)
-        elif isinstance(kind, inspect.StructType):
-            self._object(value, kind, pointer)
-        elif isinstance(kind, inspect.ListType | inspect.VarTupleType):
-            self._list(value, kind, pointer)
-        elif isinstance(kind, inspect.DictType):
-            self._mapping(value, kind, pointer)
-        else:
-            raise TypeError(f"questions hold no {type(kind).__name__}")
+            return self._leaf(value, kind, pointer, member)
+        if isinstance(kind, inspect.UnionType):
+            return self._union(value, kind, pointer, member)
+        if isinstance(kind, inspect.StructType):
+            return self._object(value, kind, pointer, member)
+        if isinstance(kind, inspect.ListType | inspect.VarTupleType):
+            return self._list(value, kind, pointer, member)
+        if isinstance(kind, inspect.DictType):
+            return self._mapping(value, kind, pointer, member)
+        raise TypeError(f"questions hold no {type(kind).__name__}")
 
-    def _add(self, pointer: str, code: str, message: str) -> None:
-        self._count_one()
-        if len(self.found) < MOST_FAULTS:
-            self.found.append(FaultyField(pointer=pointer, code=code, message=message))
+    def read(self, question: Draft, read: Read) -> None:
+        """Report what reading the drafted question brings to light beside the faults found so far."""
+        for cause in lasting(question, read, self.unsound):
+            self.add_cause(cause, "")
 
-    def _count_one(self) -> None:
-        if self.count == MOST_COUNTED:
-            raise _EnoughError
-        self.count += 1
+    def _in_place_of(self, kind: inspect.Type, pointer: str) -> Draft:
+        """Draft what stands in for a faulty value."""
+        self.unsound.add(pointer)
+        return drafts.stand_in(kind, pointer)
 
-    def _add_all(self, pointer: str, broken: Iterable[tuple[str, str]]) -> None:
-        for code, message in broken:
-            self._add(pointer, code, message)
+    def _leaf(self, value: object, kind: inspect.Type, pointer: str, member: inspect.Type) -> Draft:
+        before = len(self.found)
+        self.add_all(pointer, broken_rules(value, kind, self.may_hint()))
+        if len(self.found) > before:
+            return self._in_place_of(member, pointer)
+        return drafts.fixed(float(value) if isinstance(kind, inspect.FloatType) else value)  # type: ignore[arg-type] # it broke no rule of numbers
 
-    def _add_cause(self, cause: CalculationError, pointer: str) -> None:
-        """Take over a fault that the question's own rules found at this place."""
-        for one in cause.errors if isinstance(cause, Refusals) else (cause,):
-            self._count_one()
-            if len(self.found) < MOST_FAULTS:
-                self.found.append(fault_of(one, pointer))
-
-    def _may_hint(self) -> bool:
-        return self._hints < MOST_HINTS and len(self.found) < MOST_FAULTS
-
-    def _union(self, value: object, kind: inspect.UnionType, pointer: str) -> None:
+    def _union(self, value: object, kind: inspect.UnionType, pointer: str, member: inspect.Type) -> Draft:
         options = [_bare(option) for option in kind.types]
         if value is None and any(isinstance(option, inspect.NoneType) for option in options):
-            return
+            return drafts.fixed(None)
         options = [option for option in options if not isinstance(option, inspect.NoneType)]
         if len(options) == 1:
-            self.walk(value, options[0], pointer)
-            return
+            return self.walk(value, options[0], pointer, member)
         variants = [option for option in options if isinstance(option, inspect.StructType)]
         if isinstance(value, dict) and variants:
-            self._variant(value, variants, pointer)
-            return
+            return self._variant(value, variants, pointer, member)
         fitting = next((option for option in options if _json_type_fits(value, option)), None)
-        if fitting is None:
-            self._add(pointer, *wrong_type(value, inspect.UnionType(tuple(options))))
-        else:
-            self.walk(value, fitting, pointer)
+        if fitting is not None:
+            return self.walk(value, fitting, pointer, member)
+        self.add(pointer, *wrong_type(value, inspect.UnionType(tuple(options))))
+        return self._in_place_of(member, pointer)
 
-    def _variant(self, value: Mapping[str, object], variants: list[inspect.StructType], pointer: str) -> None:
+    def _variant(
+        self,
+        value: Mapping[str, object],
+        variants: list[inspect.StructType],
+        pointer: str,
+        member: inspect.Type,
+    ) -> Draft:
         by_tag = {variant.tag: variant for variant in variants}
         tag_name = variants[0].tag_field
         if tag_name is None:
-            self._object(value, variants[0], pointer)
-            return
+            return self._object(value, variants[0], pointer, member)
         tag = value.get(tag_name)
         if isinstance(tag, str) and tag in by_tag:
-            self._object(value, by_tag[tag], pointer)
-        elif tag_name not in value:
+            return self._object(value, by_tag[tag], pointer, member)
+        if tag_name not in value:
             message = f'"{tag_name}" is missing; it says which kind is meant. State one of {listing(by_tag)}.'
-            self._add(f"{pointer}/{tag_name}", "missing", message)
+            self.add(f"{pointer}/{tag_name}", "missing", message)
         else:
-            self._add_word(f"{pointer}/{tag_name}", tag, tuple(by_tag))
+            self.add_word(f"{pointer}/{tag_name}", tag, tuple(by_tag))
+        return self._in_place_of(member, pointer)
 
-    def _add_word(self, pointer: str, value: object, words: tuple[object, ...]) -> None:
-        self._add_all(pointer, word(value, words, hint=self._may_hint()))
-
-    def _object(self, value: object, kind: inspect.StructType, pointer: str) -> None:
+    def _object(self, value: object, kind: inspect.StructType, pointer: str, member: inspect.Type) -> Draft:
         if not isinstance(value, dict):
-            self._add(pointer, *wrong_type(value, kind))
-            return
-        if _is_sound(value, kind):
-            return
-        before = self.count
+            self.add(pointer, *wrong_type(value, kind))
+            return self._in_place_of(member, pointer)
+        sound = _sound(value, kind)
+        if sound is not None:
+            return drafts.fixed(sound)
+        before = len(self.found)
+        stated = self._members(value, kind, pointer)
+        if len(self.found) == before:
+            self._own_rules(value, kind, pointer)
+        elif not drafts.is_quantity(member):
+            return drafts.members(kind, stated)
+        return self._in_place_of(member, pointer)
+
+    def _members(
+        self, value: Mapping[str, object], kind: inspect.StructType, pointer: str
+    ) -> dict[str, Draft]:
         known = {field.encode_name for field in kind.fields}
         if kind.tag_field is not None:
             known.add(kind.tag_field)
             if kind.tag_field in value:
-                self._add_word(f"{pointer}/{kind.tag_field}", value[kind.tag_field], (kind.tag,))
+                self.add_word(f"{pointer}/{kind.tag_field}", value[kind.tag_field], (kind.tag,))
+        stated: dict[str, Draft] = {}
+        unknown = [name for name in value if name not in known] if kind.forbid_unknown_fields else []
         for field in kind.fields:
             place = f"{pointer}/{escaped(field.encode_name)}"
             if field.encode_name in value:
-                self.walk(value[field.encode_name], field.type, place)
+                stated[field.name] = self.walk(value[field.encode_name], field.type, place)
             elif field.required:
-                self._add(place, "missing", f'"{field.encode_name}" is missing.{_purpose(field.type)}')
-        if kind.forbid_unknown_fields:
-            for name in value:
-                if name not in known:
-                    self._unknown(name, known, pointer)
-        if self.count == before:
-            self._own_rules(value, kind, pointer)
-
-    def _unknown(self, name: str, known: set[str], pointer: str) -> None:
-        near = members_near(name, known) if self._may_hint() else ()
-        self._hints += 1
-        remedy = f"Did you mean {listing(near, last='or')}?" if near else f"It has {listing(sorted(known))}."
-        place = f"{pointer}/{escaped(name[:64])}"
-        self._add(place, "unknown-field", f"{shown(name)} is no member of this object. {remedy}")
+                self.add(place, "missing", f'"{field.encode_name}" is missing.{_purpose(field.type)}')
+                stated[field.name] = self._in_place_of(field.type, place)
+            elif unknown:  # any of which may have been meant as this one
+                stated[field.name] = drafts.stand_in(field.type, place)
+        for name in unknown:
+            self.add_unknown(name, known, pointer)
+        return stated
 
     def _own_rules(self, value: object, kind: inspect.StructType, pointer: str) -> None:
         """Rules a structure checks about itself once its members are sound."""
         try:
             msgspec.convert(value, kind.cls, strict=True)
         except CalculationError as cause:
-            self._add_cause(cause, pointer)
+            self.add_cause(cause, pointer)
         except msgspec.ValidationError as error:
             if isinstance(error.__cause__, CalculationError):
-                self._add_cause(error.__cause__, pointer)
+                self.add_cause(error.__cause__, pointer)
             else:
-                self._add(pointer, "invalid", _sentence(error))
+                self.add(pointer, "invalid", sentence(error))
 
-    def _list(self, value: object, kind: inspect.ListType | inspect.VarTupleType, pointer: str) -> None:
+    def _list(
+        self, value: object, kind: inspect.ListType | inspect.VarTupleType, pointer: str, member: inspect.Type
+    ) -> Draft:
         if not isinstance(value, list):
-            self._add(pointer, *wrong_type(value, kind))
-            return
-        self._add_all(pointer, size(len(value), kind.min_length, kind.max_length, "entries"))
-        for place, entry in enumerate(value):
-            self.walk(entry, kind.item_type, f"{pointer}/{place}")
+            self.add(pointer, *wrong_type(value, kind))
+            return self._in_place_of(member, pointer)
+        self.add_all(pointer, size(len(value), kind.min_length, kind.max_length, "entries"))
+        stated = [self.walk(entry, kind.item_type, f"{pointer}/{place}") for place, entry in enumerate(value)]
+        lacking = range(len(value), kind.min_length or 0)
+        stated += [self._in_place_of(kind.item_type, f"{pointer}/{place}") for place in lacking]
+        return drafts.entries(stated)
 
-    def _mapping(self, value: object, kind: inspect.DictType, pointer: str) -> None:
+    def _mapping(self, value: object, kind: inspect.DictType, pointer: str, member: inspect.Type) -> Draft:
         if not isinstance(value, dict):
-            self._add(pointer, *wrong_type(value, kind))
-            return
-        self._add_all(pointer, size(len(value), kind.min_length, kind.max_length, "members"))
+            self.add(pointer, *wrong_type(value, kind))
+            return self._in_place_of(member, pointer)
+        self.add_all(pointer, size(len(value), kind.min_length, kind.max_length, "members"))
         for name, entry in value.items():
             place = f"{pointer}/{escaped(name[:64])}"
             self.walk(name, kind.key_type, place)
             self.walk(entry, kind.value_type, place)
+        return drafts.fixed(value)
 
 
-def faults_of(value: object, question: type) -> Faults:
-    """Every fault of a decoded body as a question of this type.
+def faults_of(value: object, question: type, read: Read | None = None) -> list[FaultyField]:
+    """Every fault of a decoded body as a question of this type, in the order of the body.
 
-    Falls back on the decoder's own words where the walk finds nothing: a refused body always has a fault.
+    ``read`` reads such a question and so finds what no single member shows. Falls back on the decoder's own words where
+    the walk finds nothing: a refused body always has a fault.
     """
-    faults = Faults()
-    with suppress(_EnoughError):
-        faults.walk(value, shape_of(question), "")
-    if not faults.count:
+    walk = _Walk()
+    with suppress(EnoughError):
+        draft = walk.walk(value, shape_of(question), "")
+        if read is not None and walk.found:
+            walk.read(draft, read)
+    if not walk.found:
         try:
             msgspec.convert(value, question, strict=True)
         except msgspec.ValidationError as error:
-            faults.count = 1
-            faults.found = [first_fault(error)]
-    return faults
-
-
-def first_fault(error: msgspec.ValidationError) -> FaultyField:
-    """The one fault the decoder itself reports, in its words."""
-    path = re.search(r"`\$((?:\.[A-Za-z0-9_-]+|\[\d+\])*)", str(error))
-    place = "" if path is None else path[1].replace(".", "/").replace("[", "/").replace("]", "")
-    return FaultyField(pointer=place, code="invalid", message=_sentence(error))
+            return [first_fault(error)]
+    return in_order(walk.found, value)
 
 
 @cache
 def shape_of(question: type) -> inspect.Type:
     """What a type of question consists of, looked up once."""
     return inspect.type_info(question)
-
-
-def escaped(name: str) -> str:
-    """A member's name as one step of a JSON Pointer."""
-    return name.replace("~", "~0").replace("/", "~1")
 
 
 def _bare(kind: inspect.Type) -> inspect.Type:
@@ -243,17 +238,13 @@ def _purpose(kind: inspect.Type) -> str:
     return f" State it; {expectation(kind)} is expected."
 
 
-def _sentence(error: msgspec.ValidationError) -> str:
-    return str(error).partition(" - at ")[0].rstrip(".") + "."
-
-
-def _is_sound(value: Mapping[str, object], kind: inspect.StructType) -> bool:
-    """Whether an object is sound with all that is in it, asked of the decoder at a fiftieth of a walk."""
+def _sound(value: Mapping[str, object], kind: inspect.StructType) -> object | None:
+    """An object that is sound with all that is in it, asked of the decoder at a fiftieth of a walk."""
     try:
-        msgspec.convert(value, kind.cls, strict=True)
+        found: object = msgspec.convert(value, kind.cls, strict=True)
     except (msgspec.ValidationError, CalculationError):
-        return False
-    return not holds_infinity(value)
+        return None
+    return None if holds_infinity(value) else found
 
 
 def holds_infinity(value: object) -> bool:

@@ -1,0 +1,35 @@
+"""How each type of question is read: what finds the faults that no single member shows."""
+
+from collections.abc import Callable
+from typing import Any
+
+from loopslack.contract import questions, questions_existing
+from loopslack.contract.questions_many import FigureQuestion, SheetQuestion
+from loopslack.contract.reader import Reader
+from loopslack.contract.reading_existing import read_audit, read_check, read_course
+from loopslack.contract.reading_sizing import read_sizing
+from loopslack.contract.reading_small import read_contents, read_expansion
+
+Read = Callable[[Any, Reader], object]
+"""Reads a question and leaves what is refused with the reader."""
+
+
+def _read_sheet(question: SheetQuestion | FigureQuestion, reader: Reader) -> object:
+    own = Reader(turn=reader.turn)
+    found = read_sizing(question.design, own)
+    reader.take_over(own, "/design")
+    return found
+
+
+READINGS: dict[type, Read] = {
+    questions.LoopVolumeQuestion: read_contents,
+    questions.ExpansionQuestion: read_expansion,
+    questions.VesselSizingQuestion: read_sizing,
+    questions.LoopDesignQuestion: read_sizing,
+    questions.StagnationCheckQuestion: read_check,
+    questions_existing.StagnationCourseQuestion: read_course,
+    questions_existing.VesselAuditQuestion: read_audit,
+    SheetQuestion: _read_sheet,
+    FigureQuestion: _read_sheet,
+}
+"""By the type of question. Designs of a batch are read with what they share: see `answering_many`."""
