@@ -9,7 +9,6 @@ import pytest
 
 from loopslack.contract import answering, answering_many
 from loopslack.contract.answering_many import (
-    Shared,
     Tally,
     answer_design,
     answer_lines,
@@ -19,6 +18,7 @@ from loopslack.contract.answering_many import (
 )
 from loopslack.contract.encoding import encoded
 from loopslack.contract.questions import LoopDesignQuestion
+from loopslack.contract.reading_many import Shared
 from loopslack.contract.refusals import Refused
 from loopslack.kernel.errors import Contradiction
 from many.designs import BATCH, HEAD, design, faulty

@@ -16,6 +16,7 @@ from loopslack.contract.questions import (
     VesselSizingQuestion,
 )
 from loopslack.contract.reading import read_loop
+from loopslack.contract.reading_many import Shared
 from loopslack.kernel.errors import Refusals
 from loopslack.library.defaults import choices, defaults
 from questions.wash_house import changed, least, question, wash_house
@@ -241,7 +242,7 @@ def test_a_design_of_a_batch_takes_the_defaults_for_what_it_leaves_out():
     own = {name: data[name] for name in data if name not in shared}
     body = {"defaults": shared, "designs": [{"id": "a", **own, "staticHeight": {"value": 9, "unit": "m"}}]}
     batch = msgspec.json.decode(json.dumps(body), type=many.LoopDesignBatchQuestion)
-    found = many.completed(batch.designs[0], batch.defaults)
+    found = Shared(batch.defaults).completed(batch.designs[0])
     expected = question({**data, "staticHeight": {"value": 9, "unit": "m"}, "include": []})
     assert found == expected
 
@@ -249,7 +250,7 @@ def test_a_design_of_a_batch_takes_the_defaults_for_what_it_leaves_out():
 def test_a_design_of_a_batch_that_stays_incomplete_names_what_is_missing():
     batch = msgspec.json.decode(b'{"designs":[{"id":"a"}]}', type=many.LoopDesignBatchQuestion)
     with pytest.raises(Refusals) as refused:
-        many.completed(batch.designs[0], None)
+        Shared().completed(batch.designs[0])
     assert [error.pointer for error in refused.value.errors] == [
         "/site",
         "/collectors",

@@ -21,7 +21,7 @@ from loopslack.api.many_work import AS_BATCH, AS_LINES, Form, Slice, Work
 from loopslack.api.operations import BodySize, Floor
 from loopslack.api.reading import JSON, check_body_head, header, read_body, take_body
 from loopslack.api.record import Note, note_of
-from loopslack.contract.answering_many import Shared
+from loopslack.contract.reading_many import Shared
 from loopslack.contract.refusals import Refused
 from loopslack.observability import count_design
 

@@ -13,7 +13,6 @@ from loopslack.api.many_bodies import Designs
 from loopslack.api.many_places import SLICE_SECONDS
 from loopslack.contract.answering_many import (
     Outcome,
-    Shared,
     Tally,
     answer_design,
     end_line,
@@ -21,6 +20,7 @@ from loopslack.contract.answering_many import (
     refuse_design,
 )
 from loopslack.contract.names import Names
+from loopslack.contract.reading_many import Shared
 from loopslack.contract.refusals import Refused
 
 PIECE_BYTES = 65_536

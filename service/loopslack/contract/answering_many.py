@@ -16,24 +16,20 @@ from loopslack.contract.answering import design_loop
 from loopslack.contract.answers_many import DesignOutcome, DesignProblem, OutcomeSummary, StreamEnd
 from loopslack.contract.encoding import encoded
 from loopslack.contract.problems import FaultyField
-from loopslack.contract.questions_many import BatchDesign, LoopDesignDefaults, StreamHead, completed
+from loopslack.contract.questions_many import BatchDesign, StreamHead
 from loopslack.contract.questions_vessels import FromStock
+from loopslack.contract.reader import Reader
+from loopslack.contract.reading_again import lasting, together
+from loopslack.contract.reading_many import Shared, read_head
 from loopslack.contract.refusals import Refused, refusal_of, refusal_of_fields
 from loopslack.contract.strict.decoding import decode
 from loopslack.contract.strict.hints import shown
-from loopslack.kernel.errors import CalculationError, Contradiction, Refusals
+from loopslack.kernel.errors import CalculationError, Contradiction
 
 REFUSED = "refused"
 """How a design that was not answered is counted, beside the verdicts."""
 
 LONGEST_ID = 64
-
-
-class Shared(Struct, frozen=True):
-    """What all designs of a batch have in common."""
-
-    defaults: LoopDesignDefaults | None = None
-    stock: FromStock | None = None
 
 
 class Outcome(NamedTuple):
@@ -87,32 +83,15 @@ def read_shared(head: bytes, *, most_stock: int | None = None, nesting: int = 32
 
     """
     read = decode(head, StreamHead, nesting)
-    faults: list[CalculationError] = []
     items = read.stock or []
     if most_stock is not None and len(items) > most_stock:
         message = f"The stock has {len(items)} items; {most_stock} are allowed. Send fewer."
         raise refusal_of_fields([FaultyField(pointer="/stock", code="too-many", message=message)])
-    first: dict[str, int] = {}
-    for place, item in enumerate(items):
-        earlier = first.setdefault(item.id, place)
-        if earlier != place:
-            faults.append(
-                Contradiction(
-                    f"Items {earlier + 1} and {place + 1} of the stock have the same identifier.",
-                    remedy="Give every item an identifier of its own.",
-                    pointer=f"/stock/{place}/id",
-                )
-            )
-    if items and read.defaults is not None and read.defaults.vessel is not None:
-        faults.append(
-            Contradiction(
-                "The defaults name a vessel, so that no design would choose from the stock.",
-                remedy="Leave one of the two out.",
-                pointer="/defaults/vessel",
-            )
-        )
+    reader = Reader()
+    read_head(read, reader)
+    faults = lasting(lambda _: read, read_head) if reader.refused else []
     if faults:
-        raise refusal_of(Refusals(faults))
+        raise refusal_of(together(faults))
     return Shared(defaults=read.defaults, stock=FromStock(items=items) if items else None)
 
 
@@ -143,8 +122,8 @@ def answer_design(
     if repeated:
         return refuse_design(design, index, refusal_of(_repetition(id_of(design))))
     try:
-        asked = decode(design, BatchDesign, nesting)
-        answer = design_loop(completed(asked, shared.defaults, shared.stock))
+        asked = decode(design, BatchDesign, nesting, shared.read)
+        answer = design_loop(shared.completed(asked))
         verdict = answer.result.verdict
         line = encoded(DesignOutcome(index=index, id=asked.id, verdict=verdict, answer=answer))
         return Outcome(line, verdict, tuple(advisory.code for advisory in answer.advisories))

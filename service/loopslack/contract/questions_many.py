@@ -4,6 +4,7 @@ A design of a batch states only what differs from the defaults. Its struct is ma
 design, so that no member can exist in one and not in the other.
 """
 
+from collections.abc import Mapping
 from typing import TYPE_CHECKING, Annotated, Any, Literal, get_args
 
 from msgspec import Meta, Struct, defstruct
@@ -13,7 +14,7 @@ from loopslack.contract.fields import text
 from loopslack.contract.questions import LoopDesignQuestion
 from loopslack.contract.questions_collectors import Label, QuestionPart
 from loopslack.contract.questions_vessels import MOST_STOCK_ITEMS, FromStock, StockVessel
-from loopslack.kernel.errors import CalculationError, Missing, Refusals
+from loopslack.kernel.errors import CalculationError, Missing
 
 Language = Literal["en", "de"]
 Paper = Literal["a4", "letter"]
@@ -116,35 +117,36 @@ class StreamHead(QuestionPart, frozen=True, kw_only=True):
     ] = None
 
 
-def completed(
-    design: BatchDesign, defaults: LoopDesignDefaults | None, stock: FromStock | None = None
-) -> LoopDesignQuestion:
-    """Fill the defaults into a design of a batch. Remedies are left out unless asked for.
-
-    Raises ``Refusals`` naming every required member that neither states.
-    """
+def merged(
+    design: BatchDesign | LoopDesignDefaults,
+    defaults: LoopDesignDefaults | None,
+    stock: FromStock | None = None,
+) -> dict[str, Any]:
+    """The members of a design with the defaults filled in. Remedies are left out unless asked for."""
     members: dict[str, Any] = {}
-    missing: list[CalculationError] = []
     for field in _MEMBERS:
         stated = getattr(design, field.name)
         if stated is None and defaults is not None:
             stated = getattr(defaults, field.name)
         if stated is not None:
             members[field.name] = stated
-        elif field.required:
-            missing.append(
-                Missing(
-                    f"{field.encode_name} is stated neither by the design nor by the defaults.",
-                    remedy="State it in one of the two.",
-                    pointer=f"/{field.encode_name}",
-                )
-            )
-    if missing:
-        raise Refusals(missing)
     if stock is not None:
         members.setdefault("vessel", stock)
     members.setdefault("include", [])
-    return LoopDesignQuestion(**members)
+    return members
+
+
+def lacking(members: Mapping[str, Any]) -> list[CalculationError]:
+    """What a design needs that is not among its members, as refusals."""
+    return [
+        Missing(
+            f"{field.encode_name} is stated neither by the design nor by the defaults.",
+            remedy="State it in one of the two.",
+            pointer=f"/{field.encode_name}",
+        )
+        for field in _MEMBERS
+        if field.required and field.name not in members
+    ]
 
 
 Line = Annotated[str, Meta(max_length=200)]

@@ -4,7 +4,7 @@ A refusal does not stop the reading, so that a caller sees every fault at once. 
 read on, never to be computed with; which of the refusals rest on such a stand-in is found in ``reading_again``.
 """
 
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from functools import lru_cache
 from typing import NamedTuple, Protocol, TypeVar
 
@@ -158,10 +158,10 @@ class Reader:
         self.is_certain = False
         return options[self.turn % len(options)]
 
-    def take_over(self, other: "Reader", within: str) -> None:
-        """Note what another reader refused of the object at a place."""
-        self.is_certain = self.is_certain and other.is_certain
-        for error in other.refused:
+    def take_over(self, refused: Iterable[CalculationError], within: str = "") -> None:
+        """Note what was refused of the object at a place in a reading of its own; it may rest on a stand-in."""
+        self.is_certain = False
+        for error in refused:
             self.refuse(error, within + error.pointer)
 
     def _out_of_range(self, stated: Stated, field: Field, place: str, number: float, datum: float) -> float:

@@ -4,9 +4,15 @@ from collections.abc import Callable
 from typing import Any
 
 from loopslack.contract import questions, questions_existing
-from loopslack.contract.questions_many import FigureQuestion, SheetQuestion
+from loopslack.contract.questions_many import (
+    FigureQuestion,
+    LoopDesignBatchQuestion,
+    SheetQuestion,
+    StreamHead,
+)
 from loopslack.contract.reader import Reader
 from loopslack.contract.reading_existing import read_audit, read_check, read_course
+from loopslack.contract.reading_many import read_batch, read_head
 from loopslack.contract.reading_sizing import read_sizing
 from loopslack.contract.reading_small import read_contents, read_expansion
 
@@ -17,7 +23,7 @@ Read = Callable[[Any, Reader], object]
 def _read_sheet(question: SheetQuestion | FigureQuestion, reader: Reader) -> object:
     own = Reader(turn=reader.turn)
     found = read_sizing(question.design, own)
-    reader.take_over(own, "/design")
+    reader.take_over(own.refused, "/design")
     return found
 
 
@@ -29,7 +35,9 @@ READINGS: dict[type, Read] = {
     questions.StagnationCheckQuestion: read_check,
     questions_existing.StagnationCourseQuestion: read_course,
     questions_existing.VesselAuditQuestion: read_audit,
+    LoopDesignBatchQuestion: read_batch,
+    StreamHead: read_head,
     SheetQuestion: _read_sheet,
     FigureQuestion: _read_sheet,
 }
-"""By the type of question. Designs of a batch are read with what they share: see `answering_many`."""
+"""By the type of question. A design of a batch is read with what it shares: see `reading_many`."""
