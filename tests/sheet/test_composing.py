@@ -5,8 +5,8 @@ from msgspec.structs import replace
 
 from loopslack.kernel.errors import OutOfRange
 from loopslack.sheet.composing import compose, fingerprint, paper_of
-from loopslack.sheet.lines import Blanks, Bullets, Card, Drawing, Facts, Table
-from sheet.sheets import NAMES, asked, blocks, sheet
+from loopslack.sheet.lines import Blanks, Bullets, Card, Drawing, Facts, Table, Text
+from sheet.sheets import NAMES, asked, blocks, case, sheet
 
 ALWAYS = {
     "result",
@@ -56,11 +56,20 @@ def test_every_table_is_square_and_every_text_is_one_line(name: str) -> None:
 
 
 @pytest.mark.parametrize("name", NAMES)
-def test_there_is_a_place_to_sign_and_a_card_where_there_are_settings(name: str) -> None:
+def test_there_is_a_place_to_sign_and_a_card_only_for_a_vessel_that_was_chosen(name: str) -> None:
     of = sheet(name)
     assert any(isinstance(block, Blanks) for block in of.sections[-1].blocks)
     cards = [block for block in blocks(of) if isinstance(block, Card)]
-    assert len(cards) == (asked(name).answer.result.settings is not None)
+    assert len(cards) == (asked(name).answer.result.chosen_vessel is not None)
+
+
+@pytest.mark.parametrize("name", [name for name in NAMES if not case(name).chosen])
+def test_settings_of_a_vessel_that_was_not_chosen_say_so_first(name: str) -> None:
+    settings = next(section for section in sheet(name).sections if section.id == "settings")
+    first = settings.blocks[0]
+    assert isinstance(first, Text)
+    assert first.tone == "stop"
+    assert not any(isinstance(block, Blanks | Bullets | Card) for block in settings.blocks)
 
 
 def test_the_sheet_names_what_it_takes_to_make_it_again() -> None:

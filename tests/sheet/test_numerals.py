@@ -30,7 +30,8 @@ def q(value: float, unit: str) -> AnyQuantity:
         (12.5, "L", "12.5"),
         (107.147, "L", "107"),
         (1234.5, "L", "1230"),
-        (0.478123, "L", "0.478"),
+        (0.478123, "L", "0.48"),
+        (0.0049, "L", "0.005"),
         (13.5451, "m", "13.5"),
         (23.0, "m", "23"),
         (28.0, "mm", "28"),
@@ -57,7 +58,8 @@ def test_a_negative_margin_never_reads_as_nought(size: float, unit: str) -> None
 @given(st.floats(min_value=-1e5, max_value=1e5), st.sampled_from(["barg", "degC", "L", "m", "W", "psi"]))
 def test_what_is_shown_lies_within_half_a_place_of_the_number(value: float, unit: str) -> None:
     shown = float(rounded(value, unit))
-    place = {"barg": 0.01, "degC": 0.1, "m": 0.1, "psi": 0.1}.get(unit, max(1e-9, abs(value) * 0.01))
+    finest = {"barg": 0.01, "degC": 0.1, "m": 0.1, "psi": 0.1, "L": 0.01, "W": 0.1}[unit]
+    place = max(finest, abs(value) * 0.01) if unit in {"L", "W"} else finest
     assert abs(shown - value) <= 0.5 * place * (1 + 1e-9) or abs(value) < place
 
 
@@ -77,6 +79,23 @@ def test_a_stated_number_keeps_every_digit() -> None:
     assert EN.stated(q(1e-7, "bar")) == "0.0000001\u00a0bar"
 
 
-def test_a_residual_is_written_with_its_power_of_ten() -> None:
-    assert EN.scientific(q(6.98492e-15, "bar")) == "7.0\u00a0\N{MULTIPLICATION SIGN}\u00a010⁻¹⁵\u00a0bar"
-    assert EN.scientific(q(0.0, "bar")) == "0\u00a0bar"
+@pytest.mark.parametrize(
+    ("value", "unit", "shown"),
+    [
+        (2.27374e-13, "W", "0\u00a0W"),
+        (-6.98492e-15, "bar", "0\u00a0bar"),
+        (-1.1e-6, "K", "0\u00a0K"),
+        (0.0, "bar", "0\u00a0bar"),
+        (0.0000489, "BTU/h/ft2/degF2", "0.0000489\u00a0BTU/(h·ft²·°F²)"),
+        (2.05782, "barg", "2.05782\u00a0bar(g)"),
+        (1e-7, "1", "0.0000001"),  # a share is no residue
+    ],
+)
+def test_what_a_root_leaves_over_is_nought_with_its_unit(value: float, unit: str, shown: str) -> None:
+    assert EN.derived(q(value, unit)) == shown
+
+
+def test_a_thickness_is_told_in_millimetres_or_inches() -> None:
+    assert EN.thin(q(0.054, "m")) == "54\u00a0mm"
+    assert EN.thin(q(0.0833333, "ft")) == "1\u00a0in"
+    assert DE.thin_between(q(0.0275, "m"), q(0.1, "m")) == "27,5 bis 100\u00a0mm"

@@ -11,6 +11,7 @@ from loopslack.contract.answers import LoopDesignAnswer
 from loopslack.contract.answers_common import Check
 from loopslack.contract.answers_loop import LiquidState, StagnationState, SteamReach, VesselResult
 from loopslack.contract.questions import LoopDesignQuestion
+from loopslack.contract.questions_pipes import StandardTube
 from loopslack.contract.reading import Reading, read_loop
 from loopslack.contract.units_out import Writer
 from loopslack.kernel.errors import NotApplicable
@@ -134,6 +135,19 @@ class Case:
         named += [self.run_name(k) for k in range(len(self.loop.branches))]
         rest = self.result.content.parts[len(named) :]
         return named + [self.words(f"part.{part.kind}") for part in rest]
+
+    @cached_property
+    def own_names(self) -> dict[str, str]:
+        """The names a derivation has for the parts of the loop, and what the sheet calls them."""
+        names = {group.name: self.group_name(k) for k, group in enumerate(self.loop.groups)}
+        for k, branch in enumerate(self.loop.branches):
+            names[branch.name] = run = self.run_name(k)
+            for number, segment in enumerate(self.design.pipe_runs[k].segments, 1):
+                stretch = self.words("inputs.stretch", run=run, number=number)
+                names[f"stretch {number} of {branch.name}"] = stretch
+                if isinstance(segment.tube, StandardTube):
+                    names[segment.tube.size] = plain(segment.tube.size)
+        return names
 
     def reaches(self, state: StagnationState) -> list[tuple[int, SteamReach]]:
         """How far steam reaches, with the place of the pipe run in the question."""

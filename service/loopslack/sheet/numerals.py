@@ -2,9 +2,10 @@
 
 An answer carries six significant digits. A sheet shows fewer: pressures to 0.01 bar or 0.1 psi, which is finer than
 an installer's gauge; temperatures to 0.1; heights and lengths to 0.1 m or 0.1 ft; volumes, powers and areas to three
-digits. Rounding is to the nearest, halves away from nought, in one step from the number of the answer. A number that
-is not nought never shows as nought: it keeps its first digit, so that a small negative margin stays negative.
-Nothing here converts units.
+digits, and no finer than anybody can fill, heat or measure. Rounding is to the nearest, halves away from nought, in
+one step from the number of the answer. A number that is not nought never shows as nought: it keeps its first digit,
+so that a small negative margin stays negative; only what a root leaves over in a derivation is told as nought.
+Nothing here converts units, but for the thickness of walls and insulation.
 """
 
 from decimal import ROUND_HALF_UP, Decimal
@@ -48,8 +49,21 @@ _AT_MOST = {
     "ftH2O": 1,
     "min": 0,
 }
-_RAISED = str.maketrans("-0123456789", "⁻⁰¹²³⁴⁵⁶⁷⁸⁹")
 _DIGITS = 3  # for everything else: litres, gallons, watts, areas, densities
+_FINEST = {
+    "L": 2,
+    "gal_us": 2,
+    "gal_uk": 2,
+    "kg": 2,
+    "lb": 2,
+    "m2": 2,
+    "ft2": 1,
+    "W": 1,
+    "BTU/h": 1,
+}
+"""Decimals beyond which three digits would be a show of precision."""
+_THIN = {"m": (1000, "mm"), "ft": (12, "in")}
+_RESIDUE = 1e-5  # of a unit: what a solver leaves over and nobody could measure in any unit an answer uses
 
 _UNITS = {
     "barg": "bar(g)",
@@ -117,7 +131,7 @@ def rounded(value: float, unit: str) -> str:
     fixed = _PLACES.get(unit)
     places = _AT_MOST.get(unit) if fixed is None else fixed
     if places is None:
-        places = _DIGITS - 1 - exact.adjusted()
+        places = min(_DIGITS - 1 - exact.adjusted(), _FINEST.get(unit, 99))
     places = max(places, 0) if unit in _PLACES or unit in _AT_MOST else places
     shown = _to(exact, places)
     if shown == 0:  # keeps its first digit
@@ -167,6 +181,18 @@ class Numerals:
         """A range."""
         return f"{self.digits(low)} {self._to} {self(high)}"
 
+    def thin(self, quantity: Quantity) -> str:
+        """A thickness: the trade says millimetres and inches, where an answer says metres and feet."""
+        return self.joined(*self._thin(quantity))
+
+    def thin_between(self, low: Quantity, high: Quantity) -> str:
+        """A range of thicknesses."""
+        return f"{self._thin(low)[0]} {self._to} {self.thin(high)}"
+
+    def _thin(self, quantity: Quantity) -> tuple[str, str]:
+        factor, unit = _THIN.get(quantity.unit, (1, quantity.unit))
+        return self.plain(rounded(float(Decimal(repr(quantity.value)) * factor), unit)), unit
+
     def stated(self, quantity: Quantity | None) -> str:
         """A quantity of a question, with every digit it was stated with."""
         if quantity is None:
@@ -177,15 +203,14 @@ class Numerals:
         """A number with all its digits, for a reader who does the sum again."""
         return self.plain(f"{Decimal(repr(float(value))).normalize():f}")
 
-    def scientific(self, quantity: Quantity) -> str:
-        """A number so small that only its power of ten says anything."""
-        head, _, power = f"{quantity.value:.1e}".partition("e")
-        if not power or -3 <= int(power) <= 5:
-            return self.stated(quantity)
-        raised = str(int(power)).translate(_RAISED)
-        return self.joined(
-            f"{self.plain(head)} \N{MULTIPLICATION SIGN} 10{raised}".replace(" ", NO_BREAK), quantity.unit
-        )
+    def derived(self, quantity: Quantity) -> str:
+        """A number of the derivation with all its digits, and nought with its unit for what a root leaves over.
+
+        A number without a unit is a share or a factor and keeps its digits however small it is.
+        """
+        if quantity.unit != "1" and abs(quantity.value) < _RESIDUE:
+            return self.joined("0", quantity.unit)
+        return self.stated(quantity)
 
     def unit(self, code: str) -> str:
         """How a unit is written."""

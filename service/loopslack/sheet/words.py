@@ -3,6 +3,7 @@
 English is the first catalogue and complete; another has the same keys. Sentences that an answer brings in English
 (why something was assumed, what to do on site) stand in the other catalogue under the English sentence itself, so
 that a sentence nobody has translated yet is printed in English rather than not at all; ``{}`` in it is a number.
+Names of steps are put together from short ones, and are taken apart and put together again the same way.
 """
 
 import re
@@ -41,9 +42,19 @@ _NUMBER = re.compile(r"-?\d+(?:\.\d+)?")
 class Words:
     """What the sheet says, by key."""
 
-    def __init__(self, language: Language, entries: Mapping[str, str], phrases: Mapping[str, str]) -> None:
+    def __init__(
+        self,
+        language: Language,
+        entries: Mapping[str, str],
+        phrases: Mapping[str, str],
+        names: Mapping[str, str],
+    ) -> None:
         self.language = language
         self._entries, self._phrases = entries, phrases
+        self._names = {english: told for english, told in names.items() if "{}" not in english}
+        self._compound = [(_ends(english), told) for english, told in names.items() if "{}" in english]
+        # What is said behind a name is taken off first, the longest first.
+        self._compound.sort(key=lambda one: (one[0][0] != "", -sum(map(len, one[0]))))
         self._patterns = [(_pattern(english), told) for english, told in phrases.items() if "{}" in english]
 
     def __call__(self, key: str, **parts: object) -> str:
@@ -61,7 +72,7 @@ class Words:
         found = self._phrase(english)
         if found is None:
             found = " ".join(self._phrase(one) or one for one in _SENTENCE.split(english))
-        return _UNIT.sub(lambda code: _UNITS[code[0]], found)
+        return self.unit_words(found)
 
     def _phrase(self, english: str) -> str | None:
         exact = self._phrases.get(english)
@@ -72,6 +83,30 @@ class Words:
             if found is not None:
                 return told.format(*(self._number(part) for part in found.groups()))
         return None
+
+    def name(self, english: str, parts: Mapping[str, str]) -> str | None:
+        """What a step of a derivation computes, in this language; None where a part of its name is not known.
+
+        ``parts`` are the loop's own names, which no language changes.
+        """
+        found = parts.get(english) or self._names.get(english)
+        if found is not None:
+            return found
+        for (head, middle, tail), told in self._compound:
+            if not (english.startswith(head) and english.endswith(tail)):
+                continue
+            inner = english[len(head) : len(english) - len(tail)]
+            pieces = inner.rsplit(middle, 1) if middle else [inner]
+            if "" in pieces or len(pieces) != told.count("{}"):
+                continue
+            names = [piece if piece.isdigit() else self.name(piece, parts) for piece in pieces]
+            if None not in names:
+                return told.format(*names)
+        return None
+
+    def unit_words(self, text: str) -> str:
+        """A text with its units written as everywhere."""
+        return _UNIT.sub(lambda code: _UNITS[code[0]], text)
 
     def _number(self, part: str) -> str:
         """A number within a sentence, with the language's decimal sign; anything else as it is."""
@@ -92,7 +127,14 @@ def words(language: Language) -> Words:
     text = files("loopslack.sheet").joinpath(_FOLDER, f"{language}.toml").read_text(encoding="utf-8")
     tables = tomllib.loads(text)
     phrases = tables.pop("phrases", {})
-    return Words(language, dict(_flat(tables)), phrases)
+    names = tables.pop("names", {})
+    return Words(language, dict(_flat(tables)), phrases, names)
+
+
+def _ends(english: str) -> tuple[str, str, str]:
+    """What stands before, between and behind the places of a compound name."""
+    head, *between, tail = english.split("{}")
+    return head, "".join(between), tail
 
 
 def _pattern(english: str) -> "re.Pattern[str]":

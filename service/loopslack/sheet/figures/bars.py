@@ -4,7 +4,7 @@ from loopslack.contract.answers_sizing import RuleComparison, SensitivityRow, Wa
 from loopslack.sheet.case import Case
 from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Scale, fitted, tick_labels, width_of
 from loopslack.sheet.lines import Drawing
-from loopslack.sheet.sections.sizing_names import input_name, input_number, rule_short, rule_title, step_name
+from loopslack.sheet.sections.sizing_names import input_name, input_range, rule_short, rule_title, step_name
 
 MOST_INPUTS = 10
 _LEFT, _RIGHT = 6.0, WIDTH - 6.0
@@ -167,5 +167,4 @@ def _ends(row: SensitivityRow) -> list[float]:
 
 
 def _range(case: Case, row: SensitivityRow) -> str:
-    from_, to = input_number(case, row.input, row.low.value), input_number(case, row.input, row.high.value)
-    return case.words("figure.from-to", low=from_, high=to)
+    return input_range(case, row.input, row.low.value, row.high.value)

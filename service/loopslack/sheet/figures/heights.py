@@ -35,8 +35,9 @@ def pressure_over_height(case: Case) -> Drawing | None:
     _grid(canvas, case, across, up, bottom)
     for pressure, height, name in limits:
         _limit(canvas, across(pressure), up(height), name, above=height > 0)
-    for state, points, _ in lines:
+    for state, points, entry in lines:
         sign, dash = SIGNS[state]
+        sign = "cross" if entry.stop else sign
         drawn = [(across(x), up(y)) for x, y in points]
         canvas.path(drawn, weight=1.5, dash=dash)
         for end in (drawn[0], drawn[-1]):

@@ -3,14 +3,20 @@
 from loopslack.contract.answers_common import Assumption
 from loopslack.sheet.case import Case
 from loopslack.sheet.lines import Column, Row, Section, Table, Text
-from loopslack.sheet.sections.names import assumption_value, field_name, member_name, source_name
+from loopslack.sheet.sections.names import (
+    assumption_range,
+    assumption_value,
+    field_name,
+    member_name,
+    source_name,
+)
 
 _NAMED = 3  # places named of a default that was used in many
 
 
 def assumptions(case: Case) -> Section:
     """One row a default; the same default used in several places is told once."""
-    words, say = case.words, case.say
+    words = case.words
     alike: dict[tuple[object, ...], list[Assumption]] = {}
     for one in case.answer.assumptions:
         steps = [step for step in one.field.strip("/").split("/") if not step.isdigit()]
@@ -20,13 +26,12 @@ def assumptions(case: Case) -> Section:
     rows = []
     for group in alike.values():
         first = group[0]
-        ranged = "" if first.low is None or first.high is None else say.between(first.low, first.high)
         rows.append(
             Row(
                 (
                     _names(case, group),
                     assumption_value(case, first),
-                    ranged,
+                    assumption_range(case, first),
                     words.phrase(first.why),
                     source_name(case, first.source),
                 )

@@ -9,6 +9,7 @@ from collections.abc import Iterable
 
 from loopslack.contract.answers_derivation import Derivation, DerivationInput, DerivationStep
 from loopslack.sheet.case import Case
+from loopslack.sheet.formula import formula
 from loopslack.sheet.lines import Block, Column, Row, Section, Table, Text
 from loopslack.sheet.sections.names import source_name
 from loopslack.sheet.words import plain
@@ -38,7 +39,7 @@ def derivation(case: Case) -> Section | None:
         rows = tuple(
             Row(
                 (
-                    plain(constant.id),
+                    told_name(case, constant.id),
                     "; ".join(case.say.every_digit(value) for value in constant.values),
                     source_name(case, constant.source),
                 )
@@ -52,6 +53,12 @@ def derivation(case: Case) -> Section | None:
         )
         blocks.append(Table(words("table.constants"), columns, rows, compact=True))
     return Section("derivation", words("section.derivation"), tuple(blocks))
+
+
+def told_name(case: Case, english: str) -> str:
+    """A name of the derivation in the sheet's language; as the answer has it where a word of it is not known."""
+    told = case.words.name(english, case.own_names)
+    return case.words.unit_words(plain(english)) if told is None else told
 
 
 def _columns(case: Case) -> tuple[Column, ...]:
@@ -74,7 +81,9 @@ def _shown(found: Derivation) -> list[DerivationStep]:
 
 
 def _row(case: Case, step: DerivationStep, source: str) -> Row:
-    return Row((str(step.number), plain(step.name), _law(case, step), case.say.stated(step.value), source))
+    return Row(
+        (str(step.number), told_name(case, step.name), _law(case, step), case.say.derived(step.value), source)
+    )
 
 
 def _law(case: Case, step: DerivationStep) -> str:
@@ -84,12 +93,10 @@ def _law(case: Case, step: DerivationStep) -> str:
         steps = ", ".join(str(number) for number in step.system.equations)
         told = words("derivation.root", meaning=words.phrase(plain(step.system.meaning)), steps=steps)
         if step.system.residual is not None:
-            told = (
-                f"{told} {words('derivation.residual', residual=case.say.scientific(step.system.residual))}"
-            )
+            told = f"{told} {words('derivation.residual', residual=case.say.derived(step.system.residual))}"
         return told
     numbers = ", ".join(_inputs(case, step.inputs))
-    law = plain(step.law or "")
+    law = formula(plain(step.law or ""), words)
     outside = f" {words('derivation.outside')}" if step.outside else ""
     return f"{law};  {numbers}{outside}" if numbers else f"{law}{outside}"
 
@@ -97,4 +104,5 @@ def _law(case: Case, step: DerivationStep) -> str:
 def _inputs(case: Case, inputs: Iterable[DerivationInput]) -> Iterable[str]:
     for one in inputs:
         origin = case.words(f"origin.{one.origin}", step=one.step)
-        yield f"{plain(one.symbol or one.name)} = {case.say.stated(one.value)} {origin}"
+        symbol = told_name(case, one.name) if one.symbol is None else formula(plain(one.symbol), case.words)
+        yield f"{symbol} = {case.say.derived(one.value)} {origin}"

@@ -14,6 +14,43 @@ _PART_SUBJECTS = {
 }
 
 
+_BODIES = frozenset(
+    [
+        "asit",
+        "ashrae",
+        "asme",
+        "astm",
+        "cte",
+        "db",
+        "din",
+        "en",
+        "he",
+        "hvac",
+        "iapws",
+        "idae",
+        "iea",
+        "inail",
+        "isfh",
+        "iso",
+        "mo",
+        "navfac",
+        "nist",
+        "pm",
+        "sbz",
+        "shc",
+        "si",
+        "trc",
+        "ufc",
+        "vdi",
+        "ped",
+        "sr1",
+        "a554",
+        "b36",
+        "b88",
+    ]
+)
+
+
 def state_name(case: Case, scenario: str) -> str:
     """A state of the loop or a doubt, in full."""
     if scenario == JOINT:
@@ -102,20 +139,34 @@ def source_name(case: Case, source: SourceNote) -> str:
     if source.key == source.seen:
         return seen
     place = f", {plain(source.place)}" if source.place else ""
-    return f"{source_title(source.key)}{place} ({seen})"
+    return f"{source_title(case, source.key)}{place} ({seen})"
 
 
-def source_title(key: str) -> str:
-    """The key of a source as a designation: norms in capitals, papers as they are."""
-    return (
-        key.upper().replace("-", " ", 1)
-        if key.startswith(("en-", "iso-", "din-", "ufc-", "vdi-", "ped-"))
-        else key
-    )
+def source_title(case: Case, key: str) -> str:
+    """The key of a source as a designation: norms and bodies in capitals, people with theirs, numbers behind."""
+    known = f"source.{key}"
+    if known in case.words:
+        return case.words(known)
+    steps = key.split("-")
+    count = next((k for k, step in enumerate(steps) if step[0].isdigit()), len(steps))
+    named = [step.upper() if step in _BODIES else step.capitalize() for step in steps[:count]]
+    return " ".join([*named, "-".join(steps[count:]).upper()]).strip()
 
 
 def assumption_value(case: Case, assumption: Assumption) -> str:
     """What stood in."""
     if assumption.value is not None:
-        return case.say(assumption.value)
+        return case.say.thin(assumption.value) if _is_thin(assumption) else case.say(assumption.value)
     return word_name(case, assumption.word or "")
+
+
+def assumption_range(case: Case, assumption: Assumption) -> str:
+    """Between what it lies elsewhere in the trade; nothing where no range is given."""
+    low, high = assumption.low, assumption.high
+    if low is None or high is None:
+        return ""
+    return case.say.thin_between(low, high) if _is_thin(assumption) else case.say.between(low, high)
+
+
+def _is_thin(assumption: Assumption) -> bool:
+    return assumption.field.endswith(("/thickness", "/outerDiameter", "/bore"))

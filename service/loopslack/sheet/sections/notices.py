@@ -41,6 +41,8 @@ def _worded(case: Case, advisory: Advisory) -> tuple[str, str]:
     numbers["subject"] = "" if advisory.subject is None else subject_name(case, advisory.subject)
     check = _check_of(case, advisory)
     remedy = words.or_else(f"advisory.{advisory.code}.remedy", plain(advisory.remedy))
+    if advisory.code == "membrane-temperature" and _cooled(case):
+        remedy = words("notices.larger-cooling-vessel")
     if check is None:
         return _plain_worded(case, advisory, numbers), remedy
     key = f"advisory.{advisory.code}.message"
@@ -51,13 +53,19 @@ def _worded(case: Case, advisory: Advisory) -> tuple[str, str]:
     return f"{state_name(case, check.scenario)}: {words(key, **numbers)}", remedy
 
 
+def _cooled(case: Case) -> bool:
+    """Whether a cooling vessel stands before the vessel already."""
+    sized = case.vessel is not None and case.vessel.cooling_vessel is not None
+    return sized or any(part.kind == "cooling-vessel" for part in case.result.content.parts)
+
+
 def _plain_worded(case: Case, advisory: Advisory, numbers: dict[str, str]) -> str:
     key = f"advisory.{advisory.code}.message"
     if key not in case.words:
         return plain(advisory.message)
     if advisory.code == "not-assessed":
         numbers["state"] = state_name(case, advisory.subject or "")
-        numbers["reason"] = plain(advisory.message.partition(": not computed. ")[2])
+        numbers["reason"] = case.words.phrase(plain(advisory.message.partition(": not computed. ")[2]))
     if advisory.code == "soft-solder":
         numbers["runs"] = plain(advisory.message.partition(" joints in ")[2].rstrip("."))
     return case.words(key, **numbers)

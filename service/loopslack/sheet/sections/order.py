@@ -1,5 +1,6 @@
 """What to order, and what every part of the loop holds."""
 
+from loopslack.calc.order_list import ROOM
 from loopslack.sheet.case import Case
 from loopslack.sheet.lines import Beside, Column, Row, Section, Table
 from loopslack.sheet.sections.fluids import fluid_name
@@ -36,9 +37,11 @@ def _items(case: Case) -> Table:
             )
     if found.glycol is not None and found.glycol.value > 0:
         rows.append((words("order.glycol"), say(found.glycol)))
-    if found.water is not None:
+    if found.water is not None and found.glycol is not None and found.glycol.value > 0:
         rows.append((words("order.water"), say(found.water)))
-    rows.append((words("order.ready-mix", fluid=fluid_name(case)), say(found.ready_mix)))
+    instead = found.glycol is not None and found.glycol.value > 0
+    fluid = words("order.ready-mix", fluid=fluid_name(case)) if instead else fluid_name(case)
+    rows.append((fluid, say(found.ready_mix)))
     size = (
         words("order.beyond-table")
         if found.relief_nominal_size is None
@@ -60,6 +63,7 @@ def _items(case: Case) -> Table:
         loop=say(found.content),
         vessel=say(found.vessel_content),
         loss=say(found.filling_loss),
+        temperature=say(case.write.temperature(ROOM)),
     )
     return Table(words("table.order"), columns, tuple(Row(row) for row in rows), note)
 
@@ -67,17 +71,20 @@ def _items(case: Case) -> Table:
 def _contents(case: Case) -> Table:
     words, say, content = case.words, case.say, case.result.content
     named = list(zip(case.part_names(), content.parts, strict=True))
-    rows = []
+    rows: list[tuple[str, str, str]] = []
     for name, part in named[:MOST_PARTS]:
         ranged = "" if part.low is None or part.high is None else say.between(part.low, part.high)
-        rows.append(Row((name, say(part.content), ranged)))
+        rows.append((name, say(part.content), ranged))
     if len(named) > MOST_PARTS:
-        rows.append(Row((words("notices.more", number=len(named) - MOST_PARTS), "", "")))
+        rows.append((words("notices.more", number=len(named) - MOST_PARTS), "", ""))
     ranged = "" if content.low is None or content.high is None else say.between(content.low, content.high)
-    rows.append(Row((words("order.total"), say(content.total), ranged)))
+    rows.append((words("order.total"), say(content.total), ranged))
     columns = (
         Column(words("column.part")),
         Column(words("column.content"), "number"),
         Column(words("column.range"), "number"),
     )
-    return Table(words("table.content"), columns, tuple(rows), words("table.content-note"))
+    title = words("table.content")
+    if any(last for _, _, last in rows):
+        return Table(title, columns, tuple(Row(row) for row in rows), words("table.content-note"))
+    return Table(title, columns[:2], tuple(Row(row[:2]) for row in rows))

@@ -190,9 +190,14 @@ def _margins(case: Case) -> Table:
 
 
 def _tightness(case: Case, check: Check) -> tuple[int, float]:
-    """Order by weight of the mark, then by the margin as a share of its limit."""
+    """Order by weight of the mark, then by the margin as a share of its limit.
+
+    Where none is allowed and there is none, as with steam at the station, nothing is tight: such a row comes last.
+    """
     weight = _WEIGHT[mark_of(case, check)]
     if check.margin is None:
         return weight, float("-inf")
+    if check.verdict == "holds" and check.limit is not None and check.limit.value == check.margin.value == 0:
+        return weight, float("inf")
     limit = abs(check.limit.value) if check.limit is not None else 0.0
     return weight, check.margin.value / limit if limit else check.margin.value

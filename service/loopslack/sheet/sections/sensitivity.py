@@ -3,9 +3,9 @@
 from loopslack.contract.answers_sizing import HeadRoomRow, SensitivityRow
 from loopslack.sheet.case import Case
 from loopslack.sheet.figures.bars import sensitivity as figure
-from loopslack.sheet.lines import Beside, Block, Column, Row, Section, Table
+from loopslack.sheet.lines import Beside, Block, Column, Row, Section, Table, Text
 from loopslack.sheet.sections.names import state_name
-from loopslack.sheet.sections.sizing_names import input_name, input_number
+from loopslack.sheet.sections.sizing_names import input_name, input_number, input_range
 from loopslack.sheet.words import plain
 
 _NOTHING = 1e-6  # share of the volume
@@ -39,28 +39,39 @@ def sensitivity(case: Case) -> Section | None:
     )
     moved = [row for row in found.inputs if row.decides or _moves(row)]
     rows = tuple(Row(_cells(case, row)) for row in moved)
-    still = ", ".join(input_name(case, row.input) for row in found.inputs if row not in moved)
+    others = [row for row in found.inputs if row not in moved]
+    helpless = ", ".join(input_name(case, row.input) for row in others if not _ends(row))
+    still = ", ".join(input_name(case, row.input) for row in others if _ends(row))
     note = words("table.sensitivity-note")
+    if helpless:
+        note = f"{note} {words('sensitivity.helpless', inputs=helpless)}"
     if still:
         note = f"{note} {words('sensitivity.still', inputs=still)}"
-    blocks.append(Table(words("table.sensitivity"), columns, rows, note, compact=True))
+    if rows:
+        blocks.append(Table(words("table.sensitivity"), columns, rows, note, compact=True))
+    else:
+        blocks.append(Text(note))
     return Section("sensitivity", words("section.sensitivity"), tuple(blocks))
 
 
 def _moves(row: SensitivityRow) -> bool:
     """Whether an input moves the volume by more than the solvers' own rounding."""
-    ends = [end.nominal_volume.value for end in (row.low, row.high) if end.nominal_volume is not None]
-    return row.largest_change is None or not ends or row.largest_change.value > _NOTHING * max(ends)
+    ends = _ends(row)
+    return bool(ends) and (row.largest_change is None or row.largest_change.value > _NOTHING * max(ends))
+
+
+def _ends(row: SensitivityRow) -> list[float]:
+    """The volumes at the ends of the range, where a vessel holds."""
+    return [end.nominal_volume.value for end in (row.low, row.high) if end.nominal_volume is not None]
 
 
 def _cells(case: Case, row: SensitivityRow) -> tuple[str, ...]:
     words, say = case.words, case.say
     none = words("volume.none")
-    low, high = (input_number(case, row.input, end.value) for end in (row.low, row.high))
     return (
         input_name(case, row.input),
         input_number(case, row.input, row.present),
-        words("figure.from-to", low=low, high=high),
+        input_range(case, row.input, row.low.value, row.high.value),
         none if row.low.nominal_volume is None else say(row.low.nominal_volume),
         none if row.high.nominal_volume is None else say(row.high.nominal_volume),
         words("sensitivity.decides") if row.decides else say(row.largest_change),

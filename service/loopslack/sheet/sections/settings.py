@@ -1,6 +1,8 @@
 """The card that hangs at the vessel: what to set, what to fill to on the day, what the gauge should show."""
 
+from loopslack.contract.answers_common import AnyQuantity
 from loopslack.contract.answers_loop import SettingsCard
+from loopslack.contract.quantity import Pressure
 from loopslack.sheet.case import Case
 from loopslack.sheet.figures.filling import fill_pressure_over_temperature
 from loopslack.sheet.lines import (
@@ -19,25 +21,29 @@ from loopslack.sheet.lines import (
 
 
 def settings(case: Case) -> Section:
-    """The card, or why there is none."""
+    """The card, or why there is none.
+
+    Settings of a vessel that was not chosen are shown, but not as a card: nobody shall hang them up.
+    """
     words, card = case.words, case.result.settings
     if card is None:
         return Section("settings", words("section.settings"), (Text(words("settings.none"), "stop"),))
     figure = fill_pressure_over_temperature(case)
-    lead: tuple[Text, ...] = ()
-    if not case.chosen:
-        lead = (Text(words("settings.not-chosen"), "stop"),)
+    lead = Text(words("settings.not-chosen"), "stop")
     table = _by_temperature(case, card)
     upper = Beside((Facts(tuple(_facts(case, card))),), (table,) if figure is None else (figure,))
+    if not case.chosen:
+        beside = Beside((_readings(case, card),), () if figure is None else (table,))
+        return Section("settings", words("section.settings-nearest"), (lead, upper, beside))
     steps = Bullets(tuple(words.phrase(step) for step in card.instructions), numbered=True)
     lower = Beside((_readings(case, card), steps), () if figure is None else (table,))
     names = ("blank.date", "blank.temperature", "blank.pressure", "blank.name")
     blanks = Blanks(tuple(words(name) for name in names))
-    title = words("settings.card") if case.chosen else words("settings.card-nearest")
+    title = words("settings.card")
     return Section(
         "settings",
         words("section.settings"),
-        (Card(title, (*lead, upper, lower, blanks)),),
+        (Card(title, (upper, lower, blanks)),),
         on_new_page=True,
     )
 
@@ -64,7 +70,7 @@ def _facts(case: Case, card: SettingsCard) -> list[Fact]:
         Fact(
             words("fact.fill"),
             say(card.fill_pressure),
-            words("settings.at", temperature=say(card.window.temperature)),
+            _at(case, card),
             large=True,
         ),
         Fact(
@@ -88,6 +94,23 @@ def _facts(case: Case, card: SettingsCard) -> list[Fact]:
     return found
 
 
+def _at(case: Case, card: SettingsCard) -> str:
+    """At which temperature the fill pressure counts, and what the gauge then shows where it stands elsewhere."""
+    words, say = case.words, case.say
+    told = words("settings.at", temperature=say(card.window.temperature))
+    filled = _filled(card)
+    if filled is None:
+        return told
+    return f"{told}; {words('settings.on-gauge', reading=say(filled))}"
+
+
+def _filled(card: SettingsCard) -> Pressure | None:
+    """What the gauge shows once the loop is filled, where it stands at another height than the vessel."""
+    if card.gauge_height.value == 0:
+        return None
+    return next((one.reading for one in card.readings if one.state == "fill"), None)
+
+
 def _by_temperature(case: Case, card: SettingsCard) -> Table:
     words, say = case.words, case.say
     rows = []
@@ -104,7 +127,21 @@ def _by_temperature(case: Case, card: SettingsCard) -> Table:
         Column(words("figure.recommended"), "number"),
         Column(words("figure.highest"), "number"),
     )
-    return Table(words("table.fill"), columns, tuple(rows), compact=True)
+    return Table(words("table.fill"), columns, tuple(rows), _note(case, card), compact=True)
+
+
+def _note(case: Case, card: SettingsCard) -> str:
+    """By how much the gauge differs from the vessel; nothing where both stand at one height."""
+    filled = _filled(card)
+    if filled is None:
+        return ""
+    less = card.fill_pressure.value - filled.value
+    unit = case.write.pressure_difference(0.0).unit
+    shown = case.say(AnyQuantity(value=abs(less), unit=unit))
+    height = case.say.size(card.gauge_height)
+    return case.words(
+        "settings.gauge-above" if less > 0 else "settings.gauge-below", height=height, less=shown
+    )
 
 
 def _readings(case: Case, card: SettingsCard) -> Table:

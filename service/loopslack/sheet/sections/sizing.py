@@ -61,7 +61,7 @@ def _volumes(case: Case) -> Table:
 def _choice(case: Case) -> str:
     words, selection = case.words, case.result.selection
     told = words(
-        "selection.sentence",
+        "selection.sentence" if case.chosen else "selection.none",
         considered=selection.considered,
         ranked=words(f"selection.by-{selection.ranked_by}"),
     )

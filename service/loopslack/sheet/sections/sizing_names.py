@@ -46,6 +46,15 @@ def input_name(case: Case, moved: str) -> str:
     return plain(moved)
 
 
+def input_range(case: Case, moved: str, low: AnyQuantity, high: AnyQuantity) -> str:
+    """The range of an input, its unit written once."""
+    ends = input_number(case, moved, low), input_number(case, moved, high)
+    bare, _, unit = ends[0].rpartition(NO_BREAK)
+    if bare and ends[1].endswith(f"{NO_BREAK}{unit}"):
+        ends = bare, ends[1]
+    return case.words("figure.from-to", low=ends[0], high=ends[1])
+
+
 def input_number(case: Case, moved: str, quantity: AnyQuantity) -> str:
     """The number of an input as the trade writes it."""
     say = case.say

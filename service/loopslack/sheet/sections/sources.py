@@ -22,11 +22,12 @@ def sources(case: Case) -> Section | None:
     for key in sorted(keys):
         source = known[key]
         year = "" if source.year is None else f", {source.year}"
+        publisher = words.phrase(plain(source.publisher))
         rows.append(
             Row(
                 (
-                    source_title(key),
-                    f"{plain(source.title)}. {plain(source.publisher)}{year}.",
+                    source_title(case, key),
+                    f"{plain(source.title)}. {publisher[:1].upper()}{publisher[1:]}{year}.",
                     words(f"seen.{source.seen}"),
                 )
             )
