@@ -17,6 +17,9 @@ BOILING_LOWEST = 278.15
 BOILING_HIGHEST = 485.15
 ZERO_CELSIUS = 273.15
 
+FLUID = "/fluid"
+"""Where every question states its fluid."""
+
 ROUNDING = 1e-9
 """Kelvin by which a temperature may miss a limit: -40 degC, converted, is 233.14999999999998 K."""
 
@@ -129,6 +132,10 @@ class Fluid(ABC):
         """Growth of the volume from a cold to a hot temperature (K), as a share of the cold volume."""
         return self.density(cold) / self.density(hot) - 1.0
 
+    def place_of(self, subject: str) -> str:  # noqa: ARG002 - a fluid by tables has one for each subject
+        """Where a question states the data of a subject: a pointer, as that of an error."""
+        return FLUID
+
     def refuse_liquid(self, temperature: float, subject: str = "density") -> NoReturn:
         """Refuse a temperature outside the liquid range."""
         remedy = "Keep the liquid within that range"
@@ -136,7 +143,8 @@ class Fluid(ABC):
             remedy += (
                 "; below it the liquid freezes. Choose a stronger mixture or a higher lowest temperature"
             )
-        refuse_temperature(f"{subject} of {self.name}", temperature, self.lowest, self.highest, remedy + ".")
+        rule, place = f"{subject} of {self.name}", self.place_of(subject)
+        refuse_temperature(rule, temperature, self.lowest, self.highest, remedy + ".", place)
 
     def refuse_boiling(self, temperature: float) -> NoReturn:
         """Refuse a temperature outside the range of the boiling data."""
@@ -146,6 +154,7 @@ class Fluid(ABC):
             self.boiling_lowest,
             self.boiling_highest,
             "Lower the pressure, or the temperature, at which the liquid would boil.",
+            self.place_of("boiling"),
         )
 
     def refuse_pressure(self, pressure: float) -> NoReturn:
@@ -155,16 +164,20 @@ class Fluid(ABC):
             f"The absolute pressure is {pressure / 1e5:.6g} bar; boiling of {self.name} is known from "
             f"{low / 1e5:.6g} to {high / 1e5:.6g} bar.",
             remedy="Bring the pressure into that range.",
+            pointer=self.place_of("boiling"),
             facts={"number": pressure, "low": low, "high": high, "rule": f"boiling of {self.name}"},
         )
 
 
-def refuse_temperature(rule: str, temperature: float, low: float, high: float, remedy: str) -> NoReturn:
+def refuse_temperature(
+    rule: str, temperature: float, low: float, high: float, remedy: str, pointer: str = FLUID
+) -> NoReturn:
     """Refuse a temperature in K, told in degC."""
     raise OutOfRange(
         f"The temperature is {celsius(temperature)} degC; {rule} is known from {celsius(low)} to "
         f"{celsius(high)} degC.",
         remedy=remedy,
+        pointer=pointer,
         facts={"number": temperature, "low": low, "high": high, "rule": rule},
     )
 

@@ -13,6 +13,7 @@ from msgspec import Struct
 from loopslack.calc.fluids_base import (
     BOILING_HIGHEST,
     BOILING_LOWEST,
+    FLUID,
     ROUNDING,
     Fluid,
     Vapour,
@@ -33,6 +34,12 @@ _MAY_RISE_BELOW = 283.15  # dilute mixtures are densest near 4 degC
 _LEAST_POINTS = 3
 # The vapour of such a fluid is treated as steam. Bubble pressures far from those of water belie that.
 _LEAST_OF_WATER, _MOST_OF_WATER = 0.5, 1.02
+
+
+_DENSITIES = f"{FLUID}/points"
+_BOILING = f"{FLUID}/boiling"
+_BOILING_POINTS = f"{_BOILING}/points"
+_HEAT_CAPACITIES = f"{FLUID}/heatCapacity"
 
 
 class BoilsLike(Struct, frozen=True, kw_only=True):
@@ -68,14 +75,22 @@ class OwnFluid(Fluid):
             raise Contradiction(
                 f"The freezing point, {celsius(freezing_point)} degC, lies above every density of {name}.",
                 remedy="State densities of the liquid.",
+                pointer=f"{FLUID}/freezingPoint",
             )
         self.like = None
         self._bound(
             (lowest, self._density.last),
             self._boil_like(boiling) if isinstance(boiling, Fluid) else self._boil_by_table(boiling),
         )
-        self._heat_capacity = _curve(heat_capacity, f"heat capacity of {name}") if heat_capacity else None
-        self._viscosity = _curve(viscosity, f"viscosity of {name}") if viscosity else None
+        self._heat_capacity = _curve(heat_capacity, "heat capacity", name) if heat_capacity else None
+        self._viscosity = _curve(viscosity, "viscosity", name) if viscosity else None
+
+    def place_of(self, subject: str) -> str:
+        """See ``Fluid``."""
+        boiling = _BOILING if self.like is not None else _BOILING_POINTS
+        return {"density": _DENSITIES, "boiling": boiling, "heat capacity": _HEAT_CAPACITIES}.get(
+            subject, FLUID
+        )
 
     def density(self, temperature: float) -> float:
         """See ``Fluid``."""
@@ -131,18 +146,22 @@ class OwnFluid(Fluid):
         raise Missing(
             f"How much of {self.name} freezes is not known: a freezing point alone does not tell.",
             remedy="Keep the fluid above its freezing point.",
+            pointer=f"{FLUID}/freezingPoint",
             facts={"number": temperature, "low": self.freezing_point},
         )
 
     def _stated(self, curve: MonotoneCurve | None, subject: str, temperature: float) -> float:
         if curve is None:
             raise Missing(
-                f"The {subject} of {self.name} was not stated.", remedy=f"State the {subject} by table."
+                f"The {subject} of {self.name} was not stated.",
+                remedy=f"State the {subject} by table.",
+                pointer=self.place_of(subject),
             )
         low, high = max(curve.first, self.freezing_point), curve.last
         if not low - ROUNDING <= temperature <= high + ROUNDING:
             rule = f"{subject} of {self.name}"
-            refuse_temperature(rule, temperature, low, high, "State a table that covers it.")
+            place = self.place_of(subject)
+            refuse_temperature(rule, temperature, low, high, "State a table that covers it.", place)
         return curve.at(temperature)
 
     def _boil_like(self, reference: Fluid) -> tuple[float, float]:
@@ -155,23 +174,25 @@ class OwnFluid(Fluid):
     def _boil_by_table(self, points: Points) -> tuple[float, float]:
         self.mass_fraction = self.volume_fraction = self.glycol_activity = 0.0
         self.water_activity = 1.0
-        table = _checked(points, f"bubble pressure of {self.name}")
-        for temperature, pressure in table:
-            _must_be_steam(self.name, temperature, pressure)
+        table = _checked(points, f"bubble pressure of {self.name}", _BOILING_POINTS)
+        for k, (temperature, pressure) in enumerate(table):
+            _must_be_steam(self.name, temperature, pressure, f"{_BOILING_POINTS}/{k}")
         # In ln p over -1/T every bubble line is nearly straight, and both rise.
         self._bubble = MonotoneCurve([(-1.0 / temperature, log(pressure)) for temperature, pressure in table])
         if any(after <= before for before, after in pairwise(self._bubble.ys)):
             raise Contradiction(
-                f"The bubble pressure of {self.name} must rise with temperature.", remedy="Check the table."
+                f"The bubble pressure of {self.name} must rise with temperature.",
+                remedy="Check the table.",
+                pointer=_BOILING_POINTS,
             )
         self.lowest_pressure, self.highest_pressure = table[0][1], table[-1][1]
         return table[0][0], table[-1][0]
 
 
-def _must_be_steam(name: str, temperature: float, pressure: float) -> None:
+def _must_be_steam(name: str, temperature: float, pressure: float, place: str) -> None:
     if not BOILING_LOWEST - ROUNDING <= temperature <= BOILING_HIGHEST + ROUNDING:
         rule, remedy = "the steam of an own fluid", "Leave this point out of the table."
-        refuse_temperature(rule, temperature, BOILING_LOWEST, BOILING_HIGHEST, remedy)
+        refuse_temperature(rule, temperature, BOILING_LOWEST, BOILING_HIGHEST, remedy, place)
     of_water = water.saturation_pressure(Temperature(temperature))
     if not _LEAST_OF_WATER <= pressure / of_water <= _MOST_OF_WATER:
         raise NotApplicable(
@@ -179,46 +200,54 @@ def _must_be_steam(name: str, temperature: float, pressure: float) -> None:
             f"water at {of_water / 1e5:.4g} bar. The method takes the vapour as steam, which asks for "
             f"{_LEAST_OF_WATER:g} to {_MOST_OF_WATER:g} times the pressure of water.",
             remedy="Check that the table is in absolute pressure, or use a fluid on a water base.",
+            pointer=place,
             facts={"temperature": temperature, "number": pressure, "water": of_water},
         )
 
 
 def _density_curve(points: Points) -> MonotoneCurve:
-    table = _checked(points, "density")
+    table = _checked(points, "density", _DENSITIES)
     low, high = _DENSITY_CREDIBLE
-    for (before, dense), (after, thin) in pairwise(table):
+    for k, ((before, dense), (after, thin)) in enumerate(pairwise(table), start=1):
         if thin >= dense and after > _MAY_RISE_BELOW:
             raise Contradiction(
                 f"The density rises from {celsius(before)} to {celsius(after)} degC; "
                 "a liquid expands when heated.",
                 remedy="Check the table of densities.",
+                pointer=f"{_DENSITIES}/{k}/density",
             )
     for temperature, density in table:
         if not low <= density <= high:
             raise Contradiction(
                 f"The density {density:.5g} kg/m3 at {celsius(temperature)} degC is not credible.",
                 remedy=f"State densities between {low:g} and {high:g} kg/m3.",
+                pointer=_DENSITIES,
             )
     return MonotoneCurve(table)
 
 
-def _curve(points: Points, subject: str) -> MonotoneCurve:
-    return MonotoneCurve(_checked(points, subject))
+def _curve(points: Points, subject: str, name: str) -> MonotoneCurve:
+    place = _HEAT_CAPACITIES if subject == "heat capacity" else FLUID
+    return MonotoneCurve(_checked(points, f"{subject} of {name}", place))
 
 
-def _checked(points: Points, subject: str) -> list[tuple[float, float]]:
+def _checked(points: Points, subject: str, place: str) -> list[tuple[float, float]]:
     table = sorted(points)
     if len(table) < _LEAST_POINTS:
         raise Missing(
             f"The {subject} is stated at {len(table)} temperatures; at least {_LEAST_POINTS} are needed.",
             remedy="State more points, covering every temperature the loop reaches.",
+            pointer=place,
         )
     if any(not isfinite(number) or number <= 0.0 for point in table for number in point):
-        raise Contradiction(f"The {subject} must be a positive number everywhere.", remedy="Check the table.")
-    for (before, _), (after, _) in pairwise(table):
+        raise Contradiction(
+            f"The {subject} must be a positive number everywhere.", remedy="Check the table.", pointer=place
+        )
+    for k, ((before, _), (after, _)) in enumerate(pairwise(table), start=1):
         if after - before < 0.01:
             raise Contradiction(
                 f"The {subject} is stated twice at {celsius(after)} degC.",
                 remedy="State each temperature once.",
+                pointer=f"{place}/{k}",
             )
     return table

@@ -203,6 +203,7 @@ class SteamSpace:
                 f"At {pressure / 1e5:.2f} bar absolute in the vessel the collectors ({self.hottest - 273.15:.0f} degC) "
                 f"may or may not boil: the bubble line is known up to {self.fluid.boiling_highest - 273.15:.0f} degC.",
                 remedy="Choose a relief valve with a lower set pressure.",
+                pointer="/reliefValve/setPressure",
                 facts={"pressure": pressure, "stagnationTemperature": self.hottest},
             )
         return self.liquid()

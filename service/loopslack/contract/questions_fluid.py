@@ -86,7 +86,7 @@ class BoilingTable(QuestionPart, frozen=True, kw_only=True, tag_field="kind", ta
         Meta(
             min_length=2,
             max_length=100,
-            description="Points in rising order; nothing is carried beyond them.",
+            description="Three points or more, in rising order; nothing is carried beyond them.",
         ),
     ]
 

@@ -81,6 +81,14 @@ def lies_within(pointer: str, places: Iterable[str]) -> bool:
     return any(pointer == place or pointer.startswith(f"{place}/") for place in places)
 
 
+def within(error: CalculationError, place: str) -> CalculationError:
+    """The same refusal of a question that stands at a place of another."""
+    causes = error.errors if isinstance(error, Refusals) else (error,)
+    for cause in causes:
+        cause.pointer = place + cause.pointer
+    return error
+
+
 def together(errors: Sequence[CalculationError]) -> CalculationError:
     """Several refusals as one, a single one as it is."""
     return errors[0] if len(errors) == 1 else Refusals(errors)

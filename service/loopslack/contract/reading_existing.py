@@ -149,7 +149,7 @@ def _weather(reader: Reader, weather: asked.Weather | None, sun: Sun) -> Weather
             return _given_day(reader, weather)
         return _clear_day(reader, weather or _CLEAR, sun)
     except CalculationError as error:
-        reader.refuse(error, "/weather")
+        reader.refuse(error, error.pointer or "/weather")
         return reader.stand_in(ClearSky())
 
 

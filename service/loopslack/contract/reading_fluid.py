@@ -40,7 +40,7 @@ def read_fluid(reader: Reader, fluid: asked.Fluid, place: str) -> Fluid:
         if isinstance(fluid, asked.OwnFluid):
             return _own(reader, fluid, place)
     except CalculationError as error:
-        reader.refuse(error, place)
+        reader.refuse(error, error.pointer or f"{place}/concentration")  # the own fluid points at its tables
         return _any_fluid(reader)
     return water()
 

@@ -4,7 +4,7 @@ from typing import NamedTuple
 
 from loopslack.calc.fluids_base import Fluid
 from loopslack.contract import questions as asked
-from loopslack.contract.fields import field_of
+from loopslack.contract.fields import Field, field_of
 from loopslack.contract.part_names import group_names, run_names
 from loopslack.contract.questions_vessels import CoolingVesselGiven
 from loopslack.contract.reader import Assumed, Reader
@@ -15,6 +15,7 @@ from loopslack.contract.reading_fluid import read_fluid
 from loopslack.contract.reading_pipes import read_content as segment_content
 from loopslack.contract.reading_plant import read_line, station_content
 from loopslack.contract.units_out import System
+from loopslack.kernel.errors import CalculationError
 from loopslack.kernel.kinds import Length
 from loopslack.physics.atmosphere import atmospheric_pressure
 
@@ -98,13 +99,23 @@ def read_expansion(question: asked.ExpansionQuestion, reader: Reader) -> Expansi
     altitude = reader.or_default(question.altitude, _ALTITUDE, "", "altitude")
     reader.atmosphere = atmospheric_pressure(Length(altitude))
     pressure = reader.optional_gauge(question.pressure, _PRESSURE, "")
+    fluid = read_fluid(reader, question.fluid, "/fluid")
     return ExpansionReading(
-        read_fluid(reader, question.fluid, "/fluid"),
-        reader.si(question.start_temperature, _START, ""),
-        reader.si(question.end_temperature, _END, ""),
+        fluid,
+        _liquid(reader, fluid, reader.si(question.start_temperature, _START, ""), _START),
+        _liquid(reader, fluid, reader.si(question.end_temperature, _END, ""), _END),
         reader.optional(question.content, _CONTENT, ""),
         reader.atmosphere + (pressure or 0.0),
         reader.atmosphere,
         tuple(reader.assumed),
         question.units or "metric",
     )
+
+
+def _liquid(reader: Reader, fluid: Fluid, temperature: float, field: Field) -> float:
+    """A temperature at which the fluid must be liquid; what is short otherwise may be a table of the caller's own."""
+    try:
+        fluid.density(temperature)
+    except CalculationError as error:
+        reader.refuse(error, "" if fluid.kind == "own" else f"/{field.name}")
+    return temperature

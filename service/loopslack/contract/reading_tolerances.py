@@ -5,6 +5,7 @@ from typing import NamedTuple
 from loopslack.contract.fields import field_of
 from loopslack.contract.questions_criteria import Tolerances as Asked
 from loopslack.contract.reader import Reader
+from loopslack.kernel.errors import NotApplicable
 
 _FIELDS = {name: field_of(Asked, name) for name in Asked.__struct_fields__}
 
@@ -27,7 +28,7 @@ def read_tolerances(reader: Reader, stated: Asked | None) -> Tolerances:
     if stated is None:
         return Tolerances()
     place = "/tolerances"
-    return Tolerances(
+    found = Tolerances(
         reader.optional(stated.pipe_length, _FIELDS["pipe_length"], place),
         reader.optional(stated.collector_content, _FIELDS["collector_content"], place),
         reader.optional(stated.insulation_conductivity, _FIELDS["insulation_conductivity"], place),
@@ -37,3 +38,17 @@ def read_tolerances(reader: Reader, stated: Asked | None) -> Tolerances:
         reader.optional(stated.fill_pressure, _FIELDS["fill_pressure"], place),
         reader.optional(stated.precharge, _FIELDS["precharge"], place),
     )
+    for member, share in (
+        ("pipeLength", found.pipe_length),
+        ("insulationConductivity", found.insulation_conductivity),
+    ):
+        if share is not None and share >= 1:
+            reader.refuse(
+                NotApplicable(
+                    "Off by 100 percent it may be nought; a pipe without length or conductivity cannot be computed.",
+                    remedy="State less than 100 percent.",
+                    pointer=f"{place}/{member}",
+                    facts={"share": share},
+                )
+            )
+    return found

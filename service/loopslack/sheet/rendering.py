@@ -11,6 +11,8 @@ from loopslack.contract.answers import LoopDesignAnswer
 from loopslack.contract.questions import LoopDesignQuestion
 from loopslack.contract.questions_criteria import Extra
 from loopslack.contract.questions_many import FigureQuestion, SheetQuestion
+from loopslack.contract.reading_again import within
+from loopslack.kernel.errors import CalculationError
 from loopslack.sheet.case import Case
 from loopslack.sheet.composing import compose
 from loopslack.sheet.figures.register import FIGURES
@@ -28,19 +30,27 @@ _NEEDED: dict[str, tuple[Extra, ...]] = {
 
 def sheet_html(question: SheetQuestion) -> bytes:
     """Design the loop and set the sheet as HTML."""
-    return render_html(design_loop(asked_in_full(question.design)), question)
+    return render_html(_answer(asked_in_full(question.design)), question)
 
 
 def sheet_pdf(question: SheetQuestion) -> bytes:
     """Design the loop and set the sheet as PDF. Raises ``NotInstalled`` where the typesetter is missing."""
     typesetter()
-    return render_pdf(design_loop(asked_in_full(question.design)), question)
+    return render_pdf(_answer(asked_in_full(question.design)), question)
 
 
 def figure_svg(question: FigureQuestion) -> bytes:
     """Design the loop and draw one figure. Raises ``NothingToDraw`` where the answer has no numbers for it."""
     needed = list(needed_for(question.figure))
-    return render_figure(design_loop(replace(question.design, include=needed)), question)
+    return render_figure(_answer(replace(question.design, include=needed)), question)
+
+
+def _answer(design: LoopDesignQuestion) -> LoopDesignAnswer:
+    """Design a loop; what is refused is pointed at where the question of a sheet has it."""
+    try:
+        return design_loop(design)
+    except CalculationError as error:
+        raise within(error, "/design") from None
 
 
 def needed_for(figure: str) -> tuple[Extra, ...]:

@@ -96,11 +96,12 @@ class StatedWeather(Struct, frozen=True, kw_only=True):
                 f"{len(self.ambients)} ambient temperatures.",
                 remedy="State all three at the same two or more times.",
             )
-        for before, after in pairwise(times):
+        for k, (before, after) in enumerate(pairwise(times), start=1):
             if not 0 < after - before <= _COARSEST:
                 raise Contradiction(
                     f"The weather steps from {before:g} to {after:g} s; times must rise by an hour at most.",
                     remedy="State the weather hourly or finer, in order.",
+                    pointer=f"/weather/points/{k}/time",
                 )
         if not (times[0] >= 0 and times[-1] - times[0] <= LONGEST):
             raise _not_credible("duration of the weather, s", times[-1] - times[0], 0.0, LONGEST)
