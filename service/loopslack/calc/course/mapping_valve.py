@@ -12,7 +12,7 @@ _SMALLEST = 15.0  # mm
 
 
 def lumped_valve(loop: Loop, notes: list[Assumption]) -> ReliefValve:
-    """Carry the valve's pressures to the vessel. Raises ``NotApplicable`` for one in the steam zone."""
+    """Carry the valve's pressures to the vessel. Raises ``NotApplicable`` for one in the steam zone or far below."""
     relief, temperatures = loop.relief, loop.temperatures
     lowest = min(group.height for group in loop.groups)
     if relief.height >= lowest > 0:
@@ -32,6 +32,14 @@ def lumped_valve(loop: Loop, notes: list[Assumption]) -> ReliefValve:
         felt = pressure_under_valve(GaugePressure(gauge), Density(density), Length(relief.height))
         return felt + loop.atmosphere
 
+    if at_vessel(relief.closing_pressure) <= 0:
+        raise not_applicable(
+            f"The relief valve stands {-relief.height:g} m below the vessel; with that much liquid above it, it would "
+            "not shut again before the vessel is under vacuum.",
+            remedy="Correct the height of the valve, or use the stagnation check.",
+            pointer="/reliefValve/height",
+            facts={"valve": relief.height},
+        )
     size = relief.nominal_size or relief_size(loop.aperture)
     if size is None:
         largest, area = TABLE[-1]

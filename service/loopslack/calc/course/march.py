@@ -147,6 +147,7 @@ def _refuse_frozen(loop: LumpedLoop, weather: Weather, begin: float) -> None:
             f"The collectors start at {coldest - 273.15:.4g} degC; the fluid freezes at "
             f"{loop.fluid.freezing_point - 273.15:.4g} degC.",
             remedy="Choose a stronger mixture, or a warmer start of the day.",
+            pointer="/weather" if loop.start.collectors is None else "/start/collectors",
             facts={"start": coldest, "freezing": loop.fluid.freezing_point},
         )
 
