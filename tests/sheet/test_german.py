@@ -48,6 +48,7 @@ FORMULAS = frozenset(
         "sat",
         "abs",
         "open",
+        "eur",
     ]
 )
 _FINGERPRINT = re.compile(r"[0-9a-f]{12,16}")

@@ -10,7 +10,11 @@ from hypothesis import strategies as st
 from msgspec.structs import replace
 
 from loopslack.contract.answering import design_loop
+from loopslack.contract.quantity import Length, Pressure, Volume
+from loopslack.contract.questions_fluid import OwnFluid
 from loopslack.contract.questions_many import FigureQuestion, SheetQuestion
+from loopslack.contract.questions_plant import RatedPart
+from loopslack.contract.questions_vessels import FromStock, StockVessel
 from loopslack.sheet.composing import compose
 from loopslack.sheet.figures.register import FIGURES
 from loopslack.sheet.pdf import pdf
@@ -38,15 +42,44 @@ HOSTILE = [
 ]
 
 
+METRE = Length(value=1.0, unit="m")
+STRONG, WEAK = Pressure(value=10.0, unit="barg"), Pressure(value=3.0, unit="barg")
+
+
+def own_fluid() -> OwnFluid:
+    fluid = asked("alpine-hut-own-fluid").question.design.fluid
+    assert isinstance(fluid, OwnFluid)
+    return fluid
+
+
 def asked_with(text: str) -> SheetQuestion:
     """The wash house, with a text in every place a caller can write one."""
     question, _ = asked("wash-house")
     design = question.design
     groups = [replace(design.collectors[0], id=text[:64] or "x")]
     runs = [replace(run, id=(text[:60] or "x") + str(k)) for k, run in enumerate(design.pipe_runs)]
+    # a sound part, and one that is too weak, so that an advisory speaks of it
+    parts = [
+        RatedPart(name=text[:64] or "x", height=METRE, rated_pressure=STRONG),
+        RatedPart(name=(text[:60] or "x") + "2", height=METRE, rated_pressure=WEAK),
+    ]
+    articles = [
+        StockVessel(
+            id=(text[:58] or "x") + str(k), nominal_volume=Volume(value=k, unit="L"), rated_pressure=STRONG
+        )
+        for k in (25.0, 80.0, 100.0)
+    ]
     return replace(
         question,
-        design=replace(design, collectors=groups, pipe_runs=runs, include=[]),
+        design=replace(
+            design,
+            collectors=groups,
+            pipe_runs=runs,
+            parts=parts,
+            vessel=FromStock(items=articles),
+            fluid=replace(own_fluid(), name=text[:64] or "x"),
+            include=["derivation"],
+        ),
         project=text[:200],
         customer=text[:200],
         author=text[:200],

@@ -176,7 +176,7 @@ def test_the_verdict_is_that_of_the_answer_and_a_vessel_not_chosen_is_not_offere
     assert (result.verdict == "holds") == (of.banner.word in {"HOLDS", "HÄLT"})
     shown = texts(of)
     offered = re.search(r"(Expansion vessel|Ausdehnungsgefäß) ", shown.splitlines()[0])
-    assert bool(offered) == (result.chosen_vessel is not None)
+    assert bool(offered) == (result.chosen_vessel is not None and result.verdict == "holds")
 
 
 def test_us_units_stand_on_the_sheet_of_a_question_in_us_units() -> None:

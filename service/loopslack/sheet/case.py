@@ -58,8 +58,8 @@ class Case:
 
     @property
     def chosen(self) -> bool:
-        """Whether the vessel may be built."""
-        return self.result.chosen_vessel is not None
+        """Whether the vessel may be built: never on a verdict that says not to."""
+        return self.result.chosen_vessel is not None and self.result.verdict == "holds"
 
     @cached_property
     def counted(self) -> frozenset[str]:

@@ -26,6 +26,7 @@ _UNPRINTABLE = frozenset({"Cc", "Cs", "Co", "Cn"})
 _SENTENCE = re.compile(r"(?<=[.])\s+(?=[A-Z])")
 _UNITS = {
     "degC": "°C",
+    "degF": "°F",
     "kJ/m2K": "kJ/(m²·K)",
     "W/m2K": "W/(m²·K)",
     "W/m2": "W/m²",

@@ -5,7 +5,18 @@ from collections.abc import Iterator
 from msgspec import Struct
 
 from loopslack.sheet.case import Case
-from loopslack.sheet.drawing import LETTER, SMALL, WIDTH, Canvas, Point, Scale, fitted, spread, tick_labels
+from loopslack.sheet.drawing import (
+    LETTER,
+    SMALL,
+    WIDTH,
+    Canvas,
+    Point,
+    Scale,
+    fitted,
+    spread,
+    tick_labels,
+    width_of,
+)
 from loopslack.sheet.figures.symbols import collector, cooling_vessel, relief_valve, station, vessel
 from loopslack.sheet.lines import Drawing
 
@@ -156,5 +167,6 @@ def _name(canvas: Canvas, labels: list[_Label], height: float) -> None:
         canvas.path([(x, at), (_LABELS - 12.0, y), (_LABELS - 4.0, y)], "soft", weight=0.7)
         canvas.ring((x, at), 1.4, "solid", weight=0.5)
         room = WIDTH - _LABELS - 4.0
-        canvas.text((_LABELS, y - 1.0), fitted(label.name, room), bold=True)
+        size = LETTER if width_of(label.name) <= room else SMALL
+        canvas.text((_LABELS, y - 1.0), fitted(label.name, room, size), size=size, bold=True)
         canvas.text((_LABELS, y + LETTER), fitted(label.more, room, SMALL), size=SMALL)

@@ -61,5 +61,8 @@ def day(case: Case) -> Section | None:
         sure = words("day.in-all") if flag in course.certain_flags else words("day.in-some")
         blocks.append(Text(f"{words.or_else(f'flag.{flag}', plain(flag))} {sure}", tone))
     notes = tuple(words.phrase(plain(note.note)) for note in course.notes)
-    blocks += [Text(words("day.granted"), "lead"), Bullets(notes)]
+    blocks += [
+        Text(words("day.granted-si" if case.design.units == "us" else "day.granted"), "lead"),
+        Bullets(notes),
+    ]
     return Section("day", words("section.day"), tuple(blocks))

@@ -11,12 +11,24 @@ _MARKS: dict[str, Mark] = {
 }
 
 
+def _together(case: Case) -> Mark:
+    """All doubts at once, from the checks that decide: what fails without any doubt is told where it fails."""
+    verdicts = {
+        check.verdict
+        for check in case.result.checks
+        if check.scenario == "all-doubts" and check.group == "core"
+    }
+    if "does-not-hold" in verdicts:
+        return "fails"
+    return "open" if "not-assessed" in verdicts or not verdicts else "holds"
+
+
 def doubts(case: Case) -> Table:
     """Every doubt on its own, then all at once, and which of them count."""
     words = case.words
     shift = case.say(case.write.temperature_difference(case.loop.criteria.stagnation_doubt))
     outcomes: list[tuple[str, Mark]] = [(doubt.id, _MARKS[doubt.verdict]) for doubt in case.result.doubts]
-    outcomes.append(("all-doubts", "holds" if case.result.robust else "fails"))
+    outcomes.append(("all-doubts", _together(case)))
     rows = []
     for id, mark in outcomes:
         shown: Mark = "aside" if mark == "fails" and id not in case.counted else mark

@@ -50,7 +50,7 @@ def sensitivity(case: Case) -> Section | None:
     if rows:
         blocks.append(Table(words("table.sensitivity"), columns, rows, note, compact=True))
     else:
-        blocks.append(Text(note))
+        blocks.append(Text(note, "small"))
     return Section("sensitivity", words("section.sensitivity"), tuple(blocks))
 
 

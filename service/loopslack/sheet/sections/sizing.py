@@ -65,6 +65,8 @@ def _choice(case: Case) -> str:
         considered=selection.considered,
         ranked=words(f"selection.by-{selection.ranked_by}"),
     )
+    if not case.chosen:  # what is large enough is no vessel to take while another check fails
+        return told
     others = len(selection.alternatives) + selection.alternatives_omitted
     if others:
         names = ", ".join(

@@ -42,7 +42,9 @@ def input_name(case: Case, moved: str) -> str:
         return words(f"input.{moved}")
     for build in ("flat-plate", "evacuated-tube-direct", "evacuated-tube-heat-pipe"):
         if moved.endswith(f"-{build}"):
-            return words.or_else(f"input.{moved.removesuffix(f'-{build}')}", plain(moved))
+            name = words.or_else(f"input.{moved.removesuffix(f'-{build}')}", plain(moved))
+            several = len({group.type for group in case.design.collectors}) > 1
+            return f"{name} ({words(f'word.{build}')})" if several else name
     return plain(moved)
 
 
