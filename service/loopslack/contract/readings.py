@@ -11,6 +11,7 @@ from loopslack.contract.questions_many import (
     StreamHead,
 )
 from loopslack.contract.reader import Reader
+from loopslack.contract.reading_again import refusing
 from loopslack.contract.reading_existing import read_audit, read_check, read_course
 from loopslack.contract.reading_many import read_batch, read_head
 from loopslack.contract.reading_sizing import read_sizing
@@ -20,6 +21,7 @@ Read = Callable[[Any, Reader], object]
 """Reads a question and leaves what is refused with the reader."""
 
 
+@refusing
 def _read_sheet(question: SheetQuestion | FigureQuestion, reader: Reader) -> object:
     own = Reader(turn=reader.turn)
     found = read_sizing(question.design, own)
