@@ -186,6 +186,67 @@ def test_a_stock_beyond_the_operators_limit_refuses_the_head():
     assert [(fault.pointer, fault.code) for fault in refused.value.faults] == [("/stock", "too-many")]
 
 
+def test_all_that_is_wrong_with_a_design_is_told_at_once():
+    asked = design("a", staticHeight={"value": 9000, "unit": "m"}, vesselZone="inside", frob=1)
+    asked["temperatures"] = {
+        "returnPipe": {"value": 95, "unit": "degC"},
+        "flowPipe": {"value": 80, "unit": "degC"},
+    }
+    assert faults(answered(asked)) == {
+        "/staticHeight": "out-of-range",
+        "/vesselZone": "not-a-member",
+        "/frob": "unknown-field",
+        "/temperatures/returnPipe": "contradiction",
+    }
+
+
+def test_what_a_design_lacks_does_not_hide_what_is_wrong_with_the_rest():
+    asked = {"id": "a", "staticHeight": {"value": 9000, "unit": "m"}, "vesselsInParallel": 2}
+    assert faults(answered(asked, Shared())) == {
+        "/site": "missing",
+        "/collectors": "missing",
+        "/pipeRuns": "missing",
+        "/fluid": "missing",
+        "/staticHeight": "out-of-range",
+        "/reliefValve": "missing",
+    }
+
+
+def refused_head(head):
+    with pytest.raises(Refused) as refused:
+        read_shared(json.dumps(head).encode())
+    return [(fault.pointer, fault.code) for fault in refused.value.faults]
+
+
+def test_a_number_out_of_range_in_what_designs_share_refuses_the_head():
+    far = {"value": -3, "unit": "L"}
+    stock = [HEAD["stock"][0] | {"nominalVolume": far}, *HEAD["stock"][1:]]
+    defaults = HEAD["defaults"] | {"station": {"content": far}}
+    assert refused_head({"stock": stock, "defaults": defaults}) == [
+        ("/stock/0/nominalVolume", "out-of-range"),
+        ("/defaults/station/content", "out-of-range"),
+    ]
+    assert refused_head({"stock": stock, "defaults": defaults | {"vesselZone": "inside"}}) == [
+        ("/stock/0/nominalVolume", "out-of-range"),
+        ("/defaults/station/content", "out-of-range"),
+        ("/defaults/vesselZone", "not-a-member"),
+    ]
+
+
+def test_what_depends_on_the_site_or_may_be_overridden_is_left_to_the_designs():
+    on_a_mountain = {"value": 1.2, "unit": "bara"}
+    stock = [HEAD["stock"][0] | {"ratedPressure": on_a_mountain}]
+    hot_return = {"returnPipe": {"value": 95, "unit": "degC"}, "flowPipe": {"value": 80, "unit": "degC"}}
+    shared = read_shared(
+        json.dumps({"stock": stock, "defaults": HEAD["defaults"] | {"temperatures": hot_return}}).encode()
+    )
+    at_sea = answered(design("a", temperatures={}), shared)
+    assert faults(at_sea) == {"/vessel/items/0/ratedPressure": "out-of-range"}
+    high = HEAD["defaults"]["site"] | {"altitude": {"value": 4500, "unit": "m"}}
+    assert answered(design("b", temperatures={}, site=high), shared).problem is None
+    assert "/temperatures/returnPipe" in faults(answered(design("c", site=high), shared))
+
+
 @pytest.mark.parametrize("head", [b"{}", b'{"stock":null,"defaults":null}', b"{ }"])
 def test_a_head_may_be_empty(head):
     assert read_shared(head) == Shared()

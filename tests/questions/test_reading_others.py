@@ -5,6 +5,7 @@ import json
 import msgspec
 import pytest
 
+from loopslack.contract.answering_course import compute_stagnation_course
 from loopslack.contract.questions import ExpansionQuestion, LoopVolumeQuestion, StagnationCheckQuestion
 from loopslack.contract.questions_criteria import Tolerances
 from loopslack.contract.questions_existing import StagnationCourseQuestion, VesselAuditQuestion
@@ -224,3 +225,77 @@ def test_tolerances_are_read_in_si():
     )
     assert not reader.refused
     assert read_tolerances(reader, None) == (None,) * 8
+
+
+def test_a_temperature_at_which_the_fluid_is_no_liquid_is_pointed_at():
+    data = {
+        "fluid": {"kind": "water"},
+        "startTemperature": quantity(-3, "degC"),
+        "endTemperature": quantity(240, "degC"),
+    }
+    assert pointers(read_expansion, asked(data, ExpansionQuestion)) == [
+        "/startTemperature",
+        "/endTemperature",
+    ]
+
+
+def day(**more):
+    return asked(with_vessel(**more), StagnationCourseQuestion)
+
+
+@pytest.mark.parametrize(
+    ("changes", "at"),
+    [
+        (
+            {"reliefValve": {"setPressure": quantity(4, "barg"), "height": quantity(-150, "m")}},
+            "/reliefValve/height",
+        ),
+        (
+            {
+                "start": {
+                    "kind": "pump-stop",
+                    "time": quantity(12, "h"),
+                    "collectors": quantity(-20, "degC"),
+                    "pipes": quantity(20, "degC"),
+                    "station": quantity(20, "degC"),
+                    "vessel": quantity(20, "degC"),
+                },
+                "fluid": {
+                    "kind": "propylene-glycol",
+                    "concentration": {"kind": "by-mass", "share": quantity(20, "mass-percent")},
+                },
+            },
+            "/start/collectors",
+        ),
+        (
+            {
+                "precharge": {"kind": "optimised"},
+                "pipeRuns": [
+                    {
+                        "role": "return",
+                        "segments": [
+                            {
+                                "length": quantity(2300, "m"),
+                                "tube": {"kind": "content", "contentPerLength": quantity(170, "L/m")},
+                            }
+                        ],
+                    }
+                ],
+            },
+            "/precharge",
+        ),
+    ],
+)
+def test_a_day_that_cannot_be_followed_is_refused_at_the_member_that_stands_in_the_way(changes, at):
+    with pytest.raises(CalculationError) as raised:
+        compute_stagnation_course(day(**changes))
+    assert raised.value.pointer == at
+
+
+def test_a_day_out_of_order_is_refused_at_the_point_that_is():
+    points = [
+        {"time": quantity(hour, "h"), "irradiance": quantity(500, "W/m2"), "ambient": quantity(20, "degC")}
+        for hour in (10, 11, 10.5)
+    ]
+    refused = pointers(read_course, day(weather={"kind": "given", "points": points}))
+    assert refused == ["/weather/points/2/time"]

@@ -3,6 +3,7 @@
 import msgspec
 import pytest
 
+from loopslack.contract.answering import design_loop
 from loopslack.contract.questions_vessels import FromStock, GivenVessel
 from loopslack.contract.reader import Reader
 from loopslack.contract.reading import read_loop
@@ -239,3 +240,68 @@ def test_an_open_or_drain_back_loop_is_refused_as_other_physics() -> None:
         read_loop(question(changed(wash_house(), "/construction", {"openOrDrainBack": True})))
     assert refusal.value.code == "other-physics"
     assert refusal.value.pointer == "/construction/openOrDrainBack"
+
+
+def own(density=None, boiling=None, **more):
+    """A fluid by tables that covers what the loop reaches."""
+    densities = {-25: 1060, 20: 1036, 60: 1010, 120: 960, 180: 900} if density is None else density
+    pressures = {80: 0.4, 100: 0.95, 140: 3.3, 170: 7.3, 200: 14.3} if boiling is None else boiling
+    return {
+        "kind": "own",
+        "name": "ready mix",
+        "points": [
+            {"temperature": quantity(at, "degC"), "density": quantity(dense, "kg/m3")}
+            for at, dense in densities.items()
+        ],
+        "freezingPoint": quantity(-25, "degC"),
+        "boiling": {
+            "kind": "table",
+            "points": [
+                {"temperature": quantity(at, "degC"), "pressure": quantity(high, "bara")}
+                for at, high in pressures.items()
+            ],
+        },
+        **more,
+    }
+
+
+@pytest.mark.parametrize(
+    ("fluid", "at"),
+    [
+        (own({-25: 1060, 20: 1036, 60: 1010}), "/fluid/points"),
+        (own({60: 1010, 120: 960, 180: 900}), "/fluid/points"),
+        (own({-25: 1060, 20: 1036, 60: 1010, 120: 1020, 180: 900}), "/fluid/points/3/density"),
+        (own(boiling={140: 3.3, 170: 7.3, 200: 14.3}), "/fluid/boiling/points"),
+        (own(boiling={80: 0.4, 200: 14.3}), "/fluid/boiling/points"),
+        (own(boiling={80: 0.4, 100: 0.95, 140: 9, 200: 14.3}), "/fluid/boiling/points/2"),
+        (own(boiling={1: 0.00657, 100: 0.95, 140: 3.3, 200: 14.3}), "/fluid/boiling/points/0"),
+        (own({-30: 1070, -20: 1060, 4: 1040}, freezingPoint=quantity(5, "degC")), "/fluid/freezingPoint"),
+        (
+            own(
+                heatCapacity=[
+                    {"temperature": quantity(at, "degC"), "heatCapacity": quantity(3.8, "kJ/kgK")}
+                    for at in (20, 60, 60)
+                ]
+            ),
+            "/fluid/heatCapacity/2/temperature",
+        ),
+    ],
+)
+def test_a_table_of_an_own_fluid_that_will_not_do_is_pointed_at(fluid, at):
+    with pytest.raises(CalculationError) as raised:
+        design_loop(question(changed(wash_house(), "/fluid", fluid)))
+    assert raised.value.pointer == at
+    assert raised.value.remedy
+
+
+def test_a_tolerance_that_leaves_nothing_of_a_pipe_is_refused():
+    whole = quantity(100, "percent")
+    data = {**wash_house(), "tolerances": {"pipeLength": whole, "insulationConductivity": whole}}
+    with pytest.raises(Refusals) as raised:
+        design_loop(question(data))
+    assert [error.pointer for error in raised.value.errors] == [
+        "/tolerances/pipeLength",
+        "/tolerances/insulationConductivity",
+    ]
+    almost = {"tolerances": {"pipeLength": quantity(99, "percent")}}
+    assert design_loop(question({**wash_house(), **almost})).result.band is not None
