@@ -21,7 +21,8 @@ export default async function (context, url) {
   const findings = [];
   for (const name of names) {
     const address = `${url}/sheet-of/${name}`;
-    const body = await sheet(context, url, name);
+    const data = JSON.parse(readFileSync(join(LOOPS, `${name}.json`), "utf8"));
+    const body = await sheet(context, url, name, data);
     await context.route(address, (route) => route.fulfill({ status: 200, contentType: "text/html; charset=utf-8", body }));
     for (const colorScheme of ["light", "dark"]) {
       await page.emulateMedia({ colorScheme });
@@ -36,13 +37,12 @@ export default async function (context, url) {
     }
     await page.setViewportSize({ width: 1280, height: 900 });
     findings.push(...(await page.evaluate(touching)).map((found) => `${name}: ${found}`));
-    await printed(page, name);
+    await printed(page, name, data.design.units === "us" ? LETTER : A4);
   }
   assert.deepEqual(findings, []);
 }
 
-async function sheet(context, url, name) {
-  const data = JSON.parse(readFileSync(join(LOOPS, `${name}.json`), "utf8"));
+async function sheet(context, url, name, data) {
   const answer = await context.request.post(`${url}/v1/calculation-sheet/html`, { data, timeout: 60_000 });
   assert.equal(answer.status(), 200, `${name}: ${await answer.text()}`);
   assert.match(answer.headers()["content-type"], /^text\/html/);
@@ -78,7 +78,7 @@ function touching() {
 }
 
 /** Prints the page: on its own paper, its card on one page, and not many more pages than the PDF of the service. */
-async function printed(page, name) {
+async function printed(page, name, paper) {
   await page.emulateMedia({ colorScheme: "dark" });
   const file = await page.pdf({ preferCSSPageSize: true, printBackground: true, tagged: true });
   const folder = process.env.SCREENSHOTS;
@@ -87,7 +87,7 @@ async function printed(page, name) {
   const text = file.toString("latin1");
   const sizes = [...text.matchAll(/\/MediaBox\s*\[0 0 ([\d.]+) ([\d.]+)\]/g)].map(([, width, height]) => [Math.round(width), Math.round(height)]);
   assert.ok(sizes.length > 0 && sizes.length <= 24, `${name} is printed on ${sizes.length} pages`);
-  for (const size of sizes) assert.deepEqual(size, name === "cabin-us-units" ? LETTER : A4, name);
+  for (const size of sizes) assert.deepEqual(size, paper, name);
   await page.emulateMedia({ media: "print" });
   const broken = await page.evaluate(() => {
     const card = document.querySelector(".card");

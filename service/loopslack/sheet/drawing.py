@@ -220,6 +220,7 @@ class Canvas:
         else:
             corners = {
                 "up": ((0, -1.3), (1.2, 0.9), (-1.2, 0.9)),
+                "down": ((0, 1.3), (1.2, -0.9), (-1.2, -0.9)),
                 "diamond": ((0, -1.4), (1.4, 0), (0, 1.4), (-1.4, 0)),
             }[shape]
             self.path(((x + size * a, y + size * b) for a, b in corners), "solid", closed=True, weight=1)

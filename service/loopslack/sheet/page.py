@@ -33,6 +33,7 @@ from loopslack.sheet.lines import (
 
 _ALIGN = {"text": "txt", "number": "num", "value": "val"}
 _LONG = 28  # letters without a gap, which a narrow column may break
+_WIDE = 20  # letters beyond which a unit is not kept together at any price
 _PART = re.compile(rf"[^\s\u00a0]{{{_LONG}}}(?=[^\s\u00a0])")
 _BREAK = "\x00"  # no text has it any more: see ``words.plain``
 # Scripts that run from right to left.
@@ -177,6 +178,8 @@ def _guarded(text: str) -> str:
     if len(text) > _LONG and _PART.search(text):
         text = _PART.sub(lambda found: f"{found[0]}{_BREAK}", text)
     safe = escape(text).replace(_BREAK, "<wbr>")
+    if len(text) > _WIDE:  # a long unit may break where it is divided
+        safe = safe.replace("/(", "/<wbr>(")
     return f"<bdi>{safe}</bdi>" if _FROM_RIGHT.search(text) else safe
 
 

@@ -49,11 +49,8 @@ def key(canvas: Canvas, top: float, entries: Sequence[Entry], heads: Sequence[st
     for number, entry in enumerate(entries):
         base = top + number * ROW + LETTER
         shape, dash = SIGNS[entry.state]
-        if entry.stop:
-            canvas.sign("cross", (14.0, base - 4.0), 4.0)
-        else:
-            canvas.line((2.0, base - 4.0), (27.0, base - 4.0), weight=1.4, dash=dash)
-            canvas.sign(shape, (14.0, base - 4.0), 3.6)
+        canvas.line((2.0, base - 4.0), (27.0, base - 4.0), weight=1.4, dash=dash)
+        canvas.sign("cross" if entry.stop else shape, (14.0, base - 4.0), 4.0 if entry.stop else 3.6)
         canvas.text((34.0, base), fitted(entry.name, right - 36.0), bold=entry.stop)
         for end, text in zip(ends, entry.numbers, strict=False):
             canvas.text((end, base), text, "end", bold=entry.stop)

@@ -4,6 +4,7 @@ from collections.abc import Iterator
 
 from msgspec import Struct
 
+from loopslack.calc.model import Branch
 from loopslack.sheet.case import Case
 from loopslack.sheet.drawing import (
     LETTER,
@@ -27,6 +28,8 @@ _ROW = 28.0
 _BELOW = 62.0  # room under the vessel connection for the vessel
 _STATION, _VESSEL = 106.0, 176.0
 _LEAST_SPAN = 1.0  # m
+_LANE = 46.0  # of the outer pipes from the middle
+_KNEE = 40.0  # room above the station in which pipes slant to it
 
 
 class _Label(Struct, frozen=True):
@@ -83,30 +86,32 @@ def _field(canvas: Canvas, case: Case, up: Scale) -> Iterator[_Label]:
     shown = case.groups_by_height()[:MOST_GROUPS]
     width = 104.0 / len(shown)
     left, at = _STATION - 52.0, (_STATION, up(loop.top))
+    reach = _LANE if len(shown) == 1 else _LANE + 12.0  # pipes pass beside the field
     for place, (index, group) in enumerate(shown):
         middle = left + (place + 0.5) * width
         y = up(group.height)
+        canvas.line((_STATION - reach, y), (_STATION + reach, y), weight=1.2)  # what joins it to the pipes
         collector(canvas, (middle, y), min(width - 6.0, 64.0))
-        name = f"{case.group_name(index)} \N{MULTIPLICATION SIGN} {group.count}"
-        more = f"{say(parts[index].content)} · {say(case.write.length(group.height))}"
+        count = f"\N{MULTIPLICATION SIGN}\N{NO-BREAK SPACE}{group.count}"
+        more = f"{count} · {say(parts[index].content)} · {say(case.write.length(group.height))}"
         at = (middle + min(width - 6.0, 64.0) / 2.0, y)
-        yield _Label(at, name, more)
+        yield _Label(at, case.group_name(index), more)
     if len(loop.groups) > len(shown):
         rest = words("figure.more-groups", number=len(loop.groups) - len(shown))
         yield _Label(at, rest, words("figure.in-all", content=say(case.result.content.collectors)))
     drawn = {"flow": 0, "return": 0}
+    knee = min(max(up(group.height) for _, group in shown), up(loop.station.height) - _KNEE)
     for index, branch in enumerate(loop.branches[:MOST_RUNS]):
         lane = drawn[branch.role]
         drawn[branch.role] = lane + 1
         side = 1.0 if branch.role == "flow" else -1.0
-        start, end = _STATION + side * (46.0 - 9.0 * lane), _STATION + side * (18.0 - 5.0 * lane)
-        points = [(start, up(branch.segments[0].start_height) + 4.0)]
-        done = 0.0
-        for segment in branch.segments:
-            done += segment.length
-            share = done / branch.length if branch.length else 1.0
-            points.append((start + (end - start) * share, up(segment.end_height)))
+        start, end = _STATION + side * (reach - 6.0 * lane), _STATION + side * (18.0 - 5.0 * lane)
+        points = _run(branch, up, (start, end), knee)
         canvas.path(points, weight=2.0, dash="" if branch.role == "flow" else "7 3")
+        if lane == 0:
+            (x1, y1), (x2, y2) = points[-2:]
+            arrow = "down" if branch.role == "flow" else "up"
+            canvas.sign(arrow, (x1 + 0.7 * (x2 - x1), y1 + 0.7 * (y2 - y1)), 3.6)
         content = parts[len(loop.groups) + index].content
         name = case.run_name(index)
         more = f"{say(content)} · {words('figure.long', length=say(case.write.length(branch.length)))}"
@@ -117,6 +122,21 @@ def _field(canvas: Canvas, case: Case, up: Scale) -> Iterator[_Label]:
     if len(loop.branches) > MOST_RUNS:
         rest = words("figure.more-runs", number=len(loop.branches) - MOST_RUNS)
         yield _Label(at, rest, words("figure.in-all", content=say(case.result.content.pipes)))
+
+
+def _run(branch: Branch, up: Scale, ends: tuple[float, float], knee: float) -> list[Point]:
+    """A pipe run at the heights of its stretches: straight down beside the field, then slanting to the station."""
+    start, end = ends
+    last = up(branch.segments[-1].end_height)
+    points = [(start, up(branch.segments[0].start_height))]
+    for segment in branch.segments:
+        y, (_, before) = up(segment.end_height), points[-1]
+        if before < knee < y:
+            points.append((start, knee))
+        share = (y - knee) / (last - knee) if last > knee else 0.0
+        points.append((start + (end - start) * min(max(share, 0.0), 1.0), y))
+    points[-1] = (end, last)
+    return points
 
 
 def _plant(canvas: Canvas, case: Case, up: Scale) -> Iterator[_Label]:
