@@ -110,7 +110,7 @@ class Provenance(AnswerPart, frozen=True, kw_only=True, gc=False):
     """What computed the answer; with it a calculation can be repeated to the byte."""
 
     service_version: Annotated[str, text("Version of the service.", "1.0.0")]
-    contract_version: Annotated[str, text("Version of the contract.", "1.0.0")]
+    contract_version: Annotated[str, text("Version of the contract.", "1.1.0")]
     equations: Annotated[
         str,
         Meta(description="Fingerprint of all equations, their laws and sources.", examples=["5f0c2c9d1a7e"]),

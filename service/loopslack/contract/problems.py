@@ -144,7 +144,10 @@ PROBLEM_TYPES = _table(
         422,
         "invalid-field",
         "Fields refused",
-        "One or more members are missing, unknown, of the wrong type or outside their range.",
+        (
+            "One or more members are missing, unknown, of the wrong type or outside their range. What the sound "
+            "members contradict in each other is listed beside them."
+        ),
         "Mend every entry of `errors`: each names the place, the rule and the remedy.",
     ),
     (
@@ -287,7 +290,11 @@ class Problem(Struct, frozen=True, kw_only=True, rename="camel", omit_defaults=T
         tuple[FaultyField, ...],
         Meta(
             max_length=MOST_FAULTS,
-            description=f"All faults; the first {MOST_FAULTS} where there are more.",
+            description=(
+                "All faults that can be found at once, in the order of the body; the first "
+                f"{MOST_FAULTS} where there are more. A contradiction with a member that is itself faulty shows once "
+                "that is mended."
+            ),
         ),
     ] = ()
     further_errors: Annotated[

@@ -20,7 +20,7 @@ from loopslack.kernel.equation import fingerprint
 from loopslack.kernel.kinds import Kind
 from loopslack.kernel.units import scale_of
 
-CONTRACT_VERSION = "1.0.0"
+CONTRACT_VERSION = "1.1.0"
 
 _NOISE_OF_OFFSET = 1e-9
 _LINES = {
