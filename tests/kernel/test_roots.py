@@ -6,7 +6,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from loopslack.kernel.roots import bracketed, first_crossing
+from loopslack.kernel.roots import bracketed, first_crossing, near
 
 
 @given(st.floats(-50, 50), st.floats(0.01, 100), st.floats(0.01, 100), st.sampled_from([1, 3, 5]))
@@ -57,3 +57,25 @@ def test_the_lowest_of_several_crossings_is_taken() -> None:
 def test_no_crossing_is_told_apart_from_a_root() -> None:
     assert first_crossing(lambda x: x * x + 1, [-1.0, 0.0, 1.0], 1e-9) is None
     assert first_crossing(math.sin, [1.0], 1e-9) is None
+
+
+@given(
+    st.floats(-50, 50), st.floats(0.01, 100), st.floats(0.01, 100), st.floats(-0.5, 1.5), st.floats(-1, 30)
+)
+def test_a_root_looked_for_nearby_is_found_wherever_the_look_begins(root, below, above, place, slope) -> None:
+    def rising(x: float) -> float:
+        return (x - root) ** 3 + 2 * (x - root) + (1.0 if x > root + 1 else 0.0)
+
+    low, high = root - below, root + above
+    found = near(rising, low, high, low + place * (high - low), slope, 1e-10)
+    assert low <= found.at <= high
+    assert found.at == pytest.approx(root, abs=1e-9)
+
+
+def test_a_root_at_an_end_that_is_never_evaluated_is_come_to() -> None:
+    assert near(lambda x: x - 1.0, 0.0, 1.0, 0.4, 3.0, 1e-12).at == pytest.approx(1.0, abs=1e-11)
+    assert near(lambda x: x, 0.0, 1.0, 0.4, 3.0, 1e-12).at == pytest.approx(0.0, abs=1e-11)
+
+
+def test_a_good_start_takes_three_evaluations() -> None:
+    assert near(lambda x: math.exp(x) - 2, 0.0, 5.0, math.log(2) + 1e-3, 2.0, 1e-9).evaluations <= 3

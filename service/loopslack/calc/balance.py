@@ -4,11 +4,14 @@ The loop is filled once and mass is conserved until the relief valve opens. ``Ba
 balance that a loop and a scenario fix; a vessel enters through its liquid when filled and its pressure.
 """
 
+from collections.abc import Sequence
 from typing import NamedTuple
 
 from loopslack.calc.model import Branch, CollectorGroup, Loop
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.steam import Steam, SteamSpace
+
+Spaces = tuple[Steam, ...]
 
 
 class Extent(NamedTuple):
@@ -80,6 +83,43 @@ def mixing(loop: Loop) -> Mixing:
     )
 
 
+class Jumps:
+    """The vessel pressures at which a group stops boiling, of a loop with several steam spaces.
+
+    They and the spaces on either side do not depend on the vessel, and are worked out once.
+    """
+
+    def __init__(self, spaces: Sequence[SteamSpace]) -> None:
+        self.spaces = spaces
+        self._own = [
+            {space.pressure(t): t for t in space.stagnations if space.coldest < t <= space.highest_boiling()}
+            for space in spaces
+        ]
+        self.pressures = sorted({pressure for jumps in self._own for pressure in jumps})
+        self._known: dict[tuple[float, bool], Spaces] = {}
+
+    def liquid_at(self, space: int, pressure: float) -> bool:
+        """Whether no group of a space boils at a vessel pressure (Pa)."""
+        own = self._own[space]
+        known = self.spaces[space].hottest <= self.spaces[space].fluid.boiling_highest
+        return known and pressure > max(own, default=0.0)
+
+    def at(self, pressure: float, *, below: bool) -> Spaces:
+        """The spaces just below or just above a jump.
+
+        The side is decided by pressure, not by a temperature that rounding has moved.
+        """
+        known = self._known.get((pressure, below))
+        if known is None:
+            known = self._known[pressure, below] = tuple(
+                space.at(jumps[pressure], below=below)[1]
+                if pressure in jumps
+                else space.at_pressure(pressure, below=below)
+                for space, jumps in zip(self.spaces, self._own, strict=True)
+            )
+        return known
+
+
 class Balance:
     """The stagnation balance of a loop under one reading of its steam."""
 
@@ -102,6 +142,9 @@ class Balance:
         self.station_loss = loop.station.steam_loss
         # Steam temperature (K) of the last equilibrium: a search asks for similar ones, and starts there.
         self.near: float | None = None
+        # Where groups stop boiling, if there are several steam spaces; found when first asked for.
+        self.jumps: Jumps | None = None
+        self.last: Spaces | None = None  # of the last equilibrium, if there are several steam spaces
 
     def extent(self, pressure: float, spaces: tuple[Steam, ...]) -> Extent:
         """Put the spaces together at a vessel pressure (Pa)."""

@@ -10,6 +10,7 @@ from typing import Literal, NamedTuple
 
 from loopslack.calc.balance import Balance, Extent, Mixing
 from loopslack.calc.charge import Charge, VesselLaw
+from loopslack.calc.meeting import Meeting
 from loopslack.kernel.errors import NotApplicable
 from loopslack.kernel.roots import bracketed, first_crossing
 
@@ -62,9 +63,7 @@ def equilibrium(
     if missing <= 0:
         return _state("steam" if limit.boiling else "no-boiling", opening, limit, law)
     single = len(balance.spaces) == 1
-    return _solve(
-        balance, law, _OneSpace(balance, limit) if single else _SeveralSpaces(balance, opening), limit
-    )
+    return _solve(balance, law, _OneSpace(balance, limit) if single else Meeting(balance, limit), limit)
 
 
 class _OneSpace:
@@ -101,45 +100,26 @@ class _OneSpace:
             found = self._seen[coordinate, below] = pressure, self.balance.extent(pressure, (steam,))
         return found
 
+    def find(
+        self, law: VesselLaw, low: float, high: float, at_low: float, at_high: float, tolerance: float
+    ) -> tuple[float, Extent]:
+        """The root in a stretch without jumps, with its vessel pressure and extent."""
 
-class _SeveralSpaces:
-    """Several steam spaces meet in the vessel pressure only, which is the unknown."""
+        def excess(coordinate: float) -> float:
+            pressure, extent = self.at(coordinate, below=False)
+            return law.excess(pressure, extent.expelled)
 
-    def __init__(self, balance: Balance, opening: float) -> None:
-        self.balance = balance
-        self.high = opening
-        self.low = 0.0
-        self.near: float | None = None
-        self._jumps_of = [
-            [(space.pressure(t), t) for t in space.stagnations if t <= space.fluid.boiling_highest]
-            for space in balance.spaces
-        ]
-        # Each space takes its largest extent at a pressure, which shrinks as pressure rises: one root, rising
-        # pipes or not.
-        self.falling = True
-        self.jumps = sorted(p for own in self._jumps_of for p, _ in own if p <= opening)
-
-    def start(self, lowest: float) -> None:
-        """Raise the lower end to the vessel's lowest pressure (Pa)."""
-        self.low = min(lowest, self.high)
-        self.jumps = [p for p in self.jumps if p >= self.low]
-
-    def at(self, coordinate: float, *, below: bool = True) -> tuple[float, Extent]:
-        """Vessel pressure and extent at a vessel pressure.
-
-        The side of a jump is decided by pressure, not by a temperature that rounding has moved.
-        """
-        spaces = []
-        for space, jumps in zip(self.balance.spaces, self._jumps_of, strict=True):
-            stagnation = next((t for p, t in jumps if p == coordinate), None)
-            if stagnation is None:
-                spaces.append(space.at_pressure(coordinate, below=below))
-            else:
-                spaces.append(space.at(stagnation, below=below)[1])
-        return coordinate, self.balance.extent(coordinate, tuple(spaces))
+        found = None
+        if not self.falling:
+            stops = self.space.stops(low, high)
+            found = first_crossing(lambda x: at_low if x == low else excess(x), stops, tolerance)
+        if found is None:
+            found = bracketed(excess, low, high, at_low, at_high, tolerance)
+        self.near = found.at
+        return self.at(found.at, below=False)
 
 
-def _solve(balance: Balance, law: VesselLaw, curve: _OneSpace | _SeveralSpaces, limit: Extent) -> Equilibrium:
+def _solve(balance: Balance, law: VesselLaw, curve: _OneSpace | Meeting, limit: Extent) -> Equilibrium:
     """Walk from jump to jump upwards; the root lies before the first one, across one, or after the last."""
     charge = law.charge
     curve.start(charge.precharge * charge.room / charge.precharge_temperature)
@@ -148,6 +128,10 @@ def _solve(balance: Balance, law: VesselLaw, curve: _OneSpace | _SeveralSpaces, 
         pressure, extent = curve.at(coordinate, below=below)
         return law.excess(pressure, extent.expelled)
 
+    if isinstance(curve, Meeting):
+        found = curve.at_once(law)
+        if found is not None:
+            return _state("steam", *found, law)
     around = _around(curve, excess)
     if around is not None:
         return _between(curve, law, *around)
@@ -175,7 +159,7 @@ def _solve(balance: Balance, law: VesselLaw, curve: _OneSpace | _SeveralSpaces, 
 
 
 def _between(
-    curve: _OneSpace | _SeveralSpaces,
+    curve: _OneSpace | Meeting,
     law: VesselLaw,
     low: float,
     high: float,
@@ -183,25 +167,12 @@ def _between(
     at_high: float,
 ) -> Equilibrium:
     """The root inside a stretch without jumps; the lowest one, with most steam, where there are several."""
-
-    def excess(coordinate: float) -> float:
-        pressure, extent = curve.at(coordinate, below=False)
-        return law.excess(pressure, extent.expelled)
-
-    tolerance = _RELATIVE * high
-    found = None
-    if not curve.falling:
-        stops = [low + (high - low) * k / 48 for k in range(48)] + [high]
-        found = first_crossing(lambda x: at_low if x == low else excess(x), stops, tolerance)
-    if found is None:
-        found = bracketed(excess, low, high, at_low, at_high, tolerance)
-    curve.near = found.at
-    pressure, extent = curve.at(found.at, below=False)
+    pressure, extent = curve.find(law, low, high, at_low, at_high, _RELATIVE * high)
     return _state("steam", pressure, extent, law)
 
 
 def _around(
-    curve: _OneSpace | _SeveralSpaces, excess: Callable[[float], float]
+    curve: _OneSpace | Meeting, excess: Callable[[float], float]
 ) -> tuple[float, float, float, float] | None:
     """Ends and values of a narrow bracket around where the last root was; None unless it is there again."""
     near = curve.near
@@ -220,7 +191,7 @@ def _around(
 
 def _pinned(
     balance: Balance,
-    curve: _OneSpace | _SeveralSpaces,
+    curve: _OneSpace | Meeting,
     law: VesselLaw,
     jump: float,
     below: float,

@@ -4,16 +4,21 @@ Everything here depends on the loop and the scenario only, never on the vessel: 
 pressure. That is what lets a vessel be sized and thousands of vessels be compared without trial.
 """
 
+from bisect import bisect_left
+from itertools import accumulate, pairwise
 from typing import NamedTuple
 
 from loopslack.calc.front import SteamPath
 from loopslack.calc.model import Branch, CollectorGroup, Loop
 from loopslack.calc.scenarios import Scenario
 from loopslack.kernel.errors import OutOfRange
-from loopslack.kernel.roots import bracketed, first_crossing
+from loopslack.kernel.roots import bracketed, near
 from loopslack.physics.statics import GRAVITY
 
 _KELVIN = 1e-9  # tolerance of a temperature root
+_ACCURACY = 1e-12  # of a pressure, to which a steam temperature belongs: 1e-9 K at the flattest
+_PARTS = 4  # steps between two stops of a path with rising stretches, in case a peak should lie between
+BAR = 1e5
 
 
 class Steam(NamedTuple):
@@ -80,6 +85,10 @@ class SteamSpace:
         self.hottest = self.stagnations[-1]
         # The bubble line is known from 5 degC; steam colder than the pipes' surroundings cannot stand in them.
         self.coldest = max(fluid.boiling_lowest, self.path.warmest, sun.ambient)
+        # Where the last steam temperature was found, and the vessel pressure it belongs to.
+        self._last = self.coldest, 0.0
+        self._knots: list[float] | None = None
+        self._highest: list[float] = []
 
     def power(self, temperature: float) -> float:
         """Power the groups send out as steam at a temperature (K), W."""
@@ -138,32 +147,70 @@ class SteamSpace:
 
     def at_pressure(self, pressure: float, *, below: bool = True) -> Steam:
         """Steam at a vessel pressure (Pa): the largest extent, where a rising path allows several."""
-        top = self.highest_boiling()
-        ends = self.path.heights
-        guess_low = self.boiling_below(pressure)
-        guess_high = min(top, self._boiling(pressure - self.column * min(ends)))
-        if guess_low >= top:
+        low, top = self.boiling_below(pressure), self.highest_boiling()
+        if low >= top:
             return self._liquid_at(pressure)
-        if self.path.falling:
-            low = self.pressure(guess_low) - pressure
-            high = self.pressure(guess_high) - pressure
-            if high < 0:
-                if guess_high >= top:
-                    return self._liquid_at(pressure)
-                return self.at(guess_high, below=below)[1]
-            if low >= 0 or guess_low == guess_high:
-                return self.at(guess_low, below=below)[1]
-            found = bracketed(
-                lambda t: self.pressure(t) - pressure, guess_low, guess_high, low, high, _KELVIN
-            )
-        else:
-            stops = _stops(guess_low, guess_high)
-            crossing = first_crossing(lambda t: self.pressure(t) - pressure, stops, _KELVIN)
-            if crossing is None:
-                beyond = guess_high >= top and self.pressure(guess_high) < pressure
-                return self._liquid_at(pressure) if beyond else self.at(guess_low)[1]
-            found = crossing
-        return self.at(found.at, below=below)[1]
+        high = min(top, self._boiling(pressure - self.column * min(self.path.heights)))
+        if not self.path.falling:
+            bracket = self._first_rise(pressure)
+            if bracket is None:
+                return self._liquid_at(pressure)
+            low, high = bracket
+        elif high >= top and self.pressure(top) < pressure:
+            return self._liquid_at(pressure)
+        if low >= high or (low <= self.coldest and self.pressure(low) >= pressure):
+            return self.at(low, below=below)[1]
+        if self.power(high) >= self.path.loss(high) and high < top and self.path.falling:
+            # The runs are full of steam there, and at every lower temperature: the column is known.
+            return self.at(high, below=below)[1]
+        slope = self.column * (max(self.path.heights) - min(self.path.heights)) / (high - low)
+        guess, at = self._last
+        found = near(
+            lambda t: self.pressure(t) - pressure,
+            low,
+            high,
+            guess + (pressure - at) / slope if slope > 0 else guess,
+            slope,
+            _ACCURACY * max(abs(pressure), BAR),
+        ).at
+        self._last = found, pressure
+        return self.at(found, below=below)[1]
+
+    def knots(self) -> list[float]:
+        """Steam temperatures (K), rising, between which pressure on a path with rising stretches has no peak.
+
+        There the front stands at a stop of the path. Along a rising stretch the column shrinks while the steam gets
+        hotter, so that pressure may fall; it then falls first, since the bubble line gets ever steeper.
+        """
+        if self._knots is None:
+            path, low, top = self.path, self.coldest, self.highest_boiling()
+            found = {low, top}
+            for conductance, offset in zip(path.conductance[1:], path.offset[1:], strict=True):
+
+                def spare(t: float, c: float = conductance, o: float = offset) -> float:
+                    return c * t - o - self.power(t)
+
+                at_low, at_top = spare(low), spare(top)
+                if at_low < 0 < at_top:
+                    found.add(bracketed(spare, low, top, at_low, at_top, _KELVIN).at)
+            stops = sorted(found)
+            parts = [a + (b - a) * k / _PARTS for a, b in pairwise(stops) for k in range(_PARTS)]
+            self._knots = [*parts, stops[-1]]
+        return self._knots
+
+    def stops(self, low: float, high: float) -> list[float]:
+        """Where to look between two steam temperatures (K) for a first crossing on a path with rising stretches."""
+        return [low, *(t for t in self.knots() if low < t < high), high]
+
+    def _first_rise(self, pressure: float) -> tuple[float, float] | None:
+        """The first two knots between which pressure on a rising path comes up to one (Pa); None if it never does."""
+        if not self._highest:
+            self._highest = list(accumulate((self.pressure(t) for t in self.knots()), max))
+        place = bisect_left(self._highest, pressure)
+        if place == len(self._highest):
+            return None
+        knots = self.knots()
+        return (knots[place - 1], knots[place]) if place else (knots[0], knots[0])
 
     def station_pressure(self, taken: float) -> float | None:
         """Lowest vessel pressure (Pa) at which the branches and ``taken`` W at their end condense all steam.
@@ -171,6 +218,8 @@ class SteamSpace:
         None where no pressure lets more arrive, infinite where every pressure does.
         """
         top, low = self.highest_boiling(), self.coldest
+        if top <= low:
+            return None  # nothing ever boils
 
         def spare(temperature: float) -> float:
             return self.path.loss(temperature) + taken - self.power(temperature)
@@ -207,8 +256,3 @@ class SteamSpace:
                 facts={"pressure": pressure, "stagnationTemperature": self.hottest},
             )
         return self.liquid()
-
-
-def _stops(low: float, high: float) -> list[float]:
-    """Temperatures to walk on a path with rising stretches; 48 resolve a crest of a fiftieth of the column."""
-    return [low + (high - low) * k / 48 for k in range(49)]

@@ -71,6 +71,42 @@ def bracketed(
     return Root(guess, count)
 
 
+def near(
+    function: Callable[[float], float],
+    low: float,
+    high: float,
+    guess: float,
+    slope: float,
+    accuracy: float,
+    most: int = 120,
+) -> Root:
+    """Root of a rising function between ``low`` and ``high``, looked for at ``guess`` first.
+
+    For functions asked again and again at little changed places: the ends are never evaluated (the sign must change
+    between them), the first step goes along ``slope``, the next ones are secants kept inside what is left between
+    the ends. Ends when the value is within ``accuracy`` of nought, or nothing is left between the ends.
+    """
+    here = guess if low < guess < high else 0.5 * (low + high)
+    value = function(here)
+    for count in range(1, most):
+        if -accuracy <= value <= accuracy:
+            return Root(here, count)
+        if value < 0:
+            low = here
+        else:
+            high = here
+        halve = count % 5 == 0 if count < 20 else count % 2 == 0
+        beside = low if halve or slope <= 0 else here - value / slope
+        if not low < beside < high:
+            beside = 0.5 * (low + high)
+            if not low < beside < high:
+                return Root(here, count)
+        following = function(beside)
+        slope = (following - value) / (beside - here)
+        here, value = beside, following
+    return Root(here, most)
+
+
 def first_crossing(
     function: Callable[[float], float], stops: Iterable[float], tolerance: float
 ) -> Root | None:

@@ -1,0 +1,184 @@
+"""Several steam spaces of one loop, which meet in nothing but the vessel's pressure and the mass they push into it.
+
+What each space does at a pressure does not depend on the vessel, so the pressures at which a group stops boiling are
+worked out once for a loop. Between two of them all spaces are solved at once. Which state is the equilibrium is
+decided in ``equilibrium``.
+"""
+
+from itertools import pairwise
+
+from loopslack.calc.balance import Balance, Extent, Jumps, Spaces
+from loopslack.calc.charge import VesselLaw
+from loopslack.calc.steam import Steam
+from loopslack.kernel.errors import NotApplicable
+from loopslack.kernel.roots import bracketed, first_crossing
+
+_AGREED = 1e-11  # share of a pressure, or of the gas in the vessel, to which a joint solution has to be right
+_LEAP = 1e-8  # share of the vessel's volume by which a balance that a leap of steam keeps open is known
+_ROUNDS = 14  # of the joint solution; five or six are usual
+_FIRST, _LONGEST = 0.3, 25.0  # K: its first step, which shows the slopes, and the longest one
+_SECANTS = 8
+_STEPS = 24  # along a fold
+
+
+class Meeting:
+    """The vessel pressure as the unknown of a loop with several steam spaces, up to the valve's at ``limit``."""
+
+    # Each space takes its largest extent at a pressure, which shrinks as pressure rises: one root at most.
+    falling = True
+    near: float | None = None
+
+    def __init__(self, balance: Balance, limit: Extent) -> None:
+        self.balance, self.limit = balance, limit
+        self.high, self.low = limit.pressure, 0.0
+        if balance.jumps is None:
+            balance.jumps = Jumps(balance.spaces)
+        self._jumps = balance.jumps
+        self.jumps = [pressure for pressure in self._jumps.pressures if pressure <= self.high]
+        self._known: dict[float, Spaces] = {} if self.high in self.jumps else {self.high: limit.spaces}
+
+    def start(self, lowest: float) -> None:
+        """Raise the lower end to the vessel's lowest pressure (Pa)."""
+        self.low = min(lowest, self.high)
+        self.jumps = [pressure for pressure in self.jumps if pressure >= self.low]
+
+    def at(self, coordinate: float, *, below: bool = True) -> tuple[float, Extent]:
+        """Vessel pressure and extent at a vessel pressure."""
+        return coordinate, self.balance.extent(coordinate, self._spaces(coordinate, below=below))
+
+    def at_once(self, law: VesselLaw) -> tuple[float, Extent] | None:
+        """The root with its extent, from where the last one was or from the limit; None if it is not found so.
+
+        All spaces and the vessel are solved together: each space is followed along its own secant, the vessel's law is
+        taken as it is. What settles is the root and no other: on falling paths room grows and liquid falls with
+        pressure, across the jumps too, so that there is one, and a residue bounds its error.
+        """
+        spaces = self.balance.spaces
+        if not all(space.path.falling for space in spaces):
+            return None
+        found = list(self.balance.last or self.limit.spaces)
+        moving = [k for k, steam in enumerate(found) if steam.boiling]
+        if not moving:
+            return None
+        before = {k: (found[k].temperature, *self._place(k, found[k])) for k in moving}
+        there = {
+            k: max(0.5 * (found[k].temperature + spaces[k].coldest), found[k].temperature - _FIRST)
+            for k in moving
+        }
+        pressure = 0.0
+        for _ in range(_ROUNDS):
+            gain = mass = 0.0
+            steeper = {}
+            for k in moving:
+                old, at_old, held = before[k]
+                here, found[k] = spaces[k].at(there[k])
+                if there[k] == old or here <= 0 or (here - at_old) * (there[k] - old) <= 0:
+                    return None
+                steeper[k] = (here - at_old) / (there[k] - old)
+                gains = (found[k].mass - held) / (here - at_old)
+                gain += gains
+                mass += gains * here
+                before[k] = there[k], here, found[k].mass
+            extent = self.balance.extent(0.0, tuple(found))
+            # Masses as straight lines in the pressure: what is expelled falls by ``gain`` per Pa.
+            settled = _settled(law, extent.expelled + mass, gain, before[moving[0]][1])
+            if settled is None:
+                return None
+            pressure = settled
+            gas = law.charge.nominal - law.held(extent.expelled)[0]
+            if abs(law.excess(pressure, extent.expelled)) <= _AGREED * gas and all(
+                abs(before[k][1] - pressure) <= _AGREED * pressure for k in moving
+            ):
+                return self._accepted(pressure, extent)
+            for k in moving:
+                step = (pressure - before[k][1]) / steeper[k]
+                moved = there[k] + min(max(step, -_LONGEST), _LONGEST)
+                there[k] = min(max(moved, spaces[k].coldest), spaces[k].highest_boiling())
+        return None
+
+    def find(
+        self, law: VesselLaw, low: float, high: float, at_low: float, at_high: float, tolerance: float
+    ) -> tuple[float, Extent]:
+        """The root in a stretch without jumps, with its extent. Raises ``NotApplicable`` where it cannot be found."""
+
+        def excess(pressure: float) -> float:
+            return law.excess(pressure, self.at(pressure, below=False)[1].expelled)
+
+        pressure = bracketed(excess, low, high, at_low, at_high, tolerance).at
+        _, extent = self.at(pressure, below=False)
+        if abs(law.excess(pressure, extent.expelled)) <= _LEAP * law.charge.nominal:
+            self.balance.last = extent.spaces
+            return pressure, extent
+        return self._along_fold(law, pressure, 1e-9 * high)
+
+    def _spaces(self, pressure: float, *, below: bool) -> Spaces:
+        if pressure in self._jumps.pressures:
+            return self._jumps.at(pressure, below=below)
+        known = self._known.get(pressure)
+        if known is None:
+            known = self._known[pressure] = tuple(s.at_pressure(pressure) for s in self.balance.spaces)
+        return known
+
+    def _place(self, k: int, steam: Steam) -> tuple[float, float]:
+        """Vessel pressure (Pa) and mass (kg) that belong to a space's steam."""
+        space = self.balance.spaces[k]
+        return space.fluid.bubble_pressure(steam.temperature) + space.column * steam.height, steam.mass
+
+    def _accepted(self, pressure: float, extent: Extent) -> tuple[float, Extent] | None:
+        """A solution, if it lies where the vessel may stand and what was taken as liquid is."""
+        if not self.low < pressure < self.high:
+            return None
+        for k, steam in enumerate(extent.spaces):
+            if not steam.boiling and not self._jumps.liquid_at(k, pressure):
+                return None
+        self.balance.last = extent.spaces
+        return pressure, extent._replace(pressure=pressure)
+
+    def _along_fold(self, law: VesselLaw, pressure: float, step: float) -> tuple[float, Extent]:
+        """The root where a space with rising runs leaps at a pressure: on the states between, which no pressure picks.
+
+        They are walked by the steam temperature of the space, at whose pressure the others stand.
+        """
+        spaces = self.balance.spaces
+        before, after = self._spaces(pressure - step, below=False), self._spaces(pressure + step, below=False)
+        leaps = [b.temperature - a.temperature for a, b in zip(before, after, strict=True)]
+        k = max(range(len(leaps)), key=leaps.__getitem__)
+        low, high = before[k].temperature, after[k].temperature
+
+        def at(temperature: float) -> tuple[float, Extent]:
+            here, steam = spaces[k].at(temperature)
+            others = [space.at_pressure(here) for space in spaces]
+            return here, self.balance.extent(here, (*others[:k], steam, *others[k + 1 :]))
+
+        def excess(temperature: float) -> float:
+            here, extent = at(temperature)
+            return law.excess(here, extent.expelled)
+
+        stops = sorted(
+            {a + (b - a) * n / _STEPS for a, b in pairwise(spaces[k].stops(low, high)) for n in range(_STEPS)}
+            | {high}
+        )
+        crossing = first_crossing(excess, stops, 1e-11 * high)
+        if crossing is not None:
+            here, extent = at(crossing.at)
+            if abs(law.excess(here, extent.expelled)) <= _LEAP * law.charge.nominal:
+                return here, extent
+        raise NotApplicable(
+            "no state of rest was found: steam in runs that rise would leap past every one",
+            remedy="Check the heights of the runs, or state no crest.",
+            pointer="/pipeRuns",
+        )
+
+
+def _settled(law: VesselLaw, expelled: float, gain: float, start: float) -> float | None:
+    """Pressure (Pa) at which the vessel has room for ``expelled - gain p`` kg, by secants from a start."""
+    here, beside = start, start * (1 + 1e-4)
+    value = law.excess(here, expelled - gain * here)
+    for _ in range(_SECANTS):
+        following = law.excess(beside, expelled - gain * beside)
+        if following == value:
+            return beside if abs(beside - here) <= _AGREED * abs(here) else None
+        here, value, beside = beside, following, beside - following * (beside - here) / (following - value)
+        if abs(beside - here) <= 0.1 * _AGREED * abs(here):
+            return beside
+    return beside

@@ -1,0 +1,191 @@
+"""Every equilibrium of several steam spaces, or with runs that rise, is one: its equations are put in again."""
+
+import pytest
+from msgspec.structs import replace
+
+from calc.loops import random_loop
+from calc.reference import BAR, loop
+from loopslack.calc.analysis import Analysis
+from loopslack.calc.balance import Balance, mixing
+from loopslack.calc.charge import Charge, VesselLaw
+from loopslack.calc.equilibrium import Equilibrium, equilibrium
+from loopslack.calc.meeting import Meeting
+from loopslack.calc.model import Loop
+from loopslack.calc.scenarios import BASE
+from loopslack.calc.steam import SteamSpace
+from loopslack.kernel.errors import CalculationError
+
+SIZES = (0.6, 1.5, 4.0)
+
+
+def charged(found: Loop, size: float) -> tuple[Analysis, Balance, Charge] | None:
+    """A vessel of ``size`` times the content, charged by the trade's habit; None where that cannot be."""
+    try:
+        analysis = Analysis(found)
+        _ = analysis.case(BASE)
+    except CalculationError:
+        return None
+    precharge = found.atmosphere + max(0.3 * BAR, analysis.states.cold.column + found.criteria.top_pressure)
+    fill = precharge + 0.3 * BAR
+    if fill >= analysis.final_pressure:
+        return None
+    nominal = size * found.content
+    filled = nominal * (1 - precharge / fill)
+    mass = filled * analysis.states.fill.vessel_density
+    room = found.temperatures.vessel_room
+    return (
+        analysis,
+        Balance(found, BASE),
+        Charge(nominal, precharge, found.temperatures.fill, filled, mass, room, 0.0),
+    )
+
+
+def solved(analysis: Analysis, balance: Balance, charge: Charge, *, warm: bool) -> Equilibrium | None:
+    try:
+        return equilibrium(
+            balance, charge, mixing(balance.loop), gas_follows=warm, opening=analysis.final_pressure
+        )
+    except CalculationError:
+        return None
+
+
+def assert_rest(found: Equilibrium, balance: Balance, charge: Charge, *, warm: bool) -> None:
+    """Each steam stands at the vessel's pressure, what is liquid would not boil at it, and the vessel has room."""
+    law = VesselLaw(balance, charge, mixing(balance.loop), gas_follows=warm)
+    assert law.excess(found.pressure, found.extent.expelled) == pytest.approx(0, abs=1e-8 * charge.nominal)
+    for space, steam in zip(balance.spaces, found.extent.spaces, strict=True):
+        if steam.boiling:
+            stands, again = space.at(steam.temperature)
+            assert stands == pytest.approx(found.pressure, rel=1e-7)
+            assert again.pipe == pytest.approx(steam.pipe, rel=1e-7, abs=1e-12)
+        elif space.highest_boiling() == space.hottest:
+            assert space.pressure(space.hottest) <= found.pressure * (1 + 1e-9)
+
+
+@pytest.mark.parametrize("warm", [False, True], ids=["gas at the room's", "gas as the liquid"])
+def test_steam_of_several_spaces_and_on_crests_stands_at_the_vessels_pressure(warm: bool) -> None:
+    regimes, several, rising = set(), 0, 0
+    for seed in range(700):
+        found = random_loop(seed)
+        for size in SIZES:
+            case = charged(found, size)
+            if case is None or (len(case[1].spaces) == 1 and case[1].spaces[0].path.falling):
+                continue
+            analysis, balance, charge = case
+            for _ in range(2):  # the second time from where the first ended
+                rest = solved(analysis, balance, charge, warm=warm)
+                if rest is None or rest.regime == "valve-opens" or rest.liquid < 0:
+                    continue
+                assert_rest(rest, balance, charge, warm=warm)
+                regimes.add(rest.regime)
+                several += len(balance.spaces) > 1
+                rising += not all(space.path.falling for space in balance.spaces)
+    assert regimes >= {"steam", "pinned"}
+    assert several > 100
+    assert rising > 100
+
+
+def test_the_crest_above_the_collectors_holds_the_steam_back_and_is_not_passed_over() -> None:
+    """Here a walk in even steps once took a state whose steam stood 0.2 bar below its vessel."""
+    analysis, balance, charge = charged(random_loop(112), 4.0)
+    rest = solved(analysis, balance, charge, warm=False)
+    assert rest.extent.spaces[0].temperature == pytest.approx(412.4805, abs=1e-3)
+
+
+def below_the_vessel(depth: float) -> Loop:
+    """The reference loop with its collectors far below the vessel, so that every run rises."""
+    plain = loop()
+    return loop(
+        groups=tuple(replace(group, height=-depth) for group in plain.groups),
+        branches=tuple(
+            replace(
+                run,
+                segments=tuple(replace(piece, start_height=-depth, end_height=0.0) for piece in run.segments),
+            )
+            for run in plain.branches
+        ),
+        top=0.0,
+    )
+
+
+@pytest.mark.parametrize("depth", [5.0, 20.0, 60.0, 124.0])
+def test_no_state_is_given_for_a_pressure_that_the_valve_would_not_allow(depth: float) -> None:
+    found = below_the_vessel(depth)
+    analysis = Analysis(found)
+    for nominal in (0.03, 0.06, 0.1, 0.2, 0.4):
+        for filled in (0.05, 0.15, 0.3):
+            density = analysis.states.fill.vessel_density
+            charge = Charge(
+                nominal, 2 * BAR, 288.15, filled * nominal, filled * nominal * density, 293.15, 0.0
+            )
+            balance = Balance(found, BASE)
+            rest = solved(analysis, balance, charge, warm=False)
+            assert rest is not None
+            if rest.regime != "valve-opens":
+                assert rest.pressure <= analysis.final_pressure * (1 + 1e-9)
+                assert rest.liquid < 0 or rest.pressure > 0
+
+
+def test_the_largest_extent_on_a_path_that_rises_is_the_coolest_steam_at_its_pressure() -> None:
+    for seed in range(400):
+        found = random_loop(seed)
+        for space in Balance(found, BASE).spaces:
+            if space.path.falling:
+                continue
+            low, high = space.coldest, space.highest_boiling()
+            many = [low + (high - low) * k / 700 for k in range(700)]
+            pressures = [space.pressure(t) for t in many]
+            for pressure in (1.5 * BAR, 3 * BAR, 5 * BAR):
+                first = next((t for t, p in zip(many, pressures, strict=True) if p >= pressure), None)
+                if first is None:
+                    continue
+                steam = space.at_pressure(pressure)
+                assert steam.temperature <= first + 1e-6
+                assert steam.temperature >= first - (high - low) / 700 - 1e-6
+
+
+def test_several_spaces_take_few_looks_at_the_steam(monkeypatch: pytest.MonkeyPatch) -> None:
+    looks = 0
+    plain = SteamSpace.at
+
+    def counted(self: SteamSpace, temperature: float, *, below: bool = True):
+        nonlocal looks
+        looks += 1
+        return plain(self, temperature, below=below)
+
+    monkeypatch.setattr(SteamSpace, "at", counted)
+    seen, failed = [], 0
+    at_once = Meeting.at_once
+
+    def told(self: Meeting, law: VesselLaw):
+        nonlocal failed
+        found = at_once(self, law)
+        failed += found is None
+        return found
+
+    monkeypatch.setattr(Meeting, "at_once", told)
+    for seed in range(700):
+        case = charged(random_loop(seed), 4.0)
+        if case is None or len(case[1].spaces) == 1:
+            continue
+        analysis, balance, charge = case
+        if not all(space.path.falling for space in balance.spaces):
+            continue
+        limit = balance.at_pressure(analysis.final_pressure)
+        looks = 0
+        try:
+            rest = equilibrium(
+                balance,
+                charge,
+                mixing(balance.loop),
+                gas_follows=False,
+                opening=analysis.final_pressure,
+                limit=limit,
+            )
+        except CalculationError:
+            continue
+        if rest.regime == "steam":
+            seen.append(looks / len(balance.spaces))
+    assert len(seen) > 30
+    assert sorted(seen)[len(seen) // 2] <= 8
+    assert failed <= len(seen) // 4
