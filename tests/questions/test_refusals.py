@@ -8,6 +8,7 @@ from loopslack.contract.questions_vessels import FromStock, GivenVessel
 from loopslack.contract.reader import Reader
 from loopslack.contract.reading import read_loop
 from loopslack.contract.reading_vessels import read_choice
+from loopslack.contract.refusals import refusal_of
 from loopslack.kernel.errors import CalculationError, NotApplicable, Refusals
 from questions.wash_house import changed, question, wash_house
 
@@ -292,6 +293,15 @@ def test_a_table_of_an_own_fluid_that_will_not_do_is_pointed_at(fluid, at):
         design_loop(question(changed(wash_house(), "/fluid", fluid)))
     assert raised.value.pointer == at
     assert raised.value.remedy
+
+
+def test_a_member_is_invalid_by_itself_and_a_question_unanswerable_by_the_range_of_a_law():
+    short = changed(wash_house(), "/fluid", own({-25: 1060, 20: 1036, 60: 1010}))
+    far = changed(wash_house(), "/staticHeight", quantity(1e6, "m"))
+    for data, slug in ((short, "unanswerable-question"), (far, "invalid-field")):
+        with pytest.raises(CalculationError) as raised:
+            design_loop(question(data))
+        assert refusal_of(raised.value).kind.slug == slug
 
 
 def test_a_tolerance_that_leaves_nothing_of_a_pipe_is_refused():

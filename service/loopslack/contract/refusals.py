@@ -74,7 +74,7 @@ def refusal_of(error: CalculationError) -> Refused:
     """The refusal that a calculation's own error becomes, with every cause the caller should see."""
     causes = error.errors if isinstance(error, Refusals) else (error,)
     faults = [fault_of(cause) for cause in causes]
-    if all(cause.pointer and cause.code in _OF_ONE_FIELD for cause in causes):
+    if all(map(_is_of_one_field, causes)):
         return refusal_of_fields(faults)
     detail = (
         faults[0].message
@@ -82,6 +82,11 @@ def refusal_of(error: CalculationError) -> Refused:
         else f"The question cannot be answered, for {len(faults)} reasons."
     )
     return Refused("unanswerable-question", detail, faults=faults)
+
+
+def _is_of_one_field(cause: CalculationError) -> bool:
+    """Whether a member by itself is at fault; one outside the range of a law, which the error then names, is not."""
+    return bool(cause.pointer) and cause.code in _OF_ONE_FIELD and "rule" not in cause.facts
 
 
 def fault_of(cause: CalculationError, within: str = "") -> FaultyField:
