@@ -5,6 +5,7 @@
 
 import asyncio
 import os
+import sys
 from collections.abc import AsyncIterator, Iterable
 from contextlib import asynccontextmanager, suppress
 from importlib import import_module
@@ -15,21 +16,27 @@ from litestar.exceptions import HTTPException
 from litestar.types import ASGIApp, Receive, Scope, Send
 
 from loopslack.api.costly import Costly
+from loopslack.api.costly_work import costly_work
 from loopslack.api.docs import DOCS_PAGES
 from loopslack.api.guard import Guard, is_guarding, warn_if_open
 from loopslack.api.many_places import ManyPlaces
+from loopslack.api.many_work import many_work
 from loopslack.api.openapi import document_pages
 from loopslack.api.operations import Floor, Operation
 from loopslack.api.probes import probe_routes
 from loopslack.api.record import Record
 from loopslack.api.reference import Page
 from loopslack.api.routes import on_fault, on_http_exception, on_refused, routes_of
+from loopslack.api.side import Side
 from loopslack.api.v1 import OPERATIONS
 from loopslack.api.wrappers import CrossOrigin, HeadAsGet, LiteralPaths, Shedding, StandingHeaders
 from loopslack.contract.refusals import Refused
 from loopslack.contract.writing_common import provenance
 from loopslack.observability import READINESS, Lines, LoopLag, set_up_logging
 from loopslack.settings import Settings, SettingsError, settings_from
+
+SWITCH_SECONDS = 0.0005
+"""How long a thread may hold the interpreter: one is used to look for all faults of a long body."""
 
 
 class Application:
@@ -41,8 +48,12 @@ class Application:
         self.settings = settings
         self.lag = LoopLag()
         self.readiness = READINESS
-        self.costly = Costly(settings.costly_waiting, settings.deadline_seconds)
-        self.many = ManyPlaces(settings.batches_waiting, self.readiness)
+        operations = tuple(operations)
+        costly = Side(lambda: costly_work(operations, settings.nesting), self.readiness)
+        many = Side(lambda: many_work(settings), self.readiness)
+        self._sides = (costly, many)
+        self.costly = Costly(costly, settings.costly_waiting, settings.deadline_seconds)
+        self.many = ManyPlaces(many, settings.batches_waiting, settings.deadline_seconds, self.readiness)
         lines = set_up_logging(settings.log_level)
         floor = Floor(settings, self.costly, self.many)
         routes = routes_of(operations, pages, floor) + probe_routes(self.readiness)
@@ -75,10 +86,16 @@ class Application:
             app = self.tracing = _tracing_class()(app)
         return StandingHeaders(Record(app, lines))
 
+    def before_serving(self) -> None:
+        """Fork what is to be forked; called by a worker before its event loop runs, where it can."""
+        for side in self._sides:
+            side.start()
+
     @asynccontextmanager
     async def _lifespan(self, _: Litestar) -> AsyncIterator[None]:
         """Between start and stop of a worker: everything that may not be made before the server forks."""
         warn_if_open(self.settings)
+        sys.setswitchinterval(SWITCH_SECONDS)
         watch = asyncio.create_task(self.lag.watch())
         if self.tracing is not None:
             self.tracing.start()
@@ -88,13 +105,17 @@ class Application:
             yield
         finally:
             self.readiness.draining = True
-            self.costly.close()
-            self.many.close()
+            self.close()
             if self.tracing is not None:
                 self.tracing.stop()
             watch.cancel()
             with suppress(asyncio.CancelledError):
                 await watch
+
+    def close(self) -> None:
+        """End what was forked."""
+        for side in self._sides:
+            side.close()
 
     async def __call__(self, scope: Scope, receive: Receive, send: Send) -> None:
         """Answer a request."""

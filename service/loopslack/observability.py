@@ -47,6 +47,9 @@ DESIGNS = Counter(
 ADVISORIES = Counter("loopslack_advisories", "Advisories given, by code.", ["code"])
 REFUSALS = Counter("loopslack_refusals", "Requests refused for the service's sake, by reason.", ["reason"])
 LOST_LINES = Counter("loopslack_log_lines_lost", "Log lines that could not be written.")
+LOST_SIDES = Counter(
+    "loopslack_side_processes_lost", "Side processes that ended in the middle of their work."
+)
 LAG = Gauge("loopslack_event_loop_lag_seconds", "Lateness of the event loop.", multiprocess_mode="livemax")
 
 
@@ -139,6 +142,11 @@ def count_refusal(reason: str) -> None:
     REFUSALS.labels(reason).inc()
 
 
+def count_lost_side() -> None:
+    """Count a side process that ended without an answer, for instance for want of memory."""
+    LOST_SIDES.inc()
+
+
 def metrics_page() -> tuple[bytes, str]:
     """All metrics in the Prometheus text format, summed over the workers where there are several."""
     registry = REGISTRY
@@ -173,17 +181,23 @@ class LoopLag:
 
 
 class Readiness:
-    """Whether this worker should be sent requests: not before its data are loaded, nor once it stops."""
+    """Whether this worker should be sent requests: not before its data are loaded, nor once it stops.
+
+    `failure` names what it has lost and cannot get again; the server's worker then stops and is replaced.
+    """
 
     def __init__(self) -> None:
         self.loaded = False
         self.draining = False
+        self.failure = ""
 
     @property
     def reason(self) -> str:
         """Why not, or an empty text."""
         if self.draining:
             return "stopping"
+        if self.failure:
+            return self.failure
         return "" if self.loaded else "starting"
 
 

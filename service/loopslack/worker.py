@@ -35,6 +35,10 @@ if TYPE_CHECKING:
 LINGER_SECONDS = 1.0
 """How long a refused connection is drained, so that the refusal is not lost to a reset of unread bytes."""
 
+LINGER_LONGEST = 10.0
+LINGER_BYTES = 64_000_000
+"""How long a connection may go on sending the body of a request that has been answered, and how much of it."""
+
 
 def answer(status: HTTPStatus, detail: str, extra: str = "") -> bytes:
     """Write a whole HTTP/1.1 answer that carries a problem document and closes the connection."""
@@ -87,6 +91,9 @@ class GuardedProtocol(ASGIProtocol):
     * A client that closes its sending side after a request still gets the answer.
     * A client that sends its next request the moment it has the answer is not cut off: what arrives before
       the last request is put away waits. The server's own way keeps 64 kB of it and closes beyond.
+    * A client that is answered before it has sent its whole request (too long a body, one of the wrong type) may go
+      on for a while; what it sends is dropped. Closed at once, the connection would be reset by the unread bytes, and
+      the answer lost with it.
     * Beyond `worker_connections` a connection is answered 503 without being read; beyond twice that number
       it is reset.
 
@@ -102,6 +109,8 @@ class GuardedProtocol(ASGIProtocol):
         self._head_begun = False
         self._no_more_requests = False
         self._early = b""
+        self._told_off = False
+        self._to_drop: int | None = None
 
     def connection_made(self, transport: Any) -> None:
         """Refuse the connection if there are too many, else start to wait for its first request."""
@@ -121,7 +130,9 @@ class GuardedProtocol(ASGIProtocol):
         """Read on, unless the connection has been refused: then what comes is dropped."""
         if self._refused:
             return
-        if self._is_answering():
+        if self._to_drop is not None:
+            self._drop(data)
+        elif self._is_answering():
             self._early += data
             self._pause_reading()
         else:
@@ -134,6 +145,8 @@ class GuardedProtocol(ASGIProtocol):
 
         A client that has gone altogether looks the same from here; the first bytes written to it find out.
         """
+        if self._to_drop is not None:
+            return False
         receiver = self._body_receiver
         self._no_more_requests = receiver is not None and receiver._complete and not self._is_ssl
         return self._no_more_requests
@@ -199,6 +212,7 @@ class GuardedProtocol(ASGIProtocol):
 
     def _send_error_response(self, status: int, message: str, extra_headers: Any = ()) -> None:
         """Answer an error of the connection itself as a problem document, like the application's own."""
+        self._told_off = True
         extra = "".join(f"{name}: {value}\r\n" for name, value in extra_headers)
         self._safe_write(answer(HTTPStatus(status), message[:200], extra))
 
@@ -216,6 +230,31 @@ class GuardedProtocol(ASGIProtocol):
         timer = self._timers.pop(name, None)
         if timer is not None:
             timer.cancel()
+
+    def _close_transport(self) -> None:
+        """Close, or first let a client that has been answered send what it is sending."""
+        if self._closed or self._to_drop is not None:
+            return
+        receiver = self._body_receiver
+        half_sent = self._told_off if receiver is None else not (receiver._complete or receiver._closed)
+        if not (half_sent and self.transport.can_write_eof()) or self.transport.is_closing():
+            super()._close_transport()
+            return
+        self._to_drop = LINGER_BYTES
+        self.transport.write_eof()
+        self._closed = True  # for the server, which must write nothing more
+        self._resume_reading()
+        self._start("longest", LINGER_LONGEST, self.transport.close)
+        self._start("silence", LINGER_SECONDS, self.transport.close)
+
+    def _drop(self, data: bytes) -> None:
+        """Drop what comes after the answer, until it is too much or nothing comes any more."""
+        self._to_drop = (self._to_drop or 0) - len(data)
+        self._stop("silence")
+        if self._to_drop > 0:
+            self._start("silence", LINGER_SECONDS, self.transport.close)
+        else:
+            self.transport.close()
 
     def _close(self) -> None:
         """Close once everything written has been sent, and let the task that waits for a request go."""
@@ -260,6 +299,19 @@ class Worker(gasgi.ASGIWorker):
         super().__init__(*args, **kwargs)
         self.limits = Limits()
         self.connections: set[GuardedProtocol] = set()
+
+    def load_wsgi(self) -> None:
+        """Load the application, and let it fork what it needs while there is no event loop to be forked with."""
+        super().load_wsgi()
+        before_serving = getattr(self.asgi, "before_serving", None)
+        if before_serving is not None:
+            before_serving()
+
+    def notify(self) -> None:
+        """Say once a second that the worker lives, or stop where it has lost what it cannot get again."""
+        if READINESS.failure:
+            self.handle_exit_signal()
+        super().notify()
 
     def handle_exit_signal(self) -> None:
         """Stop gracefully: requests finish, and idle kept-alive connections do not hold the stop up."""

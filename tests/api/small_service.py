@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import asyncio
+import os
+import signal
 import time
 from contextlib import contextmanager
 from datetime import date
@@ -112,6 +114,16 @@ def slow(question: SmallQuestion) -> SmallAnswer:
     return double(question)
 
 
+def endless(question: SmallQuestion) -> SmallAnswer:
+    while True:
+        time.sleep(0.01)
+
+
+def dying(question: SmallQuestion) -> SmallAnswer:
+    os.kill(os.getpid(), signal.SIGKILL)
+    return double(question)
+
+
 def operation(name: str, ask: Any, **more: Any) -> Operation[Any, Any]:
     return Operation(
         operation_id=name,
@@ -139,6 +151,8 @@ OPERATIONS = (
     operation("refuse", refuse),
     operation("out-of-range", out_of_range),
     operation("slow", slow, costly=True),
+    operation("endless", endless, costly=True),
+    operation("dying", dying, costly=True),
     operation("page", lambda question: b"<p>page</p>", media_type="text/html; charset=utf-8"),
     Operation(
         operation_id="words",

@@ -3,13 +3,25 @@
 import asyncio
 import threading
 import time
+from contextlib import contextmanager
 
 import pytest
 
+from api import small_service
 from api.small_service import GOOD_BODY, JSON, serving
-from loopslack.api.costly import Costly
+from loopslack.api.side_words import SideFault
 from loopslack.contract.refusals import Refused
 from loopslack.observability import LoopLag
+
+
+@contextmanager
+def small_app(**settings):
+    """The costly questions of the small service, without a server."""
+    app = small_service.small_app(**settings)
+    try:
+        yield app.costly
+    finally:
+        app.close()
 
 
 def test_a_late_event_loop_sheds_requests_but_not_probes():
@@ -55,56 +67,71 @@ def test_a_costly_question_leaves_the_others_their_turn():
 
 def test_of_many_costly_questions_those_beyond_the_places_are_refused_at_once():
     async def crowd():
-        costly = Costly(waiting=2, deadline_seconds=5)
-        order = []
+        with small_app(costly_waiting=2) as costly:
+            order = []
 
-        async def one():
-            try:
-                order.append(await costly.run(lambda: time.sleep(0.05) or "done"))
-            except Refused as error:
-                order.append(error.kind.slug)
+            async def one():
+                try:
+                    order.append((await costly.ask("slow", GOOD_BODY)).sent)
+                except Refused as error:
+                    order.append(error.kind.slug)
 
-        await asyncio.gather(*(one() for _ in range(8)))
-        await one()
-        costly.close()
-        return order
+            await asyncio.gather(*(one() for _ in range(8)))
+            await one()
+            return order
 
-    assert asyncio.run(crowd()) == ["overloaded"] * 5 + ["done"] * 4
+    assert asyncio.run(crowd()) == ["overloaded"] * 5 + [b'{"double":12.0}'] * 4
 
 
-def test_past_the_deadline_the_caller_is_told_and_the_place_stays_taken_until_the_work_ends():
+def test_past_the_deadline_the_work_is_ended_and_its_place_is_free():
     async def late():
-        costly = Costly(waiting=0, deadline_seconds=0.05)
-        slugs = []
-        for _ in range(2):
-            try:
-                await costly.run(lambda: time.sleep(0.2))
-            except Refused as error:
-                slugs.append(error.kind.slug)
-        await asyncio.sleep(0.3)
-        answer = await costly.run(lambda: "free again")
-        costly.close()
-        return slugs, answer
+        with small_app(costly_waiting=0, deadline_seconds=0.2) as costly:
+            began = time.perf_counter()
+            for _ in range(2):
+                with pytest.raises(Refused) as refused:
+                    await costly.ask("endless", GOOD_BODY)
+                assert refused.value.kind.slug == "deadline-passed"
+            assert time.perf_counter() - began > 0.4
+            return (await costly.ask("double", GOOD_BODY)).sent
 
-    assert asyncio.run(late()) == (["deadline-passed", "overloaded"], "free again")
+    assert asyncio.run(late()) == b'{"double":12.0}'
 
 
-def test_an_error_of_costly_work_is_its_own():
+def test_a_question_that_waits_in_vain_does_not_end_the_work_of_the_one_before():
+    async def two():
+        with small_app(deadline_seconds=5) as costly:
+            first = asyncio.create_task(costly.ask("slow", GOOD_BODY))
+            await asyncio.sleep(0.05)
+            second = asyncio.create_task(costly.ask("slow", GOOD_BODY))
+            await asyncio.sleep(0.05)
+            second.cancel()
+            with pytest.raises(asyncio.CancelledError):
+                await second
+            return (await first).sent
+
+    assert asyncio.run(two()) == b'{"double":12.0}'
+
+
+def test_refusals_and_faults_of_costly_work_are_its_own():
     async def failing():
-        costly = Costly(waiting=0, deadline_seconds=1)
-        with pytest.raises(ZeroDivisionError):
-            await costly.run(lambda: 1 / 0)
-        with pytest.raises(TimeoutError):
-            await costly.run(raise_timeout)
-        answer = await costly.run(lambda: "still there")
-        costly.close()
-        return answer
+        with small_app() as costly:
+            with pytest.raises(Refused) as refused:
+                await costly.ask("refuse", GOOD_BODY)
+            assert [fault.pointer for fault in refused.value.faults] == ["/fluid/massPercent", ""]
+            with pytest.raises(SideFault, match="the secret of the house"):
+                await costly.ask("fault", GOOD_BODY)
+            return (await costly.ask("double", GOOD_BODY)).judged
 
-    assert asyncio.run(failing()) == "still there"
+    assert asyncio.run(failing()) == (("holds", ("steam-at-station",)),)
 
 
-def raise_timeout():
-    raise TimeoutError
+def test_a_costly_question_that_kills_its_process_is_answered_500_and_the_next_one_is_answered():
+    with serving() as client:
+        lost = client.post("/v1/dying", content=GOOD_BODY, headers=JSON)
+        assert lost.status_code == 500
+        assert lost.json()["type"] == "/docs/problems/internal-fault"
+        assert client.post("/v1/slow", content=GOOD_BODY, headers=JSON).status_code == 200
+        assert "loopslack_side_processes_lost_total" in client.get("/metrics").text
 
 
 def test_a_deadline_is_a_503_with_retry_after():

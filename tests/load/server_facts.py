@@ -6,22 +6,40 @@ import os
 from pathlib import Path
 
 
-def proportional_memory(process: int) -> float:
-    """Proportional set size, MB: what a process would free if it went."""
-    for line in Path(f"/proc/{process}/smaps_rollup").read_text().splitlines():
-        if line.startswith("Pss:"):
-            return int(line.split()[1]) * 1024 / 1e6
-    raise RuntimeError(f"the system does not tell the memory of process {process}")
+def family(process: int) -> list[int]:
+    """A process and all that descend from it: a worker, and what works beside it."""
+    try:
+        children = Path(f"/proc/{process}/task/{process}/children").read_text().split()
+    except OSError:  # it has gone meanwhile
+        return []
+    return [process, *(number for child in children for number in family(int(child)))]
 
 
-def descriptors(process: int) -> int:
-    """How many files and sockets a process holds open."""
-    return len(os.listdir(f"/proc/{process}/fd"))  # noqa: PTH208 - only counted
+def proportional_memory(worker: int) -> float:
+    """Proportional set size of a worker and what works beside it, MB: what would be free if it went."""
+    return sum(map(_proportional_memory, family(worker)))
 
 
-def processor_seconds(process: int) -> float:
-    """Processor time a process has used."""
-    return int(Path(f"/proc/{process}/schedstat").read_text().split()[0]) / 1e9
+def _proportional_memory(process: int) -> float:
+    try:
+        text = Path(f"/proc/{process}/smaps_rollup").read_text()
+    except OSError:  # it has gone meanwhile
+        return 0.0
+    return (
+        next((int(line.split()[1]) for line in text.splitlines() if line.startswith("Pss:")), 0) * 1024 / 1e6
+    )
+
+
+def descriptors(worker: int) -> int:
+    """How many files and sockets a worker and what works beside it hold open."""
+    return sum(len(os.listdir(f"/proc/{process}/fd")) for process in family(worker))  # noqa: PTH208 - only counted
+
+
+def processor_seconds(worker: int) -> float:
+    """Processor time a worker and what works beside it have used so far, of those that still run."""
+    return sum(
+        int(Path(f"/proc/{process}/schedstat").read_text().split()[0]) / 1e9 for process in family(worker)
+    )
 
 
 def pin(process: int, cores: set[int]) -> None:

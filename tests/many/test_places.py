@@ -3,20 +3,25 @@
 import asyncio
 import json
 import time
+from mmap import mmap
 
 import pytest
 
 from api.small_service import ask_raw
 from loopslack.api import many_work
+from loopslack.api.many_bodies import Spool
 from loopslack.api.many_places import ManyPlaces
+from loopslack.api.side import Side, SideLostError
+from loopslack.api.side_words import Begin, Begun, Slice, encode, read_many_order
 from loopslack.contract.refusals import Refused
 from loopslack.observability import Readiness
 from many.designs import STREAM_PATH, design, faulty, lines
-from many.service import service as app
+from many.service import service
 
 
-def places(waiting=1):
-    return ManyPlaces(waiting, Readiness())
+def places(waiting=1, work=None):
+    readiness = Readiness()
+    return ManyPlaces(Side(lambda: work, readiness), waiting, 5.0, readiness)
 
 
 def test_one_more_than_may_wait_is_refused_and_a_place_is_free_again_after_an_error():
@@ -35,29 +40,47 @@ def test_one_more_than_may_wait_is_refused_and_a_place_is_free_again_after_an_er
         assert many.taken == 1
 
 
-def test_slices_of_several_batches_take_turns_and_never_run_at_once():
-    many = places()
-    order, running, most = [], 0, 0
+def test_slices_of_several_batches_take_turns():
+    taken = []
 
-    def work(name):
-        nonlocal running, most
-        running += 1
-        most = max(most, running)
-        time.sleep(0.002)
-        order.append(name)
-        running -= 1
-
-    async def batch(name):
-        for _ in range(5):
-            await many.run(lambda: work(name))
+    def work(message):
+        order = read_many_order(message)
+        if isinstance(order, Begin):
+            return encode(Begun())
+        taken.append(order.number)
+        return encode(Slice(bytes(taken), (), is_last=False, seconds=0.0))
 
     async def both():
-        await asyncio.gather(batch("a"), batch("b"))
+        many = places(work=work)
+        first, second = await many.begin("lines", (), 5.0), await many.begin("lines", (), 5.0)
 
-    asyncio.run(both())
-    many.close()
-    assert most == 1
-    assert order[:6] == ["a", "b"] * 3
+        async def batch(number):
+            for _ in range(5):
+                done = await many.next_slice(number)
+            return done.piece
+
+        return (first, second), await asyncio.gather(batch(first), batch(second))
+
+    (first, second), pieces = asyncio.run(both())
+    assert max(pieces) == bytes([first, second] * 5)
+
+
+def test_a_batch_that_is_forgotten_is_no_longer_known_from_the_next_turn_on():
+    async def scene():
+        many = service().many
+        body = lines(*(design(f"q-{number}") for number in range(9)))
+        spool = Spool()
+        spool.take(body)
+        first = await many.begin("lines", spool.pressed(), 5.0)
+        spool = Spool()
+        spool.take(body)
+        second = await many.begin("lines", spool.pressed(), 5.0)
+        many.forget(first)
+        assert not (await many.next_slice(second)).is_last
+        with pytest.raises(SideLostError):
+            await many.next_slice(first)
+
+    asyncio.run(scene())
 
 
 SCOPE = {
@@ -120,38 +143,37 @@ class Conversation:
 
 
 def test_a_client_that_leaves_ends_the_work_and_frees_its_place():
-    service = app()
-    answered = 0
+    app = service()
+    answered = mmap(-1, 2)  # memory that the side process shares with this one
     real = many_work.answer_design
 
     def counted(*arguments, **more):
-        nonlocal answered
-        answered += 1
+        answered[:] = (int.from_bytes(answered) + 1).to_bytes(2)
         return real(*arguments, **more)
 
     async def scene():
-        talk = Conversation(service, lines(*(design(f"q-{number}") for number in range(400))))
+        talk = Conversation(app, lines(*(design(f"q-{number}") for number in range(400))))
         task = asyncio.create_task(talk.hold())
         await talk.has_sent(3)
-        assert service.many.taken == 1
+        assert app.many.taken == 1
         talk.left.set()
         await asyncio.wait_for(task, 2)
-        assert service.many.taken == 0
-        return answered
+        assert app.many.taken == 0
+        await asyncio.sleep(0.2)  # what was begun is finished
+        then = int.from_bytes(answered)
+        await asyncio.sleep(0.3)
+        assert int.from_bytes(answered) == then < 200
 
     with pytest.MonkeyPatch.context() as patch:
         patch.setattr(many_work, "answer_design", counted)
-        then = asyncio.run(scene())
-        time.sleep(0.3)
-    assert answered <= then + 1
-    assert answered < 200
+        asyncio.run(scene())
 
 
 def test_a_client_that_does_not_read_stops_the_work_until_it_does():
-    service = app()
+    app = service()
 
     async def scene():
-        talk = Conversation(service, lines(*(design(f"q-{number}") for number in range(60))))
+        talk = Conversation(app, lines(*(design(f"q-{number}") for number in range(60))))
         task = asyncio.create_task(talk.hold())
         await talk.has_sent(2)
         talk.may_go_on.clear()
@@ -160,7 +182,7 @@ def test_a_client_that_does_not_read_stops_the_work_until_it_does():
         await asyncio.sleep(0.3)
         assert len(talk.sent) == stalled
         assert not task.done()
-        other = Conversation(service, lines(design("quick")))
+        other = Conversation(app, lines(design("quick")))
         await asyncio.wait_for(other.hold(), 5)
         assert json.loads(other.text.splitlines()[-1])["complete"] is True
         talk.may_go_on.set()
@@ -172,39 +194,39 @@ def test_a_client_that_does_not_read_stops_the_work_until_it_does():
 
 
 def test_a_cancelled_request_frees_its_place():
-    service = app()
+    app = service()
 
     async def scene():
-        talk = Conversation(service, lines(*(design(f"q-{number}") for number in range(400))))
+        talk = Conversation(app, lines(*(design(f"q-{number}") for number in range(400))))
         task = asyncio.create_task(talk.hold())
         await talk.has_sent(2)
         task.cancel()
         with pytest.raises(asyncio.CancelledError):
             await task
-        assert service.many.taken == 0
+        assert app.many.taken == 0
 
     asyncio.run(scene())
 
 
 def test_a_body_that_does_not_arrive_frees_its_place():
-    service = app(body_seconds=0.2)
-    status, _, body, _ = ask_raw(service, [message(b'{"stock":', more=True)], **SCOPE)
+    app = service(body_seconds=0.2)
+    status, _, body, _ = ask_raw(app, [message(b'{"stock":', more=True)], **SCOPE)
     assert status == 408
     assert json.loads(body)["type"] == "/docs/problems/body-overdue"
-    assert service.many.taken == 0
+    assert app.many.taken == 0
 
 
 def test_a_batch_too_many_is_refused_after_its_body_has_come_or_before_it_was_sent():
-    service = app(batches_waiting=0)
+    app = service(batches_waiting=0)
     body = lines(faulty("a"))
-    with service.many.place():
+    with app.many.place():
         parts = [message(body[:50], more=True), message(body[50:])]
-        status, headers, _, read = ask_raw(service, parts, **SCOPE)
+        status, headers, _, read = ask_raw(app, parts, **SCOPE)
         assert (status, headers["retry-after"], read) == (503, "5", 2)
         asks_first = SCOPE | {"headers": [*SCOPE["headers"], (b"expect", b"100-continue")]}
-        status, _, _, read = ask_raw(service, parts, **asks_first)
+        status, _, _, read = ask_raw(app, parts, **asks_first)
         assert (status, read) == (503, 0)
-    status, _, _, _ = ask_raw(service, parts, **SCOPE)
+    status, _, _, _ = ask_raw(app, parts, **SCOPE)
     assert status == 200
 
 
@@ -226,7 +248,7 @@ def test_the_event_loop_stays_free_however_long_one_design_takes(monkeypatch):
     async def scene():
         stop = asyncio.Event()
         watching = asyncio.create_task(watch(stop))
-        await Conversation(app(), lines(design("a"))).hold()
+        await Conversation(service(), lines(design("a"))).hold()
         stop.set()
         await watching
 

@@ -6,7 +6,7 @@ import tracemalloc
 from hypothesis import given, settings
 from hypothesis import strategies as some
 
-from loopslack.api.many_bodies import Spool
+from loopslack.api.many_bodies import Spool, lines_of
 from loopslack.contract.refusals import Refused
 from many.designs import HEAD, faulty
 
@@ -29,7 +29,7 @@ def spooled(body, size):
 def test_its_lines_are_those_of_the_body_and_long_ones_are_refused(texts, size, ended):
     body = b"\n".join(texts) + (b"\n" if ended else b"")
     spool = spooled(body, size)
-    found = list(spool.lines(30, MOST))
+    found = list(lines_of(spool.pressed(), 30, MOST))
     wanted = [line for line in body.split(b"\n") if line.strip() or len(line) > MOST]
     expected = [line if len(line) <= (MOST if place else 30) else None for place, line in enumerate(wanted)]
     assert [None if isinstance(line, Refused) else line for line in found] == expected
@@ -37,9 +37,9 @@ def test_its_lines_are_those_of_the_body_and_long_ones_are_refused(texts, size, 
 
 
 def test_a_body_of_one_endless_line_is_never_held_in_one_piece():
-    spool = spooled(b"x" * 20_000_000, 65_536)
+    pressed = spooled(b"x" * 20_000_000, 65_536).pressed()
     tracemalloc.start()
-    found = list(spool.lines(100_000, 100_000))
+    found = list(lines_of(pressed, 100_000, 100_000))
     peak = tracemalloc.get_traced_memory()[1]
     tracemalloc.stop()
     assert [type(line) for line in found] == [Refused]
@@ -48,6 +48,5 @@ def test_a_body_of_one_endless_line_is_never_held_in_one_piece():
 
 def test_lines_of_designs_are_kept_in_a_tenth_of_their_length():
     body = b"\n".join(json.dumps(one).encode() for one in (HEAD, *(faulty(f"q-{n}") for n in range(4000))))
-    spool = spooled(body, 65_536)
-    kept = sum(map(len, spool._parts))
+    kept = sum(map(len, spooled(body, 65_536).pressed()))
     assert kept < len(body) / 10

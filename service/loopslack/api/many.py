@@ -16,20 +16,20 @@ from litestar.types import ASGIApp
 from msgspec import Struct
 
 from loopslack.api.asgi import Receive, Scope, Send
-from loopslack.api.many_bodies import Designs, Spool, batch_parts, stream_parts
-from loopslack.api.many_work import AS_BATCH, AS_LINES, Form, Slice, Work
+from loopslack.api.many_bodies import Spool, check_length
+from loopslack.api.many_work import AS_BATCH, AS_LINES, Form
 from loopslack.api.operations import BodySize, Floor
 from loopslack.api.reading import JSON, check_body_head, header, read_body, take_body
 from loopslack.api.record import Note, note_of
-from loopslack.contract.reading_many import Shared
-from loopslack.contract.refusals import Refused
+from loopslack.api.side_words import Slice
 from loopslack.observability import count_design
+from loopslack.settings import Settings
 
 NDJSON = AS_LINES.media_type
 _logger = logging.getLogger("loopslack.request")
 
-Parts = tuple[Shared, Designs]
-Read = Callable[[Floor, Scope, Receive], Awaitable[Parts]]
+Taken = tuple[bytes, ...]
+"""A body in the parts the side process takes it in."""
 
 
 class Kind(Struct, frozen=True, kw_only=True):
@@ -38,35 +38,33 @@ class Kind(Struct, frozen=True, kw_only=True):
     operation_id: str
     accepted: tuple[str, ...]
     body_size: BodySize
-    read: Read
+    take: Callable[[Settings, Scope, Receive], Awaitable[Taken]]
     form: Form
 
 
-async def _read_batch(floor: Floor, scope: Scope, receive: Receive) -> Parts:
-    settings = floor.settings
-    body = await read_body(scope, receive, settings.batch_body_bytes, settings.body_seconds)
-    return await floor.many.run(lambda: batch_parts(body, settings))
+async def _take_batch(settings: Settings, scope: Scope, receive: Receive) -> Taken:
+    return (await read_body(scope, receive, settings.batch_body_bytes, settings.body_seconds),)
 
 
-async def _read_stream(floor: Floor, scope: Scope, receive: Receive) -> Parts:
-    settings = floor.settings
+async def _take_stream(settings: Settings, scope: Scope, receive: Receive) -> Taken:
     spool = Spool()
     await take_body(scope, receive, settings.stream_body_bytes, settings.body_seconds, spool.take)
-    return await floor.many.run(lambda: stream_parts(spool, settings))
+    check_length(spool, settings.stream_designs)
+    return spool.pressed()
 
 
 _BATCH = Kind(
     operation_id="designLoops",
     accepted=(JSON,),
     body_size=BodySize.BATCH,
-    read=_read_batch,
+    take=_take_batch,
     form=AS_BATCH,
 )
 _STREAM = Kind(
     operation_id="streamLoopDesigns",
     accepted=(NDJSON, "application/jsonl"),
     body_size=BodySize.STREAM,
-    read=_read_stream,
+    take=_take_stream,
     form=AS_LINES,
 )
 
@@ -89,40 +87,31 @@ class Many:
         self._kind = kind
 
     async def __call__(self, scope: Scope, receive: Receive, send: Send) -> None:
-        """Read the body, answer its designs, send the outcomes.
+        """Take the body, have its designs answered, send the outcomes.
 
         Raises:
             Refused: before anything was sent.
 
         """
-        floor, kind = self._floor, self._kind
+        settings, many, kind = self._floor.settings, self._floor.many, self._kind
         check_body_head(scope, kind.accepted)
-        if floor.many.is_full:
-            await _let_pass(scope, receive, kind.body_size.limit(floor.settings), floor.settings.body_seconds)
-        with floor.many.place():
+        if many.is_full:
+            await _let_pass(scope, receive, kind.body_size.limit(settings), settings.body_seconds)
+        with many.place():
             begun = time.perf_counter()
-            parts = await kind.read(floor, scope, receive)
-            work = Work(parts, kind.form, floor.settings.nesting, self._over(begun))
-            await self._answer(work, scope, receive, send)
+            taken = await kind.take(settings, scope, receive)
+            left = settings.batch_seconds - (time.perf_counter() - begun)
+            number = await many.begin(kind.form.name, taken, left)
+            del taken
+            try:
+                await self._answer(number, scope, receive, send)
+            finally:
+                many.forget(number)
 
-    def _over(self, begun: float) -> Callable[[], Refused | None]:
-        """Why the work must end now, asked before each design."""
-        allowed = self._floor.settings.batch_seconds
-        must_end = self._floor.many.must_end
-
-        def over() -> Refused | None:
-            if time.perf_counter() > begun + allowed:
-                return Refused("deadline-passed", f"What came before took the {allowed:g} s allowed.")
-            if must_end():
-                return Refused("overloaded", "This server is stopping; send what is left again.")
-            return None
-
-        return over
-
-    async def _answer(self, work: Work, scope: Scope, receive: Receive, send: Send) -> None:
+    async def _answer(self, number: int, scope: Scope, receive: Receive, send: Send) -> None:
         """Send slice by slice, until all is sent or the client has gone."""
         note = note_of(scope)
-        sending = asyncio.create_task(self._send(work, note, send))
+        sending = asyncio.create_task(self._send(number, note, send))
         leaving = asyncio.create_task(_gone(receive))
         try:
             await asyncio.wait({sending, leaving}, return_when=asyncio.FIRST_COMPLETED)
@@ -131,17 +120,16 @@ class Many:
             else:
                 note.problem = "client-left"
         finally:
-            work.left = True
             for task in (sending, leaving):
                 task.cancel()
             await asyncio.gather(sending, leaving, return_exceptions=True)
 
-    async def _send(self, work: Work, note: Note, send: Send) -> None:
+    async def _send(self, number: int, note: Note, send: Send) -> None:
         headers = [(b"content-type", self._kind.form.media_type.encode()), (b"cache-control", b"no-store")]
         await send({"type": "http.response.start", "status": 200, "headers": headers})
         is_last = False
         while not is_last:
-            done = await self._floor.many.run(work.next_slice)
+            done = await self._floor.many.next_slice(number)
             self._take_note(done, note)
             is_last = done.is_last
             await send({"type": "http.response.body", "body": done.piece, "more_body": not is_last})
@@ -150,9 +138,9 @@ class Many:
         note.calculation_seconds += done.seconds
         for outcome in done.outcomes:
             count_design(self._kind.operation_id, outcome.verdict, outcome.advisories)
-            if outcome.fault is not None:
+            if outcome.fault:
                 facts = {"requestId": note.request_id, "traceId": note.trace[0] if note.trace else ""}
-                _logger.error("internal fault", exc_info=outcome.fault, extra=facts)
+                _logger.error("internal fault", extra=facts | {"traceback": outcome.fault})
 
 
 async def _gone(receive: Receive) -> None:

@@ -1,8 +1,8 @@
 """The bodies of batches and streams, taken apart into their head and their designs without reading a design.
 
 A batch is one JSON value: its designs stay slices of the body until they are answered. A stream arrives line by
-line and is kept compressed until then, so that memory hardly grows with the number of lines. Nothing here
-answers anything.
+line and is kept compressed until then, so that memory hardly grows with the number of lines. The worker takes bodies
+in (`Spool`), the side process takes them apart. Nothing here answers anything.
 """
 
 import zlib
@@ -85,7 +85,7 @@ def too_long(most_bytes: int) -> Refused:
 
 
 class Spool:
-    """The body of a stream, compressed as it arrives and read line by line once it is there.
+    """The body of a stream, compressed as it arrives.
 
     Lines of designs repeat one another, so that a stream takes about a twentieth of its length; a body that does
     not is no longer than the limit of its operation.
@@ -110,57 +110,70 @@ class Spool:
         if pressed:
             self._parts.append(pressed)
 
-    def lines(self, first_most: int, most: int) -> Designs:
-        """The lines that are not blank, each released as it is handed out.
-
-        A line longer than allowed (the first has a limit of its own) is skipped without being kept.
-        """
-        allowed = first_most
-        held = b""
-        skipping = False
-        for text in self._unpacked():
-            *whole, held_next = (held + text).split(b"\n")
-            held = held_next
-            for line in whole:
-                if skipping or len(line) > allowed:
-                    yield too_long(allowed)
-                elif line.strip():
-                    yield line
-                else:
-                    continue
-                skipping, allowed = False, most
-            if len(held) > allowed:
-                skipping, held = True, b""
-        if skipping or len(held) > allowed:
-            yield too_long(allowed)
-        elif held.strip():
-            yield held
-
-    def _unpacked(self) -> Iterator[bytes]:
-        """The text in pieces of bounded length, however well it was compressed."""
-        parts = [*self._parts, self._press.flush()]
-        self._parts.clear()
-        parts.reverse()
-        unpack = zlib.decompressobj()
-        while parts:
-            waiting = parts.pop()
-            while waiting:
-                yield unpack.decompress(waiting, 65_536)
-                waiting = unpack.unconsumed_tail
-        yield unpack.flush()
+    def pressed(self) -> tuple[bytes, ...]:
+        """The whole, compressed; to be asked for once, when all is there."""
+        return (*self._parts, self._press.flush())
 
 
-def stream_parts(spool: Spool, settings: Settings) -> tuple[Shared, Designs]:
+def lines_of(pressed: Iterable[bytes], first_most: int, most: int) -> Designs:
+    """The lines of a compressed body that are not blank, each released as it is handed out.
+
+    A line longer than allowed (the first has a limit of its own) is skipped without being kept.
+    """
+    allowed = first_most
+    held = b""
+    skipping = False
+    for text in _unpacked(pressed):
+        *whole, held_next = (held + text).split(b"\n")
+        held = held_next
+        for line in whole:
+            if skipping or len(line) > allowed:
+                yield too_long(allowed)
+            elif line.strip():
+                yield line
+            else:
+                continue
+            skipping, allowed = False, most
+        if len(held) > allowed:
+            skipping, held = True, b""
+    if skipping or len(held) > allowed:
+        yield too_long(allowed)
+    elif held.strip():
+        yield held
+
+
+def _unpacked(pressed: Iterable[bytes]) -> Iterator[bytes]:
+    """The text in pieces of bounded length, however well it was compressed."""
+    parts = list(pressed)
+    parts.reverse()
+    unpack = zlib.decompressobj()
+    while parts:
+        waiting = parts.pop()
+        while waiting:
+            yield unpack.decompress(waiting, 65_536)
+            waiting = unpack.unconsumed_tail
+    yield unpack.flush()
+
+
+def check_length(spool: Spool, most: int) -> None:
+    """Refuse a stream of more designs than allowed.
+
+    Raises:
+        Refused: 413.
+
+    """
+    if spool.line_count > most + 1:
+        raise Refused("body-too-large", f"The stream has more than {most} designs.")
+
+
+def stream_parts(pressed: Iterable[bytes], settings: Settings) -> tuple[Shared, Designs]:
     """What the designs of a stream share, told by its first line, and the designs.
 
     Raises:
-        Refused: the first line cannot be read, with every fault found; or there are too many lines.
+        Refused: the first line cannot be read, with every fault found.
 
     """
-    if spool.line_count > settings.stream_designs + 1:
-        detail = f"The stream has more than {settings.stream_designs} designs."
-        raise Refused("body-too-large", detail)
-    lines = spool.lines(settings.single_body_bytes, settings.line_bytes)
+    lines = lines_of(pressed, settings.single_body_bytes, settings.line_bytes)
     head = next(lines, b"")
     if isinstance(head, Refused):
         raise Refused("body-too-large", f"The first line is longer than {settings.single_body_bytes} bytes.")

@@ -14,6 +14,8 @@ from msgspec import Struct
 
 from loopslack.api.costly import Costly
 from loopslack.api.many_places import ManyPlaces
+from loopslack.contract.answering import Unfinished
+from loopslack.contract.encoding import encoded
 from loopslack.contract.problems import PROBLEM_TYPES, ProblemType
 from loopslack.settings import Settings
 
@@ -70,6 +72,12 @@ class Operation(Struct, Generic[Question, Answer], frozen=True, kw_only=True):
     """For the metrics: verdict and codes of the advisories of each design in an answer."""
     deprecated_since: date | None = None
     ends_on: date | None = None
+
+
+def finished(answer: object) -> tuple[object, bytes]:
+    """An answer of an operation, with the bytes that are sent."""
+    told = answer.finish() if isinstance(answer, Unfinished) else answer
+    return told, told if isinstance(told, bytes) else encoded(told)
 
 
 _EVERY = ("bad-request", "unexpected-query", "key-missing", "key-refused", "not-found", "method-not-allowed")

@@ -15,14 +15,14 @@ from litestar.exceptions import HTTPException
 from litestar.handlers import HTTPRouteHandler
 from litestar.types import ASGIApp
 
-from loopslack.api.operations import Floor, Operation
+from loopslack.api.operations import Floor, Operation, finished
 from loopslack.api.reading import check_acceptable, check_body_head, read_body, refuse_query
 from loopslack.api.record import internal_fault, log_fault, note_of
 from loopslack.api.reference import Page, page_route, reference_page
 from loopslack.api.reply import Reply, problem_reply
+from loopslack.api.side_words import Answered, judged
 from loopslack.api.wrappers import nothing_here
 from loopslack.contract.answering import Unfinished
-from loopslack.contract.encoding import encoded
 from loopslack.contract.refusals import Refused, refusal_of
 from loopslack.contract.strict.decoding import decode_in_steps
 from loopslack.contract.strict.reader import reader_of
@@ -75,34 +75,31 @@ def _answering(operation: Operation[Any, Any], floor: Floor) -> Handler:
         check_body_head(scope)
         body = await read_body(scope, request.receive, limit, settings.body_seconds)
         asked = await decode_in_steps(body, question, settings.nesting)
-        begun = time.perf_counter()
-        try:
-            if operation.costly is True or (is_costly is not None and is_costly(asked)):
-                answered = await floor.costly.run(lambda: _finished(ask(asked)))
-            else:
-                begin = ask(asked)
-                if isinstance(begin, Unfinished):
-                    answered = await floor.costly.run(lambda: _finished(begin))
-                else:
-                    answered = _finished(begin)
-        except CalculationError as error:
-            raise refusal_of(error) from None
-        told, sent = answered
-        seconds = time.perf_counter() - begun
-        note_of(scope).calculation_seconds = seconds
-        if operation.outcomes is not None:
-            for outcome, codes in operation.outcomes(told):
-                count_design(operation.operation_id, outcome, codes)
-        timing = (b"server-timing", b"calc;dur=%.3f" % (seconds * 1e3))
-        return Reply(sent, media_type, 200, [*standing, timing])
+        costly = operation.costly is True or (is_costly is not None and is_costly(asked))
+        answered = None if costly else _at_once(operation, ask, asked)
+        if answered is None:
+            answered = await floor.costly.ask(operation.operation_id, body)
+        note_of(scope).calculation_seconds = answered.seconds
+        for verdict, codes in answered.judged:
+            count_design(operation.operation_id, verdict, codes)
+        timing = (b"server-timing", b"calc;dur=%.3f" % (answered.seconds * 1e3))
+        return Reply(answered.sent, media_type, 200, [*standing, timing])
 
     return answer
 
 
-def _finished(answer: object) -> tuple[object, bytes]:
-    """An answer with its bytes; in the same thread, since encoding a long one takes its time too."""
-    told = answer.finish() if isinstance(answer, Unfinished) else answer
-    return told, told if isinstance(told, bytes) else encoded(told)
+def _at_once(operation: Operation[Any, Any], ask: Callable[[Any], Any], asked: object) -> Answered | None:
+    """The answer computed here and now, or None where it turns out to take too long for that."""
+    begun = time.perf_counter()
+    try:
+        answer = ask(asked)
+        if isinstance(answer, Unfinished):
+            return None
+        told, sent = finished(answer)
+    except CalculationError as error:
+        raise refusal_of(error) from None
+    designs = judged(operation.outcomes(told)) if operation.outcomes is not None else ()
+    return Answered(sent, designs, time.perf_counter() - begun)
 
 
 def _responding(operation: Operation[Any, Any], floor: Floor) -> Handler:

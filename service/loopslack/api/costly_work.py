@@ -1,0 +1,39 @@
+"""What the side process does with a costly question: read it again, ask the operation, encode the answer.
+
+The question crosses as the bytes that came, since reading them takes less than passing on what was read. Nothing here
+waits or knows a request.
+"""
+
+import time
+from collections.abc import Iterable
+from typing import Any
+
+from loopslack.api.nursery import Work
+from loopslack.api.operations import Operation, finished
+from loopslack.api.side_words import Answered, encode, judged, read_question, told_of
+from loopslack.contract.strict.decoding import decode
+
+
+def costly_work(operations: Iterable[Operation[Any, Any]], nesting: int) -> Work:
+    """The work, for the operations there are."""
+    by_id = {operation.operation_id: operation for operation in operations}
+
+    def answer(message: bytes) -> bytes:
+        asked = read_question(message)
+        try:
+            return encode(answered(by_id[asked.operation_id], asked.body, nesting))
+        except Exception as error:  # noqa: BLE001 - whatever it is, the worker must be told
+            return encode(told_of(error))
+
+    return answer
+
+
+def answered(operation: Operation[Any, Any], body: bytes, nesting: int) -> Answered:
+    """The answer of an operation to a body."""
+    if operation.question is None or operation.ask is None:
+        raise TypeError(f"{operation.operation_id} answers no question by itself")
+    question = decode(body, operation.question, nesting)
+    begun = time.perf_counter()
+    told, sent = finished(operation.ask(question))
+    designs = judged(operation.outcomes(told)) if operation.outcomes is not None else ()
+    return Answered(sent, designs, time.perf_counter() - begun)
