@@ -5,13 +5,17 @@ balance that a loop and a scenario fix; a vessel enters through its liquid when 
 """
 
 from collections.abc import Sequence
+from math import inf
 from typing import NamedTuple
 
 from loopslack.calc.model import Branch, CollectorGroup, Loop
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.steam import Steam, SteamSpace
+from loopslack.kernel.roots import bracketed
 
 Spaces = tuple[Steam, ...]
+
+_PASCAL = 1e-14  # share of a pressure to which that of the station is found, of the size of its rounding
 
 
 class Extent(NamedTuple):
@@ -165,12 +169,39 @@ class Balance:
     def station_pressure(self) -> float | None:
         """Lowest vessel pressure (Pa) that leaves no steam unspent, infinite if none does, None if any does.
 
-        What the station takes is counted where one steam space arrives there; with several it would have to be
-        shared, so it is left out, which is safe.
+        What the station takes is shared by all steam spaces that reach it.
         """
-        taken = self.station_loss if len(self.spaces) == 1 else 0.0
-        found = [p for p in (space.station_pressure(taken) for space in self.spaces) if p is not None]
-        return max(found) if found else None
+        if len(self.spaces) == 1:
+            return self.spaces[0].station_pressure(self.station_loss)
+        alone = [space.station_pressure(0.0) for space in self.spaces]
+        found = [pressure for pressure in alone if pressure is not None]
+        if not found or self.station_loss <= 0:
+            return max(found) if found else None
+        # Beyond the bubble line of a space it is not known whether its steam would still arrive.
+        known = [
+            space.pressure(space.fluid.boiling_highest)
+            for space, pressure in zip(self.spaces, alone, strict=True)
+            if pressure == inf
+        ]
+        return self._shared_pressure(min(known) if known else max(found))
+
+    def _shared_pressure(self, high: float) -> float | None:
+        """As above, up to ``high`` (Pa): what arrives in all falls as pressure rises."""
+
+        def spare(pressure: float) -> float:
+            return self.station_loss - sum(space.unspent(pressure) for space in self.spaces)
+
+        low = min(space.pressure(space.coldest) for space in self.spaces)
+        at_low, at_high = spare(low), spare(high)
+        if at_low >= 0:
+            return None
+        if at_high < 0:
+            return inf
+        step = _PASCAL * abs(high)
+        found = bracketed(spare, low, high, at_low, at_high, step).at
+        while found < high and spare(found) < 0:  # on the side where all is taken, should steam leap there
+            found, step = min(found + step, high), 2 * step
+        return found
 
 
 def is_open(branch: Branch, scenario: Scenario) -> bool:

@@ -147,22 +147,32 @@ class SteamSpace:
 
     def at_pressure(self, pressure: float, *, below: bool = True) -> Steam:
         """Steam at a vessel pressure (Pa): the largest extent, where a rising path allows several."""
+        found = self.boiling_at(pressure)
+        return self._liquid_at(pressure) if found is None else self.at(found, below=below)[1]
+
+    def unspent(self, pressure: float) -> float:
+        """Power (W) that arrives at the end of the branches at a vessel pressure (Pa)."""
+        found = self.boiling_at(pressure)
+        return 0.0 if found is None else self.path.front(self.power(found), found).unspent
+
+    def boiling_at(self, pressure: float) -> float | None:
+        """Steam temperature (K) at a vessel pressure (Pa); None where nothing boils or the bubble line has ended."""
         low, top = self.boiling_below(pressure), self.highest_boiling()
         if low >= top:
-            return self._liquid_at(pressure)
+            return None
         high = min(top, self._boiling(pressure - self.column * min(self.path.heights)))
         if not self.path.falling:
             bracket = self._first_rise(pressure)
             if bracket is None:
-                return self._liquid_at(pressure)
+                return None
             low, high = bracket
         elif high >= top and self.pressure(top) < pressure:
-            return self._liquid_at(pressure)
+            return None
         if low >= high or (low <= self.coldest and self.pressure(low) >= pressure):
-            return self.at(low, below=below)[1]
+            return low
         if self.power(high) >= self.path.loss(high) and high < top and self.path.falling:
             # The runs are full of steam there, and at every lower temperature: the column is known.
-            return self.at(high, below=below)[1]
+            return high
         slope = self.column * (max(self.path.heights) - min(self.path.heights)) / (high - low)
         guess, at = self._last
         found = near(
@@ -174,7 +184,7 @@ class SteamSpace:
             _ACCURACY * max(abs(pressure), BAR),
         ).at
         self._last = found, pressure
-        return self.at(found, below=below)[1]
+        return found
 
     def knots(self) -> list[float]:
         """Steam temperatures (K), rising, between which pressure on a path with rising stretches has no peak.

@@ -76,6 +76,15 @@ def two_groups(apart: bool) -> Plain:
     return found
 
 
+def shared_cooler() -> Plain:
+    """Both spaces reach the station at low pressure; a cooler there takes the steam of both."""
+    found = two_groups(apart=True)
+    for run in found["pipeRuns"]:
+        run["segments"][0]["length"] = quantity(9 if run["steamSpace"] == "roof" else 4, "m")
+    found["station"]["steamCooler"] = quantity(900, "W")
+    return found
+
+
 def uneven() -> Plain:
     """The flow drops steeply at first, the return evenly: fronts at one height, not at one share."""
     found = with_runs(wash_house(), stretches(6, 17))
@@ -221,6 +230,7 @@ DESIGNS: dict[str, Callable[[], Plain]] = {
     ),
     "two groups in one steam space": lambda: two_groups(apart=False),
     "two groups in steam spaces of their own": lambda: two_groups(apart=True),
+    "a cooler shared by two steam spaces": shared_cooler,
     "runs of different courses": uneven,
     "a stock list with a fixed precharge": stock,
     "an optimised precharge": lambda: changed(wash_house(), "/precharge", {"kind": "optimised"}),

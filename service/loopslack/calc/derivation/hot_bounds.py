@@ -77,14 +77,20 @@ class HotBounds:
         )
 
     def _close_station(self, pressure: Value, spaces: list[SpaceValues], tag: str) -> None:
-        """Hold the steam that the full pipes leave against what the station takes: with several spaces, nothing."""
+        """Hold the steam that the full pipes leave against what the station takes, if it takes any."""
         book = self.book
         lefts = [space.left for space in spaces if space.left is not None]
         if not lefts:
             return
         left = min(lefts, key=lambda value: abs(value.si))
         residual = left
-        if len(spaces) == 1 and self.frame.loop.station.steam_loss > 0:
+        if self.frame.loop.station.steam_loss > 0:
+            arriving = [space.left for space in spaces if space.arrives and space.left is not None]
+            left = arriving[0] if len(arriving) == 1 else left
+            if len(arriving) > 1:
+                left = book.sum(
+                    balance_steam.power_sum, f"steam power that reaches the station {tag}", arriving
+                )
             residual = book.step(
                 balance_steam.power_left,
                 f"steam power less what pipes and station take {tag}",
