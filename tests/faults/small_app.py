@@ -7,9 +7,18 @@ from typing import Any
 
 
 async def app(scope: dict[str, Any], receive: Any, send: Any) -> None:
-    """Answers 200 with the body's length after the body has come, 408 if it did not come in time."""
+    """Answers 200 with the body's length after the body has come, 408 if it did not come in time.
+
+    Under `/no-more` it answers 413 after the first piece, as a limit on the body does.
+    """
     if scope["type"] == "lifespan":
         await lifespan(receive, send)
+        return
+    if scope["path"] == "/no-more":
+        await receive()
+        headers = [(b"content-length", b"8"), (b"connection", b"close")]
+        await send({"type": "http.response.start", "status": 413, "headers": headers})
+        await send({"type": "http.response.body", "body": b"too much"})
         return
     length = 0
     status = 200

@@ -13,6 +13,7 @@ from pathlib import Path
 import pytest
 
 from faults.server import Server, serving
+from loopslack.worker.connection import LINGER_BYTES, LINGER_LONGEST
 
 REQUEST = b"POST /echo HTTP/1.1\r\nHost: a\r\nContent-Length: 5\r\n\r\nhello"
 LIMITS = {
@@ -201,3 +202,69 @@ def test_a_graceful_stop_does_not_wait_for_idle_connections(tmp_path: Path) -> N
         seconds = started.stop(within=8.0)
         assert read_answer(busy).startswith(b"HTTP/1.1 200 ")
     assert seconds < 4.0
+
+
+def send_all_then_read(server: Server, head: bytes, length: int, pause: float = 0.0) -> tuple[bytes, int]:
+    """Send a request as a simple client does, the whole body before it reads; what came back, and what was sent."""
+    piece, sent = b" " * 65_536, 0
+    with server.connect() as connection:
+        connection.sendall(head)
+        with suppress(ConnectionError):
+            while sent < length:
+                connection.sendall(piece)
+                sent += len(piece)
+                time.sleep(pause)
+        received = bytearray()
+        with suppress(ConnectionError):
+            while got := connection.recv(65_536):
+                received += got
+    return bytes(received), sent
+
+
+LARGE = 50_000_000
+TOO_LARGE = b"POST /no-more HTTP/1.1\r\nHost: a\r\nContent-Length: %d\r\n\r\n" % LARGE
+
+
+def test_a_client_that_sends_far_too_much_gets_to_read_why_it_was_refused(server: Server) -> None:
+    for _ in range(5):
+        received, sent = send_all_then_read(server, TOO_LARGE, LARGE)
+        assert received.startswith(b"HTTP/1.1 413 ")
+        assert received.endswith(b"too much")
+        assert sent >= LARGE
+
+
+def test_what_a_client_sends_after_its_answer_is_dropped_up_to_a_bound(server: Server) -> None:
+    endless = b"POST /no-more HTTP/1.1\r\nHost: a\r\nTransfer-Encoding: chunked\r\n\r\n" + b"FFFFFFFF\r\n"
+    _, sent = send_all_then_read(server, endless, 10 * LINGER_BYTES)
+    assert sent < 2 * LINGER_BYTES
+
+
+def test_a_client_that_sends_slowly_after_its_answer_is_closed_in_bounded_time(server: Server) -> None:
+    began = time.monotonic()
+    send_all_then_read(server, TOO_LARGE, LARGE, pause=0.1)
+    assert time.monotonic() - began < LINGER_LONGEST + 3.0
+
+
+def keep_sending(connection: socket.socket) -> None:
+    """Send for a second, or until the connection breaks."""
+    for _ in range(50):
+        connection.sendall(b"x" * 65_536)
+        time.sleep(0.02)
+
+
+def test_a_client_that_falls_silent_after_its_answer_is_closed_soon(server: Server) -> None:
+    with server.connect() as connection:
+        connection.sendall(TOO_LARGE + b"half")
+        received, seconds = read_until_closed(connection)
+        assert received.startswith(b"HTTP/1.1 413 ")
+        assert seconds < 1.0
+        time.sleep(1.5)
+        with pytest.raises(ConnectionError):
+            keep_sending(connection)
+
+
+def test_others_are_served_while_a_body_is_dropped(server: Server) -> None:
+    with server.connect() as sender, server.connect() as other:
+        sender.sendall(TOO_LARGE + b" " * 1_000_000)
+        other.sendall(REQUEST)
+        assert read_answer(other).startswith(b"HTTP/1.1 200 ")
