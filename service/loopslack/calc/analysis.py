@@ -5,6 +5,7 @@ compared and checked against it. Nothing here knows a vessel.
 """
 
 from copy import copy
+from functools import cached_property
 from typing import NamedTuple
 
 from msgspec.structs import replace
@@ -56,6 +57,19 @@ class Analysis:
         """The base case, each doubt alone, and all of them at once."""
         return (BASE, *self.doubts, self.combined)
 
+    @cached_property
+    def room_density(self) -> float:
+        """Density (kg/m3) of the liquid in a vessel at the temperature of its room."""
+        return self.fluid.density(self.loop.temperatures.vessel_room)
+
+    @cached_property
+    def cut_off_pressure(self) -> float:
+        """Vessel pressure (Pa) that keeps the highest point from boiling at the pump's cut-off temperature."""
+        loop = self.loop
+        bubble = self.fluid.bubble_pressure(loop.temperatures.cut_off)
+        against = loop.pump_head if loop.pump_side == "discharge" else 0.0
+        return bubble + loop.criteria.boiling_margin + self.states.cut_off.column + against
+
     def case(self, scenario: Scenario) -> SteamCase:
         """The steam of a scenario, worked out when first asked for."""
         key = scenario.steam_key
@@ -68,10 +82,17 @@ class Analysis:
         """The same loop with a cooling vessel of ``content`` m3: the steam stays, the liquid shifts."""
         loop = replace(self.loop, cooling_content=content)
         change = content - self.loop.cooling_content
+        cooled = copy(self)
+        cooled.loop = loop
+        cooled.content = loop.content
+        cooled.allowance = loop.criteria.fluid_allowance * cooled.content
+        cooled.states = self.states.with_more_still(change, cooled.allowance - self.allowance)
+        cooled.mix = self.mix._replace(cool=self.mix.cool + change)
         filled = change * self.states.fill.vessel_density
         still = change * self.fluid.density(loop.temperatures.hot_liquid)
         cases = {key: _shifted(case, loop, filled, still) for key, case in self._cases.items()}
-        return Analysis(loop, cases)
+        cooled._cases = cases  # noqa: SLF001 - of this class
+        return cooled
 
 
 def final_pressure(loop: Loop) -> float:

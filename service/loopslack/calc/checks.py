@@ -11,7 +11,7 @@ from loopslack.calc.equilibrium import ROUNDING, Equilibrium
 from loopslack.calc.judgement import Check, CheckCode, CheckVerdict
 from loopslack.calc.model import Part, Relief
 from loopslack.calc.states import LiquidState
-from loopslack.calc.window import Bounds, Window, cut_off_pressure
+from loopslack.calc.window import Bounds, Window
 from loopslack.kernel import kinds
 from loopslack.kernel.errors import CalculationError
 from loopslack.kernel.kinds import Kind
@@ -125,7 +125,7 @@ def top_pressure(analysis: Analysis, pressure: float | None) -> Check:
 
 def cut_off(analysis: Analysis, pressure: float | None) -> Check:
     """Vessel pressure at the pump's cut-off temperature against what keeps the top from boiling."""
-    limit = cut_off_pressure(analysis)
+    limit = analysis.cut_off_pressure
     if pressure is None:
         return Check(
             "boiling-at-cut-off",

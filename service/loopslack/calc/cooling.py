@@ -5,12 +5,13 @@ content also takes part in the balance, so a vessel and its cooling vessel are f
 """
 
 from collections.abc import Callable, Sequence
+from math import inf
 from typing import NamedTuple
 
 from loopslack.calc.analysis import Analysis
-from loopslack.calc.equilibrium import Equilibrium
+from loopslack.calc.balance import Mixing
 from loopslack.calc.scenarios import Scenario
-from loopslack.calc.stagnation import stagnation
+from loopslack.calc.stagnation import charge_of, stagnation
 from loopslack.calc.window import Bound, Bounds, Gas, Window
 from loopslack.kernel.roots import bracketed
 
@@ -31,16 +32,44 @@ def hottest(charged: Charged, scenarios: Sequence[Scenario]) -> tuple[float, Sce
 
     The least filling is the worst: less cool liquid, less pressure, more steam.
     """
-    found, worst = _hottest(charged, scenarios)
-    return found.mixed_temperature, worst
-
-
-def _hottest(charged: Charged, scenarios: Sequence[Scenario]) -> tuple[Equilibrium, Scenario]:
     found = [
-        (stagnation(charged.analysis, scenario, charged.gas, charged.least), scenario)
+        (stagnation(charged.analysis, scenario, charged.gas, charged.least).mixed_temperature, scenario)
         for scenario in scenarios
     ]
-    return max(found, key=lambda pair: pair[0].mixed_temperature)
+    return max(found, key=lambda pair: pair[0])
+
+
+def spare(charged: Charged, scenario: Scenario, limit: float) -> float:
+    """Mass (kg) a loop may push out more until the vessel mixes to ``limit`` K; negative where it is hotter.
+
+    The vessel as it is when just that warm fixes its pressure, and that the steam: no equilibrium is solved. Only
+    where pipes rise may a loop rest in several states at one pressure, and the equilibrium tells which.
+    """
+    analysis, gas, mass = charged.analysis, charged.gas, charged.least
+    charge = charge_of(analysis, gas, mass)
+    held = _held_at(analysis.mix, max(charge.filled, 0.0), limit)
+    if held == inf:
+        return inf
+    case = analysis.case(scenario)
+    density = analysis.fluid.density(limit) if scenario.gas_follows else analysis.room_density
+    spaces = case.balance.spaces
+    if len(spaces) == 1 and not spaces[0].path.falling:
+        return (held - stagnation(analysis, scenario, gas, mass).liquid) * density
+    pressure = charge.pressure_holding(held, limit if scenario.gas_follows else charge.room)
+    # The valve is shut at every filling asked for, so no more is pushed out than at its pressure.
+    steam = case.final if pressure >= analysis.final_pressure else case.balance.at_pressure(pressure)
+    return (held - charge.allowance) * density - mass - steam.expelled
+
+
+def _held_at(mix: Mixing, filled: float, limit: float) -> float:
+    """Liquid (m3) with which a vessel that had ``filled`` m3 mixes to ``limit`` K; infinite if it never does."""
+    cool = filled + mix.cool
+    returned = cool * (mix.back - mix.room)
+    if mix.back > limit and returned < (mix.back - limit) * (cool + mix.back_volume):
+        return returned / (mix.back - limit)
+    if mix.hot <= limit:
+        return inf
+    return (cool * (mix.hot - mix.room) + mix.back_volume * (mix.hot - mix.back)) / (mix.hot - limit)
 
 
 def smallest_content(
@@ -56,17 +85,21 @@ def smallest_content(
         charged = charge(content)
         if charged is None:
             return None
-        found, worst = _hottest(charged, scenarios)
-        excess = found.mixed_temperature - limit
-        if excess <= 0:
-            return content
         mix = charged.analysis.mix
         if limit <= mix.room:
-            return None
+            return content if hottest(charged, scenarios)[0] <= limit else None
+        left, worst = _least_spare(charged, scenarios, limit)
+        if left >= 0:
+            return content
         # Cool liquid in place of as much hot: right but for what the content itself changes in the balance.
-        step = max(1e-6, 1.1 * found.liquid * excess / max(mix.hot - mix.room, 1.0))
-        content = _content_for(charge, worst, limit, (content, excess), step)
+        step = 1.1 * -left / charged.analysis.room_density * (mix.hot - limit) / max(mix.hot - mix.room, 1.0)
+        content = _content_for(charge, worst, limit, (content, left), max(1e-6, step))
     return None
+
+
+def _least_spare(charged: Charged, scenarios: Sequence[Scenario], limit: float) -> tuple[float, Scenario]:
+    """See ``spare``, under the scenario that leaves least."""
+    return min(((spare(charged, s, limit), s) for s in scenarios), key=lambda pair: pair[0])
 
 
 def _content_for(
@@ -76,25 +109,25 @@ def _content_for(
     start: tuple[float, float],
     step: float,
 ) -> float | None:
-    """Content (m3) with which one scenario just keeps the limit; ``start`` is a content and its excess (K)."""
+    """Content (m3) with which one scenario just keeps the limit; ``start`` is a content and what it spares (kg)."""
 
-    def excess(content: float) -> float:
+    def spared(content: float) -> float:
         charged = charge(content)
         if charged is None:
             raise _NoVessel
-        return _hottest(charged, (scenario,))[0].mixed_temperature - limit
+        return spare(charged, scenario, limit)
 
     low, at_low = start
     high = low + step
     try:
-        at_high = excess(high)
-        while at_high > 0:
+        at_high = spared(high)
+        while at_high < 0:
             low, at_low = high, at_high
             high += 0.5 * step + 0.5 * high
             if high > _MOST:
                 return None
-            at_high = excess(high)
-        found = bracketed(excess, low, high, at_low, at_high, _TOLERANCE * high).at
+            at_high = spared(high)
+        found = bracketed(spared, low, high, at_low, at_high, _TOLERANCE * high).at
     except _NoVessel:
         return None
     return found * (1 + _TOLERANCE)
@@ -107,25 +140,31 @@ def membrane_bound(
 
     A mass above ``upper`` means that no filling does.
     """
-    temperature, worst = hottest(Charged(analysis, gas, lower.mass), scenarios)
-    while temperature > limit:
-        most = hottest(Charged(analysis, gas, upper.mass), (worst,))[0]
-        if most > limit:
-            return Bound("membrane-temperature", worst.id, upper.mass * (1 + (most - limit) / limit) + 1e-9)
-        scenario = worst
-        mass = bracketed(
-            lambda m: hottest(Charged(analysis, gas, m), (scenario,))[0] - limit,  # noqa: B023 - used at once
-            lower.mass,
-            upper.mass,
-            temperature - limit,
-            most - limit,
-            _TOLERANCE * upper.mass,
-        ).at
-        lower = Bound("membrane-temperature", worst.id, mass * (1 + 2 * _TOLERANCE))
-        temperature, worst = hottest(Charged(analysis, gas, lower.mass), scenarios)
-        if worst is scenario and temperature > limit:
-            lower = lower._replace(mass=lower.mass + _TOLERANCE * upper.mass)
-    return lower
+    while True:
+        left, worst = _least_spare(Charged(analysis, gas, lower.mass), scenarios, limit)
+        if left >= 0:
+            return lower
+        most = spare(Charged(analysis, gas, upper.mass), worst, limit)
+        if most < 0:
+            # How far off as a temperature, so that a search for a vessel sees a slope.
+            excess = hottest(Charged(analysis, gas, upper.mass), (worst,))[0] - limit
+            return Bound("membrane-temperature", worst.id, upper.mass * (1 + max(excess, 0.0) / limit) + 1e-9)
+        mass = _filling_for(analysis, worst, gas, limit, (lower.mass, upper.mass, left, most))
+        raised = mass * (1 + 2 * _TOLERANCE)
+        if raised <= lower.mass:
+            raised = lower.mass + _TOLERANCE * upper.mass
+        lower = Bound("membrane-temperature", worst.id, raised)
+
+
+def _filling_for(
+    analysis: Analysis, scenario: Scenario, gas: Gas, limit: float, ends: tuple[float, float, float, float]
+) -> float:
+    """Filling (kg) with which one scenario just keeps the limit; ``ends`` are two fillings and what they spare."""
+
+    def spared(mass: float) -> float:
+        return spare(Charged(analysis, gas, mass), scenario, limit)
+
+    return bracketed(spared, *ends, _TOLERANCE * ends[1]).at
 
 
 def cool_window(analysis: Analysis, scenarios: Sequence[Scenario], gas: Gas, membrane_limit: float) -> Window:

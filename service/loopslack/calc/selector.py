@@ -16,9 +16,11 @@ from loopslack.calc.cooling import Charged, hottest
 from loopslack.calc.delivered import nearest_precharge
 from loopslack.calc.fit import Fit, acceptance_needed, cooling_for, fit
 from loopslack.calc.model import Vessel
+from loopslack.calc.precharge import gas_of
 from loopslack.calc.reasons import Reason, ReasonCode, shortage
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.sizing.volumes import CoolingMode, Sized
+from loopslack.calc.window import Bounds
 from loopslack.kernel import kinds
 
 # Refusals solved with the candidate's own cooling vessel; further ones are told by the loop as sized, so that a list
@@ -42,7 +44,9 @@ class Selector:
         self.membrane_limit = membrane_limit
         self._fits: dict[tuple[object, ...], Fit | None] = {}
         self._reasons: dict[tuple[object, ...], tuple[Reason, ...]] = {}
+        self._other_reasons: dict[tuple[object, ...], list[Reason]] = {}
         self._acceptances: dict[tuple[float, float | None], float] = {}
+        self._precharges: dict[tuple[float, float], list[Reason]] = {}
         self._solved = 0
         self._needed = pressure_to_withstand(analysis, analysis.loop.relief, 0.0)
 
@@ -52,20 +56,29 @@ class Selector:
         ``exact`` solves for the candidate's own cooling vessel; without it, and after ``_MOST_SOLVED`` refusals, the
         loop as sized tells, which is enough to sort those ranked after the choice.
         """
-        key = (exact, vessel.rated_pressure, count, *self._key(vessel, count))
+        own = (exact, count, *self._own(vessel))
+        key = (vessel.rated_pressure, own)
         found = self._reasons.get(key)
         if found is None:
-            found = self._reasons[key] = tuple(self._found(vessel, count, exact=exact))
+            others = self._other_reasons.get(own)
+            if others is None:
+                others = self._other_reasons[own] = self._found(vessel, count, exact=exact)
+            found = self._reasons[key] = (*self._rating(vessel), *others)
         return found
 
+    def _rating(self, vessel: Vessel) -> list[Reason]:
+        """Whether the vessel withstands what the relief valve lets through."""
+        rated = vessel.rated_pressure
+        if rated is None or rated >= self._needed:
+            return []
+        return [shortage("rated-pressure", kinds.GAUGE_PRESSURE, rated, self._needed)]
+
     def _found(self, vessel: Vessel, count: int, *, exact: bool) -> list[Reason]:
-        found = []
-        rated, sized = vessel.rated_pressure, self.sized
-        if rated is not None and rated < self._needed:
-            found.append(shortage("rated-pressure", kinds.GAUGE_PRESSURE, rated, self._needed))
+        """Every reason but the rated pressure, which has to do with nothing else."""
+        sized = self.sized
         if sized is None:
-            found.append(self._no_volume)
-            return found
+            return [self._no_volume]
+        found: list[Reason] = []
         nominal = vessel.nominal_volume * count
         smallest, largest = sized.smallest, sized.interval.largest
         if nominal < smallest:
@@ -92,23 +105,29 @@ class Selector:
         nominal = vessel.nominal_volume * count
         fixed = None if vessel.precharge_adjustable else vessel.delivered_precharge
         if fixed is not None:
-            bare = replace(vessel, acceptance_volume=None)
-            plain = fit(sized.analysis, self.scenarios, bare, count, "size", inf, content=0.0)
-            adjusted = fit(
-                sized.analysis,
-                self.scenarios,
-                replace(bare, precharge_adjustable=True),
-                count,
-                "size",
-                inf,
-                content=0.0,
-            )
-            if plain is not None and adjusted is not None and not plain.window.wide_enough:
-                if not adjusted.window.wide_enough:
-                    return [self._too_narrow(plain)]
-                needed = nearest_precharge(adjusted, self.scenarios, fixed, lambda _: True)
-                return [shortage("precharge-as-delivered", kinds.GAUGE_PRESSURE, fixed, needed)]
+            narrow = self._precharges.get((nominal, fixed))
+            if narrow is None:
+                narrow = self._precharges[nominal, fixed] = self._as_delivered(nominal, fixed, sized)
+            if narrow:
+                return narrow
         return self._acceptance(vessel, count, sized, nominal, fixed)
+
+    def _as_delivered(self, nominal: float, fixed: float, sized: Sized) -> list[Reason]:
+        """Whether the precharge as delivered leaves a vessel of ``nominal`` m3 a window in the loop as sized."""
+        plain = self._plain(_article(nominal, fixed), sized)
+        if plain.window.wide_enough:
+            return []
+        adjusted = self._plain(_article(nominal, None), sized)
+        if not adjusted.window.wide_enough:
+            return [self._too_narrow(plain)]
+        needed = nearest_precharge(adjusted, self.scenarios, fixed, lambda _: True)
+        return [shortage("precharge-as-delivered", kinds.GAUGE_PRESSURE, fixed, needed)]
+
+    def _plain(self, article: Vessel, sized: Sized) -> Fit:
+        """A vessel in the loop as it was sized."""
+        gas = gas_of(sized.analysis, article, 1)
+        window = Bounds(sized.analysis, self.scenarios, gas).window(gas.nominal)
+        return Fit(article, 1, gas, sized.analysis, window)
 
     @cached_property
     def _no_volume(self) -> Reason:
@@ -191,15 +210,8 @@ class Selector:
             return []
         needed = self._acceptances.get((nominal, fixed))
         if needed is None:
-            article = Vessel(
-                id="",
-                nominal_volume=nominal,
-                delivered_precharge=fixed,
-                precharge_adjustable=fixed is None,
-            )
-            fitted = fit(sized.analysis, self.scenarios, article, 1, "size", inf, content=0.0)
-            needed = 0.0 if fitted is None else acceptance_needed(fitted, self.scenarios)
-            self._acceptances[nominal, fixed] = needed
+            fitted = self._plain(_article(nominal, fixed), sized)
+            needed = self._acceptances[nominal, fixed] = acceptance_needed(fitted, self.scenarios)
         if accepted * count >= needed:
             return []
         return [shortage("acceptance-volume", kinds.ACCEPTANCE_VOLUME, accepted, needed / count)]
@@ -207,19 +219,15 @@ class Selector:
     def _limit(self, vessel: Vessel) -> float:
         return self.membrane_limit if vessel.membrane_limit is None else vessel.membrane_limit
 
-    def _key(self, vessel: Vessel, count: int) -> tuple[object, ...]:
+    @staticmethod
+    def _own(vessel: Vessel) -> tuple[object, ...]:
+        """All that tells one vessel from another, but its rating, its price and its name."""
         fixed = None if vessel.precharge_adjustable else vessel.delivered_precharge
-        acceptance = vessel.acceptance_volume
-        return (
-            vessel.nominal_volume * count,
-            None if acceptance is None else acceptance * count,
-            fixed,
-            vessel.membrane_limit,
-        )
+        return vessel.nominal_volume, vessel.acceptance_volume, fixed, vessel.membrane_limit
 
     def fit(self, vessel: Vessel, count: int) -> Fit | None:
         """A candidate in the loop with its own cooling vessel; None where none is large enough."""
-        key = self._key(vessel, count)
+        key = (count, *self._own(vessel))
         if key not in self._fits:
             content = None
             if self.cooling == "size":
@@ -241,3 +249,10 @@ class Selector:
             )
         found = self._fits[key]
         return found and found._replace(vessel=vessel, pieces=count)
+
+
+def _article(nominal: float, fixed: float | None) -> Vessel:
+    """A vessel of ``nominal`` m3 whose precharge is ``fixed`` (gauge Pa), or can be set."""
+    return Vessel(
+        id="", nominal_volume=nominal, delivered_precharge=fixed, precharge_adjustable=fixed is None
+    )

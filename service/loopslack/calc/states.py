@@ -16,8 +16,9 @@ class LiquidState(NamedTuple):
     """One all-liquid state of a loop.
 
     ``expelled`` (kg) since filling, negative when the vessel feeds the loop; ``vessel`` temperature (K) of its
-    liquid and gas; ``column`` the pressure (Pa) between the vessel connection and the highest point; ``frozen``
-    when the site minimum lies below the freezing point and the state was computed at that point instead.
+    liquid and gas; ``column`` the pressure (Pa) between the vessel connection and the highest point;
+    ``still_density`` that of the liquid in the vessel line and the cooling vessel; ``frozen`` when the site minimum
+    lies below the freezing point and the state was computed at that point instead.
     """
 
     id: StateId
@@ -26,6 +27,7 @@ class LiquidState(NamedTuple):
     vessel_density: float
     column: float
     allowance: float
+    still_density: float
     frozen: bool = False
 
     def held(self, mass: float) -> float:
@@ -50,6 +52,22 @@ class LiquidStates(NamedTuple):
         """The states by their id, in order."""
         return {state.id: state for state in self}
 
+    def with_more_still(self, content: float, allowance: float) -> "LiquidStates":
+        """The states of the loop with ``content`` m3 more in its cooling vessel.
+
+        ``allowance`` (m3) is what the fluid's data may be off in that much.
+        """
+        fill, cold, *running = self
+        filled = content * fill.still_density
+        return LiquidStates(
+            fill,
+            cold._replace(
+                expelled=cold.expelled + filled - content * cold.still_density,
+                allowance=cold.allowance - allowance,
+            ),
+            *(s._replace(expelled=s.expelled + filled - content * s.still_density) for s in running),
+        )
+
 
 def liquid_states(loop: Loop) -> LiquidStates:
     """Compute every all-liquid state of a loop.
@@ -62,7 +80,7 @@ def liquid_states(loop: Loop) -> LiquidStates:
 def _fill(loop: Loop) -> LiquidState:
     temperature = loop.temperatures.fill
     density = loop.fluid.density(temperature)
-    return LiquidState("fill", 0.0, temperature, density, density * GRAVITY * loop.top, 0.0)
+    return LiquidState("fill", 0.0, temperature, density, density * GRAVITY * loop.top, 0.0, density)
 
 
 def _cold(loop: Loop) -> LiquidState:
@@ -79,8 +97,8 @@ def _cold(loop: Loop) -> LiquidState:
         for segment in branch.segments:
             mass += (outside if segment.outdoor else inside) * segment.length * segment.area
     mass += (outside if loop.station.outdoor else inside) * loop.station.content
-    still = loop.line_content + loop.cooling_content
-    mass += (outside if loop.vessel_outdoor else inside) * still
+    still = outside if loop.vessel_outdoor else inside
+    mass += still * (loop.line_content + loop.cooling_content)
     return LiquidState(
         "cold",
         _filled(loop) - mass,
@@ -88,6 +106,7 @@ def _cold(loop: Loop) -> LiquidState:
         fluid.density(vessel),
         max(outside, inside) * GRAVITY * loop.top,
         -loop.criteria.fluid_allowance * loop.content,
+        still,
         frozen,
     )
 
@@ -116,7 +135,7 @@ def _running(loop: Loop, id: StateId, collectors: float, flow: float) -> LiquidS
     mass += room * (loop.line_content + loop.cooling_content)
     # The return column stands between vessel and collectors: the heavier one, so the lower pressure at the top.
     return LiquidState(
-        id, _filled(loop) - mass, temperatures.vessel_room, room, cool * GRAVITY * loop.top, 0.0
+        id, _filled(loop) - mass, temperatures.vessel_room, room, cool * GRAVITY * loop.top, 0.0, room
     )
 
 

@@ -19,6 +19,10 @@ _WARM_KELVIN = 1e-11  # what a mixed temperature may be off
 _WARM_PASSES = 80  # five are usual; where two answers are about to vanish the passes get slow
 
 
+Line = tuple[str, str, float, float]
+"""A bound that is linear in the vessel: check, scenario, slope (kg/m3), offset (kg); slope * nominal - offset."""
+
+
 class Bound(NamedTuple):
     """A bound on the filling of the vessel: which check sets it, under which scenario, and the mass (kg)."""
 
@@ -65,60 +69,45 @@ class Bounds:
         loop = analysis.loop
         self.precharge, self.temperature = gas.precharge, gas.temperature
         room = loop.temperatures.vessel_room
-        self.room_density = analysis.fluid.density(room)
+        self.room_density = analysis.room_density
         self.fill_density = analysis.states.fill.vessel_density
         self.squeeze = gas.precharge * room / gas.temperature
-        # (code, scenario, slope, offset): mass = slope * nominal - offset
-        self.lower: list[tuple[str, str, float, float]] = []
-        self.upper: list[tuple[str, str, float, float]] = []
+        self._allowed = analysis.room_density * analysis.allowance
+        self.lower: list[Line] = [self._cold(), self._cut_off()]
+        self.upper: list[Line] = []
         self.warm: list[Scenario] = []
-        self._cold()
-        self._cut_off()
         for scenario in scenarios:
             self._stagnation(scenario)
 
-    def _line(self, code: str, id: str, pressure: float, expelled: float) -> tuple[str, str, float, float]:
+    def _hot(self, code: str, id: str, pressure: float, expelled: float) -> Line:
         """The mass with which the vessel just stands at a hot pressure."""
-        density = self.room_density
-        return (
-            code,
-            id,
-            density * (1 - self.squeeze / pressure),
-            density * self.analysis.allowance + expelled,
-        )
+        return code, id, self.room_density * (1 - self.squeeze / pressure), self._allowed + expelled
 
-    def _cold(self) -> None:
+    def _cold(self) -> Line:
         """The pressure at the top when cold."""
         loop, cold = self.analysis.loop, self.analysis.states.cold
         needed = loop.atmosphere + loop.criteria.top_pressure + cold.column
         squeeze = self.precharge * cold.vessel / self.temperature
         slope = cold.vessel_density * (1 - squeeze / needed)
-        self.lower.append(
-            ("top-pressure", "cold", slope, cold.vessel_density * cold.allowance + cold.expelled)
-        )
+        return "top-pressure", "cold", slope, cold.vessel_density * cold.allowance + cold.expelled
 
-    def _cut_off(self) -> None:
+    def _cut_off(self) -> Line:
         """No boiling at the top when the pump cuts off."""
-        needed = cut_off_pressure(self.analysis)
-        state = self.analysis.states.cut_off
-        self.lower.append(self._plain("boiling-at-cut-off", "cut-off", needed, state.expelled))
-
-    def _plain(self, code: str, id: str, pressure: float, expelled: float) -> tuple[str, str, float, float]:
-        density = self.room_density
-        return code, id, density * (1 - self.squeeze / pressure), expelled
+        slope = self.room_density * (1 - self.squeeze / self.analysis.cut_off_pressure)
+        return "boiling-at-cut-off", "cut-off", slope, self.analysis.states.cut_off.expelled
 
     def _stagnation(self, scenario: Scenario) -> None:
         case = self.analysis.case(scenario)
-        final, pressure = case.final, self.analysis.final_pressure
         if scenario.gas_follows:
             self.warm.append(scenario)
         else:
-            self.upper.append(self._line("relief-valve", scenario.id, pressure, final.expelled))
+            pressure = self.analysis.final_pressure
+            self.upper.append(self._hot("relief-valve", scenario.id, pressure, case.final.expelled))
         if case.at_station:
             self.lower.append(("steam-at-station", scenario.id, 0.0, -inf))
         elif case.station is not None and not scenario.gas_follows:
             station = case.station
-            self.lower.append(self._line("steam-at-station", scenario.id, station.pressure, station.expelled))
+            self.lower.append(self._hot("steam-at-station", scenario.id, station.pressure, station.expelled))
 
     def reserve(self, nominal: float) -> float:
         """Liquid (m3) a vessel must still hold when cold."""
@@ -129,31 +118,33 @@ class Bounds:
 
     def masses(self, nominal: float, acceptance: float = inf) -> tuple[Bound, Bound]:
         """Lower and upper bound on the mass (kg) a vessel of ``nominal`` m3 is filled with."""
-        cold = self.analysis.states.cold
-        lowest = Bound("reserve", "cold", cold.mass_holding(self.reserve(nominal)))
+        analysis = self.analysis
+        least = analysis.states.cold.mass_holding(self.reserve(nominal))
+        lowest: tuple[str, str] = "reserve", "cold"
         for code, id, slope, offset in self.lower:
             mass = slope * nominal - offset
-            if mass > lowest.mass:
-                lowest = Bound(code, id, mass)
-        highest = Bound("membrane-full", "fill", self.fill_density * min(nominal, acceptance))
+            if mass > least:
+                least, lowest = mass, (code, id)
+        most = self.fill_density * min(nominal, acceptance)
+        highest: tuple[str, str] = "membrane-full", "fill"
         for code, id, slope, offset in self.upper:
             mass = slope * nominal - offset
-            if mass < highest.mass:
-                highest = Bound(code, id, mass)
+            if mass < most:
+                most, highest = mass, (code, id)
         for scenario in self.warm:
-            case = self.analysis.case(scenario)
-            pressure = self.analysis.final_pressure
-            mass = self._warm_mass(nominal, pressure, case.final.expelled)
-            if mass < highest.mass:
-                highest = Bound("relief-valve", scenario.id, mass)
+            case = analysis.case(scenario)
+            mass = self._warm_mass(nominal, analysis.final_pressure, case.final.expelled)
+            if mass < most:
+                most, highest = mass, ("relief-valve", scenario.id)
             if case.station is not None:
                 station = case.station
                 mass = self._warm_mass(nominal, station.pressure, station.expelled)
-                if mass > lowest.mass:
-                    lowest = Bound("steam-at-station", scenario.id, mass)
+                if mass > least:
+                    least, lowest = mass, ("steam-at-station", scenario.id)
+        lower, upper = Bound(*lowest, least), Bound(*highest, most)
         if acceptance < nominal:
-            highest = self._accepting(nominal, acceptance, highest)
-        return lowest, highest
+            upper = self._accepting(nominal, acceptance, upper)
+        return lower, upper
 
     def _warm_mass(self, nominal: float, pressure: float, expelled: float) -> float:
         """As ``_line`` with gas and liquid of the vessel at the mixed temperature.
@@ -249,12 +240,3 @@ class Bounds:
         """Mass (kg) in the vessel at a fill pressure (Pa) at the fill temperature; negative below the precharge."""
         fill = self.analysis.loop.temperatures.fill
         return self.fill_density * nominal * (1 - self.precharge * fill / self.temperature / pressure)
-
-
-def cut_off_pressure(analysis: Analysis) -> float:
-    """Vessel pressure (Pa) that keeps the highest point from boiling at the pump's cut-off temperature."""
-    loop = analysis.loop
-    state = analysis.states.cut_off
-    bubble = analysis.fluid.bubble_pressure(loop.temperatures.cut_off)
-    against = loop.pump_head if loop.pump_side == "discharge" else 0.0
-    return bubble + loop.criteria.boiling_margin + state.column + against

@@ -8,6 +8,7 @@ from loopslack.calc.judgement import Judgement
 from loopslack.calc.order_list import OrderList as Ordered
 from loopslack.calc.order_list import order_list
 from loopslack.calc.reasons import Reason
+from loopslack.calc.selection import Refusal
 from loopslack.calc.selection import Selection as Selected
 from loopslack.calc.settings_card import settings_card
 from loopslack.calc.sizing.volumes import Sized
@@ -82,8 +83,8 @@ def _sized(found: Sized | None, write: Writer, pressure: write_loop.Pressures) -
 
 def selection(found: Selected, write: Writer) -> out.Selection:
     """How the vessel was chosen."""
-    system = write.system
     chosen = 0 if found.chosen is None else 1
+    written = _Reasons(write.system)
     return out.Selection(
         ranked_by=found.ranked_by,
         considered=len(found.refused) + len(found.alternatives) + chosen,
@@ -92,7 +93,7 @@ def selection(found: Selected, write: Writer) -> out.Selection:
                 id=refusal.vessel.id,
                 pieces=refusal.pieces,
                 verdict="does-not-hold",
-                reasons=[_reason(reason, system) for reason in refusal.reasons],
+                reasons=written.of(refusal),
             )
             for refusal in found.refused
         ],
@@ -108,6 +109,24 @@ _DIFFERENCE: dict[Kind, Kind] = {
     kinds.TEMPERATURE: kinds.TEMPERATURE_DIFFERENCE,
     kinds.GAUGE_PRESSURE: kinds.PRESSURE_DIFFERENCE,
 }
+
+
+class _Reasons:
+    """Writes reasons, once for all vessels that are refused for the very same ones: a stock list repeats itself."""
+
+    def __init__(self, system: System) -> None:
+        self.system = system
+        # By identity, since telling two tuples of numbers equal costs as much as writing them; the refusals keep
+        # each tuple alive meanwhile.
+        self._known: dict[int, list[out.RefusalReason]] = {}
+
+    def of(self, refusal: Refusal) -> list[out.RefusalReason]:
+        """The reasons of one refusal."""
+        found = self._known.get(id(refusal.reasons))
+        if found is None:
+            found = [_reason(reason, self.system) for reason in refusal.reasons]
+            self._known[id(refusal.reasons)] = found
+        return found
 
 
 def _reason(reason: Reason, system: System) -> out.RefusalReason:
