@@ -60,9 +60,17 @@ GAUGE_UNITS = frozenset({"barg", "kPag", "psig"})
 ABSOLUTE_UNITS = frozenset({"bara", "kPaa", "psia"})
 
 
+class _Registry(UnitRegistry[Fraction]):
+    """pint's registry without what it works out beforehand for each of its thousand units, which takes 0.1 s."""
+
+    def _build_cache(self, loaded_files: object = None) -> None:  # noqa: ARG002 - pint calls it with this name
+        """Leave the cache empty; what is asked for is worked out then."""
+        self._caches[()] = self._cache
+
+
 def _lines() -> dict[tuple[str, str], tuple[float, float]]:
     # Fractions keep the factors exact: 1 L is 0.001 m3, not 0.0010000000000000002.
-    registry: UnitRegistry[Fraction] = UnitRegistry(non_int_type=Fraction)
+    registry = _Registry(non_int_type=Fraction)
     # The head of water that gauges are marked in: 1000 kg/m3, conventional.
     registry.define("water_density = 1000 * kilogram / meter ** 3")
 

@@ -5,11 +5,15 @@ Must not live here: anything about a particular page.
 
 import json
 from collections.abc import Iterable
+from functools import cache
 from html import escape
 
 _EMPTY = frozenset({"meta", "link", "input", "br", "hr", "use"})
 _WIDEST = 76
 """Longest line of JSON that is not broken up."""
+
+_LEAST = 3
+"""Characters that each entry of a list or object takes at least, what separates them included."""
 
 
 class Html(str):
@@ -107,9 +111,12 @@ def anchored(anchor: str, *children: object) -> Anchored:
 
 def json_text(value: object, indent: int = 0) -> str:
     """JSON for a person: what fits on a line stays on it, so that a quantity reads as one thing."""
-    short = _short(value)
-    if len(short) + indent <= _WIDEST or not isinstance(value, dict | list) or not value:
-        return short
+    if not isinstance(value, dict | list) or not value:
+        return _short(value)
+    if len(value) * _LEAST <= _WIDEST:  # else it is certainly too wide, and writing it out would be in vain
+        short = _short(value)
+        if len(short) + indent <= _WIDEST:
+            return short
     pad = " " * (indent + 2)
     if isinstance(value, dict):
         inner = [f"{pad}{json.dumps(key)}: {json_text(member, indent + 2)}" for key, member in value.items()]
@@ -117,8 +124,7 @@ def json_text(value: object, indent: int = 0) -> str:
     return "[\n" + ",\n".join(pad + json_text(item, indent + 2) for item in value) + "\n" + " " * indent + "]"
 
 
-def _short(value: object) -> str:
-    return json.dumps(value, ensure_ascii=False)
+_short = json.JSONEncoder(ensure_ascii=False).encode
 
 
 def data_block(name: str, value: object) -> Html:
@@ -127,6 +133,7 @@ def data_block(name: str, value: object) -> Html:
     return tag("script", Html(text), type="application/json", id=name)
 
 
+@cache
 def _attribute(key: str) -> str:
     return key.rstrip("_").replace("_", "-")
 
