@@ -41,6 +41,18 @@ def test_no_lettering_touches_another_or_is_cut(name: str, figure: str, language
 
 
 @pytest.mark.parametrize(("name", "figure", "language"), DRAWN)
+def test_no_lettering_of_the_sheet_itself_is_cut(name: str, figure: str, language: str) -> None:
+    drawn = drawing(name, figure, language)
+    if drawn is None:
+        return
+    cut = [one.text for one in lettering(drawn.svg) if "\N{HORIZONTAL ELLIPSIS}" in one.text]
+    design = asked(name).question.design
+    own = [part.id or "" for part in (*design.collectors, *design.pipe_runs)]
+    builds = len({group.type for group in design.collectors})  # told beside an input where there are several
+    assert [text for text in cut if not any(text[:8] in stated for stated in own) and builds == 1] == []
+
+
+@pytest.mark.parametrize(("name", "figure", "language"), DRAWN)
 def test_every_line_and_sign_lies_on_the_paper(name: str, figure: str, language: str) -> None:
     drawn = drawing(name, figure, language)
     if drawn is not None:

@@ -8,6 +8,7 @@ from loopslack.sheet.sections.sizing_names import input_name, input_range, rule_
 
 MOST_INPUTS = 10
 _LEFT, _RIGHT = 6.0, WIDTH - 6.0
+_TIGHT = 8.0  # the smallest lettering, for units as long as those of the United States
 _NOTHING = 1e-9  # share of the volume within which a step is the solvers' own rounding
 
 
@@ -142,9 +143,11 @@ def sensitivity(case: Case) -> Drawing | None:
         y = top + number * step
         ends = _ends(row)
         start, end = across(min(ends)), across(max(ends))
-        name = fitted(f"{input_name(case, row.input)}: {_range(case, row)}", _RIGHT - _LEFT, SMALL)
-        canvas.box(_LEFT, y, width_of(name, SMALL) + 4.0, 12.0, "blank", weight=0.0)
-        canvas.text((_LEFT, y + 9.0), name, size=SMALL)
+        name, ranged = input_name(case, row.input), f": {_range(case, row)}"
+        size = SMALL if width_of(name + ranged, SMALL) <= _RIGHT - _LEFT else _TIGHT
+        name = fitted(name, _RIGHT - _LEFT - width_of(ranged, size), size) + ranged
+        canvas.box(_LEFT, y, width_of(name, size) + 4.0, 12.0, "blank", weight=0.0)
+        canvas.text((_LEFT, y + 9.0), name, size=size)
         canvas.box(min(start, centre), y + 14.0, max(end, centre) - min(start, centre), 9.0, "water")
         canvas.line((centre, y + 12.5), (centre, y + 24.5), weight=2.4)
         if row.decides:

@@ -8,7 +8,7 @@ from loopslack.sheet.sections.names import state_name
 from loopslack.sheet.sections.sizing_names import input_name, input_number, input_range
 from loopslack.sheet.words import plain
 
-_NOTHING = 1e-6  # share of the volume
+_NOTHING = 1e-4  # share of the volume below which a change is told as none
 
 
 def sensitivity(case: Case) -> Section | None:

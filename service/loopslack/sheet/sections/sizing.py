@@ -20,7 +20,7 @@ def sizing(case: Case) -> Section:
 
 def _volumes(case: Case) -> Table:
     words, say, found = case.words, case.say, case.result.volumes
-    rows = []
+    rows, raised = [], []
     named: tuple[tuple[str, SizedVolume | None], ...] = (
         ("base", found.base),
         ("recommended", found.recommended),
@@ -43,7 +43,7 @@ def _volumes(case: Case) -> Table:
             continue
         least = say(sized.smallest)
         if sized.floor is not None:
-            least = f"{least} ({words('volume.floor', floor=say(sized.floor))})"
+            raised.append(words("volume.floor", name=words(f"volume.{name}"), floor=say(sized.floor)))
         largest = words("volume.unbounded") if sized.largest is None else say(sized.largest)
         rows.append(
             Row((words(f"volume.{name}"), least, largest, say(sized.cooling_content), say(sized.precharge)))
@@ -55,7 +55,9 @@ def _volumes(case: Case) -> Table:
         Column(words("column.cooling"), "number"),
         Column(words("column.precharge"), "number"),
     )
-    return Table(words("table.volumes"), columns, tuple(rows), words("table.volumes-note"))
+    return Table(
+        words("table.volumes"), columns, tuple(rows), " ".join([words("table.volumes-note"), *raised])
+    )
 
 
 def _choice(case: Case) -> str:

@@ -59,11 +59,9 @@ _ROWS: tuple[tuple[str, _Cell], ...] = (
 
 def _table(case: Case) -> Table:
     words, states = case.words, case.result.stagnation
-    rows = [Row((words(f"column.{name}"), *(cell(case, state) for state in states))) for name, cell in _ROWS]
     marks = [mark_of_state(case, state.scenario) for state in states]
-    rows.append(
-        Row((words("column.verdict"), *(verdict_word(case, mark) for mark in marks)), marks=("", *marks))
-    )
+    rows = [Row((words("column.verdict"), *(verdict_word(case, mark) for mark in marks)), marks=("", *marks))]
+    rows += [Row((words(f"column.{name}"), *(cell(case, state) for state in states))) for name, cell in _ROWS]
     columns = (
         Column(words("column.case")),
         *(Column(state_name(case, state.scenario), "value") for state in states),
