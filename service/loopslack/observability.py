@@ -6,6 +6,7 @@ its trace and the path: no body, no address, no key.
 
 import asyncio
 import logging
+import math
 import os
 import re
 import sys
@@ -166,14 +167,23 @@ class LoopLag:
     def __init__(self, period: float = 0.01) -> None:
         self.seconds = 0.0
         self._period = period
+        self._due = math.inf
+
+    @property
+    def now(self) -> float:
+        """How late it is at this moment, s: as measured, or more where the turn that is on takes longer.
+
+        A flood brings hundreds of requests in one turn of the loop; the sleep would show it when all are answered.
+        """
+        return max(self.seconds, time.perf_counter() - self._due)
 
     async def watch(self) -> None:
         """Measure until cancelled. A late moment counts for a while: it halves with each measurement."""
         turns = 0
         while True:
-            begun = time.perf_counter()
+            self._due = time.perf_counter() + self._period
             await asyncio.sleep(self._period)
-            late = time.perf_counter() - begun - self._period
+            late = time.perf_counter() - self._due
             self.seconds = max(late, self.seconds / 2 if self.seconds > 0.001 else 0.0)
             turns += 1
             if turns % 100 == 0:

@@ -9,7 +9,10 @@ import pytest
 
 from api import small_service
 from api.small_service import GOOD_BODY, JSON, serving
+from loopslack.api.record import Record
+from loopslack.api.reply import Reply
 from loopslack.api.side_words import SideFault
+from loopslack.api.wrappers import Shedding
 from loopslack.contract.refusals import Refused
 from loopslack.observability import LoopLag
 
@@ -34,6 +37,37 @@ def test_a_late_event_loop_sheds_requests_but_not_probes():
     assert refused.json()["type"] == "/docs/problems/overloaded"
     assert refused.headers["retry-after"] == "1"
     assert probes == [200, 200, 200]
+
+
+def test_a_flood_that_arrives_in_one_turn_of_the_loop_is_shed_within_that_turn():
+    async def busy(scope, receive, send):
+        time.sleep(0.03)
+        await Reply(b"", b"text/plain")(scope, receive, send)
+
+    async def flood():
+        lag = LoopLag()
+        app = Record(Shedding(busy, lag, 0.1), None)
+        watch = asyncio.create_task(lag.watch())
+        await asyncio.sleep(0.05)
+        statuses = []
+
+        async def send(message):
+            if message["type"] == "http.response.start":
+                statuses.append(message["status"])
+
+        await asyncio.gather(
+            *(
+                app({"type": "http", "method": "GET", "path": "/", "headers": []}, None, send)
+                for _ in range(50)
+            )
+        )
+        watch.cancel()
+        return statuses
+
+    statuses = asyncio.run(flood())
+    served = statuses.count(200)
+    assert 1 <= served <= 5
+    assert statuses == [200] * served + [503] * (50 - served)
 
 
 def test_lateness_is_measured_and_forgotten():

@@ -74,7 +74,7 @@ class Shedding:
 
     async def __call__(self, scope: Scope, receive: Receive, send: Send) -> None:
         """Let a request through, or say at once that it should come again."""
-        if scope["type"] == "http" and self._lag.seconds > self._most_seconds and scope["path"] not in UNSHED:
+        if scope["type"] == "http" and self._lag.now > self._most_seconds and scope["path"] not in UNSHED:
             count_refusal("lag")
             detail = "The service has more requests than it can answer in time."
             await refuse(Refused("overloaded", detail, headers={"Retry-After": "1"}), scope, receive, send)
