@@ -197,3 +197,15 @@ def places_in(value, pointer):
     for step, member in inner:
         yield f"{pointer}/{step}"
         yield from places_in(member, f"{pointer}/{step}")
+
+
+def test_the_order_is_that_of_the_body_also_where_only_reading_finds_the_faults():
+    far = quantity(1e6, "m")
+    one, other = ({**wash_house(), "staticHeight": far, "highestPoint": far} for _ in range(2))
+    del one["staticHeight"]
+    one["staticHeight"] = far
+    for question in (one, other):
+        body = json.dumps(question).encode()
+        found = refused(question).in_order_of(body)
+        stated = [name for name in question if name in ("staticHeight", "highestPoint")]
+        assert [fault.pointer for fault in found.faults] == [f"/{name}" for name in stated]

@@ -76,9 +76,12 @@ def _answering(operation: Operation[Any, Any], floor: Floor) -> Handler:
         body = await read_body(scope, request.receive, limit, settings.body_seconds)
         asked = await decode_in_steps(body, question, settings.nesting)
         costly = operation.costly is True or (is_costly is not None and is_costly(asked))
-        answered = None if costly else _at_once(operation, ask, asked)
-        if answered is None:
-            answered = await floor.costly.ask(operation.operation_id, body)
+        try:
+            answered = None if costly else _at_once(operation, ask, asked)
+            if answered is None:
+                answered = await floor.costly.ask(operation.operation_id, body)
+        except Refused as refused:
+            raise refused.in_order_of(body) from None
         note_of(scope).calculation_seconds = answered.seconds
         for verdict, codes in answered.judged:
             count_design(operation.operation_id, verdict, codes)

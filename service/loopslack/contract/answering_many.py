@@ -139,7 +139,10 @@ def answer_design(
 def refuse_design(design: bytes, index: int, refused: Refused) -> Outcome:
     """The outcome of a design that is not answered, for a reason found by whoever asked for it."""
     return Outcome(
-        encoded(DesignOutcome(index=index, id=id_of(design), problem=problem_of(refused))), REFUSED
+        encoded(
+            DesignOutcome(index=index, id=id_of(design), problem=problem_of(refused.in_order_of(design)))
+        ),
+        REFUSED,
     )
 
 

@@ -8,7 +8,8 @@ _LAST = 1 << 30
 
 
 def in_order(faults: Iterable[FaultyField], body: object) -> list[FaultyField]:
-    """The faults by their place in a body as decoded; what is missing comes after what its object states.
+    """The faults by their place in a body as decoded; what is missing comes after what its object states, and
+    what is said of the whole body last.
 
     Faults of one place stay as they are, and none is told twice.
     """
@@ -18,6 +19,8 @@ def in_order(faults: Iterable[FaultyField], body: object) -> list[FaultyField]:
 
 
 def _place(pointer: str, body: object, places: dict[int, dict[str, int]]) -> tuple[int, ...]:
+    if not pointer:
+        return (_LAST + 1,)
     found: list[int] = []
     value = body
     for step in pointer.split("/")[1:]:

@@ -6,8 +6,12 @@ The text of an unforeseen exception is no part of any of this: it never reaches 
 import math
 import uuid
 from collections.abc import Mapping, Sequence
+from contextlib import suppress
 from typing import TypeGuard
 
+import msgspec
+
+from loopslack.contract.order import in_order
 from loopslack.contract.problems import MOST_COUNTED, MOST_FAULTS, PROBLEM_TYPES, FaultyField, Problem
 from loopslack.kernel.errors import CalculationError, Refusals
 
@@ -34,6 +38,13 @@ class Refused(Exception):
         self.faults = tuple(faults[:MOST_FAULTS])
         self.further = further + max(0, len(faults) - MOST_FAULTS)
         self.headers = dict(headers or {})
+
+    def in_order_of(self, body: bytes) -> "Refused":
+        """The same refusal with its faults in the order of the body that was sent."""
+        if len(self.faults) > 1:
+            with suppress(msgspec.DecodeError, RecursionError):
+                self.faults = tuple(in_order(self.faults, msgspec.json.decode(body)))
+        return self
 
     def document(self, request_id: str) -> Problem:
         """The problem as it is sent, in answer to the request of this id."""
