@@ -8,10 +8,10 @@ _LAST = 1 << 30
 
 
 def in_order(faults: Iterable[FaultyField], body: object) -> list[FaultyField]:
-    """The faults by their place in a body as decoded; what is missing comes after what its object states, and
-    what is said of the whole body last.
+    """The faults by their place in a body as decoded.
 
-    Faults of one place stay as they are, and none is told twice.
+    What is missing comes after what its object states, and what is said of the whole body last. Faults of one place
+    stay as they are, and none is told twice.
     """
     places: dict[int, dict[str, int]] = {}
     told = {(fault.pointer, fault.code, fault.message): fault for fault in faults}

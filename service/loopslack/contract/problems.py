@@ -92,10 +92,7 @@ PROBLEM_TYPES = _table(
         404,
         "not-found",
         "Nothing here",
-        (
-            "No resource has this path. Paths are taken literally: no slash may be doubled or added at the "
-            "end."
-        ),
+        "No resource has this path. Paths are taken literally: no slash may be doubled or added at the end.",
         "Compare the path with the document at /v1/openapi.json.",
     ),
     (
@@ -154,10 +151,7 @@ PROBLEM_TYPES = _table(
         422,
         "unanswerable-question",
         "Question cannot be answered",
-        (
-            "Every member is well formed, but together they contradict each other or leave the range a "
-            "method holds for."
-        ),
+        "Every member is well formed, but together they contradict each other or leave the range of a method.",
         "Mend every entry of `errors`.",
     ),
     (
@@ -223,7 +217,7 @@ class FaultyField(Struct, frozen=True, kw_only=True, omit_defaults=True):
         str,
         Meta(
             description="JSON Pointer (RFC 6901) into the body; empty for the body as a whole.",
-            examples=["/site/minimumTemperature/unit"],
+            examples=["/reliefValve/setPressure/unit"],
         ),
     ]
     code: Annotated[
@@ -242,9 +236,7 @@ class FaultyField(Struct, frozen=True, kw_only=True, omit_defaults=True):
     parameters: Annotated[
         dict[str, float],
         Meta(
-            description=(
-                "The numbers behind the message, by name, for a translation; physical ones in base units of the SI."
-            ),
+            description="The numbers behind the message, by name, for a translation; physical ones in SI base units.",
             examples=[{"limit": 60}],
         ),
     ] = {}
