@@ -8,7 +8,7 @@ from loopslack.sheet.sections.sizing_names import input_name, input_range, rule_
 
 MOST_INPUTS = 10
 _LEFT, _RIGHT = 6.0, WIDTH - 6.0
-_TIGHT = 8.0  # the smallest lettering, for units as long as those of the United States
+_TIGHT = 8.4  # the smallest lettering, for units as long as those of the United States
 _NOTHING = 1e-9  # share of the volume within which a step is the solvers' own rounding
 
 

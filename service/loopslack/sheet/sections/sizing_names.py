@@ -45,8 +45,8 @@ def input_name(case: Case, moved: str) -> str:
             name = words.or_else(f"input.{moved.removesuffix(f'-{build}')}", plain(moved))
             several = len({group.type for group in case.design.collectors}) > 1
             # the calculation tells tubes from plates by their numbers, but not tubes from tubes
-            kind = "flat-plate" if build == "flat-plate" else "evacuated-tube"
-            return f"{name} ({words(f'word.{kind}')})" if several else name
+            kind = "plates" if build == "flat-plate" else "tubes"
+            return f"{name} ({words(f'input.{kind}')})" if several else name
     return plain(moved)
 
 
