@@ -40,6 +40,7 @@ from loopslack.contract.fields import text
 class Answer(AnswerPart, frozen=True, kw_only=True):
     """What stands beside every result."""
 
+    result: Annotated[AnswerPart, text("What was asked for; where it is judged, with the verdict first.")]
     assumptions: Annotated[list[Assumption], text("Every default that was used.")]
     advisories: Annotated[list[Advisory], text("What to know about this loop, gravest first.")]
     cautions: Annotated[list[Caution], text("Dangers that every such loop has.")]
