@@ -45,17 +45,32 @@ def spare(charged: Charged, scenario: Scenario, limit: float) -> float:
     The vessel as it is when just that warm fixes its pressure, and that the steam: no equilibrium is solved. Only
     where pipes rise may a loop rest in several states at one pressure, and the equilibrium tells which.
     """
+    analysis = charged.analysis
+    filled = max(charged.least / analysis.states.fill.vessel_density, 0.0)
+    held = _held_at(analysis.mix, filled, limit)
+    return inf if held == inf else _until(charged, scenario, held, limit)
+
+
+def most_held(charged: Charged, scenarios: Sequence[Scenario]) -> float:
+    """Most liquid (m3) the vessel holds under any of some scenarios that keep its gas at the room's temperature."""
+    analysis, most = charged.analysis, 0.0
+    # The one that pushes out most at the valve's pressure is likely to anywhere; of the others one look tells.
+    for scenario in sorted(scenarios, key=lambda s: -analysis.case(s).final.expelled):
+        if _until(charged, scenario, most, analysis.loop.temperatures.vessel_room) < 0:
+            most = max(most, stagnation(analysis, scenario, charged.gas, charged.least).liquid)
+    return most
+
+
+def _until(charged: Charged, scenario: Scenario, held: float, warm: float) -> float:
+    """Mass (kg) a loop may push out more until the vessel holds ``held`` m3, at ``warm`` K if its gas follows."""
     analysis, gas, mass = charged.analysis, charged.gas, charged.least
     charge = charge_of(analysis, gas, mass)
-    held = _held_at(analysis.mix, max(charge.filled, 0.0), limit)
-    if held == inf:
-        return inf
     case = analysis.case(scenario)
-    density = analysis.fluid.density(limit) if scenario.gas_follows else analysis.room_density
+    density = analysis.fluid.density(warm) if scenario.gas_follows else analysis.room_density
     spaces = case.balance.spaces
     if len(spaces) == 1 and not spaces[0].path.falling:
         return (held - stagnation(analysis, scenario, gas, mass).liquid) * density
-    pressure = charge.pressure_holding(held, limit if scenario.gas_follows else charge.room)
+    pressure = charge.pressure_holding(held, warm if scenario.gas_follows else charge.room)
     # The valve is shut at every filling asked for, so no more is pushed out than at its pressure.
     steam = case.final if pressure >= analysis.final_pressure else case.balance.at_pressure(pressure)
     return (held - charge.allowance) * density - mass - steam.expelled

@@ -34,7 +34,7 @@ def nearest_precharge(
         return works
     low, high = sorted((works, delivered))
     ends = (at_works, at_delivered) if low == works else (at_delivered, at_works)
-    found = bracketed(slack, low, high, *ends, 0.1).at
+    found = bracketed(slack, low, high, *ends, 0.01).at
     # A pascal towards the one that works, so that the answer itself works.
     found += 1.0 if works > found else -1.0
     if holds(found):

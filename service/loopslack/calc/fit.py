@@ -9,7 +9,6 @@ from loopslack.calc.model import Vessel
 from loopslack.calc.precharge import gas_of
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.sizing.volumes import CoolingMode
-from loopslack.calc.stagnation import stagnation
 from loopslack.calc.window import Bounds, Gas, Window
 
 
@@ -78,33 +77,3 @@ def cooling_for(
         return Charged(cooled, gas, lower.mass) if 0 <= lower.mass < upper.mass else None
 
     return smallest_content(charge, scenarios, limit)
-
-
-def acceptance_needed(fitted: Fit, scenarios: Sequence[Scenario]) -> float:
-    """Acceptance volume (m3) with which the window would be just wide enough.
-
-    The liquid held at the least filling that leaves the demanded width below it; with the gas at the room's
-    temperature, which lets most liquid in.
-    """
-    analysis, gas, window = fitted.analysis, fitted.gas._replace(acceptance=float("inf")), fitted.window
-    criteria = analysis.loop.criteria
-    fill = analysis.loop.temperatures.fill
-    base = gas.precharge * fill / gas.temperature + criteria.fill_above_precharge
-    pressure = max(window.lower + criteria.window_width, base + criteria.window_step)
-    mass = Bounds(analysis, (), gas).mass(gas.nominal, pressure)
-    cold = {scenario.steam_key: scenario for scenario in scenarios if not scenario.gas_follows}
-    cold |= {s.steam_key: s for s in scenarios if s.steam_key not in cold}
-    return max(
-        stagnation(analysis, _isothermal(scenario), gas, mass).liquid for scenario in cold.values()
-    ) * (1 + 1e-9)
-
-
-def _isothermal(scenario: Scenario) -> Scenario:
-    if not scenario.gas_follows:
-        return scenario
-    return Scenario(
-        id=scenario.id,
-        stagnation_shift=scenario.stagnation_shift,
-        worse_emptying=scenario.worse_emptying,
-        closed_unknown=scenario.closed_unknown,
-    )

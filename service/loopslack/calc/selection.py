@@ -1,7 +1,6 @@
 """The choice of a vessel from a list: ranked, the first that fits taken, every refusal kept with its reasons."""
 
 from collections.abc import Sequence
-from math import inf
 from typing import Literal, NamedTuple
 
 from loopslack.calc.fit import Fit
@@ -35,7 +34,7 @@ def choose(selector: Selector, candidates: Sequence[Vessel], most: int) -> Selec
     by_price = _one_currency(candidates)
     offers = [(vessel, count) for vessel in candidates for count in range(1, most + 1)]
     if by_price:
-        offers.sort(key=lambda o: (_price(o), o[0].nominal_volume * o[1], o[1], o[0].id))
+        offers.sort(key=lambda o: ((o[0].price or 0.0) * o[1], o[0].nominal_volume * o[1], o[1], o[0].id))
     else:
         offers.sort(key=lambda o: (o[0].nominal_volume * o[1], o[1], o[0].id))
     chosen: Fit | None = None
@@ -51,11 +50,6 @@ def choose(selector: Selector, candidates: Sequence[Vessel], most: int) -> Selec
     nearest = (chosen.vessel, chosen.pieces) if chosen else _nearest(refused)
     ranked: RankedBy = "price" if by_price else "volume"
     return Selection(chosen, tuple(alternatives), tuple(refused), ranked, nearest)
-
-
-def _price(offer: tuple[Vessel, int]) -> float:
-    price = offer[0].price
-    return inf if price is None else price * offer[1]
 
 
 def _one_currency(candidates: Sequence[Vessel]) -> bool:

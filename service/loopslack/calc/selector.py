@@ -10,11 +10,12 @@ from math import inf
 
 from msgspec.structs import replace
 
+from loopslack.calc.acceptance import AcceptanceNeeded, Extents
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.checks import pressure_to_withstand
 from loopslack.calc.cooling import Charged, hottest
 from loopslack.calc.delivered import nearest_precharge
-from loopslack.calc.fit import Fit, acceptance_needed, cooling_for, fit
+from loopslack.calc.fit import Fit, cooling_for, fit
 from loopslack.calc.model import Vessel
 from loopslack.calc.precharge import gas_of
 from loopslack.calc.reasons import Reason, ReasonCode, shortage
@@ -45,7 +46,8 @@ class Selector:
         self._fits: dict[tuple[object, ...], Fit | None] = {}
         self._reasons: dict[tuple[object, ...], tuple[Reason, ...]] = {}
         self._other_reasons: dict[tuple[object, ...], list[Reason]] = {}
-        self._acceptances: dict[tuple[float, float | None], float] = {}
+        self._acceptances: dict[tuple[float, float | None], AcceptanceNeeded] = {}
+        self._extents: Extents = {}
         self._precharges: dict[tuple[float, float], list[Reason]] = {}
         self._solved = 0
         self._needed = pressure_to_withstand(analysis, analysis.loop.relief, 0.0)
@@ -56,13 +58,14 @@ class Selector:
         ``exact`` solves for the candidate's own cooling vessel; without it, and after ``_MOST_SOLVED`` refusals, the
         loop as sized tells, which is enough to sort those ranked after the choice.
         """
-        own = (exact, count, *self._own(vessel))
-        key = (vessel.rated_pressure, own)
+        own = self._own(vessel)
+        key = (exact, count, vessel.rated_pressure, own)
         found = self._reasons.get(key)
         if found is None:
-            others = self._other_reasons.get(own)
+            others = self._other_reasons.get((exact, count, own))
             if others is None:
-                others = self._other_reasons[own] = self._found(vessel, count, exact=exact)
+                others = self._found(vessel, count, exact=exact)
+                self._other_reasons[exact, count, own] = others
             found = self._reasons[key] = (*self._rating(vessel), *others)
         return found
 
@@ -148,7 +151,7 @@ class Selector:
             self._limit(vessel),
         )
         if vessel.acceptance_volume is not None and unbounded and unbounded.window.wide_enough:
-            needed = acceptance_needed(unbounded, self.scenarios) / count
+            needed = AcceptanceNeeded(unbounded, self.scenarios).volume / count
             value = vessel.acceptance_volume
             found.append(Reason("acceptance-volume", kinds.ACCEPTANCE_VOLUME, value, needed, needed - value))
             return
@@ -208,13 +211,15 @@ class Selector:
         accepted = vessel.acceptance_volume
         if accepted is None:
             return []
-        needed = self._acceptances.get((nominal, fixed))
-        if needed is None:
+        asked = self._acceptances.get((nominal, fixed))
+        if asked is None:
             fitted = self._plain(_article(nominal, fixed), sized)
-            needed = self._acceptances[nominal, fixed] = acceptance_needed(fitted, self.scenarios)
-        if accepted * count >= needed:
+            asked = self._acceptances[nominal, fixed] = AcceptanceNeeded(
+                fitted, self.scenarios, self._extents
+            )
+        if asked.suffices(accepted * count):
             return []
-        return [shortage("acceptance-volume", kinds.ACCEPTANCE_VOLUME, accepted, needed / count)]
+        return [shortage("acceptance-volume", kinds.ACCEPTANCE_VOLUME, accepted, asked.volume / count)]
 
     def _limit(self, vessel: Vessel) -> float:
         return self.membrane_limit if vessel.membrane_limit is None else vessel.membrane_limit
@@ -227,7 +232,7 @@ class Selector:
 
     def fit(self, vessel: Vessel, count: int) -> Fit | None:
         """A candidate in the loop with its own cooling vessel; None where none is large enough."""
-        key = (count, *self._own(vessel))
+        key = (count, self._own(vessel))
         if key not in self._fits:
             content = None
             if self.cooling == "size":

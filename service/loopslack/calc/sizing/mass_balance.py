@@ -16,8 +16,9 @@ from loopslack.calc.scenarios import Scenario
 from loopslack.calc.window import Bound, Bounds, Gas, Window
 from loopslack.kernel.roots import bracketed
 
-_LADDER = 1.2  # step of the search for the bracket; the root itself is solved, not stepped
-_NEAR = 0.01  # share around an expected volume in which it is looked for first
+_LADDER = 1.2  # most a search for the bracket steps at once; the root itself is solved, not stepped
+_BEYOND = 1e-3  # of a step towards where the slack should end, what is added to come out beyond
+_NEAR = 1e-3  # share around an expected volume in which it is looked for first
 _VOLUME = 1e-11  # relative tolerance of a volume
 _RUNGS = 55  # 1.2^55 is 22,000 times the smallest vessel that could work at all
 
@@ -50,20 +51,24 @@ def feasible(
     low = slack.least()
     if low is None:
         return None
-    volume, value, ladder = low, slack.at(low), _LADDER
+    volume, value, following = low, slack.at(low), low * _LADDER
     if near is not None and value < 0 and low < near * (1 - _NEAR):
         expected = slack.at(near * (1 - _NEAR))
         if expected < 0:
-            volume, value, ladder = near * (1 - _NEAR), expected, 1 + 2 * _NEAR
+            volume, value, following = near * (1 - _NEAR), expected, near * (1 + _NEAR)
     rungs = 0
     while value < 0:
         previous, before = volume, value
-        volume *= ladder
-        ladder = _LADDER
+        volume = following
         rungs += 1
         if rungs > _RUNGS:
             return None
         value = slack.at(volume)
+        # The slack is nearly straight: where it should end, and a little beyond.
+        following = volume * _LADDER
+        if value > before:
+            step = -value * (volume - previous) / (value - before)
+            following = min(following, volume + step * (1 + _BEYOND) + _VOLUME * volume)
     smallest = volume
     if rungs:
         smallest = bracketed(slack.at, previous, volume, before, value, _VOLUME * volume).at
@@ -78,7 +83,7 @@ def feasible(
 
 
 class _Slack:
-    """How much wider (Pa) than demanded the window of a nominal volume is; negative where it is too narrow."""
+    """By how much (kg) the window of a nominal volume is wider than demanded; negative where it is too narrow."""
 
     def __init__(
         self, analysis: Analysis, scenarios: Sequence[Scenario], membrane_limit: float | None
@@ -87,6 +92,7 @@ class _Slack:
         self.temperature = precharge_temperature(analysis)
         self.fixed = analysis.loop.precharge.kind != "optimised"
         self._bounds = self._for(1.0) if self.fixed else None
+        self._last: tuple[float, tuple[Bounds, Bound, Bound]] | None = None
 
     def _for(self, nominal: float) -> Bounds:
         gas = Gas(nominal, precharge(self.analysis, nominal), self.temperature)
@@ -102,11 +108,17 @@ class _Slack:
         return bounds.window_between(nominal, lower, upper, self.analysis.loop.temperatures.fill)
 
     def at(self, nominal: float) -> float:
-        """Slack in Pa."""
+        """Slack in kg."""
         bounds, lower, upper = self._masses(nominal)
         return slack_between(bounds, nominal, lower.mass, upper.mass)
 
     def _masses(self, nominal: float) -> tuple[Bounds, Bound, Bound]:
+        # The last volume is asked about twice: whether it does, and what window it has.
+        if self._last is None or self._last[0] != nominal:
+            self._last = nominal, self._found(nominal)
+        return self._last[1]
+
+    def _found(self, nominal: float) -> tuple[Bounds, Bound, Bound]:
         bounds = self._bounds or self._for(nominal)
         lower, upper = bounds.masses(nominal)
         if self.membrane_limit is not None and 0 <= lower.mass < upper.mass:
@@ -149,15 +161,12 @@ class _Slack:
 
 
 def slack_between(bounds: Bounds, nominal: float, lower: float, upper: float) -> float:
-    """Slack (Pa) of a window given by two masses (kg) in a vessel of ``nominal`` m3."""
+    """By how much (kg) the upper of two masses lies above what a wide enough window asks for.
+
+    As a mass it is nearly straight in the vessel and in its precharge, where the width itself is steep and bent.
+    """
     criteria = bounds.analysis.loop.criteria
     fill = bounds.analysis.loop.temperatures.fill
-    if upper < 0:
-        # No window at all: its shortage in mass, as a pressure, so that a root finder still sees a slope.
-        return bounds.precharge * (upper / (bounds.fill_density * nominal) - 1)
     low = bounds.pressure(nominal, max(lower, 0.0), fill)
-    high = bounds.pressure(nominal, upper, fill)
     base = bounds.precharge * fill / bounds.temperature + criteria.fill_above_precharge
-    if low == inf:
-        return -bounds.precharge
-    return min(high - low - criteria.window_width, high - base - criteria.window_step)
+    return upper - bounds.mass(nominal, max(low + criteria.window_width, base + criteria.window_step))

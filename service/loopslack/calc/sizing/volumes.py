@@ -48,15 +48,14 @@ def size(
         interval = feasible(analysis, scenarios, membrane_limit)
         return interval and Sized(interval, analysis.loop.cooling_content, analysis, floor)
 
-    near: float | None = None
+    found: list[tuple[float, float]] = []
 
     def charge(content: float) -> Charged | None:
-        nonlocal near
         cooled = analysis.with_cooling(content) if content else analysis
-        interval = feasible(cooled, scenarios, upper_end=False, near=near)
+        interval = feasible(cooled, scenarios, upper_end=False, near=_expected(found, content))
         if interval is None:
             return None
-        near = interval.smallest
+        found.append((content, interval.smallest))
         volume = max(interval.smallest, floor)
         gas = Gas(volume, precharge(cooled, volume), precharge_temperature(cooled))
         return Charged(cooled, gas, interval.window.lower_bound.mass)
@@ -65,8 +64,17 @@ def size(
     if content is None:
         return None
     cooled = analysis.with_cooling(content) if content else analysis
-    interval = feasible(cooled, scenarios, near=near)
+    interval = feasible(cooled, scenarios, near=_expected(found, content))
     return interval and Sized(interval, content, cooled, floor)
+
+
+def _expected(found: Sequence[tuple[float, float]], content: float) -> float | None:
+    """The smallest volume (m3) to expect with a cooling content (m3), by the last two contents and theirs."""
+    if not found:
+        return None
+    last, volume = found[-1]
+    before, other = found[-2] if len(found) > 1 else (last, volume)
+    return volume if last == before else volume + (volume - other) * (content - last) / (last - before)
 
 
 def without_boiling_floor(analysis: Analysis, *, accept_without_boiling: bool) -> float:
