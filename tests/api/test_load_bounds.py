@@ -41,7 +41,7 @@ def test_a_late_event_loop_sheds_requests_but_not_probes():
 
 def test_a_flood_that_arrives_in_one_turn_of_the_loop_is_shed_within_that_turn():
     async def busy(scope, receive, send):
-        time.sleep(0.03)
+        time.sleep(0.03)  # noqa: ASYNC251 - as a design holds the loop
         await Reply(b"", b"text/plain")(scope, receive, send)
 
     async def flood():

@@ -16,10 +16,14 @@ name=loopslack-tested-$$
 sh deploy/image.sh "$image"
 
 port=$(python -c 'import socket; s = socket.socket(); s.bind(("127.0.0.1", 0)); print(s.getsockname()[1])')
-podman --log-level fatal run --detach --name "$name" --network host --env LOOPSLACK_BIND="127.0.0.1:$port" \
-    --env LOOPSLACK_SHED_LAG_SECONDS=10 --env LOOPSLACK_DEADLINE_SECONDS=120 \
-    --user 10001:10001 --read-only --read-only-tmpfs=false --tmpfs /dev/shm:rw,size=16m --tmpfs /tmp:rw,size=16m \
-    --cap-drop all --security-opt no-new-privileges --memory 384m --pids-limit 64 "$image" >/dev/null
+# The limits are those of compose.yaml; only address and network differ, and what a busy machine would trip over.
+limits=$("$tests_python" tests/container/compose.py)
+say "As compose.yaml has it: $limits"
+# A list of options without blanks in them:
+# shellcheck disable=SC2086
+podman --log-level fatal run --detach --name "$name" --network host $limits \
+    --env LOOPSLACK_BIND="127.0.0.1:$port" \
+    --env LOOPSLACK_SHED_LAG_SECONDS=10 --env LOOPSLACK_DEADLINE_SECONDS=120 "$image" >/dev/null
 trap 'podman --log-level fatal rm --force --time 1 "$name" >/dev/null 2>&1' EXIT INT TERM
 
 # The tools' interpreter is first on the path: it has the schema of the bill of materials.

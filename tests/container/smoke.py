@@ -61,7 +61,7 @@ def podman(*arguments: str) -> str:
 
 def fetched(port: int, path: str, body: bytes | None = None) -> tuple[int, bytes]:
     """Status and body of one request."""
-    connection = http.client.HTTPConnection("127.0.0.1", port, timeout=10)
+    connection = http.client.HTTPConnection("127.0.0.1", port, timeout=60)
     connection.request("GET" if body is None else "POST", path, body, {"Content-Type": "application/json"})
     answer = connection.getresponse()
     return answer.status, answer.read()
@@ -117,6 +117,12 @@ def main(name: str, port: int) -> None:
         told, committed = json.loads(body)["result"], json.loads(answer.read_bytes())["result"]
         same = begins_as(told, committed) if shortened else told == committed
         expect(f"{question.name} as on the developer's machine", same, True)
+    design = json.loads(Path("openapi/examples/loop-design.json").read_bytes())
+    for path, question in (
+        ("/v1/calculation-sheet/pdf", {"design": design}),
+        ("/v1/loop-design/batch", {"designs": [{"id": "a", **design}]}),
+    ):  # both are worked on by processes that a worker begins beside it
+        expect(path, fetched(port, path, json.dumps(question).encode())[0], 200)
     status, body = fetched(port, "/v1/loop-design", b'{"fluid": NaN}')
     expect("a body that is no JSON", status, 400)
     memory = podman("stats", "--no-stream", "--format", "{{.MemUsage}}", name).strip()

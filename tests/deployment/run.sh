@@ -5,6 +5,8 @@ cd "$(dirname "$0")/../.."
 . tests/tools.sh
 python_tools
 debian_tool systemd-analyze systemd
+debian_tool strace strace
+debian_tool unshare util-linux
 
 work=.cache/deployment
 rm -rf "$work"
@@ -30,3 +32,16 @@ systemd-analyze security --offline=true --threshold=20 "$work/loopslack.service"
 
 "$tests_python" -m gunicorn --check-config --config deploy/gunicorn.conf.py
 say "gunicorn accepts its configuration."
+
+"$tests_python" tests/deployment/pins.py
+cmp deploy/.containerignore deploy/Containerfile.dockerignore
+say "Both names of the list of what enters a build have the same content."
+
+port=$("$tests_python" -c 'import socket; s = socket.socket(); s.bind(("127.0.0.1", 0)); print(s.getsockname()[1])')
+sh deploy/up.sh --once --port "$port" >"$work/up.txt"
+grep --quiet "HOLDS" "$work/up.txt"
+say "up.sh installs, starts, asks and stops."
+
+# In the environment that up.sh has made: what the requirement files pin, and nothing else.
+PYTHONPATH=tests "$tests_python" tests/deployment/unit.py deploy/systemd/loopslack.service "$PWD/.cache/service/bin" \
+    2>"$work/unit.log" || { tail -n 20 "$work/unit.log"; exit 1; }

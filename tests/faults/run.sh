@@ -10,4 +10,4 @@ debian_tool gcc gcc libc6-dev
 debian_tool unshare util-linux
 mkdir -p .cache/faults
 gcc -O2 -Wall -Wextra -Werror -shared -fPIC -o .cache/faults/clock.so tests/faults/clock.c -ldl
-exec "$tests_python" -m pytest tests/faults/test_faults.py "$@"
+exec "$tests_python" -m pytest tests/faults/test_faults.py tests/faults/test_sides.py "$@"

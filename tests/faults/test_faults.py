@@ -25,8 +25,9 @@ from load.client import Report, Target, closed_loop, open_loop
 from load.questions import Corpus, drawn
 from load.server_facts import descriptors, proportional_memory
 
-QUIET = {"LOOPSLACK_ACCESS_LOG": "false", "LOOPSLACK_SHED_LAG_SECONDS": "3"}
-"""The load is meant to be served, also by a machine that has other work; only the flood is to be refused."""
+QUIET = {"LOOPSLACK_ACCESS_LOG": "false"}
+"""Every limit stays as it is delivered. On a machine with other work some requests are then refused with 503, which is
+no loss: what is promised is that each gets an answer, and that it is right."""
 
 
 @pytest.fixture(scope="module")
@@ -80,18 +81,25 @@ def test_a_killed_worker_takes_only_its_own_requests_with_it(
     server: Server, corpus: Corpus, capsys: pytest.CaptureFixture[str]
 ) -> None:
     victim = server.workers()[0]
-    report = under_load(designs(server, corpus), 40, 4, (1.5, lambda: os.kill(victim, signal.SIGKILL)))
+    killed_at = []
+
+    def kill() -> None:
+        killed_at.append(time.perf_counter())
+        os.kill(victim, signal.SIGKILL)
+
+    report = under_load(designs(server, corpus), 40, 4, (1.5, kill))
     tell(capsys, "worker killed, no retry", report)
     wait_for(lambda: victim not in server.workers() and len(server.workers()) == 2)
     assert report.wrong == 0
     assert len(report.served) + len(report.refused) + report.failed == 160
-    assert report.failed <= 16, "more than the requests that were in one worker's hands"
+    assert report.failed < 80, "more than the requests that were in one worker's hands"
+    assert all(0 <= moment - killed_at[0] < 1 for moment in report.failed_at), "failed for another reason"
 
 
 def test_a_client_that_retries_once_does_not_notice_a_killed_worker(
     server: Server, corpus: Corpus, capsys: pytest.CaptureFixture[str]
 ) -> None:
-    target = designs(server, corpus, retries=2)
+    target = designs(server, corpus, retries=1)
     report = under_load(target, 20, 5, (1.5, lambda: os.kill(server.workers()[0], signal.SIGKILL)))
     tell(capsys, "worker killed, retry", report)
     assert (report.failed, report.wrong) == (0, 0)
@@ -236,9 +244,10 @@ def test_ten_times_too_much_is_refused_early_and_soon_forgotten(
         rate = min(10.0 * capacity, 1500.0)
         flood = under_load(target, rate, 4)
         tell(capsys, f"flood of {rate:.0f}/s for 4 s, {rate / capacity:.1f} times the capacity", flood)
-        assert flood.wrong == 0
-        assert set(flood.statuses) <= {200, 503}
-        assert len(flood.refused) > 0
+        assert (flood.failed, flood.wrong) == (0, 0)
+        assert set(flood.statuses) == {200, 503}
+        assert len(flood.refused) > len(flood.served)
+        assert flood.seconds < 4 + 3, "what waits grows with the flood"
         wait_for(lambda: under_load(target, 5, 1).statuses[200] == 5)
         assert len(server.workers()) == 2
 

@@ -18,13 +18,14 @@ ADDRESS = "127.0.0.1"
 
 @dataclass
 class Report:
-    """What came of a run: latencies of the served, counts by status, failures by kind."""
+    """What came of a run: latencies of the served, counts by status, failures by kind and by the clock."""
 
     seconds: float = 0.0
     served: list[float] = field(default_factory=list)
     refused: list[float] = field(default_factory=list)
     statuses: Counter[int] = field(default_factory=Counter)
     failures: Counter[str] = field(default_factory=Counter)
+    failed_at: list[float] = field(default_factory=list)
     retried: int = 0
     wrong: int = 0
 
@@ -39,6 +40,17 @@ class Report:
             return float("nan")
         ordered = sorted(self.served)
         return ordered[min(len(ordered) - 1, int(share * len(ordered)))] * 1e3
+
+    def add(self, part: Report) -> None:
+        """Take in what came of a further run."""
+        self.seconds += part.seconds
+        self.served += part.served
+        self.refused += part.refused
+        self.statuses += part.statuses
+        self.failures += part.failures
+        self.failed_at += part.failed_at
+        self.retried += part.retried
+        self.wrong += part.wrong
 
     @property
     def failed(self) -> int:
@@ -156,12 +168,13 @@ class Caller:
         request = target.request(body)
         for attempt in range(target.retries + 1):
             try:
-                status, answer = await asyncio.wait_for(self._once(request), target.timeout)
+                status, answer = await asyncio.wait_for(self._once(request, anew=attempt > 0), target.timeout)
             except (OSError, TimeoutError) as error:
                 if attempt < target.retries:
                     self.report.retried += 1
                     continue
                 self.report.failures[type(error).__name__] += 1
+                self.report.failed_at.append(time.perf_counter())
                 return
             break
         elapsed = time.perf_counter() - due
@@ -173,8 +186,9 @@ class Caller:
         else:
             self.report.refused.append(elapsed)
 
-    async def _once(self, request: bytes) -> tuple[int, bytes]:
-        while self._idle:
+    async def _once(self, request: bytes, *, anew: bool) -> tuple[int, bytes]:
+        """Send a request; one that is sent again, over a new connection: another kept one may be as dead."""
+        while self._idle and not anew:
             connection = self._idle.pop()
             if connection.open:
                 break
