@@ -77,6 +77,10 @@ class Plant:
             return precharge * volume / (volume - liquid)
         return stop + (liquid - highest) / volume * _STOP_STIFFNESS
 
+    def rests(self, pressure: float) -> bool:
+        """Whether a pressure (Pa) is so high that the membrane rests on the wall, where none is to be believed."""
+        return pressure >= max(_STOP_PRESSURE, 2.0 * self.loop.vessel.precharge)
+
     def vessel_liquid(self, pressure: float, temperature: float) -> float:
         """Liquid (m3) in the vessel at a pressure (Pa): the inverse, a little below 0 for an empty vessel."""
         precharge, volume = self._precharge(temperature), self.loop.vessel.nominal_volume
