@@ -5,12 +5,15 @@ from dataclasses import dataclass
 from math import inf, isfinite, nan
 
 import pytest
+from msgspec.structs import replace
 
-from calc.reference import BAR, loop
+from calc.reference import BAR, CRITERIA, loop
 from loopslack.calc import checks
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.balance import Mixing
 from loopslack.calc.charge import Charge
+from loopslack.calc.model import Precharge, Vessel
+from loopslack.calc.precharge import gas_of
 from loopslack.calc.stagnation import stagnation
 from loopslack.calc.window import Gas
 from loopslack.kernel import kinds
@@ -78,3 +81,14 @@ def test_a_loop_short_of_liquid_mixes_what_arrives_and_no_more() -> None:
     assert mix.temperature(-0.05, 0.02) == mix.temperature(0.0, 0.02) < mix.hot
     assert mix.last(-0.05, 0.0005) == mix.room
     assert mix.temperature(-0.05, 0.0) == mix.room
+
+
+@pytest.mark.parametrize("nominal", [0.001, 0.003, 0.0035, 0.005, 0.008, 0.08])
+def test_an_optimised_precharge_can_be_read_off_a_gauge(nominal: float) -> None:
+    """A vessel hardly larger than its reserve once got less than the atmosphere, one no larger a vacuum."""
+    analysis = Analysis(
+        loop(precharge=Precharge(kind="optimised"), criteria=replace(CRITERIA, reserve=0.003))
+    )
+    gas = gas_of(analysis, Vessel(id="small", nominal_volume=nominal), 1)
+    assert gas.precharge >= analysis.loop.atmosphere
+    assert isfinite(stagnation(analysis, analysis.every[0], gas, 1.0).pressure)

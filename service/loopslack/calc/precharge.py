@@ -27,7 +27,8 @@ def precharge(analysis: Analysis, nominal: float) -> float:
     """Precharge (Pa absolute, at ``precharge_temperature``) for a vessel of ``nominal`` m3.
 
     By rule it carries the static head and the least pressure at the top with the vessel empty; optimised it does so
-    with just the reserve in it, which is the lowest that works and gives the smallest vessel.
+    with just the reserve in it, which is the lowest that works and gives the smallest vessel; but no gauge shows less
+    than nought, so never below the atmosphere.
     """
     choice = analysis.loop.precharge
     if choice.kind == "stated":
@@ -39,7 +40,7 @@ def precharge(analysis: Analysis, nominal: float) -> float:
     reserve = criteria.reserve
     if reserve is None:
         reserve = reserve_en_12828(NominalVolume(nominal), Volume(analysis.loop.content))
-    return needed * max(0.0, 1 - reserve / nominal)
+    return max(needed * (1 - reserve / nominal), analysis.loop.atmosphere)
 
 
 def gas_of(analysis: Analysis, vessel: Vessel, count: int) -> Gas:

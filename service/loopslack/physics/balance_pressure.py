@@ -33,17 +33,23 @@ def larger_allowance(of_rule: PressureDifference, set_tolerance: PressureDiffere
 
 @equation(
     "optimised-precharge",
-    law="p_0 = p_r * max(0, 1 - V_wr / V_N)",
-    symbols={"p_r": "precharge by rule", "V_wr": "reserve", "V_N": "nominal volume"},
+    law="p_0 = max(p_r * (1 - V_wr / V_N), p_atm)",
+    symbols={"p_r": "precharge by rule", "V_wr": "reserve", "V_N": "nominal volume", "p_atm": "atmosphere"},
     source=DERIVED,
-    note="With the reserve in the vessel, this gas still holds the pressure at the top.",
-    valid={"precharge_by_rule": _FROM_ZERO, "reserve": _FROM_ZERO},
+    note="With the reserve in it, the vessel still holds the pressure at the top. No gauge shows less than nought.",
+    valid={"precharge_by_rule": _FROM_ZERO, "reserve": _FROM_ZERO, "atmosphere": _FROM_ZERO},
 )
 def optimised_precharge(
-    precharge_by_rule: AbsolutePressure, reserve: Volume, nominal_volume: NominalVolume
+    precharge_by_rule: AbsolutePressure,
+    reserve: Volume,
+    nominal_volume: NominalVolume,
+    atmosphere: AbsolutePressure,
 ) -> AbsolutePressure:
-    """Lowest precharge, Pa absolute, that holds the top pressure in the cold with just the reserve in the vessel."""
-    return AbsolutePressure(precharge_by_rule * max(0, 1 - reserve / nominal_volume))
+    """Lowest precharge, Pa absolute, that holds the top pressure in the cold with just the reserve in the vessel.
+
+    Never below the atmosphere's, since nobody sets a vessel to less.
+    """
+    return AbsolutePressure(max(precharge_by_rule * (1 - reserve / nominal_volume), atmosphere))
 
 
 @equation(

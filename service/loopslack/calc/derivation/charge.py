@@ -154,4 +154,5 @@ def _precharge(frame: Frame, nominal: Value) -> Value:
         precharge_by_rule=start,
         reserve=reserve(frame, nominal),
         nominal_volume=nominal,
+        atmosphere=frame.site.atmosphere,
     )
