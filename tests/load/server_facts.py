@@ -6,13 +6,17 @@ import os
 from pathlib import Path
 
 
+def children(process: int) -> list[int]:
+    """The processes that a process has started and that are still there; of one that has gone, none."""
+    try:
+        return [int(child) for child in Path(f"/proc/{process}/task/{process}/children").read_text().split()]
+    except OSError:
+        return []
+
+
 def family(process: int) -> list[int]:
     """A process and all that descend from it: a worker, and what works beside it."""
-    try:
-        children = Path(f"/proc/{process}/task/{process}/children").read_text().split()
-    except OSError:  # it has gone meanwhile
-        return []
-    return [process, *(number for child in children for number in family(int(child)))]
+    return [process, *(number for child in children(process) for number in family(child))]
 
 
 def proportional_memory(worker: int) -> float:
