@@ -209,3 +209,18 @@ def test_the_order_is_that_of_the_body_also_where_only_reading_finds_the_faults(
         found = refused(question).in_order_of(body)
         stated = [name for name in question if name in ("staticHeight", "highestPoint")]
         assert [fault.pointer for fault in found.faults] == [f"/{name}" for name in stated]
+
+
+@pytest.mark.parametrize("more", [{}, {"frob": 1}], ids=["of ranges alone", "of types as well"])
+def test_a_long_list_of_numbers_out_of_range_is_counted_no_further_than_told(more):
+    vessel = {
+        "nominalVolume": quantity(-80, "L"),
+        "acceptanceVolume": quantity(54, "L"),
+        "ratedPressure": quantity(10, "barg"),
+    }
+    items = [{"id": f"EV-{place}", **vessel} for place in range(5000)]
+    found = refused({**wash_house(), "vessel": {"kind": "stock", "items": items}, **more})
+    assert len(found.faults) == MOST_FAULTS
+    assert len(found.faults) + found.further == MOST_COUNTED
+    assert found.detail.startswith("1000 fields of the question are faulty, and there may be more.")
+    assert {fault.code for fault in found.faults} <= {"out-of-range", "unknown-field"}

@@ -6,6 +6,7 @@ time it is; a design is answered in the same way, to the byte, wherever that is 
 
 from collections import Counter
 from collections.abc import Iterable, Mapping
+from contextlib import suppress
 from functools import lru_cache
 from typing import NamedTuple
 
@@ -18,7 +19,7 @@ from loopslack.contract.encoding import encoded
 from loopslack.contract.problems import FaultyField
 from loopslack.contract.questions_many import BatchDesign, StreamHead
 from loopslack.contract.questions_vessels import FromStock
-from loopslack.contract.reader import Reader
+from loopslack.contract.reader import EnoughError, Reader
 from loopslack.contract.reading_again import lasting, together
 from loopslack.contract.reading_many import Shared, read_head
 from loopslack.contract.refusals import Refused, refusal_of, refusal_of_fields
@@ -88,7 +89,8 @@ def read_shared(head: bytes, *, most_stock: int | None = None, nesting: int = 32
         message = f"The stock has {len(items)} items; {most_stock} are allowed. Send fewer."
         raise refusal_of_fields([FaultyField(pointer="/stock", code="too-many", message=message)])
     reader = Reader()
-    read_head(read, reader)
+    with suppress(EnoughError):
+        read_head(read, reader)
     faults = lasting(lambda _: read, read_head) if reader.refused else []
     if faults:
         raise refusal_of(together(faults))

@@ -88,7 +88,7 @@ class StagnationState(AnswerPart, frozen=True, kw_only=True):
     verdict: Annotated[CheckVerdict, text("Whether every check that decides holds in it.", "holds")]
     regime: Annotated[Regime, text("What the loop does.", "steam")]
     vessel_pressure: Annotated[
-        q.Pressure | None, text("Pressure at the vessel. Absent when its membrane is full.")
+        q.Pressure | None, text("Pressure at the vessel. Absent when it is empty or its membrane full.")
     ] = None
     lower_bound: Annotated[
         bool | None,

@@ -9,6 +9,7 @@ from functools import lru_cache
 from typing import NamedTuple, Protocol, TypeVar
 
 from loopslack.contract.fields import Field
+from loopslack.contract.problems import MOST_COUNTED
 from loopslack.contract.quantity import Pressure
 from loopslack.kernel.citations import DERIVED, Cite
 from loopslack.kernel.errors import CalculationError, Contradiction, Missing, OutOfRange
@@ -49,6 +50,14 @@ class Provisional(NamedTuple):
 
     code: str
     pointer: str
+
+
+MOST_REFUSED = 4 * MOST_COUNTED
+"""Refusals that end a reading: enough to fill the count, also where some prove to rest on stand-ins."""
+
+
+class EnoughError(Exception):
+    """Ends a reading that has refused so much."""
 
 
 class Reader:
@@ -141,17 +150,19 @@ class Reader:
         """Note a refusal; a pointer replaces the error's own."""
         if pointer:
             error.pointer = pointer
+        if len(self.refused) == MOST_REFUSED:
+            raise EnoughError
         self.refused.append(error)
 
     def contradiction(
         self, pointer: str, message: str, remedy: str, facts: Mapping[str, object] | None = None
     ) -> None:
         """Note that stated numbers cannot be true together."""
-        self.refused.append(Contradiction(message, remedy=remedy, pointer=pointer, facts=facts))
+        self.refuse(Contradiction(message, remedy=remedy, pointer=pointer, facts=facts))
 
     def missing(self, pointer: str, message: str, remedy: str) -> None:
         """Note that a number is needed that was not stated and has no default."""
-        self.refused.append(Missing(message, remedy=remedy, pointer=pointer))
+        self.refuse(Missing(message, remedy=remedy, pointer=pointer))
 
     def stand_in(self, *options: T) -> T:
         """What to read on with in place of something that was refused: another in each turn."""
@@ -170,7 +181,7 @@ class Reader:
         scale, offset = field.lines[unit]
         low = (field.low + datum - offset) / scale
         high = (field.high + datum - offset) / scale
-        self.refused.append(
+        self.refuse(
             OutOfRange(
                 f"The {field.title} is {value:g} {unit}; it must lie from {low:.4g} to {high:.4g} {unit}.",
                 remedy=_remedy(field, unit),

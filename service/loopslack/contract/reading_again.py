@@ -11,10 +11,13 @@ the calculation finds, which begins when the reading has found nothing.
 """
 
 from collections.abc import Callable, Collection, Iterable, Sequence
+from contextlib import suppress
 from functools import wraps
+from itertools import islice
 from typing import Protocol, TypeVar
 
-from loopslack.contract.reader import Reader
+from loopslack.contract.problems import MOST_COUNTED
+from loopslack.contract.reader import EnoughError, Reader
 from loopslack.kernel.errors import CalculationError, Refusals
 
 Q = TypeVar("Q")
@@ -44,10 +47,13 @@ def refusing(read: Callable[[Q, Reader], R]) -> Reading[Q, R]:
         if reader is not None:
             return read(question, reader)
         own = Reader()
-        found = read(question, own)
+        try:
+            found = read(question, own)
+        except EnoughError:
+            raise together(lasting(lambda _: question, read) or own.refused[:MOST_COUNTED]) from None
         if own.refused:
             again = [] if own.is_certain else lasting(lambda _: question, read)
-            raise together(again or own.refused)
+            raise together(again or own.refused[:MOST_COUNTED])
         return found
 
     return reading
@@ -66,14 +72,16 @@ def lasting(
     for turn in range(TURNS):
         reader = Reader(turn=turn)
         try:
-            read(question(turn), reader)
+            with suppress(EnoughError):
+                read(question(turn), reader)
         except CalculationError:
             continue  # not read to its end, so that nothing can be said of what was not told
         told = {(error.pointer, error.code, error.message): error for error in reader.refused}
         kept = told if kept is None else {key: kept[key] for key in kept if key in told}
         if not kept:
             break
-    return [error for error in (kept or {}).values() if not lies_within(error.pointer, unsound)]
+    found = (error for error in (kept or {}).values() if not lies_within(error.pointer, unsound))
+    return list(islice(found, MOST_COUNTED))
 
 
 def lies_within(pointer: str, places: Iterable[str]) -> bool:

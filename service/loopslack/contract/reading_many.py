@@ -1,5 +1,7 @@
 """Reads the designs of a batch together with what they share, and what they share by itself."""
 
+from contextlib import suppress
+
 from msgspec import Struct, inspect
 
 from loopslack.contract.fields import field_of
@@ -14,7 +16,7 @@ from loopslack.contract.questions_many import (
 )
 from loopslack.contract.questions_plant import Site
 from loopslack.contract.questions_vessels import FromStock
-from loopslack.contract.reader import Reader
+from loopslack.contract.reader import EnoughError, Reader
 from loopslack.contract.reading_again import lasting, lies_within, together
 from loopslack.contract.reading_sizing import read_sizing
 from loopslack.contract.reading_vessels import read_stock
@@ -50,7 +52,8 @@ class Shared(Struct, frozen=True):
             if pointer in places:
                 members[member.name] = stand_in(member.type, pointer)(turn)
         reader = Reader(turn=turn)
-        read_sizing(LoopDesignQuestion(**members), reader)
+        with suppress(EnoughError):
+            read_sizing(LoopDesignQuestion(**members), reader)
         return [error for error in reader.refused if not lies_within(error.pointer, places)]
 
     def completed(self, design: BatchDesign) -> LoopDesignQuestion:
@@ -71,7 +74,8 @@ def read_head(head: StreamHead, reader: Reader) -> None:
     """
     altitude = reader.stand_in(0.0, _ALTITUDE.low, _ALTITUDE.high)
     own = Reader(atmospheric_pressure(Length(altitude)), turn=reader.turn)
-    read_stock(own, head.stock or (), "/stock")
+    with suppress(EnoughError):
+        read_stock(own, head.stock or (), "/stock")
     if head.stock and head.defaults is not None and head.defaults.vessel is not None:
         own.contradiction(
             "/defaults/vessel",

@@ -1,6 +1,7 @@
 """How each type of question is read: what finds the faults that no single member shows."""
 
 from collections.abc import Callable
+from contextlib import suppress
 from typing import Any
 
 from loopslack.contract import questions, questions_existing
@@ -10,7 +11,7 @@ from loopslack.contract.questions_many import (
     SheetQuestion,
     StreamHead,
 )
-from loopslack.contract.reader import Reader
+from loopslack.contract.reader import EnoughError, Reader
 from loopslack.contract.reading_again import refusing
 from loopslack.contract.reading_existing import read_audit, read_check, read_course
 from loopslack.contract.reading_many import read_batch, read_head
@@ -24,9 +25,10 @@ Read = Callable[[Any, Reader], object]
 @refusing
 def _read_sheet(question: SheetQuestion | FigureQuestion, reader: Reader) -> object:
     own = Reader(turn=reader.turn)
-    found = read_sizing(question.design, own)
+    with suppress(EnoughError):
+        read_sizing(question.design, own)
     reader.take_over(own.refused, "/design")
-    return found
+    return question
 
 
 READINGS: dict[type, Read] = {

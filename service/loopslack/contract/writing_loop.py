@@ -169,7 +169,8 @@ def _stagnation(
         scenario=scenario.id,  # type: ignore[arg-type]  # the register of scenarios is closed
         verdict=verdict,
         regime=result.regime,
-        vessel_pressure=pressure.optional(result.pressure),
+        # An empty vessel has no pressure; what its gas would show says nothing about the loop.
+        vessel_pressure=None if result.liquid < 0 else pressure.optional(result.pressure),
         lower_bound=True if result.bound else None,
         steam_temperature=write.temperature(max(steam.temperature for steam in extent.spaces)),
         stagnation_temperature=write.temperature(max(space.hottest for space in spaces)),
