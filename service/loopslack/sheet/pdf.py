@@ -21,7 +21,7 @@ from loopslack.sheet.words import REPLACEMENT
 
 _NO_DATE = date(2000, 1, 1)  # a file for the archive must bear a date; it is printed nowhere
 _STANDARDS: list[Literal["ua-1", "a-2a"]] = ["ua-1", "a-2a"]
-_LONG = re.compile(r"[^\s\u00a0\u200b]{28}")
+_LONG = re.compile(r"[^\s\u00a0\u200b]{22}")
 _REMEMBERED = 11
 _NOTHING = b"."
 _SOFT_BREAK = "\u200b"
