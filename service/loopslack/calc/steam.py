@@ -263,6 +263,6 @@ class SteamSpace:
                 f"may or may not boil: the bubble line is known up to {self.fluid.boiling_highest - 273.15:.0f} degC.",
                 remedy="Choose a relief valve with a lower set pressure.",
                 pointer="/reliefValve/setPressure",
-                facts={"pressure": pressure, "stagnationTemperature": self.hottest},
+                facts={"pressure": pressure, "stagnationTemperature": self.hottest, "rule": "bubble line"},
             )
         return self.liquid()
