@@ -4,7 +4,14 @@ from loopslack.contract.answers_sizing import RuleComparison, SensitivityRow, Wa
 from loopslack.sheet.case import Case
 from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Scale, fitted, tick_labels, width_of
 from loopslack.sheet.lines import Drawing
-from loopslack.sheet.sections.sizing_names import input_name, input_range, rule_short, rule_title, step_name
+from loopslack.sheet.sections.sizing_names import (
+    by_weight,
+    input_name,
+    input_range,
+    rule_short,
+    rule_title,
+    step_name,
+)
 
 MOST_INPUTS = 10
 _LEFT, _RIGHT = 6.0, WIDTH - 6.0
@@ -125,7 +132,7 @@ def sensitivity(case: Case) -> Drawing | None:
     sized = case.result.volumes.recommended
     if found is None or sized is None:
         return None
-    rows = [row for row in found.inputs if _ends(row)][:MOST_INPUTS]
+    rows = [row for row in by_weight(found.inputs) if _ends(row)][:MOST_INPUTS]
     if not rows:
         return None
     words, say = case.words, case.say

@@ -5,7 +5,7 @@ from loopslack.sheet.case import Case
 from loopslack.sheet.figures.bars import sensitivity as figure
 from loopslack.sheet.lines import Beside, Block, Column, Row, Section, Table, Text
 from loopslack.sheet.sections.names import state_name
-from loopslack.sheet.sections.sizing_names import input_name, input_number, input_range
+from loopslack.sheet.sections.sizing_names import by_weight, input_name, input_number, input_range
 from loopslack.sheet.words import plain
 
 _NOTHING = 1e-4  # share of the volume below which a change is told as none
@@ -37,9 +37,9 @@ def sensitivity(case: Case) -> Section | None:
         Column(words("column.volume-high"), "value"),
         Column(words("column.largest-change"), "value"),
     )
-    moved = [row for row in found.inputs if row.decides or _moves(row)]
+    moved = by_weight(row for row in found.inputs if row.decides or _moves(row))
     rows = tuple(Row(_cells(case, row)) for row in moved)
-    others = [row for row in found.inputs if row not in moved]
+    others = sorted((row for row in found.inputs if row not in moved), key=lambda row: row.input)
     helpless = ", ".join(input_name(case, row.input) for row in others if not _ends(row))
     still = ", ".join(input_name(case, row.input) for row in others if _ends(row))
     note = words("table.sensitivity-note")

@@ -1,7 +1,9 @@
 """Names of sizing rules, of the steps between them and of the inputs that move the volume."""
 
+from collections.abc import Iterable
+
 from loopslack.contract.answers_common import AnyQuantity
-from loopslack.contract.answers_sizing import RuleComparison, WalkStep
+from loopslack.contract.answers_sizing import RuleComparison, SensitivityRow, WalkStep
 from loopslack.sheet.case import Case
 from loopslack.sheet.numerals import NO_BREAK, rounded
 from loopslack.sheet.words import plain
@@ -48,6 +50,20 @@ def input_name(case: Case, moved: str) -> str:
             kind = "plates" if build == "flat-plate" else "tubes"
             return f"{name} ({words(f'input.{kind}')})" if several else name
     return plain(moved)
+
+
+def by_weight(inputs: Iterable[SensitivityRow]) -> list[SensitivityRow]:
+    """Inputs that decide first, then by the change they make as it is shown; alike ones in the order of their names.
+
+    Beyond the digits shown the order of an answer is that of the solvers' rounding, which no sheet should hang on.
+    """
+
+    def weight(row: SensitivityRow) -> tuple[bool, float, str]:
+        change = row.largest_change
+        shown = 0.0 if change is None else float(rounded(change.value, change.unit))
+        return not row.decides, -shown, row.input
+
+    return sorted(inputs, key=weight)
 
 
 def input_range(case: Case, moved: str, low: AnyQuantity, high: AnyQuantity) -> str:
