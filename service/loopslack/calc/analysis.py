@@ -84,7 +84,7 @@ class Analysis:
         change = content - self.loop.cooling_content
         cooled = copy(self)
         cooled.loop = loop
-        cooled.content = loop.content
+        cooled.content = self.content + change
         cooled.allowance = loop.criteria.fluid_allowance * cooled.content
         cooled.states = self.states.with_more_still(change, cooled.allowance - self.allowance)
         cooled.mix = self.mix._replace(cool=self.mix.cool + change)

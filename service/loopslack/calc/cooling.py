@@ -16,6 +16,7 @@ from loopslack.calc.window import Bound, Bounds, Gas, Window
 from loopslack.kernel.roots import bracketed
 
 _MOST = 1e3  # m3: no cooling vessel is sought beyond
+_BEYOND = 1e-3  # of a step to where a search should end, what is added to come out beyond
 _TOLERANCE = 1e-7  # of a content or a mass; the answer is then moved to the safe side by as much
 
 
@@ -137,8 +138,11 @@ def _content_for(
     try:
         at_high = spared(high)
         while at_high < 0:
+            # Nearly straight: where it should end, and a little beyond.
+            rise = at_high - at_low
+            ahead = -at_high * (high - low) / rise * (1 + _BEYOND) if rise > 0 else inf
             low, at_low = high, at_high
-            high += 0.5 * step + 0.5 * high
+            high += min(max(ahead, _BEYOND * high), step + high)
             if high > _MOST:
                 return None
             at_high = spared(high)

@@ -39,7 +39,7 @@ def precharge(analysis: Analysis, nominal: float) -> float:
     criteria = analysis.loop.criteria
     reserve = criteria.reserve
     if reserve is None:
-        reserve = reserve_en_12828(NominalVolume(nominal), Volume(analysis.loop.content))
+        reserve = reserve_en_12828(NominalVolume(nominal), Volume(analysis.content))
     return max(needed * (1 - reserve / nominal), analysis.loop.atmosphere)
 
 

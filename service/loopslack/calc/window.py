@@ -9,7 +9,8 @@ from collections.abc import Sequence
 from math import inf
 from typing import NamedTuple
 
-from loopslack.calc.analysis import Analysis
+from loopslack.calc.analysis import Analysis, SteamCase
+from loopslack.calc.balance import Extent
 from loopslack.calc.equilibrium import ROUNDING
 from loopslack.calc.scenarios import Scenario
 from loopslack.kernel.kinds import NominalVolume, Volume
@@ -75,7 +76,7 @@ class Bounds:
         self._allowed = analysis.room_density * analysis.allowance
         self.lower: list[Line] = [self._cold(), self._cut_off()]
         self.upper: list[Line] = []
-        self.warm: list[Scenario] = []
+        self.warm: list[tuple[str, SteamCase, Extent | None]] = []
         for scenario in scenarios:
             self._stagnation(scenario)
 
@@ -99,7 +100,7 @@ class Bounds:
     def _stagnation(self, scenario: Scenario) -> None:
         case = self.analysis.case(scenario)
         if scenario.gas_follows:
-            self.warm.append(scenario)
+            self.warm.append((scenario.id, case, None if self._cold_twin(scenario) else case.station))
         else:
             pressure = self.analysis.final_pressure
             self.upper.append(self._hot("relief-valve", scenario.id, pressure, case.final.expelled))
@@ -108,6 +109,16 @@ class Bounds:
         elif case.station is not None and not scenario.gas_follows:
             station = case.station
             self.lower.append(self._hot("steam-at-station", scenario.id, station.pressure, station.expelled))
+
+    def _cold_twin(self, scenario: Scenario) -> bool:
+        """Whether the same steam with the gas at the room's temperature bounds the filling from below already.
+
+        Warm gas leaves less room, so that at the pressure that keeps steam out of the station less is held.
+        """
+        mix, station = self.analysis.mix, self.analysis.case(scenario).station
+        warm = mix.room <= mix.back and mix.room <= mix.hot and (station is None or station.expelled >= 0)
+        keys = (other.steam_key for other in self.scenarios if not other.gas_follows)
+        return warm and scenario.steam_key in keys
 
     def reserve(self, nominal: float) -> float:
         """Liquid (m3) a vessel must still hold when cold."""
@@ -131,16 +142,14 @@ class Bounds:
             mass = slope * nominal - offset
             if mass < most:
                 most, highest = mass, (code, id)
-        for scenario in self.warm:
-            case = analysis.case(scenario)
+        for id, case, station in self.warm:
             mass = self._warm_mass(nominal, analysis.final_pressure, case.final.expelled)
             if mass < most:
-                most, highest = mass, ("relief-valve", scenario.id)
-            if case.station is not None:
-                station = case.station
+                most, highest = mass, ("relief-valve", id)
+            if station is not None:
                 mass = self._warm_mass(nominal, station.pressure, station.expelled)
                 if mass > least:
-                    least, lowest = mass, ("steam-at-station", scenario.id)
+                    least, lowest = mass, ("steam-at-station", id)
         lower, upper = Bound(*lowest, least), Bound(*highest, most)
         if acceptance < nominal:
             upper = self._accepting(nominal, acceptance, upper)

@@ -16,8 +16,9 @@ from loopslack.calc.scenarios import Scenario
 from loopslack.calc.window import Bound, Bounds, Gas, Window
 from loopslack.kernel.roots import bracketed
 
-_LADDER = 1.2  # most a search for the bracket steps at once; the root itself is solved, not stepped
-_BEYOND = 1e-3  # of a step towards where the slack should end, what is added to come out beyond
+_LADDER = 1.2  # step of the search for the bracket where nothing tells more
+_LEAP = 10.0  # most it steps at once where the slack tells how far
+_BEYOND = 1e-3  # of such a step, what is added to come out beyond the root
 _NEAR = 1e-3  # share around an expected volume in which it is looked for first
 _VOLUME = 1e-11  # relative tolerance of a volume
 _RUNGS = 55  # 1.2^55 is 22,000 times the smallest vessel that could work at all
@@ -48,14 +49,32 @@ def feasible(
     if any(analysis.case(scenario).at_station for scenario in scenarios):
         return None
     slack = _Slack(analysis, scenarios, membrane_limit)
+    smallest = _smallest(slack, near)
+    if smallest is None:
+        return None
+    found = Interval(smallest, inf, slack.window(smallest), slack.precharge(smallest))
+    return found._replace(largest=slack.upper_end(smallest)) if upper_end else found
+
+
+def with_upper_end(
+    analysis: Analysis, scenarios: Sequence[Scenario], found: Interval, membrane_limit: float | None = None
+) -> Interval:
+    """An interval that was found without its upper end, with it."""
+    slack = _Slack(analysis, scenarios, membrane_limit)
+    return found._replace(largest=slack.upper_end(found.smallest))
+
+
+def _smallest(slack: "_Slack", near: float | None) -> float | None:
+    """The smallest volume (m3) with a wide enough window; None if there is none."""
     low = slack.least()
     if low is None:
         return None
-    volume, value, following = low, slack.at(low), low * _LADDER
-    if near is not None and value < 0 and low < near * (1 - _NEAR):
-        expected = slack.at(near * (1 - _NEAR))
-        if expected < 0:
-            volume, value, following = near * (1 - _NEAR), expected, near * (1 + _NEAR)
+    volume, following = low, low * _LADDER
+    if near is not None and low < near * (1 - _NEAR):
+        volume, following = near * (1 - _NEAR), near * (1 + _NEAR)
+    value = slack.at(volume)
+    if value >= 0 and volume > low:
+        volume, value, following = low, slack.at(low), volume
     rungs = 0
     while value < 0:
         previous, before = volume, value
@@ -64,22 +83,22 @@ def feasible(
         if rungs > _RUNGS:
             return None
         value = slack.at(volume)
-        # The slack is nearly straight: where it should end, and a little beyond.
+        # The slack is the least of many that are nearly straight, so that the line through two volumes that are too
+        # small ends before any that does; a little beyond is where to look next.
         following = volume * _LADDER
         if value > before:
-            step = -value * (volume - previous) / (value - before)
-            following = min(following, volume + step * (1 + _BEYOND) + _VOLUME * volume)
-    smallest = volume
-    if rungs:
-        smallest = bracketed(slack.at, previous, volume, before, value, _VOLUME * volume).at
-        # The root is met from above, so that the smallest vessel reported has its window. Where the slack jumps,
-        # the root may be some way off: the steps grow, up to the volume known to do.
-        step = 2 * _VOLUME
-        while smallest < volume and slack.at(smallest) < 0:
-            smallest = min(smallest * (1 + step), volume)
-            step *= 4
-    largest = slack.upper_end(volume) if upper_end else inf
-    return Interval(smallest, largest, slack.window(smallest), slack.precharge(smallest))
+            following = volume - value * (volume - previous) / (value - before) * (1 + _BEYOND)
+            following = min(max(following, volume * (1 + _VOLUME)), volume * _LEAP)
+    if not rungs:
+        return volume
+    smallest = bracketed(slack.at, previous, volume, before, value, _VOLUME * volume).at
+    # The root is met from above, so that the smallest vessel reported has its window. Where the slack jumps, the
+    # root may be some way off: the steps grow, up to the volume known to do.
+    step = 2 * _VOLUME
+    while smallest < volume and slack.at(smallest) < 0:
+        smallest = min(smallest * (1 + step), volume)
+        step *= 4
+    return smallest
 
 
 class _Slack:

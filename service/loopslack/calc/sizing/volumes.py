@@ -10,7 +10,7 @@ from loopslack.calc.analysis import Analysis
 from loopslack.calc.cooling import Charged, smallest_content
 from loopslack.calc.precharge import precharge, precharge_temperature
 from loopslack.calc.scenarios import BASE, Scenario
-from loopslack.calc.sizing.mass_balance import Interval, feasible
+from loopslack.calc.sizing.mass_balance import Interval, feasible, with_upper_end
 from loopslack.calc.sizing.rules.en_12977 import en_12977_volume
 from loopslack.calc.window import Gas
 
@@ -48,14 +48,14 @@ def size(
         interval = feasible(analysis, scenarios, membrane_limit)
         return interval and Sized(interval, analysis.loop.cooling_content, analysis, floor)
 
-    found: list[tuple[float, float]] = []
+    tried: list[tuple[float, Analysis, Interval]] = []
 
     def charge(content: float) -> Charged | None:
         cooled = analysis.with_cooling(content) if content else analysis
-        interval = feasible(cooled, scenarios, upper_end=False, near=_expected(found, content))
+        interval = feasible(cooled, scenarios, upper_end=False, near=_expected(tried, content))
         if interval is None:
             return None
-        found.append((content, interval.smallest))
+        tried.append((content, cooled, interval))
         volume = max(interval.smallest, floor)
         gas = Gas(volume, precharge(cooled, volume), precharge_temperature(cooled))
         return Charged(cooled, gas, interval.window.lower_bound.mass)
@@ -63,17 +63,16 @@ def size(
     content = smallest_content(charge, scenarios, membrane_limit)
     if content is None:
         return None
-    cooled = analysis.with_cooling(content) if content else analysis
-    interval = feasible(cooled, scenarios, near=_expected(found, content))
-    return interval and Sized(interval, content, cooled, floor)
+    _, cooled, interval = next(trial for trial in reversed(tried) if trial[0] == content)
+    return Sized(with_upper_end(cooled, scenarios, interval), content, cooled, floor)
 
 
-def _expected(found: Sequence[tuple[float, float]], content: float) -> float | None:
+def _expected(tried: Sequence[tuple[float, Analysis, Interval]], content: float) -> float | None:
     """The smallest volume (m3) to expect with a cooling content (m3), by the last two contents and theirs."""
-    if not found:
+    if not tried:
         return None
-    last, volume = found[-1]
-    before, other = found[-2] if len(found) > 1 else (last, volume)
+    last, volume = tried[-1][0], tried[-1][2].smallest
+    before, other = (tried[-2][0], tried[-2][2].smallest) if len(tried) > 1 else (last, volume)
     return volume if last == before else volume + (volume - other) * (content - last) / (last - before)
 
 
