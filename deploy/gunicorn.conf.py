@@ -49,6 +49,10 @@ forwarded_allow_ips = os.environ.get("FORWARDED_ALLOW_IPS", "127.0.0.1")
 _MEMORY = "/dev/shm"  # noqa: S108 - files and folders in it are made by mkstemp and mkdtemp
 worker_tmp_dir = _MEMORY if os.access(_MEMORY, os.W_OK) else None
 
+# The typesetter starts a thread for each core of the machine: on a large one more tasks than the unit or the container
+# may have. It sets one sheet at a time for each worker, and workers share the cores.
+os.environ.setdefault("RAYON_NUM_THREADS", "2")
+
 # Several workers count into one directory, which must be named before the metrics library is imported. One
 # made here is marked with its master: a master started by USR2 inherits the name, but not the directory.
 _MAKER = "LOOPSLACK_METRICS_MADE_BY"
