@@ -4,7 +4,7 @@ from math import pi, sqrt
 from random import Random
 from typing import Literal
 
-from loopslack.calc.model import Branch, CollectorGroup, Segment, SteamAccess, Sun
+from loopslack.calc.model import Branch, Build, CollectorGroup, Segment, SteamAccess, Sun
 from loopslack.library.defaults import default
 from loopslack.library.tubes import Tube, tube_standards
 from loopslack.physics.collector import stagnation_temperature
@@ -36,7 +36,7 @@ def _group(random: Random, name: str, wanted: float, height: float, sun: Sun, sp
     flat = kind == "flat-plate"
     count = max(1, round(wanted / random.uniform(1.8, 2.6)))
     emptying: Literal["good", "fair", "poor", "measured"] = "poor"
-    type_ = "flat-plate" if flat else "evacuated-tube-direct"
+    type_: Build = "flat-plate" if flat else "evacuated-tube-direct"
     efficiency, linear, quadratic = (
         default(f"{name_}-{type_}").si for name_ in ("optical-efficiency", "linear-loss", "quadratic-loss")
     )
@@ -64,6 +64,7 @@ def _group(random: Random, name: str, wanted: float, height: float, sun: Sun, sp
     measured = random.random() < 0.1
     return CollectorGroup(
         name=name,
+        build=type_,
         count=count,
         aperture=wanted,
         content=wanted * random.uniform(*RELATIVE_CONTENT[kind]) * LITRE,

@@ -117,6 +117,7 @@ def reaches(found: Equilibrium, balance: Balance) -> dict[str, float]:
 def _group(index: int, group: OtherGroup, case: Case) -> CollectorGroup:
     return CollectorGroup(
         name=f"group {index}",
+        build="flat-plate",  # the balance does not ask for it
         count=1,
         aperture=group.area,
         content=group.content,

@@ -33,6 +33,7 @@ def stagnation_rise(gain: float, linear: float, quadratic: float) -> float:
 def group(**changes) -> CollectorGroup:
     values = {
         "name": "roof",
+        "build": "flat-plate",
         "count": 8,
         "aperture": 18.4,
         "content": 13.6e-3,

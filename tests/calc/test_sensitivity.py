@@ -19,12 +19,12 @@ from calc.reference import (
 )
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.fluid import water
-from loopslack.calc.levers.collectors import family_of
 from loopslack.calc.levers.lever import Lever
 from loopslack.calc.model import Loop, Precharge
 from loopslack.calc.scenarios import BASE
 from loopslack.calc.sensitivity import Asked, Effect, levers, recommended_volume, sensitivity
 from loopslack.calc.sizing.volumes import size
+from loopslack.kernel import kinds
 from loopslack.library.defaults import default
 from loopslack.physics.atmosphere import atmospheric_pressure
 
@@ -119,6 +119,10 @@ def test_the_ranges_are_those_of_the_defaults_or_say_that_they_are_assumed() -> 
         assert found.low <= found.value <= found.high
         if found.id in {"pipe-length", "static-height"}:
             assert found.basis == "own-assumption"
+        elif found.id == "collector-content-flat-plate":
+            row = default(found.id)
+            assert found.kind is kinds.VOLUME
+            assert (found.low, found.high) == pytest.approx((row.low * 18.4, row.high * 18.4), rel=1e-12)
         elif found.id not in {"station-content", "steam-power-flat-plate"}:
             row = default(found.id)
             assert found.basis == "default"
@@ -164,9 +168,14 @@ def test_a_stated_precharge_keeps_its_gauge_reading_at_another_altitude() -> Non
 
 
 def test_only_the_groups_of_a_type_move() -> None:
-    tube = group(name="tubes", peak_efficiency=0.7, linear_loss=1.2, quadratic_loss=0.006, content=40e-3)
+    tube = group(
+        name="tubes",
+        build="evacuated-tube-direct",
+        peak_efficiency=0.7,
+        linear_loss=1.2,
+        quadratic_loss=0.006,
+    )
     mixed = loop(groups=(group(), tube))
-    assert [family_of(member) for member in mixed.groups] == ["flat-plate", "evacuated-tube-direct"]
     moved = lever("linear-loss-evacuated-tube-direct", mixed).moved(mixed, 0.8)
     assert moved.groups[0] == mixed.groups[0]
     assert moved.groups[1].linear_loss == 0.8

@@ -65,13 +65,12 @@ def encoded(question: Json) -> bytes:
 
 def collectors(group: CollectorGroup, spaces: bool) -> Json:
     """One group of collectors."""
-    flat = group.linear_loss > 2.5
     told: Json = {
         "id": group.name,
         "count": group.count,
         "area": {"value": round(group.aperture / group.count, 3), "unit": "m2"},
         "areaBasis": "aperture",
-        "type": "flat-plate" if flat else "evacuated-tube-direct",
+        "type": group.build,
         "content": litres(group.content / group.count),
         "coefficients": {
             "eta0": round(group.peak_efficiency, 3),

@@ -14,6 +14,7 @@ SteamAccess = Literal["open", "closed", "unknown"]
 Role = Literal["flow", "return"]
 PumpSide = Literal["suction", "discharge"]
 Emptying = Literal["good", "fair", "poor", "measured"]
+Build = Literal["flat-plate", "evacuated-tube-direct", "evacuated-tube-heat-pipe"]
 ConstructionFault = Literal["automatic-make-up", "galvanised-parts"]
 
 
@@ -27,6 +28,7 @@ class CollectorGroup(Struct, frozen=True, kw_only=True):
     """
 
     name: str
+    build: Build
     count: int
     aperture: float
     content: float

@@ -4,6 +4,7 @@ from typing import Annotated, Literal
 
 from msgspec import Meta, Struct
 
+from loopslack.calc.model import Build
 from loopslack.contract.fields import quantity, text, trade
 from loopslack.contract.quantity import (
     Area,
@@ -17,7 +18,6 @@ from loopslack.contract.quantity import (
 )
 
 AreaBasis = Literal["gross", "aperture", "absorber"]
-CollectorType = Literal["flat-plate", "evacuated-tube-direct", "evacuated-tube-heat-pipe"]
 EmptyingClass = Literal["good", "fair", "poor"]
 Label = Annotated[str, Meta(min_length=1, max_length=64)]
 
@@ -80,7 +80,7 @@ class CollectorGroup(QuestionPart, frozen=True, kw_only=True):
             "Absorber area of one collector; needed to convert coefficients from it.", 2.25, "m2", 0.1, 100
         ),
     ] = None
-    type: Annotated[CollectorType, text("Build of the collector.", "flat-plate")]
+    type: Annotated[Build, text("Build of the collector.", "flat-plate")]
     content: Annotated[
         Volume | None,
         quantity("Liquid in one collector. If absent, a figure for the type stands in.", 1.7, "L", 0.01, 500),

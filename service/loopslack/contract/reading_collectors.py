@@ -40,6 +40,7 @@ def read_group(
     height = reader.optional(group.height, _HEIGHT, place)
     return CollectorGroup(
         name=name,
+        build=group.type,
         count=group.count,
         aperture=group.count * aperture,
         content=group.count * read_content(reader, group, place, aperture),
