@@ -267,23 +267,6 @@ def day(**more):
             },
             "/start/collectors",
         ),
-        (
-            {
-                "precharge": {"kind": "optimised"},
-                "pipeRuns": [
-                    {
-                        "role": "return",
-                        "segments": [
-                            {
-                                "length": quantity(2300, "m"),
-                                "tube": {"kind": "content", "contentPerLength": quantity(170, "L/m")},
-                            }
-                        ],
-                    }
-                ],
-            },
-            "/precharge",
-        ),
     ],
 )
 def test_a_day_that_cannot_be_followed_is_refused_at_the_member_that_stands_in_the_way(changes, at):

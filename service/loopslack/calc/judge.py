@@ -28,6 +28,8 @@ from loopslack.calc.window import Bounds, Gas, Window
 from loopslack.kernel.errors import CalculationError
 from loopslack.physics.statics import GRAVITY
 
+_EMPTY = "the vessel is empty in this state, so that its pressure is not defined"
+
 JOINT = "required-doubts"  # the state under which checks of all required scenarios together stand
 
 
@@ -167,7 +169,10 @@ def _hot(
         # stands in as a lower bound, a hair above the limit so that it cannot read as a pass.
         pressure = found.pressure * (1 + 1e-6) if ignored is None else max(ignored, pressure * (1 + 1e-6))
         at_least = ignored is None
-    yield checks.relief_valve(analysis, id, pressure, at_least=at_least)
+    if found.liquid < 0:
+        yield _unknown(scenario, _EMPTY)
+    else:
+        yield checks.relief_valve(analysis, id, pressure, at_least=at_least)
     yield checks.acceptance(id, found, gas.acceptance, gas.nominal)
     yield checks.membrane(id, found, membrane_limit)
     at_station = checks.steam_at_station(analysis, id, found)

@@ -57,7 +57,7 @@ def stagnation_numbers(fitted: Fit, judgement: Judgement, air: float) -> Numbers
     if found is None:
         return
     extent, here = found.extent, "stagnation/0"
-    if isfinite(found.pressure):
+    if isfinite(found.pressure) and found.liquid >= 0:
         yield f"{here}/vesselPressure", found.pressure - air
     yield f"{here}/vesselLiquid", found.liquid
     yield f"{here}/gasTemperature", found.gas_temperature

@@ -228,12 +228,6 @@ def _vessel(
     *,
     gas_follows: bool,
 ) -> MembraneVessel:
-    if not charge.precharge > 0:
-        raise not_applicable(
-            "No precharge holds this loop, so that the vessel has no gas to start the day with.",
-            remedy="State the precharge the vessel has, or take a larger vessel.",
-            pointer="/precharge",
-        )
     room = loop.temperatures.vessel_room
     surface = vessels * _surface(charge.nominal / vessels)
     if vessels > 1:

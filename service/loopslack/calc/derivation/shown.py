@@ -147,7 +147,7 @@ class ShownSteps:
 
     def _report_stagnation(self, rest: RestValues) -> None:
         book, place = self.book, "/result/stagnation/0"
-        if rest.pressure is not None:
+        if rest.pressure is not None and rest.liquid.si >= 0:
             self._report_gauge(rest.pressure, f"{place}/vesselPressure")
         for value, member in (
             (rest.liquid, "vesselLiquid"),
