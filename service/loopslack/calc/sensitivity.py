@@ -10,6 +10,7 @@ from math import inf
 from msgspec import Struct
 
 from loopslack.calc.analysis import Analysis
+from loopslack.calc.equilibrium import ROUNDING
 from loopslack.calc.judge import required
 from loopslack.calc.judgement import DoubtPolicy
 from loopslack.calc.levers.collectors import collector_levers
@@ -116,4 +117,5 @@ def _moved(loop: Loop, lever: Lever, number: float, asked: Asked, present: float
 def _distance(one: float | None, other: float | None) -> float:
     if one is None or other is None:
         return 0.0 if one is other else inf
-    return abs(one - other)
+    change = abs(one - other)
+    return change if change > ROUNDING * max(one, other) else 0.0
