@@ -1,12 +1,11 @@
 """Levers of the collectors and of the sun they stand in, all groups of one type moved together."""
 
 from collections.abc import Callable
-from typing import Literal
 
 from msgspec.structs import replace
 
 from loopslack.calc.levers.lever import Lever, lever, ranged
-from loopslack.calc.model import CollectorGroup, Loop
+from loopslack.calc.model import Build, CollectorGroup, Loop
 from loopslack.kernel import kinds
 from loopslack.kernel.kinds import (
     HeatLossCoefficient,
@@ -19,10 +18,6 @@ from loopslack.kernel.kinds import (
 from loopslack.library.defaults import default
 from loopslack.physics.collector import stagnation_temperature, stagnation_temperature_at_other_sun
 
-Family = Literal["flat-plate", "evacuated-tube-direct", "evacuated-tube-heat-pipe"]
-
-_FLAT_LOSS = 2.5  # W/m2K, between the ranges of flat plates and of evacuated tubes
-_DIRECT_CONTENT = 1e-3  # m, between the ranges of heat pipes and of direct-flow tubes
 _COEFFICIENTS = (
     ("optical-efficiency", "peak_efficiency", kinds.RATIO),
     ("linear-loss", "linear_loss", kinds.HEAT_LOSS_COEFFICIENT),
@@ -33,30 +28,22 @@ Change = Callable[[Loop, CollectorGroup, float], CollectorGroup]
 
 
 def collector_levers(loop: Loop) -> list[Lever]:
-    """Sun and air, then content, coefficients and steam power by type of collector."""
+    """Sun and air, then content, coefficients and steam power by build of the collector."""
     found = [
         _sun(loop, "design-irradiance", kinds.IRRADIANCE, "irradiance"),
         _sun(loop, "design-ambient", kinds.TEMPERATURE, "ambient"),
     ]
-    for family in sorted({family_of(group) for group in loop.groups}):
-        groups = [group for group in loop.groups if family_of(group) == family]
-        found.append(_content(groups, family))
-        found.extend(_coefficient(groups, family, *names) for names in _COEFFICIENTS)
-        found.append(_steam_power(groups, family))
+    for build in sorted({group.build for group in loop.groups}):
+        groups = [group for group in loop.groups if group.build == build]
+        found.append(_content(groups, build))
+        found.extend(_coefficient(groups, build, *names) for names in _COEFFICIENTS)
+        found.append(_steam_power(groups, build))
     return found
 
 
-def family_of(group: CollectorGroup) -> Family:
-    """The type of collector whose ranges suit a group, told from its losses and its content."""
-    if group.linear_loss >= _FLAT_LOSS:
-        return "flat-plate"
-    direct = group.content / group.aperture >= _DIRECT_CONTENT
-    return "evacuated-tube-direct" if direct else "evacuated-tube-heat-pipe"
-
-
-def _content(groups: list[CollectorGroup], family: Family) -> Lever:
-    """Content of all collectors of a type, m3, shared out by aperture; the range is one per area."""
-    row = default(f"collector-content-{family}")
+def _content(groups: list[CollectorGroup], build: Build) -> Lever:
+    """Content of all collectors of a build, m3, shared out by aperture; the range is one per area."""
+    row = default(f"collector-content-{build}")
     aperture = sum(group.aperture for group in groups)
 
     def change(_: Loop, group: CollectorGroup, number: float) -> CollectorGroup:
@@ -64,31 +51,31 @@ def _content(groups: list[CollectorGroup], family: Family) -> Lever:
 
     value = sum(group.content for group in groups)
     within = (row.low * aperture, row.high * aperture)
-    return ranged(f"collector-content-{family}", kinds.VOLUME, value, within, _mover(family, change))
+    return ranged(f"collector-content-{build}", kinds.VOLUME, value, within, _mover(build, change))
 
 
 def _mean(groups: list[CollectorGroup], number: Callable[[CollectorGroup], float]) -> float:
     return sum(number(g) * g.aperture for g in groups) / sum(g.aperture for g in groups)
 
 
-def _mover(family: Family, change: Change) -> Callable[[Loop, float], Loop]:
+def _mover(build: Build, change: Change) -> Callable[[Loop, float], Loop]:
     def moved(loop: Loop, number: float) -> Loop:
         return replace(
             loop,
             groups=tuple(
-                change(loop, group, number) if family_of(group) == family else group for group in loop.groups
+                change(loop, group, number) if group.build == build else group for group in loop.groups
             ),
         )
 
     return moved
 
 
-def _coefficient(groups: list[CollectorGroup], family: Family, word: str, name: str, kind: Kind) -> Lever:
+def _coefficient(groups: list[CollectorGroup], build: Build, word: str, name: str, kind: Kind) -> Lever:
     def change(loop: Loop, group: CollectorGroup, number: float) -> CollectorGroup:
         return _stagnating(loop, replace(group, **{name: number}))
 
     value = _mean(groups, lambda group: float(getattr(group, name)))
-    return lever(f"{word}-{family}", kind, value, _mover(family, change))
+    return lever(f"{word}-{build}", kind, value, _mover(build, change))
 
 
 def _stagnating(loop: Loop, group: CollectorGroup) -> CollectorGroup:
@@ -105,7 +92,7 @@ def _stagnating(loop: Loop, group: CollectorGroup) -> CollectorGroup:
     return replace(group, stagnation_temperature=computed)
 
 
-def _steam_power(groups: list[CollectorGroup], family: Family) -> Lever:
+def _steam_power(groups: list[CollectorGroup], build: Build) -> Lever:
     """Steam power over the range of the groups' emptying classes, or over the doubt about a measured one."""
     measured = default("doubt-measured-steam-power")
     low, high = float("inf"), 0.0
@@ -113,7 +100,7 @@ def _steam_power(groups: list[CollectorGroup], family: Family) -> Lever:
         if group.emptying == "measured":
             within = (group.steam_power * measured.low, group.steam_power * measured.high)
         else:
-            row = default(f"steam-power-{family}-{group.emptying}")
+            row = default(f"steam-power-{build}-{group.emptying}")
             within = (row.low, row.high)
         low, high = min(low, within[0]), max(high, within[1])
 
@@ -125,7 +112,7 @@ def _steam_power(groups: list[CollectorGroup], family: Family) -> Lever:
         )
 
     value = _mean(groups, lambda group: group.steam_power)
-    return ranged(f"steam-power-{family}", kinds.IRRADIANCE, value, (low, high), _mover(family, change))
+    return ranged(f"steam-power-{build}", kinds.IRRADIANCE, value, (low, high), _mover(build, change))
 
 
 def _sun(loop: Loop, id: str, kind: Kind, name: str) -> Lever:
