@@ -169,6 +169,19 @@ def test_a_connection_beyond_the_limit_is_refused_with_503_and_room_comes_back(s
         assert read_answer(connection).startswith(b"HTTP/1.1 200 ")
 
 
+def test_of_many_connections_at_once_each_is_answered(server: Server) -> None:
+    many = [server.connect() for _ in range(60)]
+    for connection in many:
+        connection.sendall(REQUEST.replace(b"/echo", b"/slow"))
+    answers = [connection.recv(65536) for connection in many]
+    for connection in many:
+        connection.close()
+    statuses = [answer[9:12] for answer in answers]
+    assert statuses.count(b"200") == 8
+    assert statuses.count(b"503") == 52
+    time.sleep(0.3)  # until their places are free again
+
+
 @pytest.mark.parametrize(
     ("request_bytes", "status"),
     [

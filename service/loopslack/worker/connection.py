@@ -90,8 +90,8 @@ class GuardedProtocol(ASGIProtocol):
     * A client that is answered before it has sent its whole request (too long a body, one of the wrong type) may go
       on for a while; what it sends is dropped. Closed at once, the connection would be reset by the unread bytes, and
       the answer lost with it.
-    * Beyond `worker_connections` a connection is answered 503 without being read; beyond twice that number
-      it is reset.
+    * Beyond `worker_connections` a connection is answered 503 without its request being looked at, and given a
+      moment to take the answer; beyond twice that number it is closed right behind the answer.
 
     Not covered: HTTP/2, which the configuration does not switch on; a proxy that speaks it speaks HTTP/1.1
     here.
@@ -117,7 +117,9 @@ class GuardedProtocol(ASGIProtocol):
         allowed = self.cfg.worker_connections
         self._refused = self.worker.nr_conns > allowed
         if self.worker.nr_conns > 2 * allowed:
-            self._cut()
+            self._drop_what_has_come()
+            self._safe_write(REFUSAL)
+            self._close()
         elif self._refused:
             self._safe_write(REFUSAL)
             self._start("head", LINGER_SECONDS, self._close)
@@ -253,6 +255,13 @@ class GuardedProtocol(ASGIProtocol):
             self._start("silence", LINGER_SECONDS, self.transport.close)
         else:
             self.transport.close()
+
+    def _drop_what_has_come(self) -> None:
+        """Read what the system has received so far: a connection closed over unread bytes would be reset."""
+        connection = self.transport.get_extra_info("socket")
+        if connection is not None:
+            with suppress(OSError):
+                os.read(connection.fileno(), 65_536)
 
     def _close(self) -> None:
         """Close once everything written has been sent, and let the task that waits for a request go."""
