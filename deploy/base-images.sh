@@ -35,6 +35,7 @@ folder=$1
 make() {
     mmdebstrap --quiet --variant=extract --include="$2" --extract-hook="sh '$0' --finish \"\$1\"" \
         "$release" "$folder/$1.part.tar"
+    rm -rf "$folder/$1.tar" # a folder of this name would swallow the file
     mv "$folder/$1.part.tar" "$folder/$1.tar"
 }
 
