@@ -17,6 +17,7 @@ from loopslack.calc.precharge import gas_of
 from loopslack.calc.stagnation import stagnation
 from loopslack.calc.window import Gas
 from loopslack.kernel import kinds
+from loopslack.kernel.errors import Contradiction
 
 
 @dataclass
@@ -92,3 +93,11 @@ def test_an_optimised_precharge_can_be_read_off_a_gauge(nominal: float) -> None:
     gas = gas_of(analysis, Vessel(id="small", nominal_volume=nominal), 1)
     assert gas.precharge >= analysis.loop.atmosphere
     assert isfinite(stagnation(analysis, analysis.every[0], gas, 1.0).pressure)
+
+
+def test_a_valve_so_far_below_that_it_never_shuts_is_refused_where_it_stands() -> None:
+    relief = replace(loop().relief, height=-120.0)
+    with pytest.raises(Contradiction) as raised:
+        Analysis(loop(relief=relief))
+    assert raised.value.pointer == "/reliefValve/height"
+    assert Analysis(loop(relief=replace(relief, height=-50.0))).final_pressure > 0

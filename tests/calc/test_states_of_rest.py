@@ -189,3 +189,42 @@ def test_several_spaces_take_few_looks_at_the_steam(monkeypatch: pytest.MonkeyPa
     assert len(seen) > 30
     assert sorted(seen)[len(seen) // 2] <= 8
     assert failed <= len(seen) // 4
+
+
+def two_roofs(depth: float) -> Loop:
+    """The reference roof, and a second field far below the vessel with a steam space of its own."""
+    high, low = loop(), below_the_vessel(depth)
+    return replace(
+        high,
+        groups=(high.groups[0], replace(low.groups[0], name="field", space=1, content=0.1)),
+        branches=(*high.branches, *(replace(run, name=f"{run.name} field", space=1) for run in low.branches)),
+    )
+
+
+@pytest.mark.parametrize("warm", [False, True], ids=["gas at the room's", "gas as the liquid"])
+@pytest.mark.parametrize("depth", [10.0, 25.0, 40.0, 60.0, 100.0])
+def test_a_field_that_may_stand_full_of_steam_or_of_liquid_always_comes_to_rest(
+    depth: float, warm: bool
+) -> None:
+    found = two_roofs(depth)
+    analysis = Analysis(found)
+    density, regimes = analysis.states.fill.vessel_density, set()
+    for nominal in (0.05, 0.1, 0.2, 0.3, 0.5, 0.8, 1.2, 2.0, 4.0):
+        for filled in (0.02, 0.05, 0.1, 0.2):
+            share = filled * nominal
+            charge = Charge(nominal, 2 * BAR, 288.15, share, share * density, 293.15, 0.0)
+            balance = Balance(found, BASE)
+            # What cannot be solved would be refused here.
+            rest = equilibrium(
+                balance, charge, mixing(found), gas_follows=warm, opening=analysis.final_pressure
+            )
+            if rest.regime != "valve-opens" and rest.liquid >= 0:
+                regimes.add(tuple(steam.boiling for steam in rest.extent.spaces))
+                law = VesselLaw(balance, charge, mixing(found), gas_follows=warm)
+                assert law.excess(rest.pressure, rest.extent.expelled) == pytest.approx(
+                    0, abs=1e-8 * charge.nominal
+                )
+                for space, steam in zip(balance.spaces, rest.extent.spaces, strict=True):
+                    if steam.boiling:
+                        assert space.at(steam.temperature)[0] == pytest.approx(rest.pressure, rel=1e-7)
+    assert regimes

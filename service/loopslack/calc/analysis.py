@@ -14,6 +14,7 @@ from loopslack.calc.balance import Balance, Extent, Mixing, mixing
 from loopslack.calc.model import Loop
 from loopslack.calc.scenarios import BASE, DOUBT_IDS, Scenario, all_doubts, single_doubts
 from loopslack.calc.states import LiquidStates, liquid_states
+from loopslack.kernel.errors import Contradiction
 from loopslack.physics.statics import GRAVITY
 
 
@@ -99,12 +100,21 @@ def final_pressure(loop: Loop) -> float:
     """Highest vessel pressure (Pa absolute) at which the relief valve is sure to stay shut.
 
     A valve above the vessel sees less than the vessel, by hot liquid (the lighter, so the safe side); one below
-    sees more, by cold liquid.
+    sees more, by cold liquid. Raises ``Contradiction`` for one so far below that even vacuum opens it.
     """
     relief, fluid = loop.relief, loop.fluid
     temperatures = loop.temperatures
     density = fluid.density(temperatures.hot_liquid if relief.height > 0 else temperatures.fill)
-    return relief.opening_pressure + loop.atmosphere + density * GRAVITY * relief.height
+    pressure = relief.opening_pressure + loop.atmosphere + density * GRAVITY * relief.height
+    if pressure <= 0:
+        raise Contradiction(
+            f"The relief valve stands {-relief.height:.4g} m below the vessel; the liquid between them opens it "
+            "before there is any pressure in the vessel.",
+            remedy="Correct the height of the valve or its set pressure.",
+            pointer="/reliefValve/height",
+            facts={"height": relief.height, "opening": relief.opening_pressure},
+        )
+    return pressure
 
 
 def _steam_case(loop: Loop, scenario: Scenario, pressure: float) -> SteamCase:

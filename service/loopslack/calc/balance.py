@@ -15,6 +15,7 @@ from loopslack.kernel.roots import bracketed
 
 Spaces = tuple[Steam, ...]
 
+_NEAR = 1e-6  # K
 _PASCAL = 1e-14  # share of a pressure to which that of the station is found, of the size of its rounding
 
 
@@ -39,6 +40,19 @@ class Extent(NamedTuple):
     def boiling(self) -> bool:
         """Whether any space boils."""
         return any(space.boiling for space in self.spaces)
+
+
+def part_emptied(none: Steam, full: Steam, share: float) -> Steam:
+    """A space in which a group has evaporated by a share, between none of it and all."""
+    if full.emptied <= none.emptied:
+        return none
+    return none._replace(
+        temperature=full.temperature,
+        boiling=True,
+        emptied=none.emptied + share * (full.emptied - none.emptied),
+        mass=none.mass + share * (full.mass - none.mass),
+        vapour_density=full.vapour_density,
+    )
 
 
 class Mixing(NamedTuple):
@@ -96,7 +110,11 @@ class Jumps:
     def __init__(self, spaces: Sequence[SteamSpace]) -> None:
         self.spaces = spaces
         self._own = [
-            {space.pressure(t): t for t in space.stagnations if space.coldest < t <= space.highest_boiling()}
+            {
+                space.pressure(t): t
+                for t in space.stagnations
+                if space.coldest < t <= space.highest_boiling() and _is_largest(space, t)
+            }
             for space in spaces
         ]
         self.pressures = sorted({pressure for jumps in self._own for pressure in jumps})
@@ -202,6 +220,14 @@ class Balance:
         while found < high and spare(found) < 0:  # on the side where all is taken, should steam leap there
             found, step = min(found + step, high), 2 * step
         return found
+
+
+def _is_largest(space: SteamSpace, temperature: float) -> bool:
+    """Whether the steam has this temperature (K) at its own pressure, where runs that rise allow more than one."""
+    if space.path.falling:
+        return True
+    found = space.boiling_at(space.pressure(temperature))
+    return found is None or found > temperature - _NEAR
 
 
 def is_open(branch: Branch, scenario: Scenario) -> bool:

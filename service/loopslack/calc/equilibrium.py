@@ -8,7 +8,7 @@ pressure it would not allow.
 from collections.abc import Callable
 from typing import Literal, NamedTuple
 
-from loopslack.calc.balance import Balance, Extent, Mixing
+from loopslack.calc.balance import Balance, Extent, Mixing, part_emptied
 from loopslack.calc.charge import Charge, VesselLaw
 from loopslack.calc.meeting import Meeting
 from loopslack.kernel.errors import NotApplicable
@@ -168,7 +168,9 @@ def _between(
 ) -> Equilibrium:
     """The root inside a stretch without jumps; the lowest one, with most steam, where there are several."""
     pressure, extent = curve.find(law, low, high, at_low, at_high, _RELATIVE * high)
-    return _state("steam", pressure, extent, law)
+    spaces = zip(curve.balance.spaces, extent.spaces, strict=True)
+    pinned = any(steam.boiling and steam.temperature == space.hottest for space, steam in spaces)
+    return _state("pinned" if pinned else "steam", pressure, extent, law)
 
 
 def _around(
@@ -206,17 +208,7 @@ def _pinned(
         return law.excess(pressure, expelled)
 
     share = bracketed(at, 0.0, 1.0, above, below, _RELATIVE).at
-    spaces = tuple(
-        a._replace(
-            boiling=True,
-            emptied=a.emptied + share * (b.emptied - a.emptied),
-            mass=a.mass + share * (b.mass - a.mass),
-            vapour_density=b.vapour_density,
-        )
-        if b.emptied > a.emptied
-        else a
-        for a, b in zip(none.spaces, full.spaces, strict=True)
-    )
+    spaces = tuple(part_emptied(a, b, share) for a, b in zip(none.spaces, full.spaces, strict=True))
     return _state("pinned", pressure, balance.extent(pressure, spaces), law)
 
 

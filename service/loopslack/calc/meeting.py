@@ -7,7 +7,7 @@ decided in ``equilibrium``.
 
 from itertools import pairwise
 
-from loopslack.calc.balance import Balance, Extent, Jumps, Spaces
+from loopslack.calc.balance import Balance, Extent, Jumps, Spaces, part_emptied
 from loopslack.calc.charge import VesselLaw
 from loopslack.calc.steam import Steam
 from loopslack.kernel.errors import NotApplicable
@@ -19,6 +19,7 @@ _ROUNDS = 14  # of the joint solution; five or six are usual
 _FIRST, _LONGEST = 0.3, 25.0  # K: its first step, which shows the slopes, and the longest one
 _SECANTS = 8
 _STEPS = 24  # along a fold
+_HALVINGS = 60
 
 
 class Meeting:
@@ -109,7 +110,12 @@ class Meeting:
         if abs(law.excess(pressure, extent.expelled)) <= _LEAP * law.charge.nominal:
             self.balance.last = extent.spaces
             return pressure, extent
-        return self._along_fold(law, pressure, 1e-9 * high)
+        for _ in range(
+            _HALVINGS
+        ):  # the leap keeps the balance open: its two sides are wanted, as close as may be
+            middle = 0.5 * (low + high)
+            low, high = (middle, high) if excess(middle) < 0 else (low, middle)
+        return self._along_fold(law, low, high)
 
     def _spaces(self, pressure: float, *, below: bool) -> Spaces:
         if pressure in self._jumps.pressures:
@@ -134,13 +140,13 @@ class Meeting:
         self.balance.last = extent.spaces
         return pressure, extent._replace(pressure=pressure)
 
-    def _along_fold(self, law: VesselLaw, pressure: float, step: float) -> tuple[float, Extent]:
+    def _along_fold(self, law: VesselLaw, below: float, above: float) -> tuple[float, Extent]:
         """The root where a space with rising runs leaps at a pressure: on the states between, which no pressure picks.
 
         They are walked by the steam temperature of the space, at whose pressure the others stand.
         """
         spaces = self.balance.spaces
-        before, after = self._spaces(pressure - step, below=False), self._spaces(pressure + step, below=False)
+        before, after = self._spaces(below, below=False), self._spaces(above, below=False)
         leaps = [b.temperature - a.temperature for a, b in zip(before, after, strict=True)]
         k = max(range(len(leaps)), key=leaps.__getitem__)
         low, high = before[k].temperature, after[k].temperature
@@ -158,16 +164,55 @@ class Meeting:
             {a + (b - a) * n / _STEPS for a, b in pairwise(spaces[k].stops(low, high)) for n in range(_STEPS)}
             | {high}
         )
-        crossing = first_crossing(excess, stops, 1e-11 * high)
-        if crossing is not None:
-            here, extent = at(crossing.at)
-            if abs(law.excess(here, extent.expelled)) <= _LEAP * law.charge.nominal:
-                return here, extent
-        raise NotApplicable(
-            "no state of rest was found: steam in runs that rise would leap past every one",
-            remedy="Check the heights of the runs, or state no crest.",
-            pointer="/pipeRuns",
-        )
+        crossing = first_crossing(excess, stops, 1e-14 * high)
+        found = None if crossing is None else at(crossing.at)
+        if found is None and not after[k].boiling:
+            found = self._beside_liquid(law, k, above, after[k])
+        if found is None or abs(law.excess(found[0], found[1].expelled)) > _LEAP * law.charge.nominal:
+            raise NotApplicable(
+                "no state of rest was found: steam in runs that rise would leap past every one",
+                remedy="Check the heights of the runs, or state no crest.",
+                pointer="/pipeRuns",
+            )
+        return found
+
+    def _beside_liquid(
+        self, law: VesselLaw, k: int, highest: float, liquid: Steam
+    ) -> tuple[float, Extent] | None:
+        """The root below a pressure (Pa) with space ``k`` liquid, as it stays where steam never got past its rise.
+
+        Or, where even that leaves room, part evaporated at its stagnation temperature.
+        """
+        spaces = self.balance.spaces
+
+        def at(pressure: float, own: Steam = liquid) -> tuple[float, Extent]:
+            states = [own if n == k else space.at_pressure(pressure) for n, space in enumerate(spaces)]
+            return pressure, self.balance.extent(pressure, tuple(states))
+
+        def excess(pressure: float) -> float:
+            return law.excess(pressure, at(pressure)[1].expelled)
+
+        top = spaces[k].highest_boiling()
+        leaving, full = spaces[k].at(top)
+        lowest = max(self.low, leaving)
+        at_low, at_high = excess(lowest), excess(highest)
+        if lowest >= highest or at_high < 0:
+            return None
+        if at_low < 0:
+            return at(bracketed(excess, lowest, highest, at_low, at_high, 1e-12 * highest).at)
+        if leaving < self.low:
+            return None
+        _, none = at(leaving)
+        _, whole = at(leaving, full)
+        share = bracketed(
+            lambda part: law.excess(leaving, none.expelled + part * (whole.expelled - none.expelled)),
+            0.0,
+            1.0,
+            at_low,
+            law.excess(leaving, whole.expelled),
+            1e-13,
+        ).at
+        return at(leaving, part_emptied(liquid, full, share))
 
 
 def _settled(law: VesselLaw, expelled: float, gain: float, start: float) -> float | None:

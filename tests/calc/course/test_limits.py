@@ -1,6 +1,7 @@
 """The course against the coupled balance: equal where both say the same, below it everywhere else."""
 
 import pytest
+from msgspec.structs import replace
 
 from calc import reference
 from calc.course.cases import BAR, HOUR, NOON, charge, course, lumped, march
@@ -95,3 +96,9 @@ def test_the_pressure_of_the_day_stays_below_that_of_the_stagnation_check(nomina
     day = course(lumped(nominal, emptying=emptying, relief=None))
     assert day.largest["steam_volume"].value > 0
     assert day.largest["vessel_pressure"].value < at_worst.pressure
+
+
+def test_a_collector_that_loses_nothing_in_proportion_gets_through_the_night() -> None:
+    """Its stagnation rise without sun is nought over nought."""
+    loop = replace(lumped(), linear_loss=0.0, quadratic_loss=0.03)
+    assert course(loop).complete

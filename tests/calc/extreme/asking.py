@@ -4,13 +4,13 @@ What an answer has to satisfy stands here, apart from how the questions are draw
 """
 
 import json
-from math import isfinite
+from math import inf, isfinite
 from typing import Any, NamedTuple
 
 import msgspec
 
-from calc.extreme.drawing import Data, q
 from calc.extreme.rest import wrong_with_rest
+from calc.extreme.shapes import Data, q
 from loopslack.calc.fit import Fit
 from loopslack.calc.judgement import Judgement
 from loopslack.contract import answering, answering_audit, answering_course
@@ -34,6 +34,8 @@ ROUTES: dict[type, Any] = {
     StagnationCourseQuestion: answering_course.compute_stagnation_course,
 }
 BAR, ZERO = 1e5, 273.15
+# Vacuum and absolute zero. Gauge readings may lie below vacuum: what a check would need, and what it finds lacking.
+_LEAST = {"bara": 0.0, "psia": 0.0, "kPaa": 0.0, "degC": -273.15, "degF": -459.67}
 SIZING_ONLY = ("vessel", "vesselsInParallel", "coolingVessel", "precharge", "tolerances", "rules", "include")
 
 
@@ -54,15 +56,26 @@ def ask(data: Data, kind: type) -> Asked:
     try:
         answer = msgspec.to_builtins(ROUTES[kind](question))
     except (Refused, CalculationError) as error:
-        return Asked(f"refused: {type(error).__name__}", [])
+        unsolved = [f"not solved: {error}"] if "no state of rest" in str(error) else []
+        return Asked(f"refused: {type(error).__name__}", unsolved)
     wrong = list(_not_finite(answer, ""))
-    wrong += [f"{place}: {text}" for place, text in _impossible(answer, "")]
+    # A derivation may pass through a pressure below vacuum that a check would put up with; a result may not.
+    told = {name: part for name, part in answer.items() if name != "derivation"}
+    wrong += [f"{place}: {text}" for place, text in _impossible(told, "")]
     result = answer["result"]
+    for refused in result.get("checks", []):
+        if "no state of rest" in refused.get("reason", ""):
+            wrong.append(f"not solved: {refused['scenario']}")
     if kind is not StagnationCourseQuestion:
         wrong += _verdict_wrong(result, kind)
     wrong += _units_wrong(data, kind, answer)
     if kind is LoopDesignQuestion:
         asked = answering.designed(question)
+        shown = asked.design.shown
+        if shown.vessel.precharge_adjustable and shown.gas.precharge < shown.analysis.loop.atmosphere * (
+            1 - 1e-9
+        ):
+            wrong.append(f"a precharge of {shown.gas.precharge} Pa is set")
         wrong += wrong_with_rest(asked.design.shown.analysis, asked.design.judgement, asked.design.shown)
         if asked.design.chosen is not None:
             wrong += _asked_again(data, asked.design.chosen, asked.design.judgement)
@@ -90,11 +103,8 @@ def _impossible(found: Any, place: str) -> Any:
             yield from _impossible(value, f"{place}/{k}")
     elif isinstance(found, dict):
         unit, value = found.get("unit"), found.get("value")
-        if isinstance(value, float):
-            if unit in ("bara", "psia", "kPaa") and value < 0:
-                yield place, f"{value} {unit}"
-            if unit in ("degC", "degF") and value < {"degC": -273.15, "degF": -459.67}[unit]:
-                yield place, f"{value} {unit}"
+        if isinstance(value, float) and value < _LEAST.get(unit, -inf):
+            yield place, f"{value} {unit}"
         if "pipeRun" in found and "reach" in found:
             reach, length = found["reach"]["value"], found["length"]["value"]
             if not 0 <= reach <= length * (1 + 1e-5):
@@ -117,6 +127,9 @@ def _verdict_wrong(result: Data, kind: type) -> Any:
         failing = [c for c in core if c["verdict"] != "holds"]
         if not failing:
             yield f"{verdict} though every check and doubt holds"
+    for state in result.get("stagnation", []):
+        if ("vesselPressure" in state) != (state["vesselLiquid"]["value"] >= 0):
+            yield f"{state['scenario']}: a pressure with {state['vesselLiquid']} in the vessel, or none"
     for check in core:
         margin = check.get("margin", {}).get("value")
         if margin is not None and check["verdict"] == "holds" and margin < 0:

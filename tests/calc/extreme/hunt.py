@@ -13,7 +13,8 @@ if __name__ == "__main__":
     sys.path.insert(0, str(Path(__file__).parents[2]))
 
 from calc.extreme.asking import Asked, ask
-from calc.extreme.drawing import Data, question, seeded
+from calc.extreme.drawing import question, seeded
+from calc.extreme.shapes import Data
 from loopslack.contract.questions import (
     LoopDesignQuestion,
     StagnationCheckQuestion,

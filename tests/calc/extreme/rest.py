@@ -47,6 +47,8 @@ def wrong_with_rest(
 def _space_wrong(id: str, space: SteamSpace, steam: object, found: Equilibrium) -> Iterator[str]:
     temperature, pressure = steam.temperature, found.pressure
     if not steam.boiling:
+        if not space.path.falling:
+            return  # steam and liquid can both be at rest; which of them is the vessel's to say
         low, high = space.coldest, min(space.hottest, space.fluid.boiling_highest)
         for k in range(PLACES):
             there = low + (high - low) * k / PLACES

@@ -57,7 +57,9 @@ class Collector:
         self.gain = self.sun + self.inertia * (state.absorber - ambient)
         # Rise at which the absorber loses all it gets, in the form that holds without a quadratic term.
         a1, a2 = loop.linear_loss, loop.quadratic_loss
-        self.stagnation_rise = 2.0 * self.sun / (a1 + sqrt(a1 * a1 + 4.0 * a2 * self.sun))
+        losing = a1 + sqrt(a1 * a1 + 4.0 * a2 * self.sun)
+        # Without a linear term nothing is lost by night: nought over nought, and no rise.
+        self.stagnation_rise = 2.0 * self.sun / losing if losing > 0.0 else 0.0
         self.follows_strength = loop.emptying.concentrates and tables.residue is not None
         self.strength = self.outside_strength = tables.strength
         self.activity = tables.loop_activity
