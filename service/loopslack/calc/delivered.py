@@ -1,6 +1,7 @@
 """A vessel whose precharge cannot be changed: the nearest precharge with which it would do."""
 
 from collections.abc import Callable, Sequence
+from math import inf
 
 from loopslack.calc.fit import Fit
 from loopslack.calc.precharge import DELIVERY_TEMPERATURE, SEA_LEVEL
@@ -10,6 +11,7 @@ from loopslack.calc.window import Bounds, Gas
 from loopslack.kernel.roots import bracketed
 
 _HALVINGS = 20
+_TOLERANCE = 0.1  # Pa
 
 
 def nearest_precharge(
@@ -29,12 +31,17 @@ def nearest_precharge(
         return slack_between(bounds, charged.nominal, lower.mass, upper.mass)
 
     works = gas.precharge * DELIVERY_TEMPERATURE / gas.temperature - SEA_LEVEL
-    at_works, at_delivered = slack(works), slack(delivered)
-    if at_works <= 0 or at_delivered >= 0:
+    inside, outside = (works, slack(works)), (delivered, slack(delivered))
+    if inside[1] <= 0 or outside[1] >= 0:
         return works
-    low, high = sorted((works, delivered))
-    ends = (at_works, at_delivered) if low == works else (at_delivered, at_works)
-    found = bracketed(slack, low, high, *ends, 0.01).at
+    jump = _hot_gas_fills(adjusted, scenarios)
+    if works < jump < delivered:
+        at_jump = jump, slack(jump)
+        inside, outside = (at_jump, outside) if at_jump[1] > 0 else (inside, at_jump)
+    found = inside[0]
+    if found != jump:
+        (low, at_low), (high, at_high) = sorted((inside, outside))
+        found = bracketed(slack, low, high, at_low, at_high, _TOLERANCE).at
     # A pascal towards the one that works, so that the answer itself works.
     found += 1.0 if works > found else -1.0
     if holds(found):
@@ -47,3 +54,14 @@ def nearest_precharge(
         else:
             found = middle
     return works
+
+
+def _hot_gas_fills(fitted: Fit, scenarios: Sequence[Scenario]) -> float:
+    """Delivered precharge (gauge Pa) from which hot gas alone fills the vessel, so that the window jumps shut.
+
+    A hair below it; infinite where no scenario warms the gas.
+    """
+    if not any(scenario.gas_follows for scenario in scenarios):
+        return inf
+    analysis = fitted.analysis
+    return analysis.final_pressure * DELIVERY_TEMPERATURE / analysis.mix.hot * (1 - 1e-9) - SEA_LEVEL
