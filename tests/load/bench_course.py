@@ -12,10 +12,11 @@ from time import perf_counter
 
 from calc.course.cases import case, course, lumped
 from loopslack.calc.course.envelope import day_course
-from loopslack.calc.course.march import Accuracy, finished
+from loopslack.calc.course.march import Accuracy
 from loopslack.calc.course.properties import FluidTables
 from loopslack.calc.course.weather import ClearSky
 from loopslack.calc.fluid import glycol
+from loopslack.kernel.work import finished
 
 ROUNDS = 7
 CURVE, SLICE = 150.0, 10.0  # milliseconds allowed

@@ -3,7 +3,6 @@
 from typing import TypedDict
 
 from loopslack.calc.band import band
-from loopslack.calc.course.march import finished
 from loopslack.calc.design import Design
 from loopslack.calc.existing import Checked
 from loopslack.calc.fit import Fit
@@ -37,6 +36,7 @@ from loopslack.contract.reading_existing import CheckReading
 from loopslack.contract.reading_tolerances import Tolerances
 from loopslack.contract.writing_changes import Asked
 from loopslack.contract.writing_derivation import derivation
+from loopslack.kernel.work import finished
 
 
 class Judged(TypedDict):

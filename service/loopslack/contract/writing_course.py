@@ -5,7 +5,6 @@ from loopslack.calc.course.chronicle import Phases
 from loopslack.calc.course.envelope import DayCourse, Span, day_course
 from loopslack.calc.course.lumped import Start
 from loopslack.calc.course.mapping import Mapped, mapped
-from loopslack.calc.course.march import finished
 from loopslack.calc.course.weather import ClearSky, Weather
 from loopslack.calc.fit import Fit
 from loopslack.calc.stagnation import charge_of
@@ -14,6 +13,7 @@ from loopslack.contract.quantity import TimeSpan
 from loopslack.contract.units_out import Writer
 from loopslack.contract.writing_common import source_note
 from loopslack.contract.writing_loop import Pressures
+from loopslack.kernel.work import finished
 
 _MINUTE = 60.0
 

@@ -7,8 +7,9 @@ from loopslack.calc.charge import Charge
 from loopslack.calc.course.assumptions import RESIDUAL_SHARE
 from loopslack.calc.course.lumped import HOT_START, Emptying, LumpedLoop
 from loopslack.calc.course.mapping import Mapped, mapped
-from loopslack.calc.course.march import Accuracy, March, finished, marching
+from loopslack.calc.course.march import Accuracy, March, marching
 from loopslack.calc.course.weather import ClearSky
+from loopslack.kernel.work import finished
 
 HOUR = 3600.0
 LITRE = 1e-3

@@ -5,8 +5,9 @@ import pytest
 from calc.course.cases import BAR, HOUR, case, course, lumped
 from loopslack.calc.course.curve import COLUMNS
 from loopslack.calc.course.envelope import day_course
-from loopslack.calc.course.march import Accuracy, finished, marching
+from loopslack.calc.course.march import Accuracy, marching
 from loopslack.calc.course.weather import ClearSky
+from loopslack.kernel.work import finished
 
 
 @pytest.fixture(scope="module")

@@ -6,7 +6,6 @@ from typing import Any, NamedTuple
 
 import msgspec
 
-from loopslack.calc.course.march import finished
 from loopslack.calc.design import Request, design
 from loopslack.calc.remedies.bench import Bench
 from loopslack.calc.remedies.case import Case, case_of_design, case_of_vessel
@@ -20,6 +19,7 @@ from loopslack.contract.reading_existing import read_check
 from loopslack.contract.reading_vessels import read_choice
 from loopslack.contract.writing_changes import Asked
 from loopslack.contract.writing_remedies import RemedyWriter
+from loopslack.kernel.work import finished
 
 WITHOUT_EXTRAS: dict[str, Any] = {"include": []}
 

@@ -8,7 +8,6 @@ from msgspec.structs import replace
 from calc.reference import ATMOSPHERE, BAR, ZERO, conductance, group, loop, run
 from calc.remedies.thousand import SERIES, holds
 from loopslack.calc.analysis import Analysis
-from loopslack.calc.course.march import finished
 from loopslack.calc.design import Request, design
 from loopslack.calc.model import Part, Precharge, Vessel
 from loopslack.calc.remedies.case import Case, case_of_design
@@ -17,6 +16,7 @@ from loopslack.calc.remedies.measure import SPARE_VESSEL, Found
 from loopslack.calc.remedies.robust import cooler_for_robust
 from loopslack.calc.remedies.seek import remedies_for_design, remedies_for_vessel
 from loopslack.calc.sizing.mass_balance import feasible
+from loopslack.kernel.work import finished
 
 GRAVITY = 9.80665
 REFERENCE = loop()

@@ -5,7 +5,6 @@ from msgspec.structs import replace
 
 from calc.reference import ATMOSPHERE, BAR, group, loop, run
 from calc.remedies.thousand import SERIES
-from loopslack.calc.course.march import finished
 from loopslack.calc.design import Request, design
 from loopslack.calc.model import Vessel
 from loopslack.calc.remedies.bench import MOST_FULL, MOST_QUICK, Bench
@@ -14,6 +13,7 @@ from loopslack.calc.remedies.changes import Change, bared, changed, lengthened, 
 from loopslack.calc.remedies.heat import StagnationCooler
 from loopslack.calc.remedies.pipes import BarePipe, ExtraPipe
 from loopslack.calc.remedies.seek import remedies
+from loopslack.kernel.work import finished
 
 
 def case_of(loop_, policy="single"):

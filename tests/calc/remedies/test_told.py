@@ -6,7 +6,6 @@ import pytest
 from calc.reference import ATMOSPHERE, BAR, loop
 from calc.remedies.thousand import SERIES
 from loopslack.calc.analysis import Analysis
-from loopslack.calc.course.march import finished
 from loopslack.calc.design import Request, design
 from loopslack.calc.discharge import discharge
 from loopslack.calc.model import Vessel
@@ -17,6 +16,7 @@ from loopslack.calc.window import Bounds
 from loopslack.contract.units_out import METRIC, US
 from loopslack.contract.writing_discharge import discharges
 from loopslack.contract.writing_remedies import robust_cooler
+from loopslack.kernel.work import finished
 
 
 def _charged(litres, fill=1.92):

@@ -19,7 +19,6 @@ if __name__ == "__main__":
 from msgspec.structs import replace
 
 from calc.loops import random_loop
-from loopslack.calc.course.march import finished
 from loopslack.calc.design import Design, Request, design
 from loopslack.calc.existing import check
 from loopslack.calc.model import Loop, Vessel
@@ -27,6 +26,7 @@ from loopslack.calc.remedies.bench import MOST_FULL, MOST_QUICK
 from loopslack.calc.remedies.case import Case, case_of_design, case_of_vessel
 from loopslack.calc.remedies.changes import changed
 from loopslack.calc.remedies.seek import Remedies, remedies_for_design, remedies_for_vessel
+from loopslack.kernel.work import finished
 from loopslack.library.vessels import preferred_vessels
 
 SERIES = tuple(Vessel(id=size.id, nominal_volume=size.nominal_volume) for size in preferred_vessels())

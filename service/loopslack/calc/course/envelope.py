@@ -13,8 +13,9 @@ from loopslack.calc.course.chronicle import Flag, Phases
 from loopslack.calc.course.curve import COLUMNS, Curve
 from loopslack.calc.course.lumped import LumpedLoop
 from loopslack.calc.course.mapping import Mapped
-from loopslack.calc.course.march import Accuracy, Work, marching
+from loopslack.calc.course.march import Accuracy, marching
 from loopslack.calc.course.weather import Weather
+from loopslack.kernel.work import Work
 
 _CORNERS: tuple[tuple[EmptyingClass, float], ...] = (
     ("good", 0.0),

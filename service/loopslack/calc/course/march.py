@@ -1,8 +1,5 @@
 """The march through the day, with steps as long as they may be and pauses for whoever waits."""
 
-from collections.abc import Generator
-from typing import TypeVar
-
 from msgspec import Struct
 
 from loopslack.calc.course.books import Books
@@ -16,11 +13,7 @@ from loopslack.calc.course.step import step
 from loopslack.calc.course.transport import accept
 from loopslack.calc.course.weather import Weather
 from loopslack.kernel.errors import Contradiction
-
-T = TypeVar("T")
-
-Work = Generator[None, None, T]
-"""A computation that pauses every few milliseconds and returns its result; see ``finished``."""
+from loopslack.kernel.work import Work
 
 _SHUT = 0.999  # of the closing pressure, to which the pressure falls when the valve shuts, rounding apart
 _STROKES = 100  # of the valve that are followed one by one, in steps as short as may be
@@ -176,13 +169,3 @@ def marching(
             march.advance()
         yield
     return march.curve()
-
-
-def finished(work: Work[T]) -> T:
-    """Run a paused computation to its end without pauses."""
-    while True:
-        try:
-            next(work)
-        except StopIteration as end:
-            result: T = end.value
-            return result

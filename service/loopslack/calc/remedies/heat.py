@@ -9,7 +9,6 @@ from typing import NamedTuple
 
 from msgspec.structs import replace
 
-from loopslack.calc.course.march import Work
 from loopslack.calc.judge import required
 from loopslack.calc.model import CollectorGroup
 from loopslack.calc.remedies.bench import Bench
@@ -18,6 +17,7 @@ from loopslack.calc.remedies.changes import Change
 from loopslack.calc.remedies.measure import Measure, Option
 from loopslack.kernel import kinds
 from loopslack.kernel.errors import CalculationError
+from loopslack.kernel.work import Work
 from loopslack.library.defaults import default
 
 _LARGEST = 1e7  # W, what a question may state

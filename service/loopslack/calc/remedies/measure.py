@@ -9,11 +9,11 @@ from collections.abc import Sequence
 from math import ceil, floor, inf, log10
 from typing import Literal, NamedTuple
 
-from loopslack.calc.course.march import Work
 from loopslack.calc.remedies.bench import Bench
 from loopslack.calc.remedies.case import Case, Outcome
 from loopslack.calc.remedies.changes import Change, changed
 from loopslack.kernel.kinds import Kind
+from loopslack.kernel.work import Work
 
 RemedyCode = Literal[
     "fill-pressure",

@@ -6,13 +6,13 @@ from math import ceil, inf
 from typing import NamedTuple
 
 from loopslack.calc.analysis import Analysis
-from loopslack.calc.course.march import Work
 from loopslack.calc.remedies.bench import Bench
 from loopslack.calc.remedies.case import Case
 from loopslack.calc.remedies.changes import Change, changed, valve_set_to
 from loopslack.calc.remedies.measure import Found, Measure, Option
 from loopslack.calc.remedies.valve import HigherValve, PartRatings, overloaded
 from loopslack.kernel.errors import CalculationError
+from loopslack.kernel.work import Work
 
 _STEP = 0.5e5  # Pa, of set pressures and ratings
 _HIGHEST = 16e5

@@ -4,13 +4,13 @@ from typing import NamedTuple
 
 from msgspec.structs import replace
 
-from loopslack.calc.course.march import Work
 from loopslack.calc.design import Design
 from loopslack.calc.model import Vessel
 from loopslack.calc.remedies.bench import Bench
 from loopslack.calc.remedies.case import Case, case_of_design
 from loopslack.calc.remedies.heat import StagnationCooler, unspent_power
 from loopslack.kernel.errors import CalculationError
+from loopslack.kernel.work import Work
 
 
 class RobustCooler(NamedTuple):

@@ -3,7 +3,6 @@
 from collections.abc import Sequence
 from typing import NamedTuple
 
-from loopslack.calc.course.march import Work
 from loopslack.calc.design import Design
 from loopslack.calc.judgement import DoubtPolicy
 from loopslack.calc.model import Loop, Vessel
@@ -16,6 +15,7 @@ from loopslack.calc.remedies.pipes import BarePipe, BareRun, ExtraPipe, OpenRun
 from loopslack.calc.remedies.settings import CutOff, FillPressure, PrechargePressure, StrongerGlycol
 from loopslack.calc.remedies.valve import HigherValve, LowerValve, PartRatings
 from loopslack.calc.remedies.vessels import CoolingVessel, OtherVessel
+from loopslack.kernel.work import Work
 
 
 class Remedies(NamedTuple):

@@ -5,7 +5,6 @@ from math import ceil, inf
 
 from msgspec.structs import replace
 
-from loopslack.calc.course.march import Work
 from loopslack.calc.model import Vessel
 from loopslack.calc.remedies.bench import Bench, rating_needed
 from loopslack.calc.remedies.case import Case, analysed
@@ -13,6 +12,7 @@ from loopslack.calc.remedies.changes import Change, changed
 from loopslack.calc.remedies.measure import Found, Measure, Option
 from loopslack.kernel import kinds
 from loopslack.kernel.errors import CalculationError
+from loopslack.kernel.work import Work
 from loopslack.library.vessels import preferred_vessels
 
 _LADDER = 1.25
