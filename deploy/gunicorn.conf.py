@@ -27,7 +27,7 @@ os.environ["WEB_CONCURRENCY"] = str(workers)
 preload_app = True
 
 worker_connections = int(os.environ.get("LOOPSLACK_CONNECTIONS") or 256)
-backlog = 512
+backlog = 2048  # a connection that finds the queue full is tried again by its system after 1, 3, 7 and 15 s
 timeout = 30  # a worker whose event loop stands still this long is replaced
 graceful_timeout = 20
 # Must differ from the idle limit of a proxy in front, which should be the shorter one.

@@ -23,7 +23,7 @@ import pytest
 from faults.server import ROOT, Server, serving
 from load.client import Report, Target, closed_loop, open_loop
 from load.questions import Corpus, drawn
-from load.server_facts import children, descriptors, proportional_memory
+from load.server_facts import children, descriptors, never_accepted, proportional_memory
 
 QUIET = {"LOOPSLACK_ACCESS_LOG": "false"}
 """Every limit stays as it is delivered. On a machine with other work some requests are then refused with 503, which is
@@ -242,9 +242,14 @@ def test_ten_times_too_much_is_refused_early_and_soon_forgotten(
         target = designs(server, corpus)
         capacity = asyncio.run(closed_loop(target, 2, 3)).rate
         rate = min(10.0 * capacity, 1500.0)
+        before = never_accepted()
         flood = under_load(target, rate, 4)
+        turned_away = never_accepted() - before
         tell(capsys, f"flood of {rate:.0f}/s for 4 s, {rate / capacity:.1f} times the capacity", flood)
-        assert (flood.failed, flood.wrong) == (0, 0)
+        with capsys.disabled():
+            print(f"times the system turned one of them away before the service could see it: {turned_away}")
+        assert flood.wrong == 0
+        assert flood.failed <= turned_away, "lost by the service itself"
         assert set(flood.statuses) == {200, 503}
         assert len(flood.refused) > len(flood.served)
         wait_for(lambda: under_load(target, 5, 1).statuses[200] == 5)

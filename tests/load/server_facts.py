@@ -46,6 +46,16 @@ def processor_seconds(worker: int) -> float:
     )
 
 
+def never_accepted() -> int:
+    """Connections the system turned away so far because a queue of those to be accepted was full."""
+    names, values = [
+        line.split()
+        for line in Path("/proc/net/netstat").read_text().splitlines()
+        if line.startswith("TcpExt:")
+    ]
+    return int(values[names.index("ListenDrops")])
+
+
 def pin(process: int, cores: set[int]) -> None:
     """Keep a process, and what it starts later, on some cores, where there are that many."""
     present = os.sched_getaffinity(0)
