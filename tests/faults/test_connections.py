@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import json
+import os
+import signal
 import socket
 import time
 from collections.abc import Iterator
@@ -167,6 +169,19 @@ def test_a_connection_beyond_the_limit_is_refused_with_503_and_room_comes_back(s
     with server.connect() as connection:
         connection.sendall(REQUEST)
         assert read_answer(connection).startswith(b"HTTP/1.1 200 ")
+
+
+def test_as_many_connections_may_wait_as_are_configured(tmp_path: Path) -> None:
+    with serving(tmp_path, "faults.small_app:app") as started:
+        time.sleep(1.2)  # the worker sets the length of the queue with its first sign of life
+        [worker] = started.workers()
+        os.kill(worker, signal.SIGSTOP)
+        try:
+            waiting = [started.connect(timeout=2.0) for _ in range(400)]
+        finally:
+            os.kill(worker, signal.SIGCONT)
+        for connection in waiting:
+            connection.close()
 
 
 def test_of_many_connections_at_once_each_is_answered(server: Server) -> None:

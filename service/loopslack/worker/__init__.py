@@ -47,6 +47,7 @@ class Worker(gasgi.ASGIWorker):
         super().__init__(*args, **kwargs)
         self.limits = Limits()
         self.connections: set[GuardedProtocol] = set()
+        self._listens = False
 
     def load_wsgi(self) -> None:
         """Load the application, and let it fork what it needs while there is no event loop to be forked with."""
@@ -59,7 +60,15 @@ class Worker(gasgi.ASGIWorker):
         """Say once a second that the worker lives, or stop where it has lost what it cannot get again."""
         if READINESS.failure:
             self.handle_exit_signal()
+        if not self._listens:
+            self._listen_as_configured()
         super().notify()
+
+    def _listen_as_configured(self) -> None:
+        """Let as many connections wait as `backlog` says: the event loop has just cut the queue to a hundred."""
+        for listener in self.sockets:
+            listener.sock.listen(self.cfg.backlog)
+        self._listens = True
 
     def handle_exit_signal(self) -> None:
         """Stop gracefully: requests finish, and idle kept-alive connections do not hold the stop up."""
