@@ -12,7 +12,7 @@ cd "$(dirname "$0")/.." || exit 1
 . deploy/environment.sh
 
 basic_stages="format lint types floors tests connections contract build"
-further_stages="shell deployment contract-lint clients fuzz-live browser faults load container"
+further_stages="shell deployment remedies extremes contract-lint clients fuzz-live browser faults load container"
 
 stage_format() { ruff format --check --quiet . || ruff format --diff --quiet .; }
 stage_lint() { ruff check --quiet .; }
@@ -29,6 +29,8 @@ stage_build() { sh tests/build.sh; }
 
 stage_shell() { sh tests/deployment/shell.sh; }
 stage_deployment() { sh tests/deployment/run.sh; }
+stage_remedies() { python tests/calc/remedies/thousand.py; }
+stage_extremes() { python tests/calc/extreme/hunt.py 0 2000; }
 stage_contract_lint() { with_node sh tests/contract/lint.sh; }
 stage_clients() { with_node sh tests/contract/clients/run.sh; }
 stage_fuzz_live() { python tests/with_service.py sh tests/live/fuzz.sh URL; }
