@@ -70,10 +70,9 @@ def started(
 ) -> subprocess.Popen[bytes]:
     """The service, started by the unit's command line; what exists only where it is installed is taken from here."""
     (line,) = unit["ExecStart"]
-    here = {"/opt/loopslack/bin/": f"{programs}/", "/etc/loopslack/": f"{ROOT}/deploy/"}
-    for there, place in here.items():
-        assert there in line, f"ExecStart names nothing in {there}"
-        line = line.replace(there, place)
+    program, option, configuration = shlex.split(line)
+    assert (Path(program).name, option) == ("gunicorn", "--config"), f"ExecStart is another command: {line}"
+    command = [str(programs / "gunicorn"), option, str(ROOT / "deploy" / Path(configuration).name)]
     environment = dict(setting.split("=", 1) for setting in unit["Environment"])
     environment |= {
         "LOOPSLACK_BIND": f"127.0.0.1:{port}",
@@ -91,9 +90,9 @@ def started(
             refused = ctypes.CDLL(None).prctl(PR_SET_MDWE, MDWE_REFUSE_EXEC_GAIN, 0, 0, 0)
             assert refused == 0, "the kernel is older than 6.3 and cannot refuse memory written and executed"
 
-    command = ["unshare", "--mount", "sh", "-c", LOCKED, "sh", str(record.parent), str(record)]
+    locked = ["unshare", "--mount", "sh", "-c", LOCKED, "sh", str(record.parent), str(record)]
     # there is one thread here
-    return subprocess.Popen([*command, *shlex.split(line)], cwd="/", env=environment, preexec_fn=limited)  # noqa: PLW1509
+    return subprocess.Popen([*locked, *command], cwd="/", env=environment, preexec_fn=limited)  # noqa: PLW1509
 
 
 def becomes(fact: Callable[[], bool], seconds: float = 60.0) -> None:
