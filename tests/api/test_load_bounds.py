@@ -119,13 +119,13 @@ def test_of_many_costly_questions_those_beyond_the_places_are_refused_at_once():
 
 def test_past_the_deadline_the_work_is_ended_and_its_place_is_free():
     async def late():
-        with small_app(costly_waiting=0, deadline_seconds=0.2) as costly:
+        with small_app(costly_waiting=0, deadline_seconds=1.0) as costly:
             began = time.perf_counter()
             for _ in range(2):
                 with pytest.raises(Refused) as refused:
                     await costly.ask("endless", GOOD_BODY)
                 assert refused.value.kind.slug == "deadline-passed"
-            assert time.perf_counter() - began > 0.4
+            assert time.perf_counter() - began > 2.0
             return (await costly.ask("double", GOOD_BODY)).sent
 
     assert asyncio.run(late()) == b'{"double":12.0}'
