@@ -2,6 +2,8 @@
 
 from typing import TypedDict
 
+from msgspec.structs import replace
+
 from loopslack.calc.band import band
 from loopslack.calc.design import Design
 from loopslack.calc.existing import Checked
@@ -84,7 +86,7 @@ def remedies_of_design(reading: Reading, found: Design, asked: Asked) -> Remedie
     """What would make a design hold, if wanted."""
     if not wants_remedies(reading, found.judgement):
         return None
-    case = case_of_design(found)
+    case = replace(case_of_design(found), strength=reading.strength)
     sought = finished(remedies(case, Bench()))
     return write_remedies.RemedyWriter(case, asked, reading.write).remedies(sought)
 
@@ -97,6 +99,7 @@ def remedies_of_check(asked: CheckReading, found: Checked, pieces: int) -> Remed
     case = case_of_vessel(
         reading.loop, asked.vessel, pieces, reading.policy, fill_pressure=asked.fill_pressure
     )
+    case = replace(case, strength=reading.strength)
     sought = finished(remedies(case, Bench()))
     return write_remedies.RemedyWriter(case, Asked("check"), reading.write).remedies(sought)
 

@@ -36,7 +36,7 @@ class RemedyStep(AnswerPart, frozen=True, kw_only=True):
     """One measure with its smallest amount."""
 
     code: Annotated[RemedyCode, text("The measure.", "stagnation-cooler")]
-    rank: Annotated[int, text("Place by how small the intervention is, 1 being the smallest.", 9)]
+    rank: Annotated[int, text("Place by how small the intervention is, 1 being the smallest.", 11)]
     sentence: Annotated[str, text("What to do.", "Fit a stagnation cooler of 565 W at the station.")]
     amount: Annotated[
         AnyQuantity, text("The smallest amount that does, moved to the safe side by a practical step.")

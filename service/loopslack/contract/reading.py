@@ -11,6 +11,7 @@ from msgspec import Struct
 from loopslack.calc.fluids_base import Fluid
 from loopslack.calc.judgement import DoubtPolicy
 from loopslack.calc.model import Loop, Part, Precharge, Sun, Temperatures
+from loopslack.calc.remedies.case import Strength
 from loopslack.contract import questions as asked
 from loopslack.contract.fields import field_of
 from loopslack.contract.questions_criteria import Extra
@@ -19,7 +20,7 @@ from loopslack.contract.questions_vessels import CoolingVessel, CoolingVesselGiv
 from loopslack.contract.questions_vessels import Precharge as AskedPrecharge
 from loopslack.contract.reader import Assumed, Provisional, Reader
 from loopslack.contract.reading_again import refusing
-from loopslack.contract.reading_fluid import read_fluid
+from loopslack.contract.reading_fluid import read_fluid, stated_strength
 from loopslack.contract.reading_heat import read_sun
 from loopslack.contract.reading_layout import Ends, read_branches, read_groups, read_top
 from loopslack.contract.reading_plant import (
@@ -58,7 +59,7 @@ class Reading(Struct, frozen=True, kw_only=True):
     """A question in SI and what reading it brought to light.
 
     ``cooling`` says whether the cooling vessel in ``loop`` is given, ruled out or still to be sized; ``include`` is
-    None when the caller left it open which costly parts to compute.
+    None when the caller left it open which costly parts to compute. ``strength`` is how the fluid states its glycol.
     """
 
     loop: Loop
@@ -67,6 +68,7 @@ class Reading(Struct, frozen=True, kw_only=True):
     accept_without_boiling: bool
     include: frozenset[Extra] | None
     system: System
+    strength: Strength
     books: Reader
 
     @property
@@ -104,6 +106,7 @@ def read_loop(question: asked.LoopQuestion, reader: Reader) -> Reading:
         accept_without_boiling=accept,
         include=None if question.include is None else frozenset(question.include),
         system=question.units or "metric",
+        strength=stated_strength(question.fluid),
         books=reader,
     )
 

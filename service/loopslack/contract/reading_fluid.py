@@ -11,6 +11,7 @@ from loopslack.calc.fluid import (
     water,
 )
 from loopslack.calc.fluids_base import Fluid
+from loopslack.calc.remedies.case import Strength
 from loopslack.contract import questions_fluid as asked
 from loopslack.contract.fields import field_of
 from loopslack.contract.reader import Reader
@@ -43,6 +44,15 @@ def read_fluid(reader: Reader, fluid: asked.Fluid, place: str) -> Fluid:
         reader.refuse(error, error.pointer or f"{place}/concentration")  # the own fluid points at its tables
         return _any_fluid(reader)
     return water()
+
+
+def stated_strength(fluid: asked.Fluid) -> Strength:
+    """How the strength is stated; by mass for a fluid that states none."""
+    if not isinstance(fluid, asked.PropyleneGlycol | asked.EthyleneGlycol):
+        return "by-mass"
+    if isinstance(fluid.concentration, asked.ByVolume):
+        return "by-volume"
+    return "protect-to" if isinstance(fluid.concentration, asked.ProtectTo) else "by-mass"
 
 
 def _any_fluid(reader: Reader) -> Fluid:

@@ -11,6 +11,7 @@ from typing import Literal, NamedTuple
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.checks import pressure_to_withstand
 from loopslack.calc.model import Branch, Loop, Vessel
+from loopslack.calc.remedies.case import Strength
 from loopslack.calc.remedies.changes import SHORTEST, VESSEL, Change, ChangeId
 from loopslack.contract.answers_common import AnyQuantity
 from loopslack.contract.answers_remedies import QuestionChange
@@ -21,6 +22,11 @@ from loopslack.kernel.kinds import Kind
 from loopslack.kernel.units import from_si
 
 _RATING_STEP = 0.5e5
+_STRENGTHS: dict[Strength, tuple[str, Kind]] = {
+    "by-mass": ("share", kinds.MASS_FRACTION),
+    "by-volume": ("share", kinds.VOLUME_FRACTION),
+    "protect-to": ("temperature", kinds.TEMPERATURE),
+}
 
 
 class Asked(NamedTuple):
@@ -81,10 +87,13 @@ class _Told:
             yield from self._one("/precharge/temperature", temperature, kinds.TEMPERATURE)
 
     def _glycol(self, change: Change) -> Iterator[QuestionChange]:
-        yield _remove("/fluid")
-        yield _word("/fluid/kind", change.glycol or "propylene-glycol")
-        yield _word("/fluid/concentration/kind", "by-mass")
-        yield from self._one("/fluid/concentration/share", change.value, kinds.MASS_FRACTION)
+        """Stated as it was; only a loop of water gets another fluid."""
+        if change.glycol != self.loop.fluid.kind:
+            yield _remove("/fluid")
+            yield _word("/fluid/kind", change.glycol or "propylene-glycol")
+            yield _word("/fluid/concentration/kind", change.strength)
+        member, kind = _STRENGTHS[change.strength]
+        yield from self._one(f"/fluid/concentration/{member}", change.value, kind)
 
     def _vessel(self, change: Change) -> Iterator[QuestionChange]:
         vessel: Vessel = change.vessels[0]

@@ -10,7 +10,7 @@ from loopslack.calc.model import Loop
 from loopslack.calc.remedies.case import Case
 from loopslack.calc.remedies.changes import changed
 from loopslack.calc.remedies.heat import Emptying
-from loopslack.calc.remedies.measure import Found, RemedyCode
+from loopslack.calc.remedies.measure import Found
 from loopslack.calc.remedies.pairs import Pair
 from loopslack.calc.remedies.robust import RobustCooler as FoundCooler
 from loopslack.calc.remedies.seek import Remedies as FoundRemedies
@@ -18,6 +18,7 @@ from loopslack.contract import answers_remedies as out
 from loopslack.contract.answers_common import AnyQuantity, Caution
 from loopslack.contract.answers_loop import VesselResult
 from loopslack.contract.quantity import Pressure
+from loopslack.contract.remedy_words import CAUTIONS, SENTENCES
 from loopslack.contract.units_out import Writer
 from loopslack.contract.writing_changes import Asked, question_changes
 from loopslack.contract.writing_common import any_quantity
@@ -25,64 +26,7 @@ from loopslack.contract.writing_loop import Pressures
 from loopslack.contract.writing_loop import vessel as write_vessel
 from loopslack.kernel import kinds
 
-_SENTENCES: dict[RemedyCode, str] = {
-    "fill-pressure": "Fill to {amount}{instead}.",
-    "precharge": "Set the precharge of the empty vessel to {amount}{instead}.",
-    "cut-off": "Let the controller stop the pump at {amount}{instead}.",
-    "stronger-glycol": "Use {amount} of glycol{instead}.",
-    "vessel": "Take an expansion vessel of at least {amount}{instead}{article}.",
-    "cooling-vessel": "Put a cooling vessel of {amount}{instead} before the expansion vessel, uninsulated.",
-    "relief-valve": "Take a relief valve with a set pressure of {amount}{instead}.",
-    "part-rating": "Take parts rated for {amount}{instead}: {parts}.",
-    "stagnation-cooler": "Fit a stagnation cooler at the station that takes {amount} from steam{instead}.",
-    "open-run": "Place the check valve so that steam can push liquid down {runs} ({amount}).",
-    "bare-pipe": "Leave {amount} of pipe before the station bare, in {runs}.",
-    "bare-run": "Take the insulation off {runs} ({amount}).",
-    "extra-pipe": "Lay {amount} more pipe before the station, in {runs}.",
-}
-
-# Common practice, no source.
-_REFILL = ("refill", "The loop must be emptied for it and filled anew, cold and covered.")
-_HOT = (
-    "hot-surfaces",
-    "Bare pipe reaches the temperature of steam: guard it against touch and keep it from what burns.",
-)
-_LOSS = ("heat-loss", "Bare pipe loses heat in operation too.")
-_VALVE = (
-    "relief-size",
-    "Check the valve's nominal size and its discharge anew; all parts must bear the set pressure.",
-)
-_CAUTIONS: dict[RemedyCode, tuple[tuple[str, str], ...]] = {
-    "fill-pressure": (("fill-covered", "Fill only with the collectors covered or cold."),),
-    "precharge": (("empty-vessel", "Set the precharge with the vessel empty of liquid and cold."), _REFILL),
-    "cut-off": (("operation", "The pump must still run at the temperatures the store is to reach."),),
-    "stronger-glycol": (("viscosity", "A stronger mixture is more viscous: check pump and flow."), _REFILL),
-    "vessel": (_REFILL,),
-    "cooling-vessel": (("uninsulated", "It stays uninsulated and is entered from the top."), _REFILL),
-    "relief-valve": (_VALVE, _REFILL),
-    "part-rating": (
-        ("data-sheet", "Only a maker's stated rating counts, at the temperature of the place."),
-        _REFILL,
-    ),
-    "stagnation-cooler": (
-        (
-            "capacity",
-            "Its capacity must be stated at the temperature of steam, without flow and on a hot day.",
-        ),
-        _HOT,
-        _REFILL,
-    ),
-    "open-run": (
-        (
-            "night-circulation",
-            "Without a check valve in its old place the loop may circulate at night: place one elsewhere.",
-        ),
-        _REFILL,
-    ),
-    "bare-pipe": (_HOT, _LOSS),
-    "bare-run": (_HOT, _LOSS),
-    "extra-pipe": (("pump-head", "More pipe costs pump head and heat: check the pump."), _REFILL),
-}
+_SHARES = {"mass-percent": "% by mass", "volume-percent": "% by volume"}
 
 
 class RemedyWriter:
@@ -101,10 +45,16 @@ class RemedyWriter:
             pair=None if found.pair is None else self._pair(found.pair),
             to_be_proved=[] if found.emptying is None else [self._emptying(found.emptying)],
             none_found=none_found,
-            summary=summary(found),
+            summary=summary(found) + self._first(found),
             evaluations=found.evaluations,
             complete=found.complete,
         )
+
+    def _first(self, found: FoundRemedies) -> str:
+        """That a look comes before any work, where one is offered."""
+        offered = (*found.single, *(found.pair or ()))
+        look = any(to_be_seen(one, self.loop) for one in offered)
+        return " Look where the check valve sits before anything is bought." if look else ""
 
     def _single(self, found: Found) -> out.Remedy:
         fitted, judgement = found.outcome.fitted, found.outcome.judgement
@@ -148,14 +98,22 @@ class RemedyWriter:
             "runs": self._runs(found),
             "parts": self._parts(found),
         }
+        key = self._key(found)
+        cautions = CAUTIONS.get(key, CAUTIONS.get(found.code, ()))
         return out.RemedyStep(
             code=found.code,
             rank=found.rank,
-            sentence=_SENTENCES[found.code].format(**words),
+            sentence=SENTENCES[key].format(**words),
             amount=amount,
             present=present,
-            cautions=[Caution(code=code, message=message) for code, message in _CAUTIONS[found.code]],
+            cautions=[Caution(code=code, message=message) for code, message in cautions],
         )
+
+    def _key(self, found: Found) -> str:
+        """The code, told apart where one measure is two things to do."""
+        if found.code == "stronger-glycol" and self.case.strength == "protect-to":
+            return "stronger-glycol-protecting"
+        return "open-run-unknown" if to_be_seen(found, self.loop) else found.code
 
     def _quantity(self, si: float, found: Found) -> AnyQuantity:
         if found.kind is kinds.ABSOLUTE_PRESSURE:
@@ -211,6 +169,12 @@ class RemedyWriter:
         )
 
 
+def to_be_seen(found: Found, loop: Loop) -> bool:
+    """Whether a measure is, in the first place, a look at a check valve nobody has placed."""
+    places = [change.place for change in found.changes if change.id == "steam-access"]
+    return found.code == "open-run" and all(loop.branches[k].access == "unknown" for k in places)
+
+
 def summary(found: FoundRemedies) -> str:
     """The outcome in a sentence."""
     bounded = "" if found.complete else " The search was cut short by its bound of work."
@@ -248,5 +212,4 @@ def robust_cooler(found: FoundCooler, write: Writer) -> out.RobustCooler:
 
 
 def _say(quantity: AnyQuantity) -> str:
-    unit = "% by mass" if quantity.unit == "mass-percent" else quantity.unit
-    return f"{quantity.value:.4g} {unit}"
+    return f"{quantity.value:.4g} {_SHARES.get(quantity.unit, quantity.unit)}"

@@ -61,6 +61,19 @@ def designs() -> dict[str, Q]:
         "poor emptying": _with(house, POOR),
         "low valve": _with(house, FAIR, ("/reliefValve/setPressure", _bar(4))),
         "too weak a mixture": _with(house, ("/site/coldestOutdoorTemperature/value", -28)),
+        "too weak a mixture by mass": _with(
+            house,
+            ("/site/coldestOutdoorTemperature/value", -28),
+            ("/fluid/concentration", {"kind": "by-mass", "share": {"value": 43, "unit": "mass-percent"}}),
+        ),
+        "too weak a mixture by protection": _with(
+            house,
+            ("/site/coldestOutdoorTemperature/value", -28),
+            ("/fluid/concentration", {"kind": "protect-to", "temperature": {"value": -25, "unit": "degC"}}),
+        ),
+        "no glycol": _with(
+            house, ("/site/coldestOutdoorTemperature/value", -10), ("/fluid", {"kind": "water"})
+        ),
         "weak collectors": _with(house, ("/collectors/0/ratedPressure", _bar(4))),
         "weak listed part": _with(
             house,
@@ -82,6 +95,17 @@ def designs() -> dict[str, Q]:
         "shut return": _with(house, POOR, ("/pipeRuns/1/steamAccess", "closed")),
         "unknown check valve": _with(
             house, FAIR, ("/pipeRuns/1/steamAccess", "unknown"), ("/reliefValve/setPressure", _bar(5))
+        ),
+        "check valve to look at": _with(
+            house, FAIR, ("/pipeRuns/1/steamAccess", "unknown"), ("/reliefValve/setPressure", _bar(5.5))
+        ),
+        "check valve to move": _with(house, FAIR, ("/pipeRuns/1/steamAccess", "closed")),
+        "freezing and an unknown check valve": _with(
+            house,
+            FAIR,
+            ("/site/coldestOutdoorTemperature/value", -28),
+            ("/pipeRuns/1/steamAccess", "unknown"),
+            ("/reliefValve/setPressure", _bar(5)),
         ),
         "high precharge": _with(house, FAIR, ("/precharge", {"kind": "stated", "pressure": _bar(4.2)})),
         "late cut-off": _with(house, ("/station/highestTemperature", {"value": 110, "unit": "degC"})),

@@ -5,6 +5,7 @@ from copy import deepcopy
 from typing import Any, NamedTuple
 
 import msgspec
+from msgspec.structs import replace
 
 from loopslack.calc.design import Request, design
 from loopslack.calc.remedies.bench import Bench
@@ -76,6 +77,7 @@ def remedies_of_design(question: dict[str, Any]) -> Sought:
             ),
         )
     )
+    case = replace(case, strength=reading.strength)
     stock = len(choice.vessels) if choice.kind == "stock" else 0
     found = finished(remedies(case, Bench()))
     told = RemedyWriter(case, Asked("design", stock), reading.write).remedies(found)
@@ -94,6 +96,7 @@ def remedies_of_check(question: dict[str, Any]) -> Sought:
         reading.policy,
         fill_pressure=read.fill_pressure,
     )
+    case = replace(case, strength=reading.strength)
     found = finished(remedies(case, Bench()))
     told = RemedyWriter(case, Asked("check"), reading.write).remedies(found)
     return Sought(verdict_of_check(question), case, found, told)

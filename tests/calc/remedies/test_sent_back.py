@@ -131,6 +131,63 @@ def test_a_pair_is_told_only_where_no_single_measure_does(sought):
     assert sought["poor emptying"].told.pair is None
 
 
+@pytest.mark.parametrize(
+    ("name", "field", "unit", "words"),
+    [
+        ("too weak a mixture", "share", "volume-percent", "% by volume of glycol instead of 42 % by volume."),
+        (
+            "too weak a mixture by mass",
+            "share",
+            "mass-percent",
+            "% by mass of glycol instead of 43 % by mass.",
+        ),
+        ("too weak a mixture by protection", "temperature", "degC", "degC instead of -25 degC."),
+    ],
+)
+def test_a_stronger_mixture_is_stated_as_the_caller_states_it(name, field, unit, words, sought):
+    remedy = next(one for one in sought[name].told.single if one.code == "stronger-glycol")
+    assert [step.field for step in remedy.changes] == [f"/fluid/concentration/{field}"]
+    assert remedy.changes[0].value == remedy.amount
+    assert (remedy.amount.unit, remedy.present.unit) == (unit, unit)
+    assert remedy.sentence.endswith(words)
+    steps = remedy.amount.value * (2 if unit == "degC" else 10)
+    assert steps == pytest.approx(round(steps), abs=1e-6)
+
+
+def test_a_loop_of_water_gets_another_fluid(sought):
+    changes = next(one for one in sought["no glycol"].told.single if one.code == "stronger-glycol").changes
+    assert next(step.field for step in changes) == "/fluid"
+    assert [step.word for step in changes if step.word] == ["propylene-glycol", "by-mass"]
+
+
+def test_a_look_at_the_check_valve_comes_before_everything_else(sought):
+    found = sought["check valve to look at"]
+    look = found.told.single[0]
+    assert (look.code, look.rank) == ("open-run", 1)
+    assert "stagnation-cooler" in {one.code for one in found.told.single[1:]}
+    assert look.sentence.startswith("First look where the check valve sits.")
+    assert "place the check valve so that it can" in look.sentence
+    assert "unseen" in {caution.code for caution in look.cautions}
+    assert [(step.field, step.word) for step in look.changes] == [("/pipeRuns/1/steamAccess", "open")]
+    assert "before anything is bought" in found.told.summary
+    assert found.verdict != "holds"
+
+
+def test_a_look_is_the_first_of_a_pair(sought):
+    steps = sought["freezing and an unknown check valve"].told.pair.steps
+    assert [step.code for step in steps] == ["open-run", "stronger-glycol"]
+
+
+def test_a_check_valve_is_moved_before_a_cooler_is_bought(sought):
+    told = sought["check valve to move"].told
+    codes = [one.code for one in told.single]
+    assert codes.index("open-run") < codes.index("stagnation-cooler")
+    assert next(one for one in told.single if one.code == "open-run").sentence.startswith(
+        "Place the check valve"
+    )
+    assert "before anything is bought" not in told.summary
+
+
 def test_bare_pipe_carries_the_touch_caution(sought):
     bare = [r for r in sought["poor emptying"].told.single if r.code in {"bare-pipe", "bare-run"}]
     assert len(bare) == 2

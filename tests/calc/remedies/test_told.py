@@ -1,5 +1,7 @@
 """Discharges and the robust cooler, told in the caller's units."""
 
+from typing import get_args
+
 import msgspec
 import pytest
 
@@ -10,9 +12,11 @@ from loopslack.calc.design import Request, design
 from loopslack.calc.discharge import discharge
 from loopslack.calc.model import Vessel
 from loopslack.calc.precharge import gas_of
+from loopslack.calc.remedies.measure import RemedyCode
 from loopslack.calc.remedies.robust import cooler_for_robust
 from loopslack.calc.scenarios import BASE
 from loopslack.calc.window import Bounds
+from loopslack.contract.remedy_words import CAUTIONS, SENTENCES
 from loopslack.contract.units_out import METRIC, US
 from loopslack.contract.writing_discharge import discharges
 from loopslack.contract.writing_remedies import robust_cooler
@@ -23,6 +27,13 @@ def _charged(litres, fill=1.92):
     analysis = Analysis(loop())
     gas = gas_of(analysis, Vessel(id="v", nominal_volume=litres * 1e-3), 1)
     return analysis, gas, Bounds(analysis, (), gas).mass(gas.nominal, ATMOSPHERE + fill * BAR)
+
+
+def test_every_way_to_put_a_measure_has_its_sentence_and_its_cautions():
+    codes = set(get_args(RemedyCode))
+    own = {"open-run-unknown", "stronger-glycol-protecting"}
+    assert set(SENTENCES) == codes | own
+    assert set(CAUTIONS) == codes | {"open-run-unknown"}
 
 
 def test_discharges_are_told_for_every_case_in_which_the_valve_opens_and_no_other():

@@ -6,7 +6,7 @@ is there. Frozen, so that a remedy never changes the case it was sought for.
 
 from collections.abc import Sequence
 from math import inf, log
-from typing import NamedTuple
+from typing import Literal, NamedTuple
 
 from msgspec import Struct
 
@@ -17,6 +17,9 @@ from loopslack.calc.judgement import DoubtPolicy, Judgement
 from loopslack.calc.model import Loop, Vessel
 from loopslack.calc.sizing.volumes import CoolingMode
 
+Strength = Literal["by-mass", "by-volume", "protect-to"]
+"""How the strength of a glycol is stated: a share, or the temperature (K) down to which no ice forms."""
+
 _MOST_CANDIDATES = 40
 _STEP = log(1.1)
 
@@ -26,7 +29,7 @@ class Case(Struct, frozen=True, kw_only=True):
 
     With ``existing`` the only candidate is the vessel that is there, ``pieces`` of it, filled to ``fill_pressure``
     (Pa absolute), with ``mass`` kg, or as recommended. Without, up to ``pieces`` of one candidate are chosen;
-    ``thinned`` says that ``candidates`` stand for a longer list.
+    ``thinned`` says that ``candidates`` stand for a longer list. ``strength`` is how another mixture is to be stated.
     """
 
     loop: Loop
@@ -39,6 +42,7 @@ class Case(Struct, frozen=True, kw_only=True):
     fill_pressure: float | None = None
     mass: float | None = None
     thinned: bool = False
+    strength: Strength = "by-mass"
 
     @property
     def request(self) -> Request:

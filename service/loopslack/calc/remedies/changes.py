@@ -9,9 +9,9 @@ from typing import Literal, NamedTuple
 
 from msgspec.structs import replace
 
-from loopslack.calc.fluid import glycol
+from loopslack.calc.fluid import Fluid, glycol, glycol_by_volume, glycol_protecting_to
 from loopslack.calc.model import Branch, Precharge, Relief, Segment, Vessel
-from loopslack.calc.remedies.case import Case
+from loopslack.calc.remedies.case import Case, Strength
 from loopslack.kernel.kinds import Conductivity, GaugePressure, HeatLossCoefficient, Length
 from loopslack.library.defaults import default
 from loopslack.library.fluids import GlycolKind
@@ -47,8 +47,8 @@ class Change(NamedTuple):
     """One change of a case: ``value`` in SI, pressures of gas and filling absolute, set and rated ones gauge.
 
     ``place`` is the index of the branch or the part concerned; ``vessels`` are the new ones to choose from, up to
-    ``pieces`` of one; ``glycol`` is the kind of glycol. ``value`` of a pipe is the metres bared or added before the
-    station.
+    ``pieces`` of one; ``glycol`` is its kind and ``strength`` what ``value`` says of it. ``value`` of a pipe is
+    the metres bared or added before the station.
     """
 
     id: ChangeId
@@ -57,6 +57,7 @@ class Change(NamedTuple):
     vessels: tuple[Vessel, ...] = ()
     pieces: int = 1
     glycol: GlycolKind | None = None
+    strength: Strength = "by-mass"
 
 
 def changed(case: Case, changes: Sequence[Change]) -> Case:
@@ -87,7 +88,7 @@ def _cut_off(case: Case, change: Change) -> Case:
 
 
 def _glycol(case: Case, change: Change) -> Case:
-    return _with_loop(case, fluid=glycol(change.glycol or "propylene-glycol", change.value))
+    return _with_loop(case, fluid=mixture(change.glycol or "propylene-glycol", change.strength, change.value))
 
 
 def _vessel(case: Case, change: Change) -> Case:
@@ -149,6 +150,13 @@ _APPLY: dict[ChangeId, Callable[[Case, Change], Case]] = {
     "bare-pipe": _bare,
     "extra-pipe": _extra,
 }
+
+
+def mixture(kind: GlycolKind, strength: Strength, value: float) -> Fluid:
+    """A glycol by a share of its mass or volume, or by the temperature (K) it protects to."""
+    if strength == "by-volume":
+        return glycol_by_volume(kind, value)
+    return glycol_protecting_to(kind, value) if strength == "protect-to" else glycol(kind, value)
 
 
 def valve_set_to(relief: Relief, set_pressure: float) -> Relief:

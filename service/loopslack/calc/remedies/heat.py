@@ -29,7 +29,7 @@ class StagnationCooler(Measure):
     """A cooler that takes heat from the steam before it reaches the station, stated at the steam's temperature."""
 
     code = "stagnation-cooler"
-    rank = 9
+    rank = 11
     any_value = True
     finest = 1.0
     kind = kinds.POWER

@@ -16,7 +16,7 @@ from loopslack.kernel.work import Work
 
 _STEP = 0.5e5  # Pa, of set pressures and ratings
 _HIGHEST = 16e5
-_ALIKE = ({"bare-pipe", "bare-run", "extra-pipe"}, {"relief-valve"})
+_ALIKE = ({"bare-pipe", "bare-run", "extra-pipe"}, {"relief-valve"}, {"open-run"})
 
 
 class Pair(NamedTuple):

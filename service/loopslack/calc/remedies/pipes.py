@@ -17,34 +17,58 @@ from loopslack.calc.remedies.measure import Measure, Option
 from loopslack.kernel import kinds
 from loopslack.kernel.errors import CalculationError
 
+_ALL = -1.0  # stands for every run
 _BARE_SHARES = (0.1, 0.25, 0.5, 1.0)
 _EXTRA_SHARES = (0.05, 0.1, 0.2, 0.4, 0.7, 1.0)  # no more than the loop already has (own assumption)
 
 
-class OpenRun(Measure):
-    """A check valve placed so that steam can push liquid down a run it could not, or might not, enter."""
+class LookAtRun(Measure):
+    """A look where the check valve sits, by which a run nobody has placed one in turns out to be open.
+
+    Work to be proved, and the least there is: it changes nothing of the loop, and so nothing of its filling. What it is
+    judged with is the loop as it then would be known.
+    """
 
     code = "open-run"
-    rank = 10
+    rank = 1
+    refills = False
     kind = kinds.LENGTH
 
     def options(self, case: Case) -> list[Option]:
-        """Each run that is not open, shortest first, then all of them."""
-        shut = _runs(case.loop, lambda branch: branch.access != "open")
-        found = [Option(float(k)) for k in shut]
-        return [*found, Option(-1.0)] if len(shut) > 1 else found
+        """Each run of which it is not known, shortest first, then all of them."""
+        runs = self._runs(case)
+        found = [Option(float(k)) for k in runs]
+        return [*found, Option(_ALL)] if len(runs) > 1 else found
 
     def own_changes(self, case: Case, amount: float) -> tuple[Change, ...]:
         """Runs opened."""
-        return tuple(Change("steam-access", place=k) for k in self._chosen(case, amount))
+        chosen = self._runs(case) if amount < 0 else [int(amount)]
+        return tuple(Change("steam-access", place=k) for k in chosen)
 
     def shown(self, case: Case, amount: float) -> float:
         """Length of the runs opened, m."""
-        return sum(case.loop.branches[k].length for k in self._chosen(case, amount))
+        return sum(case.loop.branches[change.place].length for change in self.own_changes(case, amount))
 
-    def _chosen(self, case: Case, amount: float) -> list[int]:
-        if amount >= 0:
-            return [int(amount)]
+    def _runs(self, case: Case) -> list[int]:
+        return _runs(case.loop, lambda branch: branch.access == "unknown")
+
+
+class OpenRun(LookAtRun):
+    """A check valve placed so that steam can push liquid down a run it cannot enter.
+
+    A run of which it is not known is opened along with those that are shut, and alone by a look first.
+    """
+
+    rank = 10
+    refills = True
+
+    def options(self, case: Case) -> list[Option]:
+        """Each run that is shut, shortest first, then all that are not open."""
+        shut = _runs(case.loop, lambda branch: branch.access == "closed")
+        found = [Option(float(k)) for k in shut]
+        return [*found, Option(_ALL)] if shut and len(self._runs(case)) > 1 else found
+
+    def _runs(self, case: Case) -> list[int]:
         return _runs(case.loop, lambda branch: branch.access != "open")
 
 
@@ -52,7 +76,7 @@ class BarePipe(Measure):
     """Insulation taken off the last metres of every open run before the station."""
 
     code = "bare-pipe"
-    rank = 11
+    rank = 12
     any_value = True
     finest = 0.1
     kind = kinds.LENGTH
@@ -81,7 +105,7 @@ class BareRun(Measure):
     """Insulation taken off a whole run."""
 
     code = "bare-run"
-    rank = 12
+    rank = 13
     kind = kinds.LENGTH
 
     def options(self, case: Case) -> list[Option]:
@@ -103,7 +127,7 @@ class ExtraPipe(Measure):
     """More pipe in every open run, laid level before the station or as a detour on its last stretch."""
 
     code = "extra-pipe"
-    rank = 13
+    rank = 14
     any_value = True
     finest = 0.1
     kind = kinds.LENGTH

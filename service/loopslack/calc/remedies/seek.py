@@ -11,7 +11,7 @@ from loopslack.calc.remedies.case import Case, case_of_design, case_of_vessel
 from loopslack.calc.remedies.heat import Emptying, StagnationCooler, better_emptying
 from loopslack.calc.remedies.measure import Found, Measure
 from loopslack.calc.remedies.pairs import Pair, smallest_pair
-from loopslack.calc.remedies.pipes import BarePipe, BareRun, ExtraPipe, OpenRun
+from loopslack.calc.remedies.pipes import BarePipe, BareRun, ExtraPipe, LookAtRun, OpenRun
 from loopslack.calc.remedies.settings import CutOff, FillPressure, PrechargePressure, StrongerGlycol
 from loopslack.calc.remedies.valve import HigherValve, LowerValve, PartRatings
 from loopslack.calc.remedies.vessels import CoolingVessel, OtherVessel
@@ -37,12 +37,13 @@ class Remedies(NamedTuple):
 def measures(stock: Sequence[Vessel] = (), *, keep_filling: bool = False) -> tuple[Measure, ...]:
     """Every measure but the filling, by how small the intervention is.
 
-    The order is the rank: settings an installer changes (filling, precharge, cut-off) before the fluid, then vessels,
-    valve and parts that are exchanged, then a cooler that is added, then work on the pipes (own assumption, from what
-    each takes in hours and in new parts). With ``keep_filling`` work that opens the loop ends with the stated filling,
-    else with the recommended one.
+    The order is the rank: a look at a valve before anything is touched, settings an installer changes (filling,
+    precharge, cut-off) before the fluid, then vessels, valve and parts that are exchanged, a check valve that is moved,
+    a cooler that is added, and last work on the pipes (own assumption, from what each takes in hours and in new parts).
+    With ``keep_filling`` work that opens the loop ends with the stated filling, else with the recommended one.
     """
     return (
+        LookAtRun(keep_filling=keep_filling),
         PrechargePressure(keep_filling=keep_filling),
         CutOff(keep_filling=keep_filling),
         StrongerGlycol(keep_filling=keep_filling),
@@ -51,8 +52,8 @@ def measures(stock: Sequence[Vessel] = (), *, keep_filling: bool = False) -> tup
         HigherValve(keep_filling=keep_filling),
         LowerValve(keep_filling=keep_filling),
         PartRatings(keep_filling=keep_filling),
-        StagnationCooler(keep_filling=keep_filling),
         OpenRun(keep_filling=keep_filling),
+        StagnationCooler(keep_filling=keep_filling),
         BarePipe(keep_filling=keep_filling),
         BareRun(keep_filling=keep_filling),
         ExtraPipe(keep_filling=keep_filling),
@@ -76,7 +77,8 @@ def remedies(case: Case, bench: Bench, stock: Sequence[Vessel] = ()) -> Work[Rem
     emptying = yield from better_emptying(case, bench)
     pair = None
     if not single:
-        pair = yield from smallest_pair(case, (FillPressure(), *every), bench)
+        ranked = sorted((FillPressure(), *every), key=lambda measure: measure.rank)
+        pair = yield from smallest_pair(case, ranked, bench)
     single.sort(key=lambda found: found.rank)
     return _result(tuple(single), pair, emptying, bench, needed=True)
 

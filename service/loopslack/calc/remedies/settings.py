@@ -5,21 +5,28 @@ from math import ceil, floor
 from msgspec.structs import replace
 
 from loopslack.calc.existing import best_window
-from loopslack.calc.fluid import strength_protecting_to
+from loopslack.calc.fluid import glycol, strength_protecting_to
 from loopslack.calc.fluids_base import ZERO_CELSIUS
 from loopslack.calc.judge import required
 from loopslack.calc.precharge import gas_of
-from loopslack.calc.remedies.case import Case, analysed
-from loopslack.calc.remedies.changes import Change
-from loopslack.calc.remedies.measure import Measure, Option
+from loopslack.calc.remedies.case import Case, Outcome, Strength, analysed
+from loopslack.calc.remedies.changes import Change, mixture
+from loopslack.calc.remedies.measure import Found, Measure, Option
 from loopslack.kernel import kinds
 from loopslack.kernel.errors import CalculationError
+from loopslack.kernel.kinds import Kind
 from loopslack.library.fluids import GlycolKind
 
 _PRESSURE_STEP = 1e3  # Pa: a hundredth of a bar, what a good gauge shows
 _PRECHARGE_STEPS = (0.1e5, 0.3e5, 0.6e5, 1.0e5, 1.5e5, 2.2e5, 3.0e5)
 _ABOVE_FLOW = 10.0  # K a cut-off stays above the design flow, or the loop stops in operation (own assumption)
-_SHARE_STEP = 1e-3  # a tenth of a per cent by mass
+_SHARE_STEP = 1e-3  # a tenth of a per cent
+_PROTECTION_STEP = 0.5  # K
+_KINDS: dict[Strength, Kind] = {
+    "by-mass": kinds.MASS_FRACTION,
+    "by-volume": kinds.VOLUME_FRACTION,
+    "protect-to": kinds.TEMPERATURE,
+}
 _LARGEST_SHARE = 0.6
 
 
@@ -27,7 +34,7 @@ class FillPressure(Measure):
     """Fill to another pressure: the nearest that keeps its distance from both ends of the window."""
 
     code = "fill-pressure"
-    rank = 1
+    rank = 2
     refills = False
     kind = kinds.ABSOLUTE_PRESSURE
 
@@ -78,7 +85,7 @@ class PrechargePressure(Measure):
     """Charge the gas to another pressure, higher or lower, whichever is nearer."""
 
     code = "precharge"
-    rank = 2
+    rank = 3
     any_value = True
     finest = _PRESSURE_STEP
     kind = kinds.ABSOLUTE_PRESSURE
@@ -122,7 +129,7 @@ class CutOff(Measure):
     """Stop the pump at a lower temperature."""
 
     code = "cut-off"
-    rank = 3
+    rank = 4
     any_value = True
     finest = 1.0
     refills = False
@@ -151,29 +158,47 @@ class StrongerGlycol(Measure):
     """As much glycol as the site asks for."""
 
     code = "stronger-glycol"
-    rank = 4
+    rank = 5
     kind = kinds.MASS_FRACTION
 
     def options(self, case: Case) -> list[Option]:
-        """The least share by mass that freezes late enough, where the present fluid does not."""
+        """The weakest mixture that freezes late enough, as it is stated, where the present fluid does not."""
         loop = case.loop
-        wanted = loop.temperatures.site_minimum
-        if loop.fluid.kind == "own" or loop.fluid.freezing_point <= wanted - loop.criteria.freeze_margin:
+        wanted = loop.temperatures.site_minimum - loop.criteria.freeze_margin
+        if loop.fluid.kind == "own" or loop.fluid.freezing_point <= wanted:
             return []
         try:
-            share = strength_protecting_to(_kind_of(case), wanted, loop.criteria.freeze_margin)
+            amount = _stated(case, wanted)
+            share = mixture(_kind_of(case), case.strength, amount).mass_fraction
         except CalculationError:
             return []
-        share = ceil((share + 1e-6) / _SHARE_STEP) * _SHARE_STEP
-        return [Option(share)] if share <= _LARGEST_SHARE else []
+        return [Option(amount)] if share <= _LARGEST_SHARE else []
 
     def own_changes(self, case: Case, amount: float) -> tuple[Change, ...]:
         """A new mixture."""
-        return (Change("glycol", amount, glycol=_kind_of(case)),)
+        return (Change("glycol", amount, glycol=_kind_of(case), strength=case.strength),)
 
     def present(self, case: Case) -> float:
-        """The present share by mass."""
-        return case.loop.fluid.mass_fraction
+        """The present strength, as it is stated."""
+        fluid = case.loop.fluid
+        if case.strength == "protect-to":
+            return fluid.freezing_point
+        return fluid.volume_fraction if case.strength == "by-volume" else fluid.mass_fraction
+
+    def found(self, case: Case, amount: float, outcome: Outcome) -> Found:
+        """The amount is of the kind in which the strength is stated."""
+        return super().found(case, amount, outcome)._replace(kind=_KINDS[case.strength])
+
+
+def _stated(case: Case, wanted: float) -> float:
+    """A strength that freezes at no more than ``wanted`` (K), moved to the safe side to what can be mixed."""
+    share = strength_protecting_to(_kind_of(case), wanted)
+    if case.strength == "protect-to":
+        celsius = floor((wanted - ZERO_CELSIUS) / _PROTECTION_STEP + 1e-6) * _PROTECTION_STEP
+        return celsius + ZERO_CELSIUS
+    if case.strength == "by-volume":
+        share = glycol(_kind_of(case), share).volume_fraction
+    return ceil((share + 1e-6) / _SHARE_STEP) * _SHARE_STEP
 
 
 def _kind_of(case: Case) -> GlycolKind:

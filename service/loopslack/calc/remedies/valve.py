@@ -25,7 +25,7 @@ class HigherValve(Measure):
     """A relief valve of higher set pressure, within the ratings of all parts."""
 
     code = "relief-valve"
-    rank = 7
+    rank = 8
     kind = kinds.GAUGE_PRESSURE
     rising = True
 
@@ -72,7 +72,7 @@ class PartRatings(Measure):
     """Parts, and the vessel if need be, rated for what the relief valve lets through."""
 
     code = "part-rating"
-    rank = 8
+    rank = 9
     kind = kinds.GAUGE_PRESSURE
 
     def options(self, case: Case) -> list[Option]:

@@ -28,7 +28,7 @@ class OtherVessel(Measure):
     """A vessel of another size; of a list the nearest article that does."""
 
     code = "vessel"
-    rank = 5
+    rank = 6
     any_value = True
     finest = 1e-4
     kind = kinds.NOMINAL_VOLUME
@@ -118,7 +118,7 @@ class CoolingVessel(Measure):
     """A cooling vessel in the line before the expansion vessel."""
 
     code = "cooling-vessel"
-    rank = 6
+    rank = 7
     any_value = True
     finest = 1e-4
     kind = kinds.VOLUME

@@ -1,6 +1,7 @@
 """What would make the loop hold: measures, the smallest intervention first, and what to mind with each."""
 
 import re
+from collections.abc import Iterable
 
 from loopslack.contract.answers_loop import VesselResult
 from loopslack.contract.answers_remedies import QuestionChange, Remedies, RemedyStep
@@ -31,7 +32,7 @@ def remedies(case: Case) -> Section | None:
             )
             for place, one in enumerate(found.single, 1)
         )
-        blocks.append(_table(case, rows))
+        blocks.append(_table(case, "table.remedies", rows))
     if found.pair is not None:
         pair = found.pair
         told = "; ".join(_sentence(case, step, pair.changes) for step in pair.steps)
@@ -44,7 +45,7 @@ def remedies(case: Case) -> Section | None:
                 words("word.yes" if pair.robust else "word.no"),
             )
         )
-        blocks += [Text(words("remedies.pair")), _table(case, (row,))]
+        blocks += [Text(words("remedies.pair")), _table(case, "table.remedies-pair", (row,))]
     if found.none_found:
         blocks.append(Text(words("remedies.none"), "stop"))
     if not found.complete:
@@ -56,7 +57,7 @@ def remedies(case: Case) -> Section | None:
     return Section("remedies", words("section.remedies"), tuple(blocks))
 
 
-def _table(case: Case, rows: tuple[Row, ...]) -> Table:
+def _table(case: Case, caption: str, rows: tuple[Row, ...]) -> Table:
     words = case.words
     columns = (
         Column(words("column.step")),
@@ -65,7 +66,7 @@ def _table(case: Case, rows: tuple[Row, ...]) -> Table:
         Column(words("fact.fill"), "number"),
         Column(words("column.robust")),
     )
-    return Table(words("table.remedies"), columns, rows, words("table.remedies-note"))
+    return Table(words(caption), columns, rows, words(f"{caption}-note"))
 
 
 def _vessel(case: Case, vessel: VesselResult | None) -> str:
@@ -82,13 +83,28 @@ def _vessel(case: Case, vessel: VesselResult | None) -> str:
 def _sentence(case: Case, step: RemedyStep, changes: list[QuestionChange]) -> str:
     """What to do, from the code and its numbers."""
     words, say = case.words, case.say
-    key = f"measure.{step.code}"
+    opens = step.code == "open-run"
+    runs = dict.fromkeys(
+        int(found[1])
+        for change in changes
+        if (found := _RUN.match(change.field)) and change.field.endswith("/steamAccess") == opens
+    )
+    key = _key(case, step, runs)
     if key not in words:
         return plain(step.sentence)
-    runs = dict.fromkeys(int(found[1]) for change in changes if (found := _RUN.match(change.field)))
     named = ", ".join(case.run_name(run) for run in runs if run < len(case.design.pipe_runs))
     told = words(key, amount=say(step.amount), runs=named)
     return told if step.present is None else f"{told} {words('remedies.instead', present=say(step.present))}"
+
+
+def _key(case: Case, step: RemedyStep, runs: Iterable[int]) -> str:
+    """The words of a measure, told apart where one measure is two things to do."""
+    if step.code == "stronger-glycol" and step.amount.unit in ("degC", "degF"):
+        return "measure.stronger-glycol-protecting"
+    branches = case.loop.branches
+    if step.code == "open-run" and all(branches[run].access == "unknown" for run in runs):
+        return "measure.open-run-unknown"
+    return f"measure.{step.code}"
 
 
 def _proofs(case: Case, found: Remedies) -> list[Text]:

@@ -152,21 +152,27 @@ def _reached(case: Case, state: StagnationState) -> str:
 
 
 def _margins(case: Case) -> Table:
-    """Of every check the state that counts in which it is tightest, failing ones first.
+    """Of every check the state that counts in which it is tightest, failing ones first; of what is open every part.
 
     What fails only where it does not count comes last, beside the row that counts and not in its place.
     """
     words, say = case.words, case.say
     tightest: dict[tuple[str, bool], Check] = {}
+    unsettled: dict[tuple[str, str | None], Check] = {}
     for check in case.result.checks:
         aside = mark_of(case, check) == "aside"
         if not aside and check.scenario not in case.counted:
             continue
+        if mark_of(case, check) == "open":
+            unsettled.setdefault((check.code, check.subject), check)
         known = tightest.get((check.code, aside))
         if known is None or _tightness(case, check) < _tightness(case, known):
             tightest[check.code, aside] = check
+    listed = [*tightest.values()]
+    told = {(check.code, check.subject) for (_, aside), check in tightest.items() if not aside}
+    listed += [check for place, check in unsettled.items() if place not in told]
     rows = []
-    for check in sorted(tightest.values(), key=lambda check: _tightness(case, check)):
+    for check in sorted(listed, key=lambda check: _tightness(case, check)):
         mark = mark_of(case, check)
         at_least = "≥ " if check.at_least else ""
         cells = (
