@@ -131,7 +131,7 @@ ANALYSIS_LISTS: tuple[NamedValues, ...] = (
             "relief-valve": "A relief valve with another set pressure",
             "part-rating": "A part with a higher rating",
             "stagnation-cooler": "A stagnation cooler",
-            "open-run": "A check valve placed so that steam can enter a pipe run",
+            "open-run": "A check valve looked at, or placed so that steam can enter a pipe run",
             "bare-pipe": "Insulation taken off some pipe",
             "bare-run": "Insulation taken off a whole pipe run",
             "extra-pipe": "More pipe",
