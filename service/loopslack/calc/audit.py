@@ -190,7 +190,7 @@ def _today(bench: Bench, shown: State, temperature: float) -> tuple[float | None
     window = shown.fitted.window
     low, high = window.lower_bound.mass, window.upper_bound.mass
     lower, upper = (pressure_of(bench.analysis, shown.gas, mass, temperature) for mass in (low, high))
-    if not low < high or upper is None:
+    if not shown.fitted.counted or not low < high or upper is None:
         return None, None, "no-window"
     if shown.held.empty or shown.held.mass < low:
         return lower, upper, "below"

@@ -8,12 +8,11 @@ from loopslack.calc.fit import Fit
 from loopslack.calc.judge import judge, required
 from loopslack.calc.judgement import DoubtPolicy, Judgement
 from loopslack.calc.model import Loop, Vessel
-from loopslack.calc.precharge import gas_of
+from loopslack.calc.nearest import Asked, nearest
 from loopslack.calc.scenarios import BASE, Scenario
-from loopslack.calc.selection import Selection, choose
+from loopslack.calc.selection import Selection, choose, with_power_left
 from loopslack.calc.selector import Selector
 from loopslack.calc.sizing.volumes import CoolingMode, Sized, size
-from loopslack.calc.window import Bounds
 from loopslack.kernel.errors import CalculationError
 
 
@@ -39,8 +38,8 @@ class Volumes(NamedTuple):
 class Design(NamedTuple):
     """A designed loop.
 
-    ``shown`` is the vessel the states and checks are of: the chosen one, or the nearest candidate, which is then
-    not chosen. ``chosen`` is None unless the verdict is ``holds`` (or the policy asks for no doubt at all and the
+    ``shown`` is the vessel the states and checks are of: the chosen one, or the candidate that fails least, which is
+    then not chosen. ``chosen`` is None unless the verdict is ``holds`` (or the policy asks for no doubt at all and the
     base case holds).
     """
 
@@ -66,9 +65,8 @@ def design(loop: Loop, request: Request) -> Design:
     limit = loop.criteria.membrane_limit
     scenarios = required(analysis, request.policy)
     selection = _select(analysis, scenarios, volumes.recommended, request)
-    shown = selection.chosen
-    if shown is None:
-        shown = _nearest(analysis, scenarios, selection, volumes, request)
+    asked = Asked(analysis, request.policy, request.cooling, request.fill_pressure)
+    shown = selection.chosen or nearest(asked, selection.refused)
     if request.fill_pressure is not None:
         shown = shown._replace(window=shown.window._replace(recommended=request.fill_pressure))
     membrane = shown.vessel.membrane_limit
@@ -81,6 +79,12 @@ def design(loop: Loop, request: Request) -> Design:
         membrane_limit=limit if membrane is None else membrane,
         window=None if refused else shown.window if selection.chosen else None,
     )
+    counted = {scenario.id for scenario in scenarios}
+    left = max(
+        (rest.extent.unspent for id, rest in judgement.stagnation.items() if id in counted), default=0.0
+    )
+    if left > 0:
+        selection = with_power_left(selection, left)
     holds = judgement.verdict == "holds" or (request.policy == "none" and judgement.base == "holds")
     chosen = shown if holds and selection.chosen is not None else None
     return Design(loop, request, analysis, volumes, selection, shown, judgement, chosen, refused)
@@ -119,27 +123,12 @@ def _volumes(analysis: Analysis, request: Request) -> tuple[Volumes, dict[str, s
 def _select(
     analysis: Analysis, scenarios: Sequence[Scenario], sized: Sized | None, request: Request
 ) -> Selection:
-    selector = Selector(analysis, scenarios, sized, request.cooling, analysis.loop.criteria.membrane_limit)
-    return choose(selector, request.candidates, request.most_in_parallel)
-
-
-def _nearest(
-    analysis: Analysis,
-    scenarios: Sequence[Scenario],
-    selection: Selection,
-    volumes: Volumes,
-    request: Request,
-) -> Fit:
-    """The candidate to show where none was chosen: one that holds the base case if there is one.
-
-    Its window is that of the base case, so that its filling is the best it could have.
-    """
-    if volumes.base is not None and scenarios != (BASE,):
-        favourable = _select(analysis, (BASE,), volumes.base, request)
-        if favourable.chosen is not None:
-            return favourable.chosen
-    vessel, count = selection.nearest
-    gas = gas_of(analysis, vessel, count)
-    return Fit(
-        vessel, count, gas, analysis, Bounds(analysis, (BASE,), gas).window(gas.nominal, gas.acceptance)
+    selector = Selector(
+        analysis,
+        scenarios,
+        sized,
+        request.cooling,
+        analysis.loop.criteria.membrane_limit,
+        accept_without_boiling=request.accept_without_boiling,
     )
+    return choose(selector, request.candidates, request.most_in_parallel)

@@ -3,12 +3,11 @@
 from typing import NamedTuple
 
 from loopslack.calc.analysis import Analysis
-from loopslack.calc.fit import Fit, fit
+from loopslack.calc.fit import Fit, fit, plain_fit
 from loopslack.calc.judge import judge, required
 from loopslack.calc.judgement import DoubtPolicy, Judgement
 from loopslack.calc.model import Loop, Vessel
-from loopslack.calc.precharge import gas_of
-from loopslack.calc.scenarios import BASE, Scenario
+from loopslack.calc.scenarios import Scenario
 from loopslack.calc.window import Bounds
 from loopslack.kernel.errors import CalculationError
 
@@ -58,8 +57,6 @@ def best_window(analysis: Analysis, scenarios: tuple[Scenario, ...], vessel: Ves
         fitted = fit(analysis, scenarios, vessel, pieces, "given", limit)
     except CalculationError:
         fitted = None
-    if fitted is not None and fitted.window.wide_enough:
+    if fitted is not None and fitted.window.usable:
         return fitted
-    gas = gas_of(analysis, vessel, pieces)
-    window = Bounds(analysis, (BASE,), gas).window(gas.nominal, gas.acceptance)
-    return Fit(vessel, pieces, gas, analysis, window)
+    return plain_fit(analysis, vessel, pieces)

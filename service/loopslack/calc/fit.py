@@ -7,19 +7,29 @@ from loopslack.calc.analysis import Analysis
 from loopslack.calc.cooling import Charged, cool_window, smallest_content
 from loopslack.calc.model import Vessel
 from loopslack.calc.precharge import gas_of
-from loopslack.calc.scenarios import Scenario
+from loopslack.calc.scenarios import BASE, Scenario
 from loopslack.calc.sizing.volumes import CoolingMode
 from loopslack.calc.window import Bounds, Gas, Window
 
 
 class Fit(NamedTuple):
-    """``pieces`` equal vessels in the loop: the gas of all together, the loop with its cooling vessel, the window."""
+    """``pieces`` equal vessels in the loop: the gas of all together, the loop with its cooling vessel, the window.
+
+    ``under`` names the scenarios of the window where they are fewer than have to be survived, which no filling does:
+    a filling to judge the vessel with, and none to hand out.
+    """
 
     vessel: Vessel
     pieces: int
     gas: Gas
     analysis: Analysis
     window: Window
+    under: tuple[Scenario, ...] = ()
+
+    @property
+    def counted(self) -> bool:
+        """Whether the window is that of all scenarios that have to be survived."""
+        return not self.under
 
     @property
     def cooling(self) -> float:
@@ -63,6 +73,13 @@ def fit(
     else:
         window = cool_window(analysis, scenarios, gas, limit)
     return Fit(vessel, count, gas, analysis, window)
+
+
+def plain_fit(analysis: Analysis, vessel: Vessel, count: int) -> Fit:
+    """Vessels in a loop as it is, with the window of the base case, whether empty or not; it does not count."""
+    gas = gas_of(analysis, vessel, count)
+    window = Bounds(analysis, (BASE,), gas).window(gas.nominal, gas.acceptance)
+    return Fit(vessel, count, gas, analysis, window, under=(BASE,))
 
 
 def cooling_for(

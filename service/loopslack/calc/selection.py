@@ -26,7 +26,6 @@ class Selection(NamedTuple):
     alternatives: tuple[tuple[Vessel, int], ...]
     refused: tuple[Refusal, ...]
     ranked_by: RankedBy
-    nearest: tuple[Vessel, int]
 
 
 def choose(selector: Selector, candidates: Sequence[Vessel], most: int) -> Selection:
@@ -47,9 +46,8 @@ def choose(selector: Selector, candidates: Sequence[Vessel], most: int) -> Selec
             chosen = selector.fit(vessel, count)
         else:
             alternatives.append((vessel, count))
-    nearest = (chosen.vessel, chosen.pieces) if chosen else _nearest(refused)
     ranked: RankedBy = "price" if by_price else "volume"
-    return Selection(chosen, tuple(alternatives), tuple(refused), ranked, nearest)
+    return Selection(chosen, tuple(alternatives), tuple(refused), ranked)
 
 
 def _one_currency(candidates: Sequence[Vessel]) -> bool:
@@ -58,7 +56,20 @@ def _one_currency(candidates: Sequence[Vessel]) -> bool:
     return len(currencies) == 1 and None not in currencies
 
 
-def _nearest(refused: Sequence[Refusal]) -> tuple[Vessel, int]:
-    """The refused candidate with the fewest reasons, the largest among equals."""
-    best = min(refused, key=lambda r: (len(r.reasons), -r.vessel.nominal_volume * r.pieces, r.vessel.id))
-    return best.vessel, best.pieces
+def with_power_left(selection: Selection, power: float) -> Selection:
+    """The selection with steam power that nothing condenses told as a check tells it, W.
+
+    A comparison of sizes knows it at the valve's pressure only; a loop at rest below that makes more steam.
+    """
+    known: dict[int, tuple[Reason, ...]] = {}  # by identity: a long list repeats itself
+
+    def told(reasons: tuple[Reason, ...]) -> tuple[Reason, ...]:
+        found = known.get(id(reasons))
+        if found is None:
+            found = known[id(reasons)] = tuple(
+                reason._replace(value=power, short=power) if reason.code == "unspent-power" else reason
+                for reason in reasons
+            )
+        return found
+
+    return selection._replace(refused=tuple(r._replace(reasons=told(r.reasons)) for r in selection.refused))

@@ -19,10 +19,11 @@ from loopslack.calc.fit import Fit, cooling_for, fit
 from loopslack.calc.model import Vessel
 from loopslack.calc.precharge import gas_of
 from loopslack.calc.reasons import Reason, ReasonCode, shortage
-from loopslack.calc.scenarios import Scenario
-from loopslack.calc.sizing.volumes import CoolingMode, Sized
+from loopslack.calc.scenarios import BASE, Scenario
+from loopslack.calc.sizing.volumes import CoolingMode, Sized, size
 from loopslack.calc.window import Bounds
 from loopslack.kernel import kinds
+from loopslack.kernel.errors import CalculationError
 
 # Refusals solved with the candidate's own cooling vessel; further ones are told by the loop as sized, so that a list
 # of thousands stays affordable.
@@ -39,8 +40,11 @@ class Selector:
         sized: Sized | None,
         cooling: CoolingMode,
         membrane_limit: float,
+        *,
+        accept_without_boiling: bool = False,
     ) -> None:
         self.analysis, self.scenarios, self.sized = analysis, scenarios, sized
+        self.accept_without_boiling = accept_without_boiling
         self.cooling: CoolingMode = cooling
         self.membrane_limit = membrane_limit
         self._fits: dict[tuple[object, ...], Fit | None] = {}
@@ -64,7 +68,7 @@ class Selector:
         if found is None:
             others = self._other_reasons.get((exact, count, own))
             if others is None:
-                others = self._found(vessel, count, exact=exact)
+                others = self.against(vessel, count, exact=exact)
                 self._other_reasons[exact, count, own] = others
             found = self._reasons[key] = (*self._rating(vessel), *others)
         return found
@@ -76,11 +80,12 @@ class Selector:
             return []
         return [shortage("rated-pressure", kinds.GAUGE_PRESSURE, rated, self._needed)]
 
-    def _found(self, vessel: Vessel, count: int, *, exact: bool) -> list[Reason]:
+    def against(self, vessel: Vessel, count: int, *, exact: bool) -> list[Reason]:
         """Every reason but the rated pressure, which has to do with nothing else."""
         sized = self.sized
         if sized is None:
-            return [self._no_volume]
+            rest = self._rest
+            return [self._no_volume, *(rest.against(vessel, count, exact=False) if rest else ())]
         found: list[Reason] = []
         nominal = vessel.nominal_volume * count
         smallest, largest = sized.smallest, sized.interval.largest
@@ -135,10 +140,42 @@ class Selector:
     @cached_property
     def _no_volume(self) -> Reason:
         """No volume holds: the steam power nothing condenses, or no window at any size."""
-        unspent = max(self.analysis.case(s).final.unspent for s in self.scenarios)
+        unspent = max(map(self._unspent, self.scenarios))
         if unspent > 0:
             return Reason("unspent-power", kinds.POWER, unspent, 0.0, unspent)
         return Reason("no-window", kinds.PRESSURE_DIFFERENCE, None, None, None)
+
+    def _unspent(self, scenario: Scenario) -> float:
+        """Steam power (W) left over at the valve's pressure; none known where the scenario is not computed."""
+        try:
+            return self.analysis.case(scenario).final.unspent
+        except CalculationError:
+            return 0.0
+
+    @cached_property
+    def _rest(self) -> "Selector | None":
+        """Compares under the scenarios that some volume holds under, where none holds under all of them.
+
+        What spoils every volume is one reason; a vessel may be too small for the others all the same.
+        """
+
+        def sized(scenarios: tuple[Scenario, ...]) -> Sized | None:
+            try:
+                return size(
+                    self.analysis,
+                    scenarios,
+                    self.cooling,
+                    self.membrane_limit,
+                    accept_without_boiling=self.accept_without_boiling,
+                )
+            except CalculationError:
+                return None
+
+        possible = tuple(scenario for scenario in self.scenarios if sized((scenario,)) is not None)
+        for scenarios in (possible, (BASE,)):
+            if BASE in scenarios and (found := sized(scenarios)) is not None:
+                return Selector(self.analysis, scenarios, found, self.cooling, self.membrane_limit)
+        return None
 
     def _explain(self, vessel: Vessel, count: int, fitted: Fit, found: list[Reason]) -> None:
         """Which property of the vessel narrows its window."""

@@ -60,6 +60,11 @@ class Window(NamedTuple):
         """Width, Pa; negative when empty."""
         return self.upper - self.lower
 
+    @property
+    def usable(self) -> bool:
+        """Whether it holds the fill pressure recommended, however hard that is to hit."""
+        return -inf < self.lower < self.upper < inf and self.recommended <= self.upper
+
 
 class Bounds:
     """Bounds on the filling under a set of scenarios, for vessels of one precharge."""

@@ -21,15 +21,33 @@ from loopslack.kernel.kinds import Kind
 
 _HIGH_SITE = 1000.0  # m, from where the design sun should be the site's own hottest hour (own assumption)
 _HIGH_SUN = 1100.0  # W/m2 asked for there (own assumption)
+# What to do for a loop that survives all doubts, by whether the answer shows a volume that does; None if it shows none.
+_ROBUST = {
+    True: "See `volumes.robust`, or ask with `doubtPolicy` `combined`.",
+    False: "No nominal volume does: `designLoop` with `include` `remedies` tells what cooler would let one.",
+    None: "Ask with `doubtPolicy` `combined`.",
+}
 
 
 class Advisor:
-    """Collects the advisories of one judged vessel."""
+    """Collects the advisories of one judged vessel.
 
-    def __init__(self, fitted: Fit, judgement: Judgement, policy: DoubtPolicy, system: System) -> None:
+    ``robust_volume`` says whether the answer shows a volume that survives all doubts; None where it shows none ever.
+    """
+
+    def __init__(
+        self,
+        fitted: Fit,
+        judgement: Judgement,
+        policy: DoubtPolicy,
+        system: System,
+        *,
+        robust_volume: bool | None = None,
+    ) -> None:
         self.analysis: Analysis = fitted.analysis
         self.fitted, self.judgement, self.policy, self.system = fitted, judgement, policy, system
         self.atmosphere = self.analysis.loop.atmosphere
+        self.robust_volume = robust_volume
 
     def all(self) -> list[Advisory]:
         """Every advisory, gravest first."""
@@ -115,7 +133,14 @@ class Advisor:
                 "note",
                 "not-robust",
                 "The design survives each doubt alone but not all of them at once.",
-                "See `volumes.robust`, or ask with `doubtPolicy` `combined`.",
+                _ROBUST[self.robust_volume],
+            )
+        if all(branch.role != "return" for branch in loop.branches):
+            yield self._say(
+                "warning",
+                "no-return-run",
+                "No pipe run has the role `return`: its liquid, and the pipe it offers to steam, are left out.",
+                "State every pipe run between collectors and station, each with its `role`.",
             )
         if loop.altitude > _HIGH_SITE and loop.sun.irradiance < _HIGH_SUN:
             yield self._say(

@@ -16,6 +16,7 @@ from loopslack.contract import writing_design as write_design
 from loopslack.contract import writing_loop as write_loop
 from loopslack.contract import writing_sizing as write_sizing
 from loopslack.contract.advice import Advisor
+from loopslack.contract.answers_common import Advisory
 from loopslack.contract.reading import Reading
 from loopslack.contract.reading_existing import CheckReading, read_check
 from loopslack.contract.reading_sizing import read_sizing
@@ -94,7 +95,7 @@ def _design_answer(question: questions.LoopDesignQuestion, asked: Designed) -> a
     return answers.LoopDesignAnswer(
         result=result,
         assumptions=assumptions(reading.assumed, reading.system),
-        advisories=Advisor(shown, judgement, reading.policy, reading.system).all(),
+        advisories=_advisories(reading, found),
         cautions=CAUTIONS,
         provenance=provenance(),
         remedies=extras.remedies_of_design(reading, found, Asked("design", stock)),
@@ -105,6 +106,12 @@ def _design_answer(question: questions.LoopDesignQuestion, asked: Designed) -> a
         course=extras.course(reading, shown, shown.mass) if "course" in include else None,
         derivation=extras.derived(found, reading, question) if "derivation" in include else None,
     )
+
+
+def _advisories(reading: Reading, found: Design) -> list[Advisory]:
+    robust = found.volumes.robust is not None
+    advisor = Advisor(found.shown, found.judgement, reading.policy, reading.system, robust_volume=robust)
+    return advisor.all()
 
 
 def size_vessel(question: questions.VesselSizingQuestion) -> answers.VesselSizingAnswer:
@@ -124,7 +131,7 @@ def size_vessel(question: questions.VesselSizingQuestion) -> answers.VesselSizin
         volumes=write_design.volumes(found, write, pressure),
         rules=write_sizing.rules(rules, write, pressure, _wanted_rules(question)),
         walk=write_sizing.walk(found, rules, write, loop.atmosphere),
-        window=write_loop.window(shown.window, write, pressure),
+        window=write_loop.window(shown, write, pressure),
         precharge=pressure(shown.gas.precharge),
         selection=write_design.selection(found.selection, write),
         checks=write_design.checks(judgement, write, loop.atmosphere),
@@ -136,7 +143,7 @@ def size_vessel(question: questions.VesselSizingQuestion) -> answers.VesselSizin
     return answers.VesselSizingAnswer(
         result=result,
         assumptions=assumptions(reading.assumed, reading.system),
-        advisories=Advisor(shown, judgement, reading.policy, reading.system).all(),
+        advisories=_advisories(reading, found),
         cautions=CAUTIONS,
         provenance=provenance(),
         derivation=extras.derived(found, reading, question) if "derivation" in include else None,

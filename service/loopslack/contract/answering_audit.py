@@ -53,7 +53,7 @@ def audit_vessel(question: VesselAuditQuestion) -> out.VesselAuditAnswer:
         to_confirm=confirm,
         vessel=write_loop.vessel(shown.fitted, write),
         content=write_loop.content(write_loop.held_by(loop), write, reading.assumed),
-        window=write_loop.window(shown.fitted.window, write, pressure),
+        window=write_loop.window(shown.fitted, write, pressure),
         states=[write_loop.liquid_state(state, write, pressure) for state in shown.judgement.states],
         stagnation=write_loop.stagnation(shown.fitted.analysis, shown.judgement, write, pressure),
     )

@@ -69,7 +69,7 @@ def judged(reading: Reading, shown: Fit, judgement: Judgement) -> Judged:
         checks=write_design.checks(judgement, write, loop.atmosphere),
         to_confirm=confirm,
         content=write_loop.content(write_loop.held_by(loop), write, reading.assumed),
-        window=write_loop.window(shown.window, write, pressure),
+        window=write_loop.window(shown, write, pressure),
         states=[write_loop.liquid_state(state, write, pressure) for state in judgement.states],
         stagnation=write_loop.stagnation(shown.analysis, judgement, write, pressure),
     )

@@ -36,6 +36,17 @@ from loopslack.contract.answers_remedies import Discharge, Remedies, RobustCoole
 from loopslack.contract.answers_sizing import RuleComparison, Sensitivity, Walk
 from loopslack.contract.fields import text
 
+_NEAREST = (
+    "The candidate all numbers are of, where none is chosen: the one that fails least, by its verdict, then by the "
+    "number of core checks that fail in the base case and under the doubts that count, then by what they miss in all, "
+    "then by the number of reasons against it, then by rank. Of more than forty kinds some forty are judged. Do not "
+    "build it."
+)
+_WINDOW = (
+    "It counts the base case and every doubt that `doubtPolicy` asks for, as the check `fill-window` of "
+    "`required-doubts` does. Absent where it is empty or too narrow to recommend a fill pressure in it."
+)
+
 
 class Answer(AnswerPart, frozen=True, kw_only=True):
     """What stands beside every result."""
@@ -102,7 +113,7 @@ class JudgedResult(AnswerPart, frozen=True, kw_only=True):
     checks: Annotated[list[Check], text("Every check.")]
     to_confirm: Annotated[list[Provisional], text("What makes the basis provisional.")]
     content: Annotated[LoopContent, text("The content of the loop.")]
-    window: Annotated[FillWindow | None, text("The fill window. Absent where it is empty.")] = None
+    window: Annotated[FillWindow | None, text("The fill window. " + _WINDOW)] = None
     states: Annotated[list[LiquidState], text("The states without steam.")]
     stagnation: Annotated[
         list[StagnationState], text("Stagnation in the base case, under each doubt and under all at once.")
@@ -118,19 +129,15 @@ class VesselSizingResult(AnswerPart, frozen=True, kw_only=True):
     chosen_vessel: Annotated[
         VesselResult | None, text("The vessel to take. Absent unless the verdict allows one.")
     ] = None
-    nearest_vessel: Annotated[
-        VesselResult | None, text("The candidate that comes nearest where none is chosen. Do not build it.")
-    ] = None
+    nearest_vessel: Annotated[VesselResult | None, text(_NEAREST)] = None
     volumes: Annotated[Volumes, text("Nominal volumes by how much they survive.")]
     rules: Annotated[list[RuleComparison], text("Every rule side by side.")]
     walk: Annotated[
         Walk | None,
         text("From the smallest rule to the recommended volume. Absent where no volume holds."),
     ] = None
-    window: Annotated[
-        FillWindow | None, text("The fill window of that vessel. Absent where it is empty.")
-    ] = None
-    precharge: Annotated[q.Pressure, text("Precharge, read on site.")]
+    window: Annotated[FillWindow | None, text("The fill window of that vessel. " + _WINDOW)] = None
+    precharge: Annotated[q.Pressure, text("Precharge at the temperature it is set at, read on site.")]
     selection: Annotated[Selection, text("How the vessel was chosen.")]
     checks: Annotated[list[Check], text("Every check of that vessel.")]
     to_confirm: Annotated[list[Provisional], text("What makes the basis provisional.")]
@@ -150,7 +157,10 @@ class StagnationCheckResult(JudgedResult, frozen=True, kw_only=True):
 
     vessel: Annotated[VesselResult, text("The vessel.")]
     precharge: Annotated[q.Pressure, text("Its precharge, read on site.")]
-    fill_pressure: Annotated[q.Pressure | None, text("The fill pressure it was judged at.")] = None
+    fill_pressure: Annotated[
+        q.Pressure | None,
+        text("The fill pressure it was judged at, at the vessel and at `temperatures.fill`."),
+    ] = None
     discharge: Annotated[
         list[Discharge], text("What leaves through the valve, in every case in which it opens.")
     ]
@@ -179,12 +189,12 @@ class LoopDesignResult(JudgedResult, frozen=True, kw_only=True):
     ] = None
     nearest_vessel: Annotated[
         VesselResult | None,
-        text("The candidate all numbers are of, where none is chosen. Do not build it."),
+        text(_NEAREST),
     ] = None
     volumes: Annotated[Volumes, text("Nominal volumes by how much they survive.")]
     selection: Annotated[Selection, text("How the vessel was chosen.")]
     settings: Annotated[
-        SettingsCard | None, text("Settings for the installer. Absent where the window is empty.")
+        SettingsCard | None, text("Settings for the installer. Absent where `window` is.")
     ] = None
     order: Annotated[OrderList, text("What to order.")]
     discharge: Annotated[

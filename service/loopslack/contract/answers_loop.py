@@ -157,12 +157,16 @@ class Volumes(AnswerPart, frozen=True, kw_only=True):
 
 
 class RefusalReason(AnswerPart, frozen=True, kw_only=True):
-    """Why a vessel was refused, and by how much."""
+    """Why a vessel was refused, and by how much. `unspent-power` is the loop's: the others are what it needs beside."""
 
     code: Annotated[ReasonCode, text("The reason.", "acceptance-volume")]
-    value: Annotated[AnyQuantity | None, text("What the vessel has.")] = None
-    limit: Annotated[AnyQuantity | None, text("What it would need.")] = None
-    short_by: Annotated[AnyQuantity | None, text("The change that would make this check hold.")] = None
+    value: Annotated[
+        AnyQuantity | None, text("What the vessel has; steam power left over as `steam-at-station` has it.")
+    ] = None
+    limit: Annotated[AnyQuantity | None, text("What it would need, or the most that may be.")] = None
+    short_by: Annotated[
+        AnyQuantity | None, text("The change that settles it; steam power is what a cooler must take more.")
+    ] = None
 
 
 class RefusedVessel(AnswerPart, frozen=True, kw_only=True):
@@ -221,9 +225,13 @@ class ClosedForms(AnswerPart, frozen=True, kw_only=True, gc=False):
 class SettingsCard(AnswerPart, frozen=True, kw_only=True):
     """What to hand to the installer."""
 
-    precharge: Annotated[q.Pressure, text("Gas pressure of the empty vessel, read on site.")]
+    precharge: Annotated[
+        q.Pressure, text("Gas pressure of the empty vessel at `prechargeTemperature`, read on site.")
+    ]
     precharge_temperature: Annotated[q.Temperature, text("Temperature it is set at.")]
-    fill_pressure: Annotated[q.Pressure, text("Recommended fill pressure at the vessel.")]
+    fill_pressure: Annotated[
+        q.Pressure, text("Recommended at the vessel at `temperatures.fill`; on other days `byTemperature`.")
+    ]
     window: Annotated[FillWindow, text("The fill window.")]
     by_temperature: Annotated[list[FillRow], text("Fill pressures by the temperature of the day.")]
     readings: Annotated[list[GaugeReading], text("What the gauge should show in each state.")]
@@ -273,5 +281,13 @@ class Provisional(AnswerPart, frozen=True, kw_only=True, gc=False):
     """Why the answer is provisional."""
 
     code: Annotated[str, text("The reason.", "rating-unstated")]
-    field: Annotated[str | None, text("The member that would settle it.", "/station/ratedPressure")] = None
-    subject: Annotated[str | None, text("The part concerned.", "station")] = None
+    field: Annotated[
+        str | None,
+        text(
+            "The member that would settle it, as JSON Pointer (RFC 6901) into the design; absent where none would.",
+            "/station/ratedPressure",
+        ),
+    ] = None
+    subject: Annotated[
+        str | None, text("The part concerned, or else the reason why its check could not be made.", "station")
+    ] = None

@@ -73,7 +73,7 @@ class AuditWriter:
             temperature=write.temperature(self.temperature),
             add=None if target.add is None else write.volume(target.add),
             at_least=True if empty and target.add is not None else None,
-            window=write_loop.window(target.fitted.window, write, self.pressure),
+            window=write_loop.window(target.fitted, write, self.pressure),
             smallest_volume=None if target.smallest is None else write.volume(target.smallest),
         )
 

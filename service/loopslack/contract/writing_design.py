@@ -22,6 +22,8 @@ from loopslack.kernel import kinds
 from loopslack.kernel.kinds import Kind
 
 _ALTERNATIVES = 20
+_SETTLED_BY = {"head-not-stated": "/pump/netPositiveSuction", "size-not-stated": "/reliefValve/nominalSize"}
+"""The member that was not stated, by the reason why a check could not be made."""
 
 # Common practice, no source, except where a step says otherwise.
 INSTRUCTIONS = (
@@ -41,10 +43,15 @@ def to_confirm(reading: Reading, judgement: Judgement) -> list[out.Provisional]:
         for entry in reading.provisional
         if entry.code != "rating-unstated"
     ]
-    found.extend(
-        out.Provisional(code=check.code, field=None, subject=check.subject or check.reason or None)
-        for check in judgement.to_confirm
-    )
+    unrated: dict[str, list[str]] = {"expansion vessel": ["/vessel/ratedPressure"]}
+    for part in reading.loop.parts:
+        if part.rated_pressure is None:
+            unrated.setdefault(part.name, []).append(part.pointer)
+    for check in judgement.to_confirm:
+        members = unrated.get(check.subject, [])
+        settled_by = members.pop(0) if members else _SETTLED_BY.get(check.reason)
+        subject = check.subject or check.reason or None
+        found.append(out.Provisional(code=check.code, field=settled_by, subject=subject))
     return found
 
 
@@ -142,7 +149,7 @@ def settings(
     fitted: Fit, judgement: Judgement, write: Writer, pressure: write_loop.Pressures
 ) -> out.SettingsCard | None:
     """The settings card; none where there is no window to set anything in."""
-    window = write_loop.window(fitted.window, write, pressure)
+    window = write_loop.window(fitted, write, pressure)
     if window is None:
         return None
     card = settings_card(fitted, judgement)

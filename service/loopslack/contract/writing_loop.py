@@ -14,7 +14,6 @@ from loopslack.calc.judgement import Check as CheckResult
 from loopslack.calc.judgement import Judgement, StateResult
 from loopslack.calc.model import Loop, Vessel
 from loopslack.calc.scenarios import DOUBT_IDS, Scenario
-from loopslack.calc.window import Window
 from loopslack.contract import answers_loop as out
 from loopslack.contract.answers_common import Check, CheckVerdict
 from loopslack.contract.quantity import Pressure, Price
@@ -103,9 +102,14 @@ def content(parts: list[Held], write: Writer, assumed: tuple[Assumed, ...]) -> o
     )
 
 
-def window(found: Window, write: Writer, pressure: Pressures) -> out.FillWindow | None:
-    """A fill window; none where it is empty."""
-    if not (isfinite(found.lower) and isfinite(found.upper)) or found.upper <= found.lower:
+def window(fitted: Fit, write: Writer, pressure: Pressures) -> out.FillWindow | None:
+    """The fill window of all that counts towards the verdict; none where no filling keeps it."""
+    found = fitted.window
+    if (
+        not fitted.counted
+        or not (isfinite(found.lower) and isfinite(found.upper))
+        or found.upper <= found.lower
+    ):
         return None
     return out.FillWindow(
         temperature=write.temperature(found.temperature),

@@ -37,7 +37,7 @@ def shown_numbers(fitted: Fit, judgement: Judgement, *, card: bool) -> Numbers:
     yield "content/pipes", loop.pipe_content
     yield "stagnation/0/stagnationTemperature", max(group.stagnation_temperature for group in loop.groups)
     window = fitted.window
-    if isfinite(window.lower) and isfinite(window.upper) and window.upper > window.lower:
+    if fitted.counted and isfinite(window.lower) and isfinite(window.upper) and window.upper > window.lower:
         for prefix in ("", "settings/") if card else ("",):
             yield f"{prefix}window/lower", window.lower - air
             yield f"{prefix}window/upper", window.upper - air
@@ -81,7 +81,7 @@ def stagnation_numbers(fitted: Fit, judgement: Judgement, air: float) -> Numbers
 def design_numbers(found: Design) -> Numbers:
     shown, air = found.shown, found.loop.atmosphere
     window = shown.window
-    card = isfinite(window.lower) and isfinite(window.upper) and window.upper > window.lower
+    card = shown.counted and isfinite(window.lower) and isfinite(window.upper) and window.upper > window.lower
     yield from shown_numbers(shown, found.judgement, card=card)
     if card:
         yield "settings/fillPressure", window.recommended - air

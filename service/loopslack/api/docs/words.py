@@ -68,6 +68,7 @@ ADVISORIES: dict[str, tuple[str, str]] = {
     "soft-solder": ("warning", "Steam reaches joints that were soldered soft."),
     "doubts-left-out": ("warning", "The question asked for no doubts, so the design is favourable only."),
     "not-robust": ("note", "Each doubt alone is survived, all of them at once are not."),
+    "no-return-run": ("warning", "No pipe run has the role `return`."),
     "high-site-sun": ("note", "At this altitude the sun can be stronger than the one designed for."),
     "rising-pipe": (
         "note",

@@ -26,7 +26,7 @@ class ShownSteps:
         book, window = self.book, self.fitted.window
         found = self.steps.write(window, self.membrane_limit())
         lower, upper = found.lower, found.upper
-        if lower is None or upper is None or not lower.si < upper.si:
+        if not self.fitted.counted or lower is None or upper is None or not lower.si < upper.si:
             return found
         for end, value in (("lower", lower), ("upper", upper)):
             gauge = self.gauge(value, f"fill pressure, {end} bound, gauge")

@@ -48,7 +48,7 @@ def derive_design(found: Design, ground: Ground, *, sizing: bool = False) -> Boo
         whole.book.report(precharge, f"{_CARD}/precharge")
     filled = whole.at_rest(shown, pressure)
     scenarios: Sequence[Scenario] = required(found.analysis, found.request.policy)
-    own = scenarios if found.selection.chosen is not None else (BASE,)
+    own = found.shown.under or scenarios
     whole.cooling(shown, tuple(own))
     volumes = VolumeSteps(whole.parts, whole.site, found.analysis)
     sets = {"base": (BASE,), "recommended": tuple(scenarios), "robust": found.analysis.every}
@@ -85,7 +85,9 @@ def derive_check(found: Checked, ground: Ground) -> Book:
 
 def _has_window(fitted: Fit) -> bool:
     window = fitted.window
-    return isfinite(window.lower) and isfinite(window.upper) and window.upper > window.lower
+    return (
+        fitted.counted and isfinite(window.lower) and isfinite(window.upper) and window.upper > window.lower
+    )
 
 
 class _Whole:
