@@ -115,10 +115,11 @@ class Collector:
         if not loop.emptying.wets_all and geometric < plant.full:
             wetted = geometric / plant.full
         rise = self.boiling - self.ambient
-        loss = loop.linear_loss
-        if rise > 0.0:
-            loss += loop.quadratic_loss * (2.0 * rise + max(0.0, self.stagnation_rise - rise))
-        conductance = wetted / (1.0 / _FILM + (1.0 - wetted) / loss)
+        loss = self._loss_from(rise)
+        conductance = wetted * _FILM
+        if wetted < 1.0:
+            # A dry share that loses nothing lets nothing pass.
+            conductance = wetted / (1.0 / _FILM + (1.0 - wetted) / loss) if loss > 0.0 else 0.0
         pull = self.gain + conductance * rise
         self.absorber = self.ambient + self._rise(pull, self.inertia + conductance)
         if self.absorber >= steam:
@@ -127,6 +128,19 @@ class Collector:
         pull += _FILM * (steam - self.ambient)
         self.absorber = self.ambient + self._rise(pull, self.inertia + conductance + _FILM)
         return conductance * (self.absorber - self.boiling) + _FILM * (self.absorber - steam)
+
+    def _loss_from(self, rise: float) -> float:
+        """Slope of the loss from a rise above ambient to that of stagnation, W/m2K; the loss is odd in the rise.
+
+        Below ambient, where a loop under vacuum may boil, the quadratic term counts as much as above it; past
+        stagnation the slope is the tangent's.
+        """
+        top = self.stagnation_rise
+        if rise > 0.0:
+            squared = 2.0 * rise + max(0.0, top - rise)
+        else:
+            squared = (top * top + rise * rise) / (top - rise) if top > rise else 0.0
+        return self.plant.loop.linear_loss + self.plant.loop.quadratic_loss * squared
 
     def warm(self, geometric: float) -> float:
         """Take the step without steam: absorber and liquid one body, all vapour condensed into it.
