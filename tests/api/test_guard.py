@@ -7,7 +7,17 @@ import pytest
 
 from api.small_service import GOOD_BODY, JSON, serving
 from loopslack.api import guard
-from loopslack.api.guard import Bucket, Keys, KeysError, is_public, new_key, read_keys, warn_if_open
+from loopslack.api.docs.contract import contract
+from loopslack.api.guard import (
+    Bucket,
+    Keys,
+    KeysError,
+    is_guarded,
+    is_public,
+    new_key,
+    read_keys,
+    warn_if_open,
+)
 from loopslack.settings import Settings
 
 
@@ -176,3 +186,14 @@ def test_a_public_address_without_keys_and_rate_is_warned_of(bind, public, caplo
 def test_the_warning_is_given_at_start(caplog):
     with caplog.at_level(logging.WARNING, logger="loopslack.guard"), serving(bind="0.0.0.0:8000"):
         assert "SERVING A PUBLIC ADDRESS" in caplog.text
+
+
+def test_the_document_says_that_a_key_may_be_asked_for_and_where_never() -> None:
+    document = contract().document
+    assert document["security"] == [{}, {"key": []}]
+    scheme = document["components"]["securitySchemes"]["key"]
+    assert (scheme["type"], scheme["scheme"]) == ("http", "bearer")
+    for path, item in document["paths"].items():
+        for method, operation in item.items():
+            may_be_asked = operation.get("security", document["security"]) != []
+            assert is_guarded({"path": path, "method": method.upper()}) == may_be_asked, path

@@ -76,7 +76,7 @@ def test_an_answer_with_the_word_null_in_a_text_or_an_honest_null_is_sent():
 def test_several_refusals_of_a_calculation_are_all_told(client):
     refused = post(client, "/v1/refuse")
     assert refused.status_code == 422
-    assert refused.json()["type"] == "/docs/problems/unanswerable-question"
+    assert refused.json()["type"] == "/docs/problems/invalid-field"
     assert pointers(refused) == {"/fluid/massPercent": "out-of-range", "": "contradiction"}
     first, second = refused.json()["errors"]
     assert first["message"] == "80 % is above 60 %. State less."

@@ -1,6 +1,7 @@
 """The first page and the form: a question the service really answers, and the answer it really gives."""
 
 import json
+import re
 from pathlib import Path
 
 import pytest
@@ -8,8 +9,8 @@ from litestar.testing import TestClient
 
 from docs.pages import elements, named, one, text
 from loopslack.api.docs.clients import CLIENTS
-from loopslack.api.docs.contract import contract
-from loopslack.api.docs.start import first_answer, first_question
+from loopslack.api.docs.contract import Described, contract
+from loopslack.api.docs.start import FIRST_QUESTION, first_answer, first_question
 from loopslack.api.docs.words import shown
 from loopslack.app import create_app
 from loopslack.contract.questions import LoopDesignQuestion
@@ -106,6 +107,30 @@ def test_the_form_knows_every_word_it_must_say(client: TestClient) -> None:
         assert {state["regime"] for state in result["stagnation"]} <= set(
             vocabulary["words"]["StagnationRegime"]
         )
+
+
+@pytest.mark.parametrize(
+    "operation", [each for each in contract().operations if each.question()], ids=lambda each: each.id
+)
+def test_the_file_that_a_command_sends_can_be_had_and_is_answered(
+    client: TestClient, operation: Described
+) -> None:
+    where = f"/docs/questions/{operation.id}/"
+    (path,) = {
+        link.attributes["href"]
+        for link in named(operation.where, "a")
+        if link.attributes["href"].startswith(where)
+    }
+    (command,) = (block.text for block in named(operation.where, "pre") if block.text.startswith("SERVICE="))
+    assert f"--data-binary @{path.removeprefix(where)}" in command
+    media_type = re.search("Content-Type: ([^']+)", command)[1]
+    sent = client.get(path).content
+    answer = client.post(operation.path, content=sent, headers={"Content-Type": media_type})
+    assert answer.status_code == 200, answer.text
+
+
+def test_the_first_question_can_be_had_as_a_file(client: TestClient) -> None:
+    assert client.get(FIRST_QUESTION).json() == first_question()
 
 
 @pytest.mark.parametrize("key", CLIENTS)

@@ -10,6 +10,7 @@ import pytest
 import loopslack
 from docs.pages import anchors, named, row, text
 from docs.test_reference import plain
+from loopslack.api.docs.contract import contract
 from loopslack.api.docs.words import (
     ADVISORIES,
     CHECKS,
@@ -139,6 +140,28 @@ def test_every_advisory_is_explained_with_its_severity() -> None:
         assert plain(meaning) in said
 
 
+def codes_of_errors(floor: Path) -> set[str]:
+    """The codes that kinds of errors of a floor have by themselves."""
+    return {
+        entry.value.value
+        for module in floor.rglob("*.py")
+        for kind in ast.walk(ast.parse(module.read_text(encoding="utf-8")))
+        if isinstance(kind, ast.ClassDef)
+        for entry in kind.body
+        if isinstance(entry, ast.Assign)
+        and isinstance(entry.targets[0], ast.Name)
+        and entry.targets[0].id == "code"
+        and isinstance(entry.value, ast.Constant)
+    }
+
+
+def test_every_reason_to_refuse_a_vessel_is_explained() -> None:
+    said = text("/docs/checks")
+    for word, meaning in contract().words("VesselRefusal").items():
+        assert word in said
+        assert meaning in said
+
+
 def test_every_code_that_a_method_adds_to_a_refusal_is_explained() -> None:
     given = set()
     for floor in ("calc", "contract", "library", "physics"):
@@ -149,6 +172,7 @@ def test_every_code_that_a_method_adds_to_a_refusal_is_explained() -> None:
                     for word in call.keywords
                     if word.arg == "code" and isinstance(word.value, ast.Constant)
                 }
+    given |= codes_of_errors(PACKAGE / "sheet")
     assert given - set(FIELD_CODES) == set(METHOD_CODES)
     assert all(plain(text) in row("/docs/problems", f"code.{code}") for code, text in METHOD_CODES.items())
 

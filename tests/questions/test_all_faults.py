@@ -8,6 +8,7 @@ from hypothesis import strategies as st
 
 from loopslack.contract.problems import MOST_COUNTED, MOST_FAULTS
 from loopslack.contract.questions import LoopDesignQuestion
+from loopslack.contract.questions_many import SheetQuestion
 from loopslack.contract.reader import Reader
 from loopslack.contract.reading_again import TURNS
 from loopslack.contract.readings import READINGS
@@ -224,3 +225,73 @@ def test_a_long_list_of_numbers_out_of_range_is_counted_no_further_than_told(mor
     assert len(found.faults) + found.further == MOST_COUNTED
     assert found.detail.startswith("1000 fields of the question are faulty, and there may be more.")
     assert {fault.code for fault in found.faults} <= {"out-of-range", "unknown-field"}
+
+
+def faults_by_place(question, kind=LoopDesignQuestion):
+    return {fault.pointer: fault for fault in refused(question, kind).faults}
+
+
+@pytest.mark.parametrize(
+    "fault",
+    [
+        ("/fluid/concentration/share", quantity(0.45, "volume-percent")),
+        ("/pipeRuns/0/segments/0/tube/size", "28x2"),
+        ("/pipeRuns/0/segments/0/tube/standard", "copper"),
+    ],
+)
+def test_a_faulty_member_makes_it_a_refusal_of_fields_also_beside_a_contradiction(fault):
+    contradicting = changed(wash_house(), "/temperatures/returnPipe", quantity(95, "degC"))
+    assert refused(contradicting).kind.slug == "unanswerable-question"
+    assert refused(changed(wash_house(), *fault)).kind.slug == "invalid-field"
+    both = refused(changed(contradicting, *fault))
+    assert both.kind.slug == "invalid-field"
+    assert {fault[0], "/temperatures/returnPipe"} == {one.pointer for one in both.faults}
+
+
+def test_a_variant_that_is_not_known_hides_no_fault_that_whichever_is_meant_would_have():
+    fluid = {"kind": "glycol", "concentration": {"kind": "volume", "share": 45}}
+    assert told(changed(wash_house(), "/fluid", fluid)) == [
+        ("/fluid/kind", "not-a-member"),
+        ("/fluid/concentration/kind", "not-a-member"),
+        ("/fluid/concentration/share", "wrong-type"),
+    ]
+    # what one of them takes is not laid at the door of all
+    assert told(changed(wash_house(), "/fluid", {"kind": "brine", "freezingPoint": 7})) == [
+        ("/fluid/kind", "not-a-member")
+    ]
+
+
+@pytest.mark.parametrize(
+    ("at", "value", "words", "not_said"),
+    [
+        ("/staticHeight", None, ["It must be stated"], ["Leave"]),
+        ("/staticHeight", 10, ["together with its unit"], []),
+        ("/site", 10, ["is expected"], ["unit"]),
+        ("/pipeRuns/0/segments/0/tube/size", "22x1.4", ["Did you mean 22x1 or 22x0.9?"], ["42x"]),
+        ("/pipeRuns/0/segments/0/length", quantity(-1, "m"), ["from 0.01 to 10000 m"], ["e+", "would do"]),
+        ("/fluid/concentration/share", quantity(0.45, "volume-percent"), ["45", "fraction"], []),
+        ("/temperatures/cutOff/unit", "C", ['Did you mean "degC"?'], []),
+        ("/temperatures/cutOff/unit", "F", ['Did you mean "degF"?'], []),
+        ("/reliefValve/setPressure/unit", "bar", ['"barg" or "bara"', "from vacuum"], []),
+        ("/collectors/0/emptyingClass", "fairly-good", ['"fair": Some liquid stays behind'], []),
+    ],
+)
+def test_a_message_gives_the_remedy_that_is_one(at, value, words, not_said):
+    message = faults_by_place(changed(wash_house(), at, value))[at].message
+    assert [word for word in words if word not in message] == []
+    assert [word for word in not_said if word in message] == []
+
+
+def test_the_numbers_and_words_behind_a_message_are_told_for_translation():
+    eta0 = "/collectors/0/coefficients/eta0"
+    assert faults_by_place(changed(wash_house(), eta0, 79))[eta0].parameters == {
+        "value": 79,
+        "low": 0.05,
+        "high": 1,
+    }
+    size = "/pipeRuns/0/segments/0/tube/size"
+    known = faults_by_place(changed(wash_house(), size, "22x1.4"))[size].words["known"]
+    assert "22x0.9, 22x1, " in known
+    date = faults_by_place({"design": wash_house(), "date": "31.5.2026"}, SheetQuestion)["/date"]
+    assert '"2026-12-01"' in date.message
+    assert "^" not in date.message

@@ -43,8 +43,9 @@ SHEET_OPERATIONS: tuple[Operation[Any, Any], ...] = (
         description=(
             "Designs the loop and sets the calculation sheet as PDF: tagged for screen readers (PDF/UA-1), fit for an "
             "archive (PDF/A-2a), with its fonts inside. Letters the fonts have not are printed as a replacement mark. "
-            "An installation without the typesetter refuses with the code `not-installed`. The same question gives "
-            "the same bytes for the same version of the service. Nothing is stored; retry freely."
+            "An installation without the typesetter answers 422, `unanswerable-question`, with the code "
+            "`not-installed`; ask it for the sheet as HTML. The same question gives the same bytes for the same "
+            "version of the service. Nothing is stored; retry freely."
         ),
         question=SheetQuestion,
         answer=bytes,
@@ -59,8 +60,8 @@ SHEET_OPERATIONS: tuple[Operation[Any, Any], ...] = (
         summary="Draw one figure of a design",
         description=(
             "Designs the loop and draws one figure of its sheet as SVG, with a title and a description for screen "
-            "readers. Refused with the code `nothing-to-draw` where the answer has no numbers for the figure, such as "
-            "fill pressures of a vessel without a fill window. Nothing is stored; retry freely."
+            "readers. Answered 422 with the code `nothing-to-draw` where the answer has no numbers for the figure, "
+            "such as fill pressures of a vessel without a fill window. Nothing is stored; retry freely."
         ),
         question=FigureQuestion,
         answer=bytes,

@@ -19,6 +19,12 @@ from loopslack.contract.quantity import (
 
 AreaBasis = Literal["gross", "aperture", "absorber"]
 EmptyingClass = Literal["good", "fair", "poor"]
+EMPTYING_CLASSES: dict[str, str] = {
+    "good": "Both connections at the bottom, nothing can be trapped",
+    "fair": "Some liquid stays behind and boils off",
+    "poor": "Connections at the top or sagging pipes: much liquid stays behind and boils off",
+}
+"""What the classes mean."""
 Label = Annotated[str, Meta(min_length=1, max_length=64)]
 
 

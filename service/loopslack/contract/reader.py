@@ -183,8 +183,9 @@ class Reader:
         high = (field.high + datum - offset) / scale
         self.refuse(
             OutOfRange(
-                f"The {field.title} is {value:g} {unit}; it must lie from {low:.4g} to {high:.4g} {unit}.",
-                remedy=_remedy(field, unit),
+                f"The {field.title} is {_plain(value)} {unit}; "
+                f"it must lie from {_plain(low)} to {_plain(high)} {unit}.",
+                remedy=_remedy(field, unit, value, low, high),
                 pointer=f"{place}/{field.name}",
                 facts={"value": value, "low": low, "high": high, "unit": unit},
             )
@@ -193,9 +194,24 @@ class Reader:
         return self.stand_in(near, far, (near + far) / 2)
 
 
-def _remedy(field: Field, unit: str) -> str:
-    others = ", ".join(other for other in field.kind.units if other != unit)
-    return f"Check the number and its unit; {others} would do as well." if others else "Check the number."
+def _remedy(field: Field, unit: str, value: float, low: float, high: float) -> str:
+    if unit.endswith("percent") and 0 < value < 1 and low <= 100 * value <= high:
+        return (
+            f"It counts in percent: state {_plain(100 * value)} if {_plain(value)} was meant as a fraction."
+        )
+    others = [other for other in field.kind.units if other != unit]
+    if not others:
+        return "Check the number."
+    listed = ", ".join(others[:-1]) + f" and {others[-1]}" if len(others) > 1 else others[0]
+    return f"Check the number and its unit; {listed} {'are' if len(others) > 1 else 'is'} accepted too."
+
+
+def _plain(number: float) -> str:
+    """A number as a person writes it, without a power of ten where it is not needed."""
+    text = f"{number:.6g}" if abs(number) < 1 else f"{number:.4g}"
+    return (
+        f"{float(text):.10f}".rstrip("0").rstrip(".") if "e" in text and 1e-6 <= abs(number) < 1e9 else text
+    )
 
 
 @lru_cache(maxsize=8192)

@@ -16,7 +16,16 @@ from loopslack.contract.problems import MOST_COUNTED, MOST_FAULTS, PROBLEM_TYPES
 from loopslack.kernel.errors import CalculationError, Refusals
 
 _OF_ONE_FIELD = frozenset(
-    {"missing", "wrong-type", "not-a-member", "out-of-range", "unknown-field", "invalid"}
+    {
+        "missing",
+        "wrong-type",
+        "not-a-member",
+        "out-of-range",
+        "unknown-field",
+        "invalid",
+        "unknown-tube-standard",
+        "unknown-tube-size",
+    }
 )
 
 
@@ -82,10 +91,13 @@ def refusal_of_fields(faults: Sequence[FaultyField]) -> Refused:
 
 
 def refusal_of(error: CalculationError) -> Refused:
-    """The refusal that a calculation's own error becomes, with every cause the caller should see."""
+    """The refusal that a calculation's own error becomes, with every cause the caller should see.
+
+    It is one of fields as soon as a single member is at fault; what the others contradict in each other stands beside.
+    """
     causes = error.errors if isinstance(error, Refusals) else (error,)
     faults = [fault_of(cause) for cause in causes]
-    if all(map(_is_of_one_field, causes)):
+    if any(map(_is_of_one_field, causes)):
         return refusal_of_fields(faults)
     detail = (
         faults[0].message
@@ -108,12 +120,17 @@ def fault_of(cause: CalculationError, within: str = "") -> FaultyField:
         code=cause.code,
         message=f"{cause.message.rstrip()} {remedy}".rstrip(),
         parameters={name: _shown(fact) for name, fact in cause.facts.items() if _is_number(fact)},
-        words={name: str(fact) for name, fact in cause.facts.items() if not _is_number(fact)},
+        words={name: _said(fact) for name, fact in cause.facts.items() if not _is_number(fact)},
     )
 
 
 def _is_number(fact: object) -> TypeGuard[float]:
     return isinstance(fact, int | float) and not isinstance(fact, bool) and math.isfinite(fact)
+
+
+def _said(fact: object) -> str:
+    """A list as its words, separated by commas."""
+    return ", ".join(map(str, fact)) if isinstance(fact, list | tuple) else str(fact)
 
 
 def _shown(fact: float) -> float:

@@ -61,6 +61,10 @@ _FILES: Mapping[str, str] = {
 }
 
 
+MOST_LISTED = 16
+"""Names a message lists; of longer lists it gives only the nearest, if there are any."""
+
+
 @cache
 def tube_standards() -> Mapping[str, TubeStandard]:
     """Every standard with every size, by its id; read once."""
@@ -105,12 +109,26 @@ def _plain(size: str) -> str:
 
 
 def _hint(word: str, known: tuple[str, ...], otherwise: str) -> str:
-    near = get_close_matches(word, known, n=3, cutoff=0.5)
-    return (
-        f"Did you mean {' or '.join(near)}? {otherwise}"
-        if near
-        else f"Known: {', '.join(known)}. {otherwise}"
-    )
+    near = _near(word, known)
+    listed = "" if near and len(known) > MOST_LISTED else f"Known: {', '.join(known)}. "
+    meant = f"Did you mean {' or '.join(near)}? " if near else ""
+    return f"{meant}{listed}{otherwise}"
+
+
+def _near(word: str, known: tuple[str, ...]) -> list[str]:
+    """Sizes of the same outer diameter, the nearest wall first; else names that are spelt alike."""
+    outer, by, wall = word.partition("x")
+    same = [name for name in known if by and name.partition("x")[0] == outer]
+    if not same:
+        return get_close_matches(word, known, n=3, cutoff=0.5)
+    return sorted(same, key=lambda name: _apart(wall, name.partition("x")[2]))[:3]
+
+
+def _apart(wall: str, other: str) -> float:
+    try:
+        return abs(float(wall) - float(other))
+    except ValueError:
+        return 0.0
 
 
 def _standard(id: str, rows: Table) -> TubeStandard:

@@ -21,7 +21,10 @@ from contextlib import suppress
 from http import HTTPStatus
 from typing import TYPE_CHECKING, Any
 
-from gunicorn.asgi.protocol import ASGIProtocol  # type: ignore[import-untyped]  # gunicorn ships no types
+from gunicorn.asgi.protocol import (  # type: ignore[import-untyped]  # gunicorn ships no types
+    _REASON_PHRASES,
+    ASGIProtocol,
+)
 
 if TYPE_CHECKING:
     from asyncio import TimerHandle
@@ -66,6 +69,10 @@ def seconds_allowed(variable: str, default: float) -> float:
     if not 0.1 <= seconds <= 3600.0:
         raise ValueError(f"{variable} must lie between 0.1 and 3600 seconds, not {text!r}")
     return seconds
+
+
+for _status in HTTPStatus:  # gunicorn has no phrase for some, such as 406, and would call it unknown
+    _REASON_PHRASES.setdefault(_status.value, _status.phrase)
 
 
 class Limits:

@@ -9,9 +9,9 @@ from loopslack.api.docs.codes import code_pages
 from loopslack.api.docs.contract import contract
 from loopslack.api.docs.frame import ASSETS, REVALIDATED
 from loopslack.api.docs.knowledge import knowledge_pages
-from loopslack.api.docs.operations import operation_pages
+from loopslack.api.docs.operations import operation_pages, question_files
 from loopslack.api.docs.schemas import schema_pages
-from loopslack.api.docs.start import start_page
+from loopslack.api.docs.start import FIRST_QUESTION, start_page
 from loopslack.api.docs.tryout import try_page
 from loopslack.api.reference import Page
 
@@ -34,6 +34,13 @@ def _pages() -> tuple[Page, ...]:
         start_page(told),
         try_page(told),
         *operation_pages(told),
+        *question_files(told),
+        Page(
+            path=FIRST_QUESTION,
+            media_type="application/json",
+            body=asset("first-question.json"),
+            cache_control=REVALIDATED,
+        ),
         *schema_pages(told),
         clients_page(),
         *code_pages(told),

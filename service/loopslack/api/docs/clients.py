@@ -45,9 +45,20 @@ def clients_page() -> Page:
         "Every member and every constant has a name that survives unchanged in all four languages.",
         "Send a question again whenever the network failed: it changes nothing, and the answer is the same.",
         "Pass over members, codes and words you do not know; an answer may gain some within version 1.",
-        "An optional member may be sent as `null`, which counts as absent.",
+        (
+            "An optional member may be sent as `null`, which counts as absent. An answer has no `null`: what it does "
+            "not have is absent, which some generators tell apart from null as unset."
+        ),
         "Read the verdict before the vessel. `chosenVessel` is absent where the design does not hold.",
-        "Streams of lines are left out by these settings: read and write them with any HTTP client.",
+        (
+            "Streams of lines are left out by these settings: read and write them with any HTTP client. Generated "
+            "clients wait for the whole body, and some do not know the media type `application/x-ndjson` at all."
+        ),
+        "Pages, drawings and PDFs may come as raw content, in place of a file or a text: save the bytes as they are.",
+        (
+            "Other generators work too, as far as they know OpenAPI 3.1. Where one gives no type for an answer, read "
+            "the JSON of the body; where it cannot read the document, ask without one: a question is one `POST`."
+        ),
     ]
     sections.append(
         Section(
@@ -59,7 +70,9 @@ def clients_page() -> Page:
     lead = joined(
         "Generate a client from ",
         code("/v1/openapi.json"),
-        " with the settings below, which are part of this project. The first calls compile and are run against the "
-        "service before each release, the Swift one is checked for its syntax.",
+        (
+            " with the settings below, which are part of this project. The first calls compile and are run against the "
+            "service before each release, the Swift one is checked for its syntax."
+        ),
     )
     return framed("/docs/clients", "Generated clients", lead, sections)

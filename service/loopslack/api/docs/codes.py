@@ -51,6 +51,7 @@ def _checks(contract: Contract) -> Page:
         Section(anchor="doubts", title="Doubts", body=_doubts(contract)),
         Section(anchor="checks", title="Checks", body=_check_codes()),
         Section(anchor="reasons", title="Reasons", body=_coded("Why there is no number", "reason", REASONS)),
+        Section(anchor="refused", title="Refused vessels", body=_refused(contract)),
         Section(anchor="to-confirm", title="To be confirmed", body=_to_confirm()),
         Section(anchor="advisories", title="Advisories", body=_advisories(contract)),
         Section(anchor="cautions", title="Cautions", body=_cautions()),
@@ -104,6 +105,15 @@ def _check_codes() -> Html:
             "never a pass."
         ),
         table("Codes of checks", ("code", "what is compared", "what to do if it fails"), rows),
+    )
+
+
+def _refused(contract: Contract) -> Html:
+    return joined(
+        paragraph(
+            "Why a vessel of a series or of a stock is not chosen, each with its numbers in `reasons`."
+        ),
+        _words(contract, "VesselRefusal"),
     )
 
 

@@ -6,7 +6,7 @@ Must not live here: anything the OpenAPI document does not say.
 from collections.abc import Iterator
 
 from loopslack.api.docs.contract import Contract, Described, Schema, name_of
-from loopslack.api.docs.frame import Section, framed
+from loopslack.api.docs.frame import REVALIDATED, Section, framed
 from loopslack.api.docs.markup import (
     Html,
     code,
@@ -21,6 +21,7 @@ from loopslack.api.docs.markup import (
 )
 from loopslack.api.docs.prose import phrase, prose
 from loopslack.api.docs.schemas import members
+from loopslack.api.docs.start import SERVICE
 from loopslack.api.reference import Page
 
 _JSON = "application/json"
@@ -33,6 +34,29 @@ def operation_pages(contract: Contract) -> Iterator[Page]:
     yield _index(contract)
     for operation in contract.operations:
         yield _page(contract, operation)
+
+
+def question_path(operation: Described, name: str, media_type: str) -> str:
+    """Where the question of an example can be had as a file."""
+    return f"/docs/questions/{operation.id}/{name}.{'json' if media_type == _JSON else 'ndjson'}"
+
+
+def question_files(contract: Contract) -> Iterator[Page]:
+    """The question of every example, as a file to send."""
+    for operation in contract.operations:
+        asked = operation.question()
+        if asked is None:
+            continue
+        media_type, content = asked
+        for name, example in contract.examples(content).items():
+            value = example["value"]
+            text = value if isinstance(value, str) else json_text(value) + "\n"
+            yield Page(
+                path=question_path(operation, name, media_type),
+                media_type=media_type,
+                body=text.encode(),
+                cache_control=REVALIDATED,
+            )
 
 
 def plate(operation: Described) -> Html:
@@ -125,8 +149,10 @@ def _parameters(contract: Contract, parameters: list[Schema]) -> Html | None:
 def _body(contract: Contract, operation: Described, media_type: str, content: Schema) -> Html:
     examples = contract.examples(content)
     shown = next(iter(examples), None)
-    name = f"{shown}.json" if media_type == _JSON else "lines.ndjson"
+    path = None if shown is None else question_path(operation, shown, media_type)
+    name = "question.json" if path is None else path.rpartition("/")[2]
     command = (
+        f"{SERVICE}"
         f'curl "$SERVICE{operation.path}" \\\n'
         f"  --header 'Content-Type: {media_type}' \\\n"
         f"  --data-binary @{name}"
@@ -134,6 +160,7 @@ def _body(contract: Contract, operation: Described, media_type: str, content: Sc
     return joined(
         tag("p", "Media type ", code(media_type), "."),
         listing(command, "Command that sends the question"),
+        None if path is None else tag("p", "The file: ", link(path, code(name)), "."),
         _content(contract, content),
         [_shown(each, "Question") for each in examples.values()],
     )

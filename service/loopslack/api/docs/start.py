@@ -23,6 +23,10 @@ from loopslack.contract.questions import LoopDesignQuestion
 from loopslack.settings import PREFIX, Settings
 
 ADDRESS = "http://127.0.0.1:8000"
+SERVICE = f"SERVICE={ADDRESS}   # or the address this page came from\n"
+"""First line of a command: pages are made before anybody knows under which address they will be read."""
+
+FIRST_QUESTION = "/docs/questions/first-question.json"
 
 
 def first_question() -> object:
@@ -64,7 +68,7 @@ def _chapters(description: str) -> dict[str, str]:
 
 def _first_request() -> Html:
     command = (
-        f"SERVICE={ADDRESS}\n"
+        f"{SERVICE}"
         'curl "$SERVICE/v1/loop-design" \\\n'
         "  --header 'Content-Type: application/json' \\\n"
         "  --data-binary @first-question.json"
@@ -73,7 +77,7 @@ def _first_request() -> Html:
         tag(
             "p",
             "A dozen numbers make a first quote. Save this as ",
-            code("first-question.json"),
+            link(FIRST_QUESTION, code("first-question.json")),
             ", or send it from the page ",
             link("/docs/try", "Try it"),
             " without leaving the browser.",

@@ -9,7 +9,7 @@ from msgspec import Struct
 from loopslack.api.docs.contract import Contract, Schema
 from loopslack.api.docs.frame import Section, framed
 from loopslack.api.docs.markup import Html, code, data_block, joined, json_text, link, listing, tag
-from loopslack.api.docs.start import ADDRESS, first_question
+from loopslack.api.docs.start import SERVICE, first_question
 from loopslack.api.docs.words import STATES, UNIT_SIGNS, VERDICT_HINTS
 from loopslack.api.reference import Page
 from loopslack.library.tubes import tube_standards
@@ -148,7 +148,10 @@ def _form(contract: Contract, examples: dict[str, Schema]) -> Html:
 
 
 def _without_script() -> Html:
-    command = f"curl {ADDRESS}/v1/loop-design --header 'Content-Type: application/json' --data-binary @question.json"
+    command = (
+        f"{SERVICE}"
+        "curl \"$SERVICE/v1/loop-design\" --header 'Content-Type: application/json' --data-binary @question.json"
+    )
     told = "The form needs a script, which your browser does not run. Send the question below by other means:"
     return tag("noscript", tag("p", told, class_="note"), listing(command, "Command that sends a question"))
 

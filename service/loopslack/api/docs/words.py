@@ -100,6 +100,8 @@ METHOD_CODES: dict[str, str] = {
     "unknown-tube-size": "The standard has no tube of this nominal size.",
     "unknown-sizing-rule": "There is no sizing rule of this name.",
     "other-physics": "The loop is open or drains back; this service computes closed loops under pressure only.",
+    "nothing-to-draw": "The answer has no numbers for the figure asked for.",
+    "not-installed": "This installation has no typesetter, so it gives no sheet as PDF; ask for the sheet as HTML.",
     "course-not-applicable": "The day without flow cannot be followed for this loop; the message says why.",
 }
 """Codes of `errors` that a method adds to those every operation can give."""

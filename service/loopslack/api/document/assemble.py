@@ -15,7 +15,7 @@ from loopslack.api.document.analysis_names import ANALYSIS_LISTS, ANALYSIS_UNION
 from loopslack.api.document.answer_names import ANSWER_LISTS, ANSWER_UNIONS, SCHEMA_NAMES
 from loopslack.api.document.audit_names import AUDIT_LISTS
 from loopslack.api.document.examples import ExampleBook, Harvest
-from loopslack.api.document.headers import HEADERS, PARAMETERS
+from loopslack.api.document.headers import HEADERS, KEY, PARAMETERS, SCHEME
 from loopslack.api.document.overview import DESCRIPTION, SUMMARY, TAGS, TITLE
 from loopslack.api.document.paths import PathBook
 from loopslack.api.document.problem_responses import ProblemResponses
@@ -59,7 +59,7 @@ def assembled(operations: Iterable[Operation[Any, Any]], examples: Path) -> Sche
             "license": {"name": "MIT", "identifier": "MIT"},
         },
         "servers": [{"url": "/", "description": "The service that sent this document."}],
-        "security": [],
+        "security": [{}, {KEY: []}],
         "tags": _tags(paths.paths),
         "paths": paths.paths,
         "components": {
@@ -67,6 +67,7 @@ def assembled(operations: Iterable[Operation[Any, Any]], examples: Path) -> Sche
             "responses": dict(sorted(responses.responses.items())),
             "parameters": PARAMETERS,
             "headers": {name: header for name, (_, header) in HEADERS.items()},
+            "securitySchemes": {KEY: SCHEME},
             "examples": paths.examples,
         },
     }

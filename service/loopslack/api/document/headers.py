@@ -111,6 +111,15 @@ PARAMETERS: dict[str, Schema] = {
 }
 """Parameters by component name."""
 
+KEY = "key"
+SCHEME: Schema = {
+    "type": "http",
+    "scheme": "bearer",
+    "description": "A key from whoever runs the service, sent as `Authorization: Bearer`. Most installations ask for "
+    "none; one that does answers 401 without it.",
+}
+"""The security scheme and its component name."""
+
 
 def header_references(*names: str) -> Schema:
     """The `headers` member of a response that carries the named headers."""

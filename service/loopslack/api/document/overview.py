@@ -39,8 +39,13 @@ whether the relief valve opens, whether the membrane survives, and what would me
 * Numbers are rounded once, to six significant digits, after all verdicts were taken.
 * Members that would be empty are absent. Members may be added to answers within version 1, so ignore what
   you do not know. Questions and quantities are closed.
+* The closed lists of words that answers use never grow within version 1. Codes of checks, advisories,
+  cautions and refusals are texts and may.
 
 ## Refusals
+
+Every path also has `OPTIONS`, which tells its methods in `Allow`, and those with `GET` have `HEAD`. A key is
+asked for only where whoever runs the service has said so.
 
 Whatever cannot be answered comes back as a problem document (RFC 9457) with *all* faulty members, each with
 a JSON Pointer, a stable code and a message that names value, rule and remedy. Before the service sees a

@@ -11,6 +11,7 @@ from loopslack.contract import questions_fluid as fluid
 from loopslack.contract import questions_pipes as pipes
 from loopslack.contract import questions_plant as plant
 from loopslack.contract import questions_vessels as vessels
+from loopslack.contract.questions_collectors import EMPTYING_CLASSES
 
 QUESTION_LISTS: tuple[NamedValues, ...] = (
     named(
@@ -42,11 +43,7 @@ QUESTION_LISTS: tuple[NamedValues, ...] = (
     named(
         "EmptyingClass",
         "How well a collector field lets its steam push the liquid out; the rest boils off.",
-        {
-            "good": "Both connections at the bottom, nothing can be trapped",
-            "fair": "Some liquid stays behind and boils off",
-            "poor": "Connections at the top or sagging pipes: much liquid stays behind and boils off",
-        },
+        EMPTYING_CLASSES,
     ),
     named(
         "DoubtPolicy",

@@ -60,6 +60,7 @@ def upkeep_paths(schemas: SchemaBook, responses: ProblemResponses) -> dict[str, 
                 "summary": summary,
                 "description": description,
                 "parameters": parameter_references("RequestId"),
+                "security": [],
                 "responses": answers | responses.references(slugs),
             }
         }

@@ -26,7 +26,7 @@ from loopslack.contract.strict import drafts
 from loopslack.contract.strict.drafts import Draft
 from loopslack.contract.strict.field_rules import Leaf, broken_rules, size, wrong_type
 from loopslack.contract.strict.findings import EnoughError, Findings, escaped, first_fault, sentence
-from loopslack.contract.strict.hints import expectation, listing
+from loopslack.contract.strict.hints import expectation, listing, words_near
 from loopslack.kernel.errors import CalculationError
 
 
@@ -69,7 +69,7 @@ class _Walk(Findings):
 
     def _leaf(self, value: object, kind: inspect.Type, pointer: str, member: inspect.Type) -> Draft:
         before = len(self.found)
-        self.add_all(pointer, broken_rules(value, kind, self.may_hint()))
+        self.add_all(pointer, broken_rules(value, kind, member, hint=self.may_hint()))
         if len(self.found) > before:
             return self._in_place_of(member, pointer)
         return drafts.fixed(float(value) if isinstance(kind, inspect.FloatType) else value)  # type: ignore[arg-type] # it broke no rule of numbers
@@ -87,7 +87,7 @@ class _Walk(Findings):
         fitting = next((option for option in options if _json_type_fits(value, option)), None)
         if fitting is not None:
             return self.walk(value, fitting, pointer, member)
-        self.add(pointer, *wrong_type(value, inspect.UnionType(tuple(options))))
+        self.add_all(pointer, [wrong_type(value, inspect.UnionType(tuple(options)))])
         return self._in_place_of(member, pointer)
 
     def _variant(
@@ -109,11 +109,26 @@ class _Walk(Findings):
             self.add(f"{pointer}/{tag_name}", "missing", message)
         else:
             self.add_word(f"{pointer}/{tag_name}", tag, tuple(by_tag))
+        near = words_near(tag, by_tag) if isinstance(tag, str) and self.may_hint() else ()
+        self._whichever_is_meant(value, [by_tag[word] for word in near] or variants, pointer)
         return self._in_place_of(member, pointer)
+
+    def _whichever_is_meant(
+        self, value: Mapping[str, object], variants: list[inspect.StructType], pointer: str
+    ) -> None:
+        """Report what is wrong with the other members, whichever of the variants is meant."""
+        searches = []
+        for variant in variants:
+            search = _Walk()
+            others = {name: entry for name, entry in value.items() if name != variant.tag_field}
+            with suppress(EnoughError):
+                search._members(others, variant, pointer)
+            searches.append(search)
+        self.add_shared(searches)
 
     def _object(self, value: object, kind: inspect.StructType, pointer: str, member: inspect.Type) -> Draft:
         if not isinstance(value, dict):
-            self.add(pointer, *wrong_type(value, kind))
+            self.add_all(pointer, [wrong_type(value, kind)])
             return self._in_place_of(member, pointer)
         sound = _sound(value, kind)
         if sound is not None:
@@ -165,7 +180,7 @@ class _Walk(Findings):
         self, value: object, kind: inspect.ListType | inspect.VarTupleType, pointer: str, member: inspect.Type
     ) -> Draft:
         if not isinstance(value, list):
-            self.add(pointer, *wrong_type(value, kind))
+            self.add_all(pointer, [wrong_type(value, kind)])
             return self._in_place_of(member, pointer)
         self.add_all(pointer, size(len(value), kind.min_length, kind.max_length, "entries"))
         stated = [self.walk(entry, kind.item_type, f"{pointer}/{place}") for place, entry in enumerate(value)]
@@ -175,7 +190,7 @@ class _Walk(Findings):
 
     def _mapping(self, value: object, kind: inspect.DictType, pointer: str, member: inspect.Type) -> Draft:
         if not isinstance(value, dict):
-            self.add(pointer, *wrong_type(value, kind))
+            self.add_all(pointer, [wrong_type(value, kind)])
             return self._in_place_of(member, pointer)
         self.add_all(pointer, size(len(value), kind.min_length, kind.max_length, "members"))
         for name, entry in value.items():

@@ -1,18 +1,29 @@
 """The rules of a single value (number, text, word of a list) and what is said when one is broken.
 
-Each function tells the code and message of every broken rule; where the value stands and what lies around it
+Each function tells every broken rule; where the value stands and what lies around it
 is known in `faults`.
 """
 
 import math
 import re
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
+from typing import NamedTuple
 
 from msgspec import inspect
 
-from loopslack.contract.strict.hints import expectation, listing, shown, words_near
+from loopslack.contract.strict.hints import example_of, expectation, listing, meanings, shown, words_near
 
-Broken = Iterator[tuple[str, str]]
+
+class Broke(NamedTuple):
+    """A broken rule: its code, what is said of it, and the numbers and words behind the message."""
+
+    code: str
+    message: str
+    parameters: Mapping[str, float] = {}
+    words: Mapping[str, str] = {}
+
+
+Broken = Iterator[Broke]
 Leaf = (
     inspect.FloatType
     | inspect.IntType
@@ -25,13 +36,13 @@ Leaf = (
 """Types without members."""
 
 
-def broken_rules(value: object, kind: inspect.Type, hint: bool) -> Broken:  # noqa: FBT001 - said by name
-    """Code and message of every rule a value without members breaks."""
+def broken_rules(value: object, kind: inspect.Type, member: inspect.Type, *, hint: bool) -> Broken:
+    """Every rule a value without members breaks; ``member`` describes it as its member does."""
     match kind:
         case inspect.FloatType() | inspect.IntType():
             yield from _number(value, kind)
         case inspect.StrType():
-            yield from _text(value, kind)
+            yield from _text(value, kind, member)
         case inspect.EnumType():
             yield from word(value, tuple(member.value for member in kind.cls), hint=hint)
         case inspect.LiteralType():
@@ -44,16 +55,20 @@ def broken_rules(value: object, kind: inspect.Type, hint: bool) -> Broken:  # no
                 yield wrong_type(value, kind)
 
 
-def wrong_type(value: object, kind: inspect.Type) -> tuple[str, str]:
-    """Code and message of a value of another JSON type than expected."""
+def wrong_type(value: object, kind: inspect.Type) -> Broke:
+    """A value of another JSON type than expected; null is one only where the member may not be absent."""
     remedy = ""
     if isinstance(value, str) and isinstance(kind, inspect.FloatType | inspect.IntType):
         remedy = " Send the number without quotes."
     elif value is None:
-        remedy = " Leave the member out if there is nothing to state."
-    elif isinstance(value, int | float) and isinstance(kind, inspect.StructType):
+        remedy = " It must be stated."
+    elif isinstance(value, int | float) and _has_unit(kind):
         remedy = " State the number together with its unit."
-    return "wrong-type", f"{shown(value)} will not do here: {expectation(kind)} is expected.{remedy}"
+    return Broke("wrong-type", f"{shown(value)} will not do here: {expectation(kind)} is expected.{remedy}")
+
+
+def _has_unit(kind: inspect.Type) -> bool:
+    return isinstance(kind, inspect.StructType) and {field.name for field in kind.fields} == {"value", "unit"}
 
 
 def word(value: object, words: tuple[object, ...], *, hint: bool) -> Broken:
@@ -61,29 +76,32 @@ def word(value: object, words: tuple[object, ...], *, hint: bool) -> Broken:
     if value in words and not isinstance(value, bool):
         return
     if not isinstance(value, str):
-        yield "wrong-type", f"{shown(value)} will not do here: one of {listing(words)} is expected."
+        yield Broke("wrong-type", f"{shown(value)} will not do here: one of {listing(words)} is expected.")
         return
     near = words_near(value, words) if hint else ()
     remedy = f"Did you mean {listing(near, last='or')}?" if near else "State one of them."
-    yield "not-a-member", f"{shown(value)} is none of {listing(words)}. {remedy}"
+    message = f"{shown(value)} is none of {listing(words)}. {remedy}{meanings(words, near)}"
+    yield Broke("not-a-member", message, words={"near": ", ".join(near)} if near else {})
 
 
 def size(count: int, least: int | None, most: int | None, what: str) -> Broken:
     """The number of entries, members or characters."""
     short, long = ("too-short", "too-long") if what == "characters" else ("too-few", "too-many")
     if least is not None and count < least:
-        yield short, f"There are {count} {what}; at least {least} are needed. Add to them."
+        message = f"There are {count} {what}; at least {least} are needed. Add to them."
+        yield Broke(short, message, {"count": count, "low": least})
     if most is not None and count > most:
-        yield long, f"There are {count} {what}; at most {most} are taken. Shorten it."
+        message = f"There are {count} {what}; at most {most} are taken. Shorten it."
+        yield Broke(long, message, {"count": count, "high": most})
 
 
 def _number(value: object, kind: inspect.FloatType | inspect.IntType) -> Broken:
     if isinstance(value, bool) or not isinstance(value, int | float):
         yield wrong_type(value, kind)
     elif not _finite(value):
-        yield "out-of-range", "The number is larger than any this service can hold. Correct it."
+        yield Broke("out-of-range", "The number is larger than any this service can hold. Correct it.")
     elif isinstance(kind, inspect.IntType) and isinstance(value, float):
-        yield "wrong-type", f"{shown(value)} is no whole number. State a whole number."
+        yield Broke("wrong-type", f"{shown(value)} is no whole number. State a whole number.")
     else:
         rules = (
             ("at least", kind.ge, kind.ge is None or value >= kind.ge),
@@ -94,7 +112,15 @@ def _number(value: object, kind: inspect.FloatType | inspect.IntType) -> Broken:
         )
         if not all(kept for _, _, kept in rules):
             rule = " and ".join(f"{words} {limit:g}" for words, limit, _ in rules if limit is not None)
-            yield "out-of-range", f"{shown(value)} is outside the range: it must be {rule}. Correct it."
+            message = f"{shown(value)} is outside the range: it must be {rule}. Correct it."
+            yield Broke("out-of-range", message, _limits(value, kind))
+
+
+def _limits(value: float, kind: inspect.FloatType | inspect.IntType) -> dict[str, float]:
+    low = kind.ge if kind.ge is not None else kind.gt
+    high = kind.le if kind.le is not None else kind.lt
+    named = {"value": value, "low": low, "high": high}
+    return {name: float(number) for name, number in named.items() if number is not None}
 
 
 def _finite(value: float) -> bool:
@@ -104,10 +130,17 @@ def _finite(value: float) -> bool:
         return False
 
 
-def _text(value: object, kind: inspect.StrType) -> Broken:
+def _text(value: object, kind: inspect.StrType, member: inspect.Type) -> Broken:
     if not isinstance(value, str):
         yield wrong_type(value, kind)
         return
     yield from size(len(value), kind.min_length, kind.max_length, "characters")
     if kind.pattern is not None and not re.search(kind.pattern, value[:10_000]):
-        yield "pattern", f"{shown(value)} does not have the form {kind.pattern}. Rewrite it."
+        like = example_of(member)
+        form = (
+            f"the form {kind.pattern}"
+            if like is None
+            else f"the form expected, which is that of {shown(like)}"
+        )
+        words = {"pattern": kind.pattern} | ({} if like is None else {"example": str(like)})
+        yield Broke("pattern", f"{shown(value)} does not have {form}. Rewrite it.", words=words)

@@ -4,13 +4,13 @@ Where the faults are is found in `faults`.
 """
 
 import re
-from collections.abc import Iterable
+from collections.abc import Iterable, Sequence
 
 import msgspec
 
 from loopslack.contract.problems import MOST_COUNTED, MOST_FAULTS, FaultyField
 from loopslack.contract.refusals import fault_of
-from loopslack.contract.strict.field_rules import word
+from loopslack.contract.strict.field_rules import Broke, word
 from loopslack.contract.strict.hints import listing, members_near, shown
 from loopslack.kernel.errors import CalculationError, Refusals
 
@@ -38,10 +38,27 @@ class Findings:
             raise EnoughError
         self.found.append(fault)
 
-    def add_all(self, pointer: str, broken: Iterable[tuple[str, str]]) -> None:
+    def add_all(self, pointer: str, broken: Iterable[Broke]) -> None:
         """Keep the faults of one value."""
-        for code, message in broken:
-            self.add(pointer, code, message)
+        for one in broken:
+            self._keep(
+                FaultyField(
+                    pointer=pointer,
+                    code=one.code,
+                    message=one.message,
+                    parameters=dict(one.parameters),
+                    words=dict(one.words),
+                )
+            )
+
+    def add_shared(self, searches: Sequence["Findings"]) -> None:
+        """Keep the faults that each of several searches has found in the same words."""
+        told = [
+            {(fault.pointer, fault.code, fault.message) for fault in other.found} for other in searches[1:]
+        ]
+        for fault in searches[0].found:
+            if all((fault.pointer, fault.code, fault.message) in known for known in told):
+                self._keep(fault)
 
     def add_cause(self, cause: CalculationError, pointer: str) -> None:
         """Take over a fault that the question's own rules found at this place."""

@@ -4,16 +4,58 @@ Only wording and near misses live here; which rule was broken is decided in `fau
 """
 
 import json
-from collections.abc import Iterable
+from collections.abc import Iterable, Mapping, Sequence
 from difflib import get_close_matches
 
 from msgspec import inspect
+
+from loopslack.contract.questions_collectors import EMPTYING_CLASSES
+from loopslack.kernel.units import GAUGE_UNITS
 
 LONGEST_SHOWN = 60
 """Characters of a caller's own value that a message repeats."""
 
 MOST_LISTED = 16
 """Words a message lists before it only counts the rest."""
+
+_ALSO_CALLED: dict[str, tuple[str, ...]] = {
+    "c": ("degC",),
+    "celsius": ("degC",),
+    "centigrade": ("degC",),
+    "f": ("degF",),
+    "fahrenheit": ("degF",),
+    "kelvin": ("K",),
+    "degk": ("K",),
+    "bar": ("barg", "bara"),
+    "kpa": ("kPag", "kPaa"),
+    "psi": ("psig", "psia"),
+    "metre": ("m",),
+    "metres": ("m",),
+    "meter": ("m",),
+    "meters": ("m",),
+    "inch": ("in",),
+    "inches": ("in",),
+    "feet": ("ft",),
+    "foot": ("ft",),
+    "litre": ("L",),
+    "litres": ("L",),
+    "liter": ("L",),
+    "liters": ("L",),
+    "gal": ("gal_us", "gal_uk"),
+    "gallon": ("gal_us", "gal_uk"),
+    "gallons": ("gal_us", "gal_uk"),
+    "sqm": ("m2",),
+    "sqft": ("ft2",),
+    "volpercent": ("volume-percent",),
+    "vol": ("volume-percent",),
+    "masspercent": ("mass-percent",),
+    "wtpercent": ("mass-percent",),
+    "wt": ("mass-percent",),
+}
+"""What units are also called, plainly spelt, and the unit or units that may be meant."""
+
+_MEANINGS: tuple[Mapping[str, str], ...] = (EMPTYING_CLASSES,)
+"""Meanings of lists of words whose words alone do not say which to choose."""
 
 _NAMES: tuple[tuple[tuple[type[inspect.Type], ...], str], ...] = (
     ((inspect.FloatType,), "a number"),
@@ -74,7 +116,29 @@ def members_near(name: str, known: Iterable[str]) -> tuple[str, ...]:
 
 def words_near(word: str, words: Iterable[object]) -> tuple[str, ...]:
     """Words of a closed list a caller may have meant."""
-    return _near(word, {_plain(known): known for known in words if isinstance(known, str)})
+    known = {_plain(text): text for text in words if isinstance(text, str)}
+    units = _ALSO_CALLED.get(_plain(word[:64]), ())
+    return tuple(unit for unit in units if unit in known.values()) or _near(word, known)
+
+
+def meanings(words: Sequence[object], near: Sequence[str]) -> str:
+    """What a caller should know to choose among the words, where the words alone do not say it."""
+    if len(near) == 2 and near[0] in GAUGE_UNITS:
+        return f" {near[0]} counts from the atmosphere at the site, {near[1]} from vacuum."
+    for known in _MEANINGS:
+        if set(known) == set(words):
+            return "".join(f' "{word}": {meaning}.' for word, meaning in known.items())
+    return ""
+
+
+def example_of(kind: inspect.Type) -> object | None:
+    """The example a member is described with, if any."""
+    while isinstance(kind, inspect.Metadata):
+        examples = (kind.extra_json_schema or {}).get("examples")
+        if examples:
+            return examples[0]  # type: ignore[no-any-return] # of the member's own type
+        kind = kind.type
+    return None
 
 
 def _near(name: str, known: dict[str, str]) -> tuple[str, ...]:
