@@ -114,7 +114,10 @@ def _grid(canvas: Canvas, case: Case, across: Scale, up: Scale, bottom: float) -
         canvas.text((_LEFT - 5.0, up(tick) + 3.5), say.plain(label), "end", size=SMALL)
     for tick, label in tick_labels(across.ticks(8)):
         canvas.line((across(tick), bottom), (across(tick), bottom + 4.0), "ink")
-        canvas.text((across(tick), bottom + 14.0), say.plain(label), "middle", size=SMALL)
+        shown = say.plain(label)
+        # A long number at the end of the scale is moved inwards, or the paper's edge cuts it.
+        place = min(across(tick), WIDTH - 0.5 * width_of(shown, SMALL))
+        canvas.text((place, bottom + 14.0), shown, "middle", size=SMALL)
     canvas.line((_LEFT, bottom), (right, bottom), weight=1.2)
     canvas.line((_LEFT, _TOP), (_LEFT, bottom), weight=1.2)
     canvas.text(
