@@ -172,7 +172,7 @@ def test_a_body_of_fifty_megabytes_is_refused_before_it_is_read(server):
     assert memory(server) - before < 2
 
 
-def test_a_body_of_fifty_megabytes_that_was_not_announced_is_cut_at_the_limit(server):
+def test_a_sender_of_fifty_megabytes_that_were_not_announced_reads_why_they_are_refused(server):
     before = memory(server, "VmHWM")
     client = server.connect(timeout=30)
     client.sendall(
@@ -180,8 +180,8 @@ def test_a_body_of_fifty_megabytes_that_was_not_announced_is_cut_at_the_limit(se
         f"Transfer-Encoding: chunked\r\n\r\n".encode()
     )
     piece = b"10000\r\n" + b"x" * 65_536 + b"\r\n"
-    with pytest.raises(OSError, match=r"reset|Broken"):
-        client.sendall(piece * (50_000_000 // 65_536))
+    client.sendall(piece * (50_000_000 // 65_536))
+    assert client.recv(4096).startswith(b"HTTP/1.1 413")
     assert memory(server, "VmHWM") - before < 8
     assert stream(connection(server), lines(faulty("a")))[0] == 200
     assert server.log.read_text().count('"status":413') >= 2
