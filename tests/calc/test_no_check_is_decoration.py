@@ -3,7 +3,7 @@
 import pytest
 
 from calc import reference
-from calc.reference import BAR, ZERO, group, loop, run
+from calc.reference import BAR, ZERO, group, loop, run, stagnation_rise
 from loopslack.calc import checks, judge
 from loopslack.calc.design import Design, Request, design
 from loopslack.calc.judgement import Check
@@ -63,6 +63,31 @@ def test_a_failing_part_temperature_costs_verdict_and_vessel(monkeypatch) -> Non
     found = designed()
     assert found.judgement.verdict == "does-not-hold"
     assert found.chosen is None
+
+
+def lukewarm(nominal: float) -> Design:
+    """A loop whose collectors stay below boiling as far as is computed, with one vessel (m3) to choose from."""
+    still = ZERO + 30 + stagnation_rise(0.7 * 1000, 6.0, 0.03)
+    plain = group(peak_efficiency=0.7, linear_loss=6.0, quadratic_loss=0.03, stagnation_temperature=still)
+    vessel = Vessel(id="one", nominal_volume=nominal, rated_pressure=10 * BAR)
+    return design(loop(groups=(plain,)), Request((vessel,), 1, "size", "single"))
+
+
+def test_a_vessel_that_does_only_if_nothing_boils_is_too_small_where_that_is_not_measured() -> None:
+    small, large = lukewarm(25e-3), lukewarm(50e-3)
+    failed = [c for c in small.judgement.checks if c.core and c.verdict != "holds"]
+    assert [check.code for check in failed] == ["volume-without-boiling"]
+    assert failed[0].limit == small.volumes.floor > 25e-3
+    assert (small.judgement.verdict, small.chosen) == ("does-not-hold", None)
+    assert large.judgement.verdict == "holds"
+    assert large.chosen is not None
+
+
+def test_a_failing_volume_without_boiling_costs_verdict_and_vessel(monkeypatch) -> None:
+    original = checks.without_boiling
+    monkeypatch.setattr(checks, "without_boiling", lambda *a: failing(original(*a)))
+    found = lukewarm(50e-3)
+    assert (found.judgement.verdict, found.chosen) == ("does-not-hold", None)
 
 
 @pytest.mark.parametrize("scenario", SCENARIOS)

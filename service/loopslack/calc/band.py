@@ -71,11 +71,15 @@ Move = Callable[[Filling, float], Filling]
 
 
 def band(
-    fitted: Fit, fill: float, tolerances: Mapping[ToleranceId, float], policy: DoubtPolicy
+    fitted: Fit,
+    fill: float,
+    tolerances: Mapping[ToleranceId, float],
+    policy: DoubtPolicy,
+    least_volume: float = 0.0,
 ) -> Band | None:
     """The band of a filled vessel; None where no tolerance is stated.
 
-    ``tolerances`` are shares of one, K, m or Pa by id, as the input has it.
+    ``tolerances`` are shares of one, K, m or Pa by id, as the input has it; ``least_volume`` (m3) as for a judgement.
     """
     stated = {id: tolerance for id, tolerance in tolerances.items() if tolerance > 0}
     if not stated:
@@ -84,26 +88,35 @@ def band(
     rows, worse, better = [], present, present
     for id, tolerance in stated.items():
         move = _MOVES[id]
-        low = _outcome(move(present, -tolerance), fitted, policy)
-        high = _outcome(move(present, tolerance), fitted, policy)
+        low = _outcome(move(present, -tolerance), fitted, policy, least_volume)
+        high = _outcome(move(present, tolerance), fitted, policy, least_volume)
         rows.append(Row(id, low, high))
         up = _pressure(high) >= _pressure(low)
         worse = move(worse, tolerance if up else -tolerance)
         better = move(better, -tolerance if up else tolerance)
-    return Band(tuple(rows), _outcome(worse, fitted, policy), _outcome(better, fitted, policy))
+    ends = (_outcome(end, fitted, policy, least_volume) for end in (worse, better))
+    return Band(tuple(rows), *ends)
 
 
 def _pressure(outcome: Outcome) -> float:
     return float("inf") if outcome.pressure is None else outcome.pressure
 
 
-def _outcome(filling: Filling, fitted: Fit, policy: DoubtPolicy) -> Outcome:
+def _outcome(filling: Filling, fitted: Fit, policy: DoubtPolicy, least_volume: float) -> Outcome:
     """Judge a moved loop with the same vessel."""
     try:
         analysis = Analysis(filling.loop)
         mass = Bounds(analysis, (), filling.gas).mass(filling.gas.nominal, filling.fill)
         limit = fitted.vessel.membrane_limit or filling.loop.criteria.membrane_limit
-        found = judge(analysis, fitted.vessel, filling.gas, mass, policy=policy, membrane_limit=limit)
+        found = judge(
+            analysis,
+            fitted.vessel,
+            filling.gas,
+            mass,
+            policy=policy,
+            membrane_limit=limit,
+            least_volume=least_volume,
+        )
     except CalculationError:
         return Outcome("not-assessed", None, None, None, None, None)
     base = found.stagnation.get(BASE.id)

@@ -10,6 +10,7 @@ from loopslack.calc.analysis import Analysis, SteamCase
 from loopslack.calc.equilibrium import ROUNDING, Equilibrium
 from loopslack.calc.judgement import Check, CheckCode, CheckVerdict
 from loopslack.calc.model import Part, Relief
+from loopslack.calc.scenarios import BASE
 from loopslack.calc.states import LiquidState
 from loopslack.calc.window import Bounds, Window
 from loopslack.kernel import kinds
@@ -197,6 +198,11 @@ def pressure_to_withstand(analysis: Analysis, relief: Relief, height: float) -> 
     temperatures, fluid = analysis.loop.temperatures, analysis.fluid
     density = fluid.density(temperatures.fill if drop > 0 else temperatures.hot_liquid)
     return relief.set_pressure + density * GRAVITY * drop
+
+
+def without_boiling(nominal: float, least: float) -> Check:
+    """Nominal volume against the least that a loop is given which relies on its collectors not boiling, m3."""
+    return compare("volume-without-boiling", BASE.id, kinds.NOMINAL_VOLUME, nominal, least, at_most=False)
 
 
 def construction(analysis: Analysis) -> Iterator[Check]:

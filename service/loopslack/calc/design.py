@@ -34,6 +34,11 @@ class Volumes(NamedTuple):
     recommended: Sized | None
     robust: Sized | None
 
+    @property
+    def floor(self) -> float:
+        """Least volume (m3) accepted although a smaller one would hold, 0 where none applies or no volume holds."""
+        return max((sized.floor for sized in self if sized is not None), default=0.0)
+
 
 class Design(NamedTuple):
     """A designed loop.
@@ -65,7 +70,7 @@ def design(loop: Loop, request: Request) -> Design:
     limit = loop.criteria.membrane_limit
     scenarios = required(analysis, request.policy)
     selection = _select(analysis, scenarios, volumes.recommended, request)
-    asked = Asked(analysis, request.policy, request.cooling, request.fill_pressure)
+    asked = Asked(analysis, request.policy, request.cooling, request.fill_pressure, volumes.floor)
     shown = selection.chosen or nearest(asked, selection.refused)
     if request.fill_pressure is not None:
         shown = shown._replace(window=shown.window._replace(recommended=request.fill_pressure))
@@ -78,6 +83,7 @@ def design(loop: Loop, request: Request) -> Design:
         policy=request.policy,
         membrane_limit=limit if membrane is None else membrane,
         window=None if refused else shown.window if selection.chosen else None,
+        least_volume=volumes.floor,
     )
     counted = {scenario.id for scenario in scenarios}
     left = max(

@@ -42,14 +42,19 @@ def judge(
     policy: DoubtPolicy,
     membrane_limit: float,
     window: Window | None = None,
+    least_volume: float = 0.0,
 ) -> Judgement:
     """Judge vessels of one article, charged as ``gas`` and filled with ``mass`` kg.
 
-    ``window`` is that of the scenarios the policy requires, if it is known already.
+    ``window`` is that of the scenarios the policy requires, if it is known already; ``least_volume`` (m3) what a
+    vessel must have although a smaller one would do, 0 where nothing asks for it.
     """
     states = {id: _state(analysis, state, gas, mass) for id, state in analysis.states.by_id.items()}
     found = list(_static(analysis, vessel, gas, mass, states))
     found.append(_window(analysis, (BASE,), gas, mass, membrane_limit, None, BASE.id))
+    if least_volume > 0:
+        found.append(checks.without_boiling(gas.nominal, least_volume))
+    static = _worst(found)
     # The window that survives every required doubt counts with the doubts, not with the base case.
     joint = (
         []
@@ -70,7 +75,6 @@ def judge(
             own = list(_hot(analysis, scenario, gas, mass, result, membrane_limit))
         outcome[scenario.id] = _worst(own)
         found.extend(own)
-    static = _worst(check for check in found if check.state not in outcome or check.code == "fill-window")
     base = _worse(static, outcome[BASE.id])
     doubts: dict[str, DoubtVerdict] = dict.fromkeys(analysis.not_applicable, "not-applicable")
     for scenario in analysis.doubts:

@@ -26,6 +26,7 @@ CheckCode = Literal[
     "part-protected",
     "construction",
     "part-temperature",
+    "volume-without-boiling",
     "part-rating",
     "net-positive-suction",
     "relief-size",

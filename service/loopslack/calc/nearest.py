@@ -25,12 +25,16 @@ Badness = tuple[int, int, float, int, int]
 
 
 class Asked(NamedTuple):
-    """The loop with what is asked of a vessel in it; ``fill`` is a stated fill pressure, Pa absolute."""
+    """The loop with what is asked of a vessel in it; ``fill`` is a stated fill pressure, Pa absolute.
+
+    ``least`` is the least nominal volume, m3, that a loop relying on no boiling is given.
+    """
 
     analysis: Analysis
     policy: DoubtPolicy
     cooling: CoolingMode
     fill: float | None
+    least: float = 0.0
 
     @property
     def scenarios(self) -> tuple[Scenario, ...]:
@@ -78,7 +82,15 @@ def judged(asked: Asked, fitted: Fit) -> Judgement:
     vessel = fitted.vessel
     mass = fitted.mass if asked.fill is None else fitted.mass_at(asked.fill)
     limit = asked.limit(vessel)
-    return judge(fitted.analysis, vessel, fitted.gas, mass, policy=asked.policy, membrane_limit=limit)
+    return judge(
+        fitted.analysis,
+        vessel,
+        fitted.gas,
+        mass,
+        policy=asked.policy,
+        membrane_limit=limit,
+        least_volume=asked.least,
+    )
 
 
 def best_filled(asked: Asked, vessel: Vessel, pieces: int) -> Fit:

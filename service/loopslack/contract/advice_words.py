@@ -60,6 +60,10 @@ FAILING: dict[str, tuple[str, str]] = {
         "{subject} would see {value} before the pump cuts off, above its limit of {limit}",
         "Take a part for higher temperatures or a lower cut-off temperature.",
     ),
+    "volume-without-boiling": (
+        "the vessel has {value}; a loop that relies on its collectors not boiling is given at least {limit}",
+        "Take a larger vessel, or state measured stagnation temperatures and `acceptWithoutBoiling`.",
+    ),
     "net-positive-suction": (
         "the pump inlet has {value} above boiling, less than the {limit} the pump asks for",
         "Fill to a higher pressure or place the pump lower.",

@@ -80,7 +80,9 @@ def _design_answer(question: questions.LoopDesignQuestion, asked: Designed) -> a
     shown, judgement = found.shown, found.judgement
     result = answers.LoopDesignResult(
         **extras.judged(reading, shown, judgement),
-        band=extras.tolerance_band(reading, shown, shown.window.recommended, asked.tolerances),
+        band=extras.tolerance_band(
+            reading, shown, shown.window.recommended, asked.tolerances, found.volumes.floor
+        ),
         chosen_vessel=None if found.chosen is None else write_loop.vessel(found.chosen, write),
         nearest_vessel=None if found.chosen is not None else write_loop.vessel(shown, write),
         volumes=write_design.volumes(found, write, pressure),
@@ -137,7 +139,9 @@ def size_vessel(question: questions.VesselSizingQuestion) -> answers.VesselSizin
         checks=write_design.checks(judgement, write, loop.atmosphere),
         doubts=write_loop.doubts(loop, judgement),
         to_confirm=confirm,
-        band=extras.tolerance_band(reading, shown, shown.window.recommended, asked.tolerances),
+        band=extras.tolerance_band(
+            reading, shown, shown.window.recommended, asked.tolerances, found.volumes.floor
+        ),
     )
     include = reading.include or frozenset()
     return answers.VesselSizingAnswer(

@@ -122,10 +122,10 @@ def discharged(reading: Reading, fitted: Fit, mass: float, judgement: Judgement)
 
 
 def tolerance_band(
-    reading: Reading, fitted: Fit, fill: float, tolerances: Tolerances
+    reading: Reading, fitted: Fit, fill: float, tolerances: Tolerances, least_volume: float = 0.0
 ) -> ToleranceBand | None:
     """What the stated tolerances do to a filled vessel."""
-    found = band(fitted, fill, write_band.by_id(tolerances), reading.policy)
+    found = band(fitted, fill, write_band.by_id(tolerances), reading.policy, least_volume)
     pressure = write_loop.Pressures(reading.write, reading.loop.atmosphere)
     return write_band.tolerance_band(found, reading.write, pressure)
 

@@ -25,6 +25,8 @@ CHECKS: dict[str, str] = {
     "part-protected": "Pressure at a part while the relief valve stands at its set pressure against the part's "
     "rating.",
     "part-temperature": "Temperature at which the pump is stopped against the limit stated for a part.",
+    "volume-without-boiling": "Nominal volume against that of EN 12977 where the loop relies on its collectors not "
+    "boiling, which a computed stagnation temperature alone does not show.",
     "part-rating": "A part without a stated rating: there is nothing to compare, so somebody must.",
     "net-positive-suction": "Pressure at the pump inlet above boiling against the head the pump asks for.",
     "relief-size": "Collector area against the largest for the nominal size of the relief valve.",

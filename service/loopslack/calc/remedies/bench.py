@@ -108,6 +108,8 @@ def _seems_to_do(analysis: Analysis, scenarios: tuple[Scenario, ...], case: Case
     if not _bears(vessel, rating_needed(analysis)):
         return False
     gas = gas_of(analysis, vessel, case.pieces)
+    if not case.existing and gas.nominal < _floor(analysis, case):
+        return False
     bounds = Bounds(analysis, scenarios, gas)
     window = bounds.window(gas.nominal, gas.acceptance)
     if not window.wide_enough:
@@ -139,7 +141,7 @@ def _volume_needed(analysis: Analysis, scenarios: tuple[Scenario, ...], case: Ca
     interval = feasible(analysis, scenarios, upper_end=False)
     if interval is None:
         return inf
-    floor = without_boiling_floor(analysis, accept_without_boiling=case.accept_without_boiling)
+    floor = _floor(analysis, case)
     smallest = max(interval.smallest, floor)
     if smallest > largest:
         return inf
@@ -147,6 +149,10 @@ def _volume_needed(analysis: Analysis, scenarios: tuple[Scenario, ...], case: Ca
         limited = feasible(analysis, scenarios, analysis.loop.criteria.membrane_limit, upper_end=False)
         smallest = inf if limited is None else max(limited.smallest, floor)
     return smallest if smallest <= largest else inf
+
+
+def _floor(analysis: Analysis, case: Case) -> float:
+    return without_boiling_floor(analysis, accept_without_boiling=case.accept_without_boiling)
 
 
 def _size(analysis: Analysis, scenarios: tuple[Scenario, ...], case: Case) -> Sized | None:
@@ -179,6 +185,7 @@ def _designed(case: Case) -> Outcome:
         policy=case.policy,
         membrane_limit=limit if own is None else own,
         window=chosen.window,
+        least_volume=sized.floor,
     )
     return Outcome(_satisfied(case, judgement), chosen, judgement)
 
