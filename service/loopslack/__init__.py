@@ -1,3 +1,3 @@
 """loopslack: expansion vessel sizing and stagnation of closed, pressurised glycol collector loops."""
 
-__version__ = "1.0.0"
+__version__ = "1.1.0"
