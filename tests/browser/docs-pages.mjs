@@ -13,10 +13,14 @@ export default async function (context, url) {
   await page.emulateMedia({ colorScheme: "light" });
   const findings = [];
   const paths = ["/docs"];
+  const files = [];
   for (const path of paths) {
     await page.setViewportSize({ width: 1280, height: 900 });
     await open(page, url + path);
-    for (const linked of await linksOf(page, url)) if (!paths.includes(linked)) paths.push(linked);
+    for (const linked of await linksOf(page, url)) {
+      const found = linked.endsWith(".json") ? files : paths;
+      if (!found.includes(linked)) found.push(linked);
+    }
     assert.equal(await page.locator("h1").count(), 1, path);
     findings.push(...await look(page, path, "light"));
     await page.evaluate(() => document.querySelectorAll("details").forEach((part) => { part.open = true; }));
@@ -26,6 +30,12 @@ export default async function (context, url) {
     }
   }
   assert.ok(paths.length > 40, `only ${paths.length} pages are linked`);
+  assert.ok(files.length > 0, "no question is linked that a reader could send");
+  for (const file of files) {
+    const answer = await page.request.get(url + file);
+    assert.equal(answer.status(), 200, file);
+    assert.equal(typeof await answer.json(), "object", file);
+  }
   for (const path of LOOKED_AT) {
     for (const [colorScheme, width] of [["light", 1280], ["dark", 1280], ["dark", 360]]) {
       await page.setViewportSize({ width, height: 900 });

@@ -11,7 +11,7 @@ export default async function (context, url) {
   await page.goto(`${url}/docs/try`);
   const text = await page.innerText("main");
   assert.match(text, /needs a script/);
-  assert.match(text, /curl http/);
+  assert.match(text, /curl "\$SERVICE\/v1\/loop-design"/);
   assert.equal(await page.isVisible("#question"), true);
   assert.match(await page.inputValue("#question"), /coldestOutdoorTemperature/);
   assert.equal(await page.isVisible("#send"), false);
