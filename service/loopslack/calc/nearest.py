@@ -17,7 +17,10 @@ from loopslack.calc.selection import Refusal
 from loopslack.calc.sizing.volumes import CoolingMode
 from loopslack.kernel.errors import CalculationError
 
-_SPREAD, _BESIDE = 24, 16  # kinds judged of a long list: all over it, and next to the best of those
+_SPREAD, _BESIDE = (
+    5,
+    3,
+)  # kinds judged of a long list, all over it and next to the best; each takes some milliseconds
 _ORDER: dict[Verdict, int] = {"holds": 0, "favourable-only": 1, "not-assessed": 2, "does-not-hold": 3}
 _DIGITS = 3  # of a shortage: below, two candidates miss by as much
 

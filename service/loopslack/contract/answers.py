@@ -39,7 +39,7 @@ from loopslack.contract.fields import text
 _NEAREST = (
     "The candidate all numbers are of, where none is chosen: the one that fails least, by its verdict, then by the "
     "number of core checks that fail in the base case and under the doubts that count, then by what they miss in all, "
-    "then by the number of reasons against it, then by rank. Of more than forty kinds some forty are judged. Do not "
+    "then by the number of reasons against it, then by rank. Of more than eight kinds some eight are judged. Do not "
     "build it."
 )
 _WINDOW = (
