@@ -1,7 +1,8 @@
 # Sourced by the stages that need more than Python: gets a tool where this user may, and names it where not.
 . deploy/environment.sh
 
-# The interpreter of the tests' own environment, which run.sh has made; the tools' environments have another.
+# The interpreter of the tests' own environment, which run.sh has made; the tools' environments have another. Not used
+# here but by the stages that source this:
 # shellcheck disable=SC2034
 tests_python=$PWD/.cache/tests/bin/python
 

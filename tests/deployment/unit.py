@@ -91,8 +91,12 @@ def started(
             assert refused == 0, "the kernel is older than 6.3 and cannot refuse memory written and executed"
 
     locked = ["unshare", "--mount", "sh", "-c", LOCKED, "sh", str(record.parent), str(record)]
-    # there is one thread here
-    return subprocess.Popen([*locked, *command], cwd="/", env=environment, preexec_fn=limited)  # noqa: PLW1509
+    return subprocess.Popen(
+        [*locked, *command],
+        cwd="/",
+        env=environment,
+        preexec_fn=limited,  # noqa: PLW1509 - there is one thread here
+    )
 
 
 def becomes(fact: Callable[[], bool], seconds: float = 60.0) -> None:

@@ -5,10 +5,10 @@ from typing import NamedTuple
 
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.fit import Fit
-from loopslack.calc.judge import judge, required
+from loopslack.calc.judge import required
 from loopslack.calc.judgement import DoubtPolicy, Judgement
 from loopslack.calc.model import Loop, Vessel
-from loopslack.calc.nearest import Asked, nearest
+from loopslack.calc.nearest import Asked, judged, nearest
 from loopslack.calc.scenarios import BASE, Scenario
 from loopslack.calc.selection import Selection, choose, with_power_left
 from loopslack.calc.selector import Selector
@@ -40,6 +40,19 @@ class Volumes(NamedTuple):
         return max((sized.floor for sized in self if sized is not None), default=0.0)
 
 
+class Selected(NamedTuple):
+    """A sized loop with what was chosen for it, if anything, not judged yet.
+
+    ``refused`` says why a volume is unknown.
+    """
+
+    analysis: Analysis
+    request: Request
+    volumes: Volumes
+    selection: Selection
+    refused: dict[str, str]
+
+
 class Design(NamedTuple):
     """A designed loop.
 
@@ -65,27 +78,27 @@ def design(loop: Loop, request: Request) -> Design:
     Raises ``CalculationError`` where the question itself cannot be answered, such as a state outside the fluid's
     range. An unsound loop is no error: it is a design with a verdict.
     """
+    return judged_design(selected(loop, request))
+
+
+def selected(loop: Loop, request: Request) -> Selected:
+    """The first part of a design: size the loop and compare the candidates. Raises as ``design`` does."""
     analysis = Analysis(loop)
     volumes, refused = _volumes(analysis, request)
-    limit = loop.criteria.membrane_limit
     scenarios = required(analysis, request.policy)
     selection = _select(analysis, scenarios, volumes.recommended, request)
+    return Selected(analysis, request, volumes, selection, refused)
+
+
+def judged_design(found: Selected) -> Design:
+    """The second part: judge the chosen vessel, or find the candidate that fails least, which takes longer."""
+    analysis, request, volumes, selection, refused = found
     asked = Asked(analysis, request.policy, request.cooling, request.fill_pressure, volumes.floor)
     shown = selection.chosen or nearest(asked, selection.refused)
     if request.fill_pressure is not None:
         shown = shown._replace(window=shown.window._replace(recommended=request.fill_pressure))
-    membrane = shown.vessel.membrane_limit
-    judgement = judge(
-        shown.analysis,
-        shown.vessel,
-        shown.gas,
-        shown.mass,
-        policy=request.policy,
-        membrane_limit=limit if membrane is None else membrane,
-        window=None if refused else shown.window if selection.chosen else None,
-        least_volume=volumes.floor,
-    )
-    counted = {scenario.id for scenario in scenarios}
+    judgement = judged(asked, shown, None if refused or selection.chosen is None else shown.window)
+    counted = {scenario.id for scenario in asked.scenarios}
     left = max(
         (rest.extent.unspent for id, rest in judgement.stagnation.items() if id in counted), default=0.0
     )
@@ -93,7 +106,7 @@ def design(loop: Loop, request: Request) -> Design:
         selection = with_power_left(selection, left)
     holds = judgement.verdict == "holds" or (request.policy == "none" and judgement.base == "holds")
     chosen = shown if holds and selection.chosen is not None else None
-    return Design(loop, request, analysis, volumes, selection, shown, judgement, chosen, refused)
+    return Design(analysis.loop, request, analysis, volumes, selection, shown, judgement, chosen, refused)
 
 
 def _volumes(analysis: Analysis, request: Request) -> tuple[Volumes, dict[str, str]]:

@@ -110,9 +110,8 @@ class Meeting:
         if abs(law.excess(pressure, extent.expelled)) <= _LEAP * law.charge.nominal:
             self.balance.last = extent.spaces
             return pressure, extent
-        for _ in range(
-            _HALVINGS
-        ):  # the leap keeps the balance open: its two sides are wanted, as close as may be
+        # The leap keeps the balance open: its two sides are wanted, as close as may be.
+        for _ in range(_HALVINGS):
             middle = 0.5 * (low + high)
             low, high = (middle, high) if excess(middle) < 0 else (low, middle)
         return self._along_fold(law, low, high)

@@ -15,12 +15,13 @@ from loopslack.calc.model import Vessel
 from loopslack.calc.scenarios import BASE, Scenario
 from loopslack.calc.selection import Refusal
 from loopslack.calc.sizing.volumes import CoolingMode
+from loopslack.calc.window import Window
 from loopslack.kernel.errors import CalculationError
 
-_SPREAD, _BESIDE = (
-    5,
-    3,
-)  # kinds judged of a long list, all over it and next to the best; each takes some milliseconds
+_SPREAD = (
+    5  # kinds of a long list judged all over it: each takes milliseconds, and short questions must stay short
+)
+_BESIDE = 3  # kinds judged next to the best of those
 _ORDER: dict[Verdict, int] = {"holds": 0, "favourable-only": 1, "not-assessed": 2, "does-not-hold": 3}
 _DIGITS = 3  # of a shortage: below, two candidates miss by as much
 
@@ -80,8 +81,8 @@ def nearest(asked: Asked, refused: Sequence[Refusal]) -> Fit:
     return found[best][1]
 
 
-def judged(asked: Asked, fitted: Fit) -> Judgement:
-    """A vessel filled as recommended, or as stated, judged."""
+def judged(asked: Asked, fitted: Fit, window: Window | None = None) -> Judgement:
+    """A vessel filled as recommended, or as stated, judged; ``window`` as for ``judge``."""
     vessel = fitted.vessel
     mass = fitted.mass if asked.fill is None else fitted.mass_at(asked.fill)
     limit = asked.limit(vessel)
@@ -92,6 +93,7 @@ def judged(asked: Asked, fitted: Fit) -> Judgement:
         mass,
         policy=asked.policy,
         membrane_limit=limit,
+        window=window,
         least_volume=asked.least,
     )
 

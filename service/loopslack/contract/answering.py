@@ -7,7 +7,7 @@ elsewhere, so that a service need not hold its event loop.
 from collections.abc import Callable
 from typing import Generic, NamedTuple, TypeVar
 
-from loopslack.calc.design import Design, Request, design
+from loopslack.calc.design import Design, Request, Selected, judged_design, selected
 from loopslack.calc.existing import Checked, check
 from loopslack.calc.model import Vessel
 from loopslack.contract import answering_extras as extras
@@ -35,6 +35,19 @@ class Unfinished(NamedTuple, Generic[A]):
     finish: Callable[[], A]
 
 
+class Selecting(NamedTuple):
+    """A sized loop with what was chosen for it, not judged yet, and how it was asked for."""
+
+    reading: Reading
+    choice: Choice
+    selected: Selected
+    tolerances: Tolerances
+
+    def judged(self) -> "Designed":
+        """The design."""
+        return Designed(self.reading, self.choice, judged_design(self.selected), self.tolerances)
+
+
 class Designed(NamedTuple):
     """A designed loop with how it was asked for."""
 
@@ -46,6 +59,10 @@ class Designed(NamedTuple):
 
 def designed(question: questions.SizingQuestion) -> Designed:
     """Read a question about sizing or design and design the loop."""
+    return _selecting(question).judged()
+
+
+def _selecting(question: questions.SizingQuestion) -> Selecting:
     reading, choice, tolerances = read_sizing(question)
     request = Request(
         candidates(choice),
@@ -55,7 +72,7 @@ def designed(question: questions.SizingQuestion) -> Designed:
         reading.accept_without_boiling,
         choice.fill_pressure,
     )
-    return Designed(reading, choice, design(reading.loop, request), tolerances)
+    return Selecting(reading, choice, selected(reading.loop, request), tolerances)
 
 
 def design_loop(question: questions.LoopDesignQuestion) -> answers.LoopDesignAnswer:
@@ -66,9 +83,15 @@ def design_loop(question: questions.LoopDesignQuestion) -> answers.LoopDesignAns
 def design_loop_in_turns(
     question: questions.LoopDesignQuestion,
 ) -> answers.LoopDesignAnswer | Unfinished[answers.LoopDesignAnswer]:
-    """Answer a loop design question, or leave the rest where remedies have to be sought."""
-    found = designed(question)
-    if extras.wants_remedies(found.reading, found.design.judgement):
+    """Answer a loop design question, or leave the rest where remedies have to be sought.
+
+    Where nothing was chosen that is known before anything is judged.
+    """
+    begun = _selecting(question)
+    if extras.wants_remedies(begun.reading, holds=begun.selected.selection.chosen is not None):
+        return Unfinished(lambda: _design_answer(question, begun.judged()))
+    found = begun.judged()
+    if extras.wants_remedies(found.reading, holds=found.design.judgement.verdict == "holds"):
         return Unfinished(lambda: _design_answer(question, found))
     return _design_answer(question, found)
 
@@ -180,7 +203,7 @@ def check_stagnation_in_turns(
 ) -> answers.StagnationCheckAnswer | Unfinished[answers.StagnationCheckAnswer]:
     """Answer a stagnation check, or leave the rest where remedies have to be sought."""
     asked = checked(question)
-    if extras.wants_remedies(asked.asked.reading, asked.found.judgement):
+    if extras.wants_remedies(asked.asked.reading, holds=asked.found.judgement.verdict == "holds"):
         return Unfinished(lambda: _check_answer(question, asked))
     return _check_answer(question, asked)
 

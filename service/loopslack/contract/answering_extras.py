@@ -75,16 +75,16 @@ def judged(reading: Reading, shown: Fit, judgement: Judgement) -> Judged:
     )
 
 
-def wants_remedies(reading: Reading, judgement: Judgement) -> bool:
+def wants_remedies(reading: Reading, *, holds: bool) -> bool:
     """Whether remedies are asked for, or left open and needed."""
     if reading.include is None:
-        return judgement.verdict != "holds"
+        return not holds
     return "remedies" in reading.include
 
 
 def remedies_of_design(reading: Reading, found: Design, asked: Asked) -> Remedies | None:
     """What would make a design hold, if wanted."""
-    if not wants_remedies(reading, found.judgement):
+    if not wants_remedies(reading, holds=found.judgement.verdict == "holds"):
         return None
     case = replace(case_of_design(found), strength=reading.strength)
     sought = finished(remedies(case, Bench()))
@@ -94,7 +94,7 @@ def remedies_of_design(reading: Reading, found: Design, asked: Asked) -> Remedie
 def remedies_of_check(asked: CheckReading, found: Checked, pieces: int) -> Remedies | None:
     """What would make a vessel that is there hold, if wanted."""
     reading = asked.reading
-    if not wants_remedies(reading, found.judgement):
+    if not wants_remedies(reading, holds=found.judgement.verdict == "holds"):
         return None
     case = case_of_vessel(
         reading.loop, asked.vessel, pieces, reading.policy, fill_pressure=asked.fill_pressure
@@ -106,7 +106,7 @@ def remedies_of_check(asked: CheckReading, found: Checked, pieces: int) -> Remed
 
 def robust_cooler(reading: Reading, found: Design) -> RobustCooler | None:
     """The cooler a design lacks to be robust; sought with the remedies only."""
-    if not wants_remedies(reading, found.judgement):
+    if not wants_remedies(reading, holds=found.judgement.verdict == "holds"):
         return None
     cooler = finished(cooler_for_robust(found))
     return None if cooler is None else write_remedies.robust_cooler(cooler, reading.write)

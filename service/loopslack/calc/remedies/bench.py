@@ -11,9 +11,10 @@ from loopslack.calc import checks
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.cooling import Charged, hottest
 from loopslack.calc.existing import check
-from loopslack.calc.judge import judge, required
+from loopslack.calc.judge import required
 from loopslack.calc.judgement import Judgement
 from loopslack.calc.model import Vessel
+from loopslack.calc.nearest import Asked, judged
 from loopslack.calc.precharge import gas_of
 from loopslack.calc.remedies.case import Case, Outcome
 from loopslack.calc.scenarios import Scenario
@@ -176,17 +177,8 @@ def _designed(case: Case) -> Outcome:
         return Outcome(False)
     if case.fill_pressure is not None:
         chosen = chosen._replace(window=chosen.window._replace(recommended=case.fill_pressure))
-    own = chosen.vessel.membrane_limit
-    judgement = judge(
-        chosen.analysis,
-        chosen.vessel,
-        chosen.gas,
-        chosen.mass,
-        policy=case.policy,
-        membrane_limit=limit if own is None else own,
-        window=chosen.window,
-        least_volume=sized.floor,
-    )
+    asked = Asked(analysis, case.policy, case.cooling, case.fill_pressure, sized.floor)
+    judgement = judged(asked, chosen, chosen.window)
     return Outcome(_satisfied(case, judgement), chosen, judgement)
 
 
