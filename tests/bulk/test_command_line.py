@@ -193,6 +193,7 @@ def test_the_sheet_and_its_figures_are_printed_from_their_own_questions(capfdbin
     assert b"</svg>" in out
 
 
+@pytest.mark.apart
 def test_the_sheet_is_printed_as_pdf(capfdbinary):
     code, out, _ = printed(capfdbinary, "sheet", DESIGN, "--pdf")
     assert code == 0

@@ -108,6 +108,7 @@ def test_a_hostile_text_changes_nothing_but_the_text(text: str) -> None:
         assert shown not in page
 
 
+@pytest.mark.apart
 @pytest.mark.parametrize("text", HOSTILE)
 def test_a_hostile_text_is_set_as_pdf(text: str) -> None:
     question = asked_with(text)
@@ -133,6 +134,7 @@ def test_a_hostile_name_stays_a_name_in_every_figure(text: str) -> None:
         assert tags == [tag for tag, _ in read(same).seen]
 
 
+@pytest.mark.apart
 @settings(
     max_examples=60,
     deadline=None,

@@ -4,6 +4,7 @@ import os
 import tracemalloc
 from pathlib import Path
 
+import pytest
 from msgspec.structs import replace
 
 from loopslack.sheet.pdf import pdf
@@ -16,6 +17,7 @@ def resident() -> int:
     return int(Path("/proc/self/statm").read_text().split()[1]) * os.sysconf("SC_PAGE_SIZE") // 2**20
 
 
+@pytest.mark.apart
 def test_pdf_after_pdf_keeps_no_memory() -> None:
     """What the typesetter remembers of a sheet would be 25 MB more with each."""
     of = sheet("wash-house")

@@ -3,6 +3,7 @@
 import re
 import sys
 import zlib
+from functools import cache
 
 import pytest
 from msgspec.structs import replace
@@ -12,8 +13,10 @@ from loopslack.sheet import rendering
 from loopslack.sheet.pdf import NotInstalled, pdf, typesetter
 from sheet.sheets import NAMES, asked, sheet
 
+pytestmark = pytest.mark.apart
 
-@pytest.fixture(scope="module")
+
+@cache
 def wash_house() -> bytes:
     return pdf(sheet("wash-house"))
 
@@ -47,11 +50,11 @@ def test_it_is_set_with_its_own_letters_at_the_first_attempt(
     assert True not in tried
 
 
-def test_it_says_that_it_is_tagged_and_archival(wash_house: bytes) -> None:
-    assert b"<pdfuaid:part>1</pdfuaid:part>" in wash_house
-    assert b"<pdfaid:part>2</pdfaid:part>" in wash_house
-    assert b"<pdfaid:conformance>A</pdfaid:conformance>" in wash_house
-    unpacked = objects(wash_house)
+def test_it_says_that_it_is_tagged_and_archival() -> None:
+    assert b"<pdfuaid:part>1</pdfuaid:part>" in wash_house()
+    assert b"<pdfaid:part>2</pdfaid:part>" in wash_house()
+    assert b"<pdfaid:conformance>A</pdfaid:conformance>" in wash_house()
+    unpacked = objects(wash_house())
     assert b"/StructTreeRoot" in unpacked
     assert b"/Marked true" in unpacked
     for tag in (b"/H1", b"/H2", b"/Table", b"/TH", b"/TD", b"/Figure", b"/L", b"/LI"):
@@ -59,30 +62,30 @@ def test_it_says_that_it_is_tagged_and_archival(wash_house: bytes) -> None:
     assert b"/Lang(en)" in unpacked.replace(b" ", b"")
 
 
-def test_every_font_is_inside_and_nothing_runs_or_leads_out(wash_house: bytes) -> None:
-    unpacked = objects(wash_house)
+def test_every_font_is_inside_and_nothing_runs_or_leads_out() -> None:
+    unpacked = objects(wash_house())
     assert unpacked.count(b"/FontDescriptor") > 0
     assert b"/FontFile" in unpacked
     for active in (b"/JavaScript", b"/Launch", b"/URI", b"/EmbeddedFile", b"/OpenAction", b"/AA "):
         assert active not in unpacked
 
 
-def test_the_same_question_gives_the_same_bytes_also_from_a_new_typesetter(wash_house: bytes) -> None:
-    assert pdf(sheet("wash-house")) == wash_house
+def test_the_same_question_gives_the_same_bytes_also_from_a_new_typesetter() -> None:
+    assert pdf(sheet("wash-house")) == wash_house()
     pdf(sheet("too-small"))
-    assert pdf(sheet("wash-house")) == wash_house
+    assert pdf(sheet("wash-house")) == wash_house()
     typesetter.cache_clear()
-    assert pdf(sheet("wash-house")) == wash_house
+    assert pdf(sheet("wash-house")) == wash_house()
 
 
-def test_the_date_in_the_file_is_the_one_stated(wash_house: bytes) -> None:
-    assert b"2026-12-01" in wash_house
+def test_the_date_in_the_file_is_the_one_stated() -> None:
+    assert b"2026-12-01" in wash_house()
     undated = pdf(replace(sheet("wash-house"), date=""))
     assert b"2026" not in re.findall(rb"<xmp:CreateDate>(.*?)<", undated)[0]
 
 
-def test_paper_is_the_paper_asked_for(wash_house: bytes) -> None:
-    assert b"/MediaBox[0 0 595.27" in objects(wash_house).replace(b"[ ", b"[")
+def test_paper_is_the_paper_asked_for() -> None:
+    assert b"/MediaBox[0 0 595.27" in objects(wash_house()).replace(b"[ ", b"[")
     assert b"/MediaBox[0 0 612 792]" in objects(pdf(sheet("cabin-us-units"))).replace(b"[ ", b"[")
 
 

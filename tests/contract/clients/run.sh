@@ -52,14 +52,15 @@ generate python
 PYTHONPATH="$work/python" "$tools_python" "$work/generators/first_call.py" "$url"
 PYTHONPATH="$work/python" "$tools_python" "$here/python/client.py" "$url" "$PWD/openapi/examples"
 
-# Kotlin: everything generated but the set-up of the HTTP library, for which Libraries.kt stands in.
+# Kotlin: everything generated but the set-up of the HTTP library, for which Libraries.kt stands in, and what would put
+# a token into its requests.
 generate kotlin
 kotlin=$node_bin/../kotlin-compiler
 jars=$("$tools_python" -c 'import run_kotlin_kernel, os; print(os.path.join(list(run_kotlin_kernel.__path__)[0], "jars"))')
 path=$jars/kotlinx-serialization-core-jvm-1.9.0.jar:$jars/kotlinx-serialization-json-jvm-1.9.0.jar
 path=$path:$kotlin/lib/kotlinx-coroutines-core-jvm.jar
 source=$work/kotlin/src/main/kotlin/loopslack/client
-rm "$source/infrastructure/ApiClient.kt" "$source/infrastructure/ResponseExt.kt"
+rm "$source/infrastructure/ApiClient.kt" "$source/infrastructure/ResponseExt.kt" "$source/auth/HttpBearerAuth.kt"
 JAVA_TOOL_OPTIONS="-Xmx2g -XX:+UseSerialGC" java -cp "$kotlin/lib/*" org.jetbrains.kotlin.cli.jvm.K2JVMCompiler \
     -kotlin-home "$kotlin" -nowarn -Xplugin="$kotlin/lib/kotlinx-serialization-compiler-plugin.jar" -cp "$path" \
     -d "$work/kotlin-classes" "$source" "$here/kotlin" "$work/generators/FirstCall.kt" >"$work/kotlinc.log" 2>&1 ||
