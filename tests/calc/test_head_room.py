@@ -3,12 +3,13 @@
 import pytest
 from msgspec.structs import replace
 
-from calc.reference import BAR, CRITERIA, group, loop, run
+from calc.reference import BAR, CRITERIA, ZERO, group, loop, run, stagnation_rise
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.fit import Fit, fit
 from loopslack.calc.head_room import Filled, HeadRoom, failing, head_room
 from loopslack.calc.judge import judge
 from loopslack.calc.model import Loop, Vessel
+from loopslack.calc.sizing.floor import without_boiling_floor
 from loopslack.calc.window import Gas
 
 LIMIT = CRITERIA.membrane_limit
@@ -128,3 +129,25 @@ def test_a_state_whose_properties_are_unknown_does_not_pass() -> None:
     assert hot.outcome == "value"
     assert hot.value is not None
     assert hot.value < 100
+
+
+def test_pipe_added_to_a_loop_that_relies_on_not_boiling_ends_where_its_least_volume_passes_the_vessel() -> (
+    None
+):
+    still = ZERO + 30 + stagnation_rise(0.7 * 1000, 6.0, 0.03)
+    plain = group(peak_efficiency=0.7, linear_loss=6.0, quadratic_loss=0.03, stagnation_temperature=still)
+    plan = loop(groups=(plain,))
+    floor = without_boiling_floor(Analysis(plan), accept_without_boiling=False)
+    vessel = Vessel(id="v", nominal_volume=1.05 * floor)
+    found = fit(Analysis(plan), Analysis(plan).singles, vessel, 1, "given", LIMIT)
+    assert found is not None
+    filled = Filled(found.analysis, found.gas, found.mass, found.analysis.singles, LIMIT)
+    room = {room.id: room for room in head_room(filled)}["pipe-length"]
+    assert (room.code, room.outcome) == ("volume-without-boiling", "value")
+    most = Analysis(longer(plan, room.value))
+    assert without_boiling_floor(most, accept_without_boiling=False) == pytest.approx(
+        found.gas.nominal, rel=1e-8
+    )
+    assert failed(longer(plan, 1.001 * room.value), found.gas, found.mass) == {
+        ("volume-without-boiling", "base")
+    }

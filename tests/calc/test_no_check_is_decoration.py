@@ -77,7 +77,7 @@ def test_a_vessel_that_does_only_if_nothing_boils_is_too_small_where_that_is_not
     small, large = lukewarm(25e-3), lukewarm(50e-3)
     failed = [c for c in small.judgement.checks if c.core and c.verdict != "holds"]
     assert [check.code for check in failed] == ["volume-without-boiling"]
-    assert failed[0].limit == small.volumes.floor > 25e-3
+    assert failed[0].limit == small.volumes.recommended.floor > 25e-3
     assert (small.judgement.verdict, small.chosen) == ("does-not-hold", None)
     assert large.judgement.verdict == "holds"
     assert large.chosen is not None

@@ -73,12 +73,20 @@ class Audit(NamedTuple):
     target: Target
 
 
-def audit(loop: Loop, vessel: Vessel, pieces: int, policy: DoubtPolicy, found: Found) -> Audit:
+def audit(
+    loop: Loop,
+    vessel: Vessel,
+    pieces: int,
+    policy: DoubtPolicy,
+    found: Found,
+    *,
+    accept_without_boiling: bool = False,
+) -> Audit:
     """Audit ``pieces`` equal vessels by what was found.
 
     Raises ``CalculationError`` where a liquid state lies outside the fluid's range.
     """
-    bench = Bench(loop, vessel, pieces, policy)
+    bench = Bench(loop, vessel, pieces, policy, accept_without_boiling=accept_without_boiling)
     analysis, temperature = bench.analysis, found.gauge.temperature
     below = column(analysis, temperature)
     pressure = found.gauge.pressure + below

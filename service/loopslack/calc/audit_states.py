@@ -10,8 +10,7 @@ from msgspec.structs import replace
 
 from loopslack.calc.analysis import Analysis, SteamCase
 from loopslack.calc.audit_gauge import Held, gas_holding, held_at, liquid_of, to_reach
-from loopslack.calc.existing import best_window
-from loopslack.calc.fit import Fit
+from loopslack.calc.fit import Fit, best_fit
 from loopslack.calc.judge import judge, required
 from loopslack.calc.judgement import DoubtPolicy, Judgement, Verdict
 from loopslack.calc.model import Loop, Precharge, Vessel
@@ -62,8 +61,11 @@ class Explanation(NamedTuple):
 class Bench:
     """One loop under audit with its vessel, to be charged this way or that."""
 
-    def __init__(self, loop: Loop, vessel: Vessel, pieces: int, policy: DoubtPolicy) -> None:
+    def __init__(
+        self, loop: Loop, vessel: Vessel, pieces: int, policy: DoubtPolicy, *, accept_without_boiling: bool
+    ) -> None:
         self.loop, self.vessel, self.pieces, self.policy = loop, vessel, pieces, policy
+        self.accept_without_boiling = accept_without_boiling
         self._cases: dict[tuple[float, bool, bool], SteamCase] = {}
         self.analysis = Analysis(loop, self._cases)
         self.scenarios = required(self.analysis, policy)
@@ -75,7 +77,7 @@ class Bench:
         stated = Precharge(kind="stated", pressure=gas.precharge, temperature=gas.temperature)
         analysis = Analysis(replace(self.loop, precharge=stated), self._cases)
         vessel = replace(self.vessel, precharge_adjustable=True)
-        return best_window(analysis, self.scenarios, vessel, self.pieces)
+        return best_fit(analysis, self.scenarios, vessel, self.pieces, "given")
 
     def judged(self, fitted: Fit, mass: float) -> Judgement:
         """The vessel filled with a mass (kg)."""
@@ -86,6 +88,7 @@ class Bench:
             mass,
             policy=self.policy,
             membrane_limit=self.membrane_limit,
+            accept_without_boiling=self.accept_without_boiling,
         )
 
     def holds(self, judgement: Judgement) -> bool:

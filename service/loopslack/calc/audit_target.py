@@ -72,7 +72,13 @@ def set_instead(
 def _smallest(bench: Bench) -> float | None:
     """The smallest vessel (m3) that holds in this loop with the cooling vessel it has; None where none does."""
     try:
-        found = size(bench.analysis, bench.scenarios, "given", bench.membrane_limit)
+        found = size(
+            bench.analysis,
+            bench.scenarios,
+            "given",
+            bench.membrane_limit,
+            accept_without_boiling=bench.accept_without_boiling,
+        )
     except CalculationError:
         return None
     return None if found is None else found.smallest

@@ -75,34 +75,38 @@ def band(
     fill: float,
     tolerances: Mapping[ToleranceId, float],
     policy: DoubtPolicy,
-    least_volume: float = 0.0,
+    *,
+    accept_without_boiling: bool = False,
 ) -> Band | None:
     """The band of a filled vessel; None where no tolerance is stated.
 
-    ``tolerances`` are shares of one, K, m or Pa by id, as the input has it; ``least_volume`` (m3) as for a judgement.
+    ``tolerances`` are shares of one, K, m or Pa by id, as the input has it.
     """
     stated = {id: tolerance for id, tolerance in tolerances.items() if tolerance > 0}
     if not stated:
         return None
+
+    def outcome(filling: Filling) -> Outcome:
+        return _outcome(filling, fitted, policy, accept_without_boiling=accept_without_boiling)
+
     present = Filling(fitted.analysis.loop, fitted.gas, fill)
     rows, worse, better = [], present, present
     for id, tolerance in stated.items():
         move = _MOVES[id]
-        low = _outcome(move(present, -tolerance), fitted, policy, least_volume)
-        high = _outcome(move(present, tolerance), fitted, policy, least_volume)
+        low = outcome(move(present, -tolerance))
+        high = outcome(move(present, tolerance))
         rows.append(Row(id, low, high))
         up = _pressure(high) >= _pressure(low)
         worse = move(worse, tolerance if up else -tolerance)
         better = move(better, -tolerance if up else tolerance)
-    ends = (_outcome(end, fitted, policy, least_volume) for end in (worse, better))
-    return Band(tuple(rows), *ends)
+    return Band(tuple(rows), outcome(worse), outcome(better))
 
 
 def _pressure(outcome: Outcome) -> float:
     return float("inf") if outcome.pressure is None else outcome.pressure
 
 
-def _outcome(filling: Filling, fitted: Fit, policy: DoubtPolicy, least_volume: float) -> Outcome:
+def _outcome(filling: Filling, fitted: Fit, policy: DoubtPolicy, *, accept_without_boiling: bool) -> Outcome:
     """Judge a moved loop with the same vessel."""
     try:
         analysis = Analysis(filling.loop)
@@ -115,7 +119,7 @@ def _outcome(filling: Filling, fitted: Fit, policy: DoubtPolicy, least_volume: f
             mass,
             policy=policy,
             membrane_limit=limit,
-            least_volume=least_volume,
+            accept_without_boiling=accept_without_boiling,
         )
     except CalculationError:
         return Outcome("not-assessed", None, None, None, None, None)

@@ -34,11 +34,6 @@ class Volumes(NamedTuple):
     recommended: Sized | None
     robust: Sized | None
 
-    @property
-    def floor(self) -> float:
-        """Least volume (m3) accepted although a smaller one would hold, 0 where none applies or no volume holds."""
-        return max((sized.floor for sized in self if sized is not None), default=0.0)
-
 
 class Selected(NamedTuple):
     """A sized loop with what was chosen for it, if anything, not judged yet.
@@ -93,7 +88,9 @@ def selected(loop: Loop, request: Request) -> Selected:
 def judged_design(found: Selected) -> Design:
     """The second part: judge the chosen vessel, or find the candidate that fails least, which takes longer."""
     analysis, request, volumes, selection, refused = found
-    asked = Asked(analysis, request.policy, request.cooling, request.fill_pressure, volumes.floor)
+    asked = Asked(
+        analysis, request.policy, request.cooling, request.fill_pressure, request.accept_without_boiling
+    )
     shown = selection.chosen or nearest(asked, selection.refused)
     if request.fill_pressure is not None:
         shown = shown._replace(window=shown.window._replace(recommended=request.fill_pressure))

@@ -10,6 +10,7 @@ from loopslack.calc.precharge import gas_of
 from loopslack.calc.scenarios import BASE, Scenario
 from loopslack.calc.sizing.volumes import CoolingMode
 from loopslack.calc.window import Bounds, Gas, Window
+from loopslack.kernel.errors import CalculationError
 
 
 class Fit(NamedTuple):
@@ -73,6 +74,36 @@ def fit(
     else:
         window = cool_window(analysis, scenarios, gas, limit)
     return Fit(vessel, count, gas, analysis, window)
+
+
+def best_fit(
+    analysis: Analysis, scenarios: Sequence[Scenario], vessel: Vessel, pieces: int, cooling: CoolingMode
+) -> Fit:
+    """A vessel with the window of all scenarios that count, else of those that leave one at all, else of the base case.
+
+    The best it can have; for a vessel that is shown or judged although it may not hold.
+    """
+    limit = analysis.loop.criteria.membrane_limit
+    # Steam that reaches the station whatever the vessel leaves no window.
+    possible = tuple(scenario for scenario in scenarios if not _spoiled(analysis, scenario))
+    for counted in dict.fromkeys((possible, (BASE,))):
+        if not counted:
+            continue
+        try:
+            fitted = fit(analysis, counted, vessel, pieces, cooling, limit)
+        except CalculationError:
+            continue
+        if fitted is not None and fitted.window.usable:
+            return fitted if counted == tuple(scenarios) else fitted._replace(under=counted)
+    return plain_fit(analysis, vessel, pieces)
+
+
+def _spoiled(analysis: Analysis, scenario: Scenario) -> bool:
+    """Whether no filling helps in a scenario, or none is known to."""
+    try:
+        return analysis.case(scenario).at_station
+    except CalculationError:
+        return True
 
 
 def plain_fit(analysis: Analysis, vessel: Vessel, count: int) -> Fit:

@@ -14,6 +14,7 @@ from loopslack.calc.cooling import Charged, hottest
 from loopslack.calc.levers.pipes import with_pipe_length
 from loopslack.calc.model import Loop
 from loopslack.calc.scenarios import BASE, COMBINED_ID, Scenario
+from loopslack.calc.sizing.floor import without_boiling_floor
 from loopslack.calc.window import Bounds, Gas
 from loopslack.kernel import kinds
 from loopslack.kernel.errors import CalculationError
@@ -45,13 +46,17 @@ class HeadRoom(NamedTuple):
 
 
 class Filled(NamedTuple):
-    """A vessel in its loop, with a mass (kg) of liquid, and what it must survive."""
+    """A vessel in its loop, with a mass (kg) of liquid, and what it must survive.
+
+    ``accept_without_boiling`` is as in a request for a design.
+    """
 
     analysis: Analysis
     gas: Gas
     mass: float
     scenarios: Sequence[Scenario]
     membrane_limit: float
+    accept_without_boiling: bool = False
 
 
 def head_room(filled: Filled) -> tuple[HeadRoom, ...]:
@@ -102,6 +107,9 @@ def failing(filled: Filled) -> tuple[str, str] | None:
             return lower.code, lower.scenario
         if mass > upper.mass * (1 + _ROUNDING):
             return upper.code, upper.scenario
+        least = without_boiling_floor(analysis, accept_without_boiling=filled.accept_without_boiling)
+        if gas.nominal < least * (1 - _ROUNDING):
+            return "volume-without-boiling", BASE.id
         temperature, worst = hottest(Charged(analysis, gas, mass), filled.scenarios)
     except CalculationError:
         return "not-assessed", BASE.id

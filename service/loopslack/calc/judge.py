@@ -22,9 +22,11 @@ from loopslack.calc.judgement import (
 from loopslack.calc.model import Part, Vessel
 from loopslack.calc.relief_size import relief_size_check
 from loopslack.calc.scenarios import BASE, Scenario
+from loopslack.calc.sizing.floor import without_boiling_floor
 from loopslack.calc.stagnation import stagnation, unrelieved_pressure
 from loopslack.calc.states import LiquidState
 from loopslack.calc.window import Bounds, Gas, Window
+from loopslack.kernel import kinds
 from loopslack.kernel.errors import CalculationError
 from loopslack.physics.statics import GRAVITY
 
@@ -42,18 +44,17 @@ def judge(
     policy: DoubtPolicy,
     membrane_limit: float,
     window: Window | None = None,
-    least_volume: float = 0.0,
+    accept_without_boiling: bool = False,
 ) -> Judgement:
     """Judge vessels of one article, charged as ``gas`` and filled with ``mass`` kg.
 
-    ``window`` is that of the scenarios the policy requires, if it is known already; ``least_volume`` (m3) what a
-    vessel must have although a smaller one would do, 0 where nothing asks for it.
+    ``window`` is that of the scenarios the policy requires, if it is known already. A loop that relies on its
+    collectors not boiling is asked for its least volume, unless less is accepted and the loop allows that.
     """
     states = {id: _state(analysis, state, gas, mass) for id, state in analysis.states.by_id.items()}
     found = list(_static(analysis, vessel, gas, mass, states))
     found.append(_window(analysis, (BASE,), gas, mass, membrane_limit, None, BASE.id))
-    if least_volume > 0:
-        found.append(checks.without_boiling(gas.nominal, least_volume))
+    found.extend(_without_boiling(analysis, gas.nominal, accepted=accept_without_boiling))
     static = _worst(found)
     # The window that survives every required doubt counts with the doubts, not with the base case.
     joint = (
@@ -154,6 +155,19 @@ def _window(
         return Check("fill-window", True, state, "not-assessed", checks.DIFFERENCE, reason=str(error))
     pressure = Bounds(analysis, (), gas).pressure(gas.nominal, mass, analysis.loop.temperatures.fill)
     return checks.fill_window(analysis, window, pressure, state)
+
+
+def _without_boiling(analysis: Analysis, nominal: float, *, accepted: bool) -> Iterable[Check]:
+    """The least volume of a loop that relies on its collectors not boiling; nothing where they boil."""
+    try:
+        least = without_boiling_floor(analysis, accept_without_boiling=accepted)
+    except CalculationError as error:
+        yield Check(
+            "volume-without-boiling", True, BASE.id, "not-assessed", kinds.NOMINAL_VOLUME, reason=str(error)
+        )
+        return
+    if least > 0:
+        yield checks.without_boiling(nominal, least)
 
 
 def _hot(

@@ -8,7 +8,7 @@ from collections.abc import Sequence
 from typing import NamedTuple
 
 from loopslack.calc.analysis import Analysis
-from loopslack.calc.fit import Fit, fit, plain_fit
+from loopslack.calc.fit import Fit, best_fit
 from loopslack.calc.judge import JOINT, judge, required
 from loopslack.calc.judgement import Check, DoubtPolicy, Judgement, Verdict
 from loopslack.calc.model import Vessel
@@ -16,7 +16,6 @@ from loopslack.calc.scenarios import BASE, Scenario
 from loopslack.calc.selection import Refusal
 from loopslack.calc.sizing.volumes import CoolingMode
 from loopslack.calc.window import Window
-from loopslack.kernel.errors import CalculationError
 
 _SPREAD = (
     5  # kinds of a long list judged all over it: each takes milliseconds, and short questions must stay short
@@ -31,14 +30,14 @@ Badness = tuple[int, int, float, int, int]
 class Asked(NamedTuple):
     """The loop with what is asked of a vessel in it; ``fill`` is a stated fill pressure, Pa absolute.
 
-    ``least`` is the least nominal volume, m3, that a loop relying on no boiling is given.
+    ``accept_without_boiling`` is as in a request for a design.
     """
 
     analysis: Analysis
     policy: DoubtPolicy
     cooling: CoolingMode
     fill: float | None
-    least: float = 0.0
+    accept_without_boiling: bool = False
 
     @property
     def scenarios(self) -> tuple[Scenario, ...]:
@@ -67,7 +66,9 @@ def nearest(asked: Asked, refused: Sequence[Refusal]) -> Fit:
         for number in numbers:
             if number not in found:
                 place, refusal = rows[number]
-                fitted = best_filled(asked, refusal.vessel, refusal.pieces)
+                fitted = best_fit(
+                    asked.analysis, asked.scenarios, refusal.vessel, refusal.pieces, asked.cooling
+                )
                 failure = _failure(asked, judged(asked, fitted))
                 found[number] = (*failure, len(refusal.reasons), place), fitted
         return min(found, key=lambda number: found[number][0])
@@ -94,37 +95,8 @@ def judged(asked: Asked, fitted: Fit, window: Window | None = None) -> Judgement
         policy=asked.policy,
         membrane_limit=limit,
         window=window,
-        least_volume=asked.least,
+        accept_without_boiling=asked.accept_without_boiling,
     )
-
-
-def best_filled(asked: Asked, vessel: Vessel, pieces: int) -> Fit:
-    """A vessel with the window of all scenarios that count, else of those that leave one at all, else of the base case.
-
-    The best it can have.
-    """
-    analysis = asked.analysis
-    limit = analysis.loop.criteria.membrane_limit
-    # Steam that reaches the station whatever the vessel leaves no window.
-    possible = tuple(scenario for scenario in asked.scenarios if not _spoiled(analysis, scenario))
-    for scenarios in dict.fromkeys((possible, (BASE,))):
-        if not scenarios:
-            continue
-        try:
-            fitted = fit(analysis, scenarios, vessel, pieces, asked.cooling, limit)
-        except CalculationError:
-            continue
-        if fitted is not None and fitted.window.usable:
-            return fitted if scenarios == asked.scenarios else fitted._replace(under=scenarios)
-    return plain_fit(analysis, vessel, pieces)
-
-
-def _spoiled(analysis: Analysis, scenario: Scenario) -> bool:
-    """Whether no filling helps in a scenario, or none is known to."""
-    try:
-        return analysis.case(scenario).at_station
-    except CalculationError:
-        return True
 
 
 def _kind(refusal: Refusal) -> tuple[object, ...]:

@@ -103,9 +103,7 @@ def _design_answer(question: questions.LoopDesignQuestion, asked: Designed) -> a
     shown, judgement = found.shown, found.judgement
     result = answers.LoopDesignResult(
         **extras.judged(reading, shown, judgement),
-        band=extras.tolerance_band(
-            reading, shown, shown.window.recommended, asked.tolerances, found.volumes.floor
-        ),
+        band=extras.tolerance_band(reading, shown, shown.window.recommended, asked.tolerances),
         chosen_vessel=None if found.chosen is None else write_loop.vessel(found.chosen, write),
         nearest_vessel=None if found.chosen is not None else write_loop.vessel(shown, write),
         volumes=write_design.volumes(found, write, pressure),
@@ -162,9 +160,7 @@ def size_vessel(question: questions.VesselSizingQuestion) -> answers.VesselSizin
         checks=write_design.checks(judgement, write, loop.atmosphere),
         doubts=write_loop.doubts(loop, judgement),
         to_confirm=confirm,
-        band=extras.tolerance_band(
-            reading, shown, shown.window.recommended, asked.tolerances, found.volumes.floor
-        ),
+        band=extras.tolerance_band(reading, shown, shown.window.recommended, asked.tolerances),
     )
     include = reading.include or frozenset()
     return answers.VesselSizingAnswer(
@@ -189,7 +185,14 @@ def checked(question: questions.StagnationCheckQuestion) -> CheckedVessel:
     """Read a question about a vessel that is there and judge it."""
     asked = read_check(question)
     reading, pieces = asked.reading, question.vessels_in_parallel or 1
-    found = check(reading.loop, asked.vessel, pieces, reading.policy, fill_pressure=asked.fill_pressure)
+    found = check(
+        reading.loop,
+        asked.vessel,
+        pieces,
+        reading.policy,
+        fill_pressure=asked.fill_pressure,
+        accept_without_boiling=reading.accept_without_boiling,
+    )
     return CheckedVessel(asked, found, pieces)
 
 

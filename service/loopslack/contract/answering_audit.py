@@ -25,7 +25,14 @@ def audit_vessel(question: VesselAuditQuestion) -> out.VesselAuditAnswer:
     asked = read_audit(question)
     reading, vessel = asked.reading, asked.vessel
     loop = reading.loop
-    found = audit(loop, vessel, question.vessels_in_parallel or 1, reading.policy, _found(asked))
+    found = audit(
+        loop,
+        vessel,
+        question.vessels_in_parallel or 1,
+        reading.policy,
+        _found(asked),
+        accept_without_boiling=reading.accept_without_boiling,
+    )
     if asked.measured_precharge is None and found.set_by != "record":
         gauge = found.set_up.precharge - loop.atmosphere
         pointer = "/commissioning/precharge"

@@ -26,6 +26,7 @@ def compute_stagnation_course(
         question.vessels_in_parallel or 1,
         reading.policy,
         fill_pressure=asked.check.fill_pressure,
+        accept_without_boiling=reading.accept_without_boiling,
     )
     case = write_course.lumped(
         found.fitted,

@@ -97,7 +97,12 @@ def remedies_of_check(asked: CheckReading, found: Checked, pieces: int) -> Remed
     if not wants_remedies(reading, holds=found.judgement.verdict == "holds"):
         return None
     case = case_of_vessel(
-        reading.loop, asked.vessel, pieces, reading.policy, fill_pressure=asked.fill_pressure
+        reading.loop,
+        asked.vessel,
+        pieces,
+        reading.policy,
+        fill_pressure=asked.fill_pressure,
+        accept_without_boiling=reading.accept_without_boiling,
     )
     case = replace(case, strength=reading.strength)
     sought = finished(remedies(case, Bench()))
@@ -122,10 +127,16 @@ def discharged(reading: Reading, fitted: Fit, mass: float, judgement: Judgement)
 
 
 def tolerance_band(
-    reading: Reading, fitted: Fit, fill: float, tolerances: Tolerances, least_volume: float = 0.0
+    reading: Reading, fitted: Fit, fill: float, tolerances: Tolerances
 ) -> ToleranceBand | None:
     """What the stated tolerances do to a filled vessel."""
-    found = band(fitted, fill, write_band.by_id(tolerances), reading.policy, least_volume)
+    found = band(
+        fitted,
+        fill,
+        write_band.by_id(tolerances),
+        reading.policy,
+        accept_without_boiling=reading.accept_without_boiling,
+    )
     pressure = write_loop.Pressures(reading.write, reading.loop.atmosphere)
     return write_band.tolerance_band(found, reading.write, pressure)
 

@@ -129,7 +129,14 @@ def sensitivities(design: Design, write: Writer) -> out.Sensitivity:
         accept_without_boiling=request.accept_without_boiling,
     )
     limit = shown.vessel.membrane_limit or design.loop.criteria.membrane_limit
-    filled = Filled(shown.analysis, shown.gas, shown.mass, required(shown.analysis, request.policy), limit)
+    filled = Filled(
+        shown.analysis,
+        shown.gas,
+        shown.mass,
+        required(shown.analysis, request.policy),
+        limit,
+        request.accept_without_boiling,
+    )
     return out.Sensitivity(
         inputs=[_effect(effect, write) for effect in sensitivity(design.loop, asked)],
         head_room=[_room(found, write.system) for found in head_room(filled)],

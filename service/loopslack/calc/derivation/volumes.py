@@ -1,6 +1,5 @@
 """Steps of the smallest nominal volumes: each a root of its own fill window, with the cooling vessel it needs."""
 
-from loopslack.calc.analysis import Analysis
 from loopslack.calc.cooling import Charged as Filling
 from loopslack.calc.cooling import hottest
 from loopslack.calc.derivation.book import System
@@ -57,14 +56,10 @@ def close_cooling(
 
 
 class VolumeSteps:
-    """Writes the volumes of a design; ``plain`` is the loop before a cooling vessel was sized."""
+    """Writes the volumes of a design."""
 
-    def __init__(self, parts: Parts, site: Site, plain: Analysis) -> None:
+    def __init__(self, parts: Parts, site: Site) -> None:
         self.parts, self.site, self.book = parts, site, parts.book
-        given = plain.loop.cooling_content
-        pointer = "/coolingVessel/content" if given > 0 else "/coolingVessel"
-        content = parts.book.leaf(given, kinds.VOLUME, "content of the cooling vessel", pointer)
-        self.plain = Frame(parts, site, plain, content)
 
     def write(self, sized: Sized, scenarios: tuple[Scenario, ...], name: str) -> None:
         """Write one of the volumes and note where the answer shows it."""
@@ -90,7 +85,7 @@ class VolumeSteps:
         book.report(nominal, f"{place}/smallest")
         lowest = steps.lower_mass
         if sized.floor > interval.smallest:
-            floor = self._floor()
+            floor = self._floor(frame)
             book.report(floor, f"{place}/smallest", f"{place}/floor")
             steps = self._steps(frame, floor, tag)
         if root and lowest is not None:
@@ -102,9 +97,9 @@ class VolumeSteps:
         gas = Gas(number, precharge(analysis, number), precharge_temperature(analysis))
         return WindowSteps(frame, charged(frame, nominal), gas, tag)
 
-    def _floor(self) -> Value:
+    def _floor(self, frame: Frame) -> Value:
         """The volume of EN 12977, asked for of a loop that relies on not boiling."""
-        frame, book = self.plain, self.book
+        book = self.book
         book.chapter = "volumes"
         growth = book.step(
             expansion.relative_expansion,

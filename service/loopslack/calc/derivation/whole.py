@@ -50,7 +50,7 @@ def derive_design(found: Design, ground: Ground, *, sizing: bool = False) -> Boo
     scenarios: Sequence[Scenario] = required(found.analysis, found.request.policy)
     own = found.shown.under or scenarios
     whole.cooling(shown, tuple(own))
-    volumes = VolumeSteps(whole.parts, whole.site, found.analysis)
+    volumes = VolumeSteps(whole.parts, whole.site)
     sets = {"base": (BASE,), "recommended": tuple(scenarios), "robust": found.analysis.every}
     for name, sized in zip(sets, found.volumes, strict=True):
         if sized is not None:

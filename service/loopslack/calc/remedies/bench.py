@@ -20,8 +20,9 @@ from loopslack.calc.remedies.case import Case, Outcome
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.selection import choose
 from loopslack.calc.selector import Selector
+from loopslack.calc.sizing.floor import without_boiling_floor
 from loopslack.calc.sizing.mass_balance import feasible
-from loopslack.calc.sizing.volumes import Sized, size, without_boiling_floor
+from loopslack.calc.sizing.volumes import Sized, size
 from loopslack.calc.window import Bounds
 from loopslack.kernel.errors import CalculationError
 
@@ -109,7 +110,7 @@ def _seems_to_do(analysis: Analysis, scenarios: tuple[Scenario, ...], case: Case
     if not _bears(vessel, rating_needed(analysis)):
         return False
     gas = gas_of(analysis, vessel, case.pieces)
-    if not case.existing and gas.nominal < _floor(analysis, case):
+    if gas.nominal < _floor(analysis, case):
         return False
     bounds = Bounds(analysis, scenarios, gas)
     window = bounds.window(gas.nominal, gas.acceptance)
@@ -177,7 +178,7 @@ def _designed(case: Case) -> Outcome:
         return Outcome(False)
     if case.fill_pressure is not None:
         chosen = chosen._replace(window=chosen.window._replace(recommended=case.fill_pressure))
-    asked = Asked(analysis, case.policy, case.cooling, case.fill_pressure, sized.floor)
+    asked = Asked(analysis, case.policy, case.cooling, case.fill_pressure, case.accept_without_boiling)
     judgement = judged(asked, chosen, chosen.window)
     return Outcome(_satisfied(case, judgement), chosen, judgement)
 
@@ -191,6 +192,7 @@ def _checked(case: Case) -> Outcome:
         case.policy,
         fill_pressure=case.fill_pressure,
         mass=case.mass,
+        accept_without_boiling=case.accept_without_boiling,
     )
     return Outcome(_satisfied(case, found.judgement), found.fitted, found.judgement)
 

@@ -114,6 +114,7 @@ def case_of_vessel(
     *,
     fill_pressure: float | None = None,
     mass: float | None = None,
+    accept_without_boiling: bool = False,
 ) -> Case:
     """The case of a vessel that is there, filled to a pressure (Pa absolute), with a mass (kg), or as recommended."""
     return Case(
@@ -122,6 +123,7 @@ def case_of_vessel(
         candidates=(vessel,),
         pieces=pieces,
         existing=True,
+        accept_without_boiling=accept_without_boiling,
         fill_pressure=fill_pressure,
         mass=mass,
     )

@@ -4,7 +4,7 @@ from math import ceil, floor
 
 from msgspec.structs import replace
 
-from loopslack.calc.existing import best_window
+from loopslack.calc.fit import best_fit
 from loopslack.calc.fluid import glycol, strength_protecting_to
 from loopslack.calc.fluids_base import ZERO_CELSIUS
 from loopslack.calc.judge import required
@@ -44,7 +44,9 @@ class FillPressure(Measure):
             return []
         try:
             analysis = analysed(case)
-            fitted = best_window(analysis, required(analysis, case.policy), case.candidates[0], case.pieces)
+            fitted = best_fit(
+                analysis, required(analysis, case.policy), case.candidates[0], case.pieces, "given"
+            )
         except CalculationError:
             return []
         window, criteria = fitted.window, case.loop.criteria
