@@ -15,7 +15,6 @@ from loopslack.kernel.roots import bracketed
 
 Spaces = tuple[Steam, ...]
 
-_NEAR = 1e-6  # K
 _PASCAL = 1e-14  # share of a pressure to which that of the station is found, of the size of its rounding
 
 
@@ -111,9 +110,10 @@ class Jumps:
         self.spaces = spaces
         self._own = [
             {
-                space.pressure(t): t
+                pressure: t
                 for t in space.stagnations
-                if space.coldest < t <= space.highest_boiling() and _is_largest(space, t)
+                if space.coldest < t <= space.highest_boiling()
+                and space.is_largest(t, pressure := space.pressure(t))
             }
             for space in spaces
         ]
@@ -122,9 +122,10 @@ class Jumps:
 
     def liquid_at(self, space: int, pressure: float) -> bool:
         """Whether no group of a space boils at a vessel pressure (Pa)."""
-        own = self._own[space]
-        known = self.spaces[space].hottest <= self.spaces[space].fluid.boiling_highest
-        return known and pressure > max(own, default=0.0)
+        asked = self.spaces[space]
+        known = asked.hottest <= asked.fluid.boiling_highest
+        highest = max(self._own[space], default=0.0) if asked.path.falling else asked.peak()
+        return known and pressure > highest
 
     def at(self, pressure: float, *, below: bool) -> Spaces:
         """The spaces just below or just above a jump.
@@ -220,14 +221,6 @@ class Balance:
         while found < high and spare(found) < 0:  # on the side where all is taken, should steam leap there
             found, step = min(found + step, high), 2 * step
         return found
-
-
-def _is_largest(space: SteamSpace, temperature: float) -> bool:
-    """Whether the steam has this temperature (K) at its own pressure, where runs that rise allow more than one."""
-    if space.path.falling:
-        return True
-    found = space.boiling_at(space.pressure(temperature))
-    return found is None or found > temperature - _NEAR
 
 
 def is_open(branch: Branch, scenario: Scenario) -> bool:

@@ -6,6 +6,7 @@ pressure it would not allow.
 """
 
 from collections.abc import Callable
+from math import inf
 from typing import Literal, NamedTuple
 
 from loopslack.calc.balance import Balance, Extent, Mixing, part_emptied
@@ -131,19 +132,21 @@ def _solve(balance: Balance, law: VesselLaw, curve: _OneSpace | Meeting, limit: 
     if isinstance(curve, Meeting):
         found = curve.at_once(law)
         if found is not None:
-            return _state("steam", *found, law)
+            return _state("steam" if found[1].boiling else "no-boiling", *found, law)
     around = _around(curve, excess)
     if around is not None:
         return _between(curve, law, *around)
     low = curve.low
-    at_low = excess(low)
+    # On a falling path room grows with the coordinate, so that the lower end is of use below the first jump only.
+    at_low = -inf if curve.falling and curve.jumps else excess(low)
     if at_low >= 0:
-        pressure, extent = curve.at(low)
-        return _state("steam" if extent.boiling else "no-boiling", pressure, extent, law)
+        return _at_lowest(curve, law)
     for jump in curve.jumps:
         below = excess(jump)
         if below >= 0:
-            return _between(curve, law, low, jump, at_low, below)
+            if at_low == -inf:
+                at_low = excess(low)
+            return _at_lowest(curve, law) if at_low >= 0 else _between(curve, law, low, jump, at_low, below)
         above = excess(jump, below=False)
         if above >= 0:
             return _pinned(balance, curve, law, jump, below, above)
@@ -156,6 +159,12 @@ def _solve(balance: Balance, law: VesselLaw, curve: _OneSpace | Meeting, limit: 
             return _between(curve, law, low, curve.high, at_low, at_high)
         return _state("steam", pressure, extent, law)
     return _state("no-boiling", limit.pressure, limit, law)
+
+
+def _at_lowest(curve: _OneSpace | Meeting, law: VesselLaw) -> Equilibrium:
+    """At the vessel's lowest pressure, at which it has room for all that is pushed out."""
+    pressure, extent = curve.at(curve.low)
+    return _state("steam" if extent.boiling else "no-boiling", pressure, extent, law)
 
 
 def _between(

@@ -50,57 +50,89 @@ class Meeting:
     def at_once(self, law: VesselLaw) -> tuple[float, Extent] | None:
         """The root with its extent, from where the last one was or from the limit; None if it is not found so.
 
-        All spaces and the vessel are solved together: each space is followed along its own secant, the vessel's law is
-        taken as it is. What settles is the root and no other: on falling paths room grows and liquid falls with
-        pressure, across the jumps too, so that there is one, and a residue bounds its error.
+        What settles is the root and no other, if no space has a larger extent at that pressure: room then grows and
+        liquid falls with pressure, across the jumps too, so that there is one, and a residue bounds its error.
         """
         spaces = self.balance.spaces
-        if not all(space.path.falling for space in spaces):
-            return None
-        found = list(self.balance.last or self.limit.spaces)
+        start = self.balance.last or self.limit.spaces
+        for _ in spaces:
+            found = self._together(law, list(start))
+            if found is None:
+                return None
+            pressure, extent = found
+            # What was taken as liquid and would boil there: steam of its own raises the pressure of all.
+            late = [
+                k
+                for k, steam in enumerate(extent.spaces)
+                if not steam.boiling and not self._jumps.liquid_at(k, pressure)
+            ]
+            if not late:
+                return self._accepted(pressure, extent)
+            start = tuple(
+                space.at_pressure(pressure) if k in late else steam
+                for k, (space, steam) in enumerate(zip(spaces, extent.spaces, strict=True))
+            )
+        return None
+
+    def _together(self, law: VesselLaw, found: list[Steam]) -> tuple[float, Extent] | None:
+        """A state of rest near a start, with the same spaces boiling as there; None if it does not settle.
+
+        All spaces and the vessel are solved together: each space is followed along its own secant, the vessel's law is
+        taken as it is.
+        """
+        spaces = self.balance.spaces
         moving = [k for k, steam in enumerate(found) if steam.boiling]
         if not moving:
-            return None
+            extent = self.balance.extent(0.0, tuple(found))
+            return law.charge.pressure_holding(*law.held(extent.expelled)), extent
         before = {k: (found[k].temperature, *self._place(k, found[k])) for k in moving}
         there = {
             k: max(0.5 * (found[k].temperature + spaces[k].coldest), found[k].temperature - _FIRST)
             for k in moving
         }
-        pressure = 0.0
+        slopes: dict[int, tuple[float, float]] = {}  # of pressure by temperature, of mass by pressure
         for _ in range(_ROUNDS):
             gain = mass = 0.0
-            steeper = {}
             for k in moving:
                 old, at_old, held = before[k]
                 here, found[k] = spaces[k].at(there[k])
-                if there[k] == old or here <= 0 or (here - at_old) * (there[k] - old) <= 0:
-                    return None
-                steeper[k] = (here - at_old) / (there[k] - old)
-                gains = (found[k].mass - held) / (here - at_old)
-                gain += gains
-                mass += gains * here
                 before[k] = there[k], here, found[k].mass
+                if k not in slopes or abs(here - at_old) > _AGREED * here:
+                    if here <= 0 or (here - at_old) * (there[k] - old) <= 0:
+                        return None
+                    rise = here - at_old
+                    slopes[k] = rise / (there[k] - old), (found[k].mass - held) / rise
+                gain += slopes[k][1]
+                mass += slopes[k][1] * here
             extent = self.balance.extent(0.0, tuple(found))
             # Masses as straight lines in the pressure: what is expelled falls by ``gain`` per Pa.
-            settled = _settled(law, extent.expelled + mass, gain, before[moving[0]][1])
-            if settled is None:
+            pressure = _settled(law, extent.expelled + mass, gain, before[moving[0]][1])
+            if pressure is None:
                 return None
-            pressure = settled
             gas = law.charge.nominal - law.held(extent.expelled)[0]
             if abs(law.excess(pressure, extent.expelled)) <= _AGREED * gas and all(
                 abs(before[k][1] - pressure) <= _AGREED * pressure for k in moving
             ):
-                return self._accepted(pressure, extent)
+                return pressure, extent
             for k in moving:
-                step = (pressure - before[k][1]) / steeper[k]
+                step = (pressure - before[k][1]) / slopes[k][0]
                 moved = there[k] + min(max(step, -_LONGEST), _LONGEST)
-                there[k] = min(max(moved, spaces[k].coldest), spaces[k].highest_boiling())
+                lowest, highest = spaces[k].coldest, spaces[k].highest_boiling()
+                if there[k] == lowest > moved or there[k] == highest < moved:
+                    return None  # it would have to boil where it cannot
+                there[k] = min(max(moved, lowest), highest)
         return None
 
     def find(
         self, law: VesselLaw, low: float, high: float, at_low: float, at_high: float, tolerance: float
     ) -> tuple[float, Extent]:
         """The root in a stretch without jumps, with its extent. Raises ``NotApplicable`` where it cannot be found."""
+        end, below = (low, False) if -at_low < at_high else (high, True)
+        together = self._together(law, list(self._spaces(end, below=below)))
+        if together is not None and low < together[0] < high:
+            found = self._accepted(*together)
+            if found is not None:
+                return found
 
         def excess(pressure: float) -> float:
             return law.excess(pressure, self.at(pressure, below=False)[1].expelled)
@@ -130,10 +162,12 @@ class Meeting:
         return space.fluid.bubble_pressure(steam.temperature) + space.column * steam.height, steam.mass
 
     def _accepted(self, pressure: float, extent: Extent) -> tuple[float, Extent] | None:
-        """A solution, if it lies where the vessel may stand and what was taken as liquid is."""
+        """A solution, if it lies where the vessel may stand and no space has a larger extent there."""
         if not self.low < pressure < self.high:
             return None
-        for k, steam in enumerate(extent.spaces):
+        for k, (space, steam) in enumerate(zip(self.balance.spaces, extent.spaces, strict=True)):
+            if steam.boiling and not space.is_largest(steam.temperature, pressure):
+                return None
             if not steam.boiling and not self._jumps.liquid_at(k, pressure):
                 return None
         self.balance.last = extent.spaces
@@ -215,14 +249,18 @@ class Meeting:
 
 
 def _settled(law: VesselLaw, expelled: float, gain: float, start: float) -> float | None:
-    """Pressure (Pa) at which the vessel has room for ``expelled - gain p`` kg, by secants from a start."""
-    here, beside = start, start * (1 + 1e-4)
-    value = law.excess(here, expelled - gain * here)
+    """Pressure (Pa) at which the vessel has room for ``expelled - gain p`` kg, by secants from a start.
+
+    They go by the inverse of the pressure, in which the gas takes its volume along a straight line.
+    """
+    here, beside = 1 / start, (1 - 1e-4) / start
+    value = law.excess(start, expelled - gain * start)
     for _ in range(_SECANTS):
-        following = law.excess(beside, expelled - gain * beside)
-        if following == value:
-            return beside if abs(beside - here) <= _AGREED * abs(here) else None
+        pressure = 1 / beside
+        following = law.excess(pressure, expelled - gain * pressure)
+        if following == value or abs(beside - here) <= 0.1 * _AGREED * here:
+            return pressure if abs(beside - here) <= _AGREED * here else None
         here, value, beside = beside, following, beside - following * (beside - here) / (following - value)
-        if abs(beside - here) <= 0.1 * _AGREED * abs(here):
-            return beside
-    return beside
+        if beside <= 0:
+            return None
+    return 1 / beside

@@ -17,8 +17,12 @@ from loopslack.physics.statics import GRAVITY
 
 _KELVIN = 1e-9  # tolerance of a temperature root
 _ACCURACY = 1e-12  # of a pressure, to which a steam temperature belongs: 1e-9 K at the flattest
+_NEAR = 1e-6  # K within which two steam temperatures are one
 _PARTS = 4  # steps between two stops of a path with rising stretches, in case a peak should lie between
 BAR = 1e5
+
+Rise = tuple[float, float, float]
+"""Steam temperatures (K) between which a pressure lies, and how steeply it rises there (Pa/K), 0 where they are one."""
 
 
 class Steam(NamedTuple):
@@ -85,8 +89,8 @@ class SteamSpace:
         self.hottest = self.stagnations[-1]
         # The bubble line is known from 5 degC; steam colder than the pipes' surroundings cannot stand in them.
         self.coldest = max(fluid.boiling_lowest, self.path.warmest, sun.ambient)
-        # Where the last steam temperature was found, and the vessel pressure it belongs to.
-        self._last = self.coldest, 0.0
+        # Where the last steam temperature was found, the vessel pressure it belongs to and its rise there, if known.
+        self._last = self.coldest, 0.0, 0.0
         self._knots: list[float] | None = None
         self._highest: list[float] = []
 
@@ -157,34 +161,38 @@ class SteamSpace:
 
     def boiling_at(self, pressure: float) -> float | None:
         """Steam temperature (K) at a vessel pressure (Pa); None where nothing boils or the bubble line has ended."""
-        low, top = self.boiling_below(pressure), self.highest_boiling()
-        if low >= top:
+        bracket = self._bracket(pressure) if self.path.falling else self._first_rise(pressure)
+        if bracket is None:
             return None
-        high = min(top, self._boiling(pressure - self.column * min(self.path.heights)))
-        if not self.path.falling:
-            bracket = self._first_rise(pressure)
-            if bracket is None:
-                return None
-            low, high = bracket
-        elif high >= top and self.pressure(top) < pressure:
-            return None
-        if low >= high or (low <= self.coldest and self.pressure(low) >= pressure):
+        low, high, slope = bracket
+        if slope <= 0:
             return low
-        if self.power(high) >= self.path.loss(high) and high < top and self.path.falling:
-            # The runs are full of steam there, and at every lower temperature: the column is known.
-            return high
-        slope = self.column * (max(self.path.heights) - min(self.path.heights)) / (high - low)
-        guess, at = self._last
+        guess, at, steep = self._last
         found = near(
             lambda t: self.pressure(t) - pressure,
             low,
             high,
-            guess + (pressure - at) / slope if slope > 0 else guess,
-            slope,
+            guess + (pressure - at) / steep if steep > 0 else guess,
+            steep if steep > 0 else slope,
             _ACCURACY * max(abs(pressure), BAR),
-        ).at
-        self._last = found, pressure
-        return found
+        )
+        self._last = found.at, pressure, found.slope
+        return found.at
+
+    def _bracket(self, pressure: float) -> Rise | None:
+        """Where a falling path's steam temperature lies at a pressure (Pa); None where nothing boils."""
+        low, top = self.boiling_below(pressure), self.highest_boiling()
+        if low >= top:
+            return None
+        high = min(top, self._boiling(pressure - self.column * min(self.path.heights)))
+        if high >= top and self.pressure(top) < pressure:
+            return None
+        if low >= high or (low <= self.coldest and self.pressure(low) >= pressure):
+            return low, low, 0.0
+        if high < top and self.power(high) >= self.path.loss(high):
+            # The runs are full of steam there, and at every lower temperature: the column is known.
+            return high, high, 0.0
+        return low, high, self.column * (max(self.path.heights) - min(self.path.heights)) / (high - low)
 
     def knots(self) -> list[float]:
         """Steam temperatures (K), rising, between which pressure on a path with rising stretches has no peak.
@@ -212,15 +220,33 @@ class SteamSpace:
         """Where to look between two steam temperatures (K) for a first crossing on a path with rising stretches."""
         return [low, *(t for t in self.knots() if low < t < high), high]
 
-    def _first_rise(self, pressure: float) -> tuple[float, float] | None:
-        """The first two knots between which pressure on a rising path comes up to one (Pa); None if it never does."""
+    def is_largest(self, temperature: float, pressure: float) -> bool:
+        """Whether no cooler steam stands at the vessel pressure (Pa) at which steam of a temperature (K) does."""
+        if self.path.falling:
+            return True
+        cooler = bisect_left(self.knots(), temperature - _NEAR)
+        return not cooler or self._peaks()[cooler - 1] < pressure
+
+    def peak(self) -> float:
+        """Vessel pressure (Pa) above which nothing boils on a path with rising stretches."""
+        return self._peaks()[-1]
+
+    def _peaks(self) -> list[float]:
+        """The highest pressure (Pa) up to each of the knots."""
         if not self._highest:
             self._highest = list(accumulate((self.pressure(t) for t in self.knots()), max))
-        place = bisect_left(self._highest, pressure)
-        if place == len(self._highest):
+        return self._highest
+
+    def _first_rise(self, pressure: float) -> Rise | None:
+        """The first two knots between which pressure on a rising path comes up to one (Pa); None if it never does."""
+        knots, peaks = self.knots(), self._peaks()
+        place = bisect_left(peaks, pressure)
+        if place == len(peaks):
             return None
-        knots = self.knots()
-        return (knots[place - 1], knots[place]) if place else (knots[0], knots[0])
+        if not place:
+            return knots[0], knots[0], 0.0
+        low, high = knots[place - 1], knots[place]
+        return low, high, (peaks[place] - peaks[place - 1]) / (high - low)
 
     def station_pressure(self, taken: float) -> float | None:
         """Lowest vessel pressure (Pa) at which the branches and ``taken`` W at their end condense all steam.

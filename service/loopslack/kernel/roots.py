@@ -15,6 +15,14 @@ class Root(NamedTuple):
     evaluations: int
 
 
+class SlopedRoot(NamedTuple):
+    """Where the function crosses zero, how many evaluations that took, and how steeply it rises there."""
+
+    at: float
+    evaluations: int
+    slope: float
+
+
 def bracketed(
     function: Callable[[float], float],
     low: float,
@@ -79,18 +87,19 @@ def near(
     slope: float,
     accuracy: float,
     most: int = 120,
-) -> Root:
+) -> SlopedRoot:
     """Root of a rising function between ``low`` and ``high``, looked for at ``guess`` first.
 
     For functions asked again and again at little changed places: the ends are never evaluated (the sign must change
     between them), the first step goes along ``slope``, the next ones are secants kept inside what is left between
-    the ends. Ends when the value is within ``accuracy`` of nought, or nothing is left between the ends.
+    the ends. Ends when the value is within ``accuracy`` of nought, or nothing is left between the ends. The slope
+    told is the last one seen.
     """
     here = guess if low < guess < high else 0.5 * (low + high)
     value = function(here)
     for count in range(1, most):
         if -accuracy <= value <= accuracy:
-            return Root(here, count)
+            return SlopedRoot(here, count, slope)
         if value < 0:
             low = here
         else:
@@ -100,11 +109,11 @@ def near(
         if not low < beside < high:
             beside = 0.5 * (low + high)
             if not low < beside < high:
-                return Root(here, count)
+                return SlopedRoot(here, count, slope)
         following = function(beside)
         slope = (following - value) / (beside - here)
         here, value = beside, following
-    return Root(here, most)
+    return SlopedRoot(here, most, slope)
 
 
 def first_crossing(
