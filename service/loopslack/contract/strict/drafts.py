@@ -30,6 +30,11 @@ def entries(drafts: Sequence[Draft]) -> Draft:
     return lambda turn: [draft(turn) for draft in drafts]
 
 
+def each_in_turn(options: Sequence[Draft]) -> Draft:
+    """One of several values that may be meant, each as it is in as many turns as there are of it."""
+    return lambda turn: options[turn % len(options)](turn // len(options))
+
+
 def stand_in(kind: inspect.Type, place: str) -> Draft:
     """What stands in for the value of a type at a place."""
     options = _options(kind, place)

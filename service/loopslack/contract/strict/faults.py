@@ -11,7 +11,7 @@ of a fault in `findings`.
 """
 
 import math
-from collections.abc import Mapping
+from collections.abc import Collection, Mapping
 from contextlib import suppress
 from functools import cache
 
@@ -110,21 +110,39 @@ class _Walk(Findings):
         else:
             self.add_word(f"{pointer}/{tag_name}", tag, tuple(by_tag))
         near = words_near(tag, by_tag) if isinstance(tag, str) and self.may_hint() else ()
-        self._whichever_is_meant(value, [by_tag[word] for word in near] or variants, pointer)
-        return self._in_place_of(member, pointer)
+        others = {name: entry for name, entry in value.items() if name != tag_name}
+        if near:
+            return self._whichever_is_meant(others, [by_tag[word] for word in near], pointer, member)
+        fitting = _those_with_all(others.keys(), variants)
+        # What is there shows which kind may be meant, but not enough of it to ask for what is not there.
+        return self._whichever_is_meant(
+            others, fitting, pointer, member, guessed=len(fitting) < len(variants)
+        )
 
     def _whichever_is_meant(
-        self, value: Mapping[str, object], variants: list[inspect.StructType], pointer: str
-    ) -> None:
-        """Report what is wrong with the other members, whichever of the variants is meant."""
-        searches = []
+        self,
+        value: Mapping[str, object],
+        variants: list[inspect.StructType],
+        pointer: str,
+        member: inspect.Type,
+        *,
+        guessed: bool = False,
+    ) -> Draft:
+        """Report what is wrong with the members but the tag, whichever variant is meant; draft each in turn."""
+        stated = {f"{pointer}/{escaped(name)}" for name in value}
+        searches, meant = [], []
         for variant in variants:
             search = _Walk()
-            others = {name: entry for name, entry in value.items() if name != variant.tag_field}
-            with suppress(EnoughError):
-                search._members(others, variant, pointer)
+            try:
+                meant.append(drafts.members(variant, search._members(value, variant, pointer)))
+            except EnoughError:
+                meant.append(self._in_place_of(member, pointer))
+            if guessed:
+                search.forget({f"{pointer}/{field.encode_name}" for field in variant.fields} - stated)
             searches.append(search)
         self.add_shared(searches)
+        self.unsound.update(*(search.unsound for search in searches))
+        return drafts.each_in_turn(meant)
 
     def _object(self, value: object, kind: inspect.StructType, pointer: str, member: inspect.Type) -> Draft:
         if not isinstance(value, dict):
@@ -223,6 +241,14 @@ def faults_of(value: object, question: type, read: Read | None = None) -> list[F
 def shape_of(question: type) -> inspect.Type:
     """What a type of question consists of, looked up once."""
     return inspect.type_info(question)
+
+
+def _those_with_all(names: Collection[str], variants: list[inspect.StructType]) -> list[inspect.StructType]:
+    """The variants that have all members of these names, or all variants if none has."""
+    fitting = [
+        variant for variant in variants if {field.encode_name for field in variant.fields}.issuperset(names)
+    ]
+    return fitting or variants
 
 
 def _bare(kind: inspect.Type) -> inspect.Type:

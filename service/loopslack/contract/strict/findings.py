@@ -4,7 +4,7 @@ Where the faults are is found in `faults`.
 """
 
 import re
-from collections.abc import Iterable, Sequence
+from collections.abc import Collection, Iterable, Sequence
 
 import msgspec
 
@@ -59,6 +59,10 @@ class Findings:
         for fault in searches[0].found:
             if all((fault.pointer, fault.code, fault.message) in known for known in told):
                 self._keep(fault)
+
+    def forget(self, pointers: Collection[str]) -> None:
+        """Drop the faults at these places."""
+        self.found = [fault for fault in self.found if fault.pointer not in pointers]
 
     def add_cause(self, cause: CalculationError, pointer: str) -> None:
         """Take over a fault that the question's own rules found at this place."""
