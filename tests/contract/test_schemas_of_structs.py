@@ -96,7 +96,7 @@ def test_optional_objects_and_words_are_plain_references_and_say_that_null_is_ab
 def test_a_list_of_words_is_named_with_its_constants() -> None:
     assert schemas_of(Part)["Colour"] == {
         "type": "string",
-        "description": "Colours.",
+        "description": "Colours.\n\n`red`: Red. `deep-blue`: Blue.",
         "enum": ["red", "deep-blue"],
         "x-enum-varnames": ["RED", "DEEP_BLUE"],
         "x-enum-descriptions": ["Red", "Blue"],

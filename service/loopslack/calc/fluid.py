@@ -30,6 +30,7 @@ __all__ = [
     "FluidKind",
     "GlycolKind",
     "Vapour",
+    "coldest_protection",
     "glycol",
     "glycol_by_volume",
     "glycol_protecting_to",
@@ -69,13 +70,18 @@ def glycol_by_volume(kind: GlycolKind, fraction: float) -> Fluid:
     return glycol(kind, strength)
 
 
+def coldest_protection(kind: GlycolKind) -> float:
+    """Lowest temperature, K, a glycol protects to: where its warmer freezing curve ends, at 60 % by mass."""
+    return warmer_freezing_point(kind, FREEZING_STRENGTH_HIGHEST)
+
+
 def strength_protecting_to(kind: GlycolKind, temperature: float, margin: float = 0.0) -> float:
     """Lowest mass fraction whose warmer freezing curve lies a margin (K) or more below a temperature (K).
 
     Raises ``OutOfRange`` when that would take more than 60 % by mass, where the freezing curves end.
     """
     wanted = temperature - margin
-    coldest = warmer_freezing_point(kind, FREEZING_STRENGTH_HIGHEST)
+    coldest = coldest_protection(kind)
     if not wanted >= coldest - ROUNDING:
         raise OutOfRange(
             f"Protection to {celsius(temperature)} degC with a margin of {margin:g} K asks for a freezing "

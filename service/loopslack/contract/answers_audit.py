@@ -68,7 +68,7 @@ class ReadingExplanation(AnswerPart, frozen=True, kw_only=True):
 class GaugeFinding(AnswerPart, frozen=True, kw_only=True):
     """What the gauge says."""
 
-    reading: Annotated[q.Pressure, text("What it shows.")]
+    reading: Annotated[q.Pressure, text("What the gauge shows.")]
     temperature: Annotated[q.Temperature, text("Temperature of the loop then.")]
     expected: Annotated[
         q.Pressure | None, text("What it should show at that temperature. Absent where that is not defined.")
@@ -105,8 +105,8 @@ class GaugeFinding(AnswerPart, frozen=True, kw_only=True):
 class FillingToday(AnswerPart, frozen=True, kw_only=True):
     """Where the present filling lies in the fill window, as readings at the temperature of the reading."""
 
-    position: Annotated[Position, text("Where it lies.", "below")]
-    reading: Annotated[q.Pressure, text("The reading.")]
+    position: Annotated[Position, text("Where the filling lies in the window.", "below")]
+    reading: Annotated[q.Pressure, text("What the gauge shows today.")]
     lower: Annotated[
         q.Pressure | None, text("Lowest reading that keeps every check. Absent without a window.")
     ] = None

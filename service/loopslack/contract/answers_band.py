@@ -22,7 +22,7 @@ class BandOutcome(AnswerPart, frozen=True, kw_only=True):
 class BandRow(AnswerPart, frozen=True, kw_only=True):
     """One input off by its tolerance."""
 
-    input: Annotated[ToleranceId, text("The input.", "fill-pressure")]
+    input: Annotated[ToleranceId, text("The input that may be off.", "fill-pressure")]
     low: Annotated[BandOutcome, text("With the input lower.")]
     high: Annotated[BandOutcome, text("With the input higher.")]
 

@@ -73,7 +73,9 @@ class Assumption(AnswerPart, frozen=True, kw_only=True):
     word: Annotated[str | None, text("The word that stood in, where it is one.", "poor")] = None
     low: Annotated[AnyQuantity | None, text("Lower end of the range common in the trade.")] = None
     high: Annotated[AnyQuantity | None, text("Upper end of the range common in the trade.")] = None
-    why: Annotated[str, text("Why this one.", "Temperature at which controllers stop the pump.")]
+    why: Annotated[
+        str, text("Why this number or word stands in.", "Temperature at which controllers stop the pump.")
+    ]
     source: Annotated[SourceNote, text("Where it comes from.")]
 
 
@@ -87,7 +89,7 @@ class Advisory(AnswerPart, frozen=True, kw_only=True):
     message: Annotated[
         str, text("The matter in a sentence, with its numbers.", "The relief valve would open.")
     ]
-    remedy: Annotated[str, text("What to do.", "Take a larger vessel.")]
+    remedy: Annotated[str, text("What to do about it.", "Take a larger vessel.")]
     parameters: Annotated[
         dict[str, AnyQuantity], text("The numbers of the message by name, for translation.")
     ]
@@ -120,15 +122,17 @@ class Provenance(AnswerPart, frozen=True, kw_only=True, gc=False):
 class Check(AnswerPart, frozen=True, kw_only=True):
     """One check: a value against its limit. A margin below zero means that it fails."""
 
-    code: Annotated[str, text("What is checked.", "relief-valve")]
+    code: Annotated[
+        str, text("What is checked: a stable code, shown with its meaning under /docs/codes.", "relief-valve")
+    ]
     verdict: Annotated[CheckVerdict, text("What came of it.", "holds")]
     group: Annotated[
         CheckGroup,
         text("`core` checks decide the verdict, the others must be confirmed by somebody.", "core"),
     ]
     scenario: Annotated[str, text("State of the loop or doubt it was checked under.", "base")]
-    value: Annotated[AnyQuantity | None, text("The value.")] = None
-    limit: Annotated[AnyQuantity | None, text("The limit.")] = None
+    value: Annotated[AnyQuantity | None, text("What the loop has or does.")] = None
+    limit: Annotated[AnyQuantity | None, text("What it may or must be at the utmost.")] = None
     margin: Annotated[AnyQuantity | None, text("How far the value is on the safe side of the limit.")] = None
     subject: Annotated[str | None, text("The part concerned, where there are several.", "station")] = None
     reason: Annotated[str | None, text("Why it fails or is not assessed, where no number says so.")] = None

@@ -90,10 +90,10 @@ class CourseSummary(AnswerPart, frozen=True, kw_only=True):
 class CoursePoint(AnswerPart, frozen=True, kw_only=True, gc=False):
     """One instant of the course."""
 
-    time: Annotated[q.TimeSpan, text("From midnight.")]
+    time: Annotated[q.TimeSpan, text("Time since midnight.")]
     irradiance: Annotated[q.Irradiance, text("Sun on the collectors.")]
-    ambient: Annotated[q.Temperature, text("Outdoor air.")]
-    collector_temperature: Annotated[q.Temperature, text("Absorber.")]
+    ambient: Annotated[q.Temperature, text("Temperature of the outdoor air.")]
+    collector_temperature: Annotated[q.Temperature, text("Temperature of the absorber.")]
     saturation_temperature: Annotated[q.Temperature, text("Boiling point at the pressure of the collectors.")]
     steam_volume: Annotated[q.Volume, text("Steam in collectors and pipes.")]
     steam_volume_low: Annotated[q.Volume, text("Lowest over the envelope.")]

@@ -21,7 +21,7 @@ class DerivationInput(AnswerPart, frozen=True, kw_only=True, gc=False):
         None
     )
     meaning: Annotated[str, text("What the number is here.", "peak efficiency")]
-    value: Annotated[AnyQuantity, text("The number.")]
+    value: Annotated[AnyQuantity, text("The number put in.")]
     origin: Annotated[
         InputOrigin,
         text(
@@ -81,7 +81,7 @@ class DerivationConstant(AnswerPart, frozen=True, kw_only=True):
 class DerivationSystem(AnswerPart, frozen=True, kw_only=True):
     """Equations that hold at once, whose root this step is: put in, it leaves over no more than the residual."""
 
-    id: Annotated[str, text("Which system.", "steam-at-rest")]
+    id: Annotated[str, text("Name of the system of equations.", "steam-at-rest")]
     meaning: Annotated[str, text("What must hold.", "The steam's pressure is the vessel's.")]
     equations: Annotated[
         list[int], text("Steps of the system, with their numbers put in at the root.", [53, 77])

@@ -27,8 +27,8 @@ class PartContent(AnswerPart, frozen=True, kw_only=True, gc=False):
     """What one part holds."""
 
     kind: Annotated[PartKind, text("Kind of the part.", "pipe-run")]
-    name: Annotated[str, text("The part.", "flow")]
-    content: Annotated[q.Volume, text("What it holds.")]
+    name: Annotated[str, text("Name of the part.", "flow")]
+    content: Annotated[q.Volume, text("Liquid in the part.")]
     low: Annotated[q.Volume | None, text("Lower end of the range, where the content was assumed.")] = None
     high: Annotated[q.Volume | None, text("Upper end of the range, where the content was assumed.")] = None
 
@@ -41,7 +41,7 @@ class LoopContent(AnswerPart, frozen=True, kw_only=True):
     high: Annotated[q.Volume | None, text("Upper end, with every assumed part at its upper end.")] = None
     collectors: Annotated[q.Volume, text("All collectors.")]
     pipes: Annotated[q.Volume, text("All pipe runs.")]
-    parts: Annotated[list[PartContent], text("Part by part.")]
+    parts: Annotated[list[PartContent], text("What each part holds.")]
 
 
 class FillWindow(AnswerPart, frozen=True, kw_only=True):
@@ -51,7 +51,7 @@ class FillWindow(AnswerPart, frozen=True, kw_only=True):
     lower: Annotated[q.Pressure, text("Lowest fill pressure.")]
     recommended: Annotated[q.Pressure, text("Recommended fill pressure.")]
     upper: Annotated[q.Pressure, text("Highest fill pressure.")]
-    width: Annotated[q.PressureDifference, text("Upper less lower.")]
+    width: Annotated[q.PressureDifference, text("Upper bound less lower bound.")]
     wide_enough: Annotated[bool, text("Whether an installer can hit it.", True)]
     lower_set_by: Annotated[str, text("The check that sets the lower bound.", "boiling-at-cut-off")]
     upper_set_by: Annotated[str, text("The check that sets the upper bound.", "relief-valve")]
@@ -95,7 +95,9 @@ class StagnationState(AnswerPart, frozen=True, kw_only=True):
         text("True where pressure and steam are lower bounds: the valve opens or steam is left over."),
     ] = None
     steam_temperature: Annotated[q.Temperature, text("Steam, or hottest liquid where nothing boils.")]
-    stagnation_temperature: Annotated[q.Temperature, text("Of the hottest collector group, with the doubt.")]
+    stagnation_temperature: Annotated[
+        q.Temperature, text("Stagnation temperature of the hottest collector group, with the doubt.")
+    ]
     steam_power: Annotated[q.Power, text("What the collectors send out as steam.")]
     steam_volume: Annotated[q.Volume, text("Steam in collectors and pipes.")]
     reach: Annotated[list[SteamReach], text("Steam in each open pipe run.")]
@@ -119,7 +121,9 @@ class CoolingVesselResult(AnswerPart, frozen=True, kw_only=True, gc=False):
 
     content: Annotated[q.Volume, text("Its content; the smallest that keeps the membrane within its limit.")]
     least_rated_pressure: Annotated[q.Pressure, text("Rated pressure it must have at least.")]
-    place: Annotated[str, text("Where it goes.", "In the line before the expansion vessel, uninsulated.")]
+    place: Annotated[
+        str, text("Where the cooling vessel goes.", "In the line before the expansion vessel, uninsulated.")
+    ]
 
 
 class VesselResult(AnswerPart, frozen=True, kw_only=True):
@@ -159,7 +163,7 @@ class Volumes(AnswerPart, frozen=True, kw_only=True):
 class RefusalReason(AnswerPart, frozen=True, kw_only=True):
     """Why a vessel was refused, and by how much. `unspent-power` is the loop's: the others are what it needs beside."""
 
-    code: Annotated[ReasonCode, text("The reason.", "acceptance-volume")]
+    code: Annotated[ReasonCode, text("Why the vessel is refused.", "acceptance-volume")]
     value: Annotated[
         AnyQuantity | None, text("What the vessel has; steam power left over as `steam-at-station` has it.")
     ] = None
@@ -172,7 +176,7 @@ class RefusalReason(AnswerPart, frozen=True, kw_only=True):
 class RefusedVessel(AnswerPart, frozen=True, kw_only=True):
     """A candidate that was refused."""
 
-    id: Annotated[str, text("The article.", "preferred-80")]
+    id: Annotated[str, text("Identifier of the vessel in its list.", "preferred-80")]
     pieces: Annotated[int, text("How many equal ones were looked at.", 1)]
     verdict: Annotated[Verdict, text("Always `does-not-hold` for the policy asked for.", "does-not-hold")]
     reasons: Annotated[list[RefusalReason], text("Every reason.")]
@@ -181,7 +185,7 @@ class RefusedVessel(AnswerPart, frozen=True, kw_only=True):
 class Alternative(AnswerPart, frozen=True, kw_only=True, gc=False):
     """A candidate ranked after the chosen one that passes the same comparison."""
 
-    id: Annotated[str, text("The article.", "preferred-125")]
+    id: Annotated[str, text("Identifier of the vessel in its list.", "preferred-125")]
     pieces: Annotated[int, text("How many equal ones.", 1)]
 
 
@@ -201,9 +205,9 @@ class FillRow(AnswerPart, frozen=True, kw_only=True):
     """Fill pressures by the temperature of the day."""
 
     temperature: Annotated[q.Temperature, text("Temperature of loop and gas.")]
-    lower: Annotated[q.Pressure | None, text("Lowest.")] = None
-    recommended: Annotated[q.Pressure | None, text("Recommended.")] = None
-    upper: Annotated[q.Pressure | None, text("Highest.")] = None
+    lower: Annotated[q.Pressure | None, text("Lowest fill pressure at this temperature.")] = None
+    recommended: Annotated[q.Pressure | None, text("Recommended fill pressure at this temperature.")] = None
+    upper: Annotated[q.Pressure | None, text("Highest fill pressure at this temperature.")] = None
     omitted: Annotated[OmittedReason | None, text("Why there are no numbers.", "fluid-frozen")] = None
 
 
@@ -218,8 +222,8 @@ class GaugeReading(AnswerPart, frozen=True, kw_only=True, gc=False):
 class ClosedForms(AnswerPart, frozen=True, kw_only=True, gc=False):
     """Fill pressures by the closed forms of EN 12828, for liquid expansion only: no bound for a loop that boils."""
 
-    lower: Annotated[q.Pressure, text("Lowest.")]
-    upper: Annotated[q.Pressure, text("Highest.")]
+    lower: Annotated[q.Pressure, text("Lowest fill pressure by the closed form.")]
+    upper: Annotated[q.Pressure, text("Highest fill pressure by the closed form.")]
 
 
 class SettingsCard(AnswerPart, frozen=True, kw_only=True):
@@ -280,7 +284,9 @@ class OrderList(AnswerPart, frozen=True, kw_only=True):
 class Provisional(AnswerPart, frozen=True, kw_only=True, gc=False):
     """Why the answer is provisional."""
 
-    code: Annotated[str, text("The reason.", "rating-unstated")]
+    code: Annotated[
+        str, text("Why: a stable code, shown with its meaning under /docs/codes.", "rating-unstated")
+    ]
     field: Annotated[
         str | None,
         text(

@@ -36,7 +36,7 @@ class FluidItem(AnswerPart, frozen=True, kw_only=True):
     """A fluid of the service."""
 
     id: Annotated[FluidId, text("The fluid.", "propylene-glycol")]
-    title: Annotated[str, text("Its name.", "Propylene glycol and water")]
+    title: Annotated[str, text("Name of the fluid.", "Propylene glycol and water")]
     highest_concentration: Annotated[q.MassPercent, text("Highest share of glycol by mass.")]
     properties: Annotated[list[FluidProperty], text("Its properties.")]
 
@@ -80,10 +80,10 @@ class RuleItem(AnswerPart, frozen=True, kw_only=True):
     """A sizing rule."""
 
     id: Annotated[RuleId, text("The rule.", "en-12977")]
-    title: Annotated[str, text("Its name.", "EN 12977")]
-    counts: Annotated[str, text("What it counts.", "Liquid expansion and collector content.")]
-    law: Annotated[str, text("Its law.", "V_N = (n V_s + 1.1 V_c + V_wr) F")]
-    range: Annotated[str, text("Where it holds.", "Any fluid.")]
+    title: Annotated[str, text("Name of the rule.", "EN 12977")]
+    counts: Annotated[str, text("What the rule counts.", "Liquid expansion and collector content.")]
+    law: Annotated[str, text("Law of the rule.", "V_N = (n V_s + 1.1 V_c + V_wr) F")]
+    range: Annotated[str, text("What the rule holds for.", "Any fluid.")]
     sources: Annotated[list[SourceNote], text("Where it was published, its own source first.")]
 
 
@@ -110,7 +110,7 @@ class VesselSeries(AnswerPart, frozen=True, kw_only=True):
 class SourceItem(AnswerPart, frozen=True, kw_only=True):
     """A publication behind the service."""
 
-    key: Annotated[str, text("Key in answers.", "en-12828")]
+    key: Annotated[str, text("Key under which answers name the source.", "en-12828")]
     title: Annotated[str, text("Title.", "Heating systems in buildings")]
     publisher: Annotated[str, text("Publisher or author.", "CEN")]
     year: Annotated[int | None, text("Year, where known.", 2012)] = None

@@ -116,7 +116,7 @@ class Discharge(AnswerPart, frozen=True, kw_only=True):
 
     scenario: Annotated[ScenarioId, text("Base case or doubt.", "base")]
     volume: Annotated[q.Volume, text("What leaves, as hot liquid.")]
-    mass: Annotated[q.Mass, text("What leaves.")]
+    mass: Annotated[q.Mass, text("Mass that leaves.")]
     at_least: Annotated[bool | None, text("True where steam reaches the station, so that more leaves.")] = (
         None
     )

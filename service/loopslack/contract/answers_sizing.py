@@ -33,8 +33,8 @@ class RuleComparison(AnswerPart, frozen=True, kw_only=True):
     variant: Annotated[
         str | None, text("Which of two answers of one rule this is; absent for its own.", "printed-figures")
     ] = None
-    title: Annotated[str, text("Its name.", "EN 12977")]
-    counts: Annotated[str, text("What it counts.", "Liquid expansion and collector content.")]
+    title: Annotated[str, text("Name of the rule.", "EN 12977")]
+    counts: Annotated[str, text("What the rule counts.", "Liquid expansion and collector content.")]
     source: Annotated[SourceNote, text("Where it was published.")]
     nominal_volume: Annotated[q.Volume | None, text("Its answer. Absent where it does not apply.")] = None
     reason: Annotated[str | None, text("Why it gives no answer.")] = None
@@ -86,7 +86,7 @@ class Walk(AnswerPart, frozen=True, kw_only=True):
 class SensitivityEnd(AnswerPart, frozen=True, kw_only=True):
     """An input at one end of its range."""
 
-    value: Annotated[AnyQuantity, text("The input there.")]
+    value: Annotated[AnyQuantity, text("The input at this end of its range.")]
     nominal_volume: Annotated[
         q.Volume | None, text("Recommended volume there. Absent where no vessel holds.")
     ] = None
@@ -96,11 +96,11 @@ class SensitivityEnd(AnswerPart, frozen=True, kw_only=True):
 class SensitivityRow(AnswerPart, frozen=True, kw_only=True):
     """What one input does to the recommended volume over its range."""
 
-    input: Annotated[str, text("The input.", "hot-liquid")]
-    present: Annotated[AnyQuantity, text("Its present number.")]
+    input: Annotated[str, text("The input that is moved.", "hot-liquid")]
+    present: Annotated[AnyQuantity, text("What the input is now.")]
     range_from: Annotated[RangeBasis, text("Where the range comes from.", "default")]
-    low: Annotated[SensitivityEnd, text("At the lower end.")]
-    high: Annotated[SensitivityEnd, text("At the upper end.")]
+    low: Annotated[SensitivityEnd, text("What follows at the lower end of its range.")]
+    high: Annotated[SensitivityEnd, text("What follows at the upper end of its range.")]
     largest_change: Annotated[
         q.Volume | None,
         text("Largest change of the volume. Absent where it decides whether any vessel holds."),
@@ -111,14 +111,14 @@ class SensitivityRow(AnswerPart, frozen=True, kw_only=True):
 class HeadRoomRow(AnswerPart, frozen=True, kw_only=True):
     """How far something may go before the vessel fails."""
 
-    id: Annotated[HeadRoomId, text("What is moved.", "stagnation-temperature")]
+    id: Annotated[HeadRoomId, text("The input that is moved.", "stagnation-temperature")]
     outcome: Annotated[
         Outcome,
         text(
             "`value` where it ends, `none` where the vessel fails as it is, `beyond-search` where it never did."
         ),
     ]
-    value: Annotated[AnyQuantity | None, text("How far.")] = None
+    value: Annotated[AnyQuantity | None, text("How far it can be moved.")] = None
     ended_by: Annotated[str | None, text("The check that ends it.", "relief-valve")] = None
     scenario: Annotated[str | None, text("The scenario under which it does.", "base")] = None
 

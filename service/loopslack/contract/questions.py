@@ -73,8 +73,20 @@ class ExpansionQuestion(Question, frozen=True, kw_only=True):
     """A fluid and two temperatures: how much it expands, when it freezes and boils."""
 
     fluid: Annotated[Fluid, text("The fluid.")]
-    start_temperature: Annotated[Temperature, quantity("Temperature to start from.", 15, "degC", -60, 250)]
-    end_temperature: Annotated[Temperature, quantity("Temperature to end at.", 120, "degC", -60, 250)]
+    start_temperature: Annotated[
+        Temperature,
+        quantity("Temperature to start from, at which the fluid is a liquid.", 15, "degC", -60, 250),
+    ]
+    end_temperature: Annotated[
+        Temperature,
+        quantity(
+            "Temperature to end at, at which the fluid is a liquid whose density is known.",
+            120,
+            "degC",
+            -60,
+            250,
+        ),
+    ]
     content: Annotated[
         Volume | None,
         quantity("Volume at the start, to give the expansion as a volume.", 42.6, "L", 0, 100_000),
@@ -107,7 +119,7 @@ class LoopQuestion(Question, frozen=True, kw_only=True):
         Length | None,
         quantity(
             "Height of the highest point of the loop above the vessel connection. If absent, that of the "
-            "parts.",
+            "highest part, above which it lies.",
             11,
             "m",
             -150,
@@ -171,7 +183,11 @@ class SizingQuestion(LoopQuestion, frozen=True, kw_only=True):
     ] = None
     tolerances: Annotated[Tolerances | None, text("How far inputs may be off.")] = None
     rules: Annotated[
-        Rules | None, text("The published rules to compute beside the recommendation. If absent, all.")
+        Rules | None,
+        text(
+            "The published rules to compute beside the recommendation. If absent, all. A design computes them where "
+            "`include` has `rules`."
+        ),
     ] = None
 
 

@@ -69,21 +69,37 @@ class CollectorGroup(QuestionPart, frozen=True, kw_only=True):
     id: Annotated[Label | None, text("The caller's name for the group.", "roof")] = None
     count: Annotated[int, Meta(ge=1, le=10_000, description="Number of collectors.", examples=[8])]
     area: Annotated[Area, quantity("Area of one collector on the basis of `areaBasis`.", 2.3, "m2", 0.1, 100)]
-    area_basis: Annotated[AreaBasis, text("Which of the collector's areas `area` is.", "aperture")]
+    area_basis: Annotated[
+        AreaBasis,
+        text(
+            "Which of the collector's areas `area` is. If not `aperture`, `apertureArea` is needed too.",
+            "aperture",
+        ),
+    ]
     aperture_area: Annotated[
         Area | None,
-        quantity("Aperture area of one collector; needed if another basis is used.", 2.3, "m2", 0.1, 100),
+        quantity(
+            "Aperture area of one collector; needed if `areaBasis` is not `aperture`.", 2.3, "m2", 0.1, 100
+        ),
     ] = None
     gross_area: Annotated[
         Area | None,
         quantity(
-            "Gross area of one collector; needed to convert coefficients from it.", 2.52, "m2", 0.1, 100
+            "Gross area of one collector; needed if it is the `basis` of the coefficients.",
+            2.52,
+            "m2",
+            0.1,
+            100,
         ),
     ] = None
     absorber_area: Annotated[
         Area | None,
         quantity(
-            "Absorber area of one collector; needed to convert coefficients from it.", 2.25, "m2", 0.1, 100
+            "Absorber area of one collector; needed if it is the `basis` of the coefficients.",
+            2.25,
+            "m2",
+            0.1,
+            100,
         ),
     ] = None
     type: Annotated[Build, text("Build of the collector.", "flat-plate")]
@@ -112,7 +128,9 @@ class CollectorGroup(QuestionPart, frozen=True, kw_only=True):
     ] = None
     measured_steam_power: Annotated[
         Irradiance | None,
-        quantity("Measured steam power per aperture area, instead of `emptyingClass`.", 60, "W/m2", 5, 600),
+        quantity(
+            "Measured steam power per aperture area, stated instead of `emptyingClass`.", 60, "W/m2", 5, 600
+        ),
     ] = None
     rated_pressure: Annotated[
         Pressure | None,
@@ -120,7 +138,14 @@ class CollectorGroup(QuestionPart, frozen=True, kw_only=True):
     ] = None
     height: Annotated[
         Length | None,
-        quantity("Height above the vessel connection. If absent, `staticHeight`.", 11, "m", -150, 150),
+        quantity(
+            "Height above the vessel connection. If absent, `staticHeight`, which lies within these where all "
+            "groups state one.",
+            11,
+            "m",
+            -150,
+            150,
+        ),
     ] = None
     steam_space: Annotated[
         Label | None,

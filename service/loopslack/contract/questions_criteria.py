@@ -142,19 +142,38 @@ class Criteria(QuestionPart, frozen=True, kw_only=True):
 class Tolerances(QuestionPart, frozen=True, kw_only=True):
     """How far inputs may be off either way. The answer gives the band that follows."""
 
-    pipe_length: Annotated[Ratio | None, quantity("Of all pipe lengths.", 10, "percent", 0, 100)] = None
+    pipe_length: Annotated[
+        Ratio | None,
+        quantity("How far all pipe lengths may be off either way; less than all.", 10, "percent", 0, 100),
+    ] = None
     collector_content: Annotated[
-        Ratio | None, quantity("Of the collectors' content.", 10, "percent", 0, 100)
+        Ratio | None,
+        quantity("How far the collectors' content may be off either way.", 10, "percent", 0, 100),
     ] = None
     insulation_conductivity: Annotated[
-        Ratio | None, quantity("Of the insulation's conductivity.", 25, "percent", 0, 100)
+        Ratio | None,
+        quantity(
+            "How far the insulation's conductivity may be off either way; less than all.",
+            25,
+            "percent",
+            0,
+            100,
+        ),
     ] = None
-    steam_power: Annotated[Ratio | None, quantity("Of the steam power.", 25, "percent", 0, 100)] = None
+    steam_power: Annotated[
+        Ratio | None, quantity("How far the steam power may be off either way.", 25, "percent", 0, 100)
+    ] = None
     stagnation_temperature: Annotated[
-        TemperatureDifference | None, quantity("Of the stagnation temperature.", 10, "K", 0, 60)
+        TemperatureDifference | None,
+        quantity("How far the stagnation temperature may be off either way.", 10, "K", 0, 60),
     ] = None
-    static_height: Annotated[Length | None, quantity("Of the static height.", 1, "m", 0, 50)] = None
+    static_height: Annotated[
+        Length | None, quantity("How far the static height may be off either way.", 1, "m", 0, 50)
+    ] = None
     fill_pressure: Annotated[
-        PressureDifference | None, quantity("Of the fill pressure.", 0.1, "bar", 0, 2)
+        PressureDifference | None,
+        quantity("How far the fill pressure may be off either way.", 0.1, "bar", 0, 2),
     ] = None
-    precharge: Annotated[PressureDifference | None, quantity("Of the precharge.", 0.1, "bar", 0, 2)] = None
+    precharge: Annotated[
+        PressureDifference | None, quantity("How far the precharge may be off either way.", 0.1, "bar", 0, 2)
+    ] = None

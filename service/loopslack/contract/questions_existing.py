@@ -41,7 +41,8 @@ class GivenDay(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="g
     """A day by its points, hourly or finer, joined by straight lines."""
 
     points: Annotated[
-        list[WeatherPoint], Meta(min_length=2, max_length=3000, description="The points, in rising time.")
+        list[WeatherPoint],
+        Meta(min_length=2, max_length=3000, description="The points, in rising time, an hour apart at most."),
     ]
 
 
@@ -55,11 +56,11 @@ class ColdDawn(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="c
 class PumpStop(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="pump-stop"):
     """The pump stops while the loop is hot."""
 
-    time: Annotated[TimeSpan, quantity("When, since midnight.", 12, "h", 0, 24)]
-    collectors: Annotated[Temperature, quantity("Collectors then.", 90, "degC", -20, 160)]
-    pipes: Annotated[Temperature, quantity("Pipes then.", 80, "degC", -20, 140)]
-    station: Annotated[Temperature, quantity("Station then.", 75, "degC", -20, 140)]
-    vessel: Annotated[Temperature, quantity("Vessel then.", 30, "degC", -20, 100)]
+    time: Annotated[TimeSpan, quantity("Time at which the pump stops, since midnight.", 12, "h", 0, 24)]
+    collectors: Annotated[Temperature, quantity("Temperature of the collectors then.", 90, "degC", -20, 160)]
+    pipes: Annotated[Temperature, quantity("Temperature of the pipes then.", 80, "degC", -20, 140)]
+    station: Annotated[Temperature, quantity("Temperature of the station then.", 75, "degC", -20, 140)]
+    vessel: Annotated[Temperature, quantity("Temperature of the vessel then.", 30, "degC", -20, 100)]
 
 
 CourseStart = ColdDawn | PumpStop
@@ -114,9 +115,12 @@ class MeasuredPrecharge(QuestionPart, frozen=True, kw_only=True):
 class GaugeReading(QuestionPart, frozen=True, kw_only=True):
     """What the gauge of a loop at rest shows."""
 
-    pressure: Annotated[Pressure, quantity("The reading.", 1.4, "barg", 0, 30)]
+    pressure: Annotated[Pressure, quantity("What the gauge shows.", 1.4, "barg", 0, 30)]
     temperature: Annotated[
-        Temperature, quantity("Temperature of the loop then, the same all over.", 18, "degC", -40, 100)
+        Temperature,
+        quantity(
+            "Temperature of the loop then, the same all over; above its freezing point.", 18, "degC", -40, 100
+        ),
     ]
 
 
@@ -124,7 +128,9 @@ class CommissioningRecord(QuestionPart, frozen=True, kw_only=True):
     """What was set when the loop was filled."""
 
     precharge: Annotated[Pressure, quantity("Precharge set, a reading on site.", 1.6, "barg", 0, 30)]
-    fill_pressure: Annotated[Pressure, quantity("Fill pressure at the gauge.", 1.9, "barg", 0, 30)]
+    fill_pressure: Annotated[
+        Pressure, quantity("Fill pressure at the gauge, above the precharge.", 1.9, "barg", 0, 30)
+    ]
     temperature: Annotated[
         Temperature | None,
         quantity("Temperature of the loop then. If absent, the fill temperature.", 15, "degC", -20, 60),

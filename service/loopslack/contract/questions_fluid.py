@@ -1,9 +1,12 @@
 """How a caller names the fluid."""
 
-from typing import Annotated, Literal
+from math import ceil
+from typing import Annotated, Literal, get_args
 
 from msgspec import Meta
 
+from loopslack.calc.fluid import coldest_protection
+from loopslack.calc.fluids_base import ZERO_CELSIUS
 from loopslack.contract.fields import quantity, text
 from loopslack.contract.quantity import (
     Density,
@@ -30,11 +33,18 @@ class ByVolume(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="b
     share: Annotated[VolumePercent, quantity("Volume of glycol mixed in.", 42, "volume-percent", 1, 60)]
 
 
+_COLDEST = " and ".join(
+    f"{kind.replace('-', ' ')} reaches {ceil(10 * (coldest_protection(kind) - ZERO_CELSIUS)) / 10:g} degC"
+    for kind in get_args(Glycol)
+)
+
+
 class ProtectTo(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="protect-to"):
     """As much glycol as keeps the mixture free of ice down to a temperature."""
 
     temperature: Annotated[
-        Temperature, quantity("Temperature at which the first ice may form.", -25, "degC", -60, -1)
+        Temperature,
+        quantity(f"Temperature at which the first ice may form; {_COLDEST}.", -25, "degC", -60, -1),
     ]
 
 
@@ -84,9 +94,9 @@ class BoilingTable(QuestionPart, frozen=True, kw_only=True, tag_field="kind", ta
     points: Annotated[
         list[BoilingPoint],
         Meta(
-            min_length=2,
+            min_length=3,
             max_length=100,
-            description="Three points or more, in rising order; nothing is carried beyond them.",
+            description="In rising order of temperature; nothing is carried beyond them.",
         ),
     ]
 

@@ -7,10 +7,12 @@ from msgspec import Meta
 from loopslack.contract.fields import quantity, text, trade
 from loopslack.contract.quantity import Conductivity, ContentPerLength, Length, Temperature
 from loopslack.contract.questions_collectors import Label, QuestionPart
+from loopslack.library.tubes import tube_standards
 
 Zone = Literal["indoor", "outdoor"]
 RunRole = Literal["flow", "return"]
 SteamAccess = Literal["open", "closed", "unknown"]
+_STANDARDS = ", ".join(f"`{standard}`" for standard in tube_standards())
 _WALLS = trade("tube-outer-over-bore")
 _DIAMETERS = trade("insulation-thickness-per-diameter")
 _CONDUCTIVITY = trade("insulation-conductivity")
@@ -23,8 +25,14 @@ ShortText = Annotated[str, Meta(min_length=1, max_length=40)]
 class StandardTube(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="standard"):
     """A tube of a published standard by its nominal size. `GET /v1/tubes` lists them."""
 
-    standard: Annotated[ShortText, text("Identifier of the standard.", "en-1057")]
-    size: Annotated[ShortText, text("Nominal size as the standard writes it.", "28x1.5")]
+    standard: Annotated[ShortText, text(f"The standard: one of {_STANDARDS}.", "en-1057")]
+    size: Annotated[
+        ShortText,
+        text(
+            "Nominal size as `GET /v1/tubes` writes it: `28x1.5` of `en-1057`, `3/4` of `astm-b88-l`.",
+            "28x1.5",
+        ),
+    ]
 
 
 class BoreTube(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="bore"):
@@ -32,7 +40,8 @@ class BoreTube(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="b
 
     bore: Annotated[Length, quantity("Clear diameter.", 25, "mm", 2, 500)]
     outer_diameter: Annotated[
-        Length | None, quantity(f"Outer diameter. If absent, bore plus {_WALLS}.", 28, "mm", 2.2, 600)
+        Length | None,
+        quantity(f"Outer diameter, above the bore. If absent, bore plus {_WALLS}.", 28, "mm", 2.2, 600),
     ] = None
 
 
@@ -91,7 +100,7 @@ Insulation = NoInsulation | Insulated | Weathered
 class PipeSegment(QuestionPart, frozen=True, kw_only=True):
     """A stretch of pipe of one tube, one insulation and one surrounding."""
 
-    length: Annotated[Length, quantity("Length.", 23, "m", 0.01, 10_000)]
+    length: Annotated[Length, quantity("Length of the stretch.", 23, "m", 0.01, 10_000)]
     tube: Annotated[Tube, text("The tube.")]
     insulation: Annotated[
         Insulation | None,
@@ -118,7 +127,7 @@ class PipeSegment(QuestionPart, frozen=True, kw_only=True):
         quantity(
             "Height above the vessel connection of the end towards the station. If absent anywhere in a "
             "run, heights "
-            "run evenly between those that are stated.",
+            "run evenly between those that are stated. The last stretch ends at the station.",
             0,
             "m",
             -150,

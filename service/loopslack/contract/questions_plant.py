@@ -52,7 +52,16 @@ OpeningAllowance = AllowanceByRule | AllowanceStated
 class ReliefValve(QuestionPart, frozen=True, kw_only=True):
     """The relief valve (safety valve) of the loop."""
 
-    set_pressure: Annotated[Pressure, quantity("Set pressure as stamped on the valve.", 6, "barg", 0.5, 16)]
+    set_pressure: Annotated[
+        Pressure,
+        quantity(
+            "Set pressure as stamped on the valve, above what `openingAllowance` takes off it.",
+            6,
+            "barg",
+            0.5,
+            16,
+        ),
+    ]
     height: Annotated[
         Length | None,
         quantity("Height above the vessel connection. If absent, 0.", 0, "m", -150, 150),
@@ -188,18 +197,28 @@ class LoopTemperatures(QuestionPart, frozen=True, kw_only=True):
 
     fill: Annotated[
         Temperature | None,
-        quantity(f"When the loop is filled. If absent, {trade('fill-temperature')}.", 15, "degC", -20, 60),
+        quantity(
+            f"Temperature while the loop is filled, above its freezing point. If absent, {trade('fill-temperature')}.",
+            15,
+            "degC",
+            -20,
+            60,
+        ),
     ] = None
     indoor_cold: Annotated[
         Temperature | None,
         quantity(
-            f"Of indoor parts in the cold state. If absent, {trade('indoor-cold')}.", 5, "degC", -40, 40
+            f"Temperature of indoor parts in the cold state. If absent, {trade('indoor-cold')}.",
+            5,
+            "degC",
+            -40,
+            40,
         ),
     ] = None
     vessel_room: Annotated[
         Temperature | None,
         quantity(
-            f"Around the vessel while the loop is hot. If absent, {trade('vessel-room')}.",
+            f"Temperature around the vessel while the loop is hot. If absent, {trade('vessel-room')}.",
             20,
             "degC",
             -40,
@@ -209,13 +228,18 @@ class LoopTemperatures(QuestionPart, frozen=True, kw_only=True):
     flow_pipe: Annotated[
         Temperature | None,
         quantity(
-            f"Of the flow while operating. If absent, {trade('design-flow-temperature')}.", 70, "degC", 0, 160
+            f"Temperature of the flow while operating, from that of `returnPipe` to that of `cutOff`. "
+            f"If absent, {trade('design-flow-temperature')}.",
+            70,
+            "degC",
+            0,
+            160,
         ),
     ] = None
     return_pipe: Annotated[
         Temperature | None,
         quantity(
-            f"Of the return while operating. If absent, {trade('design-return-temperature')}.",
+            f"Temperature of the return while operating. If absent, {trade('design-return-temperature')}.",
             40,
             "degC",
             0,
@@ -224,9 +248,21 @@ class LoopTemperatures(QuestionPart, frozen=True, kw_only=True):
     ] = None
     cut_off: Annotated[
         Temperature | None,
-        quantity(f"At which the pump is stopped. If absent, {trade('pump-cut-off')}.", 120, "degC", 40, 180),
+        quantity(
+            f"Temperature at which the pump is stopped. If absent, {trade('pump-cut-off')}.",
+            120,
+            "degC",
+            40,
+            180,
+        ),
     ] = None
     hot_liquid: Annotated[
         Temperature | None,
-        quantity(f"Of liquid in pipes and station in stagnation. If absent, {_HOT}.", 120, "degC", 20, 180),
+        quantity(
+            f"Temperature of liquid in pipes and station in stagnation. If absent, {_HOT}.",
+            120,
+            "degC",
+            20,
+            180,
+        ),
     ] = None

@@ -77,7 +77,7 @@ def _index(contract: Contract) -> Page:
 
 def _schema(contract: Contract, name: str, schema: Schema) -> Html:
     return joined(
-        prose(schema["description"]),
+        prose(schema["description"].partition("\n\n")[0] if "enum" in schema else schema["description"]),
         _one_of(contract, schema) if "oneOf" in schema else None,
         _words(name, schema) if "enum" in schema else None,
         members(contract, name, schema) if "properties" in schema else None,

@@ -15,6 +15,9 @@ import msgspec
 
 CLASHING_NAMES = frozenset({"Unit", "Result", "Error", "Data", "Type", "Date", "Measurement", "Any"})
 
+MOST_TOLD = 20
+"""Words of a list whose meanings a description can take."""
+
 
 class DocumentError(Exception):
     """The contract says something that has no clean place in the document; the message names it."""
@@ -39,10 +42,14 @@ class NamedValues:
     extensible: bool = False
 
     def schema(self) -> dict[str, object]:
-        """The component schema: values, constants and meanings side by side."""
+        """The component schema: values, constants and meanings side by side.
+
+        Few generators show the meanings that stand beside the values, all of them the description.
+        """
+        told = " ".join(f"`{word.value}`: {word.meaning}." for word in self.words)
         schema: dict[str, object] = {
             "type": "string",
-            "description": self.meaning,
+            "description": f"{self.meaning}\n\n{told}" if len(self.words) <= MOST_TOLD else self.meaning,
             "enum": [word.value for word in self.words],
             "x-enum-varnames": [word.constant for word in self.words],
             "x-enum-descriptions": [word.meaning for word in self.words],
