@@ -273,7 +273,6 @@ def own(density=None, boiling=None, **more):
         (own({60: 1010, 120: 960, 180: 900}), "/fluid/points"),
         (own({-25: 1060, 20: 1036, 60: 1010, 120: 1020, 180: 900}), "/fluid/points/3/density"),
         (own(boiling={140: 3.3, 170: 7.3, 200: 14.3}), "/fluid/boiling/points"),
-        (own(boiling={80: 0.4, 200: 14.3}), "/fluid/boiling/points"),
         (own(boiling={80: 0.4, 100: 0.95, 140: 9, 200: 14.3}), "/fluid/boiling/points/2"),
         (own(boiling={1: 0.00657, 100: 0.95, 140: 3.3, 200: 14.3}), "/fluid/boiling/points/0"),
         (own({-30: 1070, -20: 1060, 4: 1040}, freezingPoint=quantity(5, "degC")), "/fluid/freezingPoint"),

@@ -34,7 +34,7 @@ class ByVolume(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="b
 
 
 _COLDEST = " and ".join(
-    f"{kind.replace('-', ' ')} reaches {ceil(10 * (coldest_protection(kind) - ZERO_CELSIUS)) / 10:g} degC"
+    f"{ceil(10 * (coldest_protection(kind) - ZERO_CELSIUS)) / 10:g} degC with {kind.replace('-', ' ')}"
     for kind in get_args(Glycol)
 )
 
@@ -44,7 +44,7 @@ class ProtectTo(QuestionPart, frozen=True, kw_only=True, tag_field="kind", tag="
 
     temperature: Annotated[
         Temperature,
-        quantity(f"Temperature at which the first ice may form; {_COLDEST}.", -25, "degC", -60, -1),
+        quantity(f"Temperature at which the first ice may form. Down to {_COLDEST}.", -25, "degC", -60, -1),
     ]
 
 

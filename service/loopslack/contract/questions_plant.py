@@ -55,7 +55,7 @@ class ReliefValve(QuestionPart, frozen=True, kw_only=True):
     set_pressure: Annotated[
         Pressure,
         quantity(
-            "Set pressure as stamped on the valve, above what `openingAllowance` takes off it.",
+            "Set pressure as stamped on the valve. `openingAllowance` must leave some of it.",
             6,
             "barg",
             0.5,
