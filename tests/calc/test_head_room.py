@@ -1,16 +1,21 @@
 """How much worse than stated a filled vessel still takes, against the full judgement of the worsened loop."""
 
+from math import inf
+
 import pytest
 from msgspec.structs import replace
 
+from calc.loops import random_loop
 from calc.reference import BAR, CRITERIA, ZERO, group, loop, run, stagnation_rise
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.fit import Fit, fit
 from loopslack.calc.head_room import Filled, HeadRoom, failing, head_room
 from loopslack.calc.judge import judge
 from loopslack.calc.model import Loop, Vessel
+from loopslack.calc.precharge import precharge
 from loopslack.calc.sizing.floor import without_boiling_floor
-from loopslack.calc.window import Gas
+from loopslack.calc.window import Bounds, Gas
+from loopslack.kernel.errors import CalculationError
 
 LIMIT = CRITERIA.membrane_limit
 
@@ -151,3 +156,26 @@ def test_pipe_added_to_a_loop_that_relies_on_not_boiling_ends_where_its_least_vo
     assert failed(longer(plan, 1.001 * room.value), found.gas, found.mass) == {
         ("volume-without-boiling", "base")
     }
+
+
+def test_of_bounds_that_are_one_but_for_rounding_the_first_is_named() -> None:
+    """Where the emptying class limits the steam, hotter collectors send out no more: the base case bounds as much."""
+    seen = 0
+    for seed in range(500):
+        plan = random_loop(seed)
+        try:
+            analysis = Analysis(plan)
+            bounds = Bounds(
+                analysis, analysis.singles, Gas(0.1, precharge(analysis, 0.1), plan.temperatures.fill)
+            )
+            for size in (0.5, 1.0, 2.0, 3.0):
+                nominal = size * plan.content
+                lower, _ = bounds.masses(nominal)
+                masses = [(id, slope * nominal - offset) for _, id, slope, offset in bounds.lower]
+                as_much = [id for id, mass in masses if mass == pytest.approx(lower.mass, rel=1e-11)]
+                if lower.mass < inf and len(as_much) > 1:
+                    seen += 1
+                    assert lower.scenario == as_much[0], seed
+        except CalculationError:
+            continue
+    assert seen > 10

@@ -16,6 +16,7 @@ from loopslack.calc.scenarios import Scenario
 from loopslack.kernel.kinds import NominalVolume, Volume
 from loopslack.physics.vessel import reserve_en_12828
 
+_TIE = 1e-10  # share of a mass within which two bounds are one: a tenth of what rounding may do to a verdict
 _WARM_KELVIN = 1e-11  # what a mixed temperature may be off
 _WARM_PASSES = 80  # five are usual; where two answers are about to vanish the passes get slow
 
@@ -133,27 +134,30 @@ class Bounds:
         return reserve_en_12828(NominalVolume(nominal), Volume(self.analysis.content))
 
     def masses(self, nominal: float, acceptance: float = inf) -> tuple[Bound, Bound]:
-        """Lower and upper bound on the mass (kg) a vessel of ``nominal`` m3 is filled with."""
+        """Lower and upper bound on the mass (kg) a vessel of ``nominal`` m3 is filled with.
+
+        Of bounds that are one but for rounding the first is named.
+        """
         analysis = self.analysis
         least = analysis.states.cold.mass_holding(self.reserve(nominal))
         lowest: tuple[str, str] = "reserve", "cold"
         for code, id, slope, offset in self.lower:
             mass = slope * nominal - offset
-            if mass > least:
+            if mass - least > _TIE * abs(least):
                 least, lowest = mass, (code, id)
         most = self.fill_density * min(nominal, acceptance)
         highest: tuple[str, str] = "membrane-full", "fill"
         for code, id, slope, offset in self.upper:
             mass = slope * nominal - offset
-            if mass < most:
+            if most - mass > _TIE * abs(most):
                 most, highest = mass, (code, id)
         for id, case, station in self.warm:
             mass = self._warm_mass(nominal, analysis.final_pressure, case.final.expelled)
-            if mass < most:
+            if most - mass > _TIE * abs(most):
                 most, highest = mass, ("relief-valve", id)
             if station is not None:
                 mass = self._warm_mass(nominal, station.pressure, station.expelled)
-                if mass > least:
+                if mass - least > _TIE * abs(least):
                     least, lowest = mass, ("steam-at-station", id)
         lower, upper = Bound(*lowest, least), Bound(*highest, most)
         if acceptance < nominal:
