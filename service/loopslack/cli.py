@@ -18,10 +18,11 @@ from typing import Any, NoReturn
 import msgspec
 
 from loopslack import __version__
-from loopslack.contract import answering, questions
-from loopslack.contract.answers import LoopDesignAnswer, LoopDesignResult, StagnationCheckAnswer
+from loopslack.contract.answering import loop as answering
+from loopslack.contract.answers.operations import LoopDesignAnswer, LoopDesignResult, StagnationCheckAnswer
 from loopslack.contract.encoding import encoded
-from loopslack.contract.questions_many import FigureQuestion, SheetQuestion
+from loopslack.contract.questions import operations as questions
+from loopslack.contract.questions.many import FigureQuestion, SheetQuestion
 from loopslack.contract.refusals import Refused, refusal_of
 from loopslack.contract.strict.decoding import decode
 from loopslack.kernel.errors import CalculationError

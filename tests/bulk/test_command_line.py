@@ -11,10 +11,10 @@ from msgspec.structs import replace
 
 from bulk.files import questions, run
 from loopslack import cli
-from loopslack.contract import answering
-from loopslack.contract.answers_common import Verdict
+from loopslack.contract.answering import loop as answering
+from loopslack.contract.answers.common import Verdict
 from loopslack.contract.encoding import encoded
-from loopslack.contract.questions import LoopDesignQuestion
+from loopslack.contract.questions.operations import LoopDesignQuestion
 from loopslack.contract.strict.decoding import decode
 from loopslack.sheet import pdf, rendering
 

@@ -8,8 +8,8 @@ from typing import Any
 import msgspec
 import pytest
 
-from loopslack.contract.answering_audit import audit_vessel
-from loopslack.contract.questions_existing import VesselAuditQuestion
+from loopslack.contract.answering.audit import audit_vessel
+from loopslack.contract.questions.existing import VesselAuditQuestion
 from loopslack.kernel.errors import CalculationError, Contradiction
 
 EXAMPLE = Path(__file__).parents[2] / "openapi/examples/auditVessel/five-years-on.question.json"

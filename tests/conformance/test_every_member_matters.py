@@ -10,8 +10,8 @@ import pytest
 
 from conformance.changes import WITHOUT_EFFECT, changes
 from conformance.members import member_at, members
-from loopslack.contract import answering
-from loopslack.contract.questions import LoopDesignQuestion
+from loopslack.contract.answering import loop as answering
+from loopslack.contract.questions.operations import LoopDesignQuestion
 
 CHANGES = changes()
 

@@ -8,11 +8,15 @@ import msgspec
 import pytest
 
 from load.bodies import design_question
-from loopslack.contract.answering import check_stagnation, design_loop, size_vessel
-from loopslack.contract.answering_audit import audit_vessel
-from loopslack.contract.answering_course import compute_stagnation_course
-from loopslack.contract.questions import LoopDesignQuestion, StagnationCheckQuestion, VesselSizingQuestion
-from loopslack.contract.questions_existing import StagnationCourseQuestion, VesselAuditQuestion
+from loopslack.contract.answering.audit import audit_vessel
+from loopslack.contract.answering.course import compute_stagnation_course
+from loopslack.contract.answering.loop import check_stagnation, design_loop, size_vessel
+from loopslack.contract.questions.existing import StagnationCourseQuestion, VesselAuditQuestion
+from loopslack.contract.questions.operations import (
+    LoopDesignQuestion,
+    StagnationCheckQuestion,
+    VesselSizingQuestion,
+)
 from loopslack.kernel.errors import CalculationError
 from questions.wash_house import wash_house
 

@@ -6,10 +6,13 @@ from pathlib import Path
 import msgspec
 import pytest
 
-from loopslack.contract import answering, answering_audit, answering_course, answering_small
-from loopslack.contract import questions as loop_questions
+from loopslack.contract.answering import audit as answering_audit
+from loopslack.contract.answering import course as answering_course
+from loopslack.contract.answering import loop as answering
+from loopslack.contract.answering import small as answering_small
 from loopslack.contract.encoding import encoded
-from loopslack.contract.questions_existing import StagnationCourseQuestion, VesselAuditQuestion
+from loopslack.contract.questions import operations as loop_questions
+from loopslack.contract.questions.existing import StagnationCourseQuestion, VesselAuditQuestion
 from questions.questions_of_each_kind import SOUND
 
 SCHEMAS = json.loads((Path(__file__).parents[2] / "openapi" / "v1.json").read_bytes())["components"][

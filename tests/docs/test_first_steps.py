@@ -13,7 +13,7 @@ from loopslack.api.docs.contract import Described, contract
 from loopslack.api.docs.start import FIRST_QUESTION, first_answer, first_question
 from loopslack.api.docs.words import shown
 from loopslack.app import create_app
-from loopslack.contract.questions import LoopDesignQuestion
+from loopslack.contract.questions.operations import LoopDesignQuestion
 from loopslack.settings import settings_from
 
 ROOT = Path(__file__).parents[2]

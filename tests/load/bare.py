@@ -12,8 +12,8 @@ from pathlib import Path
 import msgspec
 from litestar import Litestar, Request, Response, get, post
 
-from loopslack.contract.answers import LoopDesignAnswer
-from loopslack.contract.questions import LoopDesignQuestion
+from loopslack.contract.answers.operations import LoopDesignAnswer
+from loopslack.contract.questions.operations import LoopDesignQuestion
 
 DECODER = msgspec.json.Decoder(LoopDesignQuestion)
 ENCODER = msgspec.json.Encoder()

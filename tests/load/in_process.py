@@ -16,7 +16,7 @@ import msgspec
 
 from load.outcome import Figure, Run, at_most
 from load.questions import DECODER, answered, drawn
-from loopslack.contract.answers import LoopDesignAnswer
+from loopslack.contract.answers.operations import LoopDesignAnswer
 
 EVERYTHING = ["rules", "remedies", "sensitivity", "course", "derivation"]
 ANSWER = msgspec.json.Decoder(LoopDesignAnswer)

@@ -13,8 +13,9 @@ from typing import Any
 import msgspec
 
 from load.bodies import design_question, encoded
-from loopslack.contract import answering, questions
+from loopslack.contract.answering import loop as answering
 from loopslack.contract.encoding import encoded as encoded_answer
+from loopslack.contract.questions import operations as questions
 from loopslack.kernel.errors import CalculationError
 
 DECODER = msgspec.json.Decoder(questions.LoopDesignQuestion)

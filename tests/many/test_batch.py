@@ -209,7 +209,7 @@ def test_a_bug_is_logged_with_the_request_and_told_without_its_text(monkeypatch,
     def broken(question):
         raise ZeroDivisionError("the secret of the house")
 
-    monkeypatch.setattr("loopslack.contract.answering_many.design_loop", broken)
+    monkeypatch.setattr("loopslack.contract.answering.many.design_loop", broken)
     with serving() as client:
         answer = post(client, batch(design("a")), **{"x-request-id": "night-18"})
     assert answer.status_code == 200

@@ -7,8 +7,9 @@ from concurrent.futures import ThreadPoolExecutor
 import msgspec
 import pytest
 
-from loopslack.contract import answering, answering_many
-from loopslack.contract.answering_many import (
+from loopslack.contract.answering import loop as answering
+from loopslack.contract.answering import many as answering_many
+from loopslack.contract.answering.many import (
     Tally,
     answer_design,
     answer_lines,
@@ -17,8 +18,8 @@ from loopslack.contract.answering_many import (
     read_shared,
 )
 from loopslack.contract.encoding import encoded
-from loopslack.contract.questions import LoopDesignQuestion
-from loopslack.contract.reading_many import Shared
+from loopslack.contract.questions.operations import LoopDesignQuestion
+from loopslack.contract.reading.many import Shared
 from loopslack.contract.refusals import Refused
 from loopslack.kernel.errors import Contradiction
 from many.designs import BATCH, HEAD, design, faulty

@@ -4,9 +4,9 @@ from typing import Any, NamedTuple
 
 from msgspec.structs import fields
 
-from loopslack.contract import questions as loop_questions
-from loopslack.contract.questions_existing import StagnationCourseQuestion, VesselAuditQuestion
-from loopslack.contract.questions_many import FigureQuestion, SheetQuestion
+from loopslack.contract.questions import operations as loop_questions
+from loopslack.contract.questions.existing import StagnationCourseQuestion, VesselAuditQuestion
+from loopslack.contract.questions.many import FigureQuestion, SheetQuestion
 from questions.wash_house import changed, wash_house
 
 Plain = dict[str, Any]

@@ -7,11 +7,11 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from loopslack.contract.problems import MOST_COUNTED, MOST_FAULTS
-from loopslack.contract.questions import LoopDesignQuestion
-from loopslack.contract.questions_many import SheetQuestion
-from loopslack.contract.reader import Reader
-from loopslack.contract.reading_again import TURNS
-from loopslack.contract.readings import READINGS
+from loopslack.contract.questions.many import SheetQuestion
+from loopslack.contract.questions.operations import LoopDesignQuestion
+from loopslack.contract.reading.again import TURNS
+from loopslack.contract.reading.reader import Reader
+from loopslack.contract.reading.register import READINGS
 from loopslack.contract.refusals import Refused, refusal_of
 from loopslack.contract.strict.decoding import decode
 from loopslack.contract.strict.drafts import stand_in

@@ -4,9 +4,9 @@ from copy import deepcopy
 
 import msgspec
 
-from loopslack.contract.answering import design_loop
-from loopslack.contract.answering_small import compute_loop_volume
-from loopslack.contract.questions import LoopVolumeQuestion
+from loopslack.contract.answering.loop import design_loop
+from loopslack.contract.answering.small import compute_loop_volume
+from loopslack.contract.questions.operations import LoopVolumeQuestion
 from questions.wash_house import question, wash_house
 
 

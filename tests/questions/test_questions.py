@@ -6,17 +6,16 @@ from typing import get_args
 import msgspec
 import pytest
 
-from loopslack.contract import questions_existing as existing
-from loopslack.contract import questions_many as many
-from loopslack.contract.questions import (
+from loopslack.contract.questions import existing, many
+from loopslack.contract.questions.operations import (
     ExpansionQuestion,
     LoopDesignQuestion,
     LoopVolumeQuestion,
     StagnationCheckQuestion,
     VesselSizingQuestion,
 )
-from loopslack.contract.reading import read_loop
-from loopslack.contract.reading_many import Shared
+from loopslack.contract.reading.loop import read_loop
+from loopslack.contract.reading.many import Shared
 from loopslack.kernel.errors import Refusals
 from loopslack.library.defaults import choices, defaults
 from questions.wash_house import changed, least, question, wash_house

@@ -6,9 +6,9 @@ import msgspec
 import pytest
 
 from loopslack.contract import quantity as q
-from loopslack.contract.fields import _KIND_OF_STRUCT  # the one table of kinds by struct
-from loopslack.contract.reader import Reader
-from loopslack.contract.reading import read_loop
+from loopslack.contract.questions.fields import _KIND_OF_STRUCT  # the one table of kinds by struct
+from loopslack.contract.reading.loop import read_loop
+from loopslack.contract.reading.reader import Reader
 from loopslack.kernel.units import from_si, to_si
 from loopslack.physics.atmosphere import atmospheric_pressure
 from questions.wash_house import changed, least, question, wash_house

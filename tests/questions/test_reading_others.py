@@ -5,14 +5,18 @@ import json
 import msgspec
 import pytest
 
-from loopslack.contract.answering_course import compute_stagnation_course
-from loopslack.contract.questions import ExpansionQuestion, LoopVolumeQuestion, StagnationCheckQuestion
-from loopslack.contract.questions_criteria import Tolerances
-from loopslack.contract.questions_existing import StagnationCourseQuestion, VesselAuditQuestion
-from loopslack.contract.reader import Reader
-from loopslack.contract.reading_existing import read_audit, read_check, read_course
-from loopslack.contract.reading_small import read_contents, read_expansion
-from loopslack.contract.reading_tolerances import read_tolerances
+from loopslack.contract.answering.course import compute_stagnation_course
+from loopslack.contract.questions.criteria import Tolerances
+from loopslack.contract.questions.existing import StagnationCourseQuestion, VesselAuditQuestion
+from loopslack.contract.questions.operations import (
+    ExpansionQuestion,
+    LoopVolumeQuestion,
+    StagnationCheckQuestion,
+)
+from loopslack.contract.reading.existing import read_audit, read_check, read_course
+from loopslack.contract.reading.reader import Reader
+from loopslack.contract.reading.small import read_contents, read_expansion
+from loopslack.contract.reading.tolerances import read_tolerances
 from loopslack.kernel.errors import CalculationError, Refusals
 from questions.wash_house import changed, wash_house
 

@@ -3,11 +3,11 @@
 import msgspec
 import pytest
 
-from loopslack.contract.answering import design_loop
-from loopslack.contract.questions_vessels import FromStock, GivenVessel
-from loopslack.contract.reader import Reader
-from loopslack.contract.reading import read_loop
-from loopslack.contract.reading_vessels import read_choice
+from loopslack.contract.answering.loop import design_loop
+from loopslack.contract.questions.vessels import FromStock, GivenVessel
+from loopslack.contract.reading.loop import read_loop
+from loopslack.contract.reading.reader import Reader
+from loopslack.contract.reading.vessels import read_choice
 from loopslack.contract.refusals import refusal_of
 from loopslack.kernel.errors import CalculationError, NotApplicable, Refusals
 from questions.wash_house import changed, question, wash_house

@@ -3,8 +3,8 @@
 import msgspec
 import pytest
 
-from loopslack.contract.answering import check_stagnation, design_loop
-from loopslack.contract.questions import StagnationCheckQuestion
+from loopslack.contract.answering.loop import check_stagnation, design_loop
+from loopslack.contract.questions.operations import StagnationCheckQuestion
 from questions.questions_of_each_kind import quantity, with_vessel
 from questions.wash_house import question, wash_house
 

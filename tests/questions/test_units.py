@@ -5,7 +5,7 @@ from typing import get_args, get_type_hints
 import pytest
 
 from loopslack.contract import quantity as q
-from loopslack.contract.units_out import METRIC, US, six_digits, write, writer
+from loopslack.contract.writing.quantities import METRIC, US, six_digits, write, writer
 from loopslack.kernel import kinds
 from loopslack.kernel.units import to_si
 

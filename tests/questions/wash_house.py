@@ -7,7 +7,7 @@ from typing import Any
 
 import msgspec
 
-from loopslack.contract.questions import LoopDesignQuestion
+from loopslack.contract.questions.operations import LoopDesignQuestion
 
 EXAMPLE = Path(__file__).parents[2] / "openapi" / "examples" / "loop-design.json"
 

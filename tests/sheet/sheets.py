@@ -6,9 +6,9 @@ from typing import NamedTuple
 
 import msgspec
 
-from loopslack.contract.answering import design_loop
-from loopslack.contract.answers import LoopDesignAnswer
-from loopslack.contract.questions_many import SheetQuestion
+from loopslack.contract.answering.loop import design_loop
+from loopslack.contract.answers.operations import LoopDesignAnswer
+from loopslack.contract.questions.many import SheetQuestion
 from loopslack.sheet.case import Case
 from loopslack.sheet.composing import compose
 from loopslack.sheet.lines import Beside, Block, Card, Sheet

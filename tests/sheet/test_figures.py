@@ -5,7 +5,7 @@ from itertools import combinations
 
 import pytest
 
-from loopslack.contract.questions_many import FigureQuestion
+from loopslack.contract.questions.many import FigureQuestion
 from loopslack.sheet.case import NothingToDraw
 from loopslack.sheet.figures.marks import SIGNS
 from loopslack.sheet.figures.register import FIGURES

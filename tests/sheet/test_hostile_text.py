@@ -9,12 +9,12 @@ from hypothesis import HealthCheck, given, settings
 from hypothesis import strategies as st
 from msgspec.structs import replace
 
-from loopslack.contract.answering import design_loop
+from loopslack.contract.answering.loop import design_loop
 from loopslack.contract.quantity import Length, Pressure, Volume
-from loopslack.contract.questions_fluid import OwnFluid
-from loopslack.contract.questions_many import FigureQuestion, SheetQuestion
-from loopslack.contract.questions_plant import RatedPart
-from loopslack.contract.questions_vessels import FromStock, StockVessel
+from loopslack.contract.questions.fluid import OwnFluid
+from loopslack.contract.questions.many import FigureQuestion, SheetQuestion
+from loopslack.contract.questions.plant import RatedPart
+from loopslack.contract.questions.vessels import FromStock, StockVessel
 from loopslack.sheet.composing import compose
 from loopslack.sheet.figures.register import FIGURES
 from loopslack.sheet.pdf import pdf

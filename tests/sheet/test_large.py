@@ -5,8 +5,8 @@ from itertools import combinations
 import msgspec
 import pytest
 
-from loopslack.contract.answering import design_loop
-from loopslack.contract.questions_many import SheetQuestion
+from loopslack.contract.answering.loop import design_loop
+from loopslack.contract.questions.many import SheetQuestion
 from loopslack.sheet.case import Case
 from loopslack.sheet.composing import compose
 from loopslack.sheet.figures.register import FIGURES

@@ -7,8 +7,8 @@ import msgspec
 import pytest
 
 from calc.remedies.failing_questions import designs
-from loopslack.contract.answering import design_loop
-from loopslack.contract.questions_many import SheetQuestion
+from loopslack.contract.answering.loop import design_loop
+from loopslack.contract.questions.many import SheetQuestion
 from loopslack.sheet.composing import compose
 from loopslack.sheet.lines import Sheet, Table
 from loopslack.sheet.rendering import asked_in_full

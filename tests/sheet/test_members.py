@@ -6,7 +6,7 @@ import pytest
 from msgspec import Struct
 from msgspec.structs import fields
 
-from loopslack.contract.questions import LoopDesignQuestion
+from loopslack.contract.questions.operations import LoopDesignQuestion
 from loopslack.sheet.sections import inputs
 from loopslack.sheet.words import words
 

@@ -11,10 +11,10 @@ from collections.abc import Iterable, Iterator
 import msgspec
 from msgspec import Struct
 
-from loopslack.contract.answering_many import read_shared
+from loopslack.contract.answering.many import read_shared
 from loopslack.contract.problems import FaultyField
-from loopslack.contract.questions_many import LoopDesignBatchQuestion
-from loopslack.contract.reading_many import Shared
+from loopslack.contract.questions.many import LoopDesignBatchQuestion
+from loopslack.contract.reading.many import Shared
 from loopslack.contract.refusals import Refused, refusal_of_fields
 from loopslack.contract.strict.decoding import decode
 from loopslack.contract.strict.duplicates import refusal_of_duplicates, stated_twice

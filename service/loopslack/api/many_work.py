@@ -23,7 +23,7 @@ from loopslack.api.side_words import (
     read_many_order,
     told_of,
 )
-from loopslack.contract.answering_many import (
+from loopslack.contract.answering.many import (
     Outcome,
     Tally,
     answer_design,
@@ -32,7 +32,7 @@ from loopslack.contract.answering_many import (
     refuse_design,
 )
 from loopslack.contract.names import Names
-from loopslack.contract.reading_many import Shared
+from loopslack.contract.reading.many import Shared
 from loopslack.contract.refusals import Refused
 from loopslack.settings import Settings
 

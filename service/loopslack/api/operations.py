@@ -14,7 +14,7 @@ from msgspec import Struct
 
 from loopslack.api.costly import Costly
 from loopslack.api.many_places import ManyPlaces
-from loopslack.contract.answering import Unfinished
+from loopslack.contract.answering.loop import Unfinished
 from loopslack.contract.encoding import encoded
 from loopslack.contract.problems import PROBLEM_TYPES, ProblemType
 from loopslack.settings import Settings

@@ -22,7 +22,7 @@ from loopslack.api.reference import Page, page_route, reference_page
 from loopslack.api.reply import Reply, problem_reply
 from loopslack.api.side_words import Answered, judged
 from loopslack.api.wrappers import nothing_here
-from loopslack.contract.answering import Unfinished
+from loopslack.contract.answering.loop import Unfinished
 from loopslack.contract.refusals import Refused, refusal_of
 from loopslack.contract.strict.decoding import decode_in_steps
 from loopslack.contract.strict.reader import reader_of

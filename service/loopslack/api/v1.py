@@ -7,17 +7,15 @@ from loopslack.api.operations import Operation
 from loopslack.api.v1_audit import AUDIT_OPERATIONS
 from loopslack.api.v1_many import MANY_OPERATIONS
 from loopslack.api.v1_sheet import SHEET_OPERATIONS
-from loopslack.contract import (
-    answering,
-    answering_course,
-    answering_reference,
-    answering_small,
-    answers,
-    answers_reference,
-    questions,
-    questions_existing,
-)
-from loopslack.contract.questions_vessels import FromStock
+from loopslack.contract.answering import course as answering_course
+from loopslack.contract.answering import loop as answering
+from loopslack.contract.answering import reference as answering_reference
+from loopslack.contract.answering import small as answering_small
+from loopslack.contract.answers import operations as answers
+from loopslack.contract.answers import reference as answers_reference
+from loopslack.contract.questions import existing as questions_existing
+from loopslack.contract.questions import operations as questions
+from loopslack.contract.questions.vessels import FromStock
 
 _PARTS = "Parts"
 _DESIGN = "Design"

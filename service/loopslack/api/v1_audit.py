@@ -4,7 +4,9 @@ from collections.abc import Iterable
 from typing import Any
 
 from loopslack.api.operations import Operation
-from loopslack.contract import answering_audit, answers_audit, questions_existing
+from loopslack.contract.answering import audit as answering_audit
+from loopslack.contract.answers import audit as answers_audit
+from loopslack.contract.questions import existing as questions_existing
 
 
 def _judged(answer: answers_audit.VesselAuditAnswer) -> Iterable[tuple[str, Iterable[str]]]:

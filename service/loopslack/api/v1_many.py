@@ -4,8 +4,8 @@ from typing import Any
 
 from loopslack.api.many import NDJSON, respond_to_batch, respond_to_stream
 from loopslack.api.operations import BodySize, Operation
-from loopslack.contract.answers_many import LoopDesignBatchAnswer
-from loopslack.contract.questions_many import LoopDesignBatchQuestion
+from loopslack.contract.answers.many import LoopDesignBatchAnswer
+from loopslack.contract.questions.many import LoopDesignBatchQuestion
 
 MANY_OPERATIONS: tuple[Operation[Any, Any], ...] = (
     Operation(

@@ -7,7 +7,7 @@ for everything it shows, so it is computed beside the event loop.
 from typing import Any
 
 from loopslack.api.operations import Operation
-from loopslack.contract.questions_many import FigureQuestion, SheetQuestion
+from loopslack.contract.questions.many import FigureQuestion, SheetQuestion
 from loopslack.sheet import rendering
 
 _SHEET = "Sheet"

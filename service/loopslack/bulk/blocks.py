@@ -11,7 +11,7 @@ from collections.abc import Iterator
 from hashlib import sha256
 from typing import TYPE_CHECKING, NamedTuple, Self
 
-from loopslack.contract.answering_many import answer_lines, id_of
+from loopslack.contract.answering.many import answer_lines, id_of
 from loopslack.contract.names import Names
 
 if TYPE_CHECKING:

@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 
 from loopslack.bulk.blocks import Block, Mark, Source
 from loopslack.bulk.target import Target
-from loopslack.contract.answering_many import REFUSED, Tally, read_shared
+from loopslack.contract.answering.many import REFUSED, Tally, read_shared
 
 if TYPE_CHECKING:
     from pathlib import Path

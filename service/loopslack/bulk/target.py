@@ -17,8 +17,8 @@ import msgspec
 from msgspec import Struct
 
 from loopslack.bulk.blocks import Answered, Mark, Source
-from loopslack.contract.answering_many import REFUSED, Tally, end_line, id_of
-from loopslack.contract.writing_common import provenance
+from loopslack.contract.answering.many import REFUSED, Tally, end_line, id_of
+from loopslack.contract.writing.common import provenance
 
 if TYPE_CHECKING:
     from pathlib import Path

@@ -2,8 +2,8 @@
 
 from collections.abc import Sequence
 
-from loopslack.contract.questions_collectors import CollectorGroup
-from loopslack.contract.questions_pipes import PipeRun
+from loopslack.contract.questions.collectors import CollectorGroup
+from loopslack.contract.questions.pipes import PipeRun
 
 
 def group_names(groups: Sequence[CollectorGroup]) -> list[str]:

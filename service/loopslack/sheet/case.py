@@ -7,13 +7,13 @@ geometry only: where a drawing puts a part. Names of parts that a caller did not
 from functools import cached_property
 
 from loopslack.calc.model import CollectorGroup, Loop
-from loopslack.contract.answers import LoopDesignAnswer
-from loopslack.contract.answers_common import Check
-from loopslack.contract.answers_loop import LiquidState, StagnationState, SteamReach, VesselResult
-from loopslack.contract.questions import LoopDesignQuestion
-from loopslack.contract.questions_pipes import StandardTube
-from loopslack.contract.reading import Reading, read_loop
-from loopslack.contract.units_out import Writer
+from loopslack.contract.answers.common import Check
+from loopslack.contract.answers.loop import LiquidState, StagnationState, SteamReach, VesselResult
+from loopslack.contract.answers.operations import LoopDesignAnswer
+from loopslack.contract.questions.operations import LoopDesignQuestion
+from loopslack.contract.questions.pipes import StandardTube
+from loopslack.contract.reading.loop import Reading, read_loop
+from loopslack.contract.writing.quantities import Writer
 from loopslack.kernel.errors import NotApplicable
 from loopslack.sheet.numerals import Language, Numerals, numerals
 from loopslack.sheet.words import Words, plain, words

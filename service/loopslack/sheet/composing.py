@@ -6,8 +6,8 @@ from datetime import date
 
 import msgspec
 
-from loopslack.contract.answers import LoopDesignAnswer
-from loopslack.contract.questions_many import SheetQuestion
+from loopslack.contract.answers.operations import LoopDesignAnswer
+from loopslack.contract.questions.many import SheetQuestion
 from loopslack.kernel.errors import OutOfRange
 from loopslack.sheet.case import Case
 from loopslack.sheet.lines import Fact, Section, Sheet, Text

@@ -6,12 +6,12 @@ since it costs more than all the rest.
 
 from msgspec.structs import replace
 
-from loopslack.contract.answering import design_loop
-from loopslack.contract.answers import LoopDesignAnswer
-from loopslack.contract.questions import LoopDesignQuestion
-from loopslack.contract.questions_criteria import Extra
-from loopslack.contract.questions_many import FigureQuestion, SheetQuestion
-from loopslack.contract.reading_again import within
+from loopslack.contract.answering.loop import design_loop
+from loopslack.contract.answers.operations import LoopDesignAnswer
+from loopslack.contract.questions.criteria import Extra
+from loopslack.contract.questions.many import FigureQuestion, SheetQuestion
+from loopslack.contract.questions.operations import LoopDesignQuestion
+from loopslack.contract.reading.again import within
 from loopslack.kernel.errors import CalculationError
 from loopslack.sheet.case import Case
 from loopslack.sheet.composing import compose

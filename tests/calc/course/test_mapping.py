@@ -10,7 +10,7 @@ from loopslack.calc.course.lumped import HOT_START, Start
 from loopslack.calc.course.mapping import mapped
 from loopslack.calc.fluid import BoilsLike, glycol, own_fluid, water
 from loopslack.calc.model import Relief, Station
-from loopslack.contract.questions_existing import StagnationCourseQuestion
+from loopslack.contract.questions.existing import StagnationCourseQuestion
 from loopslack.kernel.errors import NotApplicable
 
 WATERLIKE = [(273.15 + t, 1050 - 0.6 * t) for t in (-20, 20, 60, 100, 150, 200)]

@@ -15,11 +15,12 @@ from loopslack.calc.derivation.book import Book
 from loopslack.calc.derivation.whole import derive_check, derive_design
 from loopslack.calc.design import Design
 from loopslack.calc.existing import Checked, check
-from loopslack.contract import answering, questions
-from loopslack.contract.answers_derivation import Derivation
-from loopslack.contract.reading_derivation import ground_of
-from loopslack.contract.reading_existing import read_check
-from loopslack.contract.writing_derivation import derivation
+from loopslack.contract.answering import loop as answering
+from loopslack.contract.answers.derivation import Derivation
+from loopslack.contract.questions import operations as questions
+from loopslack.contract.reading.derivation import ground_of
+from loopslack.contract.reading.existing import read_check
+from loopslack.contract.writing.derivation import derivation
 from questions.wash_house import changed, least, wash_house
 
 Plain = dict[str, Any]

@@ -13,13 +13,15 @@ from calc.extreme.rest import wrong_with_rest
 from calc.extreme.shapes import Data, q
 from loopslack.calc.fit import Fit
 from loopslack.calc.judgement import Judgement
-from loopslack.contract import answering, answering_audit, answering_course
-from loopslack.contract.questions import (
+from loopslack.contract.answering import audit as answering_audit
+from loopslack.contract.answering import course as answering_course
+from loopslack.contract.answering import loop as answering
+from loopslack.contract.questions.existing import StagnationCourseQuestion, VesselAuditQuestion
+from loopslack.contract.questions.operations import (
     LoopDesignQuestion,
     StagnationCheckQuestion,
     VesselSizingQuestion,
 )
-from loopslack.contract.questions_existing import StagnationCourseQuestion, VesselAuditQuestion
 from loopslack.contract.refusals import Refused
 from loopslack.kernel import kinds
 from loopslack.kernel.errors import CalculationError

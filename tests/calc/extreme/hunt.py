@@ -15,12 +15,12 @@ if __name__ == "__main__":
 from calc.extreme.asking import Asked, ask
 from calc.extreme.drawing import question, seeded
 from calc.extreme.shapes import Data
-from loopslack.contract.questions import (
+from loopslack.contract.questions.existing import StagnationCourseQuestion, VesselAuditQuestion
+from loopslack.contract.questions.operations import (
     LoopDesignQuestion,
     StagnationCheckQuestion,
     VesselSizingQuestion,
 )
-from loopslack.contract.questions_existing import StagnationCourseQuestion, VesselAuditQuestion
 
 KINDS: tuple[type, ...] = (
     *(LoopDesignQuestion,) * 8,

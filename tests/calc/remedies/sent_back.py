@@ -11,15 +11,15 @@ from loopslack.calc.design import Request, design
 from loopslack.calc.remedies.bench import Bench
 from loopslack.calc.remedies.case import Case, case_of_design, case_of_vessel
 from loopslack.calc.remedies.seek import Remedies, remedies
-from loopslack.contract import answers_remedies as out
-from loopslack.contract.answering import candidates, check_stagnation, design_loop
-from loopslack.contract.questions import LoopDesignQuestion, StagnationCheckQuestion
-from loopslack.contract.reader import Reader
-from loopslack.contract.reading import read_loop
-from loopslack.contract.reading_existing import read_check
-from loopslack.contract.reading_vessels import read_choice
-from loopslack.contract.writing_changes import Asked
-from loopslack.contract.writing_remedies import RemedyWriter
+from loopslack.contract.answering.loop import candidates, check_stagnation, design_loop
+from loopslack.contract.answers import remedies as out
+from loopslack.contract.questions.operations import LoopDesignQuestion, StagnationCheckQuestion
+from loopslack.contract.reading.existing import read_check
+from loopslack.contract.reading.loop import read_loop
+from loopslack.contract.reading.reader import Reader
+from loopslack.contract.reading.vessels import read_choice
+from loopslack.contract.writing.changes import Asked
+from loopslack.contract.writing.remedies import RemedyWriter
 from loopslack.kernel.work import finished
 
 WITHOUT_EXTRAS: dict[str, Any] = {"include": []}

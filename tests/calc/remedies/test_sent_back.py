@@ -16,8 +16,8 @@ from calc.remedies.sent_back import (
 )
 from loopslack.calc.model import Loop
 from loopslack.calc.remedies.changes import changed as changed_case
-from loopslack.contract.questions import LoopDesignQuestion, StagnationCheckQuestion
-from loopslack.contract.reading import read_loop
+from loopslack.contract.questions.operations import LoopDesignQuestion, StagnationCheckQuestion
+from loopslack.contract.reading.loop import read_loop
 
 DESIGNS, CHECKS = designs(), checks()
 

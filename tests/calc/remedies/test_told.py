@@ -16,10 +16,10 @@ from loopslack.calc.remedies.measure import RemedyCode
 from loopslack.calc.remedies.robust import cooler_for_robust
 from loopslack.calc.scenarios import BASE
 from loopslack.calc.window import Bounds
-from loopslack.contract.remedy_words import CAUTIONS, SENTENCES
-from loopslack.contract.units_out import METRIC, US
-from loopslack.contract.writing_discharge import discharges
-from loopslack.contract.writing_remedies import robust_cooler
+from loopslack.contract.writing.discharge import discharges
+from loopslack.contract.writing.quantities import METRIC, US
+from loopslack.contract.writing.remedies import robust_cooler
+from loopslack.contract.writing.remedy_words import CAUTIONS, SENTENCES
 from loopslack.kernel.work import finished
 
 

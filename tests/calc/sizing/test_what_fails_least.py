@@ -16,8 +16,8 @@ from loopslack.calc.nearest import Asked, judged, nearest
 from loopslack.calc.reasons import Reason
 from loopslack.calc.selection import Refusal
 from loopslack.calc.sizing.volumes import size
-from loopslack.contract.answering import design_loop, size_vessel
-from loopslack.contract.questions import LoopDesignQuestion, VesselSizingQuestion
+from loopslack.contract.answering.loop import design_loop, size_vessel
+from loopslack.contract.questions.operations import LoopDesignQuestion, VesselSizingQuestion
 from loopslack.kernel import kinds
 from questions.wash_house import wash_house
 

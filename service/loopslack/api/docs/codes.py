@@ -23,9 +23,9 @@ from loopslack.api.docs.markup import (
 from loopslack.api.docs.prose import paragraph, phrase
 from loopslack.api.docs.words import ADVISORIES, CHECKS, METHOD_CODES, REASONS, TO_CONFIRM, VERDICT_HINTS
 from loopslack.api.reference import Page
-from loopslack.contract.advice_words import FAILING
+from loopslack.contract.advice.words import FAILING
 from loopslack.contract.problems import FIELD_CODES, PROBLEM_TYPES, ProblemType
-from loopslack.contract.writing_common import CAUTIONS
+from loopslack.contract.writing.common import CAUTIONS
 
 
 def code_pages(contract: Contract) -> Iterator[Page]:

@@ -16,10 +16,10 @@ from loopslack.api.docs.markup import Html, code, joined, json_text, link, listi
 from loopslack.api.docs.prose import paragraph, phrase, prose
 from loopslack.api.docs.words import LIMITS, shown
 from loopslack.api.reference import Page
-from loopslack.contract.answering import design_loop
-from loopslack.contract.answers import LoopDesignAnswer
+from loopslack.contract.answering.loop import design_loop
+from loopslack.contract.answers.operations import LoopDesignAnswer
 from loopslack.contract.quantity import Pressure, Volume
-from loopslack.contract.questions import LoopDesignQuestion
+from loopslack.contract.questions.operations import LoopDesignQuestion
 from loopslack.settings import PREFIX, Settings
 
 ADDRESS = "http://127.0.0.1:8000"

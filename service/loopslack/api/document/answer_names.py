@@ -6,7 +6,7 @@ A value that `loopslack.contract` has and this table has not is refused when the
 from __future__ import annotations
 
 from loopslack.api.document.vocabulary import NamedUnion, NamedValues, named
-from loopslack.contract import answers_loop as loop
+from loopslack.contract.answers import loop
 
 SCHEMA_NAMES: dict[type, str] = {
     loop.GaugeReading: "ExpectedReading",

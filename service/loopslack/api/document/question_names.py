@@ -6,12 +6,8 @@ A value that `loopslack.contract` has and this table has not is refused when the
 from __future__ import annotations
 
 from loopslack.api.document.vocabulary import NamedUnion, NamedValues, named
-from loopslack.contract import questions_existing as existing
-from loopslack.contract import questions_fluid as fluid
-from loopslack.contract import questions_pipes as pipes
-from loopslack.contract import questions_plant as plant
-from loopslack.contract import questions_vessels as vessels
-from loopslack.contract.questions_collectors import EMPTYING_CLASSES
+from loopslack.contract.questions import existing, fluid, pipes, plant, vessels
+from loopslack.contract.questions.collectors import EMPTYING_CLASSES
 
 QUESTION_LISTS: tuple[NamedValues, ...] = (
     named(

@@ -16,7 +16,7 @@ from typing import TypeVar, cast
 import msgspec
 
 from loopslack.contract.problems import FaultyField
-from loopslack.contract.readings import READINGS, Read
+from loopslack.contract.reading.register import READINGS, Read
 from loopslack.contract.refusals import Refused, refusal_of, refusal_of_fields
 from loopslack.contract.strict.duplicates import (
     LARGE_BODY,

@@ -2,7 +2,7 @@
 
 What stands in is in itself sound: the documented example, either end of the documented range, each word of a list,
 each variant, nothing at all where nothing need be stated. What is read from such a question is judged in
-`reading_again`; no answer is ever computed from one.
+`reading.again`; no answer is ever computed from one.
 """
 
 import math

@@ -3,7 +3,7 @@
 The decoder stops at the first fault; this module walks the value beside the type and reports them all. Where a value is
 faulty it drafts another to stand in, so that the question can then be read: numbers outside their range and members
 that contradict each other are told in the same answer, as far as they do not depend on what stands in
-(`reading_again` says how that is known, and what stays out of reach).
+(`reading.again` says how that is known, and what stays out of reach).
 
 It runs only after a refusal, so that a good question pays nothing, and it accepts nothing: what it finds no
 fault with is put to the decoder again, whose verdict counts. The rules of single values are in `field_rules`, the words
@@ -20,8 +20,8 @@ from msgspec import inspect
 
 from loopslack.contract.order import in_order
 from loopslack.contract.problems import FaultyField
-from loopslack.contract.reading_again import lasting
-from loopslack.contract.readings import Read
+from loopslack.contract.reading.again import lasting
+from loopslack.contract.reading.register import Read
 from loopslack.contract.strict import drafts
 from loopslack.contract.strict.drafts import Draft
 from loopslack.contract.strict.field_rules import Leaf, broken_rules, size, wrong_type

@@ -9,7 +9,7 @@ from difflib import get_close_matches
 
 from msgspec import inspect
 
-from loopslack.contract.questions_collectors import EMPTYING_CLASSES
+from loopslack.contract.questions.collectors import EMPTYING_CLASSES
 from loopslack.kernel.units import GAUGE_UNITS
 
 LONGEST_SHOWN = 60

@@ -1,6 +1,6 @@
 """Sizing as bars: the published rules side by side, the walk between them, and what moves the volume."""
 
-from loopslack.contract.answers_sizing import RuleComparison, SensitivityRow, WalkStep
+from loopslack.contract.answers.sizing import RuleComparison, SensitivityRow, WalkStep
 from loopslack.sheet.case import Case
 from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Scale, fitted, tick_labels, width_of
 from loopslack.sheet.lines import Drawing

@@ -1,6 +1,6 @@
 """A day without flow as a band of its phases over the hours of the day."""
 
-from loopslack.contract.answers_course import CoursePhases
+from loopslack.contract.answers.course import CoursePhases
 from loopslack.contract.quantity import TimeSpan
 from loopslack.sheet.case import Case
 from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Scale, fitted

@@ -1,6 +1,6 @@
 """The fill pressure against the temperature of the day: what the installer reads at the vessel."""
 
-from loopslack.contract.answers_loop import FillRow
+from loopslack.contract.answers.loop import FillRow
 from loopslack.sheet.case import Case
 from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Point, Scale, tick_labels
 from loopslack.sheet.lines import Drawing

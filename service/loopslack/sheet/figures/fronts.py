@@ -1,7 +1,7 @@
 """Where the steam front stands, read off the pipes of the question and the reach of the answer."""
 
 from loopslack.calc.model import Branch
-from loopslack.contract.answers_loop import StagnationState
+from loopslack.contract.answers.loop import StagnationState
 from loopslack.sheet.case import Case
 
 

@@ -1,6 +1,6 @@
 """Pressure over height in each state, from the vessel connection to the highest point."""
 
-from loopslack.contract.answers_loop import StagnationState
+from loopslack.contract.answers.loop import StagnationState
 from loopslack.physics.statics import GRAVITY
 from loopslack.sheet.case import Case
 from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Point, Scale, tick_labels, width_of

@@ -2,7 +2,7 @@
 
 from itertools import pairwise
 
-from loopslack.contract.answers_loop import StagnationState
+from loopslack.contract.answers.loop import StagnationState
 from loopslack.sheet.case import Case
 from loopslack.sheet.drawing import SMALL, WIDTH, Canvas, Scale, tick_labels, width_of
 from loopslack.sheet.figures.marks import SIGNS, Entry, key, key_height

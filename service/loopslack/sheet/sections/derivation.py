@@ -7,7 +7,7 @@ have all their digits here.
 
 from collections.abc import Iterable
 
-from loopslack.contract.answers_derivation import Derivation, DerivationInput, DerivationStep
+from loopslack.contract.answers.derivation import Derivation, DerivationInput, DerivationStep
 from loopslack.sheet.case import Case
 from loopslack.sheet.formula import formula
 from loopslack.sheet.lines import Block, Column, Row, Section, Table, Text

@@ -1,6 +1,6 @@
 """What leaves through the relief valve where it opens, and what is left of the loop afterwards."""
 
-from loopslack.contract.answers_remedies import Discharge
+from loopslack.contract.answers.remedies import Discharge
 from loopslack.sheet.case import Case
 from loopslack.sheet.lines import Column, Row, Table
 from loopslack.sheet.sections.names import state_name

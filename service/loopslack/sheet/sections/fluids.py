@@ -1,6 +1,6 @@
 """The fluid in words: what it is and how strong."""
 
-from loopslack.contract.questions_fluid import OwnFluid, Water
+from loopslack.contract.questions.fluid import OwnFluid, Water
 from loopslack.sheet.case import Case
 from loopslack.sheet.words import plain
 

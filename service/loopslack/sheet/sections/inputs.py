@@ -6,9 +6,9 @@ from msgspec import Struct
 from msgspec.structs import fields as fields_of
 
 from loopslack.contract.quantity import Price, Quantity
-from loopslack.contract.questions_collectors import CollectorGroup
-from loopslack.contract.questions_fluid import BoilingLike, OwnFluid, ProtectTo, Water
-from loopslack.contract.questions_vessels import FromSeries, FromStock
+from loopslack.contract.questions.collectors import CollectorGroup
+from loopslack.contract.questions.fluid import BoilingLike, OwnFluid, ProtectTo, Water
+from loopslack.contract.questions.vessels import FromSeries, FromStock
 from loopslack.sheet.case import Case
 from loopslack.sheet.lines import Beside, Block, Column, Fact, Facts, Row, Section, Table
 from loopslack.sheet.sections.inputs_pipes import pipes

@@ -1,6 +1,6 @@
 """The pipe runs as they were stated, stretch by stretch."""
 
-from loopslack.contract.questions_pipes import (
+from loopslack.contract.questions.pipes import (
     BoreTube,
     Insulation,
     NoInsulation,

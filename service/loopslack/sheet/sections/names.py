@@ -1,6 +1,6 @@
 """Names of states, parts and members of the question, and the words of verdicts, as every section uses them."""
 
-from loopslack.contract.answers_common import Assumption, Check, SourceNote
+from loopslack.contract.answers.common import Assumption, Check, SourceNote
 from loopslack.sheet.case import JOINT, Case
 from loopslack.sheet.lines import Mark
 from loopslack.sheet.words import plain

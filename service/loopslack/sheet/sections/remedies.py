@@ -3,8 +3,8 @@
 import re
 from collections.abc import Iterable
 
-from loopslack.contract.answers_loop import VesselResult
-from loopslack.contract.answers_remedies import QuestionChange, Remedies, RemedyStep
+from loopslack.contract.answers.loop import VesselResult
+from loopslack.contract.answers.remedies import QuestionChange, Remedies, RemedyStep
 from loopslack.sheet.case import Case
 from loopslack.sheet.lines import Block, Bullets, Column, Row, Section, Table, Text
 from loopslack.sheet.words import plain

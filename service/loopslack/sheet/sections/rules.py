@@ -1,6 +1,6 @@
 """The published rules side by side, what their vessels would see, and the walk to the recommended volume."""
 
-from loopslack.contract.answers_sizing import RuleComparison, SeenStagnation, Walk, WalkStep
+from loopslack.contract.answers.sizing import RuleComparison, SeenStagnation, Walk, WalkStep
 from loopslack.sheet.case import Case
 from loopslack.sheet.figures.bars import moving
 from loopslack.sheet.figures.bars import rules as rules_figure

@@ -1,6 +1,6 @@
 """Which inputs move the volume, and how much worse than stated the vessel still takes."""
 
-from loopslack.contract.answers_sizing import HeadRoomRow, SensitivityRow
+from loopslack.contract.answers.sizing import HeadRoomRow, SensitivityRow
 from loopslack.sheet.case import Case
 from loopslack.sheet.figures.bars import sensitivity as figure
 from loopslack.sheet.lines import Beside, Block, Column, Row, Section, Table, Text

@@ -1,6 +1,6 @@
 """How large the vessel must be, and how it was chosen from the candidates."""
 
-from loopslack.contract.answers_loop import RefusalReason, SizedVolume
+from loopslack.contract.answers.loop import RefusalReason, SizedVolume
 from loopslack.sheet.case import Case
 from loopslack.sheet.lines import Block, Column, Row, Section, Table, Text
 from loopslack.sheet.sections.result import article, generic_size

@@ -2,8 +2,8 @@
 
 from collections.abc import Iterable
 
-from loopslack.contract.answers_common import AnyQuantity
-from loopslack.contract.answers_sizing import RuleComparison, SensitivityRow, WalkStep
+from loopslack.contract.answers.common import AnyQuantity
+from loopslack.contract.answers.sizing import RuleComparison, SensitivityRow, WalkStep
 from loopslack.sheet.case import Case
 from loopslack.sheet.numerals import NO_BREAK, rounded
 from loopslack.sheet.words import plain

@@ -2,7 +2,7 @@
 
 from collections.abc import Callable
 
-from loopslack.contract.answers_loop import StagnationState
+from loopslack.contract.answers.loop import StagnationState
 from loopslack.sheet.case import Case
 from loopslack.sheet.figures.reach import steam_reach
 from loopslack.sheet.lines import Beside, Block, Column, Row, Section, Table, Text

@@ -1,0 +1,1 @@
+"""What callers get: the structs of every operation's answer."""
