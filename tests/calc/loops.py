@@ -15,7 +15,7 @@ from random import Random
 from typing import Literal
 
 from calc.loops_parts import collector_groups, pipe_branches
-from loopslack.calc.fluid import Fluid, glycol_by_volume, glycol_protecting_to, water
+from loopslack.calc.fluids.making import Fluid, glycol_by_volume, glycol_protecting_to, water
 from loopslack.calc.model import (
     Criteria,
     Loop,

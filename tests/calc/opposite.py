@@ -7,7 +7,7 @@ from calc.reference import CRITERIA
 from loopslack.calc.balance import Balance, mixing
 from loopslack.calc.charge import Charge
 from loopslack.calc.equilibrium import Equilibrium, equilibrium
-from loopslack.calc.fluid import Fluid, glycol, water
+from loopslack.calc.fluids.making import Fluid, glycol, water
 from loopslack.calc.model import (
     Branch,
     CollectorGroup,

@@ -6,7 +6,7 @@ branches open, station 6.4 L, 0.43 propylene glycol by mass, collectors 11 m abo
 
 from math import inf, log, pi
 
-from loopslack.calc.fluid import glycol
+from loopslack.calc.fluids.making import glycol
 from loopslack.calc.model import (
     Branch,
     CollectorGroup,

@@ -9,9 +9,9 @@ from calc import reference
 from calc.loops import random_loop
 from calc.reference import ATMOSPHERE, BAR, ZERO
 from loopslack.calc.analysis import Analysis
-from loopslack.calc.audit import READING, Audit, Found, Point, Record, audit
-from loopslack.calc.audit_gauge import column, liquid_of, pressure_of
-from loopslack.calc.audit_states import WORSE
+from loopslack.calc.audit.gauge import column, liquid_of, pressure_of
+from loopslack.calc.audit.states import WORSE
+from loopslack.calc.audit.whole import READING, Audit, Found, Point, Record, audit
 from loopslack.calc.existing import check
 from loopslack.calc.model import Loop, Vessel
 from loopslack.calc.window import Gas

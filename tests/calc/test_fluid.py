@@ -7,7 +7,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from loopslack.calc.fluid import (
+from loopslack.calc.fluids.making import (
     STRENGTH_HIGHEST,
     BoilsLike,
     Fluid,

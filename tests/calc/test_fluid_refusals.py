@@ -4,7 +4,7 @@ from math import inf, nan
 
 import pytest
 
-from loopslack.calc.fluid import (
+from loopslack.calc.fluids.making import (
     BoilsLike,
     Fluid,
     glycol,

@@ -6,13 +6,13 @@ from typing import Any
 
 import pytest
 
-import loopslack.calc
-from loopslack.calc.fluid import Fluid, glycol, water
-from loopslack.calc.fluids_base import BOILING_HIGHEST, BOILING_LOWEST
+import loopslack.calc.fluids
+from loopslack.calc.fluids.base import BOILING_HIGHEST, BOILING_LOWEST
+from loopslack.calc.fluids.making import Fluid, glycol, water
 from loopslack.kernel.errors import CalculationError, OutOfRange
 from published.nudge import nudged, numbers
 
-CALC = Path(loopslack.calc.__file__).parent
+FLUIDS = Path(loopslack.calc.fluids.__file__).parent
 ZERO = 273.15
 KIND = "propylene-glycol"
 POINTS = [(ZERO - 20, 1050.0), (ZERO + 40, 1020.0), (ZERO + 160, 918.0)]
@@ -21,7 +21,7 @@ BUBBLES = [(ZERO + 80, 0.42e5), (ZERO + 120, 1.8e5), (ZERO + 160, 5.7e5)]
 Names = dict[str, Any]
 
 UNNOTICED = {
-    "fluids_boiling": {
+    "boiling": {
         "0.5 in `middle = 0.5 * (1.0 / BOILING_LOWEST + 1.0 / BOILING_HIGHEST)`": "moves the points of the start",
         "1.0 in `middle = 0.5 * (1.0 / BOILING_LOWEST + 1.0 / BOILING_HIGHEST)`": "moves the points of the start",
         "0.5 in `half = 0.5 * (1.0 / BOILING_LOWEST - 1.0 / BOILING_HIGHEST)`": "moves the points of the start",
@@ -210,12 +210,12 @@ def front(names: Names) -> Iterator[bool]:
 
 
 CHECKS: dict[str, Callable[[Names], Iterator[bool]]] = {
-    "fluids_base": base,
-    "fluids_boiling": boiling,
-    "fluids_water": of_water,
-    "fluids_glycol": of_glycol,
-    "fluids_own": of_own,
-    "fluid": front,
+    "base": base,
+    "boiling": boiling,
+    "water": of_water,
+    "glycol": of_glycol,
+    "own": of_own,
+    "making": front,
 }
 
 
@@ -227,14 +227,14 @@ def holds(tree: object, module: str) -> bool:
 
 @pytest.mark.parametrize("module", CHECKS)
 def test_nothing_is_noticed_without_a_nudge(module: str) -> None:
-    assert holds((CALC / f"{module}.py").read_text(encoding="utf-8"), module)
+    assert holds((FLUIDS / f"{module}.py").read_text(encoding="utf-8"), module)
 
 
 @pytest.mark.parametrize(
-    ("module", "n"), [(module, n) for module in CHECKS for n in numbers(CALC / f"{module}.py")]
+    ("module", "n"), [(module, n) for module in CHECKS for n in numbers(FLUIDS / f"{module}.py")]
 )
 def test_a_nudged_number_is_noticed(module: str, n: int) -> None:
-    tree, place = nudged(CALC / f"{module}.py", n)
+    tree, place = nudged(FLUIDS / f"{module}.py", n)
     try:
         unnoticed = holds(tree, module)
     except (CalculationError, TypeError, ValueError, ZeroDivisionError, IndexError):
@@ -244,7 +244,7 @@ def test_a_nudged_number_is_noticed(module: str, n: int) -> None:
 
 def test_the_list_of_what_may_change_names_only_numbers_that_exist() -> None:
     for module, places in UNNOTICED.items():
-        text = (CALC / f"{module}.py").read_text(encoding="utf-8")
+        text = (FLUIDS / f"{module}.py").read_text(encoding="utf-8")
         for place, reason in places.items():
             assert place.split("`")[1] in text
             assert reason

@@ -18,7 +18,7 @@ from calc.reference import (
     stagnation_rise,
 )
 from loopslack.calc.analysis import Analysis
-from loopslack.calc.fluid import water
+from loopslack.calc.fluids.making import water
 from loopslack.calc.levers.lever import Lever
 from loopslack.calc.model import Loop, Precharge
 from loopslack.calc.scenarios import BASE

@@ -3,7 +3,7 @@
 import msgspec
 import pytest
 
-from loopslack.calc.fluid import glycol, water
+from loopslack.calc.fluids.making import glycol, water
 from loopslack.library.fluids import fluids, glycol_data, publications, water_data
 from loopslack.library.sources import sources
 

@@ -15,7 +15,7 @@ from loopslack.calc.course.envelope import day_course
 from loopslack.calc.course.march import Accuracy
 from loopslack.calc.course.properties import FluidTables
 from loopslack.calc.course.weather import ClearSky
-from loopslack.calc.fluid import glycol
+from loopslack.calc.fluids.making import glycol
 from loopslack.kernel.work import finished
 
 ROUNDS = 7

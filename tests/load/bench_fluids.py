@@ -14,8 +14,8 @@ from timeit import repeat
 import CoolProp
 from CoolProp.CoolProp import PropsSI
 
-from loopslack.calc.fluid import BoilsLike, glycol, own_fluid, water
-from loopslack.calc.fluids_glycol import Glycol
+from loopslack.calc.fluids.glycol import Glycol
+from loopslack.calc.fluids.making import BoilsLike, glycol, own_fluid, water
 
 CALLS, ROUNDS = 20_000, 7
 ALLOWED = {"density": 0.6, "saturated": 5.0, "boiling temperature": 10.0}  # microseconds

@@ -6,7 +6,7 @@ from pathlib import Path
 
 from msgspec import Struct, convert
 
-from loopslack.calc.fluid import Fluid, GlycolKind, glycol, water
+from loopslack.calc.fluids.making import Fluid, GlycolKind, glycol, water
 from loopslack.library.fluids import glycol_data
 from loopslack.physics import mixture
 from loopslack.physics import water as water_law

@@ -8,7 +8,7 @@ from typing import Literal
 
 from msgspec import Struct
 
-from loopslack.calc.fluid import Fluid
+from loopslack.calc.fluids.making import Fluid
 
 SteamAccess = Literal["open", "closed", "unknown"]
 Role = Literal["flow", "return"]

@@ -23,7 +23,7 @@ from loopslack.calc.course.lumped import Emptying, LumpedLoop, Start
 from loopslack.calc.course.mapping import mapped
 from loopslack.calc.course.march import Accuracy, March
 from loopslack.calc.course.weather import ClearSky, StatedWeather, Weather
-from loopslack.calc.fluid import glycol, water
+from loopslack.calc.fluids.making import glycol, water
 from loopslack.calc.model import Loop, Relief, Station
 
 HOUR = 3600.0

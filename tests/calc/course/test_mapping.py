@@ -8,7 +8,7 @@ from calc.course.cases import ATMOSPHERE, BAR, case, charge, course
 from loopslack.calc.course.assumptions import RESIDUAL_SHARE
 from loopslack.calc.course.lumped import HOT_START, Start
 from loopslack.calc.course.mapping import mapped
-from loopslack.calc.fluid import BoilsLike, glycol, own_fluid, water
+from loopslack.calc.fluids.making import BoilsLike, glycol, own_fluid, water
 from loopslack.calc.model import Relief, Station
 from loopslack.contract.questions.existing import StagnationCourseQuestion
 from loopslack.kernel.errors import NotApplicable

@@ -5,7 +5,7 @@ from itertools import pairwise
 import pytest
 
 from loopslack.calc.course.properties import tables_of
-from loopslack.calc.fluid import glycol, own_fluid, water
+from loopslack.calc.fluids.making import glycol, own_fluid, water
 
 FLUIDS = [
     water(),

@@ -10,7 +10,7 @@ from msgspec.structs import replace
 from calc.reference import ATMOSPHERE, BAR, ZERO, run
 from calc.sizing.printed import printed_analysis, printed_loop
 from loopslack.calc.analysis import Analysis
-from loopslack.calc.fluid import water
+from loopslack.calc.fluids.making import water
 from loopslack.calc.sizing import rules
 from loopslack.calc.sizing.rules import register
 from loopslack.calc.sizing.rules.basis import Basis, basis

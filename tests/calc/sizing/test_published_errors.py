@@ -4,7 +4,7 @@ import pytest
 
 from calc.reference import BAR, ZERO
 from calc.sizing.printed import printed_analysis, printed_loop
-from loopslack.calc.fluid import glycol, glycol_by_volume, water
+from loopslack.calc.fluids.making import glycol, glycol_by_volume, water
 from loopslack.calc.sizing.rules.register import run
 from loopslack.kernel.equation import EQUATIONS
 from loopslack.kernel.kinds import ABSOLUTE_PRESSURE, GAUGE_PRESSURE

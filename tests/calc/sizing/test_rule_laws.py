@@ -2,7 +2,7 @@
 
 import pytest
 
-from loopslack.calc.fluid import water
+from loopslack.calc.fluids.making import water
 from loopslack.calc.sizing.rules import ashrae
 from loopslack.calc.sizing.rules.register import RULES
 from loopslack.kernel.equation import EQUATIONS

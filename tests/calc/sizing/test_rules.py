@@ -7,7 +7,7 @@ from calc.loops import random_loop
 from calc.reference import ATMOSPHERE, BAR, CRITERIA, ZERO, group, loop, run
 from calc.sizing.printed import printed_analysis, printed_loop
 from loopslack.calc.analysis import Analysis
-from loopslack.calc.fluid import water
+from loopslack.calc.fluids.making import water
 from loopslack.calc.sizing.rules.basis import pipes_above_collectors
 from loopslack.calc.sizing.rules.en_12977 import en_12977_volume
 from loopslack.calc.sizing.rules.register import PUBLISHED, RULES, RuleResult, rule, run_all

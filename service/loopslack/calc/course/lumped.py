@@ -6,7 +6,7 @@ temperatures in kelvin, pressures absolute at the vessel connection, heights fro
 
 from msgspec import Struct
 
-from loopslack.calc.fluid import Fluid
+from loopslack.calc.fluids.making import Fluid
 
 
 class LumpedPipe(Struct, frozen=True, kw_only=True):

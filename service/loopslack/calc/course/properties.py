@@ -12,9 +12,9 @@ from functools import cache
 from math import exp, log
 from typing import NamedTuple
 
-from loopslack.calc.fluid import Fluid
-from loopslack.calc.fluids_glycol import Glycol
-from loopslack.calc.fluids_own import OwnFluid
+from loopslack.calc.fluids.glycol import Glycol
+from loopslack.calc.fluids.making import Fluid
+from loopslack.calc.fluids.own import OwnFluid
 from loopslack.kernel.kinds import Coefficients, MolarMass, Temperature
 from loopslack.library.fluids import glycol_data
 from loopslack.physics import mixture_vapour, water

@@ -7,14 +7,14 @@ from collections.abc import Callable
 
 from loopslack.calc.derivation.book import Book, Constant, System
 from loopslack.calc.derivation.ground import FluidGround
-from loopslack.calc.fluids_base import ZERO_CELSIUS, Fluid
-from loopslack.calc.fluids_glycol import (
+from loopslack.calc.fluids.base import ZERO_CELSIUS, Fluid
+from loopslack.calc.fluids.glycol import (
     FREEZING_STRENGTH_HIGHEST,
     Glycol,
     pure_density_at_20,
     strength_freezing_at,
 )
-from loopslack.calc.fluids_own import OwnFluid
+from loopslack.calc.fluids.own import OwnFluid
 from loopslack.kernel import kinds
 from loopslack.kernel.citations import Cite
 from loopslack.kernel.kinds import Kind

@@ -9,7 +9,7 @@ from typing import Literal, NamedTuple
 
 from msgspec.structs import replace
 
-from loopslack.calc.fluid import Fluid, glycol, glycol_by_volume, glycol_protecting_to
+from loopslack.calc.fluids.making import Fluid, glycol, glycol_by_volume, glycol_protecting_to
 from loopslack.calc.model import Branch, Precharge, Relief, Segment, Vessel
 from loopslack.calc.remedies.case import Case, Strength
 from loopslack.kernel.kinds import Conductivity, GaugePressure, HeatLossCoefficient, Length

@@ -5,8 +5,8 @@ from math import ceil, floor
 from msgspec.structs import replace
 
 from loopslack.calc.fit import best_fit
-from loopslack.calc.fluid import glycol, strength_protecting_to
-from loopslack.calc.fluids_base import ZERO_CELSIUS
+from loopslack.calc.fluids.base import ZERO_CELSIUS
+from loopslack.calc.fluids.making import glycol, strength_protecting_to
 from loopslack.calc.judge import required
 from loopslack.calc.precharge import gas_of
 from loopslack.calc.remedies.case import Case, Outcome, Strength, analysed

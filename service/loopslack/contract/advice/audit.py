@@ -6,7 +6,7 @@ stands are ``advice``'s.
 
 from collections.abc import Iterator
 
-from loopslack.calc.audit import READING, Audit
+from loopslack.calc.audit.whole import READING, Audit
 from loopslack.contract.answers.audit import AuditAction
 from loopslack.contract.answers.common import Advisory, AnyQuantity, Severity
 from loopslack.contract.writing.common import any_quantity

@@ -1,6 +1,6 @@
 """Answers the audit of an existing vessel: reads, asks the calculation, writes."""
 
-from loopslack.calc.audit import Found, Point, Record, audit
+from loopslack.calc.audit.whole import Found, Point, Record, audit
 from loopslack.contract.advice.audit import AuditAdvisor
 from loopslack.contract.advice.loop import Advisor
 from loopslack.contract.answers import audit as out

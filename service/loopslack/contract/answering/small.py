@@ -1,6 +1,6 @@
 """Answers the two questions that need no whole loop: contents, and the expansion of a fluid."""
 
-from loopslack.calc.fluids_base import Fluid
+from loopslack.calc.fluids.base import Fluid
 from loopslack.contract.answers import operations as answers
 from loopslack.contract.answers.loop import PartKind
 from loopslack.contract.questions import operations as questions

@@ -2,8 +2,8 @@
 
 from typing import Annotated
 
-from loopslack.calc.audit import Certainty, Explains, Position, Reference, SetBy
-from loopslack.calc.audit_states import Cause
+from loopslack.calc.audit.states import Cause
+from loopslack.calc.audit.whole import Certainty, Explains, Position, Reference, SetBy
 from loopslack.contract import quantity as q
 from loopslack.contract.answers.common import AnswerPart, AnyQuantity, Basis, Check, Verdict
 from loopslack.contract.answers.loop import (

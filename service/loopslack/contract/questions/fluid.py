@@ -5,8 +5,8 @@ from typing import Annotated, Literal, get_args
 
 from msgspec import Meta
 
-from loopslack.calc.fluid import coldest_protection
-from loopslack.calc.fluids_base import ZERO_CELSIUS
+from loopslack.calc.fluids.base import ZERO_CELSIUS
+from loopslack.calc.fluids.making import coldest_protection
 from loopslack.contract.quantity import (
     Density,
     MassPercent,

@@ -2,7 +2,8 @@
 
 from itertools import pairwise
 
-from loopslack.calc.fluid import (
+from loopslack.calc.fluids.base import Fluid
+from loopslack.calc.fluids.making import (
     BoilsLike,
     glycol,
     glycol_by_volume,
@@ -10,7 +11,6 @@ from loopslack.calc.fluid import (
     own_fluid,
     water,
 )
-from loopslack.calc.fluids_base import Fluid
 from loopslack.calc.remedies.case import Strength
 from loopslack.contract.questions import fluid as asked
 from loopslack.contract.questions.fields import field_of

@@ -8,7 +8,7 @@ from typing import NamedTuple
 
 from msgspec import Struct
 
-from loopslack.calc.fluids_base import Fluid
+from loopslack.calc.fluids.base import Fluid
 from loopslack.calc.judgement import DoubtPolicy
 from loopslack.calc.model import Loop, Part, Precharge, Sun, Temperatures
 from loopslack.calc.remedies.case import Strength

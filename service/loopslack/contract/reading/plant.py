@@ -3,7 +3,7 @@
 from collections.abc import Sequence
 from typing import cast
 
-from loopslack.calc.fluids_base import Fluid
+from loopslack.calc.fluids.base import Fluid
 from loopslack.calc.model import ConstructionFault, Part, PumpSide, Relief, Station
 from loopslack.contract.part_names import group_names
 from loopslack.contract.questions import plant as asked

@@ -1,6 +1,6 @@
 """Reads temperatures of the states, criteria and precharge."""
 
-from loopslack.calc.fluids_base import Fluid
+from loopslack.calc.fluids.base import Fluid
 from loopslack.calc.model import Criteria, Precharge, Temperatures
 from loopslack.contract.questions import criteria as criteria_asked
 from loopslack.contract.questions import vessels as vessels_asked

@@ -2,7 +2,7 @@
 
 from typing import NamedTuple
 
-from loopslack.calc.fluids_base import Fluid
+from loopslack.calc.fluids.base import Fluid
 from loopslack.contract.part_names import group_names, run_names
 from loopslack.contract.questions import operations as asked
 from loopslack.contract.questions.fields import Field, field_of

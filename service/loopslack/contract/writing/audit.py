@@ -1,7 +1,7 @@
 """Writes an audit in the caller's units."""
 
-from loopslack.calc.audit import READING, Audit
-from loopslack.calc.audit_states import Explanation, State
+from loopslack.calc.audit.states import Explanation, State
+from loopslack.calc.audit.whole import READING, Audit
 from loopslack.contract.answers import audit as out
 from loopslack.contract.quantity import Pressure
 from loopslack.contract.writing import loop as write_loop

@@ -1,4 +1,4 @@
-"""Front door to fluids: makes the fluid a caller describes. What a fluid answers stands in ``fluids_base``.
+"""Front door to fluids: makes the fluid a caller describes. What a fluid answers stands in ``base``.
 
 Fluids are immutable in use and cached by their exact strength, so that a repeated question costs nothing.
 """
@@ -6,8 +6,8 @@ Fluids are immutable in use and cached by their exact strength, so that a repeat
 from collections.abc import Sequence
 from functools import lru_cache
 
-from loopslack.calc.fluids_base import ROUNDING, ZERO_CELSIUS, Fluid, FluidKind, Vapour, celsius
-from loopslack.calc.fluids_glycol import (
+from loopslack.calc.fluids.base import ROUNDING, ZERO_CELSIUS, Fluid, FluidKind, Vapour, celsius
+from loopslack.calc.fluids.glycol import (
     FREEZING_STRENGTH_HIGHEST,
     STRENGTH_HIGHEST,
     Glycol,
@@ -15,8 +15,8 @@ from loopslack.calc.fluids_glycol import (
     strength_freezing_at,
     warmer_freezing_point,
 )
-from loopslack.calc.fluids_own import BoilsLike, OwnFluid
-from loopslack.calc.fluids_water import Water
+from loopslack.calc.fluids.own import BoilsLike, OwnFluid
+from loopslack.calc.fluids.water import Water
 from loopslack.kernel.errors import OutOfRange
 from loopslack.kernel.kinds import Density, VolumeFraction
 from loopslack.library.fluids import GlycolKind, water_data

@@ -10,7 +10,7 @@ from math import exp, isfinite, log
 
 from msgspec import Struct
 
-from loopslack.calc.fluids_base import (
+from loopslack.calc.fluids.base import (
     BOILING_HIGHEST,
     BOILING_LOWEST,
     FLUID,

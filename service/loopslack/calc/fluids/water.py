@@ -2,7 +2,7 @@
 
 from typing import NoReturn
 
-from loopslack.calc.fluids_base import (
+from loopslack.calc.fluids.base import (
     BOILING_HIGHEST,
     BOILING_LOWEST,
     ROUNDING,
@@ -11,7 +11,7 @@ from loopslack.calc.fluids_base import (
     Vapour,
     refuse_temperature,
 )
-from loopslack.calc.fluids_boiling import inside, start_at, start_of
+from loopslack.calc.fluids.boiling import inside, start_at, start_of
 from loopslack.kernel.kinds import MassFraction, Temperature
 from loopslack.library.fluids import glycol_data, water_data
 from loopslack.physics import mixture

@@ -7,9 +7,9 @@ between them the verdict is the worse of the two.
 
 from typing import Literal, NamedTuple
 
-from loopslack.calc.audit_gauge import column, held_at, pressure_of
-from loopslack.calc.audit_states import WORSE, Bench, Explanation, Filling, State, by_liquid, by_precharge
-from loopslack.calc.audit_target import Target, set_instead
+from loopslack.calc.audit.gauge import column, held_at, pressure_of
+from loopslack.calc.audit.states import WORSE, Bench, Explanation, Filling, State, by_liquid, by_precharge
+from loopslack.calc.audit.target import Target, set_instead
 from loopslack.calc.judgement import DoubtPolicy, Verdict
 from loopslack.calc.model import Loop, Vessel
 from loopslack.calc.precharge import DELIVERY_TEMPERATURE, SEA_LEVEL, gas_of

@@ -1,7 +1,7 @@
 """The ways an audited vessel may stand: with liquid lost or added, with gas lost, or as measured; each judged.
 
 The steam of a loop does not depend on its gas, so it is worked out once for everything that is looked at. Which way
-explains a reading is decided in ``audit``.
+explains a reading is decided in ``whole``.
 """
 
 from typing import Literal, NamedTuple
@@ -9,7 +9,7 @@ from typing import Literal, NamedTuple
 from msgspec.structs import replace
 
 from loopslack.calc.analysis import Analysis, SteamCase
-from loopslack.calc.audit_gauge import Held, gas_holding, held_at, liquid_of, to_reach
+from loopslack.calc.audit.gauge import Held, gas_holding, held_at, liquid_of, to_reach
 from loopslack.calc.fit import Fit, best_fit
 from loopslack.calc.judge import judge, required
 from loopslack.calc.judgement import DoubtPolicy, Judgement, Verdict

@@ -7,7 +7,7 @@ the fluid's own bubble line; it is within some thousandths of a kelvin, so that 
 from collections.abc import Callable
 from math import cos, log, pi
 
-from loopslack.calc.fluids_base import BOILING_HIGHEST, BOILING_LOWEST
+from loopslack.calc.fluids.base import BOILING_HIGHEST, BOILING_LOWEST
 
 Start = tuple[tuple[float, ...], tuple[float, ...]]
 

@@ -4,7 +4,7 @@ The law of the mixture is collapsed once: the specific volume to one polynomial,
 constants.
 """
 
-from loopslack.calc.fluids_base import (
+from loopslack.calc.fluids.base import (
     BOILING_HIGHEST,
     BOILING_LOWEST,
     ROUNDING,
@@ -12,7 +12,7 @@ from loopslack.calc.fluids_base import (
     Vapour,
     refuse_temperature,
 )
-from loopslack.calc.fluids_boiling import inside, start_at, start_of
+from loopslack.calc.fluids.boiling import inside, start_at, start_of
 from loopslack.kernel.errors import OutOfRange
 from loopslack.kernel.kinds import Coefficients, Density, MassFraction, MolarMass, Temperature
 from loopslack.library.fluids import GlycolKind, glycol_data, water_data

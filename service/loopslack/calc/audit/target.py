@@ -6,8 +6,8 @@ one it was set to comes first, then the one by rule. Where none holds, the vesse
 
 from typing import NamedTuple
 
-from loopslack.calc.audit_gauge import column, liquid_of, pressure_of
-from loopslack.calc.audit_states import WORSE, Bench, State
+from loopslack.calc.audit.gauge import column, liquid_of, pressure_of
+from loopslack.calc.audit.states import WORSE, Bench, State
 from loopslack.calc.fit import Fit
 from loopslack.calc.judgement import Judgement
 from loopslack.calc.precharge import gas_of

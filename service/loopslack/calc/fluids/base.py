@@ -1,4 +1,4 @@
-"""What every fluid can answer, and how it refuses. Front door and constructors: ``fluid``.
+"""What every fluid can answer, and how it refuses. Front door and constructors: ``making``.
 
 A fluid is made once for one strength and then asked thousands of times by a solver, so its methods take and
 give plain SI floats. No law is written here.
