@@ -110,7 +110,7 @@ def _outcome(filling: Filling, fitted: Fit, policy: DoubtPolicy, *, accept_witho
     """Judge a moved loop with the same vessel."""
     try:
         analysis = Analysis(filling.loop)
-        mass = Bounds(analysis, (), filling.gas).mass(filling.gas.nominal, filling.fill)
+        mass = Bounds(analysis, (), filling.gas).filled(filling.gas.nominal, filling.fill)
         limit = fitted.vessel.membrane_limit or filling.loop.criteria.membrane_limit
         found = judge(
             analysis,

@@ -8,7 +8,7 @@ from math import isfinite
 
 from loopslack.calc.analysis import Analysis, SteamCase
 from loopslack.calc.equilibrium import ROUNDING, Equilibrium
-from loopslack.calc.judgement import Check, CheckCode, CheckVerdict
+from loopslack.calc.judgement import Check, CheckCode, CheckVerdict, StateResult
 from loopslack.calc.model import Part, Relief
 from loopslack.calc.scenarios import BASE
 from loopslack.calc.states import LiquidState
@@ -109,25 +109,26 @@ def degradation(analysis: Analysis, state: str, found: Equilibrium) -> Check | N
 
 
 def reserve(bounds: Bounds, cold: LiquidState, mass: float, nominal: float) -> Check:
-    """Liquid left in the vessel when cold against the reserve."""
-    return compare("reserve", "cold", kinds.VOLUME, cold.held(mass), bounds.reserve(nominal), at_most=False)
+    """Liquid left in the vessel when cold against the reserve; below nought is what an empty one lacks."""
+    held = cold.held(mass)
+    check = compare("reserve", "cold", kinds.VOLUME, held, bounds.reserve(nominal), at_most=False)
+    return check._replace(reason="vessel-empty") if held < 0 else check
 
 
-def top_pressure(analysis: Analysis, pressure: float | None) -> Check:
-    """Pressure at the highest point when cold; an empty vessel has none to show, and fails."""
+def top_pressure(analysis: Analysis, cold: StateResult) -> Check:
+    """Pressure at the highest point when cold; where there is none to show it fails."""
     loop = analysis.loop
     limit = loop.atmosphere + loop.criteria.top_pressure
-    if pressure is None:
-        return Check(
-            "top-pressure", True, "cold", "does-not-hold", PRESSURE, None, limit, reason="vessel-empty"
-        )
-    return compare("top-pressure", "cold", PRESSURE, pressure, limit, at_most=False)
+    if cold.top_pressure is None:
+        reason = cold.reason or "below-vacuum"
+        return Check("top-pressure", True, "cold", "does-not-hold", PRESSURE, None, limit, reason=reason)
+    return compare("top-pressure", "cold", PRESSURE, cold.top_pressure, limit, at_most=False)
 
 
-def cut_off(analysis: Analysis, pressure: float | None) -> Check:
+def cut_off(analysis: Analysis, state: StateResult) -> Check:
     """Vessel pressure at the pump's cut-off temperature against what keeps the top from boiling."""
     limit = analysis.cut_off_pressure
-    if pressure is None:
+    if state.pressure is None:
         return Check(
             "boiling-at-cut-off",
             True,
@@ -136,9 +137,9 @@ def cut_off(analysis: Analysis, pressure: float | None) -> Check:
             PRESSURE,
             None,
             limit,
-            reason="vessel-empty",
+            reason=state.reason,
         )
-    return compare("boiling-at-cut-off", "cut-off", PRESSURE, pressure, limit, at_most=False)
+    return compare("boiling-at-cut-off", "cut-off", PRESSURE, state.pressure, limit, at_most=False)
 
 
 def freezing(analysis: Analysis) -> Check:
@@ -227,7 +228,7 @@ def part_temperatures(analysis: Analysis) -> Iterator[Check]:
             )
 
 
-def suction(analysis: Analysis, pressure: float | None) -> Check:
+def suction(analysis: Analysis, state: StateResult) -> Check:
     """Pressure at the pump inlet above the bubble pressure against a stated net positive suction head."""
     loop = analysis.loop
     needed = loop.criteria.net_positive_suction
@@ -235,7 +236,13 @@ def suction(analysis: Analysis, pressure: float | None) -> Check:
         return Check(
             "net-positive-suction", False, "cut-off", "not-assessed", DIFFERENCE, reason="head-not-stated"
         )
-    if pressure is None:
+    reason, inlet = state.reason, None
+    if state.pressure is not None:
+        density = analysis.fluid.density(loop.temperatures.back)
+        inlet = state.pressure - density * GRAVITY * loop.pump_height
+        inlet -= loop.pump_head if loop.pump_side == "discharge" else 0.0
+        reason = "below-vacuum"
+    if inlet is None or inlet <= 0:
         return Check(
             "net-positive-suction",
             False,
@@ -244,12 +251,8 @@ def suction(analysis: Analysis, pressure: float | None) -> Check:
             DIFFERENCE,
             None,
             needed,
-            reason="vessel-empty",
+            reason=reason,
         )
-    density = analysis.fluid.density(loop.temperatures.back)
-    inlet = pressure - density * GRAVITY * loop.pump_height
-    if loop.pump_side == "discharge":
-        inlet -= loop.pump_head
     try:
         spare = inlet - analysis.fluid.bubble_pressure(loop.temperatures.back)
     except CalculationError as error:

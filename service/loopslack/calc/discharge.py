@@ -23,7 +23,7 @@ class Left(NamedTuple):
     """A state of the loop after the discharge: volumes m3, pressures Pa absolute at vessel and highest point.
 
     ``liquid`` below zero is what the vessel lacks; pressures are then None, for the loop is no longer under
-    pressure and sucks air wherever it can.
+    pressure and sucks air wherever it can. So is a pressure at the highest point that would lie below vacuum.
     """
 
     id: StateId
@@ -149,8 +149,8 @@ def _held(
 def _left(analysis: Analysis, gas: Gas, mass: float, state: LiquidState) -> Left:
     """A state without steam with ``mass`` kg in the vessel by the books; negative means that the loop lacks it."""
     liquid = state.held(mass)
-    if not 0 <= liquid < gas.nominal:
-        return Left(state.id, liquid, None, None, liquid < 0)
+    if not 0 < liquid < gas.nominal:
+        return Left(state.id, liquid, None, None, liquid <= 0)
     pressure = gas.precharge * gas.nominal / (gas.nominal - liquid) * state.vessel / gas.temperature
     top = pressure - state.column
-    return Left(state.id, liquid, pressure, top, top < analysis.loop.atmosphere)
+    return Left(state.id, liquid, pressure, top if top > 0 else None, top < analysis.loop.atmosphere)

@@ -44,7 +44,7 @@ class Fit(NamedTuple):
 
     def mass_at(self, pressure: float) -> float:
         """Mass (kg) in the vessels filled to a pressure (Pa absolute) at the fill temperature."""
-        return Bounds(self.analysis, (), self.gas).mass(self.gas.nominal, pressure)
+        return Bounds(self.analysis, (), self.gas).filled(self.gas.nominal, pressure)
 
 
 def fit(

@@ -120,8 +120,8 @@ def _static(
     """Checks that no doubt about the steam touches."""
     loop = analysis.loop
     yield checks.reserve(Bounds(analysis, (), gas), analysis.states.cold, mass, gas.nominal)
-    yield checks.top_pressure(analysis, states["cold"].top_pressure)
-    yield checks.cut_off(analysis, states["cut-off"].pressure)
+    yield checks.top_pressure(analysis, states["cold"])
+    yield checks.cut_off(analysis, states["cut-off"])
     yield checks.freezing(analysis)
     yield checks.protected(
         analysis, Part(name="expansion vessel", height=0.0, rated_pressure=vessel.rated_pressure)
@@ -130,7 +130,7 @@ def _static(
         yield checks.protected(analysis, part)
     yield from checks.part_temperatures(analysis)
     yield from checks.construction(analysis)
-    yield checks.suction(analysis, states["cut-off"].pressure)
+    yield checks.suction(analysis, states["cut-off"])
     yield relief_size_check(loop.aperture, loop.relief.nominal_size)
 
 
@@ -207,16 +207,25 @@ def _unknown(scenario: Scenario, reason: str) -> Check:
 
 
 def _state(analysis: Analysis, state: LiquidState, gas: Gas, mass: float) -> StateResult:
-    """Pressures of a liquid state; none is given for an empty vessel."""
+    """Pressures of a liquid state; none is given for an empty or full vessel, nor one below vacuum."""
     liquid = state.held(mass)
-    if liquid < 0:
-        return StateResult(state.id, liquid, None, None, None, state.vessel, state.frozen)
-    squeezed = gas.nominal - liquid
-    if squeezed <= 0:
-        return StateResult(state.id, liquid, None, None, None, state.vessel, state.frozen)
-    pressure = gas.precharge * gas.nominal / squeezed * state.vessel / gas.temperature
-    gauge = pressure - state.vessel_density * GRAVITY * analysis.loop.gauge_height
-    return StateResult(state.id, liquid, pressure, pressure - state.column, gauge, state.vessel, state.frozen)
+    if not 0 < liquid < gas.nominal:
+        reason = "vessel-empty" if liquid <= 0 else "vessel-full"
+        return StateResult(state.id, liquid, None, None, None, state.vessel, state.frozen, reason)
+    pressure = gas.precharge * gas.nominal / (gas.nominal - liquid) * state.vessel / gas.temperature
+    top, gauge = (
+        pressure - state.column,
+        pressure - state.vessel_density * GRAVITY * analysis.loop.gauge_height,
+    )
+    return StateResult(
+        state.id,
+        liquid,
+        pressure,
+        top if top > 0 else None,
+        gauge if gauge > 0 else None,
+        state.vessel,
+        state.frozen,
+    )
 
 
 _ORDER: dict[CheckVerdict, int] = {"holds": 0, "not-assessed": 1, "does-not-hold": 2}

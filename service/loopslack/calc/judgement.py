@@ -56,7 +56,8 @@ class Check(NamedTuple):
 class StateResult(NamedTuple):
     """A liquid state with a vessel: pressures Pa absolute, volumes m3, temperatures K.
 
-    Pressures are None when the vessel is empty: they are then not defined.
+    Pressures are None when the vessel is empty or full: they are then not defined, and ``reason`` says why. So is a
+    pressure that would lie below vacuum at the highest point or at a gauge far above: the liquid parts there.
     """
 
     id: StateId
@@ -66,6 +67,7 @@ class StateResult(NamedTuple):
     gauge_pressure: float | None
     vessel_temperature: float
     frozen: bool
+    reason: str = ""
 
 
 class Judgement(NamedTuple):

@@ -239,7 +239,7 @@ class Bounds:
         """Fill pressure (Pa) with a mass (kg) in the vessel, loop and gas at ``temperature`` K.
 
         ``mass`` counts at the fill temperature; at another one the loop takes or gives its expansion. Minus
-        infinity below an empty vessel's precharge, where the pressure is not defined.
+        infinity for an empty vessel, whose pressure is not defined.
         """
         analysis = self.analysis
         if temperature == analysis.loop.temperatures.fill:
@@ -247,7 +247,7 @@ class Bounds:
         else:
             total = mass + self.fill_density * analysis.content
             held = total / analysis.fluid.density(temperature) - analysis.content
-        if held < 0:
+        if held <= 0:
             return -inf
         gas = nominal - held
         if gas <= 0:
@@ -255,6 +255,13 @@ class Bounds:
         return self.precharge * nominal / gas * temperature / self.temperature
 
     def mass(self, nominal: float, pressure: float) -> float:
-        """Mass (kg) in the vessel at a fill pressure (Pa) at the fill temperature; negative below the precharge."""
+        """Mass (kg) in the vessel at a fill pressure (Pa) at the fill temperature, as a bound wants it.
+
+        Negative below the precharge; what a vessel is filled with is told by ``filled``.
+        """
         fill = self.analysis.loop.temperatures.fill
         return self.fill_density * nominal * (1 - self.precharge * fill / self.temperature / pressure)
+
+    def filled(self, nominal: float, pressure: float) -> float:
+        """Mass (kg) in the vessel filled to a pressure (Pa): none below the precharge, since the gas keeps it out."""
+        return max(0.0, self.mass(nominal, pressure))

@@ -47,7 +47,9 @@ def shown_numbers(fitted: Fit, judgement: Judgement, *, card: bool) -> Numbers:
         yield f"states/{k}/vesselLiquid", state.liquid
         if state.pressure is not None:
             yield f"states/{k}/vesselPressure", state.pressure - air
+        if state.top_pressure is not None:
             yield f"states/{k}/topPressure", state.top_pressure - air
+        if state.gauge_pressure is not None:
             yield f"states/{k}/gaugeReading", state.gauge_pressure - air
     yield from stagnation_numbers(fitted, judgement, air)
 

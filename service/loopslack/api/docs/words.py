@@ -35,6 +35,8 @@ CHECKS: dict[str, str] = {
 
 REASONS: dict[str, str] = {
     "vessel-empty": "The vessel would be empty, so that there is no pressure to name.",
+    "vessel-full": "The vessel would be full, so that there is no pressure to name.",
+    "below-vacuum": "The pressure there would lie below vacuum, where the liquid parts.",
     "automatic-make-up": "The loop has an automatic make-up, which thins the glycol unseen.",
     "galvanised-parts": "The loop has galvanised parts, whose zinc glycol dissolves.",
     "no-window": "No fill pressure keeps every check.",

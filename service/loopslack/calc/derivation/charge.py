@@ -64,17 +64,21 @@ def reserve(frame: Frame, nominal: Value) -> Value:
 
 
 def filled_to(frame: Frame, charged: Charged, pressure: Value, tag: str = "when filled") -> Filled:
-    """What the vessel holds at a fill pressure at the fill temperature."""
-    book = frame.book
-    liquid = book.step(
-        vessel.liquid_held,
-        f"liquid in the vessel {tag}",
-        nominal_volume=charged.nominal,
-        precharge=charged.precharge,
-        pressure=pressure,
-        gas_temperature=frame.leaves.temperature("fill"),
-        precharge_temperature=charged.temperature,
-    )
+    """What the vessel holds at a fill pressure at the fill temperature: nothing below its precharge."""
+    book, warm = frame.book, frame.leaves.temperature("fill")
+    name = f"liquid in the vessel {tag}"
+    if pressure.si * charged.temperature.si <= charged.precharge.si * warm.si:
+        liquid = book.tabulated(0.0, kinds.VOLUME, name, "this design", "filled below the precharge", DERIVED)
+    else:
+        liquid = book.step(
+            vessel.liquid_held,
+            name,
+            nominal_volume=charged.nominal,
+            precharge=charged.precharge,
+            pressure=pressure,
+            gas_temperature=warm,
+            precharge_temperature=charged.temperature,
+        )
     title = f"mass in the vessel {tag}"
     mass = book.step(balance.liquid_mass, title, density=frame.fill_density, content=liquid)
     return Filled(mass, liquid)

@@ -139,8 +139,10 @@ class ShownSteps:
             )
         )
         self._report_gauge(pressure, f"{place}/vesselPressure")
-        self._report_gauge(top, f"{place}/topPressure")
-        self._report_gauge(gauge, f"{place}/gaugeReading")
+        if result.top_pressure is not None:
+            self._report_gauge(top, f"{place}/topPressure")
+        if result.gauge_pressure is not None:
+            self._report_gauge(gauge, f"{place}/gaugeReading")
 
     def _report_gauge(self, absolute: Value, pointer: str) -> None:
         self.book.report(self.gauge(absolute, f"{absolute.name}, gauge"), pointer)

@@ -84,7 +84,7 @@ class Advisor:
             parameters["limit"] = self._quantity(check.limit, check.kind)
         if check.margin is not None:
             parameters["margin"] = self._margin(check.margin, check.kind)
-        if "value" not in parameters or check.reason in ("fill-outside-window", "too-close-to-precharge"):
+        if "value" not in parameters or check.reason in WITHOUT_NUMBER:
             text = WITHOUT_NUMBER.get(check.reason, "the check does not hold")
         else:
             shown = {name: _say(quantity) for name, quantity in parameters.items()}

@@ -75,6 +75,8 @@ FAILING: dict[str, tuple[str, str]] = {
 }
 WITHOUT_NUMBER = {
     "vessel-empty": "the vessel would be empty, so the pressure is not defined and the loop may draw air",
+    "vessel-full": "the vessel would be full, so the pressure is not defined and the relief valve may open",
+    "below-vacuum": "the pressure there would lie below vacuum: the liquid parts, boils and draws air",
     "automatic-make-up": "the loop has an automatic make-up, which dilutes the glycol unseen and hides a leak",
     "galvanised-parts": "the loop has galvanised parts, whose zinc glycol dissolves",
     "no-window": "no fill pressure keeps every check",

@@ -3,7 +3,7 @@
 Rounding happens here and nowhere else; every verdict has been taken before.
 """
 
-from math import isfinite
+from math import inf, isfinite
 from typing import NamedTuple
 
 from loopslack.calc.analysis import Analysis
@@ -42,8 +42,8 @@ class Pressures:
         return self._gauge(absolute - self._atmosphere)
 
     def optional(self, absolute: float | None) -> Pressure | None:
-        """A pressure that may not be defined."""
-        return None if absolute is None or not isfinite(absolute) else self(absolute)
+        """A pressure that may not be defined, as none below vacuum is."""
+        return None if absolute is None or not 0 < absolute < inf else self(absolute)
 
 
 class Held(NamedTuple):

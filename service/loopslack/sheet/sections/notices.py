@@ -46,7 +46,7 @@ def _worded(case: Case, advisory: Advisory) -> tuple[str, str]:
     if check is None:
         return _plain_worded(case, advisory, numbers), remedy
     key = f"advisory.{advisory.code}.message"
-    if check.value is None or check.reason in {"fill-outside-window", "too-close-to-precharge"}:
+    if check.value is None or f"failing.{check.reason}" in words:
         key = f"failing.{check.reason}"
     if key not in words:
         return plain(advisory.message), plain(advisory.remedy)
