@@ -12,7 +12,7 @@ from loopslack.calc.existing import Checked, check
 from loopslack.calc.judgement import Check
 from loopslack.calc.model import Loop, Precharge, Vessel
 from loopslack.calc.scenarios import BASE
-from loopslack.contract.answering import check_stagnation
+from loopslack.contract.answering.loop import check_stagnation
 from loopslack.contract.questions import StagnationCheckQuestion
 from questions.wash_house import least
 
