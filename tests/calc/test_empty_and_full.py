@@ -13,7 +13,7 @@ from loopslack.calc.judgement import Check
 from loopslack.calc.model import Loop, Precharge, Vessel
 from loopslack.calc.scenarios import BASE
 from loopslack.contract.answering.loop import check_stagnation
-from loopslack.contract.questions import StagnationCheckQuestion
+from loopslack.contract.questions.operations import StagnationCheckQuestion
 from questions.wash_house import least
 
 AIR = 101325.0
