@@ -1,6 +1,6 @@
 // The form sends what it shows and shows what came back: a design that holds, one that does not, a refusal, no answer.
 import assert from "node:assert/strict";
-import { accessibilityFindings, overflow, picture } from "./support/tools.mjs";
+import { accessibilityFindings, brokenWords, overflow, picture } from "./support/tools.mjs";
 
 export default async function (context, url) {
   const page = await context.newPage();
@@ -100,6 +100,7 @@ async function aDesignThatDoesNotHoldIsUnmistakable(page) {
     await page.setViewportSize({ width, height: 900 });
     await page.emulateMedia({ colorScheme });
     assert.equal(await overflow(page), 0, `wider than a window of ${width}`);
+    assert.deepEqual(await brokenWords(page, "label, legend, .figures dt, .figures dd"), [], `in a window of ${width}`);
     assert.deepEqual(await accessibilityFindings(page), []);
     await picture(page, `docs-try-does-not-hold-${width}-${colorScheme}`, { fullPage: true });
   }

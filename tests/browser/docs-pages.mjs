@@ -1,7 +1,7 @@
 // Every page of the documentation: it is found by links, loads without a complaint, fits every window, and is tagged
 // so that nobody is kept out.
 import assert from "node:assert/strict";
-import { accessibilityFindings, overflow, picture } from "./support/tools.mjs";
+import { accessibilityFindings, brokenWords, overflow, picture } from "./support/tools.mjs";
 
 const WIDTHS = [360, 768, 1280];
 const LOOKED_AT = ["/docs", "/docs/operations", "/docs/operations/designLoop", "/docs/checks", "/docs/problems/invalid-field"];
@@ -27,6 +27,8 @@ export default async function (context, url) {
     for (const width of WIDTHS) {
       await page.setViewportSize({ width, height: 900 });
       assert.equal(await overflow(page), 0, `${path} is wider than a window of ${width}`);
+      const whole = width < 1280 ? "dt, th, h1, h2, h3" : "dt, th, h1, h2, h3, td";
+      assert.deepEqual(await brokenWords(page, whole), [], `${path} in a window of ${width}`);
     }
   }
   assert.ok(paths.length > 40, `only ${paths.length} pages are linked`);

@@ -7,7 +7,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from docs.pages import Reader
-from loopslack.api.docs.markup import Html, data_block, joined, json_text, table, tag
+from loopslack.api.docs.markup import Html, breakable, data_block, joined, json_text, table, tag
 from loopslack.api.docs.prose import phrase, prose
 
 TEXTS = st.text(max_size=60).filter(lambda text: "\r" not in text and "\x00" not in text)
@@ -68,6 +68,11 @@ def test_descriptions_keep_their_code_stress_links_and_lists() -> None:
     assert phrase("[out](https://example.org)") == "[out](https://example.org)"
     assert prose("One\ntwo.\n\n* a\n  b\n* c") == "<p>One two.</p><ul><li>a b</li><li>c</li></ul>"
     assert prose("## Title\n\nText", level=2) == "<h2>Title</h2><p>Text</p>"
+
+
+def test_a_long_name_may_be_broken_before_a_capital_and_nowhere_else() -> None:
+    assert breakable("CollectorGroup") == "Collector<wbr>Group"
+    assert breakable("EN 12977 <& more>") == "EN 12977 &lt;&amp; more&gt;"
 
 
 def test_children_and_attributes_are_written_as_told() -> None:

@@ -38,3 +38,22 @@ export async function picture(page, name, options = {}) {
 export async function overflow(page) {
   return page.evaluate(() => document.documentElement.scrollWidth - document.documentElement.clientWidth);
 }
+
+/** Words that a line breaks off in their middle, though nothing in them says where to break. */
+export async function brokenWords(page, selector) {
+  return page.evaluate((where) => {
+    const broken = [];
+    for (const element of document.querySelectorAll(where)) {
+      const texts = document.createTreeWalker(element, NodeFilter.SHOW_TEXT);
+      while (texts.nextNode()) {
+        for (const word of texts.currentNode.data.matchAll(/[\p{L}\p{N}_]+/gu)) {
+          const range = document.createRange();
+          range.setStart(texts.currentNode, word.index);
+          range.setEnd(texts.currentNode, word.index + word[0].length);
+          if (new Set([...range.getClientRects()].map((box) => Math.round(box.top))).size > 1) broken.push(word[0]);
+        }
+      }
+    }
+    return broken;
+  }, selector);
+}

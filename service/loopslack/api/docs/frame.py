@@ -8,7 +8,7 @@ from collections.abc import Sequence
 
 from msgspec import Struct
 
-from loopslack.api.docs.markup import Html, disclosure, joined, link, tag
+from loopslack.api.docs.markup import Html, breakable, disclosure, joined, link, tag
 from loopslack.api.reference import Page
 from loopslack.contract.writing.common import CONTRACT_VERSION
 
@@ -65,7 +65,12 @@ def framed(
         tag("p", lead, class_="lead"),
         _contents(sections) if contents and len(sections) > 2 else None,
         [
-            tag("section", tag("h2", part.title, id=part.anchor), part.body, aria_labelledby=part.anchor)
+            tag(
+                "section",
+                tag("h2", breakable(part.title), id=part.anchor),
+                part.body,
+                aria_labelledby=part.anchor,
+            )
             for part in sections
         ],
         id="content",

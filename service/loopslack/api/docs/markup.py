@@ -4,6 +4,7 @@ Must not live here: anything about a particular page.
 """
 
 import json
+import re
 from collections.abc import Iterable
 from functools import cache
 from html import escape
@@ -37,6 +38,11 @@ def tag(name: str, /, *children: object, **attributes: str | int | bool | None) 
     if name in _EMPTY:
         return Html(f"<{name}{written}>")
     return Html(f"<{name}{written}>{joined(*children)}</{name}>")
+
+
+def breakable(text: str) -> Html:
+    """A name in capitals and small letters, which a narrow screen may break before a capital."""
+    return Html(re.sub(r"(?<=[a-z])(?=[A-Z])", "<wbr>", joined(text)))
 
 
 def code(text: object) -> Html:

@@ -144,12 +144,16 @@ def _refusals(told: dict[str, str]) -> Html:
     )
 
 
+_UNITS = {"bytes": " bytes", "seconds": " s"}
+"""What a setting counts, by the end of its name."""
+
+
 def _limits() -> Html:
     known = {field.name: field for field in msgspec.structs.fields(Settings)}
     rows = [
         (
             phrase(msgspec.json.schema(known[name].type)["description"]),
-            f"{known[name].default:,.10g}",
+            f"{known[name].default:,.10g}{_UNITS.get(name.rpartition('_')[2], '')}",
             code(PREFIX + name.upper()),
         )
         for name in LIMITS
