@@ -4,7 +4,8 @@
 
 Reads the platform's own table, asks `POST /v1/loop-design/batch`, and writes one row for each quote. What a caller of
 the service should do is all here: what all quotes share goes into the defaults; a batch that is too large is halved; an
-answer that says to come again is waited for; a broken connection is tried again, since a question changes nothing.
+answer that says to come again is waited for; a broken connection is tried again, since a question changes nothing. A
+row that is no quote, or that the service refuses, is told as such and keeps no other from its design.
 Needs Python 3.11 and nothing else.
 """
 
@@ -97,7 +98,19 @@ def post(url: str, body: bytes) -> tuple[int, dict[str, Any], str]:
         with urllib.request.urlopen(request, timeout=120) as reply:
             return reply.status, json.load(reply), ""
     except urllib.error.HTTPError as refusal:
-        return refusal.code, json.load(refusal), refusal.headers.get("Retry-After", "")
+        try:
+            problem = json.load(refusal)
+        except ValueError:  # a proxy in front of the service answered
+            problem = {"title": refusal.reason, "detail": "not a problem document", "requestId": "unknown"}
+        return refusal.code, problem, refusal.headers.get("Retry-After", "")
+
+
+def readable(row: dict[str, str]) -> dict[str, Any] | None:
+    """The design of a row, or nothing where a cell holds no number."""
+    try:
+        return design(row)
+    except (TypeError, ValueError):
+        return None
 
 
 def outcomes(url: str, designs: list[dict[str, Any]]) -> Iterator[dict[str, Any]]:
@@ -117,7 +130,7 @@ def outcomes(url: str, designs: list[dict[str, Any]]) -> Iterator[dict[str, Any]
             yield from outcomes(url, designs[:half])
             yield from outcomes(url, designs[half:])
             return
-        if status not in {429, 503}:
+        if status not in {429, 502, 503, 504}:
             raise SystemExit(f"{answer['title']}: {answer['detail']} (request {answer['requestId']})")
         time.sleep(float(retry_after or 1))
     raise SystemExit(f"no answer from {url} in {ATTEMPTS} attempts")
@@ -154,12 +167,15 @@ def main(url: str, table: str, result: str) -> None:
         writer = csv.DictWriter(target, COLUMNS)
         writer.writeheader()
         for start in range(0, len(quotes), AT_ONCE):
-            for outcome in outcomes(url, [design(row) for row in quotes[start : start + AT_ONCE]]):
-                row = row_of(outcome)
+            read = [(quote["quote"], readable(quote)) for quote in quotes[start : start + AT_ONCE]]
+            designs = [asked for _, asked in read if asked]
+            told = outcomes(url, designs) if designs else iter(())
+            for quote, asked in read:
+                row = row_of(next(told)) if asked else {"quote": quote, "verdict": "unreadable"}
                 writer.writerow(row)
                 counts[str(row["verdict"])] = counts.get(str(row["verdict"]), 0) + 1
-    told = ", ".join(f"{count} {verdict}" for verdict, count in sorted(counts.items()))
-    print(f"{len(quotes)} quotes: {told}")
+    summary = ", ".join(f"{count} {verdict}" for verdict, count in sorted(counts.items()))
+    print(f"{len(quotes)} quotes: {summary}")
 
 
 if __name__ == "__main__":

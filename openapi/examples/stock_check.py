@@ -4,7 +4,8 @@
 
 Takes a loop as a colleague has stated it, asks `POST /v1/loop-design` with the vessels on the shelf, and prints what to
 take, what to set, and every vessel that was passed over with its reasons and by how much, for whoever must defend the
-choice to a customer. The exit code is 1 if nothing on the shelf fits. Needs Python 3.11 and nothing else.
+choice to a customer. The exit code is 1 if nothing on the shelf fits, and 2 if that could not be found out. Needs
+Python 3.11 and nothing else.
 """
 
 # ruff: noqa: S310 - whoever runs it names the URL
@@ -18,6 +19,10 @@ from pathlib import Path
 from typing import Any
 
 
+class UnansweredError(Exception):
+    """Nothing was found out; the message says why."""
+
+
 def shelf(table: str) -> list[dict[str, Any]]:
     """The vessels on the shelf. A cell left empty is not stated, and never assumed to be enough."""
     columns = {
@@ -28,16 +33,21 @@ def shelf(table: str) -> list[dict[str, Any]]:
     }
     vessels = []
     with Path(table).open(encoding="utf-8", newline="") as source:
-        for row in csv.DictReader(source):
-            if int(row["on_shelf"]) == 0:
-                continue
-            vessel: dict[str, Any] = {"id": row["article"]}
-            for member, (column, unit) in columns.items():
-                if row[column]:
-                    vessel[member] = {"value": float(row[column]), "unit": unit}
-            if row["price"]:
-                vessel["price"] = {"amount": float(row["price"]), "currency": row["currency"]}
+        for line, row in enumerate(csv.DictReader(source), start=2):
+            try:
+                if int(row["on_shelf"]) == 0:
+                    continue
+                vessel: dict[str, Any] = {"id": row["article"]}
+                for member, (column, unit) in columns.items():
+                    if row[column]:
+                        vessel[member] = {"value": float(row[column]), "unit": unit}
+                if row["price"]:
+                    vessel["price"] = {"amount": float(row["price"]), "currency": row["currency"]}
+            except (KeyError, TypeError, ValueError) as fault:
+                raise UnansweredError(f"{table}, line {line}: {fault}") from None
             vessels.append(vessel)
+    if not vessels:
+        raise UnansweredError(f"{table}: nothing is on the shelf")
     return vessels
 
 
@@ -50,9 +60,14 @@ def ask(url: str, question: dict[str, Any]) -> dict[str, Any]:
             answer: dict[str, Any] = json.load(reply)
             return answer
     except urllib.error.HTTPError as refusal:
-        problem = json.load(refusal)
+        try:
+            problem = json.load(refusal)
+        except ValueError:  # a proxy in front of the service answered
+            problem = {"detail": f"{url} answered {refusal.code} {refusal.reason}"}
         faults = [f"  {fault['pointer']}: {fault['message']}" for fault in problem.get("errors", [])]
-        raise SystemExit("\n".join([problem["detail"], *faults])) from None
+        raise UnansweredError("\n".join([problem["detail"], *faults])) from None
+    except OSError as fault:
+        raise UnansweredError(f"no answer from {url}: {fault}") from None
 
 
 def said(quantity: dict[str, Any]) -> str:
@@ -87,10 +102,14 @@ def report(answer: dict[str, Any]) -> Iterator[str]:
 
 
 def main(url: str, loop: str, table: str) -> int:
-    """Ask and print; 1 if nothing on the shelf fits."""
+    """Ask and print; 1 if nothing on the shelf fits, 2 if nothing was found out."""
     question = json.loads(Path(loop).read_text(encoding="utf-8"))
-    question["vessel"] = {"kind": "stock", "items": shelf(table)}
-    answer = ask(url, question)
+    try:
+        question["vessel"] = {"kind": "stock", "items": shelf(table)}
+        answer = ask(url, question)
+    except UnansweredError as fault:
+        print(fault, file=sys.stderr)
+        return 2
     print("\n".join(report(answer)))
     return 0 if "chosenVessel" in answer["result"] else 1
 

@@ -42,6 +42,17 @@ def test_a_nights_quotes_are_designed_one_row_each(url: str, tmp_path: Path) -> 
     assert sum(row["verdict"] == "holds" for row in rows) >= 3
 
 
+def test_a_row_that_is_no_quote_keeps_no_other_from_its_design(url: str, tmp_path: Path) -> None:
+    rows = (EXAMPLES / "quotes.csv").read_text(encoding="utf-8").splitlines()
+    table = tmp_path / "quotes.csv"
+    table.write_text("\n".join([rows[0], rows[1].replace(",12,", ",twelve,"), rows[2], rows[3][:12]]) + "\n")
+    done = run("nightly_quotes.py", url, table, tmp_path / "designs.csv")
+    assert done.stdout == "3 quotes: 1 holds, 2 unreadable\n", done.stderr
+    told = list(csv.DictReader((tmp_path / "designs.csv").open(encoding="utf-8")))
+    assert [row["verdict"] for row in told] == ["unreadable", "holds", "unreadable"]
+    assert [row["quote"] for row in told] == ["Q-1001", "Q-1002", "Q-1003"]
+
+
 def test_the_shelf_is_checked_and_every_vessel_passed_over_says_why(url: str) -> None:
     done = run(
         "stock_check.py", url, EXAMPLES / "designLoop" / "wash-house.question.json", EXAMPLES / "stock.csv"
@@ -71,6 +82,22 @@ def test_a_refused_loop_is_told_with_all_its_faults(url: str) -> None:
     done = run(
         "stock_check.py", url, EXAMPLES / "designLoop" / "misspelt.question.json", EXAMPLES / "stock.csv"
     )
-    assert done.returncode == 1
+    assert done.returncode == 2
     for pointer in ("/reliefValve/setPresure", "/staticHeight/unit", "/collectors/0/count"):
         assert pointer in done.stderr
+
+
+def test_what_could_not_be_found_out_is_no_shelf_without_a_fitting_vessel(url: str, tmp_path: Path) -> None:
+    loop = EXAMPLES / "designLoop" / "wash-house.question.json"
+    rows = (EXAMPLES / "stock.csv").read_text(encoding="utf-8").splitlines()
+    shelf = tmp_path / "stock.csv"
+    told = {}
+    for name, text in {"no number": rows[1].replace(",35,", ",large,"), "nothing": ""}.items():
+        shelf.write_text(f"{rows[0]}\n{text}\n", encoding="utf-8")
+        told[name] = run("stock_check.py", url, loop, shelf)
+    told["no service"] = run("stock_check.py", "http://127.0.0.1:1", loop, EXAMPLES / "stock.csv")
+    assert {name: done.returncode for name, done in told.items()} == dict.fromkeys(told, 2)
+    assert f"{shelf}, line 2: could not convert string to float: 'large'" in told["no number"].stderr
+    assert "nothing is on the shelf" in told["nothing"].stderr
+    assert "no answer from http://127.0.0.1:1" in told["no service"].stderr
+    assert not [name for name, done in told.items() if "Traceback" in done.stderr]
