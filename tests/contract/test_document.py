@@ -108,6 +108,16 @@ def test_words_are_plain_ascii_with_a_constant_and_a_meaning_each() -> None:
             assert all(re.fullmatch("[A-Z][A-Z0-9_]*", constant) for constant in constants), name
 
 
+def test_every_member_has_an_example_of_its_own_or_of_its_schema() -> None:
+    bare = [
+        f"{name}.{member}"
+        for name, schema in SCHEMAS.items()
+        for member, node in schema.get("properties", {}).items()
+        if not (node.get("examples") or "const" in node or "$ref" in node or "$ref" in node.get("items", {}))
+    ]
+    assert bare == []
+
+
 def test_members_are_written_in_camel_case_and_described() -> None:
     for node, place in INNER:
         if not place.endswith((".items", ".additionalProperties")):

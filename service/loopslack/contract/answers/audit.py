@@ -97,7 +97,11 @@ class GaugeFinding(AnswerPart, frozen=True, kw_only=True):
     ]
     certainty: Annotated[Certainty, text("How sure that is; `shown` only by a measured precharge.", "open")]
     deciding_measurement: Annotated[
-        str | None, text("The measurement that would decide, where the evidence does not.")
+        str | None,
+        text(
+            "The measurement that would decide, where the evidence does not.",
+            "Isolate and drain the vessel and measure its precharge.",
+        ),
     ] = None
     explanations: Annotated[list[ReadingExplanation], text("Both explanations, liquid first.")]
 
@@ -151,7 +155,11 @@ class AuditAction(AnswerPart, frozen=True, kw_only=True):
     code: Annotated[str, text("Stable code.", "measure-precharge")]
     message: Annotated[str, text("What to do, with its numbers.", "Isolate and drain the vessel.")]
     parameters: Annotated[
-        dict[str, AnyQuantity], text("The numbers of the message by name, for translation.")
+        dict[str, AnyQuantity],
+        text(
+            "The numbers of the message by name, for translation.",
+            {"precharge": {"value": 1.627, "unit": "barg"}},
+        ),
     ]
 
 

@@ -91,7 +91,11 @@ class Advisory(AnswerPart, frozen=True, kw_only=True):
     ]
     remedy: Annotated[str, text("What to do about it.", "Take a larger vessel.")]
     parameters: Annotated[
-        dict[str, AnyQuantity], text("The numbers of the message by name, for translation.")
+        dict[str, AnyQuantity],
+        text(
+            "The numbers of the message by name, for translation.",
+            {"temperature": {"value": 120, "unit": "degC"}},
+        ),
     ]
     subject: Annotated[
         str | None, text("The part, the vessel or the member concerned.", "/station/ratedPressure")
@@ -135,5 +139,10 @@ class Check(AnswerPart, frozen=True, kw_only=True):
     limit: Annotated[AnyQuantity | None, text("What it may or must be at the utmost.")] = None
     margin: Annotated[AnyQuantity | None, text("How far the value is on the safe side of the limit.")] = None
     subject: Annotated[str | None, text("The part concerned, where there are several.", "station")] = None
-    reason: Annotated[str | None, text("Why it fails or is not assessed, where no number says so.")] = None
-    at_least: Annotated[bool | None, text("True where the value is only a lower bound of the truth.")] = None
+    reason: Annotated[
+        str | None,
+        text("Why it fails or is not assessed, where no number says so: a stable code.", "head-not-stated"),
+    ] = None
+    at_least: Annotated[
+        bool | None, text("True where the value is only a lower bound of the truth.", True)
+    ] = None

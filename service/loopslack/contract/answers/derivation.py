@@ -103,11 +103,15 @@ class DerivationStep(AnswerPart, frozen=True, kw_only=True):
     ] = None
     law: Annotated[str | None, text("Its law, in SI.", "T = max(T_1, T_2)")] = None
     inputs: Annotated[list[DerivationInput], text("The numbers put in.")]
-    constants: Annotated[list[str] | None, text("Fitted numbers it uses, listed under `constants`.")] = None
+    constants: Annotated[
+        list[str] | None,
+        text("Fitted numbers it uses, listed under `constants`.", ["f0 to f4, inhibited glycol"]),
+    ] = None
     outside: Annotated[
         list[str] | None,
         text(
-            "Inputs, or `result`, beyond the range of the equation: the number then stands for no state of the loop."
+            "Inputs, or `result`, beyond the range of the equation: the number then stands for no state of the loop.",
+            ["temperature"],
         ),
     ] = None
     system: Annotated[DerivationSystem | None, text("For a root: what it solves.")] = None
@@ -120,8 +124,11 @@ class Derivation(AnswerPart, frozen=True, kw_only=True):
     """Every computed number of the answer in the order in which a reader would redo them."""
 
     scenario: Annotated[Literal["base"], text("The case written out.", "base")]
-    doubts: Annotated[str, text("How the doubts relate to these steps.")]
-    redoing: Annotated[str, text("What to know before redoing a step.")]
+    doubts: Annotated[str, text("How the doubts relate to these steps.", "The base case is written out.")]
+    redoing: Annotated[
+        str,
+        text("What to know before redoing a step.", "Turn every number into SI before it goes into a law."),
+    ]
     steps: Annotated[list[DerivationStep], text("The steps.")]
     equations: Annotated[list[DerivationEquation], text("Every equation used.")]
     constants: Annotated[list[DerivationConstant], text("Every set of fitted numbers used.")]

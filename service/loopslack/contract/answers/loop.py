@@ -69,7 +69,7 @@ class LiquidState(AnswerPart, frozen=True, kw_only=True):
     gauge_reading: Annotated[q.Pressure | None, text("Pressure at the gauge.")] = None
     vessel_temperature: Annotated[q.Temperature, text("Temperature of gas and liquid in the vessel.")]
     frozen: Annotated[
-        bool | None, text("True where the fluid freezes; the state is then that of the freezing point.")
+        bool | None, text("True where the fluid freezes: the state is that of freezing.", True)
     ] = None
 
 
@@ -92,7 +92,7 @@ class StagnationState(AnswerPart, frozen=True, kw_only=True):
     ] = None
     lower_bound: Annotated[
         bool | None,
-        text("True where pressure and steam are lower bounds: the valve opens or steam is left over."),
+        text("True where pressure and steam are lower bounds: valve open, or steam left over.", True),
     ] = None
     steam_temperature: Annotated[q.Temperature, text("Steam, or hottest liquid where nothing boils.")]
     stagnation_temperature: Annotated[
@@ -216,7 +216,7 @@ class GaugeReading(AnswerPart, frozen=True, kw_only=True, gc=False):
 
     state: Annotated[ReadingState, text("The state.", "cold")]
     reading: Annotated[q.Pressure | None, text("The reading. Absent where the vessel is empty.")] = None
-    at_least: Annotated[bool | None, text("True where the reading may be higher.")] = None
+    at_least: Annotated[bool | None, text("True where the reading may be higher.", True)] = None
 
 
 class ClosedForms(AnswerPart, frozen=True, kw_only=True, gc=False):
@@ -247,7 +247,9 @@ class SettingsCard(AnswerPart, frozen=True, kw_only=True):
     relief_height: Annotated[q.Length, text("Relief valve above the vessel connection.")]
     gauge_height: Annotated[q.Length, text("Gauge above the vessel connection.")]
     closed_forms: Annotated[ClosedForms | None, text("EN 12828's closed forms, for comparison.")] = None
-    instructions: Annotated[list[str], text("What to do and to check, in order.")]
+    instructions: Annotated[
+        list[str], text("What to do and check, in order.", ["Fill only with the collectors covered."])
+    ]
 
 
 class OrderList(AnswerPart, frozen=True, kw_only=True):

@@ -71,7 +71,13 @@ class ToBeProved(AnswerPart, frozen=True, kw_only=True):
     """Something that would help if it could be shown. No verdict rests on it before it is measured."""
 
     code: Annotated[str, text("What it is.", "better-emptying")]
-    sentence: Annotated[str, text("What would have to be shown, and how.")]
+    sentence: Annotated[
+        str,
+        text(
+            "What would have to be shown, and how.",
+            "Collectors that send out no more than 63 W/m2 of steam, where 80 W/m2 are counted, would do.",
+        ),
+    ]
     amount: Annotated[q.Irradiance, text("Steam power per aperture that a measurement must not exceed.")]
     present: Annotated[q.Irradiance, text("What is counted now.")]
 
@@ -98,7 +104,13 @@ class RobustCooler(AnswerPart, frozen=True, kw_only=True):
     power: Annotated[q.Power, text("Heat it must take from steam at its boiling temperature, in all.")]
     unspent_power: Annotated[q.Power, text("What all doubts at once leave at the station without it.")]
     nominal_volume: Annotated[q.Volume, text("The smallest vessel that is robust with it.")]
-    sentence: Annotated[str, text("The same in a sentence.")]
+    sentence: Annotated[
+        str,
+        text(
+            "The same in a sentence.",
+            "A stagnation cooler of 566 W would let a vessel of 141.8 L or more survive them.",
+        ),
+    ]
 
 
 class LeftState(AnswerPart, frozen=True, kw_only=True):
@@ -117,18 +129,20 @@ class Discharge(AnswerPart, frozen=True, kw_only=True):
     scenario: Annotated[ScenarioId, text("Base case or doubt.", "base")]
     volume: Annotated[q.Volume, text("What leaves, as hot liquid.")]
     mass: Annotated[q.Mass, text("Mass that leaves.")]
-    at_least: Annotated[bool | None, text("True where steam reaches the station, so that more leaves.")] = (
-        None
-    )
+    at_least: Annotated[
+        bool | None, text("True where steam reaches the station, so that more leaves.", True)
+    ] = None
     vents_steam: Annotated[
-        bool | None, text("True where steam can stand at the valve, which then blows steam.")
+        bool | None, text("True where steam can stand at the valve, which then blows steam.", True)
     ] = None
     closing_pressure: Annotated[q.Pressure, text("Vessel pressure at which the valve has shut.")]
     stays_open: Annotated[
-        bool | None, text("True where the valve shuts only when nothing presses any more.")
+        bool | None, text("True where the valve shuts only when nothing presses any more.", True)
     ] = None
     vessel_liquid: Annotated[q.Volume, text("Liquid in the vessel when it has shut.")]
     afterwards: Annotated[list[LeftState], text("The loop cooled down, at the fill temperature and cold.")]
     draws_air: Annotated[bool, text("Whether the loop sucks air in either.", True)]
     refill: Annotated[q.Volume, text("What must be filled in again, at the fill temperature.")]
-    sentence: Annotated[str, text("The same in a sentence.")]
+    sentence: Annotated[
+        str, text("The same in a sentence.", "The relief valve lets out 23.91 L of hot liquid.")
+    ]

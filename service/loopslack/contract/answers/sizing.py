@@ -22,8 +22,8 @@ class SeenStagnation(AnswerPart, frozen=True, kw_only=True):
     pressure: Annotated[
         q.Pressure | None, text("Vessel pressure if the valve stayed shut, where it can be told.")
     ] = None
-    at_least: Annotated[bool | None, text("True where the pressure is a lower bound.")] = None
-    failing: Annotated[list[str], text("Checks that do not hold.")]
+    at_least: Annotated[bool | None, text("True where the pressure is a lower bound.", True)] = None
+    failing: Annotated[list[str], text("Checks that do not hold.", ["relief-valve"])]
 
 
 class RuleComparison(AnswerPart, frozen=True, kw_only=True):
@@ -37,7 +37,13 @@ class RuleComparison(AnswerPart, frozen=True, kw_only=True):
     counts: Annotated[str, text("What the rule counts.", "Liquid expansion and collector content.")]
     source: Annotated[SourceNote, text("Where it was published.")]
     nominal_volume: Annotated[q.Volume | None, text("Its answer. Absent where it does not apply.")] = None
-    reason: Annotated[str | None, text("Why it gives no answer.")] = None
+    reason: Annotated[
+        str | None,
+        text(
+            "Why it gives no answer.",
+            "The rule holds for water; this loop holds 42.92 % propylene glycol by mass.",
+        ),
+    ] = None
     displaced_volume: Annotated[q.Volume | None, text("What must find room in the vessel.")] = None
     pressure_factor: Annotated[q.Ratio | None, text("Nominal volume over displaced volume.")] = None
     start_pressure: Annotated[q.Pressure | None, text("The pressure it starts from.")] = None
@@ -90,7 +96,9 @@ class SensitivityEnd(AnswerPart, frozen=True, kw_only=True):
     nominal_volume: Annotated[
         q.Volume | None, text("Recommended volume there. Absent where no vessel holds.")
     ] = None
-    reason: Annotated[str | None, text("Why the loop could not be sized there.")] = None
+    reason: Annotated[
+        str | None, text("Why the loop could not be sized there.", "The fluid freezes at the site minimum.")
+    ] = None
 
 
 class SensitivityRow(AnswerPart, frozen=True, kw_only=True):

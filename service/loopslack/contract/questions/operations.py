@@ -156,6 +156,7 @@ class LoopQuestion(Question, frozen=True, kw_only=True):
             "Accept a vessel smaller than EN 12977 asks for because the collectors do not boil empty. "
             "Counts only with a "
             "measured stagnation temperature for every group. If absent, false.",
+            False,
         ),
     ] = None
     include: Annotated[

@@ -134,9 +134,9 @@ class PipeSegment(QuestionPart, frozen=True, kw_only=True):
             160,
         ),
     ] = None
-    soft_solder: Annotated[bool | None, text("Whether its joints are soft soldered. If absent, false.")] = (
-        None
-    )
+    soft_solder: Annotated[
+        bool | None, text("Whether its joints are soft soldered. If absent, false.", False)
+    ] = None
 
 
 class PipeRun(QuestionPart, frozen=True, kw_only=True):

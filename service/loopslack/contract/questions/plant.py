@@ -181,14 +181,16 @@ class Construction(QuestionPart, frozen=True, kw_only=True):
     open_or_drain_back: Annotated[
         bool | None,
         text(
-            "Whether the loop is open or drains back. If absent, false. Such a loop is refused: other physics."
+            "Whether the loop is open or drains back. If absent, false. Such a loop is refused: other physics.",
+            False,
         ),
     ] = None
     automatic_make_up: Annotated[
-        bool | None, text("Whether water is made up automatically. If absent, false. A stop with glycol.")
+        bool | None,
+        text("Whether water is made up automatically. If absent, false. A stop with glycol.", False),
     ] = None
     galvanised_parts: Annotated[
-        bool | None, text("Whether any part is galvanised. If absent, false. A stop with glycol.")
+        bool | None, text("Whether any part is galvanised. If absent, false. A stop with glycol.", False)
     ] = None
 
 

@@ -39,7 +39,7 @@ _ACCEPTANCE = quantity(
 _DELIVERED = quantity(
     "Precharge as delivered, a gauge reading at sea level. If absent, unknown.", 1.5, "barg", 0, 30
 )
-_ADJUSTABLE = text("Whether the precharge can be changed on site. If absent, true.")
+_ADJUSTABLE = text("Whether the precharge can be changed on site. If absent, true.", True)
 _MEMBRANE = quantity(
     "Highest lasting membrane temperature. If absent, that of the criteria.", 70, "degC", 30, 150
 )
