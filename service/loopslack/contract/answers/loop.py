@@ -68,9 +68,7 @@ class LiquidState(AnswerPart, frozen=True, kw_only=True):
     top_pressure: Annotated[q.Pressure | None, text("Pressure at the highest point.")] = None
     gauge_reading: Annotated[q.Pressure | None, text("Pressure at the gauge.")] = None
     vessel_temperature: Annotated[q.Temperature, text("Temperature of gas and liquid in the vessel.")]
-    frozen: Annotated[
-        bool | None, text("True where the fluid freezes: the state is that of freezing.", True)
-    ] = None
+    frozen: Annotated[bool | None, text("True where it freezes: the state is at that point.", True)] = None
 
 
 class SteamReach(AnswerPart, frozen=True, kw_only=True, gc=False):
