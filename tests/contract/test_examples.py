@@ -47,3 +47,15 @@ def test_every_schema_has_an_example_that_fits_it(name: str) -> None:
     assert schema["examples"]
     for example in schema["examples"]:
         checker.validate(example)
+
+
+def test_the_order_list_names_the_chosen_vessel_with_its_cooling_vessel_and_no_other() -> None:
+    results = [
+        json.loads(path.read_bytes())["result"]
+        for path in (EXAMPLES / "designLoop").glob("*.answer.json")
+        if b'"result"' in path.read_bytes()
+    ]
+    ordered = [result["order"].get("expansionVessel") for result in results]
+    assert ordered == [result.get("chosenVessel") for result in results]
+    assert {vessel is not None and "coolingVessel" in vessel for vessel in ordered} == {True, False}
+    assert None in ordered

@@ -102,15 +102,16 @@ def _design_answer(question: questions.LoopDesignQuestion, asked: Designed) -> a
     write = reading.write
     pressure = write_loop.Pressures(write, reading.loop.atmosphere)
     shown, judgement = found.shown, found.judgement
+    chosen = None if found.chosen is None else write_loop.vessel(found.chosen, write)
     result = answers.LoopDesignResult(
         **extras.judged(reading, shown, judgement),
         band=extras.tolerance_band(reading, shown, shown.window.recommended, asked.tolerances),
-        chosen_vessel=None if found.chosen is None else write_loop.vessel(found.chosen, write),
+        chosen_vessel=chosen,
         nearest_vessel=None if found.chosen is not None else write_loop.vessel(shown, write),
         volumes=write_design.volumes(found, write, pressure),
         selection=write_design.selection(found.selection, write),
         settings=write_design.settings(shown, judgement, write, pressure),
-        order=write_design.order(shown, write),
+        order=write_design.order(shown, chosen, write),
         discharge=extras.discharged(reading, shown, shown.mass, judgement),
     )
     include = reading.include or frozenset()

@@ -24,7 +24,6 @@ from loopslack.contract.answers.loop import (
     FillWindow,
     LiquidState,
     LoopContent,
-    OrderList,
     Provisional,
     Selection,
     SettingsCard,
@@ -32,6 +31,7 @@ from loopslack.contract.answers.loop import (
     VesselResult,
     Volumes,
 )
+from loopslack.contract.answers.order import OrderList
 from loopslack.contract.answers.remedies import Discharge, Remedies, RobustCooler
 from loopslack.contract.answers.sizing import RuleComparison, Sensitivity, Walk
 from loopslack.contract.questions.fields import text

@@ -14,6 +14,7 @@ from loopslack.calc.settings_card import settings_card
 from loopslack.calc.sizing.volumes import Sized
 from loopslack.contract.answers import loop as out
 from loopslack.contract.answers.common import Basis, Check
+from loopslack.contract.answers.order import OrderList
 from loopslack.contract.reading.loop import Reading
 from loopslack.contract.writing import loop as write_loop
 from loopslack.contract.writing.common import optional_quantity
@@ -192,10 +193,11 @@ def settings(
     )
 
 
-def order(fitted: Fit, write: Writer) -> out.OrderList:
-    """The order list."""
+def order(fitted: Fit, chosen: out.VesselResult | None, write: Writer) -> OrderList:
+    """The order list; without a vessel where none is chosen."""
     found: Ordered = order_list(fitted)
-    return out.OrderList(
+    return OrderList(
+        expansion_vessel=chosen,
         content=write.volume(found.content),
         vessel_content=write.volume(found.vessel_content),
         filling_loss=write.ratio(found.filling_loss),

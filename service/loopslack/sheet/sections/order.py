@@ -19,9 +19,11 @@ def _items(case: Case) -> Table:
     rows = []
     if vessel is not None:
         name = words("part.vessel" if case.chosen else "part.vessel-nearest")
+        rated = vessel.rated_pressure
+        strength = "" if rated is None else f", {words('fact.rated', pressure=say(rated))}"
         rows.append(
             (
-                f"{name}, {article(case, vessel.id)}",
+                f"{name}, {article(case, vessel.id)}{strength}",
                 f"{vessel.pieces} \N{MULTIPLICATION SIGN} {say(vessel.nominal_volume)}",
             )
         )
