@@ -9,7 +9,11 @@ import { fileURLToPath } from "node:url";
 const LOOPS = join(dirname(dirname(fileURLToPath(import.meta.url))), "sheet", "loops");
 const WORDS = {
   en: { holds: "HOLDS", "favourable-only": "HOLDS ONLY IF ALL GOES WELL", "does-not-hold": "DOES NOT HOLD" },
-  de: { holds: "HÄLT", "favourable-only": "HÄLT NUR IM GÜNSTIGEN FALL", "does-not-hold": "HÄLT NICHT" },
+  de: {
+    holds: "NACHWEIS ERFÜLLT",
+    "favourable-only": "NUR IM GÜNSTIGEN FALL ERFÜLLT",
+    "does-not-hold": "NACHWEIS NICHT ERFÜLLT",
+  },
 };
 
 // An older Poppler complains of a word of the tags it does not know yet.

@@ -110,7 +110,7 @@ def own(name: str) -> set[str]:
     stated += [getattr(design.fluid, "name", None), *(part.name for part in design.parts or ())]
     items = getattr(design.vessel, "items", None) or [design.vessel]
     stated += [getattr(item, "id", None) for item in items]
-    stated.append(asked(name).question.remark)
+    stated += [asked(name).question.remark, asked(name).question.project]
     cited = [source_title(of, key) for key in sources()]
     return {word.lower() for text in [*filter(None, stated), *cited] for word in _WORD.findall(text)}
 

@@ -23,13 +23,17 @@ _GAUGE_SPARE = (
 
 
 class FillRow(NamedTuple):
-    """Fill pressures with the loop at one temperature; None with ``omitted`` where none is given."""
+    """Fill pressures with the loop at one temperature; None with ``omitted`` where none is given.
+
+    ``reading`` is the recommended one as the gauge shows it, which may stand at another height than the vessel.
+    """
 
     temperature: float
-    lower: float | None
-    recommended: float | None
-    upper: float | None
-    omitted: str
+    lower: float | None = None
+    recommended: float | None = None
+    upper: float | None = None
+    reading: float | None = None
+    omitted: str = ""
 
 
 class Reading(NamedTuple):
@@ -84,15 +88,16 @@ def _row(fitted: Fit, temperature: float) -> FillRow:
     """The window at another fill temperature: the same mass in the loop, the loop expanded or shrunk."""
     analysis, window, gas = fitted.analysis, fitted.window, fitted.gas
     if temperature <= analysis.fluid.freezing_point:
-        return FillRow(temperature, None, None, None, "fluid-frozen")
+        return FillRow(temperature, omitted="fluid-frozen")
     if not window.width > 0:
-        return FillRow(temperature, None, None, None, "no-window")
+        return FillRow(temperature, omitted="no-window")
     bounds = Bounds(analysis, (), gas)
     masses = window.lower_bound.mass, fitted.mass, window.upper_bound.mass
     low, recommended, high = (bounds.pressure(gas.nominal, mass, temperature) for mass in masses)
     if not gas.precharge * 0.5 < low <= recommended <= high < float("inf"):
-        return FillRow(temperature, None, None, None, "vessel-empty-or-full")
-    return FillRow(temperature, low, recommended, high, "")
+        return FillRow(temperature, omitted="vessel-empty-or-full")
+    drop = analysis.fluid.density(temperature) * GRAVITY * analysis.loop.gauge_height
+    return FillRow(temperature, low, recommended, high, recommended - drop)
 
 
 def _readings(analysis: Analysis, judgement: Judgement) -> list[Reading]:

@@ -15,6 +15,7 @@ from loopslack.contract.questions.pipes import StandardTube
 from loopslack.contract.reading.loop import Reading, read_loop
 from loopslack.contract.writing.quantities import Writer
 from loopslack.kernel.errors import NotApplicable
+from loopslack.sheet.customary import customary
 from loopslack.sheet.numerals import Language, Numerals, numerals
 from loopslack.sheet.words import Words, plain, words
 
@@ -30,8 +31,11 @@ class NothingToDraw(NotApplicable):
 class Case:
     """One design to be shown in one language."""
 
-    def __init__(self, answer: LoopDesignAnswer, design: LoopDesignQuestion, language: Language) -> None:
+    def __init__(
+        self, answer: LoopDesignAnswer, design: LoopDesignQuestion, language: Language, project: str = ""
+    ) -> None:
         self.answer, self.design = answer, design
+        self.project = plain(project).strip()
         self.result = answer.result
         self.words: Words = words(language)
         self.say: Numerals = numerals(language)
@@ -50,6 +54,14 @@ class Case:
     def write(self) -> Writer:
         """Writes SI numbers in the units of the answer."""
         return self.reading.write
+
+    def prose(self, text: str) -> str:
+        """A sentence whose numbers are SI whatever was asked for, in the units of the answer."""
+        return customary(text, self.say.point) if self.write.system == "us" else text
+
+    def phrase(self, english: str) -> str:
+        """A sentence of the answer in the language and the units of the sheet."""
+        return self.prose(self.words.phrase(english))
 
     @property
     def vessel(self) -> VesselResult | None:

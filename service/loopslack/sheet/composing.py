@@ -84,7 +84,7 @@ def _short(text: str) -> str:
 
 def compose(answer: LoopDesignAnswer, question: SheetQuestion) -> Sheet:
     """Everything that stands on the sheet of an answer."""
-    case = Case(answer, question.design, question.language or "en")
+    case = Case(answer, question.design, question.language or "en", question.project or "")
     words = case.words
     mark = fingerprint(question)
     sections = [section for make in SECTIONS if (section := make(case)) is not None]

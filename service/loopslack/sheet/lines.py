@@ -20,6 +20,8 @@ class Column(Struct, frozen=True):
 
     title: str
     align: Align = "text"
+    share: int = 0
+    """Of the width of the page, where all columns of the table have one and so stand in line with other tables."""
 
 
 class Row(Struct, frozen=True):
@@ -39,6 +41,8 @@ class Table(Struct, frozen=True, tag_field="block", tag="table"):
     rows: tuple[Row, ...]
     note: str = ""
     compact: bool = False
+    whole: bool = False
+    """Never broken across pages when printed; short ones are not in any case."""
 
 
 class Fact(Struct, frozen=True):
@@ -115,12 +119,13 @@ Block = Simple | Beside | Card
 
 
 class Section(Struct, frozen=True):
-    """A titled part of the sheet. ``on_new_page``: begins a page when printed."""
+    """A titled part of the sheet. ``on_new_page``: begins a page when printed; ``whole``: stays on one."""
 
     id: str
     title: str
     blocks: tuple[Block, ...]
     on_new_page: bool = False
+    whole: bool = False
 
 
 class Banner(Struct, frozen=True):

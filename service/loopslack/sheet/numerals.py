@@ -151,7 +151,7 @@ class Numerals:
 
     def __init__(self, language: Language) -> None:
         self._to = "bis" if language == "de" else "to"
-        self._point = "," if language == "de" else "."
+        self.point = "," if language == "de" else "."
         self._units = {**_UNITS, **(_GERMAN_UNITS if language == "de" else {})}
 
     def __call__(self, quantity: Quantity | None) -> str:
@@ -180,6 +180,13 @@ class Numerals:
     def between(self, low: Quantity, high: Quantity) -> str:
         """A range."""
         return f"{self.digits(low)} {self._to} {self(high)}"
+
+    def apart(self, value: Quantity, limit: Quantity) -> tuple[str, str]:
+        """A number and the limit it misses: with all their digits where rounded ones would read alike."""
+        shown = self(value), self(limit)
+        if shown[0] == shown[1] and value.value != limit.value:
+            return self.stated(value), self.stated(limit)
+        return shown
 
     def thin(self, quantity: Quantity) -> str:
         """A thickness: the trade says millimetres and inches, where an answer says metres and feet."""
@@ -224,7 +231,7 @@ class Numerals:
 
     def plain(self, digits: str) -> str:
         """Digits with the language's decimal sign, a true minus and groups of three from five digits on."""
-        return _written(digits, self._point)
+        return _written(digits, self.point)
 
     def _share(self, value: float) -> str:
         """A number without unit, which the sheet shows in percent below one and as it is above."""

@@ -33,6 +33,7 @@ from loopslack.sheet.lines import (
 
 _ALIGN = {"text": "txt", "number": "num", "value": "val"}
 _LONG = 28  # letters without a gap, which a narrow column may break
+_NUMBERS = 4  # columns of numbers alone that a narrow screen has room for
 _WIDE = 20  # letters beyond which a unit is not kept together at any price
 _PART = re.compile(rf"[^\s\u00a0]{{{_LONG}}}(?=[^\s\u00a0])")
 _BREAK = "\x00"  # no text has it any more: see ``words.plain``
@@ -85,10 +86,10 @@ def _banner(banner: Banner) -> str:
 
 
 def _section(number: int, section: Section) -> str:
-    fresh = " fresh" if section.on_new_page else ""
+    printed = f"{' fresh' if section.on_new_page else ''}{' whole' if section.whole else ''}"
     blocks = "".join(_block(block) for block in section.blocks)
     return (
-        f'<section class="part{fresh}" id="{section.id}" aria-labelledby="{section.id}-title">'
+        f'<section class="part{printed}" id="{section.id}" aria-labelledby="{section.id}-title">'
         f'<h2 id="{section.id}-title"><span class="number">{number}</span> {escape(section.title)}</h2>'
         f"{blocks}</section>"
     )
@@ -159,9 +160,11 @@ def _table(table: Table) -> str:
         rows.append(f'<tr role="row"{mark}>{"".join(cells)}</tr>')
     note = f'<p class="small">{escape(table.note)}</p>' if table.note else ""
     kind = "compact" if table.compact else "open"
-    wide = " wide" if len(table.columns) > 3 else ""
+    numbers = all(column.align == "number" for column in table.columns)
+    wide = " wide" if len(table.columns) > (_NUMBERS if numbers else 3) else ""
+    whole = " whole" if table.whole else ""
     return (
-        f'<table role="table" class="{kind}{wide}"><caption>{_guarded(table.caption)}</caption>'
+        f'<table role="table" class="{kind}{wide}{whole}"><caption>{_guarded(table.caption)}</caption>'
         f'<thead role="rowgroup"><tr role="row">{head}</tr></thead>'
         f'<tbody role="rowgroup">{"".join(rows)}</tbody></table>{note}'
     )

@@ -63,7 +63,7 @@ STANDING = (
     ),
     own(
         "collector-capacity",
-        "Collectors hold 8 kJ/m2K with their liquid; 6 to 12 moves the largest steam volume by 0.1 %.",
+        "Collectors hold 8 kJ/m2K with their liquid; 6 to 12 kJ/m2K moves the largest steam volume by 0.1 %.",
     ),
     own(
         "pipe-capacity",

@@ -167,6 +167,7 @@ def settings(
                 lower=pressure.optional(row.lower),
                 recommended=pressure.optional(row.recommended),
                 upper=pressure.optional(row.upper),
+                reading=pressure.optional(row.reading),
                 omitted=row.omitted or None,  # type: ignore[arg-type]  # closed in settings_card
             )
             for row in card.rows

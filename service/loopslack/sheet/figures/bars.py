@@ -16,6 +16,13 @@ from loopslack.sheet.sections.sizing_names import (
 MOST_INPUTS = 10
 _LEFT, _RIGHT = 6.0, WIDTH - 6.0
 _TIGHT = 8.4  # the smallest lettering, for units as long as those of the United States
+_KEY = 14.0  # height of a line of the key
+_SIGNS: dict[str, str] = {
+    "holds": "disc",
+    "favourable-only": "up",
+    "does-not-hold": "cross",
+    "not-assessed": "ring",
+}
 _NOTHING = 1e-9  # share of the volume within which a step is the solvers' own rounding
 
 
@@ -26,7 +33,8 @@ def rules(case: Case) -> Drawing | None:
         return None
     words, say = case.words, case.say
     step, top = 30.0, 6.0
-    canvas = Canvas(top + len(answered) * step + 24.0)
+    shown = [verdict for verdict in _SIGNS if any(rule.verdict == verdict for rule in answered)]
+    canvas = Canvas(top + len(answered) * step + 10.0 + _KEY * len(shown))
     room = _RIGHT - _LEFT - 96.0
     most = max(_volume(rule) for rule in answered)
     told = []
@@ -38,14 +46,13 @@ def rules(case: Case) -> Drawing | None:
         own = rule.rule == "mass-balance"
         canvas.box(_LEFT, y + 13.0, width, 10.0, "solid" if own else "water")
         x = _LEFT + width + 9.0
-        canvas.sign("disc" if rule.verdict == "holds" else "cross", (x, y + 18.0), 3.6)
+        canvas.sign(_SIGNS[rule.verdict], (x, y + 18.0), 3.6)
         canvas.text((x + 9.0, y + 22.0), say(rule.nominal_volume), bold=own)
         told.append(f"{rule_title(case, rule)}: {say(rule.nominal_volume)}, {verdict}")
-    y = canvas.height - 8.0
-    canvas.sign("disc", (_LEFT + 5.0, y - 4.0), 3.6)
-    canvas.text((_LEFT + 14.0, y), words("figure.rule-holds"), size=SMALL)
-    canvas.sign("cross", (150.0, y - 4.0), 3.6)
-    canvas.text((159.0, y), words("figure.rule-does-not-hold"), size=SMALL)
+    for number, verdict in enumerate(shown):
+        y = top + len(answered) * step + 12.0 + number * _KEY
+        canvas.sign(_SIGNS[verdict], (_LEFT + 5.0, y - 4.0), 3.6)
+        canvas.text((_LEFT + 14.0, y), words(f"figure.rule-{verdict}"), size=SMALL)
     title = words("figure.rules.title")
     description = words("figure.rules.description", rules="; ".join(told))
     return Drawing("rules", canvas.svg("rules", title, description), title, description)

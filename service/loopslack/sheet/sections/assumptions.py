@@ -32,7 +32,7 @@ def assumptions(case: Case) -> Section:
                     _names(case, group),
                     assumption_value(case, first),
                     assumption_range(case, first),
-                    words.phrase(first.why),
+                    case.phrase(first.why),
                     source_name(case, first.source),
                 )
             )

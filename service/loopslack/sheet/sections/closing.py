@@ -8,7 +8,9 @@ from loopslack.sheet.words import plain
 def cautions(case: Case) -> Section:
     """Dangers every such loop has."""
     words = case.words
-    items = tuple(words.or_else(f"caution.{one.code}", plain(one.message)) for one in case.answer.cautions)
+    items = tuple(
+        case.prose(words.or_else(f"caution.{one.code}", plain(one.message))) for one in case.answer.cautions
+    )
     return Section("cautions", words("section.cautions"), (Bullets(items),))
 
 
@@ -31,4 +33,5 @@ def signing(case: Case, fingerprint: str) -> Section:
             Facts(facts),
             Text(words("signing.again"), "small"),
         ),
+        whole=True,
     )

@@ -59,10 +59,7 @@ def day(case: Case) -> Section | None:
     for flag in course.flags:
         tone: Tone = "stop" if flag in _NEVER else "plain"
         sure = words("day.in-all") if flag in course.certain_flags else words("day.in-some")
-        blocks.append(Text(f"{words.or_else(f'flag.{flag}', plain(flag))} {sure}", tone))
-    notes = tuple(words.phrase(plain(note.note)) for note in course.notes)
-    blocks += [
-        Text(words("day.granted-si" if case.design.units == "us" else "day.granted"), "lead"),
-        Bullets(notes),
-    ]
+        blocks.append(Text(f"{words.or_else(f'flag.{flag}', plain(flag))} ({sure}).", tone))
+    notes = tuple(case.phrase(plain(note.note)) for note in course.notes)
+    blocks += [Text(words("day.granted"), "lead"), Bullets(notes)]
     return Section("day", words("section.day"), tuple(blocks))

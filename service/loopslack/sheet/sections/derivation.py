@@ -64,11 +64,11 @@ def told_name(case: Case, english: str) -> str:
 def _columns(case: Case) -> tuple[Column, ...]:
     words = case.words
     return (
-        Column(words("column.step")),
-        Column(words("column.what")),
-        Column(words("column.law")),
-        Column(words("column.result"), "number"),
-        Column(words("column.source")),
+        Column(words("column.step"), share=2),
+        Column(words("column.what"), share=11),
+        Column(words("column.law"), share=29),
+        Column(words("column.result"), "number", share=9),
+        Column(words("column.source"), share=9),
     )
 
 

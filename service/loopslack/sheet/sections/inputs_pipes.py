@@ -11,6 +11,7 @@ from loopslack.contract.questions.pipes import (
 )
 from loopslack.sheet.case import Case
 from loopslack.sheet.lines import Column, Row, Table
+from loopslack.sheet.numerals import NO_BREAK
 from loopslack.sheet.sections.names import word_name
 from loopslack.sheet.words import plain
 
@@ -61,7 +62,7 @@ def _stretch(case: Case, segment: PipeSegment) -> tuple[str, ...]:
 def _tube(case: Case, tube: Tube) -> str:
     words, say = case.words, case.say
     if isinstance(tube, StandardTube):
-        return f"{plain(tube.standard).upper().replace('-', ' ', 1)}, {plain(tube.size)}"
+        return f"{plain(tube.standard).upper().replace('-', ' ', 1)}, {_size(tube)}"
     outer = (
         ""
         if tube.outer_diameter is None
@@ -70,6 +71,16 @@ def _tube(case: Case, tube: Tube) -> str:
     if isinstance(tube, BoreTube):
         return words("inputs.bore", diameter=say.stated(tube.bore)) + outer
     return say.stated(tube.content_per_length) + outer
+
+
+def _size(tube: StandardTube) -> str:
+    """A nominal size with the unit its standard leaves out."""
+    size = plain(tube.size)
+    if tube.standard.startswith(("astm", "asme")):
+        return f"{size}{NO_BREAK}in"
+    if "x" not in size:
+        return size.upper()
+    return NO_BREAK.join([*size.replace("x", " \N{MULTIPLICATION SIGN} ").split(), "mm"])
 
 
 def _insulation(case: Case, insulation: Insulation | None) -> str:

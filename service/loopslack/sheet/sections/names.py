@@ -1,10 +1,14 @@
 """Names of states, parts and members of the question, and the words of verdicts, as every section uses them."""
 
+import re
+
 from loopslack.contract.answers.common import Assumption, Check, SourceNote
 from loopslack.sheet.case import JOINT, Case
+from loopslack.sheet.customary import nominal_size
 from loopslack.sheet.lines import Mark
 from loopslack.sheet.words import plain
 
+_NOMINAL = re.compile(r"DN\d+")
 _PART_SUBJECTS = {
     "expansion vessel": "part.vessel",
     "station": "part.station",
@@ -130,7 +134,14 @@ def field_name(case: Case, steps: list[str]) -> str:
 
 def word_name(case: Case, word: str) -> str:
     """A word of the contract (a rule, a policy, a build) as people say it."""
+    if _NOMINAL.fullmatch(word):
+        return valve_size(case, int(word.removeprefix("DN")))
     return case.words.or_else(f"word.{word}", plain(word))
+
+
+def valve_size(case: Case, millimetres: int) -> str:
+    """A nominal size of a valve."""
+    return nominal_size(millimetres) if case.write.system == "us" else f"DN {millimetres}"
 
 
 def source_name(case: Case, source: SourceNote) -> str:

@@ -65,7 +65,7 @@ def _plain_worded(case: Case, advisory: Advisory, numbers: dict[str, str]) -> st
         return plain(advisory.message)
     if advisory.code == "not-assessed":
         numbers["state"] = state_name(case, advisory.subject or "")
-        numbers["reason"] = case.words.phrase(plain(advisory.message.partition(": not computed. ")[2]))
+        numbers["reason"] = case.phrase(plain(advisory.message.partition(": not computed. ")[2]))
     if advisory.code == "soft-solder":
         numbers["runs"] = plain(advisory.message.partition(" joints in ")[2].rstrip("."))
     return case.words(key, **numbers)
@@ -84,6 +84,8 @@ def _confirm(case: Case, one: Provisional) -> str:
     """One open point: what is open, and which number would settle it."""
     words = case.words
     what = words.or_else(f"confirm.{one.code}", words.or_else(f"check.{one.code}", plain(one.code)))
+    if one.field and f"check.{one.code}" in words:
+        return words("notices.not-stated", what=what, field=member_name(case, one.field))
     if one.field:
         return f"{what}: {member_name(case, one.field)}"
     if one.subject is None:

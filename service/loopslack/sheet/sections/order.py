@@ -2,16 +2,20 @@
 
 from loopslack.calc.order_list import ROOM
 from loopslack.sheet.case import Case
-from loopslack.sheet.lines import Beside, Column, Row, Section, Table
+from loopslack.sheet.lines import Beside, Block, Column, Row, Section, Table, Text
 from loopslack.sheet.sections.fluids import fluid_name
+from loopslack.sheet.sections.names import valve_size
 from loopslack.sheet.sections.result import article
 
 MOST_PARTS = 60
 
 
 def order(case: Case) -> Section:
-    """The order list beside the contents."""
-    return Section("order", case.words("section.order"), (Beside((_items(case),), (_contents(case),)),))
+    """The order list beside the contents; where no vessel is chosen, that nothing is to be ordered by it."""
+    lists: tuple[Block, ...] = (Beside((_items(case),), (_contents(case),)),)
+    if not case.chosen:
+        lists = (Text(case.words("order.not-chosen"), "stop"), *lists)
+    return Section("order", case.words("section.order"), lists)
 
 
 def _items(case: Case) -> Table:
@@ -47,7 +51,7 @@ def _items(case: Case) -> Table:
     size = (
         words("order.beyond-table")
         if found.relief_nominal_size is None
-        else f"DN {found.relief_nominal_size}"
+        else valve_size(case, found.relief_nominal_size)
     )
     stamped = say(case.write.gauge(case.loop.relief.set_pressure))
     rows.append((words("order.relief", set=stamped), size))

@@ -119,7 +119,11 @@ def article(case: Case, id: str) -> str:
 
 def generic_size(case: Case, id: str) -> str:
     """A generic size by its litres, which are its name in any units."""
-    return f"{case.say.plain(id.removeprefix('preferred-').replace('-', '.'))}{NO_BREAK}L"
+    litres = id.removeprefix("preferred-").replace("-", ".")
+    named = f"{case.say.plain(litres)}{NO_BREAK}L"
+    if case.write.system == "metric":
+        return named
+    return f"{case.say(case.write.volume(float(litres) / 1000))} ({named})"
 
 
 def _range(case: Case) -> str:

@@ -42,9 +42,9 @@ def rules(case: Case) -> Section | None:
 
 def _cells(case: Case, rule: RuleComparison) -> tuple[str, ...]:
     words, say = case.words, case.say
-    counts = words.or_else(f"rule.{rule.rule}.counts", plain(rule.counts))
+    counts = case.prose(words.or_else(f"rule.{rule.rule}.counts", plain(rule.counts)))
     if rule.nominal_volume is None:
-        reason = words.or_else(f"rule.{rule.rule}.refuses", words.phrase(plain(rule.reason or "")))
+        reason = words.or_else(f"rule.{rule.rule}.refuses", case.phrase(plain(rule.reason or "")))
         return (
             rule_title(case, rule),
             f"{counts} {reason}",

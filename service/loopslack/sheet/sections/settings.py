@@ -18,6 +18,7 @@ from loopslack.sheet.lines import (
     Table,
     Text,
 )
+from loopslack.sheet.sections.fluids import fluid_name
 
 
 def settings(case: Case) -> Section:
@@ -39,11 +40,11 @@ def settings(case: Case) -> Section:
     lower = Beside((_readings(case, card), steps), () if figure is None else (table,))
     names = ("blank.date", "blank.temperature", "blank.pressure", "blank.name")
     blanks = Blanks(tuple(words(name) for name in names))
-    title = words("settings.card")
+    card_blocks = (upper, lower, Text(words("caution.scalding"), "lead"), blanks)
     return Section(
         "settings",
         words("section.settings"),
-        (Card(title, (upper, lower, blanks)),),
+        (Card(words("settings.card"), card_blocks),),
         on_new_page=True,
     )
 
@@ -51,7 +52,9 @@ def settings(case: Case) -> Section:
 def _facts(case: Case, card: SettingsCard) -> list[Fact]:
     words, say = case.words, case.say
     vessel = case.vessel
-    found = []
+    freezing = words("fact.fluid-more", freezing=say(case.result.order.freezing_point))
+    found = [Fact(words("head.project"), case.project)] if case.project else []
+    found.append(Fact(words("fact.fluid"), fluid_name(case), freezing))
     if vessel is not None:
         found.append(
             Fact(
@@ -112,22 +115,24 @@ def _filled(card: SettingsCard) -> Pressure | None:
 
 
 def _by_temperature(case: Case, card: SettingsCard) -> Table:
+    """Fill pressures at the vessel; what the gauge then shows where it stands at another height."""
     words, say = case.words, case.say
-    rows = []
-    for row in card.by_temperature:
-        if row.recommended is None:
-            rows.append(
-                Row((say(row.temperature), "\N{EN DASH}", words(f"omitted.{row.omitted}"), "\N{EN DASH}"))
-            )
-        else:
-            rows.append(Row((say(row.temperature), say(row.lower), say(row.recommended), say(row.upper))))
-    columns = (
+    apart = card.gauge_height.value != 0
+    columns = [
         Column(words("column.day"), "number"),
         Column(words("figure.lowest"), "number"),
         Column(words("figure.recommended"), "number"),
         Column(words("figure.highest"), "number"),
-    )
-    return Table(words("table.fill"), columns, tuple(rows), _note(case, card), compact=True)
+        Column(words("figure.recommended-on-gauge"), "number"),
+    ]
+    rows = []
+    for row in card.by_temperature:
+        numbers = [say(one) for one in (row.lower, row.recommended, row.upper, row.reading)]
+        if row.recommended is None:
+            numbers[1] = words(f"omitted.{row.omitted}")
+        rows.append(Row((say(row.temperature), *(numbers if apart else numbers[:3]))))
+    shown = columns if apart else columns[:4]
+    return Table(words("table.fill"), tuple(shown), tuple(rows), _note(case, card), compact=True)
 
 
 def _note(case: Case, card: SettingsCard) -> str:

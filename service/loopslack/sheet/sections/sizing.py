@@ -6,6 +6,7 @@ from loopslack.sheet.lines import Block, Column, Row, Section, Table, Text
 from loopslack.sheet.sections.result import article, generic_size
 
 MOST_REFUSED = 12
+_NAMED = 6  # of the vessels that would do as well
 
 
 def sizing(case: Case) -> Section:
@@ -45,9 +46,8 @@ def _volumes(case: Case) -> Table:
         if sized.floor is not None:
             raised.append(words("volume.floor", name=words(f"volume.{name}"), floor=say(sized.floor)))
         largest = words("volume.unbounded") if sized.largest is None else say(sized.largest)
-        rows.append(
-            Row((words(f"volume.{name}"), least, largest, say(sized.cooling_content), say(sized.precharge)))
-        )
+        cooling = say(sized.cooling_content) if sized.cooling_content.value else words("word.none")
+        rows.append(Row((words(f"volume.{name}"), least, largest, cooling, say(sized.precharge))))
     columns = (
         Column(words("column.survives")),
         Column(words("column.smallest"), "number"),
@@ -75,8 +75,10 @@ def _choice(case: Case) -> str:
             f"{one.pieces} \N{MULTIPLICATION SIGN} {_short(case, one.id)}"
             if one.pieces > 1
             else _short(case, one.id)
-            for one in selection.alternatives[:6]
+            for one in selection.alternatives[:_NAMED]
         )
+        if others > _NAMED:
+            names = f"{names}, …"
         told = f"{told} {words('selection.alternatives', number=others, names=names)}"
     return told
 
@@ -103,7 +105,7 @@ def _refused(case: Case) -> Table | None:
     rows = tuple(Row((", ".join(names), reasons)) for reasons, names in alike.items())
     columns = (Column(words("column.candidate")), Column(words("column.refused")))
     note = words("selection.more", number=len(refused) - len(shown)) if len(refused) > len(shown) else ""
-    return Table(words("table.refused"), columns, rows, note, compact=True)
+    return Table(words("table.refused"), columns, rows, note, compact=True, whole=True)
 
 
 def _reason(case: Case, reason: RefusalReason) -> str:
@@ -114,5 +116,6 @@ def _reason(case: Case, reason: RefusalReason) -> str:
         return told
     if reason.limit.value == 0:
         return words("refusal.left", reason=told, value=say(reason.value))
-    told = words("refusal.numbers", reason=told, value=say(reason.value), limit=say(reason.limit))
+    value, limit = say.apart(reason.value, reason.limit)
+    told = words("refusal.numbers", reason=told, value=value, limit=limit)
     return told if reason.short_by is None else words("refusal.short", told=told, short=say(reason.short_by))

@@ -67,5 +67,10 @@ def _table(case: Case) -> Table:
         *(Column(state_name(case, state.scenario), "value") for state in states),
     )
     return Table(
-        words("table.stagnation"), columns, tuple(rows), words("table.stagnation-note"), compact=True
+        words("table.stagnation"),
+        columns,
+        tuple(rows),
+        words("table.stagnation-note"),
+        compact=True,
+        whole=True,
     )
