@@ -198,3 +198,41 @@ def test_the_derivation_keeps_every_digit_so_that_it_can_be_redone() -> None:
         if step.answers:
             assert f"{step.number} | {step.name.replace('degC', '°C')}" in shown
             assert say.derived(step.value) in shown
+
+
+def test_a_gauge_at_another_height_is_told_what_it_shows_on_the_day() -> None:
+    """It stands 0.8 m below the vessel: whoever fills by it must not stop at the pressure of the vessel."""
+    card = asked("boat-shed-long-stock").answer.result.settings
+    assert card is not None
+    rows = {row.temperature.value: row for row in card.by_temperature}
+    filled = next(one.reading for one in card.readings if one.state == "fill")
+    at_fill = rows[card.window.temperature.value]
+    assert at_fill.reading == filled
+    for row in rows.values():
+        assert row.reading is not None
+        assert row.recommended is not None
+        assert row.reading.value - row.recommended.value == pytest.approx(
+            0.8 * 9.81 * 1.037e3 / 1e5, rel=0.02
+        )
+    shown = table(sheet("boat-shed-long-stock"), "Fill pressure by the temperature of the day")
+    assert [row.cells[-1] for row in shown] == [numerals("en")(row.reading) for row in card.by_temperature]
+
+
+def test_a_gauge_beside_the_vessel_needs_no_column_of_its_own() -> None:
+    card = asked("wash-house").answer.result.settings
+    assert card is not None
+    assert all(row.reading == row.recommended for row in card.by_temperature)
+    assert len(table(sheet("wash-house"), "Fill pressure by the temperature of the day")[0].cells) == 4
+
+
+def test_a_number_that_misses_its_limit_never_reads_like_it() -> None:
+    """42 L do not miss 42 L; the candidate's 42 L miss the 42.004 L that are needed."""
+    refused = table(sheet("boat-shed-long-stock"), "Refused candidates, the nearest last")
+    reasons = [reason for row in refused for reason in row.cells[1].split("; ")]
+    numbers = [
+        re.search(r": (\S+).* where (\S+).* is needed", reason.replace("\u00a0", " ")) for reason in reasons
+    ]
+    assert numbers
+    for found, reason in zip(numbers, reasons, strict=True):
+        assert found is not None
+        assert found[1] != found[2], reason

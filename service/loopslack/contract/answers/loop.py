@@ -205,9 +205,7 @@ class FillRow(AnswerPart, frozen=True, kw_only=True):
     lower: Annotated[q.Pressure | None, text("Lowest fill pressure at this temperature.")] = None
     recommended: Annotated[q.Pressure | None, text("Recommended fill pressure at this temperature.")] = None
     upper: Annotated[q.Pressure | None, text("Highest fill pressure at this temperature.")] = None
-    reading: Annotated[
-        q.Pressure | None, text("What the gauge, at its own height, shows at the recommended fill pressure.")
-    ] = None
+    reading: Annotated[q.Pressure | None, text("What the gauge shows at the recommended one.")] = None
     omitted: Annotated[OmittedReason | None, text("Why there are no numbers.", "fluid-frozen")] = None
 
 

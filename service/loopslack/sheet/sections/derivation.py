@@ -58,7 +58,9 @@ def derivation(case: Case) -> Section | None:
 def told_name(case: Case, english: str) -> str:
     """A name of the derivation in the sheet's language; as the answer has it where a word of it is not known."""
     told = case.words.name(english, case.own_names)
-    return case.words.unit_words(plain(english)) if told is None else told
+    if told is None:
+        told = case.words.unit_words(plain(english))
+    return case.prose(told) if "degC" in english else told
 
 
 def _columns(case: Case) -> tuple[Column, ...]:
