@@ -34,6 +34,7 @@ from loopslack.contract.refusals import Refused
 from loopslack.contract.writing.common import provenance
 from loopslack.observability import READINESS, Lines, LoopLag, set_up_logging
 from loopslack.settings import Settings, SettingsError, settings_from
+from loopslack.sheet.pdf import too_late_to_fork
 
 SWITCH_SECONDS = 0.0005
 """How long a thread may hold the interpreter: one is used to look for all faults of a long body."""
@@ -49,7 +50,7 @@ class Application:
         self.lag = LoopLag()
         self.readiness = READINESS
         operations = tuple(operations)
-        costly = Side(lambda: costly_work(operations, settings.nesting), self.readiness)
+        costly = Side(lambda: costly_work(operations, settings.nesting), self.readiness, too_late_to_fork)
         many = Side(lambda: many_work(settings), self.readiness)
         self._sides = (costly, many)
         self.costly = Costly(costly, settings.costly_waiting, settings.deadline_seconds)

@@ -201,3 +201,26 @@ def test_a_closed_side_has_no_process_left():
     side.close()
     assert dies(process)
     assert dies(nursery)
+
+
+def test_where_it_is_too_late_to_fork_the_question_fails_at_once_and_says_why():
+    side = Side(lambda: work, Readiness(), lambda: "fork before")
+    with pytest.raises(RuntimeError, match="fork before"):
+        asyncio.run(side.ask(b"who", 5))
+
+
+def test_what_was_forked_in_time_goes_on_when_it_is_too_late_for_another():
+    reasons = [""]
+    side = Side(lambda: work, Readiness(), lambda: reasons[0])
+    side.start()
+    reasons[0] = "fork before"
+
+    async def scene():
+        first = await side.ask(b"who", 5)
+        with suppress(SideLostError):
+            await side.ask(b"exit 1", 5)
+        return first, await side.ask(b"who", 5)
+
+    first, second = asyncio.run(scene())
+    assert first != second
+    side.close()

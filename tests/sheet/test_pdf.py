@@ -102,3 +102,10 @@ def test_without_the_typesetter_it_is_refused_in_words_before_anything_is_comput
         typesetter.cache_clear()
     assert refused.value.code == "not-installed"
     assert "HTML" in refused.value.remedy
+
+
+def test_a_process_that_has_set_a_sheet_is_not_to_be_forked_for_others() -> None:
+    typesetter.cache_clear()
+    assert module.too_late_to_fork() == ""
+    wash_house.__wrapped__()
+    assert "fork before" in module.too_late_to_fork()

@@ -5,7 +5,9 @@ be in two processes. An interpreter started afresh would take a second and 50 MB
 it serves, and the nursery, which stays as it was, forks whenever it is told to: a few milliseconds, and memory
 shared until it is written. It ends with its worker, however that ends, and takes what it forked with it.
 
-Nothing here knows what a side process does.
+Nothing here knows what a side process does. It may be something that a fork breaks, if its library has begun threads in
+the process that is forked: they are missing in the new one, which waits for them until its deadline. Who makes a
+nursery says when that is so, and it then refuses to fork.
 """
 
 import asyncio
@@ -54,16 +56,25 @@ class NurseryLostError(Exception):
 class Nursery:
     """The nursery as its worker sees it: begins a side process, or ends it. There is one at a time."""
 
-    def __init__(self, prepare: Callable[[], Work]) -> None:
+    def __init__(self, prepare: Callable[[], Work], too_late: Callable[[], str] = str) -> None:
         self._prepare = prepare
+        self._too_late = too_late
         self._control: socket.socket | None = None
         self._process = 0
         self._begun = 0
 
     def start(self) -> socket.socket:
-        """Fork the nursery, unless that has been done; before the event loop runs where there is a choice."""
+        """Fork the nursery, unless that has been done; before the event loop runs where there is a choice.
+
+        Raises:
+            RuntimeError: it is too late; the text says why.
+
+        """
         if self._control is not None:
             return self._control
+        reason = self._too_late()
+        if reason:
+            raise RuntimeError(reason)
         ours, theirs = socket.socketpair()
         self._process = os.fork()
         if self._process == 0:

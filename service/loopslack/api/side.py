@@ -43,10 +43,15 @@ class _Line:
 
 
 class Side:
-    """One kind of work and the process that does it, begun when it is first needed."""
+    """One kind of work and the process that does it, begun when it is first needed.
 
-    def __init__(self, prepare: Callable[[], Work], readiness: Readiness) -> None:
-        self._nursery = Nursery(prepare)
+    `too_late` says why this process can no longer be forked for it, or nothing.
+    """
+
+    def __init__(
+        self, prepare: Callable[[], Work], readiness: Readiness, too_late: Callable[[], str] = str
+    ) -> None:
+        self._nursery = Nursery(prepare, too_late)
         self._readiness = readiness
         self._line: _Line | None = None
 
@@ -62,6 +67,7 @@ class Side:
         Raises:
             SideLostError: the process ended without an answer; the next message gets a new one.
             Refused: 503, because no process can be begun any more and the worker is about to stop.
+            RuntimeError: none was begun in time, and now it is too late.
 
         """
         begun = monotonic()

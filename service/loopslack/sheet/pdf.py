@@ -92,6 +92,17 @@ def typesetter() -> _Typesetter:
     return _Typesetter()
 
 
+def too_late_to_fork() -> str:
+    """Why this process must not be forked for one that sets sheets, or nothing where it may be.
+
+    The typesetter begins threads with its first sheet. A fork takes none of them along, but all that says they are
+    there: the new process would wait for them for good.
+    """
+    if typesetter.cache_info().currsize:
+        return "this process has set a sheet as PDF itself, and one forked from it could not: fork before"
+    return ""
+
+
 def pdf(sheet: Sheet) -> bytes:
     """The whole sheet as PDF. Raises ``NotInstalled`` where the typesetter is missing."""
     typeset = typesetter()
