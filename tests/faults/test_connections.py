@@ -152,8 +152,7 @@ def test_a_connection_beyond_the_limit_is_refused_with_503_and_room_comes_back(s
     held = [server.connect() for _ in range(8)]
     try:
         for connection in held:
-            connection.sendall(REQUEST)
-            read_answer(connection)
+            connection.sendall(REQUEST.replace(b"/echo", b"/slow"))
         with server.connect() as surplus:
             surplus.sendall(REQUEST)
             received, seconds = read_until_closed(surplus)
@@ -169,6 +168,38 @@ def test_a_connection_beyond_the_limit_is_refused_with_503_and_room_comes_back(s
     with server.connect() as connection:
         connection.sendall(REQUEST)
         assert read_answer(connection).startswith(b"HTTP/1.1 200 ")
+
+
+def test_of_idle_connections_the_one_idle_longest_gives_way_to_a_new_one(server: Server) -> None:
+    held = [server.connect() for _ in range(8)]
+    try:
+        for connection in held:
+            connection.sendall(REQUEST)
+            read_answer(connection)
+        held[0].sendall(REQUEST)  # so that the second has been idle longest
+        read_answer(held[0])
+        with server.connect() as another:
+            another.sendall(REQUEST)
+            assert read_answer(another).startswith(b"HTTP/1.1 200 ")
+            assert read_until_closed(held[1])[0] == b""
+            for connection in (held[0], *held[2:]):
+                connection.sendall(REQUEST)
+                assert read_answer(connection).startswith(b"HTTP/1.1 200 ")
+    finally:
+        for connection in held:
+            connection.close()
+    time.sleep(0.3)
+
+
+def test_after_a_flood_of_kept_connections_others_find_room_at_once(server: Server) -> None:
+    for _ in range(5):
+        flood = [server.connect() for _ in range(8)]
+        for connection in flood:
+            connection.sendall(REQUEST)
+            assert read_answer(connection).startswith(b"HTTP/1.1 200 ")
+    for connection in flood:
+        connection.close()
+    time.sleep(0.3)
 
 
 def test_as_many_connections_may_wait_as_are_configured(tmp_path: Path) -> None:

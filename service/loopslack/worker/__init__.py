@@ -17,7 +17,8 @@ from gunicorn.asgi.protocol import ASGIProtocol  # type: ignore[import-untyped] 
 from gunicorn.workers import gasgi  # type: ignore[import-untyped]  # as above
 
 from loopslack.observability import READINESS
-from loopslack.worker.connection import GuardedProtocol, Limits
+from loopslack.worker.connection import GuardedProtocol
+from loopslack.worker.limits import Limits
 
 
 class DateHeader:
@@ -47,6 +48,9 @@ class Worker(gasgi.ASGIWorker):
         super().__init__(*args, **kwargs)
         self.limits = Limits()
         self.connections: set[GuardedProtocol] = set()
+        # Kept-alive connections without a request, the one that has been so longest first.
+        self.idle: dict[GuardedProtocol, None] = {}
+        self._giving_way = 0
         self._listens = False
 
     def load_wsgi(self) -> None:
@@ -55,6 +59,23 @@ class Worker(gasgi.ASGIWorker):
         before_serving = getattr(self.asgi, "before_serving", None)
         if before_serving is not None:
             before_serving()
+
+    def connections_beyond(self, allowed: int) -> int:
+        """How many connections are too many, after idle ones have made what room they can."""
+        surplus: int = self.nr_conns - self._giving_way - allowed
+        while surplus > 0 and self.idle:
+            longest = next(iter(self.idle))
+            del self.idle[longest]
+            if longest.give_way():
+                self._giving_way += 1
+                surplus -= 1
+        return surplus
+
+    def forget(self, connection: GuardedProtocol) -> None:
+        """Note that a connection has gone."""
+        self.connections.discard(connection)
+        self.idle.pop(connection, None)
+        self._giving_way -= connection.gives_way
 
     def notify(self) -> None:
         """Say once a second that the worker lives, or stop where it has lost what it cannot get again."""

@@ -12,19 +12,23 @@ which the requirement files pin; `tests/faults/test_connections.py` opens every 
 # mypy: allow-subclassing-any
 from __future__ import annotations
 
-import json
 import os
 import socket
 import struct
+from array import array
 from collections.abc import Callable
 from contextlib import suppress
+from fcntl import ioctl
 from http import HTTPStatus
+from termios import FIONREAD
 from typing import TYPE_CHECKING, Any
 
 from gunicorn.asgi.protocol import (  # type: ignore[import-untyped]  # gunicorn ships no types
     _REASON_PHRASES,
     ASGIProtocol,
 )
+
+from loopslack.worker.limits import REFUSAL, answer
 
 if TYPE_CHECKING:
     from asyncio import TimerHandle
@@ -39,50 +43,15 @@ LINGER_BYTES = 64_000_000
 """How long a connection may go on sending the body of a request that has been answered, and how much of it."""
 
 
-def answer(status: HTTPStatus, detail: str, extra: str = "") -> bytes:
-    """Write a whole HTTP/1.1 answer that carries a problem document and closes the connection."""
-    problem = {"type": "about:blank", "title": status.phrase, "status": status, "detail": detail}
-    body = json.dumps(problem).encode("ascii")
-    head = (
-        f"HTTP/1.1 {status} {status.phrase}\r\nContent-Type: application/problem+json\r\n"
-        f"Cache-Control: no-store\r\nContent-Length: {len(body)}\r\n{extra}Connection: close\r\n\r\n"
-    )
-    return head.encode("latin-1") + body
-
-
-REFUSAL = answer(
-    HTTPStatus.SERVICE_UNAVAILABLE,
-    "This worker serves as many connections as it may; try again in a second.",
-    "Retry-After: 1\r\n",
-)
-
-
-def seconds_allowed(variable: str, default: float) -> float:
-    """Read a time limit from the environment, in seconds; a limit cannot be switched off.
-
-    Raises:
-        ValueError: the variable holds no number between 0.1 s and one hour.
-
-    """
-    text = os.environ.get(variable, "")
-    seconds = float(text) if text else default
-    if not 0.1 <= seconds <= 3600.0:
-        raise ValueError(f"{variable} must lie between 0.1 and 3600 seconds, not {text!r}")
-    return seconds
-
-
 for _status in HTTPStatus:  # gunicorn has no phrase for some, such as 406, and would call it unknown
     _REASON_PHRASES.setdefault(_status.value, _status.phrase)
 
 
-class Limits:
-    """The time limits of a connection in seconds, read from the environment once per worker."""
-
-    __slots__ = ("head", "reader")
-
-    def __init__(self) -> None:
-        self.head = seconds_allowed("LOOPSLACK_HEAD_SECONDS", 5.0)
-        self.reader = seconds_allowed("LOOPSLACK_READER_SECONDS", 30.0)
+def _unread(handle: int) -> int:
+    """How many bytes have arrived on a connection that nobody has read yet."""
+    count = array("i", [0])
+    ioctl(handle, FIONREAD, count)
+    return count[0]
 
 
 class GuardedProtocol(ASGIProtocol):
@@ -97,8 +66,10 @@ class GuardedProtocol(ASGIProtocol):
     * A client that is answered before it has sent its whole request (too long a body, one of the wrong type) may go
       on for a while; what it sends is dropped. Closed at once, the connection would be reset by the unread bytes, and
       the answer lost with it.
-    * Beyond `worker_connections` a connection is answered 503 without its request being looked at, and given a
-      moment to take the answer; beyond twice that number it is closed right behind the answer.
+    * Where `worker_connections` are open, a new connection takes the place of the kept-alive one that has been idle
+      longest: after a flood such ones would hold every place until their idle limit.
+    * Where none is idle, it is answered 503 without its request being looked at, and given a moment to take the
+      answer; beyond twice that number it is closed right behind the answer.
 
     Not covered: HTTP/2, which the configuration does not switch on; a proxy that speaks it speaks HTTP/1.1
     here.
@@ -116,13 +87,14 @@ class GuardedProtocol(ASGIProtocol):
         self._early = b""
         self._told_off = False
         self._to_drop: int | None = None
+        self.gives_way = False
 
     def connection_made(self, transport: Any) -> None:
         """Refuse the connection if there are too many, else start to wait for its first request."""
         super().connection_made(transport)
         self.worker.connections.add(self)
         allowed = self.cfg.worker_connections
-        self._refused = self.worker.nr_conns > allowed
+        self._refused = self.worker.connections_beyond(allowed) > 0
         if self.worker.nr_conns > 2 * allowed:
             self._drop_what_has_come()
             self._safe_write(REFUSAL)
@@ -135,8 +107,9 @@ class GuardedProtocol(ASGIProtocol):
 
     def data_received(self, data: bytes) -> None:
         """Read on, unless the connection has been refused: then what comes is dropped."""
-        if self._refused:
+        if self._refused or self.gives_way:
             return
+        self.worker.idle.pop(self, None)
         if self._to_drop is not None:
             self._drop(data)
         elif self._is_answering():
@@ -172,7 +145,7 @@ class GuardedProtocol(ASGIProtocol):
         """Forget the connection and its timers."""
         for name in tuple(self._timers):
             self._stop(name)
-        self.worker.connections.discard(self)
+        self.worker.forget(self)
         super().connection_lost(exc)
 
     def close_if_idle(self) -> None:
@@ -182,6 +155,15 @@ class GuardedProtocol(ASGIProtocol):
         """
         if self.req_count > 1 and self._awaiting_request and not self._head_begun:
             self._close()
+
+    def give_way(self) -> bool:
+        """Close to make room for another, unless the next request has just arrived, unread."""
+        connection = self.transport.get_extra_info("socket")
+        if self._closed or connection is None or _unread(connection.fileno()):
+            return False
+        self.gives_way = True
+        self._close()
+        return True
 
     def _is_answering(self) -> bool:
         """Whether a request has come completely and has not been put away yet."""
@@ -216,6 +198,7 @@ class GuardedProtocol(ASGIProtocol):
             self._close()
         else:
             super()._arm_keepalive_timer()
+            self.worker.idle[self] = None
 
     def _send_error_response(self, status: int, message: str, extra_headers: Any = ()) -> None:
         """Answer an error of the connection itself as a problem document, like the application's own."""
