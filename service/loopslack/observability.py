@@ -171,11 +171,12 @@ class LoopLag:
 
     @property
     def now(self) -> float:
-        """How late it is at this moment, s: as measured, or more where the turn that is on takes longer.
+        """How late it is at this moment, s: as measured last, and what the turn that is on takes beyond.
 
-        A flood brings hundreds of requests in one turn of the loop; the sleep would show it when all are answered.
+        A flood brings hundreds of requests in one turn of the loop; the sleep would show it when all are answered. And
+        what this turn reads may have arrived at any time in the last one: a request waits for both.
         """
-        return max(self.seconds, time.perf_counter() - self._due)
+        return self.seconds + max(0.0, time.perf_counter() - self._due)
 
     async def watch(self) -> None:
         """Measure until cancelled. A late moment counts for a while: it halves with each measurement."""
