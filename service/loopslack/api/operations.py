@@ -3,7 +3,7 @@
 The register of operations is in `v1`; how one is served is in `routes`. Nothing here reads a request.
 """
 
-from collections.abc import Awaitable, Callable, Iterable
+from collections.abc import Awaitable, Callable, Generator, Iterable
 from datetime import date
 from enum import Enum
 from typing import Any, Generic, Literal, TypeVar
@@ -17,6 +17,7 @@ from loopslack.api.many_places import ManyPlaces
 from loopslack.contract.answering.loop import Unfinished
 from loopslack.contract.encoding import encoded
 from loopslack.contract.problems import PROBLEM_TYPES, ProblemType
+from loopslack.kernel.work import finished as run
 from loopslack.settings import Settings
 
 Question = TypeVar("Question")
@@ -47,9 +48,10 @@ class Floor(Struct, frozen=True):
 class Operation(Struct, Generic[Question, Answer], frozen=True, kw_only=True):
     """One operation of the contract.
 
-    `ask` is a plain function from the question to the answer; that of a GET takes nothing and is asked once,
-    when the service starts. An answer of bytes is sent as it is, with `media_type`. An operation that is no
-    single question and answer (a batch, a stream) gives `respond` instead, which reads the request itself.
+    `ask` is a function from the question to the answer, or to `Work` that comes to it with pauses; that of a GET takes
+    nothing and is asked once, when the service starts. An answer of bytes is sent as it is, with `media_type`. An
+    operation that is no single question and answer (a batch, a stream) gives `respond` instead, which reads the request
+    itself.
     """
 
     operation_id: str
@@ -75,7 +77,9 @@ class Operation(Struct, Generic[Question, Answer], frozen=True, kw_only=True):
 
 
 def finished(answer: object) -> tuple[object, bytes]:
-    """An answer of an operation, with the bytes that are sent."""
+    """An answer of an operation, brought to its end where it pauses or was left unfinished, with the bytes to send."""
+    if isinstance(answer, Generator):
+        answer = run(answer)
     told = answer.finish() if isinstance(answer, Unfinished) else answer
     return told, told if isinstance(told, bytes) else encoded(told)
 

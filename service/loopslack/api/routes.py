@@ -4,7 +4,7 @@ What an operation is stands in `operations`; nothing here knows a particular one
 """
 
 import time
-from collections.abc import Callable, Iterable
+from collections.abc import Callable, Generator, Iterable
 from datetime import UTC, date, datetime
 from datetime import time as time_of_day
 from email.utils import format_datetime
@@ -21,6 +21,7 @@ from loopslack.api.record import internal_fault, log_fault, note_of
 from loopslack.api.reference import Page, page_route, reference_page
 from loopslack.api.reply import Reply, problem_reply
 from loopslack.api.side_words import Answered, judged
+from loopslack.api.turns import in_turns
 from loopslack.api.wrappers import nothing_here
 from loopslack.contract.answering.loop import Unfinished
 from loopslack.contract.refusals import Refused, refusal_of
@@ -77,7 +78,7 @@ def _answering(operation: Operation[Any, Any], floor: Floor) -> Handler:
         asked = await decode_in_steps(body, question, settings.nesting)
         costly = operation.costly is True or (is_costly is not None and is_costly(asked))
         try:
-            answered = None if costly else _at_once(operation, ask, asked)
+            answered = None if costly else await _here(operation, ask, asked)
             if answered is None:
                 answered = await floor.costly.ask(operation.operation_id, body)
         except Refused as refused:
@@ -91,18 +92,20 @@ def _answering(operation: Operation[Any, Any], floor: Floor) -> Handler:
     return answer
 
 
-def _at_once(operation: Operation[Any, Any], ask: Callable[[Any], Any], asked: object) -> Answered | None:
-    """The answer computed here and now, or None where it turns out to take too long for that."""
-    begun = time.perf_counter()
+async def _here(operation: Operation[Any, Any], ask: Callable[[Any], Any], asked: object) -> Answered | None:
+    """The answer computed here, with a pause where it takes long, or None where that is too long for here."""
+    begun, waited = time.perf_counter(), 0.0
     try:
         answer = ask(asked)
+        if isinstance(answer, Generator):
+            answer, waited = await in_turns(answer)
         if isinstance(answer, Unfinished):
             return None
         told, sent = finished(answer)
     except CalculationError as error:
         raise refusal_of(error) from None
     designs = judged(operation.outcomes(told)) if operation.outcomes is not None else ()
-    return Answered(sent, designs, time.perf_counter() - begun)
+    return Answered(sent, designs, time.perf_counter() - begun - waited)
 
 
 def _responding(operation: Operation[Any, Any], floor: Floor) -> Handler:

@@ -3,6 +3,8 @@
 from collections.abc import Sequence
 from typing import NamedTuple
 
+from msgspec.structs import replace
+
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.fit import Fit
 from loopslack.calc.judge import required
@@ -12,8 +14,9 @@ from loopslack.calc.nearest import Asked, judged, nearest
 from loopslack.calc.scenarios import BASE, Scenario
 from loopslack.calc.selection import Selection, choose, with_power_left
 from loopslack.calc.selector import Selector
-from loopslack.calc.sizing.volumes import CoolingMode, Sized, size
+from loopslack.calc.sizing.volumes import CoolingMode, Sized, Trail, size
 from loopslack.kernel.errors import CalculationError
+from loopslack.kernel.work import Work, finished
 
 
 class Request(NamedTuple):
@@ -73,27 +76,28 @@ def design(loop: Loop, request: Request) -> Design:
     Raises ``CalculationError`` where the question itself cannot be answered, such as a state outside the fluid's
     range. An unsound loop is no error: it is a design with a verdict.
     """
-    return judged_design(selected(loop, request))
+    return finished(judging(finished(selecting(loop, request))))
 
 
-def selected(loop: Loop, request: Request) -> Selected:
+def selecting(loop: Loop, request: Request) -> Work[Selected]:
     """The first part of a design: size the loop and compare the candidates. Raises as ``design`` does."""
     analysis = Analysis(loop)
-    volumes, refused = _volumes(analysis, request)
+    volumes, refused = yield from _volumes(analysis, request)
     scenarios = required(analysis, request.policy)
     selection = _select(analysis, scenarios, volumes.recommended, request)
     return Selected(analysis, request, volumes, selection, refused)
 
 
-def judged_design(found: Selected) -> Design:
+def judging(found: Selected) -> Work[Design]:
     """The second part: judge the chosen vessel, or find the candidate that fails least, which takes longer."""
     analysis, request, volumes, selection, refused = found
     asked = Asked(
         analysis, request.policy, request.cooling, request.fill_pressure, request.accept_without_boiling
     )
-    shown = selection.chosen or nearest(asked, selection.refused)
+    shown = selection.chosen or (yield from nearest(asked, selection.refused))
+    yield
     if request.fill_pressure is not None:
-        shown = shown._replace(window=shown.window._replace(recommended=request.fill_pressure))
+        shown = replace(shown, window=replace(shown.window, recommended=request.fill_pressure))
     judgement = judged(asked, shown, None if refused or selection.chosen is None else shown.window)
     counted = {scenario.id for scenario in asked.scenarios}
     left = max(
@@ -106,9 +110,10 @@ def judged_design(found: Selected) -> Design:
     return Design(analysis.loop, request, analysis, volumes, selection, shown, judgement, chosen, refused)
 
 
-def _volumes(analysis: Analysis, request: Request) -> tuple[Volumes, dict[str, str]]:
+def _volumes(analysis: Analysis, request: Request) -> Work[tuple[Volumes, dict[str, str]]]:
     """The three volumes; a scenario whose properties are unknown has none, and says why."""
     refused: dict[str, str] = {}
+    trail = Trail()
 
     def sized(name: str, scenarios: Sequence[Scenario]) -> Sized | None:
         try:
@@ -118,22 +123,20 @@ def _volumes(analysis: Analysis, request: Request) -> tuple[Volumes, dict[str, s
                 request.cooling,
                 analysis.loop.criteria.membrane_limit,
                 accept_without_boiling=request.accept_without_boiling,
+                trail=trail,
             )
         except CalculationError as error:
             refused[name] = str(error)
             return None
 
-    base = sized("base", (BASE,))
-    if request.policy == "none":
-        return Volumes(base, base, sized("robust", analysis.every)), refused
-    return (
-        Volumes(
-            base,
-            sized("recommended", required(analysis, request.policy)),
-            sized("robust", analysis.every),
-        ),
-        refused,
-    )
+    base = recommended = sized("base", (BASE,))
+    yield
+    if request.policy != "none":
+        recommended = sized("recommended", required(analysis, request.policy))
+        yield
+    robust = sized("robust", analysis.every)
+    yield
+    return Volumes(base, recommended, robust), refused
 
 
 def _select(

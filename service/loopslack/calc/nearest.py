@@ -16,6 +16,7 @@ from loopslack.calc.scenarios import BASE, Scenario
 from loopslack.calc.selection import Refusal
 from loopslack.calc.sizing.volumes import CoolingMode
 from loopslack.calc.window import Window
+from loopslack.kernel.work import Work
 
 _SPREAD = (
     5  # kinds of a long list judged all over it: each takes milliseconds, and short questions must stay short
@@ -50,7 +51,7 @@ class Asked(NamedTuple):
         return self.analysis.loop.criteria.membrane_limit if own is None else own
 
 
-def nearest(asked: Asked, refused: Sequence[Refusal]) -> Fit:
+def nearest(asked: Asked, refused: Sequence[Refusal]) -> Work[Fit]:
     """The refused candidate that fails least; they come in rank, as it would best be filled.
 
     By its verdict, then by the core checks that fail in the base case and under the doubts that count, then by what
@@ -62,9 +63,10 @@ def nearest(asked: Asked, refused: Sequence[Refusal]) -> Fit:
     rows = sorted(kinds.values(), key=lambda row: (row[1].vessel.nominal_volume * row[1].pieces, row[0]))
     found: dict[int, tuple[Badness, Fit]] = {}
 
-    def look(numbers: Sequence[int]) -> int:
+    def look(numbers: Sequence[int]) -> Work[int]:
         for number in numbers:
             if number not in found:
+                yield
                 place, refusal = rows[number]
                 fitted = best_fit(
                     asked.analysis, asked.scenarios, refusal.vessel, refusal.pieces, asked.cooling
@@ -74,11 +76,11 @@ def nearest(asked: Asked, refused: Sequence[Refusal]) -> Fit:
         return min(found, key=lambda number: found[number][0])
 
     if len(rows) <= _SPREAD + _BESIDE:
-        best = look(range(len(rows)))
+        best = yield from look(range(len(rows)))
     else:
-        middle = look([round(k * (len(rows) - 1) / (_SPREAD - 1)) for k in range(_SPREAD)])
+        middle = yield from look([round(k * (len(rows) - 1) / (_SPREAD - 1)) for k in range(_SPREAD)])
         first = max(0, middle - _BESIDE // 2)
-        best = look(range(first, min(len(rows), first + _BESIDE + 1)))
+        best = yield from look(range(first, min(len(rows), first + _BESIDE + 1)))
     return found[best][1]
 
 

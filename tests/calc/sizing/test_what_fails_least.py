@@ -19,6 +19,7 @@ from loopslack.calc.sizing.volumes import size
 from loopslack.contract.answering.loop import design_loop, size_vessel
 from loopslack.contract.questions.operations import LoopDesignQuestion, VesselSizingQuestion
 from loopslack.kernel import kinds
+from loopslack.kernel.work import finished
 from questions.wash_house import wash_house
 
 Plain = dict[str, Any]
@@ -165,7 +166,7 @@ def test_of_a_long_list_some_eight_kinds_are_judged(monkeypatch: pytest.MonkeyPa
     analysis = Analysis(loop())
     stock = [Vessel(id=f"{k}", nominal_volume=0.01 + 0.0005 * k) for k in range(volumes)]
     asked = Asked(analysis, "single", "size", None)
-    found = nearest(asked, [Refusal(vessel, 1, NO_WINDOW) for vessel in stock for _ in range(2)])
+    found = finished(nearest(asked, [Refusal(vessel, 1, NO_WINDOW) for vessel in stock for _ in range(2)]))
     assert len(counted) <= 9
     if volumes <= 8:
         assert len(counted) == volumes
@@ -181,9 +182,9 @@ def test_among_equals_the_one_with_fewer_reasons_and_then_the_first_in_rank_is_s
         Vessel(id=name, nominal_volume=factor * sized.smallest) for name, factor in (("a", 1.2), ("b", 1.3))
     )
     few, more = NO_WINDOW, 2 * NO_WINDOW
-    assert nearest(asked, [Refusal(one, 1, few), Refusal(other, 1, few)]).vessel is one
-    assert nearest(asked, [Refusal(other, 1, few), Refusal(one, 1, few)]).vessel is other
-    assert nearest(asked, [Refusal(one, 1, more), Refusal(other, 1, few)]).vessel is other
+    assert finished(nearest(asked, [Refusal(one, 1, few), Refusal(other, 1, few)])).vessel is one
+    assert finished(nearest(asked, [Refusal(other, 1, few), Refusal(one, 1, few)])).vessel is other
+    assert finished(nearest(asked, [Refusal(one, 1, more), Refusal(other, 1, few)])).vessel is other
 
 
 def test_a_loop_without_a_return_run_is_warned_of() -> None:

@@ -7,7 +7,7 @@ elsewhere, so that a service need not hold its event loop.
 from collections.abc import Callable
 from typing import Generic, NamedTuple, TypeVar
 
-from loopslack.calc.design import Design, Request, Selected, judged_design, selected
+from loopslack.calc.design import Design, Request, Selected, judging, selecting
 from loopslack.calc.existing import Checked, check
 from loopslack.calc.model import Vessel
 from loopslack.contract.advice.loop import Advisor
@@ -25,6 +25,7 @@ from loopslack.contract.writing import loop as write_loop
 from loopslack.contract.writing import sizing as write_sizing
 from loopslack.contract.writing.changes import Asked
 from loopslack.contract.writing.common import CAUTIONS, assumptions, provenance
+from loopslack.kernel.work import Work, finished
 from loopslack.library.vessels import preferred_vessels
 
 A = TypeVar("A")
@@ -44,9 +45,9 @@ class Selecting(NamedTuple):
     selected: Selected
     tolerances: Tolerances
 
-    def judged(self) -> "Designed":
+    def judging(self) -> "Work[Designed]":
         """The design."""
-        return Designed(self.reading, self.choice, judged_design(self.selected), self.tolerances)
+        return Designed(self.reading, self.choice, (yield from judging(self.selected)), self.tolerances)
 
 
 class Designed(NamedTuple):
@@ -60,10 +61,10 @@ class Designed(NamedTuple):
 
 def designed(question: questions.SizingQuestion) -> Designed:
     """Read a question about sizing or design and design the loop."""
-    return _selecting(question).judged()
+    return finished(finished(_selecting(question)).judging())
 
 
-def _selecting(question: questions.SizingQuestion) -> Selecting:
+def _selecting(question: questions.SizingQuestion) -> Work[Selecting]:
     reading, choice, tolerances = read_sizing(question)
     request = Request(
         candidates(choice),
@@ -73,7 +74,8 @@ def _selecting(question: questions.SizingQuestion) -> Selecting:
         reading.accept_without_boiling,
         choice.fill_pressure,
     )
-    return Selecting(reading, choice, selected(reading.loop, request), tolerances)
+    yield
+    return Selecting(reading, choice, (yield from selecting(reading.loop, request)), tolerances)
 
 
 def design_loop(question: questions.LoopDesignQuestion) -> answers.LoopDesignAnswer:
@@ -83,17 +85,18 @@ def design_loop(question: questions.LoopDesignQuestion) -> answers.LoopDesignAns
 
 def design_loop_in_turns(
     question: questions.LoopDesignQuestion,
-) -> answers.LoopDesignAnswer | Unfinished[answers.LoopDesignAnswer]:
-    """Answer a loop design question, or leave the rest where remedies have to be sought.
+) -> Work[answers.LoopDesignAnswer | Unfinished[answers.LoopDesignAnswer]]:
+    """Answer a loop design question with pauses, or leave the rest where remedies have to be sought.
 
     Where nothing was chosen that is known before anything is judged.
     """
-    begun = _selecting(question)
+    begun = yield from _selecting(question)
     if extras.wants_remedies(begun.reading, holds=begun.selected.selection.chosen is not None):
-        return Unfinished(lambda: _design_answer(question, begun.judged()))
-    found = begun.judged()
+        return Unfinished(lambda: _design_answer(question, finished(begun.judging())))
+    found = yield from begun.judging()
     if extras.wants_remedies(found.reading, holds=found.design.judgement.verdict == "holds"):
         return Unfinished(lambda: _design_answer(question, found))
+    yield
     return _design_answer(question, found)
 
 
