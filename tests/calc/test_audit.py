@@ -110,7 +110,7 @@ def test_litres_that_were_drained_or_added_are_found_missing_or_too_much(
 
 @pytest.mark.parametrize(("bar", "celsius"), product([0.15, 0.4, 0.9, -0.3], [5, 15, 18, 40]))
 def test_precharge_that_was_lost_is_found_lost(bar: float, celsius: float) -> None:
-    found = audited(GAS._replace(precharge=GAS.precharge - bar * BAR), temperature=ZERO + celsius)
+    found = audited(replace(GAS, precharge=GAS.precharge - bar * BAR), temperature=ZERO + celsius)
     gas = found.explanations[1]
     assert gas.cause == "precharge"
     assert gas.state is not None
@@ -133,9 +133,9 @@ def test_precharge_that_was_lost_is_found_lost(bar: float, celsius: float) -> No
 def test_a_measured_precharge_decides_and_both_numbers_come_back(
     litres: float, bar: float, explains: str
 ) -> None:
-    now = GAS._replace(precharge=GAS.precharge - bar * BAR)
+    now = replace(GAS, precharge=GAS.precharge - bar * BAR)
     # Measured at another temperature than it was set at.
-    measured = now._replace(precharge=now.precharge * (ZERO + 22) / FIFTEEN, temperature=ZERO + 22)
+    measured = replace(now, precharge=now.precharge * (ZERO + 22) / FIFTEEN, temperature=ZERO + 22)
     found = audited(now, MASS - litres * LITRE * DENSITY, measured=measured)
     assert (found.explains, found.certainty) == (explains, "shown")
     assert found.shown.missing == pytest.approx(litres * LITRE, rel=1e-6, abs=1e-11)
@@ -160,14 +160,14 @@ def test_a_high_reading_is_liquid_rather_than_gas_but_the_worse_explanation_coun
 
 
 def test_what_a_gauge_cannot_tell_needs_no_explanation() -> None:
-    gas = GAS._replace(precharge=GAS.precharge - 0.7 * READING)
+    gas = replace(GAS, precharge=GAS.precharge - 0.7 * READING)
     found = audited(gas)
     assert -READING < found.difference < 0
     assert found.explains == "neither"
 
 
 def test_a_reading_below_the_precharge_means_an_empty_vessel_or_lost_gas() -> None:
-    lost = GAS._replace(precharge=GAS.precharge - 0.8 * BAR)
+    lost = replace(GAS, precharge=GAS.precharge - 0.8 * BAR)
     found = audited(lost)
     liquid, gas = found.explanations
     assert liquid.at_least
@@ -245,7 +245,7 @@ def test_what_to_set_instead_holds_and_adding_what_it_says_gets_there() -> None:
 
 def test_a_vessel_too_small_is_told_by_how_much() -> None:
     small = replace(VESSEL, nominal_volume=0.03)
-    gas = GAS._replace(nominal=0.03)
+    gas = replace(GAS, nominal=0.03)
     found = audit(
         LOOP,
         small,
@@ -294,7 +294,7 @@ def test_random_loops_come_back_from_their_gauges(seed: int) -> None:
     mass = filled_mass(loop, set_up, fill)
     temperature = max(loop.temperatures.fill, loop.fluid.freezing_point + 1.0) + seed % 9
     drained = (seed % 5 - 2) * 0.05 * mass
-    now = set_up._replace(precharge=precharge * (1 - 0.03 * (seed % 3)))
+    now = replace(set_up, precharge=precharge * (1 - 0.03 * (seed % 3)))
     analysis = Analysis(loop)
     pressure = pressure_of(analysis, now, mass - drained, temperature)
     if pressure is None:

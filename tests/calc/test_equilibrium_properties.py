@@ -59,7 +59,7 @@ def test_steam_keeps_its_bounds_and_mass_closes(seed: int, size: float) -> None:
                 * (row[3] + row[4] * (steam.temperature - space.ambient)),
             )
             * row[1]
-            for row in space.rows
+            for row in space.source.rows
             if steam.temperature < row[0]
         )
         assert steam.power <= bound * (1 + 1e-9) + 1e-9

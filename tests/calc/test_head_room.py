@@ -64,7 +64,7 @@ def test_a_little_less_than_the_head_room_holds_and_a_little_more_fails_by_the_n
     gas, mass = filled.gas, filled.mass
 
     def leaked(loss: float) -> Gas:
-        return gas._replace(precharge=gas.precharge - loss)
+        return replace(gas, precharge=gas.precharge - loss)
 
     def topped_up(loss: float) -> float:
         """The mass that shows the old fill pressure again, by Boyle's law."""
@@ -101,7 +101,7 @@ def test_gas_lost_and_made_up_with_liquid_opens_the_valve(case) -> None:
 
 def test_a_vessel_that_fails_as_it_is_has_no_head_room_and_says_by_which_check() -> None:
     _, filled = fitted(90)
-    small = filled._replace(gas=filled.gas._replace(nominal=0.05))
+    small = filled._replace(gas=replace(filled.gas, nominal=0.05))
     for room in head_room(small):
         assert (room.outcome, room.value) == ("none", None)
         assert (room.code, room.scenario) == failing(small)

@@ -54,7 +54,7 @@ def test_every_equilibrium_has_a_pressure_that_holds_its_liquid(low: _Low) -> No
     for nominal in (0.02, 0.04, 0.06, 0.1, 0.3):
         for mass in (2.0, 5.0, 9.0, 14.0):
             for scenario in low.analysis.every:
-                gas = low.gas._replace(nominal=nominal)
+                gas = replace(low.gas, nominal=nominal)
                 found = stagnation(low.analysis, scenario, gas, mass)
                 assert isfinite(found.pressure)
                 if found.regime != "valve-opens":

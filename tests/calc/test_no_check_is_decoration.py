@@ -1,6 +1,7 @@
 """Every check and every doubt decides: replaced by a failing stub, one at a time, the verdict and the vessel change."""
 
 import pytest
+from msgspec.structs import replace
 
 from calc import reference
 from calc.reference import BAR, ZERO, group, loop, run, stagnation_rise
@@ -38,7 +39,7 @@ def designed(policy="single") -> Design:
 
 
 def failing(check: Check) -> Check:
-    return check._replace(verdict="does-not-hold", margin=-1.0)
+    return replace(check, verdict="does-not-hold", margin=-1.0)
 
 
 def test_the_loop_holds_as_it_is() -> None:

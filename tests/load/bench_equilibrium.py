@@ -11,6 +11,8 @@ import sys
 from time import perf_counter
 from typing import NamedTuple
 
+from msgspec.structs import replace
+
 from calc.loops import random_loop
 from calc.test_states_of_rest import charged
 from loopslack.calc.balance import Balance, Mixing, mixing
@@ -78,8 +80,8 @@ def _kind(balance: Balance) -> str:
 def _cost(
     balance: Balance, charge: Charge, mix: Mixing, opening: float, seed: int, size: float
 ) -> Cost | None:
-    other = charge._replace(
-        nominal=1.05 * charge.nominal, filled=1.05 * charge.filled, mass=1.05 * charge.mass
+    other = replace(
+        charge, nominal=1.05 * charge.nominal, filled=1.05 * charge.filled, mass=1.05 * charge.mass
     )
     first = following = float("inf")
     for number in range(AGAIN):

@@ -12,7 +12,7 @@ from msgspec.structs import replace
 from loopslack.calc.cooling import Charged, most_held
 from loopslack.calc.fit import Fit
 from loopslack.calc.scenarios import Scenario
-from loopslack.calc.window import Bounds
+from loopslack.calc.window import FillLaw
 
 Extents = dict[tuple[tuple[float, bool, bool], int], float]
 """Mass (kg) pushed out at a vessel pressure under a reading of the steam: shared by the vessels of one loop."""
@@ -29,7 +29,7 @@ class AcceptanceNeeded:
     def __init__(self, fitted: Fit, scenarios: Sequence[Scenario], extents: Extents | None = None) -> None:
         analysis, window = fitted.analysis, fitted.window
         self.analysis = analysis
-        self.gas = fitted.gas._replace(acceptance=float("inf"))
+        self.gas = replace(fitted.gas, acceptance=float("inf"))
         readings = {scenario.steam_key: replace(scenario, gas_follows=False) for scenario in scenarios}
         self.readings = tuple(readings.values())
         self._extents: Extents = {} if extents is None else extents
@@ -37,7 +37,7 @@ class AcceptanceNeeded:
         base = self.gas.precharge * fill / self.gas.temperature + criteria.fill_above_precharge
         # The least filling that leaves the demanded width below it.
         pressure = max(window.lower + criteria.window_width, base + criteria.window_step)
-        self.mass = Bounds(analysis, (), self.gas).mass(self.gas.nominal, pressure)
+        self.mass = FillLaw(analysis, self.gas).mass(self.gas.nominal, pressure)
 
     @cached_property
     def volume(self) -> float:

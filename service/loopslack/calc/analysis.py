@@ -6,8 +6,8 @@ compared and checked against it. Nothing here knows a vessel.
 
 from copy import copy
 from functools import cached_property
-from typing import NamedTuple
 
+from msgspec import Struct
 from msgspec.structs import replace
 
 from loopslack.calc.balance import Balance, Extent, Mixing, mixing
@@ -18,7 +18,7 @@ from loopslack.kernel.errors import Contradiction
 from loopslack.physics.statics import GRAVITY
 
 
-class SteamCase(NamedTuple):
+class SteamCase(Struct, frozen=True, gc=False):
     """One reading of the steam: its balance, the extent at the final pressure, and where steam meets the station.
 
     ``station`` is the extent at the lowest vessel pressure that keeps steam out of the station: None if no pressure
@@ -88,7 +88,7 @@ class Analysis:
         cooled.content = self.content + change
         cooled.allowance = loop.criteria.fluid_allowance * cooled.content
         cooled.states = self.states.with_more_still(change, cooled.allowance - self.allowance)
-        cooled.mix = self.mix._replace(cool=self.mix.cool + change)
+        cooled.mix = replace(self.mix, cool=self.mix.cool + change)
         filled = change * self.states.fill.vessel_density
         still = change * self.fluid.density(loop.temperatures.hot_liquid)
         cases = {key: _shifted(case, loop, filled, still) for key, case in self._cases.items()}
@@ -133,6 +133,6 @@ def _shifted(case: SteamCase, loop: Loop, filled: float, still: float) -> SteamC
     balance.filled_mass += filled
     balance.still_mass += still
     gain = filled - still
-    final = case.final._replace(expelled=case.final.expelled + gain)
-    station = case.station and case.station._replace(expelled=case.station.expelled + gain)
+    final = replace(case.final, expelled=case.final.expelled + gain)
+    station = case.station and replace(case.station, expelled=case.station.expelled + gain)
     return SteamCase(balance, final, station, case.at_station)

@@ -6,11 +6,14 @@ balance that a loop and a scenario fix; a vessel enters through its liquid when 
 
 from collections.abc import Sequence
 from math import inf
-from typing import NamedTuple
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 from loopslack.calc.model import Branch, CollectorGroup, Loop
 from loopslack.calc.scenarios import Scenario
-from loopslack.calc.steam import Steam, SteamSpace
+from loopslack.calc.steam import SteamSpace
+from loopslack.calc.steam_state import Steam
 from loopslack.kernel.roots import bracketed
 
 Spaces = tuple[Steam, ...]
@@ -18,7 +21,7 @@ Spaces = tuple[Steam, ...]
 _PASCAL = 1e-14  # share of a pressure to which that of the station is found, of the size of its rounding
 
 
-class Extent(NamedTuple):
+class Extent(Struct, frozen=True, gc=False):
     """Steam in every space at one vessel pressure, and the mass pushed out of the loop since filling.
 
     ``expelled`` (kg) is what the vessel takes up on top of its filling; ``unspent`` (W) reaches the station beyond
@@ -45,7 +48,8 @@ def part_emptied(none: Steam, full: Steam, share: float) -> Steam:
     """A space in which a group has evaporated by a share, between none of it and all."""
     if full.emptied <= none.emptied:
         return none
-    return none._replace(
+    return replace(
+        none,
         temperature=full.temperature,
         boiling=True,
         emptied=none.emptied + share * (full.emptied - none.emptied),
@@ -54,7 +58,7 @@ def part_emptied(none: Steam, full: Steam, share: float) -> Steam:
     )
 
 
-class Mixing(NamedTuple):
+class Mixing(Struct, frozen=True, gc=False):
     """Liquid that arrives in the vessel in order: volume (m3) and temperature (K) of the room, return and hot part."""
 
     room: float

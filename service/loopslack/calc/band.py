@@ -17,7 +17,7 @@ from loopslack.calc.levers.pipes import pipe_levers
 from loopslack.calc.levers.plant import plant_levers
 from loopslack.calc.model import CollectorGroup, Loop
 from loopslack.calc.scenarios import BASE
-from loopslack.calc.window import Bounds, Gas
+from loopslack.calc.window import FillLaw, Gas
 from loopslack.kernel.errors import CalculationError
 
 ToleranceId = Literal[
@@ -110,7 +110,7 @@ def _outcome(filling: Filling, fitted: Fit, policy: DoubtPolicy, *, accept_witho
     """Judge a moved loop with the same vessel."""
     try:
         analysis = Analysis(filling.loop)
-        mass = Bounds(analysis, (), filling.gas).filled(filling.gas.nominal, filling.fill)
+        mass = FillLaw(analysis, filling.gas).filled(filling.gas.nominal, filling.fill)
         limit = fitted.vessel.membrane_limit or filling.loop.criteria.membrane_limit
         found = judge(
             analysis,
@@ -184,6 +184,6 @@ _MOVES: dict[ToleranceId, Move] = {
     "static-height": _lever("static-height", share=False),
     "fill-pressure": lambda filling, by: filling._replace(fill=filling.fill + by),
     "precharge": lambda filling, by: filling._replace(
-        gas=filling.gas._replace(precharge=filling.gas.precharge + by)
+        gas=replace(filling.gas, precharge=filling.gas.precharge + by)
     ),
 }

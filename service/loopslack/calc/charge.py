@@ -1,13 +1,15 @@
 """The vessel's side of a balance: how it was charged, what it holds, what it has room for."""
 
-from typing import NamedTuple
+from msgspec import Struct
 
 from loopslack.calc.balance import Balance, Mixing
 
+_MIXED_KELVIN = 1e-10  # what a mixed temperature may be off
+_PASSES = 40  # four are usual
 _LEAST = 0.01  # share of the precharge below which no vessel pressure is a solution
 
 
-class Charge(NamedTuple):
+class Charge(Struct, frozen=True, gc=False):
     """A vessel as it was charged and filled: volumes m3, absolute pressures Pa, temperatures K, mass kg.
 
     ``filled`` is the liquid it holds when the loop is filled, ``mass`` that liquid's mass.
@@ -53,14 +55,19 @@ class VesselLaw:
         liquid = mass / self.room_density + charge.allowance
         if not self.gas_follows:
             return liquid, charge.room
-        temperature = charge.room
-        for _ in range(40):
-            mixed = self.mix.temperature(charge.filled, liquid)
-            if abs(mixed - temperature) < 1e-10:
+        # The warmer, the more volume, and the more of it hot: substitution, hastened by secants through two passes.
+        density, mixed_of, filled = self.fluid.density, self.mix.temperature, charge.filled
+        first, second = charge.room, mixed_of(filled, liquid)
+        error = second - first
+        for _ in range(_PASSES):
+            if -_MIXED_KELVIN < error < _MIXED_KELVIN or first == second:
                 break
-            temperature = mixed
-            liquid = mass / self.fluid.density(mixed) + charge.allowance
-        return liquid, temperature
+            liquid = mass / density(second) + charge.allowance
+            following = mixed_of(filled, liquid) - second
+            fall = (error - following) / (second - first)
+            step = following / fall if fall > 0 else following
+            first, error, second = second, following, second + step
+        return mass / density(second) + charge.allowance, second
 
     def excess(self, pressure: float, expelled: float) -> float:
         """Room left (m3) in the vessel at a pressure (Pa); negative where it must rise further."""

@@ -6,13 +6,15 @@ A check compares; it solves nothing. Which checks decide the verdict, and under 
 from collections.abc import Iterator
 from math import isfinite
 
+from msgspec.structs import replace
+
 from loopslack.calc.analysis import Analysis, SteamCase
 from loopslack.calc.equilibrium import ROUNDING, Equilibrium
 from loopslack.calc.judgement import Check, CheckCode, CheckVerdict, StateResult
 from loopslack.calc.model import Part, Relief
 from loopslack.calc.scenarios import BASE
 from loopslack.calc.states import LiquidState
-from loopslack.calc.window import Bounds, Window
+from loopslack.calc.window import FillLaw, Window
 from loopslack.kernel import kinds
 from loopslack.kernel.errors import CalculationError
 from loopslack.kernel.kinds import Kind
@@ -88,13 +90,14 @@ def steam_reach(state: str, case: SteamCase, found: Equilibrium, at_station: Che
     ]
     if not spare:
         return None
-    _, reach, branch = min(spare, key=lambda row: row[0])
+    # Runs alike differ by rounding only: the first of them, whatever the solver left.
+    _, reach, branch = min(spare, key=lambda row: round(row[0], 6))
     check = compare(
         "steam-reach", state, kinds.LENGTH, reach, branch.length, at_most=True, subject=branch.name
     )
     if at_station == "does-not-hold":
-        return check._replace(core=False, verdict=at_station, at_least=True)
-    return check._replace(core=False)
+        return replace(check, core=False, verdict=at_station, at_least=True)
+    return replace(check, core=False)
 
 
 def degradation(analysis: Analysis, state: str, found: Equilibrium) -> Check | None:
@@ -105,14 +108,14 @@ def degradation(analysis: Analysis, state: str, found: Equilibrium) -> Check | N
     hottest = max(space.temperature for space in found.extent.spaces)
     limit = loop.criteria.degradation_limit
     check = compare("glycol-degradation", state, kinds.TEMPERATURE, hottest, limit, at_most=True)
-    return check._replace(core=False)
+    return replace(check, core=False)
 
 
-def reserve(bounds: Bounds, cold: LiquidState, mass: float, nominal: float) -> Check:
+def reserve(law: FillLaw, cold: LiquidState, mass: float, nominal: float) -> Check:
     """Liquid left in the vessel when cold against the reserve; below nought is what an empty one lacks."""
     held = cold.held(mass)
-    check = compare("reserve", "cold", kinds.VOLUME, held, bounds.reserve(nominal), at_most=False)
-    return check._replace(reason="vessel-empty") if held < 0 else check
+    check = compare("reserve", "cold", kinds.VOLUME, held, law.reserve(nominal), at_most=False)
+    return replace(check, reason="vessel-empty") if held < 0 else check
 
 
 def top_pressure(analysis: Analysis, cold: StateResult) -> Check:
@@ -160,9 +163,9 @@ def fill_window(analysis: Analysis, window: Window, filled: float | None, state:
     if check.verdict == "does-not-hold":
         return check
     if filled is None or not window.lower <= filled * (1 + ROUNDING) <= window.upper * (1 + 2 * ROUNDING):
-        return check._replace(verdict="does-not-hold", reason="fill-outside-window")
+        return replace(check, verdict="does-not-hold", reason="fill-outside-window")
     if not window.wide_enough:
-        return check._replace(verdict="does-not-hold", reason="too-close-to-precharge")
+        return replace(check, verdict="does-not-hold", reason="too-close-to-precharge")
     return check
 
 
@@ -267,4 +270,4 @@ def suction(analysis: Analysis, state: StateResult) -> Check:
             reason=str(error),
         )
     check = compare("net-positive-suction", "cut-off", DIFFERENCE, spare, needed, at_most=False)
-    return check._replace(core=False)
+    return replace(check, core=False)

@@ -6,21 +6,21 @@ content also takes part in the balance, so a vessel and its cooling vessel are f
 
 from collections.abc import Callable, Sequence
 from math import inf
-from typing import NamedTuple
+
+from msgspec import Struct
 
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.balance import Mixing
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.stagnation import charge_of, stagnation
 from loopslack.calc.window import Bound, Bounds, Gas, Window
-from loopslack.kernel.roots import bracketed
+from loopslack.kernel.roots import bracketed, met_from_below
 
 _MOST = 1e3  # m3: no cooling vessel is sought beyond
-_BEYOND = 1e-3  # of a step to where a search should end, what is added to come out beyond
 _TOLERANCE = 1e-7  # of a content or a mass; the answer is then moved to the safe side by as much
 
 
-class Charged(NamedTuple):
+class Charged(Struct, frozen=True, gc=False):
     """A loop (with its cooling vessel), its gas side, and the least mass (kg) it may be filled with."""
 
     analysis: Analysis
@@ -96,9 +96,16 @@ def smallest_content(
     ``charge`` gives the loop with a cooling vessel of a content, with the vessel that then belongs to it, or None
     where no vessel fits.
     """
+    known: dict[float, Charged | None] = {}
+
+    def charged_with(content: float) -> Charged | None:
+        if content not in known:
+            known[content] = charge(content)
+        return known[content]
+
     content: float | None = 0.0
     while content is not None:
-        charged = charge(content)
+        charged = charged_with(content)
         if charged is None:
             return None
         mix = charged.analysis.mix
@@ -108,8 +115,8 @@ def smallest_content(
         if left >= 0:
             return content
         # Cool liquid in place of as much hot: right but for what the content itself changes in the balance.
-        step = 1.1 * -left / charged.analysis.room_density * (mix.hot - limit) / max(mix.hot - mix.room, 1.0)
-        content = _content_for(charge, worst, limit, (content, left), max(1e-6, step))
+        step = -left / charged.analysis.room_density * (mix.hot - limit) / max(mix.hot - mix.room, 1.0)
+        content = _content_for(charged_with, worst, limit, (content, left), max(1e-6, step))
     return None
 
 
@@ -125,31 +132,25 @@ def _content_for(
     start: tuple[float, float],
     step: float,
 ) -> float | None:
-    """Content (m3) with which one scenario just keeps the limit; ``start`` is a content and what it spares (kg)."""
+    """Content (m3) with which one scenario just keeps the limit; ``start`` is a content and what it spares (kg).
+
+    It is looked for a ``step`` (m3) beyond.
+    """
+    low, at_low = start
 
     def spared(content: float) -> float:
+        if content == low:
+            return at_low
         charged = charge(content)
         if charged is None:
             raise _NoVessel
         return spare(charged, scenario, limit)
 
-    low, at_low = start
-    high = low + step
     try:
-        at_high = spared(high)
-        while at_high < 0:
-            # Nearly straight: where it should end, and a little beyond.
-            rise = at_high - at_low
-            ahead = -at_high * (high - low) / rise * (1 + _BEYOND) if rise > 0 else inf
-            low, at_low = high, at_high
-            high += min(max(ahead, _BEYOND * high), step + high)
-            if high > _MOST:
-                return None
-            at_high = spared(high)
-        found = bracketed(spared, low, high, at_low, at_high, _TOLERANCE * high).at
+        met = met_from_below(spared, low, low + step, -at_low / step, _TOLERANCE, highest=_MOST)
     except _NoVessel:
         return None
-    return found * (1 + _TOLERANCE)
+    return None if met is None else met.at
 
 
 def membrane_bound(

@@ -7,13 +7,16 @@ pressure it would not allow.
 
 from collections.abc import Callable
 from math import inf
-from typing import Literal, NamedTuple
+from typing import Literal
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 from loopslack.calc.balance import Balance, Extent, Mixing, part_emptied
 from loopslack.calc.charge import Charge, VesselLaw
 from loopslack.calc.meeting import Meeting
 from loopslack.kernel.errors import NotApplicable
-from loopslack.kernel.roots import bracketed, first_crossing
+from loopslack.kernel.roots import bracketed, first_crossing, near
 
 Regime = Literal["no-boiling", "pinned", "steam", "valve-opens"]
 
@@ -24,7 +27,7 @@ _NEAR = 1.0  # K around the last steam temperature in which the next one is look
 ROUNDING = 1e-9  # share within which a state at a limit counts as at the limit: the solvers' own rounding
 
 
-class Equilibrium(NamedTuple):
+class Equilibrium(Struct, frozen=True, gc=False):
     """Where loop and vessel come to rest: pressures Pa absolute at the vessel, volumes m3, temperatures K.
 
     ``bound`` is True where pressure and steam are lower bounds only: the valve opens, the membrane is full, or
@@ -110,14 +113,18 @@ class _OneSpace:
             pressure, extent = self.at(coordinate, below=False)
             return law.excess(pressure, extent.expelled)
 
-        found = None
+        at = None
         if not self.falling:
             stops = self.space.stops(low, high)
-            found = first_crossing(lambda x: at_low if x == low else excess(x), stops, tolerance)
-        if found is None:
-            found = bracketed(excess, low, high, at_low, at_high, tolerance)
-        self.near = found.at
-        return self.at(found.at, below=False)
+            crossing = first_crossing(lambda x: at_low if x == low else excess(x), stops, tolerance)
+            at = None if crossing is None else crossing.at
+        if at is None and at_low < 0 < at_high:
+            slope = (at_high - at_low) / (high - low)
+            at = near(excess, low, high, low - at_low / slope, slope, slope * tolerance).at
+        elif at is None:
+            at = bracketed(excess, low, high, at_low, at_high, tolerance).at
+        self.near = at
+        return self.at(at, below=False)
 
 
 def _solve(balance: Balance, law: VesselLaw, curve: _OneSpace | Meeting, limit: Extent) -> Equilibrium:
@@ -186,18 +193,18 @@ def _around(
     curve: _OneSpace | Meeting, excess: Callable[[float], float]
 ) -> tuple[float, float, float, float] | None:
     """Ends and values of a narrow bracket around where the last root was; None unless it is there again."""
-    near = curve.near
-    if near is None or not curve.falling:
+    last = curve.near
+    if last is None or not curve.falling:
         return None
-    least, most = near - _NEAR, near + _NEAR
+    least, most = last - _NEAR, last + _NEAR
     if least <= curve.low or most >= curve.high or any(least <= jump <= most for jump in curve.jumps):
         return None
-    here = excess(near)
+    here = excess(last)
     if here < 0:
         beyond = excess(most)
-        return (near, most, here, beyond) if beyond >= 0 else None
+        return (last, most, here, beyond) if beyond >= 0 else None
     beyond = excess(least)
-    return (least, near, beyond, here) if beyond < 0 else None
+    return (least, last, beyond, here) if beyond < 0 else None
 
 
 def _pinned(
@@ -236,7 +243,7 @@ def _state(regime: Regime, pressure: float, extent: Extent, law: VesselLaw) -> E
     return Equilibrium(
         regime,
         pressure,
-        extent._replace(pressure=pressure),
+        replace(extent, pressure=pressure),
         liquid,
         gas,
         law.mix.temperature(charge.filled, liquid),

@@ -7,7 +7,7 @@ from loopslack.calc.fit import Fit, best_fit
 from loopslack.calc.judge import judge, required
 from loopslack.calc.judgement import DoubtPolicy, Judgement
 from loopslack.calc.model import Loop, Vessel
-from loopslack.calc.window import Bounds
+from loopslack.calc.window import FillLaw
 
 
 class Checked(NamedTuple):
@@ -21,7 +21,7 @@ class Checked(NamedTuple):
     def fill_pressure(self) -> float:
         """Fill pressure (Pa absolute) at the fill temperature."""
         gas = self.fitted.gas
-        bounds = Bounds(self.fitted.analysis, (), gas)
+        bounds = FillLaw(self.fitted.analysis, gas)
         return bounds.pressure(gas.nominal, self.mass, self.fitted.analysis.loop.temperatures.fill)
 
 

@@ -1,7 +1,9 @@
 """One vessel of a stated size in a loop: its charge, its cooling vessel, its window. No choosing here."""
 
 from collections.abc import Sequence
-from typing import NamedTuple
+
+from msgspec import Struct
+from msgspec.structs import replace
 
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.cooling import Charged, cool_window, smallest_content
@@ -9,11 +11,11 @@ from loopslack.calc.model import Vessel
 from loopslack.calc.precharge import gas_of
 from loopslack.calc.scenarios import BASE, Scenario
 from loopslack.calc.sizing.volumes import CoolingMode
-from loopslack.calc.window import Bounds, Gas, Window
+from loopslack.calc.window import Bounds, FillLaw, Gas, Window
 from loopslack.kernel.errors import CalculationError
 
 
-class Fit(NamedTuple):
+class Fit(Struct, frozen=True, gc=False):
     """``pieces`` equal vessels in the loop: the gas of all together, the loop with its cooling vessel, the window.
 
     ``under`` names the scenarios of the window where they are fewer than have to be survived, which no filling does:
@@ -44,7 +46,7 @@ class Fit(NamedTuple):
 
     def mass_at(self, pressure: float) -> float:
         """Mass (kg) in the vessels filled to a pressure (Pa absolute) at the fill temperature."""
-        return Bounds(self.analysis, (), self.gas).filled(self.gas.nominal, pressure)
+        return FillLaw(self.analysis, self.gas).filled(self.gas.nominal, pressure)
 
 
 def fit(
@@ -94,7 +96,7 @@ def best_fit(
         except CalculationError:
             continue
         if fitted is not None and fitted.window.usable:
-            return fitted if counted == tuple(scenarios) else fitted._replace(under=counted)
+            return fitted if counted == tuple(scenarios) else replace(fitted, under=counted)
     return plain_fit(analysis, vessel, pieces)
 
 

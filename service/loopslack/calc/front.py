@@ -9,12 +9,14 @@ constant elevation; a rising one (a crest) is filled on the way and makes the el
 from collections.abc import Sequence
 from typing import NamedTuple
 
+from msgspec import Struct
+
 from loopslack.calc.model import Branch, Segment
 
 _SAME_HEIGHT = 1e-9
 
 
-class Front(NamedTuple):
+class Front(Struct, frozen=True, gc=False):
     """Where the steam ends: pipe volume filled (m3), elevation (m), power not spent (W), place on the path."""
 
     volume: float

@@ -15,7 +15,7 @@ from loopslack.calc.levers.pipes import with_pipe_length
 from loopslack.calc.model import Loop
 from loopslack.calc.scenarios import BASE, COMBINED_ID, Scenario
 from loopslack.calc.sizing.floor import without_boiling_floor
-from loopslack.calc.window import Bounds, Gas
+from loopslack.calc.window import Bounds, FillLaw, Gas
 from loopslack.kernel import kinds
 from loopslack.kernel.errors import CalculationError
 from loopslack.kernel.kinds import Kind
@@ -162,15 +162,15 @@ def _hotter(loop: Loop, kelvin: float) -> Loop:
 
 def _leaked(filled: Filled, loss: float) -> Filled:
     """Gas is lost, the liquid stays."""
-    return filled._replace(gas=filled.gas._replace(precharge=filled.gas.precharge - loss))
+    return filled._replace(gas=replace(filled.gas, precharge=filled.gas.precharge - loss))
 
 
 def _topped_up(filled: Filled, pressure: float) -> Filled:
     """Liquid is added until the gauge shows the old fill pressure at the fill temperature."""
-    bounds = Bounds(filled.analysis, (), filled.gas)
+    bounds = FillLaw(filled.analysis, filled.gas)
     return filled._replace(mass=bounds.mass(filled.gas.nominal, pressure))
 
 
 def _fill_pressure(filled: Filled) -> float:
-    bounds = Bounds(filled.analysis, (), filled.gas)
+    bounds = FillLaw(filled.analysis, filled.gas)
     return bounds.pressure(filled.gas.nominal, filled.mass, filled.analysis.loop.temperatures.fill)

@@ -25,7 +25,7 @@ from loopslack.calc.scenarios import BASE, Scenario
 from loopslack.calc.sizing.floor import without_boiling_floor
 from loopslack.calc.stagnation import stagnation, unrelieved_pressure
 from loopslack.calc.states import LiquidState
-from loopslack.calc.window import Bounds, Gas, Window
+from loopslack.calc.window import FillLaw, Gas, Window
 from loopslack.kernel import kinds
 from loopslack.kernel.errors import CalculationError
 from loopslack.physics.statics import GRAVITY
@@ -119,7 +119,7 @@ def _static(
 ) -> Iterable[Check]:
     """Checks that no doubt about the steam touches."""
     loop = analysis.loop
-    yield checks.reserve(Bounds(analysis, (), gas), analysis.states.cold, mass, gas.nominal)
+    yield checks.reserve(FillLaw(analysis, gas), analysis.states.cold, mass, gas.nominal)
     yield checks.top_pressure(analysis, states["cold"])
     yield checks.cut_off(analysis, states["cut-off"])
     yield checks.freezing(analysis)
@@ -153,7 +153,7 @@ def _window(
         window = known or cool_window(analysis, scenarios, gas, membrane_limit)
     except CalculationError as error:
         return Check("fill-window", True, state, "not-assessed", checks.DIFFERENCE, reason=str(error))
-    pressure = Bounds(analysis, (), gas).pressure(gas.nominal, mass, analysis.loop.temperatures.fill)
+    pressure = FillLaw(analysis, gas).pressure(gas.nominal, mass, analysis.loop.temperatures.fill)
     return checks.fill_window(analysis, window, pressure, state)
 
 

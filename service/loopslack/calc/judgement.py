@@ -2,6 +2,8 @@
 
 from typing import Literal, NamedTuple
 
+from msgspec import Struct
+
 from loopslack.calc.equilibrium import Equilibrium
 from loopslack.calc.states import StateId
 from loopslack.kernel.kinds import Kind
@@ -33,7 +35,7 @@ CheckCode = Literal[
 ]
 
 
-class Check(NamedTuple):
+class Check(Struct, frozen=True, gc=False):
     """One check: SI numbers of one kind, ``margin`` positive when it holds.
 
     ``core`` checks decide the verdict; the others are to be confirmed by somebody. ``at_least`` marks a value that
@@ -53,7 +55,7 @@ class Check(NamedTuple):
     at_least: bool = False
 
 
-class StateResult(NamedTuple):
+class StateResult(Struct, frozen=True, gc=False):
     """A liquid state with a vessel: pressures Pa absolute, volumes m3, temperatures K.
 
     Pressures are None when the vessel is empty or full: they are then not defined, and ``reason`` says why. So is a

@@ -7,9 +7,11 @@ decided in ``equilibrium``.
 
 from itertools import pairwise
 
+from msgspec.structs import replace
+
 from loopslack.calc.balance import Balance, Extent, Jumps, Spaces, part_emptied
 from loopslack.calc.charge import VesselLaw
-from loopslack.calc.steam import Steam
+from loopslack.calc.steam_state import Steam
 from loopslack.kernel.errors import NotApplicable
 from loopslack.kernel.roots import bracketed, first_crossing
 
@@ -171,7 +173,7 @@ class Meeting:
             if not steam.boiling and not self._jumps.liquid_at(k, pressure):
                 return None
         self.balance.last = extent.spaces
-        return pressure, extent._replace(pressure=pressure)
+        return pressure, replace(extent, pressure=pressure)
 
     def _along_fold(self, law: VesselLaw, below: float, above: float) -> tuple[float, Extent]:
         """The root where a space with rising runs leaps at a pressure: on the states between, which no pressure picks.

@@ -1,6 +1,8 @@
 """Why a vessel is refused: the reasons and their numbers. Plain data; ``selection`` finds them."""
 
-from typing import Literal, NamedTuple
+from typing import Literal
+
+from msgspec import Struct
 
 from loopslack.kernel.kinds import Kind
 
@@ -16,7 +18,7 @@ ReasonCode = Literal[
 ]
 
 
-class Reason(NamedTuple):
+class Reason(Struct, frozen=True, gc=False):
     """Why a vessel is refused: the number it has, the number it needs, and by how much it misses it.
 
     Applied, ``short`` makes this check hold. None where no number of this vessel would.

@@ -3,6 +3,9 @@
 from collections.abc import Sequence
 from typing import Literal, NamedTuple
 
+from msgspec import Struct
+from msgspec.structs import replace
+
 from loopslack.calc.fit import Fit
 from loopslack.calc.model import Vessel
 from loopslack.calc.reasons import Reason
@@ -11,7 +14,7 @@ from loopslack.calc.selector import Selector
 RankedBy = Literal["price", "volume"]
 
 
-class Refusal(NamedTuple):
+class Refusal(Struct, frozen=True, gc=False):
     """A refused candidate with all its reasons."""
 
     vessel: Vessel
@@ -67,9 +70,9 @@ def with_power_left(selection: Selection, power: float) -> Selection:
         found = known.get(id(reasons))
         if found is None:
             found = known[id(reasons)] = tuple(
-                reason._replace(value=power, short=power) if reason.code == "unspent-power" else reason
+                replace(reason, value=power, short=power) if reason.code == "unspent-power" else reason
                 for reason in reasons
             )
         return found
 
-    return selection._replace(refused=tuple(r._replace(reasons=told(r.reasons)) for r in selection.refused))
+    return selection._replace(refused=tuple(replace(r, reasons=told(r.reasons)) for r in selection.refused))

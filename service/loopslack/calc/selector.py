@@ -290,7 +290,7 @@ class Selector:
                 content,
             )
         found = self._fits[key]
-        return found and found._replace(vessel=vessel, pieces=count)
+        return found and replace(found, vessel=vessel, pieces=count)
 
 
 def _article(nominal: float, fixed: float | None) -> Vessel:

@@ -10,7 +10,7 @@ from loopslack.calc.analysis import Analysis
 from loopslack.calc.fit import Fit
 from loopslack.calc.judgement import Judgement
 from loopslack.calc.scenarios import BASE
-from loopslack.calc.window import Bounds, Window
+from loopslack.calc.window import FillLaw, Window
 from loopslack.kernel.kinds import AbsolutePressure, NominalVolume, Volume
 from loopslack.physics.statics import GRAVITY
 from loopslack.physics.vessel import highest_fill_pressure_en_12828, lowest_fill_pressure_en_12828
@@ -91,7 +91,7 @@ def _row(fitted: Fit, temperature: float) -> FillRow:
         return FillRow(temperature, omitted="fluid-frozen")
     if not window.width > 0:
         return FillRow(temperature, omitted="no-window")
-    bounds = Bounds(analysis, (), gas)
+    bounds = FillLaw(analysis, gas)
     masses = window.lower_bound.mass, fitted.mass, window.upper_bound.mass
     low, recommended, high = (bounds.pressure(gas.nominal, mass, temperature) for mass in masses)
     if not gas.precharge * 0.5 < low <= recommended <= high < float("inf"):
@@ -124,7 +124,7 @@ def closed_forms(fitted: Fit) -> ClosedForms | None:
     analysis, gas = fitted.analysis, fitted.gas
     loop = analysis.loop
     temperatures = loop.temperatures
-    reserve = Bounds(analysis, (), gas).reserve(gas.nominal)
+    reserve = FillLaw(analysis, gas).reserve(gas.nominal)
     if reserve >= gas.nominal:
         return None
     expansion = loop.content * loop.fluid.expansion(temperatures.fill, temperatures.hot_liquid)

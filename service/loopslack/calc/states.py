@@ -6,13 +6,16 @@ what it held when filled. Stagnation has its own modules.
 
 from typing import Literal, NamedTuple
 
+from msgspec import Struct
+from msgspec.structs import replace
+
 from loopslack.calc.model import Loop
 from loopslack.physics.statics import GRAVITY
 
 StateId = Literal["fill", "cold", "operating", "cut-off"]
 
 
-class LiquidState(NamedTuple):
+class LiquidState(Struct, frozen=True, gc=False):
     """One all-liquid state of a loop.
 
     ``expelled`` (kg) since filling, negative when the vessel feeds the loop; ``vessel`` temperature (K) of its
@@ -61,11 +64,12 @@ class LiquidStates(NamedTuple):
         filled = content * fill.still_density
         return LiquidStates(
             fill,
-            cold._replace(
+            replace(
+                cold,
                 expelled=cold.expelled + filled - content * cold.still_density,
                 allowance=cold.allowance - allowance,
             ),
-            *(s._replace(expelled=s.expelled + filled - content * s.still_density) for s in running),
+            *(replace(s, expelled=s.expelled + filled - content * s.still_density) for s in running),
         )
 
 

@@ -5,12 +5,15 @@ pressure. That is what lets a vessel be sized and thousands of vessels be compar
 """
 
 from bisect import bisect_left
+from functools import cached_property
 from itertools import accumulate, pairwise
-from typing import NamedTuple
+from math import inf, log
 
 from loopslack.calc.front import SteamPath
 from loopslack.calc.model import Branch, CollectorGroup, Loop
 from loopslack.calc.scenarios import Scenario
+from loopslack.calc.steam_source import SteamSource
+from loopslack.calc.steam_state import Steam
 from loopslack.kernel.errors import OutOfRange
 from loopslack.kernel.roots import bracketed, near
 from loopslack.physics.statics import GRAVITY
@@ -23,26 +26,6 @@ BAR = 1e5
 
 Rise = tuple[float, float, float]
 """Steam temperatures (K) between which a pressure lies, and how steeply it rises there (Pa/K), 0 where they are one."""
-
-
-class Steam(NamedTuple):
-    """One steam space at one vessel pressure.
-
-    ``temperature`` (K) of the steam, or of the hottest liquid where nothing boils; ``place`` of the front on the
-    path; ``emptied`` collector content and ``pipe`` content filled by steam (m3); ``power`` sent out as steam and
-    ``unspent`` (W); ``liquid_mass`` left in the collectors and open branches plus the vapour (kg).
-    """
-
-    temperature: float
-    boiling: bool
-    place: float
-    height: float
-    emptied: float
-    pipe: float
-    power: float
-    unspent: float
-    mass: float
-    vapour_density: float
 
 
 class SteamSpace:
@@ -59,50 +42,23 @@ class SteamSpace:
         self.hot_density = fluid.density(loop.temperatures.hot_liquid)
         self.column = self.hot_density * GRAVITY
         self.ambient = sun.ambient
-        self.sun = sun.irradiance
-        # (stagnation temperature, aperture, gain, loss 1, loss 2, highest power, content, liquid mass there)
-        rows = []
-        for group in groups:
-            stagnation = group.stagnation_temperature + scenario.stagnation_shift
-            power = group.steam_power
-            if scenario.worse_emptying and group.worse_steam_power is not None:
-                power = group.worse_steam_power
-            gain = group.peak_efficiency * sun.irradiance
-            rise = stagnation - sun.ambient
-            nominal = rise * (group.linear_loss + group.quadratic_loss * rise)
-            # Losses scaled so that the group sends nothing out at this stagnation temperature.
-            scale = gain / nominal if nominal > 0 else 0.0
-            rows.append(
-                (
-                    stagnation,
-                    group.aperture,
-                    gain,
-                    group.linear_loss * scale,
-                    group.quadratic_loss * scale,
-                    power,
-                    group.content,
-                )
-            )
-        rows.sort(key=lambda row: row[0])
-        self.rows = rows
-        self.stagnations = sorted({row[0] for row in rows})
+        self.source = SteamSource(groups, scenario, sun)
+        self.power = self.source.power
+        self.stagnations = self.source.stagnations
         self.hottest = self.stagnations[-1]
         # The bubble line is known from 5 degC; steam colder than the pipes' surroundings cannot stand in them.
         self.coldest = max(fluid.boiling_lowest, self.path.warmest, sun.ambient)
-        # Where the last steam temperature was found, the vessel pressure it belongs to and its rise there, if known.
+        # Where the last steam temperature was found, the vessel pressure it belongs to and its rise there, if known,
+        # and where the front stood: a search asks for similar ones.
         self._last = self.coldest, 0.0, 0.0
+        self._height = 0.5 * (max(self.path.heights) + min(self.path.heights))
+        self._known: dict[float, float | None] = {}
+        # Of the logarithm of the bubble pressure over the inverse temperature, K, as a mean.
+        self._steepness = log(fluid.highest_pressure / fluid.lowest_pressure) / (
+            1.0 / fluid.boiling_lowest - 1.0 / fluid.boiling_highest
+        )
         self._knots: list[float] | None = None
         self._highest: list[float] = []
-
-    def power(self, temperature: float) -> float:
-        """Power the groups send out as steam at a temperature (K), W."""
-        total = 0.0
-        rise = temperature - self.ambient
-        for stagnation, aperture, gain, linear, quadratic, highest, _ in self.rows:
-            if temperature < stagnation:
-                bound = gain - rise * (linear + quadratic * rise)
-                total += aperture * (bound if bound < highest else highest)
-        return total
 
     def pressure(self, temperature: float) -> float:
         """Vessel pressure (Pa) at which the steam has this temperature; rises with it on a falling path."""
@@ -118,11 +74,11 @@ class SteamSpace:
         power = self.power(temperature)
         front = self.path.front(power, temperature)
         emptied = mass = 0.0
-        for row in self.rows:
-            if temperature < row[0] or (below and temperature == row[0]):
-                emptied += row[6]
+        for stagnation, content in self.source.contents:
+            if temperature < stagnation or (below and temperature == stagnation):
+                emptied += content
             else:
-                mass += self.fluid.density(row[0]) * row[6]
+                mass += self.fluid.density(stagnation) * content
         mass += self.hot_density * (self.path.total_volume - front.volume)
         mass += vapour * (emptied + front.volume)
         steam = Steam(
@@ -141,7 +97,7 @@ class SteamSpace:
 
     def liquid(self) -> Steam:
         """The space with nothing boiling: every group stands at its stagnation temperature."""
-        mass = sum(self.fluid.density(row[0]) * row[6] for row in self.rows)
+        mass = sum(self.fluid.density(at) * content for at, content in self.source.contents)
         mass += self.hot_density * self.path.total_volume
         return Steam(self.hottest, False, 0.0, self.path.heights[0], 0.0, 0.0, 0.0, 0.0, mass, 0.0)
 
@@ -161,38 +117,71 @@ class SteamSpace:
 
     def boiling_at(self, pressure: float) -> float | None:
         """Steam temperature (K) at a vessel pressure (Pa); None where nothing boils or the bubble line has ended."""
-        bracket = self._bracket(pressure) if self.path.falling else self._first_rise(pressure)
+        low, top = self.coldest, self.highest_boiling()
+        if low >= top:
+            return None
+        if not self.path.falling:
+            return self._boiling_on_a_rise(pressure)
+        if pressure > self._highest_pressure or (pressure == self._highest_pressure and self.power(top) <= 0):
+            return None
+        full = self._full
+        if full is None:
+            if pressure <= self._lowest_pressure:
+                return low
+        elif pressure <= full[1]:
+            return self._boiling(pressure - self.column * self.path.heights[-1])
+        # The column changes little, so that the boiling point under the last one is a close start.
+        needed = pressure - self.column * self._height
+        guess = self._boiling(needed, exact=False)
+        return self._search(pressure, (low, top, self._steepness * needed / (guess * guess)), guess)
+
+    def _boiling_on_a_rise(self, pressure: float) -> float | None:
+        """See ``boiling_at``: the first temperature at which the pressure is reached, which may be one of several."""
+        bracket = self._first_rise(pressure)
         if bracket is None:
             return None
-        low, high, slope = bracket
+        low, _, slope = bracket
         if slope <= 0:
             return low
         guess, at, steep = self._last
-        found = near(
-            lambda t: self.pressure(t) - pressure,
-            low,
-            high,
-            guess + (pressure - at) / steep if steep > 0 else guess,
-            steep if steep > 0 else slope,
-            _ACCURACY * max(abs(pressure), BAR),
-        )
+        if steep <= 0:
+            return self._search(pressure, bracket, guess)
+        return self._search(pressure, (*bracket[:2], steep), guess + (pressure - at) / steep)
+
+    def _search(self, pressure: float, bracket: Rise, guess: float) -> float:
+        """The steam temperature (K) at a vessel pressure (Pa), looked for at a guess first."""
+        path, fluid, column, power = self.path, self.fluid, self.column, self.power
+
+        def missing(temperature: float) -> float:
+            self._height = path.front(power(temperature), temperature).height
+            return fluid.bubble_pressure(temperature) + column * self._height - pressure
+
+        low, high, slope = bracket
+        found = near(missing, low, high, guess, slope, _ACCURACY * max(abs(pressure), BAR))
         self._last = found.at, pressure, found.slope
         return found.at
 
-    def _bracket(self, pressure: float) -> Rise | None:
-        """Where a falling path's steam temperature lies at a pressure (Pa); None where nothing boils."""
-        low, top = self.boiling_below(pressure), self.highest_boiling()
-        if low >= top:
+    @cached_property
+    def _highest_pressure(self) -> float:
+        """Vessel pressure (Pa) of the hottest steam of a falling path; at stagnation the front has not left the top."""
+        top = self.highest_boiling()
+        if self.power(top) > 0:
+            return self.pressure(top)
+        return self.fluid.bubble_pressure(top) + self.column * self.path.heights[0]
+
+    @cached_property
+    def _lowest_pressure(self) -> float:
+        """Vessel pressure (Pa) of the coldest steam of a falling path."""
+        return self.pressure(self.coldest)
+
+    @cached_property
+    def _full(self) -> tuple[float, float] | None:
+        """Hottest steam (K) that fills the branches of a falling path, and its vessel pressure (Pa), if any does."""
+        full = self._condensing(0.0)
+        if full is None:
             return None
-        high = min(top, self._boiling(pressure - self.column * min(self.path.heights)))
-        if high >= top and self.pressure(top) < pressure:
-            return None
-        if low >= high or (low <= self.coldest and self.pressure(low) >= pressure):
-            return low, low, 0.0
-        if high < top and self.power(high) >= self.path.loss(high):
-            # The runs are full of steam there, and at every lower temperature: the column is known.
-            return high, high, 0.0
-        return low, high, self.column * (max(self.path.heights) - min(self.path.heights)) / (high - low)
+        temperature = min(full, self.highest_boiling())
+        return temperature, self.fluid.bubble_pressure(temperature) + self.column * self.path.heights[-1]
 
     def knots(self) -> list[float]:
         """Steam temperatures (K), rising, between which pressure on a path with rising stretches has no peak.
@@ -253,33 +242,48 @@ class SteamSpace:
 
         None where no pressure lets more arrive, infinite where every pressure does.
         """
-        top, low = self.highest_boiling(), self.coldest
-        if top <= low:
+        if self.highest_boiling() <= self.coldest:
             return None  # nothing ever boils
+        temperature = self._condensing(taken)
+        if temperature is None or temperature == inf:
+            return temperature
+        return self.fluid.bubble_pressure(temperature) + self.column * self.path.heights[-1]
+
+    def _condensing(self, taken: float) -> float | None:
+        """Steam temperature (K) from which the branches and ``taken`` W at their end condense all steam.
+
+        None where it is below the coldest, infinite where it is above the hottest.
+        """
+        if taken not in self._known:
+            self._known[taken] = self._condensing_all(taken)
+        return self._known[taken]
+
+    def _condensing_all(self, taken: float) -> float | None:
+        top, low = self.highest_boiling(), self.coldest
 
         def spare(temperature: float) -> float:
             return self.path.loss(temperature) + taken - self.power(temperature)
 
         at_top, at_low = spare(top), spare(low)
         if at_top < 0:
-            return float("inf")
+            return inf
         if at_low >= 0:
             return None
-        temperature = bracketed(spare, low, top, at_low, at_top, _KELVIN).at
-        return self.fluid.bubble_pressure(temperature) + self.column * self.path.heights[-1]
+        return bracketed(spare, low, top, at_low, at_top, _KELVIN).at
 
     def boiling_below(self, pressure: float) -> float:
         """A steam temperature (K) the space cannot fall below at a vessel pressure (Pa)."""
         return self._boiling(pressure - self.column * max(self.path.heights))
 
-    def _boiling(self, pressure: float) -> float:
-        """Boiling temperature kept inside the bracket the bubble line allows."""
+    def _boiling(self, pressure: float, *, exact: bool = True) -> float:
+        """Boiling temperature kept inside the bracket the bubble line allows; not ``exact`` to some hundredths."""
         fluid = self.fluid
         if pressure <= fluid.lowest_pressure:
             return self.coldest
         if pressure >= fluid.highest_pressure:
             return fluid.boiling_highest
-        return max(self.coldest, fluid.boiling_temperature(pressure))
+        found = fluid.boiling_temperature(pressure) if exact else fluid.boiling_about(pressure)
+        return max(self.coldest, found)
 
     def _liquid_at(self, pressure: float) -> Steam:
         """Nothing boils at this vessel pressure; refused where the bubble line ends before that is certain."""

@@ -7,11 +7,12 @@ fill temperature follows from it.
 
 from collections.abc import Sequence
 from math import inf
-from typing import NamedTuple
 
-from loopslack.calc.analysis import Analysis, SteamCase
-from loopslack.calc.balance import Extent
+from msgspec import Struct
+
+from loopslack.calc.analysis import Analysis
 from loopslack.calc.equilibrium import ROUNDING
+from loopslack.calc.hot_limits import HotLimits, hot_limits
 from loopslack.calc.scenarios import Scenario
 from loopslack.kernel.kinds import NominalVolume, Volume
 from loopslack.physics.vessel import reserve_en_12828
@@ -25,7 +26,7 @@ Line = tuple[str, str, float, float]
 """A bound that is linear in the vessel: check, scenario, slope (kg/m3), offset (kg); slope * nominal - offset."""
 
 
-class Bound(NamedTuple):
+class Bound(Struct, frozen=True, gc=False):
     """A bound on the filling of the vessel: which check sets it, under which scenario, and the mass (kg)."""
 
     code: str
@@ -33,7 +34,7 @@ class Bound(NamedTuple):
     mass: float
 
 
-class Gas(NamedTuple):
+class Gas(Struct, frozen=True, gc=False):
     """The gas side of a vessel (all of it, if there are several): volumes m3, precharge Pa absolute at K."""
 
     nominal: float
@@ -42,7 +43,7 @@ class Gas(NamedTuple):
     acceptance: float = inf
 
 
-class Window(NamedTuple):
+class Window(Struct, frozen=True, gc=False):
     """Fill pressures (Pa absolute at the vessel, loop at ``temperature`` K) that keep every check.
 
     Empty when ``upper`` is below ``lower``; ``wide_enough`` says whether an installer can hit it.
@@ -67,28 +68,82 @@ class Window(NamedTuple):
         return -inf < self.lower < self.upper < inf and self.recommended <= self.upper
 
 
-class Bounds:
-    """Bounds on the filling under a set of scenarios, for vessels of one precharge."""
+class FillLaw:
+    """What a filled vessel of one precharge holds and which pressure it shows; volumes m3, masses kg."""
 
-    def __init__(self, analysis: Analysis, scenarios: Sequence[Scenario], gas: Gas) -> None:
+    def __init__(self, analysis: Analysis, gas: Gas) -> None:
         self.analysis = analysis
-        self.scenarios = scenarios
-        loop = analysis.loop
         self.precharge, self.temperature = gas.precharge, gas.temperature
-        room = loop.temperatures.vessel_room
-        self.room_density = analysis.room_density
         self.fill_density = analysis.states.fill.vessel_density
-        self.squeeze = gas.precharge * room / gas.temperature
-        self._allowed = analysis.room_density * analysis.allowance
-        self.lower: list[Line] = [self._cold(), self._cut_off()]
-        self.upper: list[Line] = []
-        self.warm: list[tuple[str, SteamCase, Extent | None]] = []
-        for scenario in scenarios:
-            self._stagnation(scenario)
 
-    def _hot(self, code: str, id: str, pressure: float, expelled: float) -> Line:
-        """The mass with which the vessel just stands at a hot pressure."""
-        return code, id, self.room_density * (1 - self.squeeze / pressure), self._allowed + expelled
+    def reserve(self, nominal: float) -> float:
+        """Liquid (m3) a vessel must still hold when cold."""
+        stated = self.analysis.loop.criteria.reserve
+        if stated is not None:
+            return stated
+        return reserve_en_12828(NominalVolume(nominal), Volume(self.analysis.content))
+
+    def pressure(self, nominal: float, mass: float, temperature: float) -> float:
+        """Fill pressure (Pa) with a mass (kg) in the vessel, loop and gas at ``temperature`` K.
+
+        ``mass`` counts at the fill temperature; at another one the loop takes or gives its expansion. Minus
+        infinity for an empty vessel, whose pressure is not defined.
+        """
+        analysis = self.analysis
+        if temperature == analysis.loop.temperatures.fill:
+            held = mass / self.fill_density
+        else:
+            total = mass + self.fill_density * analysis.content
+            held = total / analysis.fluid.density(temperature) - analysis.content
+        if held <= 0:
+            return -inf
+        gas = nominal - held
+        if gas <= 0:
+            return inf
+        return self.precharge * nominal / gas * temperature / self.temperature
+
+    def mass(self, nominal: float, pressure: float) -> float:
+        """Mass (kg) in the vessel at a fill pressure (Pa) at the fill temperature, as a bound wants it.
+
+        Negative below the precharge; what a vessel is filled with is told by ``filled``.
+        """
+        fill = self.analysis.loop.temperatures.fill
+        return self.fill_density * nominal * (1 - self.precharge * fill / self.temperature / pressure)
+
+    def filled(self, nominal: float, pressure: float) -> float:
+        """Mass (kg) in the vessel filled to a pressure (Pa): none below the precharge, since the gas keeps it out."""
+        return max(0.0, self.mass(nominal, pressure))
+
+
+class Bounds(FillLaw):
+    """Bounds on the filling under a set of scenarios, for vessels of one precharge.
+
+    ``hot`` is what the scenarios ask for, if it is known already.
+    """
+
+    def __init__(
+        self, analysis: Analysis, scenarios: Sequence[Scenario], gas: Gas, hot: HotLimits | None = None
+    ) -> None:
+        super().__init__(analysis, gas)
+        self.scenarios = scenarios
+        room, density = analysis.loop.temperatures.vessel_room, analysis.room_density
+        self.room_density = density
+        self.squeeze = gas.precharge * room / gas.temperature
+        if hot is None:
+            hot = hot_limits(analysis, scenarios)
+        allowed, squeeze = density * analysis.allowance, self.squeeze
+        # The mass with which the vessel just stands at a hot pressure.
+        self.upper: list[Line] = [
+            (code, id, density * (1 - squeeze / pressure), allowed + expelled)
+            for code, id, pressure, expelled in hot.upper
+        ]
+        self.lower: list[Line] = [self._cold(), self._cut_off()]
+        self.lower += [("steam-at-station", id, 0.0, -inf) for id in hot.spoiled]
+        self.lower += [
+            (code, id, density * (1 - squeeze / pressure), allowed + expelled)
+            for code, id, pressure, expelled in hot.lower
+        ]
+        self.warm = hot.warm
 
     def _cold(self) -> Line:
         """The pressure at the top when cold."""
@@ -102,36 +157,6 @@ class Bounds:
         """No boiling at the top when the pump cuts off."""
         slope = self.room_density * (1 - self.squeeze / self.analysis.cut_off_pressure)
         return "boiling-at-cut-off", "cut-off", slope, self.analysis.states.cut_off.expelled
-
-    def _stagnation(self, scenario: Scenario) -> None:
-        case = self.analysis.case(scenario)
-        if scenario.gas_follows:
-            self.warm.append((scenario.id, case, None if self._cold_twin(scenario) else case.station))
-        else:
-            pressure = self.analysis.final_pressure
-            self.upper.append(self._hot("relief-valve", scenario.id, pressure, case.final.expelled))
-        if case.at_station:
-            self.lower.append(("steam-at-station", scenario.id, 0.0, -inf))
-        elif case.station is not None and not scenario.gas_follows:
-            station = case.station
-            self.lower.append(self._hot("steam-at-station", scenario.id, station.pressure, station.expelled))
-
-    def _cold_twin(self, scenario: Scenario) -> bool:
-        """Whether the same steam with the gas at the room's temperature bounds the filling from below already.
-
-        Warm gas leaves less room, so that at the pressure that keeps steam out of the station less is held.
-        """
-        mix, station = self.analysis.mix, self.analysis.case(scenario).station
-        warm = mix.room <= mix.back and mix.room <= mix.hot and (station is None or station.expelled >= 0)
-        keys = (other.steam_key for other in self.scenarios if not other.gas_follows)
-        return warm and scenario.steam_key in keys
-
-    def reserve(self, nominal: float) -> float:
-        """Liquid (m3) a vessel must still hold when cold."""
-        stated = self.analysis.loop.criteria.reserve
-        if stated is not None:
-            return stated
-        return reserve_en_12828(NominalVolume(nominal), Volume(self.analysis.content))
 
     def masses(self, nominal: float, acceptance: float = inf) -> tuple[Bound, Bound]:
         """Lower and upper bound on the mass (kg) a vessel of ``nominal`` m3 is filled with.
@@ -234,34 +259,3 @@ class Bounds:
             and high - base >= criteria.window_step - ROUNDING * high
         )
         return Window(temperature, low, high, recommended, enough, lower, upper)
-
-    def pressure(self, nominal: float, mass: float, temperature: float) -> float:
-        """Fill pressure (Pa) with a mass (kg) in the vessel, loop and gas at ``temperature`` K.
-
-        ``mass`` counts at the fill temperature; at another one the loop takes or gives its expansion. Minus
-        infinity for an empty vessel, whose pressure is not defined.
-        """
-        analysis = self.analysis
-        if temperature == analysis.loop.temperatures.fill:
-            held = mass / self.fill_density
-        else:
-            total = mass + self.fill_density * analysis.content
-            held = total / analysis.fluid.density(temperature) - analysis.content
-        if held <= 0:
-            return -inf
-        gas = nominal - held
-        if gas <= 0:
-            return inf
-        return self.precharge * nominal / gas * temperature / self.temperature
-
-    def mass(self, nominal: float, pressure: float) -> float:
-        """Mass (kg) in the vessel at a fill pressure (Pa) at the fill temperature, as a bound wants it.
-
-        Negative below the precharge; what a vessel is filled with is told by ``filled``.
-        """
-        fill = self.analysis.loop.temperatures.fill
-        return self.fill_density * nominal * (1 - self.precharge * fill / self.temperature / pressure)
-
-    def filled(self, nominal: float, pressure: float) -> float:
-        """Mass (kg) in the vessel filled to a pressure (Pa): none below the precharge, since the gas keeps it out."""
-        return max(0.0, self.mass(nominal, pressure))

@@ -5,17 +5,25 @@ would cost a second of start-up and 60 MB for these thirty lines.
 """
 
 from collections.abc import Callable, Iterable
-from typing import NamedTuple
+from math import inf
+
+from msgspec import Struct
+
+_LADDER = 1.2  # step of a search outwards where nothing tells more
+_LEAP = 10.0  # most it steps at once where a slope tells how far
+_RUNGS = 55  # 1.2^55 is 22,000
+_CLOSE = 3.0  # tolerances by which a place that is met may lie beyond the root
+_MARGIN = 10.0  # by which the next step of a search is expected to do better than it must
 
 
-class Root(NamedTuple):
+class Root(Struct, frozen=True, gc=False):
     """Where the function crosses zero, and how many evaluations that took."""
 
     at: float
     evaluations: int
 
 
-class SlopedRoot(NamedTuple):
+class SlopedRoot(Struct, frozen=True, gc=False):
     """Where the function crosses zero, how many evaluations that took, and how steeply it rises there."""
 
     at: float
@@ -92,11 +100,12 @@ def near(
 
     For functions asked again and again at little changed places: the ends are never evaluated (the sign must change
     between them), the first step goes along ``slope``, the next ones are secants kept inside what is left between
-    the ends. Ends when the value is within ``accuracy`` of nought, or nothing is left between the ends. The slope
-    told is the last one seen.
+    the ends. Ends when the value is within ``accuracy`` of nought, or the next step should bring it well inside, or
+    nothing is left between the ends. The slope told is the last one seen.
     """
     here = guess if low < guess < high else 0.5 * (low + high)
     value = function(here)
+    last = before = 0.0
     for count in range(1, most):
         if -accuracy <= value <= accuracy:
             return SlopedRoot(here, count, slope)
@@ -110,10 +119,70 @@ def near(
             beside = 0.5 * (low + high)
             if not low < beside < high:
                 return SlopedRoot(here, count, slope)
+        elif value * value * _MARGIN < accuracy * abs(before):
+            # What a secant leaves is a constant times the two values before it.
+            return SlopedRoot(beside, count, slope)
         following = function(beside)
         slope = (following - value) / (beside - here)
-        here, value = beside, following
+        before, last, here, value = last, value, beside, following
     return SlopedRoot(here, most, slope)
+
+
+class Met(Struct, frozen=True, gc=False):
+    """Where a function is nought or just above, and its slope there, 0 where none was seen."""
+
+    at: float
+    slope: float
+
+
+def met_from_below(
+    function: Callable[[float], float],
+    low: float,
+    guess: float,
+    slope: float,
+    tolerance: float,
+    *,
+    highest: float = inf,
+    most: int = 400,
+) -> Met | None:
+    """The lowest place from ``low`` on where a rising function is not negative, None if none is found.
+
+    For functions that are nearly straight, looked at at ``guess`` first and then along ``slope`` (0 if unknown) and
+    along secants, up to ``highest``. The place found has a value of nought or above and lies within a few
+    ``tolerance`` (a share) of the root, or of the jump, if the function has one there.
+    """
+    below = above = None
+    here, last, rungs = max(guess, low), None, 0
+    first = here - low
+    for count in range(most):
+        value = function(here)
+        if last is not None and here != last[0]:
+            slope = (value - last[1]) / (here - last[0])
+        last = here, value
+        if value < 0:
+            below = last
+        elif here <= low or (slope > 0 and value <= _CLOSE * tolerance * here * slope):
+            return Met(here, max(slope, 0.0))
+        else:
+            above = last
+        left = low if below is None else below[0]
+        ahead = here - value / slope + tolerance * here if slope > 0 else inf
+        if above is None:
+            rungs += 1
+            if rungs > _RUNGS or here >= highest:
+                return None
+            farthest = here * _LEAP + first
+            here = min(ahead if ahead < inf else here * _LADDER + first, farthest, highest)
+            continue
+        if above[0] - left <= tolerance * above[0]:
+            return Met(above[0], 0.0)
+        if below is None and ahead <= low:
+            here = low
+        elif left < ahead < above[0] and count % 4 != 3:
+            here = ahead
+        else:
+            here = 0.5 * (left + above[0])
+    return above and Met(above[0], 0.0)
 
 
 def first_crossing(

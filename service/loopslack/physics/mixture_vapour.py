@@ -66,7 +66,16 @@ def partial_pressures(
     sides. The exponential expanded to first order gives a start within 0.05 %, after which one Newton step
     leaves less than 1e-8. This is the inner loop of every stagnation balance; keep it short.
     """
-    steam = water.saturation_pressure(temperature)
+    return _parts(temperature, water.saturation_pressure(temperature), activity, antoine)
+
+
+def _parts(
+    temperature: Temperature,
+    steam: AbsolutePressure,
+    activity: tuple[float, float],
+    antoine: tuple[float, float, float],
+) -> tuple[float, float, float]:
+    """See ``partial_pressures``, where the saturation pressure of water is known."""
     k = water.virial_per_pressure(temperature, steam, water.vapour_density(temperature))
     ideal = activity[0] * steam
     glycol = activity[1] * exp(antoine[0] - antoine[1] / (temperature + antoine[2]))
@@ -170,10 +179,10 @@ def bubble_slope(
     temperature: Temperature, activity: tuple[float, float], antoine: tuple[float, float, float]
 ) -> tuple[float, float]:
     """Bubble pressure in Pa and its rise with temperature in Pa/K. Derived from the law above."""
-    pressure, glycol, k = partial_pressures(temperature, activity, antoine)
-    water_part = pressure - glycol
     steam = water.saturation_pressure(temperature)
-    rise = water.saturation_slope(temperature) / steam
+    pressure, glycol, k = _parts(temperature, steam, activity, antoine)
+    water_part = pressure - glycol
+    rise = water.saturation_rise(temperature, steam) / steam
     # k = M/(rho R T) - 1/p_sat, so its first term is k + 1/p_sat.
     k_rise = rise / steam - (k + 1.0 / steam) * (water.vapour_growth(temperature) + 1.0 / temperature)
     relative = rise * (1.0 + k * steam) + k_rise * (steam - pressure)

@@ -65,11 +65,15 @@ def saturation_pressure(temperature: Temperature) -> AbsolutePressure:
 
 def saturation_slope(temperature: Temperature) -> float:
     """Rise of the saturation pressure with temperature, Pa/K: the derivative of equation 1, derived."""
+    return saturation_rise(temperature, saturation_pressure(temperature))
+
+
+def saturation_rise(temperature: Temperature, pressure: AbsolutePressure) -> float:
+    """See ``saturation_slope``, where the saturation pressure at that temperature is known."""
     s = 1.0 - temperature / CRITICAL_TEMPERATURE
     r = sqrt(s)
     s2 = s * s
     s3 = s2 * s
-    pressure = saturation_pressure(temperature)
     bracket = (
         -7.85951783
         + 1.5 * 1.84408259 * r

@@ -6,8 +6,10 @@ Pa at the vessel unless a name says gauge. What a reading should have been is no
 
 from typing import NamedTuple
 
+from msgspec.structs import replace
+
 from loopslack.calc.analysis import Analysis
-from loopslack.calc.window import Bounds, Gas
+from loopslack.calc.window import FillLaw, Gas
 from loopslack.physics.statics import GRAVITY
 
 
@@ -43,7 +45,7 @@ def liquid_of(analysis: Analysis, mass: float, temperature: float) -> float:
 
 def pressure_of(analysis: Analysis, gas: Gas, mass: float, temperature: float) -> float | None:
     """Vessel pressure with a mass (kg) in the vessel; None where it is empty or full and the pressure undefined."""
-    found = Bounds(analysis, (), gas).pressure(gas.nominal, mass, temperature)
+    found = FillLaw(analysis, gas).pressure(gas.nominal, mass, temperature)
     return found if 0 < found < float("inf") else None
 
 
@@ -58,7 +60,7 @@ def gas_holding(
     if room <= 0 or liquid_of(analysis, mass, temperature) < 0:
         return None
     precharge = pressure * room / set_up.nominal * set_up.temperature / temperature
-    return set_up._replace(precharge=precharge)
+    return replace(set_up, precharge=precharge)
 
 
 def to_reach(analysis: Analysis, gas: Gas, now: Held, pressure: float, temperature: float) -> float | None:

@@ -7,6 +7,8 @@ between them the verdict is the worse of the two.
 
 from typing import Literal, NamedTuple
 
+from msgspec.structs import replace
+
 from loopslack.calc.audit.gauge import column, held_at, pressure_of
 from loopslack.calc.audit.states import WORSE, Bench, Explanation, Filling, State, by_liquid, by_precharge
 from loopslack.calc.audit.target import Target, set_instead
@@ -141,11 +143,11 @@ def _set_up(bench: Bench, found: Found) -> tuple[SetBy, Gas]:
     """The gas as it was set: by the record, else as delivered, else by rule."""
     gas = gas_of(bench.analysis, bench.vessel, bench.pieces)
     if found.record is not None:
-        return "record", gas._replace(precharge=found.record.precharge, temperature=found.record.temperature)
+        return "record", replace(gas, precharge=found.record.precharge, temperature=found.record.temperature)
     delivered = bench.vessel.delivered_precharge
     if delivered is None:
         return "by-rule", gas
-    return "as-delivered", gas._replace(precharge=delivered + SEA_LEVEL, temperature=DELIVERY_TEMPERATURE)
+    return "as-delivered", replace(gas, precharge=delivered + SEA_LEVEL, temperature=DELIVERY_TEMPERATURE)
 
 
 def _reference_mass(bench: Bench, found: Found, set_up: Gas) -> float:
@@ -161,7 +163,7 @@ def _measured(bench: Bench, found: Found, filled: Filling, pressure: float) -> S
     """The state that a measured precharge and the reading fix together; None without a measurement."""
     if found.precharge is None:
         return None
-    gas = filled.gas._replace(precharge=found.precharge.pressure, temperature=found.precharge.temperature)
+    gas = replace(filled.gas, precharge=found.precharge.pressure, temperature=found.precharge.temperature)
     return bench.state(filled, gas, held_at(bench.analysis, gas, pressure, found.gauge.temperature))
 
 

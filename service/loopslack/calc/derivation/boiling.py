@@ -3,7 +3,8 @@
 from loopslack.calc.derivation.collectors import GroupValues
 from loopslack.calc.derivation.frame import Frame
 from loopslack.calc.scenarios import Scenario
-from loopslack.calc.steam import Steam, SteamSpace
+from loopslack.calc.steam import SteamSpace
+from loopslack.calc.steam_state import Steam
 from loopslack.kernel import kinds
 from loopslack.kernel.value import Value
 from loopslack.library.defaults import default

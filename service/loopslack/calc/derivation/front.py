@@ -10,7 +10,8 @@ from loopslack.calc.derivation.book import System
 from loopslack.calc.derivation.frame import Frame
 from loopslack.calc.derivation.parts import SegmentValues
 from loopslack.calc.scenarios import Scenario
-from loopslack.calc.steam import Steam, SteamSpace
+from loopslack.calc.steam import SteamSpace
+from loopslack.calc.steam_state import Steam
 from loopslack.kernel import kinds
 from loopslack.kernel.value import Value
 from loopslack.physics import balance, balance_steam, heat_loss

@@ -124,6 +124,10 @@ class Fluid(ABC):
         """Absolute pressure in Pa below which the liquid boils."""
         return self.saturated(temperature)[0]
 
+    def boiling_about(self, pressure: float) -> float:
+        """See ``boiling_temperature``, to some hundredths of a kelvin: where a search starts."""
+        return self.boiling_temperature(pressure)
+
     def latent_heat(self, temperature: float) -> float:
         """Heat in J that forms a kilogram of vapour from the boiling liquid."""
         return self.vapour(temperature).latent_heat

@@ -100,6 +100,16 @@ class Glycol(Fluid):
             Temperature(temperature), self._activity, self._antoine, self._molar_mass
         )
 
+    def bubble_pressure(self, temperature: float) -> float:
+        """See ``Fluid``."""
+        if not self._boiling_low <= temperature <= self._boiling_high:
+            self.refuse_boiling(temperature)
+        return self._bubble(temperature)
+
+    def boiling_about(self, pressure: float) -> float:
+        """See ``Fluid``."""
+        return inside(start_at(self._start, pressure))
+
     def boiling_temperature(self, pressure: float) -> float:
         """See ``Fluid``."""
         if not self.lowest_pressure <= pressure <= self.highest_pressure:

@@ -51,13 +51,23 @@ class Water(Fluid):
         at = Temperature(temperature)
         return law.saturation_pressure(at), law.vapour_density(at)
 
+    def bubble_pressure(self, temperature: float) -> float:
+        """See ``Fluid``."""
+        if not self._boiling_low <= temperature <= self._boiling_high:
+            self.refuse_boiling(temperature)
+        return law.saturation_pressure(Temperature(temperature))
+
+    def boiling_about(self, pressure: float) -> float:
+        """See ``Fluid``."""
+        return inside(start_at(self._start, pressure))
+
     def boiling_temperature(self, pressure: float) -> float:
         """See ``Fluid``."""
         if not self.lowest_pressure <= pressure <= self.highest_pressure:
             self.refuse_pressure(pressure)
         start = Temperature(start_at(self._start, pressure))
-        missing = pressure - law.saturation_pressure(start)
-        return inside(start + missing / law.saturation_slope(start))
+        steam = law.saturation_pressure(start)
+        return inside(start + (pressure - steam) / law.saturation_rise(start, steam))
 
     def vapour(self, temperature: float) -> Vapour:
         """See ``Fluid``."""

@@ -7,6 +7,8 @@ itself without what a remedy does not need. Both are counted, and the count boun
 
 from math import inf
 
+from msgspec.structs import replace
+
 from loopslack.calc import checks
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.cooling import Charged, hottest
@@ -177,7 +179,7 @@ def _designed(case: Case) -> Outcome:
     if chosen is None:
         return Outcome(False)
     if case.fill_pressure is not None:
-        chosen = chosen._replace(window=chosen.window._replace(recommended=case.fill_pressure))
+        chosen = replace(chosen, window=replace(chosen.window, recommended=case.fill_pressure))
     asked = Asked(analysis, case.policy, case.cooling, case.fill_pressure, case.accept_without_boiling)
     judgement = judged(asked, chosen, chosen.window)
     return Outcome(_satisfied(case, judgement), chosen, judgement)

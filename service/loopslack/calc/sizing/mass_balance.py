@@ -9,28 +9,39 @@ from collections.abc import Sequence
 from math import inf
 from typing import NamedTuple
 
+from msgspec import Struct
+from msgspec.structs import replace
+
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.cooling import membrane_bound
+from loopslack.calc.hot_limits import hot_limits
 from loopslack.calc.precharge import precharge, precharge_temperature
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.window import Bound, Bounds, Gas, Window
-from loopslack.kernel.roots import bracketed
+from loopslack.kernel.roots import bracketed, met_from_below
 
-_LADDER = 1.2  # step of the search for the bracket where nothing tells more
-_LEAP = 10.0  # most it steps at once where the slack tells how far
-_BEYOND = 1e-3  # of such a step, what is added to come out beyond the root
-_NEAR = 1e-3  # share around an expected volume in which it is looked for first
 _VOLUME = 1e-11  # relative tolerance of a volume
-_RUNGS = 55  # 1.2^55 is 22,000 times the smallest vessel that could work at all
+_FAR = 5.0**6  # times the smallest volume; where such a vessel has a window, so has every size between
 
 
-class Interval(NamedTuple):
-    """Feasible nominal volumes (m3); ``largest`` is infinite where no upper end was found."""
+class Interval(Struct, frozen=True, gc=False):
+    """Feasible nominal volumes (m3); ``largest`` is infinite where no upper end was found.
+
+    ``rise`` (kg/m3) is what the window gains with the volume at its smallest, 0 where that is not known.
+    """
 
     smallest: float
     largest: float
     window: Window
     precharge: float
+    rise: float = 0.0
+
+
+class Expected(NamedTuple):
+    """Where a smallest volume (m3) is looked for first, and the rise (kg/m3) expected there."""
+
+    volume: float
+    rise: float
 
 
 def feasible(
@@ -39,21 +50,26 @@ def feasible(
     membrane_limit: float | None = None,
     *,
     upper_end: bool = True,
-    near: float | None = None,
+    near: Expected | None = None,
 ) -> Interval | None:
     """The interval of nominal volumes with a wide enough window under every scenario; None if there is none.
 
     With a ``membrane_limit`` (K) the filling must also keep the membrane at or below it. Without ``upper_end`` the
-    largest volume is not looked for and left infinite; ``near`` (m3) is where the smallest is expected.
+    largest volume is not looked for and left infinite; ``near`` is where the smallest is expected.
     """
     if any(analysis.case(scenario).at_station for scenario in scenarios):
         return None
     slack = _Slack(analysis, scenarios, membrane_limit)
-    smallest = _smallest(slack, near)
-    if smallest is None:
+    low = slack.least()
+    if low is None:
         return None
-    found = Interval(smallest, inf, slack.window(smallest), slack.precharge(smallest))
-    return found._replace(largest=slack.upper_end(smallest)) if upper_end else found
+    guess, rise = near or (low, 0.0)
+    met = met_from_below(slack.at, low, guess, rise, _VOLUME)
+    if met is None:
+        return None
+    smallest = met.at
+    found = Interval(smallest, inf, slack.window(smallest), slack.precharge(smallest), met.slope)
+    return replace(found, largest=slack.upper_end(smallest)) if upper_end else found
 
 
 def with_upper_end(
@@ -61,44 +77,7 @@ def with_upper_end(
 ) -> Interval:
     """An interval that was found without its upper end, with it."""
     slack = _Slack(analysis, scenarios, membrane_limit)
-    return found._replace(largest=slack.upper_end(found.smallest))
-
-
-def _smallest(slack: "_Slack", near: float | None) -> float | None:
-    """The smallest volume (m3) with a wide enough window; None if there is none."""
-    low = slack.least()
-    if low is None:
-        return None
-    volume, following = low, low * _LADDER
-    if near is not None and low < near * (1 - _NEAR):
-        volume, following = near * (1 - _NEAR), near * (1 + _NEAR)
-    value = slack.at(volume)
-    if value >= 0 and volume > low:
-        volume, value, following = low, slack.at(low), volume
-    rungs = 0
-    while value < 0:
-        previous, before = volume, value
-        volume = following
-        rungs += 1
-        if rungs > _RUNGS:
-            return None
-        value = slack.at(volume)
-        # The slack is the least of many that are nearly straight, so that the line through two volumes that are too
-        # small ends before any that does; a little beyond is where to look next.
-        following = volume * _LADDER
-        if value > before:
-            following = volume - value * (volume - previous) / (value - before) * (1 + _BEYOND)
-            following = min(max(following, volume * (1 + _VOLUME)), volume * _LEAP)
-    if not rungs:
-        return volume
-    smallest = bracketed(slack.at, previous, volume, before, value, _VOLUME * volume).at
-    # The root is met from above, so that the smallest vessel reported has its window. Where the slack jumps, the
-    # root may be some way off: the steps grow, up to the volume known to do.
-    step = 2 * _VOLUME
-    while smallest < volume and slack.at(smallest) < 0:
-        smallest = min(smallest * (1 + step), volume)
-        step *= 4
-    return smallest
+    return replace(found, largest=slack.upper_end(found.smallest))
 
 
 class _Slack:
@@ -109,13 +88,14 @@ class _Slack:
     ) -> None:
         self.analysis, self.scenarios, self.membrane_limit = analysis, scenarios, membrane_limit
         self.temperature = precharge_temperature(analysis)
+        self.hot = hot_limits(analysis, scenarios)
         self.fixed = analysis.loop.precharge.kind != "optimised"
         self._bounds = self._for(1.0) if self.fixed else None
         self._last: tuple[float, tuple[Bounds, Bound, Bound]] | None = None
 
     def _for(self, nominal: float) -> Bounds:
         gas = Gas(nominal, precharge(self.analysis, nominal), self.temperature)
-        return Bounds(self.analysis, self.scenarios, gas)
+        return Bounds(self.analysis, self.scenarios, gas, self.hot)
 
     def precharge(self, nominal: float) -> float:
         """Precharge (Pa) of a vessel of this size."""
@@ -165,6 +145,8 @@ class _Slack:
 
     def upper_end(self, volume: float) -> float:
         """The largest feasible volume (m3) above a feasible one, infinite if the slack never runs out."""
+        if self.at(volume * _FAR) >= 0:
+            return inf
         for _ in range(6):
             following = volume * 5
             value = self.at(following)
