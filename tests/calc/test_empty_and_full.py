@@ -9,6 +9,7 @@ from calc.remedies.sent_back import decoded
 from loopslack.calc.band import band
 from loopslack.calc.discharge import discharge
 from loopslack.calc.existing import Checked, check
+from loopslack.calc.judge import worst
 from loopslack.calc.judgement import Check
 from loopslack.calc.model import Loop, Precharge, Vessel
 from loopslack.calc.scenarios import BASE
@@ -112,3 +113,46 @@ def test_an_answer_says_that_the_vessel_is_empty_instead_of_how_little_is_in_it(
     told = {one["code"]: one["message"] for one in answer["advisories"]}
     assert "would be empty" in told["reserve"]
     assert "-" not in told["reserve"].replace("top-", "")
+
+
+def shallow(accepted: float) -> Checked:
+    """A vessel of 150 L whose membrane takes less than the loop pushes out."""
+    vessel = Vessel(id="v", nominal_volume=0.15, acceptance_volume=accepted)
+    return check(replace(loop(), cooling_content=0.03), vessel, 1, "single")
+
+
+def test_a_membrane_that_is_full_bounds_no_pressure_and_keeps_no_valve_shut() -> None:
+    """The gas behind it once told a pressure well below the valve's, beside the words that the valve stays shut."""
+    found = shallow(20e-3)
+    base = {one.code: one for one in found.judgement.checks if one.state == BASE.id}
+    assert base["acceptance"].verdict == "does-not-hold"
+    assert (base["relief-valve"].verdict, base["relief-valve"].value) == ("not-assessed", None)
+    assert "membrane is full" in base["relief-valve"].reason
+    assert shallow(60e-3).judgement.stagnation[BASE.id].pressure < found.fitted.analysis.final_pressure
+    enough = {one.code: one for one in shallow(60e-3).judgement.checks if one.state == BASE.id}
+    assert enough["acceptance"].verdict == enough["relief-valve"].verdict == "holds"
+
+
+def test_an_answer_names_no_pressure_of_a_full_membrane_and_no_state_passes_by_it() -> None:
+    question = least() | {
+        "vessel": {
+            "nominalVolume": {"value": 150, "unit": "L"},
+            "acceptanceVolume": {"value": 20, "unit": "L"},
+        },
+        "coolingVessel": {"kind": "given", "content": {"value": 30, "unit": "L"}},
+        "include": ["derivation"],
+    }
+    answer = msgspec.to_builtins(check_stagnation(decoded(question, StagnationCheckQuestion)))
+    for state in answer["result"]["stagnation"]:
+        assert "vesselPressure" not in state
+        assert state["verdict"] == "does-not-hold"
+
+
+def test_a_check_that_is_not_made_is_worse_than_one_that_holds() -> None:
+    held = named(shallow(60e-3), "acceptance")
+    unmade, failed = held._replace(verdict="not-assessed"), held._replace(verdict="does-not-hold")
+    assert [worst([held]), worst([unmade, held]), worst([failed, unmade])] == [
+        "holds",
+        "not-assessed",
+        "does-not-hold",
+    ]

@@ -77,6 +77,7 @@ def discharge(
     pressure, stays_open = closing_pressure(loop)
     extent = analysis.case(scenario).balance.at_pressure(pressure)
     held, temperature = _held(analysis, gas, mass, pressure, gas_follows=scenario.gas_follows)
+    held = min(held, gas.acceptance)
     density = analysis.fluid.density(temperature if scenario.gas_follows else loop.temperatures.vessel_room)
     left = density * (held - analysis.allowance) - extent.expelled
     # A vessel that was nearly empty may hold more than it did; then nothing leaves.

@@ -9,7 +9,7 @@ from collections.abc import Iterable
 from loopslack.calc import checks
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.cooling import cool_window
-from loopslack.calc.equilibrium import Equilibrium
+from loopslack.calc.equilibrium import ROUNDING, Equilibrium
 from loopslack.calc.judgement import (
     Check,
     CheckVerdict,
@@ -31,6 +31,7 @@ from loopslack.kernel.errors import CalculationError
 from loopslack.physics.statics import GRAVITY
 
 _EMPTY = "the vessel is empty in this state, so that its pressure is not defined"
+_FULL = "the membrane is full in this state, so that nothing bounds the pressure below the relief valve's"
 
 JOINT = "required-doubts"  # the state under which checks of all required scenarios together stand
 
@@ -55,7 +56,7 @@ def judge(
     found = list(_static(analysis, vessel, gas, mass, states))
     found.append(_window(analysis, (BASE,), gas, mass, membrane_limit, None, BASE.id))
     found.extend(_without_boiling(analysis, gas.nominal, accepted=accept_without_boiling))
-    static = _worst(found)
+    static = worst(found)
     # The window that survives every required doubt counts with the doubts, not with the base case.
     joint = (
         []
@@ -74,7 +75,7 @@ def judge(
         else:
             results[scenario.id] = result
             own = list(_hot(analysis, scenario, gas, mass, result, membrane_limit))
-        outcome[scenario.id] = _worst(own)
+        outcome[scenario.id] = worst(own)
         found.extend(own)
     base = _worse(static, outcome[BASE.id])
     doubts: dict[str, DoubtVerdict] = dict.fromkeys(analysis.not_applicable, "not-applicable")
@@ -189,6 +190,8 @@ def _hot(
         at_least = ignored is None
     if found.liquid < 0:
         yield _unknown(scenario, _EMPTY)
+    elif membrane_full(found, gas):
+        yield _unknown(scenario, _FULL)
     else:
         yield checks.relief_valve(analysis, id, pressure, at_least=at_least)
     yield checks.acceptance(id, found, gas.acceptance, gas.nominal)
@@ -200,6 +203,11 @@ def _hot(
         checks.degradation(analysis, id, found),
     )
     yield from (check for check in told if check is not None)
+
+
+def membrane_full(found: Equilibrium, gas: Gas) -> bool:
+    """Whether the membrane would be full before the gas balances the loop: no pressure is then the vessel's."""
+    return found.regime != "valve-opens" and found.liquid > min(gas.acceptance, gas.nominal) * (1 + ROUNDING)
 
 
 def _unknown(scenario: Scenario, reason: str) -> Check:
@@ -235,9 +243,10 @@ def _worse(one: CheckVerdict, other: CheckVerdict) -> CheckVerdict:
     return one if _ORDER[one] >= _ORDER[other] else other
 
 
-def _worst(found: Iterable[Check]) -> CheckVerdict:
-    worst: CheckVerdict = "holds"
+def worst(found: Iterable[Check]) -> CheckVerdict:
+    """The worst verdict of the core checks among some."""
+    verdict: CheckVerdict = "holds"
     for check in found:
         if check.core:
-            worst = _worse(worst, check.verdict)
-    return worst
+            verdict = _worse(verdict, check.verdict)
+    return verdict

@@ -105,14 +105,14 @@ def _readings(analysis: Analysis, judgement: Judgement) -> list[Reading]:
     found = [Reading(state.id, state.gauge_pressure) for state in judgement.states if state.id != "cut-off"]
     density = analysis.fluid.density(analysis.loop.temperatures.vessel_room)
     drop = density * GRAVITY * analysis.loop.gauge_height
+    # Where the vessel is empty or full the gauge shows what nothing here bounds.
+    known = {
+        check.state for check in judgement.checks if check.code == "relief-valve" and check.value is not None
+    }
     base = judgement.stagnation.get(BASE.id)
     if base is not None:
-        found.append(Reading("stagnation", base.pressure - drop, base.bound))
-    doubts = [
-        judgement.stagnation[scenario.id]
-        for scenario in analysis.doubts
-        if scenario.id in judgement.stagnation
-    ]
+        found.append(Reading("stagnation", base.pressure - drop if BASE.id in known else None, base.bound))
+    doubts = [judgement.stagnation[scenario.id] for scenario in analysis.doubts if scenario.id in known]
     if doubts:
         worst = max(doubts, key=lambda result: result.pressure)
         found.append(Reading("stagnation-worst-doubt", worst.pressure - drop, worst.bound))

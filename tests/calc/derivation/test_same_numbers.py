@@ -13,6 +13,7 @@ from loopslack.calc.derivation.whole import derive_check, derive_design
 from loopslack.calc.design import Design, Request, design
 from loopslack.calc.existing import Checked, check
 from loopslack.calc.fit import Fit
+from loopslack.calc.judge import membrane_full
 from loopslack.calc.judgement import Judgement
 from loopslack.calc.model import Vessel
 from loopslack.calc.order_list import order_list
@@ -59,7 +60,7 @@ def stagnation_numbers(fitted: Fit, judgement: Judgement, air: float) -> Numbers
     if found is None:
         return
     extent, here = found.extent, "stagnation/0"
-    if isfinite(found.pressure) and found.liquid >= 0:
+    if isfinite(found.pressure) and found.liquid >= 0 and not membrane_full(found, fitted.gas):
         yield f"{here}/vesselPressure", found.pressure - air
     yield f"{here}/vesselLiquid", found.liquid
     yield f"{here}/gasTemperature", found.gas_temperature

@@ -5,6 +5,7 @@ from loopslack.calc.derivation.equilibrium import RestValues, at_rest
 from loopslack.calc.derivation.frame import Frame, StateValues
 from loopslack.calc.derivation.window import WindowSteps, WindowValues
 from loopslack.calc.fit import Fit
+from loopslack.calc.judge import membrane_full
 from loopslack.calc.judgement import Judgement, StateResult
 from loopslack.calc.scenarios import BASE
 from loopslack.kernel import kinds
@@ -149,7 +150,8 @@ class ShownSteps:
 
     def _report_stagnation(self, rest: RestValues) -> None:
         book, place = self.book, "/result/stagnation/0"
-        if rest.pressure is not None and rest.liquid.si >= 0:
+        found = self.judgement.stagnation[BASE.id]
+        if rest.pressure is not None and rest.liquid.si >= 0 and not membrane_full(found, self.fitted.gas):
             self._report_gauge(rest.pressure, f"{place}/vesselPressure")
         for value, member in (
             (rest.liquid, "vesselLiquid"),

@@ -99,7 +99,9 @@ class StagnationState(AnswerPart, frozen=True, kw_only=True):
     steam_volume: Annotated[q.Volume, text("Steam in collectors and pipes.")]
     reach: Annotated[list[SteamReach], text("Steam in each open pipe run.")]
     unspent_power: Annotated[q.Power, text("Steam power that nothing condenses: it reaches the station.")]
-    vessel_liquid: Annotated[q.Volume, text("Liquid in the vessel.")]
+    vessel_liquid: Annotated[
+        q.Volume, text("Liquid in the vessel, or what it would have to hold where its membrane is full.")
+    ]
     gas_temperature: Annotated[q.Temperature, text("Temperature of the gas.")]
     mixed_temperature: Annotated[q.Temperature, text("Liquid in the vessel, mixed.")]
     last_arriving_temperature: Annotated[q.Temperature, text("Liquid that arrives in the vessel last.")]

@@ -10,6 +10,7 @@ from loopslack.calc.analysis import Analysis
 from loopslack.calc.checks import pressure_to_withstand
 from loopslack.calc.equilibrium import Equilibrium
 from loopslack.calc.fit import Fit
+from loopslack.calc.judge import worst
 from loopslack.calc.judgement import Check as CheckResult
 from loopslack.calc.judgement import Judgement, StateResult
 from loopslack.calc.model import Loop, Vessel
@@ -147,10 +148,9 @@ def stagnation(
         result = judgement.stagnation.get(scenario.id)
         if result is not None:
             own = [check for check in judgement.checks if check.state == scenario.id]
-            verdict: CheckVerdict = (
-                "does-not-hold" if any(c.core and c.verdict == "does-not-hold" for c in own) else "holds"
-            )
-            found.append(_stagnation(analysis, scenario, result, verdict, write, pressure))
+            verdict = worst(own)
+            defined = not any(c.code == "relief-valve" and c.verdict == "not-assessed" for c in own)
+            found.append(_stagnation(analysis, scenario, result, verdict, write, pressure, defined=defined))
     return found
 
 
@@ -161,6 +161,8 @@ def _stagnation(
     verdict: CheckVerdict,
     write: Writer,
     pressure: Pressures,
+    *,
+    defined: bool,
 ) -> out.StagnationState:
     spaces = analysis.case(scenario).balance.spaces
     extent = result.extent
@@ -173,8 +175,8 @@ def _stagnation(
         scenario=scenario.id,  # type: ignore[arg-type]  # the register of scenarios is closed
         verdict=verdict,
         regime=result.regime,
-        # An empty vessel has no pressure; what its gas would show says nothing about the loop.
-        vessel_pressure=None if result.liquid < 0 else pressure.optional(result.pressure),
+        # An empty or full vessel has no pressure; what its gas would show says nothing about the loop.
+        vessel_pressure=pressure.optional(result.pressure) if defined else None,
         lower_bound=True if result.bound else None,
         steam_temperature=write.temperature(max(steam.temperature for steam in extent.spaces)),
         stagnation_temperature=write.temperature(max(space.hottest for space in spaces)),
