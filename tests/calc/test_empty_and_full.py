@@ -150,7 +150,7 @@ def test_an_answer_names_no_pressure_of_a_full_membrane_and_no_state_passes_by_i
 
 def test_a_check_that_is_not_made_is_worse_than_one_that_holds() -> None:
     held = named(shallow(60e-3), "acceptance")
-    unmade, failed = held._replace(verdict="not-assessed"), held._replace(verdict="does-not-hold")
+    unmade, failed = replace(held, verdict="not-assessed"), replace(held, verdict="does-not-hold")
     assert [worst([held]), worst([unmade, held]), worst([failed, unmade])] == [
         "holds",
         "not-assessed",

@@ -4,6 +4,7 @@ import json
 from typing import Any, get_args
 
 import pytest
+from msgspec.structs import replace
 
 from loopslack.calc import checks, judge
 from loopslack.calc.judgement import Check, CheckCode
@@ -68,7 +69,7 @@ def asked(question: dict[str, Any]) -> tuple[dict[str, Any], dict[str, int]]:
 
 
 def failing(check: Check) -> Check:
-    return check._replace(verdict="does-not-hold", margin=-1.0)
+    return replace(check, verdict="does-not-hold", margin=-1.0)
 
 
 def failed(found: Any) -> Any:
