@@ -31,7 +31,7 @@ from loopslack.api.side import Side
 from loopslack.api.v1 import OPERATIONS
 from loopslack.api.wrappers import CrossOrigin, HeadAsGet, LiteralPaths, Shedding, StandingHeaders
 from loopslack.contract.refusals import Refused
-from loopslack.contract.writing.common import provenance
+from loopslack.contract.writing.shared import provenance
 from loopslack.observability import READINESS, Lines, LoopLag, set_up_logging
 from loopslack.settings import Settings, SettingsError, settings_from
 from loopslack.sheet.pdf import too_late_to_fork

@@ -12,7 +12,7 @@ from msgspec.structs import replace
 from bulk.files import questions, run
 from loopslack import cli
 from loopslack.contract.answering import loop as answering
-from loopslack.contract.answers.common import Verdict
+from loopslack.contract.answers.shared import Verdict
 from loopslack.contract.encoding import encoded
 from loopslack.contract.questions.operations import LoopDesignQuestion
 from loopslack.contract.strict.decoding import decode

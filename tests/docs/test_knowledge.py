@@ -27,7 +27,7 @@ from loopslack.calc.sizing.rules.register import RULES
 from loopslack.contract.advice.words import FAILING, WITHOUT_NUMBER
 from loopslack.contract.problems import FIELD_CODES
 from loopslack.contract.quantity import STRUCT_OF
-from loopslack.contract.writing.common import CAUTIONS
+from loopslack.contract.writing.shared import CAUTIONS
 from loopslack.kernel.kinds import KINDS
 from loopslack.kernel.units import from_si, scale_of
 from loopslack.library.defaults import choices, defaults

@@ -8,7 +8,7 @@ import msgspec
 import pytest
 from msgspec.structs import replace
 
-from loopslack.contract.answers.common import AnyQuantity
+from loopslack.contract.answers.shared import AnyQuantity
 from loopslack.sheet.lines import Facts, Row, Sheet, Table, Text
 from loopslack.sheet.numerals import Numerals, numerals
 from sheet.sheets import NAMES, asked, blocks, case, sheet

@@ -4,7 +4,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from loopslack.contract.answers.common import AnyQuantity
+from loopslack.contract.answers.shared import AnyQuantity
 from loopslack.sheet.numerals import MINUS, numerals, rounded
 
 EN, DE = numerals("en"), numerals("de")

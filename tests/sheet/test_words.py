@@ -17,12 +17,12 @@ from loopslack.calc.remedies.measure import RemedyCode
 from loopslack.calc.sizing.rules.rule import RuleId
 from loopslack.calc.sizing.walk import SENTENCES, StepCode
 from loopslack.calc.states import StateId
-from loopslack.contract.answers.common import Basis, Severity, Verdict
 from loopslack.contract.answers.derivation import InputOrigin
 from loopslack.contract.answers.loop import DoubtId, OmittedReason, ReadingState, ScenarioId
+from loopslack.contract.answers.shared import Basis, Severity, Verdict
 from loopslack.contract.questions.many import FigureName
-from loopslack.contract.writing.common import CAUTIONS
 from loopslack.contract.writing.design import INSTRUCTIONS
+from loopslack.contract.writing.shared import CAUTIONS
 from loopslack.kernel.citations import HowSeen
 from loopslack.library.defaults import choices, defaults
 from loopslack.sheet.figures.register import FIGURES

@@ -18,7 +18,7 @@ from msgspec import Struct
 
 from loopslack.bulk.blocks import Answered, Mark, Source
 from loopslack.contract.answering.many import REFUSED, Tally, end_line, id_of
-from loopslack.contract.writing.common import provenance
+from loopslack.contract.writing.shared import provenance
 
 if TYPE_CHECKING:
     from pathlib import Path

@@ -7,9 +7,9 @@ geometry only: where a drawing puts a part. Names of parts that a caller did not
 from functools import cached_property
 
 from loopslack.calc.model import CollectorGroup, Loop
-from loopslack.contract.answers.common import Check
 from loopslack.contract.answers.loop import LiquidState, StagnationState, SteamReach, VesselResult
 from loopslack.contract.answers.operations import LoopDesignAnswer
+from loopslack.contract.answers.shared import Check
 from loopslack.contract.questions.operations import LoopDesignQuestion
 from loopslack.contract.questions.pipes import StandardTube
 from loopslack.contract.reading.loop import Reading, read_loop

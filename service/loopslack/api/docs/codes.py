@@ -25,7 +25,7 @@ from loopslack.api.docs.words import ADVISORIES, CHECKS, METHOD_CODES, REASONS, 
 from loopslack.api.reference import Page
 from loopslack.contract.advice.words import FAILING
 from loopslack.contract.problems import FIELD_CODES, PROBLEM_TYPES, ProblemType
-from loopslack.contract.writing.common import CAUTIONS
+from loopslack.contract.writing.shared import CAUTIONS
 
 
 def code_pages(contract: Contract) -> Iterator[Page]:

@@ -10,7 +10,7 @@ from msgspec import Struct
 
 from loopslack.api.docs.markup import Html, breakable, disclosure, joined, link, tag
 from loopslack.api.reference import Page
-from loopslack.contract.writing.common import CONTRACT_VERSION
+from loopslack.contract.writing.shared import CONTRACT_VERSION
 
 PAGES = (
     ("/docs", "Start"),

@@ -27,7 +27,7 @@ from loopslack.api.document.vocabulary import DocumentError, Vocabulary
 from loopslack.api.document.yaml_text import yaml_text
 from loopslack.api.operations import Operation
 from loopslack.contract.problems import Problem
-from loopslack.contract.writing.common import CONTRACT_VERSION
+from loopslack.contract.writing.shared import CONTRACT_VERSION
 
 VALUES = (*UNIT_LISTS, *QUESTION_LISTS, *ANSWER_LISTS, *ANALYSIS_LISTS, *AUDIT_LISTS, *HEALTH_LISTS)
 UNIONS = (*QUESTION_UNIONS, *ANSWER_UNIONS, *ANALYSIS_UNIONS)

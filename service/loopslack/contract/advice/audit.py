@@ -8,9 +8,9 @@ from collections.abc import Iterator
 
 from loopslack.calc.audit.whole import READING, Audit
 from loopslack.contract.answers.audit import AuditAction
-from loopslack.contract.answers.common import Advisory, AnyQuantity, Severity
-from loopslack.contract.writing.common import any_quantity
+from loopslack.contract.answers.shared import Advisory, AnyQuantity, Severity
 from loopslack.contract.writing.quantities import System
+from loopslack.contract.writing.shared import any_quantity
 from loopslack.kernel import kinds
 from loopslack.kernel.kinds import Kind
 

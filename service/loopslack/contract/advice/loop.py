@@ -13,9 +13,9 @@ from loopslack.calc.judgement import Check, DoubtPolicy, Judgement
 from loopslack.calc.model import Branch
 from loopslack.calc.scenarios import BASE
 from loopslack.contract.advice.words import FAILING, STATES, WITHOUT_NUMBER
-from loopslack.contract.answers.common import Advisory, AnyQuantity, Severity
-from loopslack.contract.writing.common import any_quantity
+from loopslack.contract.answers.shared import Advisory, AnyQuantity, Severity
 from loopslack.contract.writing.quantities import System
+from loopslack.contract.writing.shared import any_quantity
 from loopslack.kernel import kinds
 from loopslack.kernel.kinds import Kind
 

@@ -4,13 +4,13 @@ from loopslack.calc.audit.whole import Found, Point, Record, audit
 from loopslack.contract.advice.audit import AuditAdvisor
 from loopslack.contract.advice.loop import Advisor
 from loopslack.contract.answers import audit as out
-from loopslack.contract.answers.common import Advisory
+from loopslack.contract.answers.shared import Advisory
 from loopslack.contract.questions.existing import VesselAuditQuestion
 from loopslack.contract.reading.existing import AuditReading, read_audit
 from loopslack.contract.writing import design as write_design
 from loopslack.contract.writing import loop as write_loop
 from loopslack.contract.writing.audit import AuditWriter
-from loopslack.contract.writing.common import CAUTIONS, assumptions, provenance
+from loopslack.contract.writing.shared import CAUTIONS, assumptions, provenance
 from loopslack.kernel import kinds
 
 _ORDER = {"stop": 0, "warning": 1, "note": 2}

@@ -12,7 +12,7 @@ from loopslack.contract.questions import existing as questions_existing
 from loopslack.contract.reading.existing import CourseReading, read_course
 from loopslack.contract.writing import course as write_course
 from loopslack.contract.writing import loop as write_loop
-from loopslack.contract.writing.common import CAUTIONS, assumptions, provenance
+from loopslack.contract.writing.shared import CAUTIONS, assumptions, provenance
 
 
 def compute_stagnation_course(

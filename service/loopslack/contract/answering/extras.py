@@ -14,7 +14,6 @@ from loopslack.calc.remedies.case import case_of_design, case_of_vessel
 from loopslack.calc.remedies.robust import cooler_for_robust
 from loopslack.calc.remedies.seek import remedies
 from loopslack.contract.answers.band import ToleranceBand
-from loopslack.contract.answers.common import Basis, Check, Verdict
 from loopslack.contract.answers.course import CourseSummary
 from loopslack.contract.answers.derivation import Derivation
 from loopslack.contract.answers.loop import (
@@ -26,6 +25,7 @@ from loopslack.contract.answers.loop import (
     StagnationState,
 )
 from loopslack.contract.answers.remedies import Discharge, Remedies, RobustCooler
+from loopslack.contract.answers.shared import Basis, Check, Verdict
 from loopslack.contract.questions.operations import LoopQuestion
 from loopslack.contract.reading.existing import CheckReading
 from loopslack.contract.reading.loop import Reading

@@ -13,7 +13,7 @@ from loopslack.calc.model import Vessel
 from loopslack.contract.advice.loop import Advisor
 from loopslack.contract.answering import extras
 from loopslack.contract.answers import operations as answers
-from loopslack.contract.answers.common import Advisory
+from loopslack.contract.answers.shared import Advisory
 from loopslack.contract.questions import operations as questions
 from loopslack.contract.reading.existing import CheckReading, read_check
 from loopslack.contract.reading.loop import Reading
@@ -24,7 +24,7 @@ from loopslack.contract.writing import design as write_design
 from loopslack.contract.writing import loop as write_loop
 from loopslack.contract.writing import sizing as write_sizing
 from loopslack.contract.writing.changes import Asked
-from loopslack.contract.writing.common import CAUTIONS, assumptions, provenance
+from loopslack.contract.writing.shared import CAUTIONS, assumptions, provenance
 from loopslack.kernel.work import Work, finished
 from loopslack.library.vessels import preferred_vessels
 

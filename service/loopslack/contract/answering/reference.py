@@ -2,8 +2,8 @@
 
 from loopslack.calc.sizing.rules.register import RULES
 from loopslack.contract.answers import reference as out
-from loopslack.contract.writing.common import source_note
 from loopslack.contract.writing.quantities import METRIC as WRITE
+from loopslack.contract.writing.shared import source_note
 from loopslack.library.fluids import PropertyData, fluids
 from loopslack.library.sources import sources
 from loopslack.library.tubes import tube_standards

@@ -5,9 +5,9 @@ from loopslack.contract.answers import operations as answers
 from loopslack.contract.answers.loop import PartKind
 from loopslack.contract.questions import operations as questions
 from loopslack.contract.reading.small import ExpansionReading, read_contents, read_expansion
-from loopslack.contract.writing.common import CAUTIONS, assumptions, provenance
 from loopslack.contract.writing.loop import Held, Pressures, content
 from loopslack.contract.writing.quantities import Writer, writer
+from loopslack.contract.writing.shared import CAUTIONS, assumptions, provenance
 from loopslack.kernel.errors import CalculationError
 
 _KINDS: dict[str, PartKind] = {

@@ -5,7 +5,6 @@ from typing import Annotated
 from loopslack.calc.audit.states import Cause
 from loopslack.calc.audit.whole import Certainty, Explains, Position, Reference, SetBy
 from loopslack.contract import quantity as q
-from loopslack.contract.answers.common import AnswerPart, AnyQuantity, Basis, Check, Verdict
 from loopslack.contract.answers.loop import (
     Doubt,
     FillWindow,
@@ -16,6 +15,7 @@ from loopslack.contract.answers.loop import (
     VesselResult,
 )
 from loopslack.contract.answers.operations import Answer
+from loopslack.contract.answers.shared import AnswerPart, AnyQuantity, Basis, Check, Verdict
 from loopslack.contract.questions.fields import text
 
 

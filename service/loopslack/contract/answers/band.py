@@ -4,7 +4,7 @@ from typing import Annotated
 
 from loopslack.calc.band import ToleranceId
 from loopslack.contract import quantity as q
-from loopslack.contract.answers.common import AnswerPart, Verdict
+from loopslack.contract.answers.shared import AnswerPart, Verdict
 from loopslack.contract.questions.fields import text
 
 

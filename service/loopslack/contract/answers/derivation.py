@@ -7,7 +7,7 @@ Steps refer to the equations and the fitted constants listed beside them, so tha
 from typing import Annotated, Literal
 
 from loopslack.calc.derivation.book import Chapter
-from loopslack.contract.answers.common import AnswerPart, AnyQuantity, SourceNote
+from loopslack.contract.answers.shared import AnswerPart, AnyQuantity, SourceNote
 from loopslack.contract.questions.fields import text
 
 InputOrigin = Literal["given", "assumed", "tabulated", "step"]

@@ -12,7 +12,7 @@ from loopslack.calc.reasons import ReasonCode
 from loopslack.calc.selection import RankedBy
 from loopslack.calc.states import StateId
 from loopslack.contract import quantity as q
-from loopslack.contract.answers.common import AnswerPart, AnyQuantity, CheckVerdict, Verdict
+from loopslack.contract.answers.shared import AnswerPart, AnyQuantity, CheckVerdict, Verdict
 from loopslack.contract.questions.fields import text
 
 PartKind = Literal["collectors", "pipe-run", "station", "vessel-line", "cooling-vessel"]

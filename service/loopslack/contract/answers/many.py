@@ -8,8 +8,8 @@ from typing import Annotated
 
 from msgspec import Meta
 
-from loopslack.contract.answers.common import AnswerPart, Verdict
 from loopslack.contract.answers.operations import LoopDesignAnswer
+from loopslack.contract.answers.shared import AnswerPart, Verdict
 from loopslack.contract.problems import MOST_COUNTED, MOST_FAULTS, FaultyField
 from loopslack.contract.questions.fields import text
 

@@ -7,16 +7,6 @@ from typing import Annotated
 
 from loopslack.contract import quantity as q
 from loopslack.contract.answers.band import ToleranceBand
-from loopslack.contract.answers.common import (
-    Advisory,
-    AnswerPart,
-    Assumption,
-    Basis,
-    Caution,
-    Check,
-    Provenance,
-    Verdict,
-)
 from loopslack.contract.answers.course import CourseSummary, StagnationCourseResult
 from loopslack.contract.answers.derivation import Derivation
 from loopslack.contract.answers.loop import (
@@ -33,6 +23,16 @@ from loopslack.contract.answers.loop import (
 )
 from loopslack.contract.answers.order import OrderList
 from loopslack.contract.answers.remedies import Discharge, Remedies, RobustCooler
+from loopslack.contract.answers.shared import (
+    Advisory,
+    AnswerPart,
+    Assumption,
+    Basis,
+    Caution,
+    Check,
+    Provenance,
+    Verdict,
+)
 from loopslack.contract.answers.sizing import RuleComparison, Sensitivity, Walk
 from loopslack.contract.questions.fields import text
 

@@ -4,8 +4,8 @@ from typing import Annotated
 
 from loopslack.calc.order_list import Category
 from loopslack.contract import quantity as q
-from loopslack.contract.answers.common import AnswerPart
 from loopslack.contract.answers.loop import VesselResult
+from loopslack.contract.answers.shared import AnswerPart
 from loopslack.contract.questions.fields import text
 
 

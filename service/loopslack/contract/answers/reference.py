@@ -4,7 +4,7 @@ from typing import Annotated, Literal
 
 from loopslack.calc.sizing.rules.rule import RuleId
 from loopslack.contract import quantity as q
-from loopslack.contract.answers.common import AnswerPart, SourceNote
+from loopslack.contract.answers.shared import AnswerPart, SourceNote
 from loopslack.contract.questions.fields import text
 from loopslack.kernel.citations import HowSeen
 

@@ -9,8 +9,8 @@ from typing import Annotated, Literal
 from loopslack.calc.remedies.measure import RemedyCode
 from loopslack.calc.states import StateId
 from loopslack.contract import quantity as q
-from loopslack.contract.answers.common import AnswerPart, AnyQuantity, Caution
 from loopslack.contract.answers.loop import ScenarioId, VesselResult
+from loopslack.contract.answers.shared import AnswerPart, AnyQuantity, Caution
 from loopslack.contract.questions.fields import text
 
 ChangeAction = Literal["set", "remove", "repeat"]

@@ -8,8 +8,8 @@ from loopslack.calc.levers.lever import RangeBasis
 from loopslack.calc.sizing.rules.rule import RuleId
 from loopslack.calc.sizing.walk import StepCode
 from loopslack.contract import quantity as q
-from loopslack.contract.answers.common import AnswerPart, AnyQuantity, CheckVerdict, SourceNote, Verdict
 from loopslack.contract.answers.loop import ScenarioId
+from loopslack.contract.answers.shared import AnswerPart, AnyQuantity, CheckVerdict, SourceNote, Verdict
 from loopslack.contract.questions.fields import text
 
 

@@ -13,10 +13,10 @@ from loopslack.calc.checks import pressure_to_withstand
 from loopslack.calc.model import Branch, Loop, Vessel
 from loopslack.calc.remedies.case import Strength
 from loopslack.calc.remedies.changes import SHORTEST, VESSEL, Change, ChangeId
-from loopslack.contract.answers.common import AnyQuantity
 from loopslack.contract.answers.remedies import QuestionChange
-from loopslack.contract.writing.common import any_quantity
+from loopslack.contract.answers.shared import AnyQuantity
 from loopslack.contract.writing.quantities import System
+from loopslack.contract.writing.shared import any_quantity
 from loopslack.kernel import kinds
 from loopslack.kernel.kinds import Kind
 from loopslack.kernel.units import from_si

@@ -10,9 +10,9 @@ from loopslack.calc.fit import Fit
 from loopslack.calc.stagnation import charge_of
 from loopslack.contract.answers import course as out
 from loopslack.contract.quantity import TimeSpan
-from loopslack.contract.writing.common import source_note
 from loopslack.contract.writing.loop import Pressures
 from loopslack.contract.writing.quantities import Writer
+from loopslack.contract.writing.shared import source_note
 from loopslack.kernel.work import finished
 
 _MINUTE = 60.0

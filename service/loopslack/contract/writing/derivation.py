@@ -11,12 +11,12 @@ from loopslack.calc.derivation.whole import derive_check, derive_design
 from loopslack.calc.design import Design
 from loopslack.calc.existing import Checked
 from loopslack.contract.answers import derivation as out
-from loopslack.contract.answers.common import AnyQuantity
+from loopslack.contract.answers.shared import AnyQuantity
 from loopslack.contract.questions.operations import LoopQuestion, VesselSizingQuestion
 from loopslack.contract.reading.derivation import ground_of
 from loopslack.contract.reading.loop import Reading
-from loopslack.contract.writing.common import any_quantity, source_note
 from loopslack.contract.writing.quantities import System
+from loopslack.contract.writing.shared import any_quantity, source_note
 from loopslack.kernel.equation import EQUATIONS, Equation
 from loopslack.kernel.kinds import Kind
 from loopslack.kernel.value import Assumed, Given, Tabulated, Value

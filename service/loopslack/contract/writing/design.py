@@ -13,12 +13,12 @@ from loopslack.calc.selection import Selection as Selected
 from loopslack.calc.settings_card import settings_card
 from loopslack.calc.sizing.volumes import Sized
 from loopslack.contract.answers import loop as out
-from loopslack.contract.answers.common import Basis, Check
 from loopslack.contract.answers.order import OrderList
+from loopslack.contract.answers.shared import Basis, Check
 from loopslack.contract.reading.loop import Reading
 from loopslack.contract.writing import loop as write_loop
-from loopslack.contract.writing.common import optional_quantity
 from loopslack.contract.writing.quantities import System, Writer
+from loopslack.contract.writing.shared import optional_quantity
 from loopslack.kernel import kinds
 from loopslack.kernel.kinds import Kind
 

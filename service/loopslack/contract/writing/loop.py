@@ -16,11 +16,11 @@ from loopslack.calc.judgement import Judgement, StateResult
 from loopslack.calc.model import Loop, Vessel
 from loopslack.calc.scenarios import DOUBT_IDS, Scenario
 from loopslack.contract.answers import loop as out
-from loopslack.contract.answers.common import Check, CheckVerdict
+from loopslack.contract.answers.shared import Check, CheckVerdict
 from loopslack.contract.quantity import Pressure, Price
 from loopslack.contract.reading.reader import Assumed
-from loopslack.contract.writing.common import optional_quantity
 from loopslack.contract.writing.quantities import Writer
+from loopslack.contract.writing.shared import optional_quantity
 from loopslack.kernel import kinds
 
 _NO_RANGE = 1e-12  # m3

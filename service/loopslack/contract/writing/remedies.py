@@ -15,15 +15,15 @@ from loopslack.calc.remedies.pairs import Pair
 from loopslack.calc.remedies.robust import RobustCooler as FoundCooler
 from loopslack.calc.remedies.seek import Remedies as FoundRemedies
 from loopslack.contract.answers import remedies as out
-from loopslack.contract.answers.common import AnyQuantity, Caution
 from loopslack.contract.answers.loop import VesselResult
+from loopslack.contract.answers.shared import AnyQuantity, Caution
 from loopslack.contract.quantity import Pressure
 from loopslack.contract.writing.changes import Asked, question_changes
-from loopslack.contract.writing.common import any_quantity
 from loopslack.contract.writing.loop import Pressures
 from loopslack.contract.writing.loop import vessel as write_vessel
 from loopslack.contract.writing.quantities import Writer
 from loopslack.contract.writing.remedy_words import CAUTIONS, SENTENCES
+from loopslack.contract.writing.shared import any_quantity
 from loopslack.kernel import kinds
 
 _SHARES = {"mass-percent": "% by mass", "volume-percent": "% by volume"}

@@ -12,11 +12,11 @@ from loopslack.calc.sizing.rules.register import RULES, RuleResult, run_all
 from loopslack.calc.sizing.walk import Step
 from loopslack.calc.sizing.walk import Walk as WalkResult
 from loopslack.contract.answers import sizing as out
-from loopslack.contract.answers.common import AnyQuantity
 from loopslack.contract.answers.loop import ScenarioId
-from loopslack.contract.writing.common import any_quantity, source_note
+from loopslack.contract.answers.shared import AnyQuantity
 from loopslack.contract.writing.loop import Pressures
 from loopslack.contract.writing.quantities import System, Writer
+from loopslack.contract.writing.shared import any_quantity, source_note
 from loopslack.kernel import kinds
 from loopslack.kernel.errors import NotApplicable
 from loopslack.kernel.kinds import Kind

@@ -1,6 +1,6 @@
 """Every default that was used: what was left open, what stood in, why, and where that comes from."""
 
-from loopslack.contract.answers.common import Assumption
+from loopslack.contract.answers.shared import Assumption
 from loopslack.sheet.case import Case
 from loopslack.sheet.lines import Column, Row, Section, Table, Text
 from loopslack.sheet.sections.names import (

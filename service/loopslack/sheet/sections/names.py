@@ -2,7 +2,7 @@
 
 import re
 
-from loopslack.contract.answers.common import Assumption, Check, SourceNote
+from loopslack.contract.answers.shared import Assumption, Check, SourceNote
 from loopslack.sheet.case import JOINT, Case
 from loopslack.sheet.customary import nominal_size
 from loopslack.sheet.lines import Mark

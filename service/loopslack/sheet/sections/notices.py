@@ -1,7 +1,7 @@
 """What to know about this loop, gravest first, and what is still to be confirmed."""
 
-from loopslack.contract.answers.common import Advisory, Check
 from loopslack.contract.answers.loop import Provisional
+from loopslack.contract.answers.shared import Advisory, Check
 from loopslack.sheet.case import Case
 from loopslack.sheet.lines import Bullets, Notice, Section, Text
 from loopslack.sheet.sections.names import member_name, state_name, subject_name

@@ -1,7 +1,7 @@
 """The verdict, the vessel with its settings, the loop as a drawing, and the tightest margin of every check."""
 
-from loopslack.contract.answers.common import Check
 from loopslack.contract.answers.loop import StagnationState
+from loopslack.contract.answers.shared import Check
 from loopslack.sheet.case import Case
 from loopslack.sheet.figures.schematic import loop_schematic
 from loopslack.sheet.figures.verdicts import verdict_sign

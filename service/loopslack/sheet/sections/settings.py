@@ -1,7 +1,7 @@
 """The card that hangs at the vessel: what to set, what to fill to on the day, what the gauge should show."""
 
-from loopslack.contract.answers.common import AnyQuantity
 from loopslack.contract.answers.loop import SettingsCard
+from loopslack.contract.answers.shared import AnyQuantity
 from loopslack.contract.quantity import Pressure
 from loopslack.sheet.case import Case
 from loopslack.sheet.figures.filling import fill_pressure_over_temperature

@@ -2,7 +2,7 @@
 
 from collections.abc import Iterable
 
-from loopslack.contract.answers.common import AnyQuantity
+from loopslack.contract.answers.shared import AnyQuantity
 from loopslack.contract.answers.sizing import RuleComparison, SensitivityRow, WalkStep
 from loopslack.sheet.case import Case
 from loopslack.sheet.numerals import NO_BREAK, rounded

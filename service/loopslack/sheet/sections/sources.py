@@ -2,7 +2,7 @@
 
 from collections.abc import Iterator
 
-from loopslack.contract.answers.common import SourceNote
+from loopslack.contract.answers.shared import SourceNote
 from loopslack.library.sources import sources as published
 from loopslack.sheet.case import Case
 from loopslack.sheet.lines import Column, Row, Section, Table

@@ -5,7 +5,7 @@ from importlib import import_module
 from pkgutil import walk_packages
 
 from loopslack import __version__, calc, physics
-from loopslack.contract.answers.common import (
+from loopslack.contract.answers.shared import (
     AnyQuantity,
     Assumption,
     Caution,
