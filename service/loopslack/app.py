@@ -16,7 +16,7 @@ from litestar.exceptions import HTTPException
 from litestar.types import ASGIApp, Receive, Scope, Send
 
 from loopslack.api.costly import Costly
-from loopslack.api.costly_work import costly_work
+from loopslack.api.costly_work import MOST_GROWN, costly_work
 from loopslack.api.docs import DOCS_PAGES
 from loopslack.api.guard import Guard, is_guarding, warn_if_open
 from loopslack.api.many_places import ManyPlaces
@@ -50,7 +50,9 @@ class Application:
         self.lag = LoopLag()
         self.readiness = READINESS
         operations = tuple(operations)
-        costly = Side(lambda: costly_work(operations, settings.nesting), self.readiness, too_late_to_fork)
+        costly = Side(
+            lambda: costly_work(operations, settings.nesting), self.readiness, too_late_to_fork, MOST_GROWN
+        )
         many = Side(lambda: many_work(settings), self.readiness)
         self._sides = (costly, many)
         self.costly = Costly(costly, settings.costly_waiting, settings.deadline_seconds)

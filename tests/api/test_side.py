@@ -224,3 +224,35 @@ def test_what_was_forked_in_time_goes_on_when_it_is_too_late_for_another():
     first, second = asyncio.run(scene())
     assert first != second
     side.close()
+
+
+def growing(message: bytes) -> bytes:
+    """Keep as many bytes as it is told, and say who keeps them."""
+    KEPT.append(b"x" * int(message))
+    return str(os.getpid()).encode()
+
+
+KEPT: list[bytes] = []
+
+
+def test_a_process_that_has_grown_too_much_is_ended_after_its_answer_and_none_is_lost():
+    side = Side(lambda: growing, Readiness(), most_grown=30_000_000)
+
+    async def scene():
+        return [int(await side.ask(size, 5)) for size in (b"1000", b"1000", b"50000000", b"1000", b"1000")]
+
+    one, same, grown, new, again = asyncio.run(scene())
+    assert one == same == grown
+    assert new == again != one
+    assert dies(one)
+    side.close()
+
+
+def test_a_process_that_keeps_something_may_grow():
+    side = Side(lambda: growing, Readiness())
+
+    async def scene():
+        return [int(await side.ask(size, 5)) for size in (b"1000", b"50000000", b"1000")]
+
+    assert len(set(asyncio.run(scene()))) == 1
+    side.close()

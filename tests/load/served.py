@@ -210,7 +210,7 @@ def memory(run: Run) -> list[Figure]:
         held = max(map(descriptors, server.workers()))
     return [
         at_most("memory of a worker, no sheets", before, 80.0, "MB"),
-        at_most(f"memory of a worker, {requests} sheets", after, 160.0, "MB"),
+        at_most(f"memory of a worker, {requests // 2} sheets each", after, 160.0, "MB"),
         at_most("growth over the second half", after - middle, 3.0, "MB"),
         Figure("descriptors held by a worker", f"{held}"),
     ]

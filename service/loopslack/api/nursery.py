@@ -18,6 +18,8 @@ import socket
 import struct
 from collections.abc import Callable, Iterable
 from contextlib import suppress
+from functools import partial
+from math import inf
 from pathlib import Path
 from typing import NoReturn
 
@@ -32,8 +34,8 @@ _Life = Callable[[socket.socket, Callable[[], Work]], None]
 HEAD = struct.Struct(">Id")
 """Before a message: its length, and the seconds after which the side process ends for want of an answer."""
 
-LENGTH = struct.Struct(">I")
-"""Before an answer: its length."""
+ANSWER_HEAD = struct.Struct(">I?")
+"""Before an answer: its length, and whether the side process is worn out and another should be begun for the next."""
 
 _ORDER = struct.Struct(">I")
 _NOBODY = 0
@@ -56,8 +58,14 @@ class NurseryLostError(Exception):
 class Nursery:
     """The nursery as its worker sees it: begins a side process, or ends it. There is one at a time."""
 
-    def __init__(self, prepare: Callable[[], Work], too_late: Callable[[], str] = str) -> None:
+    def __init__(
+        self,
+        prepare: Callable[[], Work],
+        too_late: Callable[[], str] = str,
+        most_grown: float = inf,
+    ) -> None:
         self._prepare = prepare
+        self._most_grown = most_grown
         self._too_late = too_late
         self._control: socket.socket | None = None
         self._process = 0
@@ -78,7 +86,7 @@ class Nursery:
         ours, theirs = socket.socketpair()
         self._process = os.fork()
         if self._process == 0:
-            _alone(theirs, _tend, self._prepare)
+            _alone(theirs, partial(_tend, most_grown=self._most_grown), self._prepare)
         theirs.close()
         ours.setblocking(False)
         self._control = ours
@@ -165,7 +173,7 @@ def _close_all_but(kept: Iterable[int]) -> None:
                 os.close(handle)
 
 
-def _tend(control: socket.socket, prepare: Callable[[], Work]) -> None:
+def _tend(control: socket.socket, prepare: Callable[[], Work], most_grown: float) -> None:
     """The nursery itself: do as told until the worker has gone, then end what was begun."""
     process = 0
     try:
@@ -177,7 +185,7 @@ def _tend(control: socket.socket, prepare: Callable[[], Work]) -> None:
             ours, theirs = socket.socketpair()
             process = os.fork()
             if process == 0:
-                _alone(theirs, _serve, prepare)
+                _alone(theirs, partial(_serve, most_grown=most_grown), prepare)
             theirs.close()
             socket.send_fds(control, [order], [ours.fileno()])
             ours.close()
@@ -192,19 +200,30 @@ def _end(process: int) -> None:
         os.waitpid(process, 0)
 
 
-def _serve(connection: socket.socket, prepare: Callable[[], Work]) -> None:
+def _serve(connection: socket.socket, prepare: Callable[[], Work], most_grown: float) -> None:
     """The side process itself: answer messages until the worker closes the connection.
 
     A message that takes too long ends the process by the system's own alarm, also where nobody is left to end it.
     """
     os.nice(NICENESS)
+    at_first = _memory()
     work = prepare()
     with connection.makefile("rwb") as stream:
         while len(head := stream.read(HEAD.size)) == HEAD.size:
             length, seconds = HEAD.unpack(head)
             signal.setitimer(signal.ITIMER_REAL, seconds)
             answer = work(stream.read(length))
-            stream.write(LENGTH.pack(len(answer)))
+            stream.write(ANSWER_HEAD.pack(len(answer), _memory() - at_first > most_grown))
             stream.write(answer)
             stream.flush()
             signal.setitimer(signal.ITIMER_REAL, 0.0)
+
+
+def _memory() -> int:
+    """The resident size of this process in bytes; nothing where the system does not tell."""
+    try:
+        return int(Path("/proc/self/statm").read_text(encoding="ascii").split()[1]) * os.sysconf(
+            "SC_PAGE_SIZE"
+        )
+    except OSError:
+        return 0

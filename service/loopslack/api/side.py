@@ -9,9 +9,10 @@ one gets a process that is new. What is asked, and how many may wait, is a matte
 import asyncio
 import logging
 from collections.abc import Callable
+from math import inf
 from time import monotonic
 
-from loopslack.api.nursery import HEAD, LENGTH, Nursery, NurseryLostError, Work
+from loopslack.api.nursery import ANSWER_HEAD, HEAD, Nursery, NurseryLostError, Work
 from loopslack.contract.refusals import Refused
 from loopslack.observability import Readiness, count_lost_side
 
@@ -45,13 +46,18 @@ class _Line:
 class Side:
     """One kind of work and the process that does it, begun when it is first needed.
 
-    `too_late` says why this process can no longer be forked for it, or nothing.
+    `too_late` says why this process can no longer be forked for it, or nothing. A process that has grown by more than
+    `most_grown` bytes is ended after its answer; only for work that keeps nothing from one message to the next.
     """
 
     def __init__(
-        self, prepare: Callable[[], Work], readiness: Readiness, too_late: Callable[[], str] = str
+        self,
+        prepare: Callable[[], Work],
+        readiness: Readiness,
+        too_late: Callable[[], str] = str,
+        most_grown: float = inf,
     ) -> None:
-        self._nursery = Nursery(prepare, too_late)
+        self._nursery = Nursery(prepare, too_late, most_grown)
         self._readiness = readiness
         self._line: _Line | None = None
 
@@ -100,9 +106,9 @@ class Side:
         answered = False
         try:
             writer.write(message)
-            (length,) = LENGTH.unpack(await reader.readexactly(LENGTH.size))
+            length, worn = ANSWER_HEAD.unpack(await reader.readexactly(ANSWER_HEAD.size))
             answer = await reader.readexactly(length)
-            answered = True
+            answered = not worn  # one that is worn out is ended; the next message gets a new one
         except (OSError, asyncio.IncompleteReadError):
             count_lost_side()
             raise SideLostError("the side process ended in the middle of its work") from None
