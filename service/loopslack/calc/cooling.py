@@ -11,12 +11,14 @@ from msgspec import Struct
 
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.balance import Mixing
+from loopslack.calc.extents import Extents
 from loopslack.calc.scenarios import Scenario
 from loopslack.calc.stagnation import charge_of, stagnation
 from loopslack.calc.window import Bound, Bounds, Gas, Window
 from loopslack.kernel.roots import bracketed, met_from_below
 
 _MOST = 1e3  # m3: no cooling vessel is sought beyond
+_COARSE = 3200  # pressures of the grid of looks that a first look at the membrane takes together
 _TOLERANCE = 1e-7  # of a content or a mass; the answer is then moved to the safe side by as much
 
 
@@ -52,12 +54,45 @@ def spare(charged: Charged, scenario: Scenario, limit: float) -> float:
     return inf if held == inf else _until(charged, scenario, held, limit)
 
 
-def most_held(charged: Charged, scenarios: Sequence[Scenario]) -> float:
+def surely_cool(
+    charged: Charged, scenarios: Sequence[Scenario], limit: float, extents: Extents, *, closely: bool
+) -> bool:
+    """Whether looks on a grid already show that no scenario heats the membrane beyond ``limit`` K.
+
+    A vessel that holds the liquid it mixes to the limit with stands at a pressure at which the loop pushes out less
+    than that takes. ``closely`` looks again on the finest grid. False says only that an exact look is needed.
+    """
+    analysis, gas, mass = charged.analysis, charged.gas, charged.least
+    if limit <= analysis.mix.room or mass < 0:
+        return False
+    charge = charge_of(analysis, gas, mass)
+    held = _held_at(analysis.mix, charge.filled, limit)
+    if held == inf:
+        return True
+    grids = (_COARSE, 1) if closely else (_COARSE,)
+    for follows in (False, True):
+        warm = limit if follows else charge.room
+        pressure = charge.pressure_holding(held, warm)
+        left = (held - charge.allowance) * analysis.fluid.density(warm) - mass
+        for scenario in scenarios:
+            if scenario.gas_follows is follows and all(
+                extents.at_most(scenario, pressure, coarse) > left for coarse in grids
+            ):
+                return False
+    return True
+
+
+def most_held(charged: Charged, scenarios: Sequence[Scenario], extents: Extents) -> float:
     """Most liquid (m3) the vessel holds under any of some scenarios that keep its gas at the room's temperature."""
     analysis, most = charged.analysis, 0.0
+    charge = charge_of(analysis, charged.gas, charged.least)
     # The one that pushes out most at the valve's pressure is likely to anywhere; of the others one look tells.
     for scenario in sorted(scenarios, key=lambda s: -analysis.case(s).final.expelled):
-        if _until(charged, scenario, most, analysis.loop.temperatures.vessel_room) < 0:
+        if most:
+            left = (most - charge.allowance) * analysis.room_density - charged.least
+            if extents.at_most(scenario, charge.pressure_holding(most, charge.room), _COARSE) <= left:
+                continue
+        if not most or _until(charged, scenario, most, analysis.loop.temperatures.vessel_room) < 0:
             most = max(most, stagnation(analysis, scenario, charged.gas, charged.least).liquid)
     return most
 

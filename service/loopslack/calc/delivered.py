@@ -11,30 +11,30 @@ from loopslack.calc.window import Bounds, Gas
 from loopslack.kernel.roots import bracketed
 
 _HALVINGS = 20
-_TOLERANCE = 0.1  # Pa
+_TOLERANCE = 20.0  # Pa, far less than any gauge shows
 
 
 def nearest_precharge(
-    adjusted: Fit, scenarios: Sequence[Scenario], delivered: float, holds: Callable[[float], bool]
+    adjusted: Fit, bounds: Bounds, delivered: float, holds: Callable[[float], bool]
 ) -> float:
     """Delivered precharge (gauge Pa at sea level) nearest to ``delivered`` that leaves a wide enough window.
 
-    ``adjusted`` is the same vessel with a precharge that does; ``holds`` says whether the vessel would do with a
-    delivered precharge, its cooling vessel found anew.
+    ``adjusted`` is the same vessel with a precharge that does, ``bounds`` are those of its loop for any precharge;
+    ``holds`` says whether the vessel would do with a delivered precharge, its cooling vessel found anew.
     """
     gas = adjusted.gas
 
     def slack(precharge: float) -> float:
         charged = Gas(gas.nominal, precharge + SEA_LEVEL, DELIVERY_TEMPERATURE, gas.acceptance)
-        bounds = Bounds(adjusted.analysis, scenarios, charged)
-        lower, upper = bounds.masses(charged.nominal, charged.acceptance)
-        return slack_between(bounds, charged.nominal, lower.mass, upper.mass)
+        own = bounds.charged(charged)
+        lower, upper = own.masses(charged.nominal, charged.acceptance)
+        return slack_between(own, charged.nominal, lower.mass, upper.mass)
 
     works = gas.precharge * DELIVERY_TEMPERATURE / gas.temperature - SEA_LEVEL
     inside, outside = (works, slack(works)), (delivered, slack(delivered))
     if inside[1] <= 0 or outside[1] >= 0:
         return works
-    jump = _hot_gas_fills(adjusted, scenarios)
+    jump = _hot_gas_fills(adjusted, bounds.scenarios)
     if works < jump < delivered:
         at_jump = jump, slack(jump)
         inside, outside = (at_jump, outside) if at_jump[1] > 0 else (inside, at_jump)
@@ -42,8 +42,8 @@ def nearest_precharge(
     if found != jump:
         (low, at_low), (high, at_high) = sorted((inside, outside))
         found = bracketed(slack, low, high, at_low, at_high, _TOLERANCE).at
-    # A pascal towards the one that works, so that the answer itself works.
-    found += 1.0 if works > found else -1.0
+    # Beyond the tolerance towards the one that works, so that the answer itself works.
+    found += 2 * _TOLERANCE if works > found else -2 * _TOLERANCE
     if holds(found):
         return found
     # Another precharge may ask for another cooling vessel, which narrows the window: halve the way to what works.

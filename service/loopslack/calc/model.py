@@ -168,7 +168,7 @@ class Precharge(Struct, frozen=True, kw_only=True):
     temperature: float | None = None
 
 
-class Vessel(Struct, frozen=True, kw_only=True):
+class Vessel(Struct, frozen=True, kw_only=True, gc=False):
     """An expansion vessel as an article: volumes m3, pressures gauge Pa, price in ``currency``.
 
     ``delivered_precharge`` is a gauge reading at sea level; None means unknown.

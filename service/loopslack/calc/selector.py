@@ -1,33 +1,38 @@
 """Compares candidates for one loop: each checked itself, each refusal with its number.
 
-Candidates of the same size share everything the loop has to say about that size, so that a list of thousands costs
-little more than a list of fifty.
+A look at a candidate in the loop as it was sized, with the cooling vessel of the smallest volume, costs little and
+proves that it does. One that does not do there may with a cooling vessel of its own, which has to be solved; beyond
+``_MOST_SOLVED`` of those the look alone tells, and the refusal says so.
 """
 
 from collections.abc import Sequence
 from functools import cached_property
 from math import inf
+from typing import NamedTuple
 
 from msgspec.structs import replace
 
-from loopslack.calc.acceptance import AcceptanceNeeded, Extents
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.checks import pressure_to_withstand
-from loopslack.calc.cooling import Charged, hottest
-from loopslack.calc.delivered import nearest_precharge
+from loopslack.calc.explaining import explained
 from loopslack.calc.fit import Fit, cooling_for, fit
+from loopslack.calc.looks import Looks, tolerant, too_large
 from loopslack.calc.model import Vessel
-from loopslack.calc.precharge import gas_of
-from loopslack.calc.reasons import Reason, ReasonCode, shortage
+from loopslack.calc.reasons import Reason, shortage
 from loopslack.calc.scenarios import BASE, Scenario
 from loopslack.calc.sizing.volumes import CoolingMode, Sized, size
-from loopslack.calc.window import Bounds
 from loopslack.kernel import kinds
 from loopslack.kernel.errors import CalculationError
 
-# Refusals solved with the candidate's own cooling vessel; further ones are told by the loop as sized, so that a list
-# of thousands stays affordable.
 _MOST_SOLVED = 50
+_ROOMIER = 1.5, 4.0  # of the cooling vessel of the smallest volume: enough for nearly all that do at all
+
+
+class Grounds(NamedTuple):
+    """The reasons against a candidate; ``as_sized`` where it might do with a cooling vessel of its own, not solved."""
+
+    reasons: tuple[Reason, ...]
+    as_sized: bool = False
 
 
 class Selector:
@@ -48,29 +53,41 @@ class Selector:
         self.cooling: CoolingMode = cooling
         self.membrane_limit = membrane_limit
         self._fits: dict[tuple[object, ...], Fit | None] = {}
-        self._reasons: dict[tuple[object, ...], tuple[Reason, ...]] = {}
-        self._other_reasons: dict[tuple[object, ...], list[Reason]] = {}
-        self._acceptances: dict[tuple[float, float | None], AcceptanceNeeded] = {}
-        self._extents: Extents = {}
-        self._precharges: dict[tuple[float, float], list[Reason]] = {}
+        self._contents: dict[tuple[float, float | None, float], float | None] = {}
+        self._grounds: dict[tuple[object, ...], Grounds] = {}
+        self._other_grounds: dict[tuple[object, ...], Grounds] = {}
+        self._looks = (
+            None if sized is None else Looks(sized.analysis, scenarios, adds_cooling=cooling == "size")
+        )
+        cold = tuple(scenario for scenario in scenarios if not scenario.gas_follows)
+        self._kindest = Looks(
+            analysis, cold, adds_cooling=False
+        )  # no cooling vessel, no warm gas: nothing is asked for less
         self._solved = 0
         self._needed = pressure_to_withstand(analysis, analysis.loop.relief, 0.0)
 
     def reasons(self, vessel: Vessel, count: int, *, exact: bool = True) -> tuple[Reason, ...]:
+        """Every reason against a candidate; none means that it does."""
+        return self.grounds(vessel, count, exact=exact).reasons
+
+    def grounds(self, vessel: Vessel, count: int, *, exact: bool = True) -> Grounds:
         """Every reason against a candidate.
 
-        ``exact`` solves for the candidate's own cooling vessel; without it, and after ``_MOST_SOLVED`` refusals, the
-        loop as sized tells, which is enough to sort those ranked after the choice.
+        ``exact`` solves for the cooling vessel of a candidate that does not do with that of the smallest volume;
+        without it the look is enough, which is all that those ranked after the choice are given.
         """
-        own = self._own(vessel)
-        key = (exact, count, vessel.rated_pressure, own)
-        found = self._reasons.get(key)
+        fixed = None if vessel.precharge_adjustable else vessel.delivered_precharge
+        size, accepted, limit = vessel.nominal_volume, vessel.acceptance_volume, vessel.membrane_limit
+        key = vessel.rated_pressure, size, accepted, fixed, limit, count, exact
+        found = self._grounds.get(key)
         if found is None:
-            others = self._other_reasons.get((exact, count, own))
+            own = key[1:]
+            others = self._other_grounds.get(own)
             if others is None:
-                others = self.against(vessel, count, exact=exact)
-                self._other_reasons[exact, count, own] = others
-            found = self._reasons[key] = (*self._rating(vessel), *others)
+                others = self._other_grounds[own] = self.against(vessel, count, exact=exact)
+            rating = self._rating(vessel)
+            found = Grounds((*rating, *others.reasons), others.as_sized) if rating else others
+            self._grounds[key] = found
         return found
 
     def _rating(self, vessel: Vessel) -> list[Reason]:
@@ -80,62 +97,116 @@ class Selector:
             return []
         return [shortage("rated-pressure", kinds.GAUGE_PRESSURE, rated, self._needed)]
 
-    def against(self, vessel: Vessel, count: int, *, exact: bool) -> list[Reason]:
+    def against(self, vessel: Vessel, count: int, *, exact: bool) -> Grounds:
         """Every reason but the rated pressure, which has to do with nothing else."""
-        sized = self.sized
-        if sized is None:
+        sized, looks = self.sized, self._looks
+        if sized is None or looks is None:
             rest = self._rest
-            return [self._no_volume, *(rest.against(vessel, count, exact=False) if rest else ())]
-        found: list[Reason] = []
-        nominal = vessel.nominal_volume * count
-        smallest, largest = sized.smallest, sized.interval.largest
-        if nominal < smallest:
-            found.append(shortage("nominal-volume", kinds.NOMINAL_VOLUME, nominal, smallest))
-            found += self._acceptance(vessel, count, sized, smallest, None)
-        elif nominal > largest:
-            code: ReasonCode = "nominal-volume-beyond-interval"
-            found.append(Reason(code, kinds.NOMINAL_VOLUME, nominal, largest, nominal - largest))
-        else:
-            brief = [] if exact and self._solved < _MOST_SOLVED else self._brief(vessel, count, sized)
-            if brief or not exact:
-                return found + brief
-            fitted = self.fit(vessel, count)
-            if fitted is None:
-                limit = self._limit(vessel)
-                found.append(Reason("membrane-temperature", kinds.TEMPERATURE, limit, None, None))
-            elif not fitted.window.wide_enough:
-                self._solved += 1
-                self._explain(vessel, count, fitted, found)
-        return found
-
-    def _brief(self, vessel: Vessel, count: int, sized: Sized) -> list[Reason]:
-        """Reasons against a vessel in the loop as it was sized, with the cooling vessel of the smallest one."""
+            return Grounds(
+                (self._no_volume, *(rest.against(vessel, count, exact=False).reasons if rest else ()))
+            )
         nominal = vessel.nominal_volume * count
         fixed = None if vessel.precharge_adjustable else vessel.delivered_precharge
-        if fixed is not None:
-            narrow = self._precharges.get((nominal, fixed))
-            if narrow is None:
-                narrow = self._precharges[nominal, fixed] = self._as_delivered(nominal, fixed, sized)
-            if narrow:
-                return narrow
-        return self._acceptance(vessel, count, sized, nominal, fixed)
+        limit = self.limit(vessel)
+        usual = fixed is None and limit <= self.membrane_limit
+        if nominal < sized.floor or (nominal < sized.smallest and (usual or self._hopeless(nominal, fixed))):
+            # The smallest volume is that of just such a vessel with a membrane that takes more.
+            return Grounds(self._too_small(vessel, count, sized, looks))
+        sizing, wide = self.cooling == "size", looks.wide(vessel, count)
+        cool = (wide or not sizing) and looks.cool(vessel, count, limit)
+        if wide and cool:
+            return Grounds(())
+        if not wide and not usual and self._hopeless(nominal, fixed):
+            return Grounds(self._told(vessel, count, sized, looks))
+        # Gas that stays cooler may leave a vessel of much precharge the window that it has not yet.
+        worth = self._roomier if wide else self._roomier[-1:] if fixed is not None else ()
+        roomy = any(roomier.does(vessel, count, limit) for roomier in worth)
+        if roomy and not exact:
+            return Grounds(())
+        # A cooling vessel of its own changes what a candidate has room for, and may cool a membrane that is too hot.
+        unsure = wide or (sized.cooling > 0 if sizing else not cool)
+        if unsure and self._worth_solving(exact=exact, does=wide, still=not sizing and not cool):
+            self._solved += 1
+            fitted = self.fit(vessel, count)
+            if roomy or (fitted is not None and fitted.window.wide_enough):
+                return Grounds(())
+            told = fixed is not None and self._doing(vessel, count, fixed)
+            if not told and sized.smallest <= nominal <= sized.interval.largest:
+                return Grounds(tuple(explained(self, vessel, count, fitted)))
+            unsure = False
+        return Grounds(self._told(vessel, count, sized, looks), unsure)
 
-    def _as_delivered(self, nominal: float, fixed: float, sized: Sized) -> list[Reason]:
-        """Whether the precharge as delivered leaves a vessel of ``nominal`` m3 a window in the loop as sized."""
-        plain = self._plain(_article(nominal, fixed), sized)
-        if plain.window.wide_enough:
-            return []
-        adjusted = self._plain(_article(nominal, None), sized)
-        if not adjusted.window.wide_enough:
-            return [self._too_narrow(plain)]
-        needed = nearest_precharge(adjusted, self.scenarios, fixed, lambda _: True)
-        return [shortage("precharge-as-delivered", kinds.GAUGE_PRESSURE, fixed, needed)]
+    def _hopeless(self, nominal: float, fixed: float | None) -> bool:
+        """Whether a vessel has no wide enough window even without a cooling vessel and with its gas cool."""
+        return not self._kindest.plain(nominal, fixed).window.wide_enough
 
-    def _plain(self, article: Vessel, sized: Sized) -> Fit:
-        """A vessel in the loop as it was sized."""
-        gas = gas_of(sized.analysis, article, 1)
-        window = Bounds(sized.analysis, self.scenarios, gas).window(gas.nominal)
-        return Fit(article, 1, gas, sized.analysis, window)
+    def _told(self, vessel: Vessel, count: int, sized: Sized, looks: Looks) -> tuple[Reason, ...]:
+        """The reasons of a candidate that was not solved, by a look."""
+        nominal = vessel.nominal_volume * count
+        if nominal < sized.smallest:
+            return self._too_small(vessel, count, sized, looks)
+        limit = self.limit(vessel)
+        unknown = Reason("membrane-temperature", kinds.TEMPERATURE, limit, None, None)
+        fixed = None if vessel.precharge_adjustable else vessel.delivered_precharge
+        # As it is but for what its membrane takes: told by the smallest cooling vessel it does with.
+        cool = self._doing(vessel, count, fixed)
+        if cool:
+            return tuple(cool.short_membrane(vessel, count, nominal, fixed)) or (unknown,)
+        free = None if fixed is None else self._doing(vessel, count, None)
+        if fixed is not None and free:
+            # Another precharge may warm the membrane much: told by the largest cooling vessel it does with.
+            ample = self._doing(vessel, count, None, last=True) or free
+            return ample.delivered(nominal, fixed, limit), *free.short_membrane(vessel, count, nominal, None)
+        if nominal > sized.interval.largest and not looks.wide(tolerant(vessel), count):
+            return (too_large(nominal, sized.interval.largest),)
+        if self.cooling == "size" and self._solved < _MOST_SOLVED:
+            self._solved += 1
+            return tuple(explained(self, vessel, count, self.fit(vessel, count)))
+        return tuple(looks.lacks(vessel, count, limit)) or (unknown,)
+
+    def _doing(self, vessel: Vessel, count: int, fixed: float | None, *, last: bool = False) -> Looks | None:
+        """The look with the smallest cooling vessel, or the largest, by which a vessel does, its acceptance aside."""
+        unlimited = tolerant(vessel)
+        if fixed is None:
+            unlimited = replace(unlimited, precharge_adjustable=True)
+        every = [look for look in (self._looks, *self._roomier) if look is not None]
+        does = (
+            look for look in every[:: -1 if last else 1] if look.does(unlimited, count, self.limit(vessel))
+        )
+        return next(does, None)
+
+    @cached_property
+    def _roomier(self) -> tuple[Looks, ...]:
+        """Looks at the loop with larger cooling vessels, as larger or warmer vessels need them; see ``_ROOMIER``."""
+        sized, looks = self.sized, self._looks
+        if sized is None or looks is None or self.cooling != "size":
+            return ()
+        contents = [share * sized.cooling for share in _ROOMIER if sized.cooling > 0]
+        return tuple(
+            Looks(
+                self.analysis.with_cooling(content),
+                self.scenarios,
+                adds_cooling=True,
+                extents=looks.extents,
+            )
+            for content in contents
+        )
+
+    def _worth_solving(self, *, exact: bool, does: bool, still: bool) -> bool:
+        """Whether a candidate is solved of which a look does not tell all.
+
+        ``does`` says that nothing but the membrane's temperature is open, ``still`` that no cooling vessel is added
+        that could settle it. A candidate that may be the choice is always worth it where it does otherwise.
+        """
+        if exact and does:
+            return True
+        return (exact or does or still) and self._solved < _MOST_SOLVED
+
+    def _too_small(self, vessel: Vessel, count: int, sized: Sized, looks: Looks) -> tuple[Reason, ...]:
+        """A nominal volume below the smallest, and a membrane that takes less than even the smallest would hold."""
+        nominal = vessel.nominal_volume * count
+        small = shortage("nominal-volume", kinds.NOMINAL_VOLUME, nominal, sized.smallest)
+        return small, *looks.short_membrane(vessel, count, sized.smallest, None)
 
     @cached_property
     def _no_volume(self) -> Reason:
@@ -177,124 +248,49 @@ class Selector:
                 return Selector(self.analysis, scenarios, found, self.cooling, self.membrane_limit)
         return None
 
-    def _explain(self, vessel: Vessel, count: int, fitted: Fit, found: list[Reason]) -> None:
-        """Which property of the vessel narrows its window."""
-        unbounded = fit(
-            self.analysis,
-            self.scenarios,
-            replace(vessel, acceptance_volume=None),
-            count,
-            self.cooling,
-            self._limit(vessel),
-        )
-        if vessel.acceptance_volume is not None and unbounded and unbounded.window.wide_enough:
-            needed = AcceptanceNeeded(unbounded, self.scenarios).volume / count
-            value = vessel.acceptance_volume
-            found.append(Reason("acceptance-volume", kinds.ACCEPTANCE_VOLUME, value, needed, needed - value))
-            return
-        if not vessel.precharge_adjustable and vessel.delivered_precharge is not None:
-            adjusted = fit(
-                self.analysis,
-                self.scenarios,
-                replace(vessel, precharge_adjustable=True),
-                count,
-                self.cooling,
-                self.membrane_limit,
-            )
-            if adjusted is not None and adjusted.window.wide_enough:
-                found.append(self._delivered(vessel, vessel.delivered_precharge, adjusted))
-                return
-        if fitted.window.lower_bound.code == "membrane-temperature":
-            limit = self._limit(vessel)
-            needed_limit = self._membrane_needed(fitted)
-            short = None if needed_limit is None else needed_limit - limit
-            found.append(Reason("membrane-temperature", kinds.TEMPERATURE, limit, needed_limit, short))
-            return
-        found.append(self._too_narrow(fitted))
-
-    def _too_narrow(self, fitted: Fit) -> Reason:
-        width = fitted.window.width
-        limit = self.analysis.loop.criteria.window_width
-        value = width if abs(width) < inf else None
-        return Reason("no-window", kinds.PRESSURE_DIFFERENCE, value, limit, None)
-
-    def _delivered(self, vessel: Vessel, delivered: float, adjusted: Fit) -> Reason:
-        """How far the delivered precharge is from the nearest one that leaves a window."""
-
-        def holds(precharge: float) -> bool:
-            other = replace(vessel, delivered_precharge=precharge)
-            found = fit(
-                self.analysis, self.scenarios, other, adjusted.pieces, self.cooling, self.membrane_limit
-            )
-            return found is not None and found.window.wide_enough
-
-        needed = nearest_precharge(adjusted, self.scenarios, delivered, holds)
-        return shortage("precharge-as-delivered", kinds.GAUGE_PRESSURE, delivered, needed)
-
-    def _membrane_needed(self, fitted: Fit) -> float | None:
-        """Membrane limit (K) with which a vessel's window would be just wide enough."""
-        plain = fit(fitted.analysis, self.scenarios, fitted.vessel, fitted.pieces, "size", inf, content=0.0)
-        if plain is None or not plain.window.wide_enough:
-            return None
-        # Ten pascals lower, so that a window found with this limit is wide enough in spite of rounding.
-        lowest = plain.window.upper - self.analysis.loop.criteria.window_width - 10.0
-        charged = Charged(plain.analysis, plain.gas, plain.mass_at(lowest))
-        return hottest(charged, self.scenarios)[0] + 1e-6
-
-    def _acceptance(
-        self, vessel: Vessel, count: int, sized: Sized, nominal: float, fixed: float | None
-    ) -> list[Reason]:
-        """Whether the membrane takes what a vessel of ``nominal`` m3 would have to hold in the loop as sized."""
-        accepted = vessel.acceptance_volume
-        if accepted is None:
-            return []
-        asked = self._acceptances.get((nominal, fixed))
-        if asked is None:
-            fitted = self._plain(_article(nominal, fixed), sized)
-            asked = self._acceptances[nominal, fixed] = AcceptanceNeeded(
-                fitted, self.scenarios, self._extents
-            )
-        if asked.suffices(accepted * count):
-            return []
-        return [shortage("acceptance-volume", kinds.ACCEPTANCE_VOLUME, accepted, asked.volume / count)]
-
-    def _limit(self, vessel: Vessel) -> float:
+    def limit(self, vessel: Vessel) -> float:
+        """Membrane limit of a vessel, K."""
         return self.membrane_limit if vessel.membrane_limit is None else vessel.membrane_limit
 
-    @staticmethod
-    def _own(vessel: Vessel) -> tuple[object, ...]:
-        """All that tells one vessel from another, but its rating, its price and its name."""
-        fixed = None if vessel.precharge_adjustable else vessel.delivered_precharge
-        return vessel.nominal_volume, vessel.acceptance_volume, fixed, vessel.membrane_limit
+    def chosen(self, vessel: Vessel, count: int) -> Fit | None:
+        """A candidate that does, with its own cooling vessel, else with the smallest it is sure to do with."""
+        found = self.fit(vessel, count)
+        if found is not None and found.window.wide_enough:
+            return found
+        for look in (self._looks, *self._roomier):
+            if look is not None and look.does(vessel, count, self.limit(vessel)):
+                content = look.analysis.loop.cooling_content
+                return fit(
+                    self.analysis, self.scenarios, vessel, count, self.cooling, self.membrane_limit, content
+                )
+        return found
 
     def fit(self, vessel: Vessel, count: int) -> Fit | None:
         """A candidate in the loop with its own cooling vessel; None where none is large enough."""
-        key = (count, self._own(vessel))
+        fixed = None if vessel.precharge_adjustable else vessel.delivered_precharge
+        key = vessel.nominal_volume, vessel.acceptance_volume, fixed, vessel.membrane_limit, count
         if key not in self._fits:
-            content = None
-            if self.cooling == "size":
-                content = cooling_for(self.analysis, self.scenarios, vessel, count, self._limit(vessel))
-                if content is None:
-                    # Either no cooling vessel helps or the vessel has no window at all: the plain fit tells which.
-                    plain = fit(self.analysis, self.scenarios, vessel, count, "size", inf, content=0.0)
-                    wide = plain is not None and plain.window.wide_enough
-                    self._fits[key] = None if wide else plain
-                    return self._fits[key]
-            self._fits[key] = fit(
-                self.analysis,
-                self.scenarios,
-                vessel,
-                count,
-                self.cooling,
-                self.membrane_limit,
-                content,
-            )
+            self._fits[key] = self._fitted(vessel, count)
         found = self._fits[key]
         return found and replace(found, vessel=vessel, pieces=count)
 
+    def _content(self, vessel: Vessel, count: int) -> float | None:
+        """Content (m3) of a candidate's own cooling vessel, which what its membrane takes has nothing to do with."""
+        fixed = None if vessel.precharge_adjustable else vessel.delivered_precharge
+        limit = self.limit(vessel)
+        key = vessel.nominal_volume * count, fixed, limit
+        if key not in self._contents:
+            free = replace(vessel, acceptance_volume=None)
+            self._contents[key] = cooling_for(self.analysis, self.scenarios, free, count, limit)
+        return self._contents[key]
 
-def _article(nominal: float, fixed: float | None) -> Vessel:
-    """A vessel of ``nominal`` m3 whose precharge is ``fixed`` (gauge Pa), or can be set."""
-    return Vessel(
-        id="", nominal_volume=nominal, delivered_precharge=fixed, precharge_adjustable=fixed is None
-    )
+    def _fitted(self, vessel: Vessel, count: int) -> Fit | None:
+        analysis, scenarios = self.analysis, self.scenarios
+        content = None
+        if self.cooling == "size":
+            content = self._content(vessel, count)
+            if content is None:
+                # Either no cooling vessel helps or the vessel has no window at all: the plain fit tells which.
+                plain = fit(analysis, scenarios, vessel, count, "size", inf, content=0.0)
+                return None if plain is not None and plain.window.wide_enough else plain
+        return fit(analysis, scenarios, vessel, count, self.cooling, self.membrane_limit, content)

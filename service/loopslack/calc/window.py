@@ -143,7 +143,11 @@ class Bounds(FillLaw):
             (code, id, density * (1 - squeeze / pressure), allowed + expelled)
             for code, id, pressure, expelled in hot.lower
         ]
-        self.warm = hot.warm
+        self.warm, self.hot = hot.warm, hot
+
+    def charged(self, gas: Gas) -> "Bounds":
+        """The same bounds for vessels of another precharge."""
+        return Bounds(self.analysis, self.scenarios, gas, self.hot)
 
     def _cold(self) -> Line:
         """The pressure at the top when cold."""

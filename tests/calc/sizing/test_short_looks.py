@@ -10,6 +10,7 @@ from calc.reference import BAR, ZERO
 from loopslack.calc.acceptance import AcceptanceNeeded
 from loopslack.calc.analysis import Analysis
 from loopslack.calc.cooling import Charged, hottest, spare
+from loopslack.calc.extents import Extents
 from loopslack.calc.fit import Fit
 from loopslack.calc.model import Vessel
 from loopslack.calc.precharge import gas_of
@@ -64,14 +65,14 @@ def test_spare_mass_has_the_sign_of_the_margin_of_the_membranes_temperature(limi
 
 def test_a_look_at_the_steam_never_contradicts_the_acceptance_volume_that_is_solved() -> None:
     outcomes: Counter[bool] = Counter()
-    extents: dict[int, dict] = {}
     for seed, _, sized in LOOPS:
+        extents = Extents(sized.analysis)
         for factor in SIZES:
             article = Vessel(id="", nominal_volume=factor * sized.smallest)
             gas = gas_of(sized.analysis, article, 1)
             window = Bounds(sized.analysis, sized.analysis.singles, gas).window(gas.nominal)
             fitted = Fit(article, 1, gas, sized.analysis, window)
-            needed = AcceptanceNeeded(fitted, sized.analysis.singles, extents.setdefault(seed, {}))
+            needed = AcceptanceNeeded(fitted, sized.analysis.singles, extents)
             volume = AcceptanceNeeded(fitted, sized.analysis.singles).volume
             for share in (0.2, 0.5, 0.9, 0.999999, 1.000001, 1.1, 2.0):
                 accepted = share * volume

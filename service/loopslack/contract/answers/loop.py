@@ -159,7 +159,7 @@ class Volumes(AnswerPart, frozen=True, kw_only=True):
     robust: Annotated[SizedVolume | None, text("Holds under all doubts at once.")] = None
 
 
-class RefusalReason(AnswerPart, frozen=True, kw_only=True):
+class RefusalReason(AnswerPart, frozen=True, kw_only=True, gc=False):
     """Why a vessel was refused, and by how much. `unspent-power` is the loop's: the others are what it needs beside."""
 
     code: Annotated[ReasonCode, text("Why the vessel is refused.", "acceptance-volume")]
@@ -172,17 +172,26 @@ class RefusalReason(AnswerPart, frozen=True, kw_only=True):
     ] = None
 
 
-class RefusedVessel(AnswerPart, frozen=True, kw_only=True):
+class RefusedVessel(AnswerPart, frozen=True, kw_only=True, gc=False):
     """A candidate that was refused."""
 
     id: Annotated[str, text("Identifier of the vessel in its list.", "preferred-80")]
     pieces: Annotated[int, text("How many equal ones were looked at.", 1)]
     verdict: Annotated[Verdict, text("Always `does-not-hold` for the policy asked for.", "does-not-hold")]
     reasons: Annotated[list[RefusalReason], text("Every reason.")]
+    as_sized: Annotated[
+        bool | None,
+        text(
+            "True where it was only looked at, with the cooling vessel of the smallest volume and larger ones, and "
+            "might do after all: of a long list not every vessel is solved for itself. Ask for it as the given "
+            "vessel to be sure.",
+            True,
+        ),
+    ] = None
 
 
 class Alternative(AnswerPart, frozen=True, kw_only=True, gc=False):
-    """A candidate ranked after the chosen one that passes the same comparison."""
+    """A candidate ranked after the chosen one that would do too, with a cooling vessel where it needs one."""
 
     id: Annotated[str, text("Identifier of the vessel in its list.", "preferred-125")]
     pieces: Annotated[int, text("How many equal ones.", 1)]

@@ -45,7 +45,7 @@ _MEMBRANE = quantity(
 )
 
 
-class StockVessel(QuestionPart, frozen=True, kw_only=True):
+class StockVessel(QuestionPart, frozen=True, kw_only=True, gc=False):
     """A vessel of the caller's stock."""
 
     id: Annotated[Label, text("The caller's article number, echoed in the answer.", "EV-80")]

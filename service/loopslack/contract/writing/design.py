@@ -102,12 +102,13 @@ def selection(found: Selected, write: Writer) -> out.Selection:
                 pieces=refusal.pieces,
                 verdict="does-not-hold",
                 reasons=written.of(refusal),
+                as_sized=True if refusal.as_sized else None,
             )
             for refusal in found.refused
         ],
         alternatives=[
-            out.Alternative(id=vessel.id, pieces=pieces)
-            for vessel, pieces in found.alternatives[:_ALTERNATIVES]
+            out.Alternative(id=offer.vessel.id, pieces=offer.pieces)
+            for offer in found.alternatives[:_ALTERNATIVES]
         ],
         alternatives_omitted=max(0, len(found.alternatives) - _ALTERNATIVES),
     )
