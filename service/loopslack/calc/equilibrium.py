@@ -21,6 +21,7 @@ from loopslack.kernel.roots import bracketed, first_crossing, near
 Regime = Literal["no-boiling", "pinned", "steam", "valve-opens"]
 
 _RELATIVE = 2e-11  # of a steam temperature, 1e-8 K: a hundredth of what rounding may do to a verdict
+_CLOSED = 1e-11  # share of the nominal volume to which the balance of volumes closes
 
 _NEAR = 1.0  # K around the last steam temperature in which the next one is looked for first
 
@@ -120,7 +121,9 @@ class _OneSpace:
             at = None if crossing is None else crossing.at
         if at is None and at_low < 0 < at_high:
             slope = (at_high - at_low) / (high - low)
-            at = near(excess, low, high, low - at_low / slope, slope, slope * tolerance).at
+            # Towards vacuum the room falls without end, so that the mean slope alone would ask for too little.
+            accuracy = min(slope * tolerance, _CLOSED * law.charge.nominal)
+            at = near(excess, low, high, low - at_low / slope, slope, accuracy).at
         elif at is None:
             at = bracketed(excess, low, high, at_low, at_high, tolerance).at
         self.near = at

@@ -19,7 +19,9 @@ class Fit(Struct, frozen=True, gc=False):
     """``pieces`` equal vessels in the loop: the gas of all together, the loop with its cooling vessel, the window.
 
     ``under`` names the scenarios of the window where they are fewer than have to be survived, which no filling does:
-    a filling to judge the vessel with, and none to hand out.
+    a filling to judge the vessel with, and none to hand out. ``cooling_times`` is how many times the content of the
+    smallest volume's cooling vessel its own has, where less would keep the membrane cool but leave the gas too warm for
+    a window as wide as demanded; else 0.
     """
 
     vessel: Vessel
@@ -28,6 +30,7 @@ class Fit(Struct, frozen=True, gc=False):
     analysis: Analysis
     window: Window
     under: tuple[Scenario, ...] = ()
+    cooling_times: float = 0.0
 
     @property
     def counted(self) -> bool:

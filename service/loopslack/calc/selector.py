@@ -257,12 +257,13 @@ class Selector:
         found = self.fit(vessel, count)
         if found is not None and found.window.wide_enough:
             return found
-        for look in (self._looks, *self._roomier):
+        for times, look in zip((1.0, *_ROOMIER), (self._looks, *self._roomier), strict=False):
             if look is not None and look.does(vessel, count, self.limit(vessel)):
                 content = look.analysis.loop.cooling_content
-                return fit(
+                roomy = fit(
                     self.analysis, self.scenarios, vessel, count, self.cooling, self.membrane_limit, content
                 )
+                return roomy and replace(roomy, cooling_times=times)
         return found
 
     def fit(self, vessel: Vessel, count: int) -> Fit | None:

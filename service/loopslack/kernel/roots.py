@@ -13,6 +13,7 @@ _LADDER = 1.2  # step of a search outwards where nothing tells more
 _LEAP = 10.0  # most it steps at once where a slope tells how far
 _RUNGS = 55  # 1.2^55 is 22,000
 _CLOSE = 3.0  # tolerances by which a place that is met may lie beyond the root
+_SOON = 1e3  # times the accuracy: what a step that is not looked at may leave where the function bends
 _MARGIN = 10.0  # by which the next step of a search is expected to do better than it must
 
 
@@ -100,8 +101,9 @@ def near(
 
     For functions asked again and again at little changed places: the ends are never evaluated (the sign must change
     between them), the first step goes along ``slope``, the next ones are secants kept inside what is left between
-    the ends. Ends when the value is within ``accuracy`` of nought, or the next step should bring it well inside, or
-    nothing is left between the ends. The slope told is the last one seen.
+    the ends. Ends when the value is within ``accuracy`` of nought, or the next step should bring it well inside and
+    may leave no more than a thousand times that, or nothing is left between the ends. The slope told is the last one
+    seen.
     """
     here = guess if low < guess < high else 0.5 * (low + high)
     value = function(here)
@@ -119,8 +121,8 @@ def near(
             beside = 0.5 * (low + high)
             if not low < beside < high:
                 return SlopedRoot(here, count, slope)
-        elif value * value * _MARGIN < accuracy * abs(before):
-            # What a secant leaves is a constant times the two values before it.
+        elif abs(value) < _SOON * accuracy and value * value * _MARGIN < accuracy * abs(before):
+            # What a secant leaves is a constant times the two values before it, but for a bend on the way.
             return SlopedRoot(beside, count, slope)
         following = function(beside)
         slope = (following - value) / (beside - here)

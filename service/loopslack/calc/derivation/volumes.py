@@ -15,6 +15,7 @@ from loopslack.calc.sizing.rules.en_12977 import vessel as en_12977_vessel
 from loopslack.calc.sizing.volumes import Sized
 from loopslack.calc.window import Gas
 from loopslack.kernel import kinds
+from loopslack.kernel.citations import OWN_ASSUMPTION
 from loopslack.kernel.value import Value
 from loopslack.physics import balance_pressure, expansion, statics
 
@@ -25,9 +26,16 @@ _COOLING = (
 _MET = 1e-4  # K within which a scenario is the one that sets a cooling vessel
 
 
-def cooling_content(parts: Parts, content: float, tag: str) -> tuple[Value, bool]:
-    """The cooling vessel: a root where it was sized, else as given; whether it is a root."""
+def cooling_content(parts: Parts, content: float, tag: str, times: float = 0.0) -> tuple[Value, bool]:
+    """The cooling vessel: a root where it was sized, else as given; whether it is a root.
+
+    ``times`` tells one that was taken at so many times the content the smallest volume has, for a wider window.
+    """
     book = parts.book
+    if times and content > 0:
+        row = f"{times:g} times the content of the recommended smallest volume's"
+        name = "content of the cooling vessel"
+        return book.tabulated(content, kinds.VOLUME, name, "this design", row, OWN_ASSUMPTION), False
     if parts.ground.sized_cooling and content > 0:
         book.chapter = "cooling-vessel"
         system = System(id="cooling-content", meaning=_COOLING)

@@ -98,7 +98,8 @@ class _Whole:
         self.parts = Parts(self.book, analysis.loop, ground)
         self.site = Site(self.parts, ground.allowance)
         self._site()
-        self.content, self.root = cooling_content(self.parts, fitted.analysis.loop.cooling_content, "")
+        content = fitted.analysis.loop.cooling_content
+        self.content, self.root = cooling_content(self.parts, content, "", fitted.cooling_times)
         self.frame = Frame(self.parts, self.site, fitted.analysis, self.content)
 
     def shown(self, fitted: Fit, found: Design | Checked, *, settings: bool) -> ShownSteps:
