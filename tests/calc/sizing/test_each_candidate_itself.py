@@ -39,7 +39,7 @@ LITRES = (
     3000,
     5000,
 )
-SEEDS = (*range(14), 19, 35)
+SEEDS = (*range(14), 19, 35)  # in the last two a hot membrane and a fixed precharge decide
 MODES: tuple[CoolingMode, ...] = ("size", "none")
 
 

@@ -7,14 +7,12 @@ stands are ``advice``'s.
 from collections.abc import Iterator
 
 from loopslack.calc.audit.whole import READING, Audit
+from loopslack.contract.advice.saying import advisory, written
 from loopslack.contract.answers.audit import AuditAction
-from loopslack.contract.answers.shared import Advisory, AnyQuantity, Severity
+from loopslack.contract.answers.shared import Advisory, Severity
 from loopslack.contract.writing.quantities import System
-from loopslack.contract.writing.shared import any_quantity
 from loopslack.kernel import kinds
 from loopslack.kernel.kinds import Kind
-
-Numbers = dict[str, tuple[float, Kind]]
 
 _ADVISORIES: dict[str, tuple[Severity, str, str]] = {
     "reading-undecided": (
@@ -184,19 +182,8 @@ class AuditAdvisor:
 
     def _advisory(self, code: str, **numbers: tuple[float, Kind]) -> Advisory:
         severity, message, remedy = _ADVISORIES[code]
-        parameters, shown = self._written(numbers)
-        return Advisory(
-            severity=severity,
-            code=code,
-            message=message.format(**shown),
-            remedy=remedy,
-            parameters=parameters,
-        )
+        return advisory(severity, code, message, remedy, numbers, self.system)
 
     def _action(self, code: str, **numbers: tuple[float, Kind]) -> AuditAction:
-        parameters, shown = self._written(numbers)
+        parameters, shown = written(numbers, self.system)
         return AuditAction(code=code, message=_ACTIONS[code].format(**shown), parameters=parameters)
-
-    def _written(self, numbers: Numbers) -> tuple[dict[str, AnyQuantity], dict[str, str]]:
-        parameters = {name: any_quantity(si, kind, self.system) for name, (si, kind) in numbers.items()}
-        return parameters, {name: f"{one.value:.4g} {one.unit}" for name, one in parameters.items()}

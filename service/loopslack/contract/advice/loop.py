@@ -12,6 +12,7 @@ from loopslack.calc.judge import JOINT, required
 from loopslack.calc.judgement import Check, DoubtPolicy, Judgement
 from loopslack.calc.model import Branch
 from loopslack.calc.scenarios import BASE
+from loopslack.contract.advice.saying import advisory, said
 from loopslack.contract.advice.words import FAILING, STATES, WITHOUT_NUMBER
 from loopslack.contract.answers.shared import Advisory, AnyQuantity, Severity
 from loopslack.contract.writing.quantities import System
@@ -87,7 +88,7 @@ class Advisor:
         if "value" not in parameters or check.reason in WITHOUT_NUMBER:
             text = WITHOUT_NUMBER.get(check.reason, "the check does not hold")
         else:
-            shown = {name: _say(quantity) for name, quantity in parameters.items()}
+            shown = {name: said(quantity) for name, quantity in parameters.items()}
             text = sentence.format(subject=check.subject, **shown)
         return Advisory(
             severity=severity,
@@ -217,15 +218,7 @@ class Advisor:
     def _say(
         self, severity: Severity, code: str, message: str, remedy: str, **numbers: tuple[float, Kind]
     ) -> Advisory:
-        parameters = {name: any_quantity(si, kind, self.system) for name, (si, kind) in numbers.items()}
-        shown = {name: _say(quantity) for name, quantity in parameters.items()}
-        return Advisory(
-            severity=severity,
-            code=code,
-            message=message.format(**shown),
-            remedy=remedy,
-            parameters=parameters,
-        )
+        return advisory(severity, code, message, remedy, numbers, self.system)
 
 
 def _soldered(branch: Branch, reach: float) -> bool:
@@ -236,8 +229,3 @@ def _soldered(branch: Branch, reach: float) -> bool:
             return True
         done += segment.length
     return False
-
-
-def _say(quantity: AnyQuantity) -> str:
-    """A quantity as a sentence says it: four digits at most."""
-    return f"{quantity.value:.4g} {quantity.unit}"
